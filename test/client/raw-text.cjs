@@ -1,0 +1,4 @@
+/** Lets a component test import an icon as text, as the build's `.svg` loader does. */
+module.exports = {
+  process: (text) => ({ code: `module.exports = ${JSON.stringify(text)};` }),
+};

@@ -1,0 +1,66 @@
+/**
+ * Three kinds of test: `domain` (rules and contracts, no I/O), `server` (real MariaDB, real sockets)
+ * and `client` (components and stores in jsdom). Browser stories run in Playwright, not here.
+ */
+const path = require('node:path');
+
+const root = path.resolve(__dirname, '..');
+const swc = [
+  '@swc/jest',
+  {
+    jsc: {
+      parser: { syntax: 'typescript', decorators: true },
+      target: 'es2022',
+      transform: { useDefineForClassFields: false },
+    },
+    module: { type: 'commonjs' },
+  },
+];
+const shared = { '^@shared/(.*)$': '<rootDir>/shared/$1' };
+
+module.exports = {
+  rootDir: root,
+  maxWorkers: 2,
+  projects: [
+    {
+      displayName: 'domain',
+      rootDir: root,
+      testEnvironment: 'node',
+      testMatch: ['<rootDir>/test/domain/**/*.spec.ts'],
+      transform: { '^.+\\.[jt]s$': swc },
+      moduleNameMapper: shared,
+    },
+    {
+      displayName: 'server',
+      rootDir: root,
+      testEnvironment: 'node',
+      testMatch: ['<rootDir>/test/server/**/*.spec.ts'],
+      transform: { '^.+\\.[jt]s$': swc },
+      // These ship as ES modules only; the rest of node_modules is left alone for speed.
+      transformIgnorePatterns: [
+        '/node_modules/(?!(pbf|geojson-vt|@maplibre/vt-pbf|@maplibre/geojson-vt|@mapbox/point-geometry|@mapbox/vector-tile|flatbush|flatqueue)/)',
+      ],
+      moduleNameMapper: shared,
+    },
+    {
+      displayName: 'client',
+      rootDir: root,
+      preset: 'jest-preset-angular',
+      testEnvironment: 'jsdom',
+      testMatch: ['<rootDir>/src/**/*.spec.ts'],
+      setupFilesAfterEnv: ['<rootDir>/test/client/setup.ts'],
+      transform: {
+        '^.+\\.svg$': '<rootDir>/test/client/raw-text.cjs',
+        '^.+\\.(ts|js|mjs|html)$': [
+          'jest-preset-angular',
+          {
+            tsconfig: '<rootDir>/src/tsconfig.spec.json',
+            stringifyContentPathRegex: '\\.html$',
+          },
+        ],
+      },
+      transformIgnorePatterns: ['node_modules/(?!.*\\.mjs$)'],
+      moduleNameMapper: shared,
+    },
+  ],
+};
