@@ -2,7 +2,7 @@
  * What a visit may ask of a technician. `sealed-system` needs the certification of
  * 40 CFR 82.161 (EPA section 608); the others are the company's own classes.
  */
-export const SKILLS = ['electrical', 'sealed-system', 'commercial', 'gas-absorption'] as const;
+export const SKILLS = ['electrical', 'sealed-system', 'commercial'] as const;
 export type Skill = (typeof SKILLS)[number];
 
 /** Parts that a van may carry, by the name that the trade gives them. */
