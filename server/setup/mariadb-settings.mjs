@@ -51,15 +51,15 @@ ${(fast ? FAST : DURABLE).join('\n')}
  */
 export function accountsFile({ databasePassword, databaseRootPassword }, { database, testPrefix }) {
   const lines = [
-    `SET PASSWORD FOR 'root'@'localhost' = PASSWORD('${databaseRootPassword}');`,
+    `ALTER USER 'root'@'localhost' IDENTIFIED BY '${databaseRootPassword}';`,
     `DELETE FROM mysql.global_priv WHERE User = '' OR (User = 'root' AND Host <> 'localhost');`,
     'FLUSH PRIVILEGES;',
   ];
   for (const host of ['127.0.0.1', 'localhost']) {
     const account = `'thawline'@'${host}'`;
     lines.push(
-      `CREATE USER IF NOT EXISTS ${account};`,
-      `SET PASSWORD FOR ${account} = PASSWORD('${databasePassword}');`,
+      `CREATE USER IF NOT EXISTS ${account} IDENTIFIED BY '${databasePassword}';`,
+      `ALTER USER ${account} IDENTIFIED BY '${databasePassword}';`,
     );
     if (database) lines.push(`GRANT ALL ON \`${database}\`.* TO ${account};`);
     if (testPrefix) {
