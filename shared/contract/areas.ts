@@ -1,0 +1,67 @@
+import { z } from 'zod';
+import { Command, filledLine, Id, LonLat, Moment, Version, VersionedCommand } from './common';
+
+/** A closed ring in GeoJSON's order; the last point repeats the first. */
+export const Ring = z
+  .array(LonLat)
+  .min(4)
+  .max(500)
+  .refine((ring) => {
+    const [first, last] = [ring[0], ring.at(-1)];
+    return first?.[0] === last?.[0] && first?.[1] === last?.[1];
+  }, 'The outline is not closed.');
+
+export const AreaDto = z.strictObject({
+  id: Id,
+  stormId: Id,
+  name: z.string(),
+  ring: Ring,
+  outAt: Moment,
+  /** `null`: still out. */
+  backAt: Moment.nullable(),
+  version: Version,
+});
+export type AreaDto = z.infer<typeof AreaDto>;
+
+export const DrawArea = Command.extend({
+  areaId: Id,
+  name: filledLine(80),
+  ring: Ring,
+  outAt: Moment,
+  backAt: Moment.nullable(),
+});
+export const ChangeArea = VersionedCommand.extend({
+  name: filledLine(80).optional(),
+  ring: Ring.optional(),
+  outAt: Moment.optional(),
+  backAt: Moment.nullable().optional(),
+});
+export const RemoveArea = VersionedCommand;
+
+export const PocketDto = z.strictObject({
+  key: z.string(),
+  name: z.string(),
+  callIds: z.array(Id),
+  centre: LonLat,
+  hull: z.array(LonLat),
+  valueAtRiskCents: z.int(),
+  nextSaveByAt: Moment.nullable(),
+});
+export type PocketDto = z.infer<typeof PocketDto>;
+
+export const RegionDto = z.strictObject({
+  id: z.string(),
+  name: z.string(),
+  /** West, south, east, north. */
+  bbox: z.tuple([z.number(), z.number(), z.number(), z.number()]),
+  centre: LonLat,
+  timeZone: z.string(),
+  attribution: z.string(),
+  /** With {z}, {x} and {y}. */
+  tilesUrl: z.string(),
+  /** House numbers, shown from zoom 17; `null` if the region has none. */
+  houseNumbersUrl: z.string().nullable(),
+  hasCoast: z.boolean(),
+  addressCount: z.int(),
+});
+export type RegionDto = z.infer<typeof RegionDto>;

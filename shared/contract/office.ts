@@ -1,0 +1,147 @@
+import { z } from 'zod';
+import { Command, filledLine, Id, Moment, Role, Version, VersionedCommand } from './common';
+import { RegionDto } from './areas';
+
+export const SignInName = z.string().trim().toLowerCase().max(120).pipe(z.email());
+
+/**
+ * A password. At least 15 characters, no rules of composition, long ones welcome
+ * (NIST SP 800-63B-4, 2025, single-factor passwords).
+ */
+export const Password = z.string().min(15).max(200);
+
+export const SignIn = z.strictObject({
+  signInName: z.string().max(200),
+  password: z.string().max(500),
+});
+
+export const UserDto = z.strictObject({
+  id: Id,
+  name: z.string(),
+  signInName: z.string(),
+  role: Role,
+  technicianId: Id.nullable(),
+  disabled: z.boolean(),
+  mustChangePassword: z.boolean(),
+  version: Version,
+});
+export type UserDto = z.infer<typeof UserDto>;
+
+export const StormDto = z.strictObject({
+  id: Id,
+  name: z.string(),
+  state: z.enum(['open', 'closed']),
+  openedAt: Moment,
+  closedAt: Moment.nullable(),
+  version: Version,
+});
+export type StormDto = z.infer<typeof StormDto>;
+
+export const OpenStorm = Command.extend({ stormId: Id, name: filledLine(80) });
+export const CloseStorm = VersionedCommand;
+
+export const Settings = z.strictObject({
+  companyName: z.string(),
+  companyPhone: z.string(),
+  /** A text goes out when an arrival time moves by more than this. */
+  etaMovedMinutes: z.int().min(5).max(180),
+  /** Minutes after midnight, in the region's time. */
+  quietFromMinute: z.int().min(0).max(1439),
+  quietUntilMinute: z.int().min(0).max(1439),
+  claimMinutes: z.int().min(2).max(60),
+  /** Road distance over straight-line distance. */
+  circuity: z.number().min(1).max(3),
+  speedMph: z.number().min(5).max(80),
+  serviceMinutes: z.int().min(5).max(480),
+  /** How much more a medicine counts than its money value. */
+  medicineWeight: z.number().min(1).max(100),
+  pocketKm: z.number().min(0.1).max(10),
+  pocketCalls: z.int().min(2).max(50),
+  version: Version,
+});
+export type Settings = z.infer<typeof Settings>;
+export const ChangeSettings = VersionedCommand.extend(
+  Settings.omit({ version: true }).partial().shape,
+);
+
+/** Who is signed in and what every screen needs to know first. */
+export const Me = z.strictObject({
+  user: UserDto,
+  storm: StormDto.nullable(),
+  region: RegionDto,
+  settings: Settings,
+  serverNow: Moment,
+});
+export type Me = z.infer<typeof Me>;
+export const MaybeMe = z.strictObject({ me: Me.nullable() });
+
+export const AddUser = Command.extend({
+  userId: Id,
+  name: filledLine(80),
+  signInName: SignInName,
+  role: Role,
+  technicianId: Id.nullable(),
+});
+export const ChangeUser = VersionedCommand.extend({
+  name: filledLine(80).optional(),
+  role: Role.optional(),
+  technicianId: Id.nullable().optional(),
+  disabled: z.boolean().optional(),
+});
+export const ResetPassword = VersionedCommand;
+/** The passphrase is shown once and must be changed at the first sign-in. */
+export const UserWithPassphrase = z.strictObject({ user: UserDto, passphrase: z.string() });
+export const ChangePassword = z.strictObject({
+  current: z.string().max(500),
+  next: Password,
+  endOtherSessions: z.boolean(),
+});
+
+const DrainPoint = z.strictObject({
+  at: Moment,
+  arrivals: z.int(),
+  settledByPhone: z.int(),
+  settledByVisit: z.int(),
+  open: z.int(),
+  valueAtRiskCents: z.int(),
+  savedCents: z.int(),
+  lostCents: z.int(),
+});
+const DrainShare = z.strictObject({
+  id: Id.nullable(),
+  name: z.string(),
+  arrivals: z.int(),
+  settledByPhone: z.int(),
+  settledByVisit: z.int(),
+  open: z.int(),
+  valueAtRiskCents: z.int(),
+  savedCents: z.int(),
+  lostCents: z.int(),
+});
+export const DrainDto = z.strictObject({
+  at: Moment,
+  bucketMinutes: z.int(),
+  /** Running totals at the end of each bucket. */
+  series: z.array(DrainPoint),
+  byArea: z.array(DrainShare),
+  byTechnician: z.array(DrainShare),
+  forecast: z.strictObject({
+    emptyAt: Moment.nullable(),
+    arrivalsPerHour: z.number(),
+    settledPerHour: z.number(),
+    /** The assumption, in words. */
+    assumption: z.string(),
+  }),
+});
+export type DrainDto = z.infer<typeof DrainDto>;
+
+export const AuditEntryDto = z.strictObject({
+  n: z.int(),
+  at: Moment,
+  by: z.string(),
+  command: z.string(),
+  entity: z.string(),
+  entityId: z.string(),
+  summary: z.string(),
+});
+export type AuditEntryDto = z.infer<typeof AuditEntryDto>;

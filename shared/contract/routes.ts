@@ -1,0 +1,218 @@
+import { z } from 'zod';
+import { VISIT_OUTCOMES, CALL_STATES } from '../domain/call-state';
+import { UNIT_KINDS } from '../domain/cold-unit';
+import { PARTS, SKILLS } from '../domain/skills';
+import { Address, CompartmentRow } from './calls';
+import {
+  Command,
+  filledLine,
+  Id,
+  line,
+  LonLat,
+  Moment,
+  PhoneNumber,
+  prose,
+  Version,
+  VersionedCommand,
+} from './common';
+
+export const Shift = z.strictObject({ startsAt: Moment, endsAt: Moment });
+
+export const Position = z.strictObject({
+  lonLat: LonLat,
+  at: Moment,
+  accuracyMeters: z.number().nonnegative().nullable(),
+});
+export type Position = z.infer<typeof Position>;
+
+export const TechnicianDto = z.strictObject({
+  id: Id,
+  name: z.string(),
+  phone: PhoneNumber,
+  skills: z.array(z.enum(SKILLS)),
+  /** Parts on the van and how many. */
+  van: z.partialRecord(z.enum(PARTS), z.int().nonnegative()),
+  start: LonLat,
+  shifts: z.array(Shift),
+  position: Position.nullable(),
+  active: z.boolean(),
+  version: Version,
+});
+export type TechnicianDto = z.infer<typeof TechnicianDto>;
+
+export const AddTechnician = Command.extend({
+  technicianId: Id,
+  name: filledLine(80),
+  phone: PhoneNumber,
+  skills: z.array(z.enum(SKILLS)),
+  van: z.partialRecord(z.enum(PARTS), z.int().min(0).max(99)),
+  start: LonLat,
+  shifts: z.array(Shift).max(30),
+});
+export const ChangeTechnician = VersionedCommand.extend({
+  name: filledLine(80).optional(),
+  phone: PhoneNumber.optional(),
+  skills: z.array(z.enum(SKILLS)).optional(),
+  van: z.partialRecord(z.enum(PARTS), z.int().min(0).max(99)).optional(),
+  start: LonLat.optional(),
+  shifts: z.array(Shift).max(30).optional(),
+  active: z.boolean().optional(),
+});
+
+/** `pulled`, `declined` and `done` stops are history; the others make up the route. */
+export const STOP_STATES = [
+  'planned',
+  'offered',
+  'accepted',
+  'travelling',
+  'on-site',
+  'done',
+  'declined',
+  'pulled',
+] as const;
+
+export const StopDto = z.strictObject({
+  id: Id,
+  stormId: Id,
+  technicianId: Id,
+  callId: Id,
+  /** Order on the route, from 0. */
+  position: z.int().nonnegative(),
+  state: z.enum(STOP_STATES),
+  locked: z.boolean(),
+  arriveAt: Moment,
+  finishAt: Moment,
+  etaAt: Moment.nullable(),
+  driveMinutes: z.number().nonnegative(),
+  /** Why it has this place, in words. */
+  because: z.string(),
+  version: Version,
+});
+export type StopDto = z.infer<typeof StopDto>;
+
+/** A stop as the technician's phone shows it: only what the visit needs. */
+export const StopCard = z.strictObject({
+  stop: StopDto,
+  callNumber: z.int(),
+  callState: z.enum(CALL_STATES),
+  name: z.string(),
+  phone: PhoneNumber.nullable(),
+  address: Address,
+  lostAt: Moment,
+  units: z.array(
+    z.strictObject({
+      id: Id,
+      kind: z.enum(UNIT_KINDS),
+      place: z.string(),
+      compartments: z.array(CompartmentRow),
+    }),
+  ),
+  skills: z.array(z.enum(SKILLS)),
+  parts: z.array(z.enum(PARTS)),
+  /** Likely causes from the phone check, likeliest first, in words. */
+  causes: z.array(z.string()),
+  remarks: z.array(z.string()),
+  danger: z.boolean(),
+});
+export type StopCard = z.infer<typeof StopCard>;
+
+export const TechnicianDay = z.strictObject({
+  stormId: Id.nullable(),
+  n: z.int().nonnegative(),
+  technician: TechnicianDto,
+  stops: z.array(StopCard),
+});
+export type TechnicianDay = z.infer<typeof TechnicianDay>;
+
+export const PlanFigures = z.strictObject({
+  savedCents: z.int(),
+  lostCents: z.int(),
+  driveMinutes: z.number(),
+  driveMiles: z.number(),
+  lateMinutes: z.number(),
+  stops: z.int(),
+  /** Stops with another technician, or a start that moves by more than 30 minutes. */
+  moved: z.int(),
+});
+export type PlanFigures = z.infer<typeof PlanFigures>;
+
+export const PlanDto = z.strictObject({
+  id: Id,
+  stormId: Id,
+  state: z.enum(['proposed', 'published', 'discarded', 'overtaken']),
+  proposedAt: Moment,
+  proposedBy: z.string(),
+  routes: z.array(
+    z.strictObject({
+      technicianId: Id,
+      stops: z.array(
+        z.strictObject({
+          callId: Id,
+          arriveAt: Moment,
+          startAt: Moment,
+          finishAt: Moment,
+          driveMinutes: z.number(),
+          firm: z.boolean(),
+          because: z.string(),
+        }),
+      ),
+    }),
+  ),
+  unplanned: z.array(
+    z.strictObject({
+      callId: Id,
+      reason: z.enum(['skill', 'part', 'no-shift', 'capacity', 'unlocated']),
+      words: z.string(),
+    }),
+  ),
+  figures: PlanFigures,
+  /** The same figures for the routes in force, to compare. */
+  inForce: PlanFigures,
+  version: Version,
+});
+export type PlanDto = z.infer<typeof PlanDto>;
+
+export const ProposePlan = Command.extend({
+  planId: Id,
+  /** How long to search, in seconds of one core. */
+  seconds: z.number().min(0.05).max(10).default(1),
+});
+export const PublishPlan = VersionedCommand;
+export const DiscardPlan = VersionedCommand;
+
+export const LockStop = VersionedCommand.extend({ locked: z.boolean() });
+export const MoveStop = VersionedCommand.extend({
+  technicianId: Id,
+  /** Place on the route, from 0, counting every stop that is still to be done. */
+  position: z.int().min(0).max(200),
+});
+export const PullStop = VersionedCommand.extend({ reason: filledLine(300) });
+/** Gives a waiting call to a technician by hand. */
+export const AddStop = VersionedCommand.extend({
+  stopId: Id,
+  technicianId: Id,
+  position: z.int().min(0).max(200),
+});
+
+export const DECLINE_REASONS = [
+  'missing-part',
+  'missing-skill',
+  'road-closed',
+  'unsafe',
+  'end-of-shift',
+  'other',
+] as const;
+export const AcceptStop = VersionedCommand;
+export const DeclineStop = VersionedCommand.extend({
+  reason: z.enum(DECLINE_REASONS),
+  note: line(300),
+});
+export const StartTravel = VersionedCommand.extend({ from: LonLat.nullable() });
+export const TellEta = VersionedCommand.extend({ etaAt: Moment });
+export const Arrive = VersionedCommand;
+export const FinishStop = VersionedCommand.extend({
+  outcome: z.enum(VISIT_OUTCOMES),
+  note: prose(2000),
+  partsUsed: z.array(z.enum(PARTS)).max(20),
+});
+export const ReportPosition = z.strictObject({ position: Position });
