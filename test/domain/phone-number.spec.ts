@@ -1,0 +1,148 @@
+import { findPhones, formatPhone, readPhone } from '@shared/domain/phone-number';
+
+const OURS = '+12525550142';
+
+function e164(raw: string, areaCode: string | null = '252'): string | null {
+  const reading = readPhone(raw, { areaCode });
+  return reading.kind === 'number' ? reading.number.e164 : null;
+}
+
+describe('readPhone', () => {
+  it.each([
+    '(252) 555-0142',
+    '(252)555-0142',
+    '(252)555 - 0142',
+    '252.555.0142',
+    '252 555 0142',
+    '252-555-0142',
+    '252/555-0142',
+    '252-5550142',
+    '252 5550142',
+    '2525550142',
+    '12525550142',
+    '+1 252 555 0142',
+    '+12525550142',
+    '1-252-555-0142',
+    '1 (252) 555-0142',
+    '001 252 555 0142',
+    '0012525550142',
+    'tel:+12525550142',
+    '252\u2013555\u20130142',
+    '252\u00a0555\u00a00142',
+    '\u202a252-555-0142\u202c',
+    '2 5 2 5 5 5 0 1 4 2',
+    '252_555_0142',
+    "'2525550142",
+    '="2525550142"',
+    '2525550142.0',
+    '2.525550142E+09',
+    '252-555-O142',
+    '252-555-0l42',
+    '252-555-0142 (cell)',
+    'c: 252-555-0142',
+    'call after 6: 252-555-0142',
+    '252-555-0142 x12',
+    '555-0142',
+    '555 0142',
+    '5550142',
+    '555.0142',
+  ])('reads %p as one number', (raw) => {
+    expect(e164(raw)).toBe(OURS);
+  });
+
+  it.each([
+    ['252-555-0142 x12', '12'],
+    ['252-555-0142 ext. 4', '4'],
+    ['(252) 555-0142, ext 301', '301'],
+    ['2525550142x7', '7'],
+    ['252-555-0142', null],
+  ])('keeps the extension of %p', (raw, extension) => {
+    expect(readPhone(raw)).toMatchObject({ number: { e164: OURS, extension } });
+  });
+
+  it('says when it took an area code for granted', () => {
+    const reading = readPhone('555-0142', { areaCode: '252' });
+    expect(reading).toMatchObject({ kind: 'number', doubts: [expect.stringContaining('252')] });
+  });
+
+  it('does not invent an area code', () => {
+    expect(readPhone('555-0142')).toEqual({
+      kind: 'unreadable',
+      why: '"555-0142" has no area code',
+    });
+  });
+
+  it('keeps the words beside the number', () => {
+    expect(readPhone('call after 6: 252-555-0142')).toMatchObject({ rest: 'call after 6' });
+    expect(readPhone('252-555-0142 ask for Wren')).toMatchObject({ rest: 'ask for Wren' });
+    expect(readPhone('(252) 555-0142')).toMatchObject({ rest: '' });
+  });
+
+  it('finds a second number in the same cell', () => {
+    expect(readPhone('H 252-555-0142 / W 252.555.0143')).toMatchObject({
+      number: { e164: OURS },
+      others: [{ e164: '+12525550143' }],
+    });
+  });
+
+  it.each([
+    '',
+    '  ',
+    'n/a',
+    'none',
+    '?',
+    '--',
+    'unknown',
+    'no phone',
+    'Refused',
+    "didn't give one",
+  ])('takes %p for no number', (raw) => {
+    expect(readPhone(raw)).toEqual({ kind: 'blank' });
+  });
+
+  it.each(['BLOCKED', 'private', 'Restricted', 'No Caller ID', 'anonymous'])(
+    'takes %p for a withheld number',
+    (raw) => {
+      expect(readPhone(raw)).toEqual({ kind: 'withheld' });
+    },
+  );
+
+  it.each([
+    ['252-555-014', '9 digits'],
+    ['252-555-01422', '11 digits|cannot|can exist'],
+    ['2.53E+09', 'spreadsheet'],
+    ['152-555-0142', 'exist'],
+    ['000-000-0000', 'exist'],
+    ['9999999999', 'exist'],
+    ['ask the neighbour', 'no phone number'],
+  ])('refuses %p and says why', (raw, why) => {
+    const reading = readPhone(raw, { areaCode: null });
+    expect(reading).toMatchObject({ kind: 'unreadable' });
+    expect(reading.kind === 'unreadable' && reading.why).toMatch(new RegExp(why));
+  });
+
+  it('reads a number from abroad by its own country’s rules', () => {
+    // Ofcom sets 020 7946 0000 to 0999 aside for drama.
+    expect(e164('+44 20 7946 0018')).toBe('+442079460018');
+  });
+});
+
+describe('findPhones', () => {
+  it('finds the numbers of a message and nothing else', () => {
+    expect(
+      findPhones('Out since 9:15 12/01/2026, 27999-1234. Try neighbor 252-555-0150 or 555-0151', {
+        areaCode: '252',
+      }),
+    ).toEqual([
+      { e164: '+12525550150', extension: null },
+      { e164: '+12525550151', extension: null },
+    ]);
+  });
+});
+
+describe('formatPhone', () => {
+  it('writes a number as its country does', () => {
+    expect(formatPhone(OURS)).toBe('(252) 555-0142');
+    expect(formatPhone('+442079460018')).toBe('+44 20 7946 0018');
+  });
+});
