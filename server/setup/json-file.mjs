@@ -1,7 +1,8 @@
-import { mkdir, open, readFile, rename } from 'node:fs/promises';
+import { mkdir, readFile, rename, writeFile } from 'node:fs/promises';
 import path from 'node:path';
 
 import { withLock } from './lock.mjs';
+import { explainFileError } from './problem.mjs';
 
 /** A JSON file's content, or an empty object when there is none yet. */
 export async function readJson(file) {
@@ -10,22 +11,22 @@ export async function readJson(file) {
   } catch (error) {
     // No file yet: the first start.
     if (error.code === 'ENOENT') return {};
-    throw error;
+    throw explainFileError(error, path.dirname(file));
   }
 }
 
 /** Replaces a JSON file in one step, so that a killed run never leaves half of it. Owner-only. */
 export async function writeJson(file, content) {
-  await mkdir(path.dirname(file), { recursive: true });
+  const folder = path.dirname(file);
   const draft = `${file}.${process.pid}`;
-  const handle = await open(draft, 'w', 0o600);
   try {
-    await handle.writeFile(`${JSON.stringify(content, null, 2)}\n`);
-    await handle.sync();
-  } finally {
-    await handle.close();
+    await mkdir(folder, { recursive: true });
+    const text = `${JSON.stringify(content, null, 2)}\n`;
+    await writeFile(draft, text, { mode: 0o600, flush: true });
+    await rename(draft, file);
+  } catch (error) {
+    throw explainFileError(error, folder);
   }
-  await rename(draft, file);
 }
 
 /** Changes a JSON file while no other process of this data folder changes it. */

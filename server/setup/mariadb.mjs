@@ -1,5 +1,5 @@
 import { spawn } from 'node:child_process';
-import { chmod, mkdir, open, readFile, readdir, rm, writeFile } from 'node:fs/promises';
+import { chmod, mkdir, open, readFile, rm, writeFile } from 'node:fs/promises';
 import net from 'node:net';
 import os from 'node:os';
 import path from 'node:path';
@@ -12,6 +12,7 @@ import { accountsFile, settingsFile } from './mariadb-settings.mjs';
 import { dataFolder, shortName, shown } from './paths.mjs';
 import { nextFreePort } from './ports.mjs';
 import { explainFileError, SetupProblem } from './problem.mjs';
+import { findProcesses, isAlive } from './processes.mjs';
 import { lastLines, run } from './run.mjs';
 import { readSecrets } from './secrets.mjs';
 
@@ -21,10 +22,14 @@ const STOP_SECONDS = 30;
 /** A Unix socket's path holds 107 characters; a deep checkout needs more. */
 const SOCKET_PATH_LIMIT = 100;
 
-/** The two private servers: the product's, which loses nothing, and the tests', which never waits for the disk. */
+/**
+ * The private servers: the product's, which loses nothing; the tests', which never waits for the disk;
+ * and the benches', which is measured with the product's settings and on databases of its own.
+ */
 export const SERVERS = {
   product: { name: 'mariadb', firstPort: 3316, fast: false, database: 'thawline' },
   tests: { name: 'mariadb-test', firstPort: 3317, fast: true, testPrefix: 'thawline_test' },
+  bench: { name: 'mariadb-bench', firstPort: 3318, fast: false, testPrefix: 'thawline_test' },
 };
 
 /**
@@ -77,6 +82,7 @@ export async function stopMariadb(server) {
   const pid = await runningPid(place);
   if (!pid) return false;
   process.kill(pid, 'SIGTERM');
+  // Never killed by force: it may have much to write, and a slow stop is better than a recovery.
   for (let waited = 0; waited < STOP_SECONDS * 1000; waited += 50) {
     if (!isAlive(pid)) return true;
     await sleep(50);
@@ -180,34 +186,16 @@ async function start(mariadbd, server, place, port, secrets) {
   return child.pid;
 }
 
-/**
- * The process id of this folder's server, or null. Found by its command line and not by a pid file: a
- * run that is killed while the server starts leaves a server without one.
- */
+/** The process id of this folder's server, or null. */
 async function runningPid(place) {
-  const wanted = `--defaults-file=${place.settings}\0`;
-  for (const entry of await readdir('/proc')) {
-    if (!/^\d+$/.test(entry)) continue;
-    // The process may end while we look.
-    const commandLine = await readFile(`/proc/${entry}/cmdline`, 'utf8').catch(() => '');
-    if (commandLine.includes(wanted)) return Number(entry);
-  }
-  return null;
+  const [pid] = await findProcesses(`--defaults-file=${place.settings}\0`);
+  return pid ?? null;
 }
 
 /** The port that the settings of a running server give. */
 async function portInSettings(place) {
   const [, port] = /^port = (\d+)$/m.exec(await readFile(place.settings, 'utf8')) ?? [];
   return Number(port);
-}
-
-function isAlive(pid) {
-  try {
-    process.kill(pid, 0);
-    return true;
-  } catch {
-    return false;
-  }
 }
 
 /** Ready is the first byte of the server's greeting: it greets nobody before the accounts are made. */

@@ -2,6 +2,10 @@ import { spawn } from 'node:child_process';
 
 import { root } from './paths.mjs';
 
+/** Programs that run now; none may outlive this script when it is told to stop. */
+const running = new Set();
+process.on('exit', () => running.forEach((child) => child.kill()));
+
 /**
  * Runs a program to its end and collects what it says.
  *
@@ -16,6 +20,7 @@ export function run(command, args, { env, cwd = root, onOutput } = {}) {
       env: { ...process.env, ...env },
       stdio: ['ignore', 'pipe', 'pipe'],
     });
+    running.add(child);
     let output = '';
     const collect = (data) => {
       output += data;
@@ -23,8 +28,14 @@ export function run(command, args, { env, cwd = root, onOutput } = {}) {
     };
     child.stdout.on('data', collect);
     child.stderr.on('data', collect);
-    child.once('error', reject);
-    child.once('close', (code) => resolve({ code: code ?? 1, output }));
+    child.once('error', (error) => {
+      running.delete(child);
+      reject(error);
+    });
+    child.once('close', (code) => {
+      running.delete(child);
+      resolve({ code: code ?? 1, output });
+    });
   });
 }
 

@@ -1,0 +1,19 @@
+import { existsSync } from 'node:fs';
+import path from 'node:path';
+
+import { root } from './paths.mjs';
+
+/** Each program of the server; each becomes dist/server/<name>.js. */
+const ENTRIES = [
+  'server/main.ts',
+  'server/workers/planner-worker.ts',
+  'server/workers/pockets-worker.ts',
+  'server/night-log/import-worker.ts',
+  'server/region/region-cli.ts',
+  'server/db/migrate-cli.ts',
+  'server/check-invariants.ts',
+  'server/fakes/fakes-main.ts',
+];
+
+/** Those that exist. */
+export const serverEntries = () => ENTRIES.filter((entry) => existsSync(path.join(root, entry)));
