@@ -7,7 +7,7 @@ import { SetupProblem } from './problem.mjs';
  */
 export async function bundle(entries, outdir) {
   // Imported here and not above: this module is loaded before the packages are installed.
-  const { build } = await import('esbuild');
+  const { build, stop } = await import('esbuild');
   try {
     await build({
       absWorkingDir: root,
@@ -29,5 +29,8 @@ export async function bundle(entries, outdir) {
       location ? `${location.file}:${location.line}: ${text}` : text,
     );
     throw new SetupProblem(`The server does not build:\n${faults.join('\n')}`);
+  } finally {
+    // esbuild's helper process would keep the folder in use as long as this script runs.
+    await stop();
   }
 }

@@ -38,17 +38,22 @@ function stopAll() {
   return stopping;
 }
 
-for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP']) {
-  process.on(signal, () => {
-    if (!stopping) say('\n  stopping');
-    void stopAll().then(
-      () => process.exit(0),
-      (error) => {
-        process.stderr.write(`${error.message}\n`);
-        process.exit(1);
-      },
-    );
-  });
+function stopAndExit() {
+  if (!stopping) say('\n  stopping');
+  void stopAll().then(
+    () => process.exit(0),
+    (error) => {
+      process.stderr.write(`${error.message}\n`);
+      process.exit(1);
+    },
+  );
+}
+
+for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP']) process.on(signal, stopAndExit);
+if (process.env.npm_lifecycle_event) {
+  // A supervisor's signal ends npm and its shell, which do not pass it on: then our parent changes.
+  const parent = process.ppid;
+  setInterval(() => process.ppid !== parent && stopAndExit(), 500).unref();
 }
 
 await runMain(async () => {
