@@ -1,0 +1,432 @@
+import { chanceOf, mix, noise2, seedOf } from './chance';
+import { CheapestFirst } from './least-cost';
+import { between, distance, rounded, simplified, type Point } from './plane';
+import { numbersAlong, type StreetClass, type StreetLine, type StreetPart } from './street-line';
+import { HALF_HEIGHT, HALF_WIDTH, type Terrain } from './terrain';
+import type { TownPlan } from './town-grid';
+import type { Town } from './towns';
+
+/** Metres between the places through which a road may pass. */
+const CELL = 260;
+const COLUMNS = Math.floor((2 * HALF_WIDTH) / CELL);
+const ROWS = Math.floor((2 * HALF_HEIGHT) / CELL);
+/** Nearer to water than this a road counts as a bridge, in metres. */
+const BRIDGE_CLEARANCE = 48;
+/** One rural house number per so many metres. */
+const METRES_PER_NUMBER = 4;
+
+interface Wish {
+  readonly from: Point;
+  readonly to: Point;
+  /** Ends of town streets to join on; null at a crossing in the country. */
+  readonly fromGate: Point | null;
+  readonly toGate: Point | null;
+  readonly streetClass: StreetClass;
+  readonly part: StreetPart;
+  readonly street: string;
+  /** How many times dearer a metre over water is. */
+  readonly waterCost: number;
+}
+
+/**
+ * Roads between towns and through the country. Each is the cheapest way over rough ground, where
+ * water is dear and roads that exist already are cheap, so that roads bend, join and share.
+ */
+export function layOutCountry(
+  seed: number,
+  towns: readonly Town[],
+  plans: readonly TownPlan[],
+  terrain: Terrain,
+): StreetLine[] {
+  const network = new RoadNetwork(seed, towns, terrain);
+  for (const wish of townLinks(towns, plans)) network.build(wish);
+  for (const wish of ruralLinks(seed, towns, terrain, network)) network.build(wish);
+  return network.lines();
+}
+
+class RoadNetwork {
+  private readonly places: Point[] = [];
+  private readonly clearances: Float64Array;
+  private readonly isTown: Uint8Array;
+  private readonly built = new Set<number>();
+  private readonly runs: {
+    wish: Wish;
+    nodes: number[];
+    gateAtStart: Point | null;
+    gateAtEnd: Point | null;
+  }[] = [];
+
+  constructor(
+    private readonly seed: number,
+    towns: readonly Town[],
+    private readonly terrain: Terrain,
+  ) {
+    const jitter = seedOf(seed, 'road-places');
+    this.clearances = new Float64Array(COLUMNS * ROWS);
+    this.isTown = new Uint8Array(COLUMNS * ROWS);
+    for (let j = 0; j < ROWS; j++) {
+      for (let i = 0; i < COLUMNS; i++) {
+        const k = j * COLUMNS + i;
+        const p: Point = [
+          i * CELL - HALF_WIDTH + (mix(i, j, jitter) / 4294967296 - 0.5) * CELL * 0.55,
+          j * CELL - HALF_HEIGHT + (mix(i, j, jitter + 1) / 4294967296 - 0.5) * CELL * 0.55,
+        ];
+        this.places.push(p);
+        this.clearances[k] = terrain.clearance(p);
+        if (
+          towns.some(
+            (town) => distance(p, town.at) < town.radius * (town.isOnBarrier ? 1 : 1.12) + 60,
+          )
+        )
+          this.isTown[k] = 1;
+      }
+    }
+  }
+
+  isOpenCountry(p: Point): boolean {
+    const k = this.cellAt(p);
+    return this.isTown[k] === 0 && this.clearances[k]! > 260;
+  }
+
+  build(wish: Wish): void {
+    const path = this.cheapest(this.cellAt(wish.from), this.cellAt(wish.to), wish.waterCost);
+    if (!path) return;
+    // Only stretches that did not exist yet become lines of this road.
+    let run: number[] = [];
+    let isFirst = true;
+    const flush = (isLast: boolean): void => {
+      if (run.length > 1 || (isFirst && wish.fromGate) || (isLast && wish.toGate)) {
+        const nodes = run.length > 0 ? run : [isLast ? path[path.length - 1]! : path[0]!];
+        this.runs.push({
+          wish,
+          nodes,
+          gateAtStart: isFirst ? wish.fromGate : null,
+          gateAtEnd: isLast ? wish.toGate : null,
+        });
+      }
+      isFirst = false;
+      run = [];
+    };
+    for (let i = 1; i < path.length; i++) {
+      const edge = edgeKey(path[i - 1]!, path[i]!);
+      if (this.built.has(edge)) {
+        if (run.length > 0 || isFirst) flush(false);
+        continue;
+      }
+      this.built.add(edge);
+      if (run.length === 0) run.push(path[i - 1]!);
+      run.push(path[i]!);
+    }
+    flush(true);
+  }
+
+  /** All roads as smooth lines, cut where others join so that joints stay joints. */
+  lines(): StreetLine[] {
+    const degree = new Map<number, number>();
+    const count = (node: number, by: number): void =>
+      void degree.set(node, (degree.get(node) ?? 0) + by);
+    for (const { nodes, gateAtStart, gateAtEnd } of this.runs) {
+      nodes.forEach((node, i) => count(node, i === 0 || i === nodes.length - 1 ? 1 : 2));
+      if (gateAtStart) count(nodes[0]!, 1);
+      if (gateAtEnd) count(nodes[nodes.length - 1]!, 1);
+    }
+    this.relax();
+    const result: StreetLine[] = [];
+    const measured = new Map<string, number>();
+    for (const { wish, nodes, gateAtStart, gateAtEnd } of this.runs) {
+      const pieces: Point[][] = [];
+      let piece: Point[] = gateAtStart ? [gateAtStart] : [];
+      nodes.forEach((node, i) => {
+        const p = this.places[node]!;
+        piece.push(p);
+        if (piece.length > 1 && i < nodes.length - 1 && (degree.get(node) ?? 0) > 2) {
+          pieces.push(piece);
+          piece = [p];
+        }
+      });
+      if (gateAtEnd) piece.push(gateAtEnd);
+      if (piece.length > 1) pieces.push(piece);
+      for (const points of pieces) {
+        const smooth = rounded(points, 3, false);
+        const first = measured.get(wish.street) ?? 100;
+        const numbers = numbersAlong(smooth, first, METRES_PER_NUMBER);
+        measured.set(wish.street, Math.ceil(numbers[numbers.length - 1]! / 2) * 2 + 10);
+        result.push(...this.withBridges(wish, smooth, numbers));
+      }
+    }
+    return result;
+  }
+
+  /** Draws each road's bends out a little; shared places stay shared. */
+  private relax(): void {
+    for (let round = 0; round < 3; round++) {
+      for (const { nodes } of this.runs) {
+        for (let i = 1; i < nodes.length - 1; i++) {
+          const p = this.places[nodes[i]!]!;
+          const middle = between(this.places[nodes[i - 1]!]!, this.places[nodes[i + 1]!]!, 0.5);
+          const moved = between(p, middle, 0.45);
+          const isDry = this.terrain.clearance(p) > 120;
+          if (!isDry || this.terrain.clearance(moved) > 120) this.places[nodes[i]!] = moved;
+        }
+      }
+    }
+  }
+
+  private withBridges(
+    wish: Wish,
+    points: readonly Point[],
+    numbers: readonly number[],
+  ): StreetLine[] {
+    const fine = densified(points, numbers, 20);
+    const isWet = fine.map(({ p }) => this.terrain.clearance(p) < BRIDGE_CLEARANCE);
+    const lines: StreetLine[] = [];
+    let from = 0;
+    for (let i = 1; i < fine.length; i++) {
+      const isLast = i === fine.length - 1;
+      // A span between two points is a bridge when either end is over water.
+      const isBridge = isWet[i - 1]! || isWet[i]!;
+      const nextIsBridge = !isLast && (isWet[i]! || isWet[i + 1]!);
+      if (!isLast && isBridge === nextIsBridge) continue;
+      const part = fine.slice(from, i + 1);
+      const kept = simplified(
+        part.map(({ p }) => p),
+        1.2,
+      );
+      const numberAt = new Map(part.map(({ p, number }) => [p, number]));
+      lines.push({
+        points: kept,
+        streetClass: wish.streetClass,
+        street: wish.street,
+        part: wish.part,
+        town: null,
+        numbers:
+          isBridge || wish.part === 'highway' ? null : kept.map((p) => numberAt.get(p) ?? 100),
+        isBridge,
+      });
+      from = i;
+    }
+    return lines;
+  }
+
+  private cheapest(start: number, goal: number, waterCost: number): number[] | null {
+    const best = new Map<number, number>([[start, 0]]);
+    const before = new Map<number, number>();
+    const open = new CheapestFirst();
+    const goalAt = this.places[goal]!;
+    // 0.25 is below the least factor a metre can have, so the estimate never exceeds the truth.
+    const estimate = (node: number): number => distance(this.places[node]!, goalAt) * 0.25;
+    open.push(estimate(start), start);
+    for (let top = open.pop(); top; top = open.pop()) {
+      const node = top.item;
+      if (node === goal) break;
+      const soFar = best.get(node)!;
+      if (top.cost > soFar + estimate(node) + 1e-6) continue;
+      const i = node % COLUMNS;
+      const j = (node - i) / COLUMNS;
+      for (let dj = -1; dj <= 1; dj++) {
+        for (let di = -1; di <= 1; di++) {
+          const ni = i + di;
+          const nj = j + dj;
+          if ((di === 0 && dj === 0) || ni < 0 || nj < 0 || ni >= COLUMNS || nj >= ROWS) continue;
+          const next = nj * COLUMNS + ni;
+          const cost = soFar + this.edgeCost(node, next, waterCost);
+          if (cost < (best.get(next) ?? Infinity)) {
+            best.set(next, cost);
+            before.set(next, node);
+            open.push(cost + estimate(next), next);
+          }
+        }
+      }
+    }
+    if (!best.has(goal)) return null;
+    const path = [goal];
+    for (let node = before.get(goal); node !== undefined; node = before.get(node)) path.push(node);
+    return path.reverse();
+  }
+
+  private edgeCost(a: number, b: number, waterCost: number): number {
+    const pa = this.places[a]!;
+    const pb = this.places[b]!;
+    const length = distance(pa, pb);
+    if (this.built.has(edgeKey(a, b))) return length * 0.4;
+    const middle = between(pa, pb, 0.5);
+    const dry = Math.min(this.clearances[a]!, this.clearances[b]!, this.terrain.clearance(middle));
+    const rough = 1.15 + 0.5 * noise2(middle[0] / 1_300, middle[1] / 1_300, this.seed + 11);
+    const shore = dry < BRIDGE_CLEARANCE ? waterCost : dry < 170 ? 2.6 : 1;
+    const town = this.isTown[a] || this.isTown[b] ? 7 : 1;
+    return length * rough * shore * town;
+  }
+
+  private cellAt([x, y]: Point): number {
+    const i = Math.min(COLUMNS - 1, Math.max(0, Math.round((x + HALF_WIDTH) / CELL)));
+    const j = Math.min(ROWS - 1, Math.max(0, Math.round((y + HALF_HEIGHT) / CELL)));
+    return j * COLUMNS + i;
+  }
+}
+
+const edgeKey = (a: number, b: number): number =>
+  Math.min(a, b) * (COLUMNS * ROWS) + Math.max(a, b);
+
+function densified(
+  points: readonly Point[],
+  numbers: readonly number[],
+  step: number,
+): { p: Point; number: number }[] {
+  const result: { p: Point; number: number }[] = [{ p: points[0]!, number: numbers[0]! }];
+  for (let i = 1; i < points.length; i++) {
+    const a = points[i - 1]!;
+    const b = points[i]!;
+    const pieces = Math.max(1, Math.ceil(distance(a, b) / step));
+    for (let s = 1; s <= pieces; s++) {
+      const share = s / pieces;
+      result.push({
+        p: s === pieces ? b : between(a, b, share),
+        number: numbers[i - 1]! + (numbers[i]! - numbers[i - 1]!) * share,
+      });
+    }
+  }
+  return result;
+}
+
+/** Pairs of towns with no third town inside the circle over them (Gabriel's graph), the barrier apart. */
+function townLinks(towns: readonly Town[], plans: readonly TownPlan[]): Wish[] {
+  const pairs: { a: Town; b: Town; length: number }[] = [];
+  for (const a of towns) {
+    for (const b of towns) {
+      if (b.index <= a.index || a.isOnBarrier !== b.isOnBarrier) continue;
+      const middle = between(a.at, b.at, 0.5);
+      const length = distance(a.at, b.at);
+      if (
+        towns.some(
+          (c) =>
+            c !== a &&
+            c !== b &&
+            c.isOnBarrier === a.isOnBarrier &&
+            distance(c.at, middle) < length / 2,
+        )
+      )
+        continue;
+      pairs.push({ a, b, length });
+    }
+  }
+  const mainland = towns.filter((town) => !town.isOnBarrier);
+  const rank = (pair: { a: Town; b: Town }): number =>
+    pair.a.size === 'city' ? 0 : pair.a.size === 'town' && pair.b.size === 'town' ? 1 : 2;
+  pairs.sort(
+    (p, q) =>
+      rank(p) - rank(q) || p.length - q.length || p.a.index - q.a.index || p.b.index - q.b.index,
+  );
+  const wishes: Wish[] = [];
+  const link = (
+    a: Town,
+    b: Town,
+    streetClass: StreetClass,
+    part: StreetPart,
+    waterCost: number,
+  ): void => {
+    const [fromGate, from] = gateToward(plans[a.index]!, a, b.at);
+    const [toGate, to] = gateToward(plans[b.index]!, b, a.at);
+    wishes.push({
+      from,
+      to,
+      fromGate,
+      toGate,
+      streetClass,
+      part,
+      street: `c/${a.index}-${b.index}`,
+      waterCost,
+    });
+  };
+  for (const pair of pairs.filter(({ a }) => !a.isOnBarrier)) {
+    const kind = rank(pair);
+    link(pair.a, pair.b, kind === 0 ? 'primary' : 'secondary', kind === 0 ? 'highway' : 'road', 11);
+  }
+  // Inlets stay without a bridge: water is dearer along the strip than any way round.
+  const [southern, middle, northern] = towns.filter((town) => town.isOnBarrier) as [
+    Town,
+    Town,
+    Town,
+  ];
+  link(middle, northern, 'secondary', 'road', 60);
+  for (const village of [southern, northern]) {
+    const nearest = [...mainland].sort(
+      (a, b) => distance(a.at, village.at) - distance(b.at, village.at),
+    )[0]!;
+    link(nearest, village, 'primary', 'highway', 5);
+  }
+  return wishes;
+}
+
+/** The gate of a town that faces a place best, with the point outside it. */
+function gateToward(plan: TownPlan, town: Town, goal: Point): [Point, Point] {
+  let best = plan.gates[0]!;
+  let bestScore = -Infinity;
+  for (const gate of plan.gates) {
+    const gx = gate.outside[0] - town.at[0];
+    const gy = gate.outside[1] - town.at[1];
+    const score =
+      (gx * (goal[0] - town.at[0]) + gy * (goal[1] - town.at[1])) / Math.sqrt(gx * gx + gy * gy);
+    if (score > bestScore) {
+      bestScore = score;
+      best = gate;
+    }
+  }
+  return [best.at, best.outside];
+}
+
+/** A loose lattice of crossings in open country, each joined to a few neighbours. */
+function ruralLinks(
+  seed: number,
+  towns: readonly Town[],
+  terrain: Terrain,
+  network: RoadNetwork,
+): Wish[] {
+  const chance = chanceOf(seed, 'rural');
+  const spots: Point[] = [];
+  const pitch = 2_000;
+  for (let y = -HALF_HEIGHT; y < HALF_HEIGHT; y += pitch) {
+    for (let x = -HALF_WIDTH; x < HALF_WIDTH; x += pitch) {
+      const p: Point = [x + chance.between(-650, 650), y + chance.between(-650, 650)];
+      if (Math.abs(p[0] - terrain.barrierAt(p[1])[0]) < 900) continue;
+      if (network.isOpenCountry(p)) spots.push(p);
+    }
+  }
+  const wishes: Wish[] = [];
+  spots.forEach((a, i) => {
+    spots.forEach((b, j) => {
+      if (j <= i) return;
+      const length = distance(a, b);
+      if (length > 3_600) return;
+      const middle = between(a, b, 0.5);
+      if (spots.some((c) => c !== a && c !== b && distance(c, middle) < length / 2)) return;
+      if (!chance.happens(0.72)) return;
+      wishes.push(
+        ruralWish(a, b, `r/${i}-${j}`, chance.happens(0.4) ? 'tertiary' : 'unclassified'),
+      );
+    });
+  });
+  // Towns get a country road or two besides the ones to other towns.
+  for (const town of towns.filter(({ isOnBarrier }) => !isOnBarrier)) {
+    const near = spots
+      .map((p) => ({ p, metres: distance(p, town.at) }))
+      .filter(({ metres }) => metres < town.radius + 2_600)
+      .sort((a, b) => a.metres - b.metres)
+      .slice(0, 2);
+    near.forEach(({ p }, k) => {
+      const other = spots.find((q) => q !== p && distance(p, q) < 2_800);
+      if (other) wishes.push(ruralWish(p, other, `r/t${town.index}-${k}`, 'tertiary'));
+    });
+  }
+  return wishes;
+}
+
+const ruralWish = (from: Point, to: Point, street: string, streetClass: StreetClass): Wish => ({
+  from,
+  to,
+  fromGate: null,
+  toGate: null,
+  streetClass,
+  part: 'rural',
+  street,
+  waterCost: 14,
+});
