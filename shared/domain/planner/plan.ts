@@ -83,8 +83,8 @@ function temperatures(c: CompiledProblem): readonly [hot: number, cold: number] 
   const meanDrive = Math.max(1, count > 0 ? (seconds / count) * c.travelPrice : 1);
   return [meanDrive * HOT, meanDrive * COLD];
 }
-const HOT = 1;
-const COLD = 0.01;
+const HOT = 3;
+const COLD = 0.1;
 
 function report(search: Search, c: CompiledProblem, iterations: number): Plan {
   const { jobs, technicians } = c.problem;
