@@ -141,15 +141,15 @@ const iceAdded = ({ dryIce, fill, roomF, door }: FactsInHours): FreezerEvent[] =
           `${pounds} lb of dry ice in ${cubicFeet} cu ft after ${hoursInWords(hours)}: ` +
           `${hoursInWords(heldHours)} from then (USDA FSIS, FDA: 50 lb in a full 18 cu ft, 2 days)`,
         apply: (span) => {
-          // Too late, or less than what is left anyway: ice never shortens and never revives.
-          if (hours >= span.lostHours || hours + heldHours <= span.lostHours) return span;
+          // Ice that comes too late revives nothing, and a little ice never shortens anything.
+          if (hours >= span.lostHours) return span;
           const warmHours = ACT_SHARE * heldHours * roomFactor(roomF, THAW_F) * doorFactor(door);
           const isStillSafe = hours < span.atRiskHours;
           return {
             atRiskHours: isStillSafe
               ? Math.max(span.atRiskHours, hours + warmHours)
               : span.atRiskHours,
-            lostHours: hours + heldHours,
+            lostHours: Math.max(span.lostHours, hours + heldHours),
           };
         },
       };
