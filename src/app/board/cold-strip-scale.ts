@@ -194,3 +194,33 @@ export function stripFactsOf(call: {
     compartments: call.units.flatMap((unit) => unit.compartments),
   };
 }
+
+/** Room left and right of the ruler, so that a glyph at either end is not cut. */
+export const STRIP_INSET_PX = 11;
+
+/**
+ * The ruler as a CSS background. One gradient serves every row, which is far cheaper than lines
+ * drawn in each of them.
+ */
+export function rulerBackground(): string {
+  const at = (share: number, nudge: number) =>
+    `calc(${STRIP_INSET_PX + nudge}px + (100% - ${2 * STRIP_INSET_PX}px) * ${share.toFixed(4)})`;
+  const stops: string[] = [];
+  // What has been and what is far off stand on a ground of their own.
+  let ground = 'color-mix(in srgb, var(--thaw-lost-ground) 70%, transparent)';
+  for (const hours of RULER_HOURS) {
+    const share = shareOfHours(hours);
+    const half = hours === 0 ? 1 : 0.5;
+    const colour = lineColour(hours);
+    stops.push(`${ground} 0 ${at(share, -half)}`, `${colour} 0 ${at(share, half)}`);
+    if (hours === 0) ground = 'transparent';
+    if (hours === 12) ground = 'color-mix(in srgb, var(--thaw-lost-ground) 35%, transparent)';
+  }
+  stops.push(`${ground} 0`);
+  return `linear-gradient(to right, ${stops.join(', ')})`;
+}
+
+function lineColour(hours: number): string {
+  if (hours === 0) return 'var(--thaw-ink)';
+  return hours === 12 ? 'color-mix(in srgb, var(--thaw-rule-strong) 60%, transparent)' : 'var(--thaw-rule)';
+}
