@@ -1,3 +1,6 @@
+/** Where the server takes texts from phones; the fake posts to the address as the server knows it. */
+const INBOUND_TEXTS = '/webhooks/texts/inbound';
+
 /**
  * The environment for the server: what the person set wins, then what was generated or found here.
  *
@@ -15,7 +18,8 @@ export function serverEnvironment({ port, fakesPort, database, secrets }) {
     THAWLINE_TEXT_FROM: '+12015550100',
     ...(fakesPort && {
       THAWLINE_TEXT_BASE_URL: `http://127.0.0.1:${fakesPort}`,
-      THAWLINE_FAKES_PORT: String(fakesPort),
+      THAWLINE_FAKE_TEXTS_PORT: String(fakesPort),
+      THAWLINE_TEXT_INBOUND_URL: `http://localhost:${port}${INBOUND_TEXTS}`,
     }),
     ...(database && {
       THAWLINE_DB_HOST: database.host,

@@ -86,8 +86,7 @@ async function start() {
 
   const fakesPort = usesFakeTexts() ? await nextFreePort(port + 1) : null;
   const env = serverEnvironment({ port, fakesPort, database, secrets: await readSecrets() });
-  if (fakesPort)
-    await step('texts', () => run('fakes-main', env, fakesPort, '/healthz', FAKES_SECONDS));
+  if (fakesPort) await step('texts', () => run('fakes-main', env, fakesPort, '/', FAKES_SECONDS));
   const server = await step('server', () => run('main', env, port, '/readyz', SERVER_SECONDS));
 
   await announce(env, fakesPort, server);

@@ -1,0 +1,205 @@
+import path from 'node:path';
+
+import angular from 'angular-eslint';
+import tseslint from 'typescript-eslint';
+
+import noUntypedQuery from './eslint-rules/no-untyped-query.cjs';
+
+const SERVER = ['server/**/*.ts'];
+const CLIENT = ['src/**/*.ts'];
+const DOMAIN = ['shared/domain/**/*.ts'];
+const SPECS = ['test/**/*.ts', 'src/**/*.spec.ts'];
+
+const NODE_GLOBALS = {
+  AbortSignal: 'readonly',
+  Buffer: 'readonly',
+  URL: 'readonly',
+  __dirname: 'readonly',
+  console: 'readonly',
+  fetch: 'readonly',
+  module: 'writable',
+  process: 'readonly',
+  require: 'readonly',
+  setInterval: 'readonly',
+  setTimeout: 'readonly',
+  clearInterval: 'readonly',
+  clearTimeout: 'readonly',
+};
+
+/** A focused test hides all others from the run. */
+const FOCUSED_TESTS = [
+  {
+    selector:
+      "CallExpression[callee.property.name='only'][callee.object.name=/^(it|test|describe)$/]",
+    message: 'A focused test hides all others: take the .only away.',
+  },
+  {
+    selector: 'CallExpression[callee.name=/^(fit|fdescribe|xit|xtest|xdescribe)$/]',
+    message: 'Neither focused nor switched-off tests are committed.',
+  },
+];
+
+/** Rules that a wrong import breaks, by kind of file. `allowTypeImports` where a type does no harm. */
+const imports = (...patterns) => ['error', { patterns }];
+const EXPRESS = {
+  group: ['express', 'express-*', 'passport', 'passport-*', 'helmet', 'compression'],
+  message: 'Only *-routes.ts, app.ts, staff sign-in and http/ know HTTP; hand plain values down.',
+};
+const SOCKETS = {
+  group: ['socket.io', 'socket.io/*', 'engine.io'],
+  message: 'Only realtime/ knows sockets; announce a change through it.',
+};
+
+export default tseslint.config(
+  { ignores: ['dist/', 'node_modules/', '.angular/', '.data/', 'coverage/', 'tiles/'] },
+
+  {
+    files: ['**/*.mjs', '**/*.cjs'],
+    languageOptions: { globals: NODE_GLOBALS },
+    rules: {
+      'no-undef': 'error',
+      'no-unused-vars': ['error', { argsIgnorePattern: '^_', caughtErrors: 'none' }],
+      'prefer-const': 'error',
+      eqeqeq: 'error',
+    },
+  },
+
+  {
+    files: ['**/*.ts'],
+    extends: [...tseslint.configs.recommendedTypeChecked],
+    plugins: { thawline: { rules: { 'no-untyped-query': noUntypedQuery } } },
+    languageOptions: {
+      parserOptions: {
+        tsconfigRootDir: path.resolve(import.meta.dirname, '..'),
+        project: [
+          'shared/tsconfig.json',
+          'server/tsconfig.json',
+          'test/tsconfig.json',
+          'src/tsconfig.app.json',
+          'src/tsconfig.spec.json',
+        ],
+      },
+    },
+    rules: {
+      eqeqeq: ['error', 'always', { null: 'ignore' }],
+      '@typescript-eslint/consistent-type-imports': [
+        'error',
+        { fixStyle: 'inline-type-imports', disallowTypeAnnotations: false },
+      ],
+      '@typescript-eslint/no-explicit-any': 'error',
+      // Express knows an error handler by its four arguments, used or not.
+      '@typescript-eslint/no-unused-vars': [
+        'error',
+        { argsIgnorePattern: '^_', varsIgnorePattern: '^_', caughtErrors: 'none' },
+      ],
+      // A router's handlers are async; Express 5 takes their rejections.
+      '@typescript-eslint/no-misused-promises': ['error', { checksVoidReturn: false }],
+      '@typescript-eslint/restrict-template-expressions': [
+        'error',
+        { allowNumber: true, allowBoolean: true },
+      ],
+      // An async method without an await still keeps the promise of its interface.
+      '@typescript-eslint/require-await': 'off',
+      // Modules here are objects of plain functions; handing one on by name loses no `this`.
+      '@typescript-eslint/unbound-method': 'off',
+      'thawline/no-untyped-query': 'error',
+    },
+  },
+
+  {
+    files: DOMAIN,
+    rules: {
+      'no-restricted-properties': [
+        'error',
+        { object: 'Math', property: 'random', message: 'The domain has no dice: take a seed.' },
+        { object: 'Date', property: 'now', message: 'The domain has no clock: take the time.' },
+        {
+          object: 'performance',
+          property: 'now',
+          message: 'The domain has no clock: take the time.',
+        },
+      ],
+      'no-restricted-syntax': [
+        'error',
+        {
+          selector: "NewExpression[callee.name='Date'][arguments.length=0]",
+          message: 'The domain has no clock: take the time.',
+        },
+      ],
+    },
+  },
+
+  {
+    files: SERVER,
+    ignores: ['server/realtime/**', 'server/fakes/**'],
+    rules: {
+      '@typescript-eslint/no-restricted-imports': imports(EXPRESS, SOCKETS),
+      'no-restricted-syntax': [
+        'error',
+        {
+          selector:
+            "CallExpression[callee.property.name='emit'][callee.object.type!='ThisExpression']",
+          message: 'Only realtime/ emits; announce a change through it.',
+        },
+        {
+          selector: "CallExpression[callee.property.name='transaction']",
+          message: 'Only db/transaction.ts opens a transaction: use inTransaction.',
+        },
+      ],
+    },
+  },
+  {
+    // These know HTTP. They still know no sockets.
+    files: [
+      'server/app.ts',
+      'server/**/*-routes.ts',
+      'server/http/**/*.ts',
+      'server/staff/sign-in.ts',
+      'server/staff/session*.ts',
+    ],
+    rules: { '@typescript-eslint/no-restricted-imports': imports(SOCKETS) },
+  },
+  { files: ['server/db/*.ts'], rules: { 'no-restricted-syntax': 'off' } },
+
+  {
+    files: CLIENT,
+    extends: [...angular.configs.tsRecommended],
+    processor: angular.processInlineTemplates,
+    rules: {
+      '@angular-eslint/component-selector': [
+        'error',
+        { type: 'element', prefix: 'thaw', style: 'kebab-case' },
+      ],
+      '@angular-eslint/directive-selector': [
+        'error',
+        { type: 'attribute', prefix: 'thaw', style: 'camelCase' },
+      ],
+      '@angular-eslint/prefer-on-push-component-change-detection': 'error',
+      // A component's name says which part of the screen it is, without a suffix.
+      '@angular-eslint/component-class-suffix': 'off',
+      '@angular-eslint/directive-class-suffix': 'off',
+      '@typescript-eslint/no-restricted-imports': imports({
+        group: ['@shared/contract/*', '!@shared/contract/paths'],
+        allowTypeImports: true,
+        message: 'Types only: the validation library stays out of the browser.',
+      }),
+    },
+  },
+  {
+    files: ['src/**/*.html'],
+    extends: [...angular.configs.templateRecommended, ...angular.configs.templateAccessibility],
+  },
+
+  {
+    files: SPECS,
+    rules: {
+      'no-restricted-syntax': ['error', ...FOCUSED_TESTS],
+      // Replies of the server under test are read as they come; the expectation checks their shape.
+      '@typescript-eslint/no-unsafe-assignment': 'off',
+      '@typescript-eslint/no-unsafe-member-access': 'off',
+      '@typescript-eslint/no-unsafe-argument': 'off',
+      '@typescript-eslint/no-unsafe-call': 'off',
+      '@typescript-eslint/no-unsafe-return': 'off',
+    },
+  },
+);
