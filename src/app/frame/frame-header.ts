@@ -1,0 +1,42 @@
+import { ChangeDetectionStrategy, Component, computed, DestroyRef, inject } from '@angular/core';
+import { Router, RouterLink, RouterLinkActive } from '@angular/router';
+import { Clock } from '../core/clock';
+import { Keys } from '../core/keys';
+import { Session } from '../core/session';
+import { ClockTimePipe } from '../core/zone';
+import { AccountMenu } from './account-menu';
+import { DESTINATIONS } from './destinations';
+import { LinkState } from './link-state';
+
+/** Which storm, whether it is live, what time it is there, and where one can go. */
+@Component({
+  selector: 'thaw-frame-header',
+  imports: [AccountMenu, ClockTimePipe, LinkState, RouterLink, RouterLinkActive],
+  templateUrl: './frame-header.html',
+  styleUrl: './frame-header.scss',
+  changeDetection: ChangeDetectionStrategy.OnPush,
+})
+export class FrameHeader {
+  private readonly router = inject(Router);
+  protected readonly session = inject(Session);
+  protected readonly clock = inject(Clock);
+
+  protected readonly destinations = computed(() => {
+    const user = this.session.user();
+    if (!user || user.mustChangePassword) return [];
+    return DESTINATIONS.filter((destination) => destination.who.includes(user.role));
+  });
+
+  constructor() {
+    inject(Keys).register(
+      DESTINATIONS.map(({ path, name, key }) => ({
+        keys: `g ${key}`,
+        does: name,
+        scope: 'Go to',
+        run: () => void this.router.navigateByUrl(path),
+        when: () => this.destinations().some((destination) => destination.path === path),
+      })),
+      inject(DestroyRef),
+    );
+  }
+}
