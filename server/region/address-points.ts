@@ -1,0 +1,166 @@
+import Flatbush from 'flatbush';
+import { linesOf, type LonLat, type OsmExtract } from './osm-extract';
+import type { Tags } from './osm-model';
+import { placeOf, roadClassOf } from './map-layers';
+
+export interface AddressPoint {
+  readonly at: LonLat;
+  /** As written: '1210', '218-09', '12A'. */
+  readonly number: string;
+  readonly street: string;
+  readonly city: string;
+  readonly postcode: string;
+  /** Number of flats behind the door; 1 when nothing is said. */
+  readonly flats: number;
+}
+
+export interface NamedStreet {
+  readonly name: string;
+  readonly city: string;
+  /** A place on the street, about its middle. */
+  readonly at: LonLat;
+}
+
+/** Where two named streets meet. */
+export interface StreetCorner {
+  readonly first: string;
+  readonly second: string;
+  readonly city: string;
+  readonly at: LonLat;
+}
+
+export interface PlaceName {
+  readonly name: string;
+  readonly kind: string;
+  readonly city: string;
+  readonly at: LonLat;
+}
+
+export interface AddressBook {
+  readonly addresses: readonly AddressPoint[];
+  readonly streets: readonly NamedStreet[];
+  readonly corners: readonly StreetCorner[];
+  readonly places: readonly PlaceName[];
+}
+
+/** Place kinds whose name serves as the city of an address that has none. */
+const CITY_KINDS = ['city', 'town', 'village', 'suburb', 'borough', 'hamlet', 'neighbourhood'];
+
+/** Takes addresses, streets, corners and named places out of an extract. */
+export function addressBookOf(extract: OsmExtract): AddressBook {
+  const towns = extract.namedNodes.filter(({ tags }) => tags['name'] && CITY_KINDS.includes(tags['place'] ?? ''));
+  const townAt = nearestName(towns.map(({ at, tags }) => ({ at, name: tags['name']! })));
+  const addresses = withoutRepeats(rawAddresses(extract, townAt));
+  const addressCity = nearestName(addresses.map(({ at, city }) => ({ at, name: city })));
+  // Most addresses name their city; a road between them belongs where its houses do.
+  const cityAt = (at: LonLat): string => addressCity(at) || townAt(at);
+  const { streets, corners } = streetsOf(extract, addresses, cityAt);
+  const places = extract.namedNodes.flatMap(({ at, tags }): PlaceName[] => {
+    const place = placeOf(tags);
+    return place ? [{ name: tags['name']!, kind: place.kind, city: tags['addr:city'] ?? (tags['place'] ? '' : cityAt(at)), at }] : [];
+  });
+  return { addresses, streets, corners, places };
+}
+
+/** The name of the nearest of a set of points; empty when there is none. */
+function nearestName(points: readonly { readonly at: LonLat; readonly name: string }[]): (at: LonLat) => string {
+  if (points.length === 0) return () => '';
+  const squeeze = Math.cos((points[0]!.at[1] * Math.PI) / 180);
+  const index = new Flatbush(points.length);
+  for (const { at } of points) index.add(at[0] * squeeze, at[1]);
+  index.finish();
+  return ([lon, lat]) => points[index.neighbors(lon * squeeze, lat, 1)[0] ?? 0]?.name ?? '';
+}
+
+function rawAddresses(extract: OsmExtract, townAt: (at: LonLat) => string): AddressPoint[] {
+  const found: AddressPoint[] = [];
+  const add = (at: LonLat, tags: Tags): void => {
+    const street = tags['addr:street'] ?? tags['addr:place'];
+    const numbers = tags['addr:housenumber'];
+    if (!street || !numbers) return;
+    // One building may carry several numbers: "12;14".
+    for (const number of numbers.split(/[;,]/).map((part) => part.trim())) {
+      if (number === '') continue;
+      found.push({
+        at,
+        number,
+        street: street.trim(),
+        city: (tags['addr:city'] ?? townAt(at)).trim(),
+        postcode: (tags['addr:postcode'] ?? '').trim(),
+        flats: flatsIn(tags['addr:flats']),
+      });
+    }
+  };
+  for (const { at, tags } of extract.namedNodes) if (tags['addr:housenumber']) add(at, tags);
+  for (const way of extract.ways.values()) {
+    if (!way.tags['addr:housenumber']) continue;
+    const at = middleOf(linesOf(extract, way).flat());
+    if (at) add(at, way.tags);
+  }
+  return found;
+}
+
+function middleOf(points: readonly LonLat[]): LonLat | null {
+  if (points.length === 0) return null;
+  const lons = points.map(([lon]) => lon);
+  const lats = points.map(([, lat]) => lat);
+  const middle = (values: readonly number[]): number => Math.round(((Math.min(...values) + Math.max(...values)) / 2) * 1e7) / 1e7;
+  return [middle(lons), middle(lats)];
+}
+
+/** How many flats an `addr:flats` value such as "1-12" or "1-4;7" names. */
+export function flatsIn(value: string | undefined): number {
+  if (!value) return 1;
+  let count = 0;
+  for (const part of value.split(/[;,]/)) {
+    const range = /^\s*(\d+)\s*-\s*(\d+)\s*$/.exec(part);
+    count += range ? Math.max(1, Number(range[2]) - Number(range[1]) + 1) : 1;
+  }
+  return Math.min(count, 2_000);
+}
+
+/** Flats and shops often repeat their building's address; the first stays. */
+function withoutRepeats(addresses: readonly AddressPoint[]): AddressPoint[] {
+  const seen = new Set<string>();
+  return addresses.filter(({ number, street, city, postcode }) => {
+    const key = `${number}|${street}|${city}|${postcode}`.toLowerCase();
+    if (seen.has(key)) return false;
+    seen.add(key);
+    return true;
+  });
+}
+
+function streetsOf(
+  extract: OsmExtract,
+  addresses: readonly AddressPoint[],
+  cityAt: (at: LonLat) => string,
+): { streets: NamedStreet[]; corners: StreetCorner[] } {
+  const streets = new Map<string, NamedStreet>();
+  const add = (name: string, city: string, at: LonLat): void => {
+    const key = `${name}|${city}`;
+    if (!streets.has(key)) streets.set(key, { name, city, at });
+  };
+  const namesAt = new Map<number, Set<string>>();
+  for (const way of extract.ways.values()) {
+    const name = way.tags['name'];
+    if (!name || roadClassOf(way.tags) === null) continue;
+    const line = linesOf(extract, way).sort((a, b) => b.length - a.length)[0];
+    if (line) add(name, cityAt(line[line.length >> 1]!), line[line.length >> 1]!);
+    for (const ref of way.refs) {
+      const names = namesAt.get(ref);
+      if (names) names.add(name);
+      else namesAt.set(ref, new Set([name]));
+    }
+  }
+  for (const { street, city, at } of addresses) add(street, city, at);
+  const corners: StreetCorner[] = [];
+  for (const [node, names] of namesAt) {
+    if (names.size < 2) continue;
+    const at = extract.at(node);
+    if (!at) continue;
+    const sorted = [...names].sort();
+    const city = cityAt(at);
+    sorted.forEach((first, i) => sorted.slice(i + 1).forEach((second) => corners.push({ first, second, city, at })));
+  }
+  return { streets: [...streets.values()], corners };
+}
