@@ -1,0 +1,43 @@
+import {
+  DataTypes,
+  Model,
+  type CreationOptional,
+  type InferAttributes,
+  type InferCreationAttributes,
+  type Sequelize,
+} from 'sequelize';
+import type { LonLat } from '@shared/contract/common';
+
+/** One row of `areas`. */
+export class AreaRecord extends Model<
+  InferAttributes<AreaRecord>,
+  InferCreationAttributes<AreaRecord>
+> {
+  declare id: string;
+  declare stormId: string;
+  declare name: string;
+  /** A closed ring, as JSON text. */
+  declare ring: string;
+  declare outAt: Date;
+  declare backAt: CreationOptional<Date | null>;
+  declare version: CreationOptional<number>;
+
+  outline(): LonLat[] {
+    return JSON.parse(this.ring) as LonLat[];
+  }
+
+  static register(sequelize: Sequelize): void {
+    AreaRecord.init(
+      {
+        id: { type: DataTypes.UUID, primaryKey: true },
+        stormId: { type: DataTypes.UUID, allowNull: false },
+        name: { type: DataTypes.STRING(80), allowNull: false },
+        ring: { type: DataTypes.TEXT('medium'), allowNull: false },
+        outAt: { type: DataTypes.DATE(3), allowNull: false },
+        backAt: DataTypes.DATE(3),
+        version: { type: DataTypes.INTEGER, allowNull: false, defaultValue: 0 },
+      },
+      { sequelize, tableName: 'areas' },
+    );
+  }
+}

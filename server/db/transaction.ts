@@ -1,0 +1,55 @@
+import { setTimeout as pause } from 'node:timers/promises';
+import { Transaction, type Sequelize } from 'sequelize';
+
+const MAX_ATTEMPTS = 5;
+
+/** Deadlock, lock wait timeout, and "row changed since read" under snapshot isolation. */
+const WORTH_ANOTHER_TRY = new Set([1213, 1205, 1020]);
+
+/**
+ * Runs one unit of work in a transaction, and the whole of it again when the database gave it up
+ * for another's sake. Retrying single statements inside a dead transaction would lose the earlier
+ * ones.
+ *
+ * READ COMMITTED: commands lock the rows that they decide about and then want them as they are.
+ */
+export async function inTransaction<T>(
+  sequelize: Sequelize,
+  work: (tx: Transaction) => Promise<T>,
+): Promise<T> {
+  for (let attempt = 1; ; attempt++) {
+    try {
+      return await sequelize.transaction(
+        { isolationLevel: Transaction.ISOLATION_LEVELS.READ_COMMITTED },
+        work,
+      );
+    } catch (error) {
+      if (!isWorthAnotherTry(error) || attempt === MAX_ATTEMPTS) throw error;
+      await pause(Math.random() * 20 * attempt);
+    }
+  }
+}
+
+/** Reads several tables as of one moment. */
+export function asOfOneMoment<T>(
+  sequelize: Sequelize,
+  read: (tx: Transaction) => Promise<T>,
+): Promise<T> {
+  return sequelize.transaction(
+    { isolationLevel: Transaction.ISOLATION_LEVELS.REPEATABLE_READ },
+    read,
+  );
+}
+
+function isWorthAnotherTry(error: unknown): boolean {
+  return WORTH_ANOTHER_TRY.has(errorNumber(error) ?? 0);
+}
+
+/** MariaDB's error number behind whatever Sequelize wrapped it in. */
+export function errorNumber(error: unknown): number | undefined {
+  const parent = (error as { parent?: { errno?: unknown } } | null)?.parent;
+  return typeof parent?.errno === 'number' ? parent.errno : undefined;
+}
+
+const DUPLICATE_ENTRY = 1062;
+export const isDuplicate = (error: unknown): boolean => errorNumber(error) === DUPLICATE_ENTRY;
