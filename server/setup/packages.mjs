@@ -21,6 +21,11 @@ export function ensurePackages(tell = () => {}) {
     // No stamp: never installed, or a killed installation.
     const installed = await readFile(STAMP_FILE, 'utf8').catch(() => '');
     if (installed === wanted) return 'installed already';
+    if (await areInstalled(JSON.parse(lockFile))) {
+      // By somebody's own npm install or npm ci.
+      await writeFile(STAMP_FILE, wanted);
+      return 'installed already';
+    }
 
     try {
       await access(root, constants.W_OK);
@@ -32,6 +37,20 @@ export function ensurePackages(tell = () => {}) {
     if (code !== 0) throw explainNpm(output);
     await writeFile(STAMP_FILE, wanted);
     return 'installed';
+  });
+}
+
+/** Whether npm's own record, which it writes when an installation is complete, holds the same versions. */
+async function areInstalled(lock) {
+  const record = await readFile(path.join(root, 'node_modules', '.package-lock.json'), 'utf8').then(
+    JSON.parse,
+    () => null,
+  );
+  if (!record) return false;
+  return Object.entries(lock.packages).every(([place, wanted]) => {
+    if (place === '') return true;
+    const found = record.packages[place];
+    return found ? found.version === wanted.version : Boolean(wanted.optional);
   });
 }
 

@@ -1,0 +1,65 @@
+/**
+ * The product as the browser stories need it: built, on an empty database of its own, with the demo
+ * county and the fake text service. Runs until it is told to stop.
+ */
+import { mkdir } from 'node:fs/promises';
+import path from 'node:path';
+
+import { serverEnvironment } from './environment.mjs';
+import { dataFolder, root } from './paths.mjs';
+import { runMain } from './problem.mjs';
+import { ensureBuild } from './product-build.mjs';
+import { startAndWait, stopLeftovers, stopProcess } from './processes.mjs';
+import { readSecrets } from './secrets.mjs';
+import { recreateDatabase, testDatabase } from './test-database.mjs';
+
+const DATABASE = 'thawline_test_browser';
+const START_SECONDS = 180;
+
+const pids = [];
+const stop = async () => {
+  for (const pid of pids.reverse()) await stopProcess(pid);
+};
+for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP']) {
+  process.once(signal, () => void stop().finally(() => process.exit(0)));
+}
+
+await runMain(async () => {
+  try {
+    await serve();
+  } finally {
+    await stop();
+  }
+});
+
+async function serve() {
+  const port = Number(process.env.THAWLINE_BROWSER_PORT);
+  await stopLeftovers('browser');
+  await ensureBuild();
+  const database = await testDatabase();
+  await recreateDatabase(database, DATABASE);
+  const data = path.join(dataFolder, 'browser');
+  await mkdir(data, { recursive: true });
+
+  const env = {
+    ...serverEnvironment({
+      port,
+      fakesPort: port + 1,
+      database: { ...database, name: DATABASE },
+      secrets: await readSecrets(),
+    }),
+    THAWLINE_ENVIRONMENT: 'test',
+    THAWLINE_DATA_FOLDER: data,
+    THAWLINE_TILES_FOLDER: process.env.THAWLINE_TILES_FOLDER || path.join(root, 'tiles'),
+  };
+  const start = async (name, at, answers) => {
+    const url = `http://127.0.0.1:${at}${answers}`;
+    const program = await startAndWait(name, 'browser', env, url, START_SECONDS, (pid) =>
+      pids.push(pid),
+    );
+    return program.ended;
+  };
+  const fakes = await start('fakes-main', port + 1, '/');
+  const server = await start('main', port, '/readyz');
+  await Promise.race([fakes, server]);
+}

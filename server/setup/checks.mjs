@@ -1,0 +1,52 @@
+import path from 'node:path';
+
+import { root } from './paths.mjs';
+import { run } from './run.mjs';
+
+const bin = (...parts) => path.join(root, 'node_modules', ...parts);
+const TSC = bin('typescript', 'bin', 'tsc');
+
+/** What is checked without running the product, each with how to run it: Node.js and these arguments. */
+export const CHECKS = [
+  {
+    name: 'format',
+    args: [bin('prettier', 'bin', 'prettier.cjs'), '--check', '--log-level', 'warn', '.'],
+  },
+  { name: 'types: shared', args: [TSC, '-p', 'shared/tsconfig.json'] },
+  { name: 'types: server', args: [TSC, '-p', 'server/tsconfig.json'] },
+  { name: 'types: test', args: [TSC, '-p', 'test/tsconfig.json'] },
+  { name: 'types: client tests', args: [TSC, '-p', 'src/tsconfig.spec.json', '--noEmit'] },
+  {
+    name: 'directions',
+    args: [
+      bin('dependency-cruiser', 'bin', 'dependency-cruise.mjs'),
+      ...[
+        '--config',
+        'test/dependencies.cjs',
+        '--output-type',
+        'err',
+        'server',
+        'shared',
+        'src',
+        'test',
+      ],
+    ],
+  },
+  {
+    name: 'lint',
+    args: [
+      bin('eslint', 'bin', 'eslint.js'),
+      '-c',
+      'test/eslint.config.mjs',
+      '--max-warnings=0',
+      '.',
+    ],
+  },
+];
+
+/** Runs one check. */
+export async function runCheck({ name, args }) {
+  const start = performance.now();
+  const { code, output } = await run(process.execPath, args, { env: { NO_COLOR: '1' } });
+  return { name, passed: code === 0, output, seconds: (performance.now() - start) / 1000 };
+}
