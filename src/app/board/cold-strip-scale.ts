@@ -222,5 +222,7 @@ export function rulerBackground(): string {
 
 function lineColour(hours: number): string {
   if (hours === 0) return 'var(--thaw-ink)';
-  return hours === 12 ? 'color-mix(in srgb, var(--thaw-rule-strong) 60%, transparent)' : 'var(--thaw-rule)';
+  return hours === 12
+    ? 'color-mix(in srgb, var(--thaw-rule-strong) 60%, transparent)'
+    : 'var(--thaw-rule)';
 }

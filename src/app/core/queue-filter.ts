@@ -15,6 +15,10 @@ export interface QueueFilter {
   readonly areaId: string | null;
   /** The calls of one pocket, by its key. */
   readonly pocketKey: string | null;
+  /** Only calls in which somebody may be in danger. */
+  readonly dangerOnly: boolean;
+  /** Only calls with texts that nobody has read. */
+  readonly unreadOnly: boolean;
 }
 
 export const NO_FILTER: QueueFilter = {
@@ -24,6 +28,8 @@ export const NO_FILTER: QueueFilter = {
   skills: [],
   areaId: null,
   pocketKey: null,
+  dangerOnly: false,
+  unreadOnly: false,
 };
 
 export const isFiltering = (filter: QueueFilter): boolean =>
@@ -32,7 +38,9 @@ export const isFiltering = (filter: QueueFilter): boolean =>
   filter.contents.length > 0 ||
   filter.skills.length > 0 ||
   filter.areaId !== null ||
-  filter.pocketKey !== null;
+  filter.pocketKey !== null ||
+  filter.dangerOnly ||
+  filter.unreadOnly;
 
 /** Makes the test for one filter, so that what is common to all calls is done once. */
 export function matcher(
@@ -44,6 +52,8 @@ export function matcher(
   return (call) =>
     (filter.states.length === 0 || filter.states.includes(call.state)) &&
     (filter.areaId === null || call.areaId === filter.areaId) &&
+    (!filter.dangerOnly || call.danger) &&
+    (!filter.unreadOnly || call.unreadTexts > 0) &&
     (pocketCallIds === null || pocketCallIds.has(call.id)) &&
     filter.skills.every((skill) => call.skills.includes(skill)) &&
     (filter.contents.length === 0 || hasContents(call, filter.contents)) &&
