@@ -11,9 +11,10 @@ import { compartmentState, savedBy, type ThawClock } from './thaw/thaw-clock';
  */
 export type Lane = 1 | 2 | 3 | 4;
 
+/** What the urgency needs of a compartment; a board has no more than this. */
 export interface CompartmentOnClock {
-  readonly facts: CompartmentFacts;
-  readonly clock: ThawClock;
+  readonly facts: Pick<CompartmentFacts, 'kind' | 'valueCents'>;
+  readonly clock: Pick<ThawClock, 'atRiskAt' | 'saveByAt' | 'recoveredAt'>;
 }
 
 /** What is lost per minute if a call waits. */
@@ -151,7 +152,11 @@ const NAMES: Readonly<Record<CompartmentKind, string>> = {
   'commercial-stock': 'Stock',
 };
 
-function reasonOf(facts: CompartmentFacts, left: number | null, isAtRisk: boolean): string {
+function reasonOf(
+  facts: CompartmentOnClock['facts'],
+  left: number | null,
+  isAtRisk: boolean,
+): string {
   const time = left === null ? 'set apart, ask the pharmacist' : `${minutesInWords(left)} left`;
   const value = `$${Math.round(facts.valueCents / 100)}`;
   return `${NAMES[facts.kind]}${isAtRisk ? ' at risk' : ''}: ${time}, ${value}`;

@@ -56,7 +56,7 @@ export function thawClock(facts: CompartmentFacts, loss: CoolingLoss): ThawClock
  * four hours. Once cooling is back the clock stands still.
  */
 export function compartmentState(
-  clock: ThawClock,
+  clock: Pick<ThawClock, 'atRiskAt' | 'saveByAt' | 'recoveredAt'>,
   loss: CoolingLoss,
   now: Instant,
 ): CompartmentState {

@@ -3,6 +3,8 @@ import type { PocketDto } from '@shared/contract/areas';
 import type { BoardChange, Numbered } from '@shared/contract/realtime';
 import type { Position } from '@shared/contract/routes';
 import { isOpen } from '@shared/domain/call-state';
+import { MINUTE_MS } from '@shared/domain/instant';
+import { DEFAULT_WEIGHTS } from '@shared/domain/urgency';
 import { Announce } from './announce';
 import { Api } from './api';
 import { afterChanges, type Picture, pictureOf } from './board-picture';
@@ -11,6 +13,7 @@ import { Live, type LinkState } from './live';
 import { type FeedPlace, OrderedFeed } from './ordered-feed';
 import { ProblemError } from './problem-error';
 import { matcher, NO_FILTER, type QueueFilter } from './queue-filter';
+import { Ranking, type RankedCall } from './ranking';
 import { Session } from './session';
 
 const NONE: ReadonlyMap<string, never> = new Map<string, never>();
@@ -72,6 +75,26 @@ export class BoardStore {
 
   readonly selectedCall = computed(() => this.calls().get(this.selectedCallId() ?? '') ?? null);
   readonly openCalls = computed(() => [...this.calls().values()].filter((c) => isOpen(c.state)));
+
+  private readonly ranking = new Ranking();
+  private readonly minute = computed(() => Math.floor(this.clock.now() / MINUTE_MS) * MINUTE_MS);
+
+  /** The open calls in the order of the queue, worked out again each minute and at each change. */
+  readonly ranked = computed<readonly RankedCall[]>(() =>
+    this.ranking.rank(
+      this.calls().values(),
+      this.minute(),
+      this.session.settings()?.medicineWeight ?? DEFAULT_WEIGHTS.medicine,
+    ),
+  );
+  /** Those of them that the filter lets through. */
+  readonly shown = computed<readonly RankedCall[]>(() => {
+    const filter = this.filter();
+    const pocket = this.pockets().find((one) => one.key === filter.pocketKey);
+    const ids = filter.pocketKey === null ? null : new Set(pocket?.callIds);
+    const matches = matcher(filter, ids);
+    return this.ranked().filter(({ call }) => matches(call));
+  });
 
   /** Each technician's route in order. */
   readonly routes = computed(() => {
