@@ -1,0 +1,165 @@
+/**
+ * Words of street names and how they are shortened.
+ *
+ * Source: USPS Publication 28, "Postal Addressing Standards", appendices B (directions) and C1
+ * (street suffixes) and section 213 (secondary units); the choice of words and the further spellings
+ * that callers use are from memory and common practice.
+ */
+export type WordKind = 'direction' | 'type' | 'name';
+
+/** Short form, long form, then other spellings. */
+const TYPES: readonly (readonly string[])[] = [
+  ['aly', 'alley', 'ally'],
+  ['ave', 'avenue', 'av', 'aven', 'avn', 'avnue'],
+  ['blvd', 'boulevard', 'boul', 'boulv', 'bvd'],
+  ['br', 'branch'],
+  ['brg', 'bridge'],
+  ['cir', 'circle', 'circ', 'crcl'],
+  ['cswy', 'causeway', 'causwa'],
+  ['ct', 'court', 'crt'],
+  ['cv', 'cove'],
+  ['cres', 'crescent', 'crsnt'],
+  ['xing', 'crossing', 'crssng'],
+  ['dr', 'drive', 'driv', 'drv'],
+  ['expy', 'expressway', 'expr'],
+  ['ext', 'extension'],
+  ['fwy', 'freeway'],
+  ['grv', 'grove'],
+  ['hts', 'heights'],
+  ['hwy', 'highway', 'hiway', 'hiwy', 'hway'],
+  ['lndg', 'landing'],
+  ['ln', 'lane', 'la'],
+  ['loop', 'loop', 'loops'],
+  ['mews', 'mews'],
+  ['mnr', 'manor'],
+  ['park', 'park', 'prk'],
+  ['path', 'path'],
+  ['pike', 'pike', 'pk'],
+  ['pkwy', 'parkway', 'parkwy', 'pkway', 'pky'],
+  ['pl', 'place', 'plc'],
+  ['plz', 'plaza'],
+  ['pt', 'point'],
+  ['rd', 'road', 'rod'],
+  ['row', 'row'],
+  ['rte', 'route', 'rt'],
+  ['run', 'run'],
+  ['sq', 'square', 'sqr'],
+  ['st', 'street', 'str', 'strt', 'saint'],
+  ['ter', 'terrace', 'terr'],
+  ['trl', 'trail'],
+  ['tpke', 'turnpike', 'trnpk'],
+  ['vw', 'view'],
+  ['walk', 'walk'],
+  ['way', 'way', 'wy'],
+];
+
+const DIRECTIONS: readonly (readonly string[])[] = [
+  ['n', 'north', 'no', 'nth'],
+  ['s', 'south', 'so', 'sth'],
+  ['e', 'east'],
+  ['w', 'west'],
+  ['ne', 'northeast'],
+  ['nw', 'northwest'],
+  ['se', 'southeast'],
+  ['sw', 'southwest'],
+];
+
+const shortOf = (table: readonly (readonly string[])[]): ReadonlyMap<string, string> =>
+  new Map(table.flatMap((words) => words.map((word): [string, string] => [word, words[0]!])));
+
+const SHORT_TYPE = shortOf(TYPES);
+const SHORT_DIRECTION = shortOf(DIRECTIONS);
+const LONG_TYPE: ReadonlyMap<string, string> = new Map(TYPES.map((words) => [words[0]!, words[1]!]));
+
+export const isType = (canonical: string): boolean => LONG_TYPE.has(canonical);
+export const isDirection = (canonical: string): boolean => SHORT_DIRECTION.get(canonical) === canonical;
+
+/** The long form of a type's short form: 'st' gives 'street'. */
+export const longType = (short: string): string => LONG_TYPE.get(short) ?? short;
+
+const ORDINAL_WORDS: ReadonlyMap<string, string> = new Map(
+  ['first', 'second', 'third', 'fourth', 'fifth', 'sixth', 'seventh', 'eighth', 'ninth', 'tenth', 'eleventh', 'twelfth'].map(
+    (word, i): [string, string] => [word, String(i + 1)],
+  ),
+);
+
+/** One spelling for all spellings of a word: 'Street' and 'str' give 'st', '94th' gives '94'. */
+export function canonical(word: string): string {
+  const ordinal = /^(\d+)(st|nd|rd|th)$/.exec(word);
+  if (ordinal) return ordinal[1]!;
+  return ORDINAL_WORDS.get(word) ?? SHORT_DIRECTION.get(word) ?? SHORT_TYPE.get(word) ?? word;
+}
+
+/** A street's words, told apart by the part that they play. */
+export interface StreetWords {
+  readonly names: readonly string[];
+  readonly types: readonly string[];
+  readonly directions: readonly string[];
+}
+
+/**
+ * Tells a street's name from its type and direction: the direction stands first or last, the type
+ * last or before a last direction. A street called "Park Avenue" or "Avenue N" keeps a name.
+ */
+export function wordsOfStreet(tokens: readonly string[]): StreetWords {
+  let names = [...tokens];
+  const types: string[] = [];
+  const directions: string[] = [];
+  if (names.length > 1 && isDirection(names[0]!)) directions.push(names.shift()!);
+  if (names.length > 2 && isDirection(names[names.length - 1]!)) directions.push(names.pop()!);
+  if (names.length > 1 && isType(names[names.length - 1]!)) types.push(names.pop()!);
+  if (names.length > 1 && (names[0] === 'rte' || names[0] === 'hwy')) types.push(names.shift()!);
+  if (names.length === 0) names = [...tokens];
+  return { names, types, directions };
+}
+
+/** A street's name as the post writes it: "North Heron Street" gives "N Heron St". */
+export function postalStreet(name: string): string {
+  const words = name.split(/\s+/).filter((word) => word !== '');
+  if (words.length < 2) return name;
+  const last = words.length - 1;
+  return words
+    .map((word, i) => {
+      const lower = word.toLowerCase();
+      if (i === 0 && words.length > 2 && SHORT_DIRECTION.has(lower) && lower.length > 2) return SHORT_DIRECTION.get(lower)!.toUpperCase();
+      if (i === last && SHORT_DIRECTION.has(lower) && lower.length > 2 && words.length > 2) return SHORT_DIRECTION.get(lower)!.toUpperCase();
+      if (i !== last || lower === 'saint' || !LONG_FORMS.has(lower)) return word;
+      const short = SHORT_TYPE.get(lower)!;
+      return short[0]!.toUpperCase() + short.slice(1);
+    })
+    .join(' ');
+}
+
+const LONG_FORMS: ReadonlySet<string> = new Set(TYPES.map((words) => words[1]!));
+
+/** Words that begin a unit, and how the unit is written. Source: USPS Publication 28, section 213.1. */
+export const UNIT_WORDS: ReadonlyMap<string, string> = new Map([
+  ['apt', 'Apt'],
+  ['apartment', 'Apt'],
+  ['appt', 'Apt'],
+  ['unit', 'Unit'],
+  ['ste', 'Ste'],
+  ['suite', 'Ste'],
+  ['lot', 'Lot'],
+  ['rm', 'Rm'],
+  ['room', 'Rm'],
+  ['trlr', 'Trlr'],
+  ['trailer', 'Trlr'],
+  ['bldg', 'Bldg'],
+  ['building', 'Bldg'],
+  ['fl', 'Fl'],
+  ['floor', 'Fl'],
+  ['spc', 'Spc'],
+  ['space', 'Spc'],
+  ['slip', 'Slip'],
+]);
+
+/** Units that need no number. Source: USPS Publication 28, section 213.2. */
+export const BARE_UNITS: ReadonlyMap<string, string> = new Map([
+  ['bsmt', 'Bsmt'],
+  ['basement', 'Bsmt'],
+  ['rear', 'Rear'],
+  ['upstairs', 'Uppr'],
+  ['upper', 'Uppr'],
+  ['downstairs', 'Lowr'],
+]);
