@@ -51,6 +51,19 @@ export function plan(problem: PlanProblem, options: PlanOptions): Plan {
   return report(search, compiled, done);
 }
 
+/** The previous plan as it would go from now on: what no longer fits is left out, nothing is added. */
+export function carriedOver(problem: PlanProblem): Plan {
+  const compiled = compile(problem);
+  const search = new Search(compiled, new SeededRandom(0));
+  takeOverPrevious(search, compiled);
+  const carried = report(search, compiled, 0);
+  // Nobody has looked for a place for these, so nothing is known about the time.
+  const unassigned = carried.unassigned.map((left) =>
+    left.reason === 'capacity' ? { ...left, because: 'Not on the plan in force.' } : left,
+  );
+  return { ...carried, unassigned };
+}
+
 function takeOverPrevious(search: Search, { problem, shifts }: CompiledProblem): void {
   const jobNumber = new Map(problem.jobs.map((job, index) => [job.id, index]));
   const stopsOf = new Map(

@@ -1,0 +1,43 @@
+import type { PlanSummary, StopReason } from '@shared/domain/planner/plan-summary';
+import type { Plan, PlanProblem } from '@shared/domain/planner/problem';
+import type { LonLat } from '@shared/domain/travel/great-circle';
+import type { TravelSettings } from '@shared/domain/travel/travel-times';
+import { WorkerClient, type WorkerClientOptions } from './worker-client';
+
+/** A planning problem whose places are points; the worker works out the drives between them. */
+export interface PlannerRequest {
+  readonly problem: Omit<PlanProblem, 'matrix' | 'locations'>;
+  /** Places by the numbers that the problem uses for them. */
+  readonly points: readonly LonLat[];
+  readonly travel?: Partial<TravelSettings>;
+  readonly seed: number;
+  /** Milliseconds to search for; left out, only `iterations` count and the plan is repeatable. */
+  readonly budgetMs?: number;
+  /** Most rounds of search; 0 repairs the plan in force and does not search. */
+  readonly iterations?: number;
+}
+
+export interface PlannerResponse {
+  readonly plan: Plan;
+  readonly summary: PlanSummary;
+  /** The plan in force as it would go from now on; null when there is none. */
+  readonly before: { readonly plan: Plan; readonly summary: PlanSummary } | null;
+  /** Why each stop stands where it stands. */
+  readonly reasons: readonly ({ readonly job: string } & StopReason)[];
+  readonly elapsedMs: number;
+}
+
+export type PlannerWorker = WorkerClient<PlannerRequest, PlannerResponse>;
+
+export function createPlannerWorker(
+  scriptPath: string,
+  options: Partial<WorkerClientOptions> = {},
+): PlannerWorker {
+  return new WorkerClient({
+    name: 'planner',
+    timeoutMs: 30_000,
+    queue: 'in-order',
+    ...options,
+    scriptPath,
+  });
+}
