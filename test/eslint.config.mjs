@@ -1,3 +1,6 @@
+/**
+ * What a line may say. What a file may import is the part of dependencies.cjs.
+ */
 import path from 'node:path';
 
 import angular from 'angular-eslint';
@@ -18,6 +21,7 @@ const NODE_GLOBALS = {
   console: 'readonly',
   fetch: 'readonly',
   module: 'writable',
+  performance: 'readonly',
   process: 'readonly',
   require: 'readonly',
   setInterval: 'readonly',
@@ -39,16 +43,43 @@ const FOCUSED_TESTS = [
   },
 ];
 
-/** Rules that a wrong import breaks, by kind of file. `allowTypeImports` where a type does no harm. */
-const imports = (...patterns) => ['error', { patterns }];
-const EXPRESS = {
-  group: ['express', 'express-*', 'passport', 'passport-*', 'helmet', 'compression'],
-  message: 'Only *-routes.ts, app.ts, staff sign-in and http/ know HTTP; hand plain values down.',
-};
-const SOCKETS = {
-  group: ['socket.io', 'socket.io/*', 'engine.io'],
-  message: 'Only realtime/ knows sockets; announce a change through it.',
-};
+/** ESLint's own recommended rules that TypeScript does not check itself. */
+const CORE_RULES = Object.fromEntries(
+  [
+    'for-direction',
+    'no-async-promise-executor',
+    'no-case-declarations',
+    'no-compare-neg-zero',
+    'no-cond-assign',
+    'no-constant-binary-expression',
+    'no-constant-condition',
+    'no-control-regex',
+    'no-debugger',
+    'no-dupe-else-if',
+    'no-duplicate-case',
+    'no-empty',
+    'no-empty-character-class',
+    'no-empty-pattern',
+    'no-fallthrough',
+    'no-irregular-whitespace',
+    'no-loss-of-precision',
+    'no-misleading-character-class',
+    'no-prototype-builtins',
+    'no-regex-spaces',
+    'no-self-assign',
+    'no-self-compare',
+    'no-sparse-arrays',
+    'no-unsafe-finally',
+    'no-unsafe-optional-chaining',
+    'no-unused-labels',
+    'no-useless-backreference',
+    'no-useless-catch',
+    'no-useless-escape',
+    'prefer-const',
+    'use-isnan',
+    'valid-typeof',
+  ].map((rule) => [rule, 'error']),
+);
 
 export default tseslint.config(
   { ignores: ['dist/', 'node_modules/', '.angular/', '.data/', 'coverage/', 'tiles/'] },
@@ -59,7 +90,7 @@ export default tseslint.config(
     rules: {
       'no-undef': 'error',
       'no-unused-vars': ['error', { argsIgnorePattern: '^_', caughtErrors: 'none' }],
-      'prefer-const': 'error',
+      ...CORE_RULES,
       eqeqeq: 'error',
     },
   },
@@ -81,6 +112,7 @@ export default tseslint.config(
       },
     },
     rules: {
+      ...CORE_RULES,
       eqeqeq: ['error', 'always', { null: 'ignore' }],
       '@typescript-eslint/consistent-type-imports': [
         'error',
@@ -133,7 +165,6 @@ export default tseslint.config(
     files: SERVER,
     ignores: ['server/realtime/**', 'server/fakes/**'],
     rules: {
-      '@typescript-eslint/no-restricted-imports': imports(EXPRESS, SOCKETS),
       'no-restricted-syntax': [
         'error',
         {
@@ -147,17 +178,6 @@ export default tseslint.config(
         },
       ],
     },
-  },
-  {
-    // These know HTTP. They still know no sockets.
-    files: [
-      'server/app.ts',
-      'server/**/*-routes.ts',
-      'server/http/**/*.ts',
-      'server/staff/sign-in.ts',
-      'server/staff/session*.ts',
-    ],
-    rules: { '@typescript-eslint/no-restricted-imports': imports(SOCKETS) },
   },
   { files: ['server/db/*.ts'], rules: { 'no-restricted-syntax': 'off' } },
 
@@ -178,11 +198,6 @@ export default tseslint.config(
       // A component's name says which part of the screen it is, without a suffix.
       '@angular-eslint/component-class-suffix': 'off',
       '@angular-eslint/directive-class-suffix': 'off',
-      '@typescript-eslint/no-restricted-imports': imports({
-        group: ['@shared/contract/*', '!@shared/contract/paths'],
-        allowTypeImports: true,
-        message: 'Types only: the validation library stays out of the browser.',
-      }),
     },
   },
   {
@@ -200,6 +215,8 @@ export default tseslint.config(
       '@typescript-eslint/no-unsafe-argument': 'off',
       '@typescript-eslint/no-unsafe-call': 'off',
       '@typescript-eslint/no-unsafe-return': 'off',
+      '@typescript-eslint/no-base-to-string': 'off',
+      '@angular-eslint/prefer-on-push-component-change-detection': 'off',
     },
   },
 );
