@@ -230,6 +230,11 @@ describe('drainByArea', () => {
       [null, 3],
     ]);
   });
+
+  it('does not name an area before its first call', () => {
+    const calls = [aCall({ areaId: 'north' }), aCall({ areaId: 'south', arrivedAt: minute(5) })];
+    expect(drainByArea(calls, minute(4)).map(({ id }) => id)).toEqual(['north']);
+  });
 });
 
 describe('forecastEmpty', () => {

@@ -124,6 +124,12 @@ describe('byUrgency', () => {
     expect(sorted).toEqual([medicine, kitchen, kitchenFood, half, chest, gone]);
   });
 
+  it('lets more lost per minute outrank an earlier save-by in the same lane', () => {
+    const small = urgencyAfter(3, freezer(50_00, 0.5));
+    const large = urgencyAfter(3, freezer(4_000_00));
+    expect([small, large].sort(byUrgency)).toEqual([large, small]);
+  });
+
   it('puts the earlier save-by first among equals, and no save-by last', () => {
     const base = urgencyAfter(3, freezer());
     const later = { ...base, saveByAt: at(49) };
