@@ -2,7 +2,7 @@ import Flatbush from 'flatbush';
 import type { AddressKind, AddressSuggestion } from '@shared/domain/address/address-suggestion';
 import { NameGrams } from '@shared/domain/address/name-grams';
 import { parseAddress, type ParsedAddress } from '@shared/domain/address/parse-address';
-import { streetCost, wordCost, type Query } from '@shared/domain/address/street-score';
+import { namesCost, streetCost, wordCost, type Query } from '@shared/domain/address/street-score';
 import { isDirection, isType, postalStreet } from '@shared/domain/address/street-words';
 import type { AddressBook, AddressPoint, PlaceName, StreetCorner } from './address-points';
 import type { LonLat } from './osm-extract';
@@ -24,13 +24,21 @@ interface Reading {
 }
 
 /** How far a kind of match can be trusted when the words fit exactly. Our estimate. */
-const TRUST: Readonly<Record<AddressKind, number>> = { rooftop: 1, interpolated: 0.88, corner: 0.9, street: 0.5, place: 0.6, pin: 1 };
-const CANDIDATES = 60;
+const TRUST: Readonly<Record<AddressKind, number>> = {
+  rooftop: 1,
+  interpolated: 0.88,
+  corner: 0.9,
+  street: 0.5,
+  place: 0.6,
+  pin: 1,
+};
+const CANDIDATES = 40;
 /** A dearer reading is not shown at all. */
 const DEAREST = 1.25;
 /** Two readings this close in cost are a question for a person. */
 const TOO_CLOSE = 0.3;
-const SAME_PLACE_METRES = 150;
+/** Nearer to each other two points are the same door. */
+const SAME_PLACE_METRES = 40;
 const HOUSE_METRES = 60;
 const NEARBY_METRES = 400;
 const METRES_PER_DEGREE = 111_195;
@@ -79,7 +87,7 @@ export class AddressIndex {
 
   /** What the words typed so far may mean, best first. */
   suggest(text: string, { near, limit = 8 }: SuggestOptions = {}): AddressSuggestion[] {
-    return withConfidence(this.readings(text, true, near)).slice(0, limit);
+    return withConfidence(this.readings(text, true, near), limit);
   }
 
   /**
@@ -87,16 +95,28 @@ export class AddressIndex {
    * only from ACCEPT_CONFIDENCE on; null when nothing is like it.
    */
   locate(text: string, near?: LonLat): AddressSuggestion | null {
-    return withConfidence(this.readings(text, false, near))[0] ?? null;
+    return withConfidence(this.readings(text, false, near), 1)[0] ?? null;
   }
 
   /** Names a point that was set by hand; the point itself stays as given. */
   nearest(lon: number, lat: number): AddressSuggestion {
-    const found = this.points?.neighbors(lon * this.squeeze, lat, 1, NEARBY_METRES / METRES_PER_DEGREE)[0];
+    const found = this.points?.neighbors(
+      lon * this.squeeze,
+      lat,
+      1,
+      NEARBY_METRES / METRES_PER_DEGREE,
+    )[0];
     const point = found === undefined ? undefined : this.book.addresses[found];
     const pin = { unit: null, lon, lat, kind: 'pin', confidence: 1 } as const;
     if (!point) {
-      return { ...pin, label: `Pin at ${lat.toFixed(5)}, ${lon.toFixed(5)}`, number: null, street: '', city: '', postcode: '' };
+      return {
+        ...pin,
+        label: `Pin at ${lat.toFixed(5)}, ${lon.toFixed(5)}`,
+        number: null,
+        street: '',
+        city: '',
+        postcode: '',
+      };
     }
     const isHouse = this.metres([lon, lat], point.at) <= HOUSE_METRES;
     const line = lineOf(point.number, point.street, null, point.city, point.postcode);
@@ -111,7 +131,9 @@ export class AddressIndex {
   }
 
   private readings(text: string, isTyping: boolean, near: LonLat | undefined): Reading[] {
-    const readings = variants(parseAddress(text)).flatMap((parsed) => this.readingsOf(parsed, isTyping, near));
+    const readings = variants(parseAddress(text)).flatMap((parsed) =>
+      this.readingsOf(parsed, isTyping, near),
+    );
     readings.sort((a, b) => a.rank - b.rank || (a.suggestion.label < b.suggestion.label ? -1 : 1));
     const seen = new Set<string>();
     return readings.filter(({ cost, suggestion: { label } }) => {
@@ -121,12 +143,20 @@ export class AddressIndex {
     });
   }
 
-  private readingsOf(parsed: ParsedAddress, isTyping: boolean, near: LonLat | undefined): Reading[] {
+  private readingsOf(
+    parsed: ParsedAddress,
+    isTyping: boolean,
+    near: LonLat | undefined,
+  ): Reading[] {
     if (parsed.isPostBox || parsed.street.length === 0) return [];
     const query = this.queryOf(parsed.street, parsed, isTyping);
-    const away = (at: LonLat): number => (near ? Math.min(0.1, this.metres(near, at) / 500_000) : 0);
-    if (parsed.cross) return this.cornerReadings(query, this.queryOf(parsed.cross, parsed, isTyping), away);
-    const streets = this.similarStreets(query).map(({ entry, cost }) => this.streetReading(entry, cost, parsed, away));
+    const away = (at: LonLat): number =>
+      near ? Math.min(0.1, this.metres(near, at) / 500_000) : 0;
+    if (parsed.cross)
+      return this.cornerReadings(query, this.queryOf(parsed.cross, parsed, isTyping), away);
+    const streets = this.similarStreets(query).map(({ entry, cost }) =>
+      this.streetReading(entry, cost, parsed, away),
+    );
     return parsed.number === null ? [...streets, ...this.placeReadings(query, away)] : streets;
   }
 
@@ -145,19 +175,42 @@ export class AddressIndex {
     const words = telling.length > 0 ? telling : query.street;
     // Two words may be one name that was typed apart.
     const glued = words.slice(1).map((word, i) => words[i]! + word);
-    return this.names
-      .similar([...words, ...glued], CANDIDATES)
-      .flatMap((number) => this.byName[number]!)
-      .map((entry) => ({ entry, cost: streetCost(query, { words: entry.words, city: entry.cityWords }) }))
-      .filter(({ cost }) => cost <= DEAREST);
+    const found: { entry: StreetEntry; cost: number }[] = [];
+    for (const number of this.names.similar([...words, ...glued], CANDIDATES)) {
+      const entries = this.byName[number]!;
+      // Streets of one name share the dear part of the work, and most names fail at it.
+      if (namesCost(query, entries[0]!.words.names) > DEAREST) continue;
+      for (const entry of entries) {
+        const cost = streetCost(query, { words: entry.words, city: entry.cityWords });
+        if (cost <= DEAREST) found.push({ entry, cost });
+      }
+    }
+    return found;
   }
 
-  private streetReading(entry: StreetEntry, wordsCost: number, parsed: ParsedAddress, away: (at: LonLat) => number): Reading {
+  private streetReading(
+    entry: StreetEntry,
+    wordsCost: number,
+    parsed: ParsedAddress,
+    away: (at: LonLat) => number,
+  ): Reading {
     const { number, unit } = parsed;
-    const match = number === null ? { kind: 'street' as const, at: entry.at, postcode: '' } : matchNumber(entry, number);
+    const match =
+      number === null
+        ? { kind: 'street' as const, at: entry.at, postcode: '' }
+        : matchNumber(entry, number);
     // A wrong postcode is a weak sign: callers know their street better.
-    const cost = wordsCost + (parsed.postcode && match.postcode && match.postcode !== parsed.postcode ? 0.25 : 0);
-    const unknown = number === null ? 0 : match.kind === 'rooftop' ? 0 : match.kind === 'interpolated' ? 0.1 : 0.35;
+    const cost =
+      wordsCost +
+      (parsed.postcode && match.postcode && match.postcode !== parsed.postcode ? 0.25 : 0);
+    const unknown =
+      number === null
+        ? 0
+        : match.kind === 'rooftop'
+          ? 0
+          : match.kind === 'interpolated'
+            ? 0.1
+            : 0.35;
     return {
       cost,
       rank: cost + unknown + away(match.at),
@@ -180,7 +233,10 @@ export class AddressIndex {
       const costs = new Map<string, number>();
       // The city is judged at the corner itself, once.
       for (const { entry } of this.similarStreets({ ...query, tail: [], namesACity: false })) {
-        const cost = streetCost({ ...query, tail: [], namesACity: false }, { words: entry.words, city: entry.cityWords });
+        const cost = streetCost(
+          { ...query, tail: [], namesACity: false },
+          { words: entry.words, city: entry.cityWords },
+        );
         costs.set(entry.name, Math.min(cost, costs.get(entry.name) ?? Infinity));
       }
       return [...costs].map(([name, cost]) => ({ name, cost })).sort((a, b) => a.cost - b.cost);
@@ -190,7 +246,10 @@ export class AddressIndex {
     for (const one of cheapest(first)) {
       for (const other of others) {
         for (const corner of this.corners.get(cornerKey(one.name, other.name)) ?? []) {
-          const inCity = streetCost({ ...first, street: [] }, { words: { names: [], types: [], directions: [] }, city: wordsOf(corner.city) });
+          const inCity = streetCost(
+            { ...first, street: [] },
+            { words: { names: [], types: [], directions: [] }, city: wordsOf(corner.city) },
+          );
           const cost = one.cost + other.cost + inCity;
           const street = `${postalStreet(one.name)} & ${postalStreet(other.name)}`;
           readings.push({
@@ -254,16 +313,22 @@ export class AddressIndex {
 /** "1210n heron" may be house 1210N, or 1210 on North Heron. */
 function variants(parsed: ParsedAddress): ParsedAddress[] {
   const glued = /^(\d+)([nsew])$/.exec(parsed.number ?? '');
-  return glued ? [parsed, { ...parsed, number: glued[1]!, street: [glued[2]!, ...parsed.street] }] : [parsed];
+  return glued
+    ? [parsed, { ...parsed, number: glued[1]!, street: [glued[2]!, ...parsed.street] }]
+    : [parsed];
 }
 
-/** Readings that differ little in cost and lie apart lower each other's confidence. */
-function withConfidence(readings: readonly Reading[]): AddressSuggestion[] {
-  return readings.map(({ cost, rank, suggestion }) => {
+/** The first readings; those that differ little in rank and lie apart lower each other's confidence. */
+function withConfidence(readings: readonly Reading[], limit: number): AddressSuggestion[] {
+  return readings.slice(0, limit).map(({ cost, rank, suggestion }) => {
     const isDisputed = readings.some(
-      (other) => other.suggestion !== suggestion && other.rank - rank < TOO_CLOSE && isApart(other.suggestion, suggestion),
+      (other) =>
+        other.rank - rank < TOO_CLOSE &&
+        other.suggestion !== suggestion &&
+        isApart(other.suggestion, suggestion),
     );
-    const confidence = TRUST[suggestion.kind] * Math.max(0, 1 - 0.4 * cost) * (isDisputed ? 0.6 : 1);
+    const confidence =
+      TRUST[suggestion.kind] * Math.max(0, 1 - 0.4 * cost) * (isDisputed ? 0.6 : 1);
     return { ...suggestion, confidence: Math.round(confidence * 100) / 100 };
   });
 }
@@ -274,9 +339,17 @@ function isApart(a: { lon: number; lat: number }, b: { lon: number; lat: number 
 
 const cornerKey = (a: string, b: string): string => (a < b ? `${a}|${b}` : `${b}|${a}`);
 
-function lineOf(number: string | null, street: string, unit: string | null, city: string, postcode: string): string {
+function lineOf(
+  number: string | null,
+  street: string,
+  unit: string | null,
+  city: string,
+  postcode: string,
+): string {
   const first = [number, postalStreet(street), unit].filter((part) => part).join(' ');
-  return [first, [city, postcode].filter((part) => part).join(' ')].filter((part) => part).join(', ');
+  return [first, [city, postcode].filter((part) => part).join(' ')]
+    .filter((part) => part)
+    .join(', ');
 }
 
 export type { AddressPoint };

@@ -48,7 +48,9 @@ const CITY_KINDS = ['city', 'town', 'village', 'suburb', 'borough', 'hamlet', 'n
 
 /** Takes addresses, streets, corners and named places out of an extract. */
 export function addressBookOf(extract: OsmExtract): AddressBook {
-  const towns = extract.namedNodes.filter(({ tags }) => tags['name'] && CITY_KINDS.includes(tags['place'] ?? ''));
+  const towns = extract.namedNodes.filter(
+    ({ tags }) => tags['name'] && CITY_KINDS.includes(tags['place'] ?? ''),
+  );
   const townAt = nearestName(towns.map(({ at, tags }) => ({ at, name: tags['name']! })));
   const addresses = withoutRepeats(rawAddresses(extract, townAt));
   const addressCity = nearestName(addresses.map(({ at, city }) => ({ at, name: city })));
@@ -57,13 +59,24 @@ export function addressBookOf(extract: OsmExtract): AddressBook {
   const { streets, corners } = streetsOf(extract, addresses, cityAt);
   const places = extract.namedNodes.flatMap(({ at, tags }): PlaceName[] => {
     const place = placeOf(tags);
-    return place ? [{ name: tags['name']!, kind: place.kind, city: tags['addr:city'] ?? (tags['place'] ? '' : cityAt(at)), at }] : [];
+    return place
+      ? [
+          {
+            name: tags['name']!,
+            kind: place.kind,
+            city: tags['addr:city'] ?? (tags['place'] ? '' : cityAt(at)),
+            at,
+          },
+        ]
+      : [];
   });
   return { addresses, streets, corners, places };
 }
 
 /** The name of the nearest of a set of points; empty when there is none. */
-function nearestName(points: readonly { readonly at: LonLat; readonly name: string }[]): (at: LonLat) => string {
+function nearestName(
+  points: readonly { readonly at: LonLat; readonly name: string }[],
+): (at: LonLat) => string {
   if (points.length === 0) return () => '';
   const squeeze = Math.cos((points[0]!.at[1] * Math.PI) / 180);
   const index = new Flatbush(points.length);
@@ -104,7 +117,8 @@ function middleOf(points: readonly LonLat[]): LonLat | null {
   if (points.length === 0) return null;
   const lons = points.map(([lon]) => lon);
   const lats = points.map(([, lat]) => lat);
-  const middle = (values: readonly number[]): number => Math.round(((Math.min(...values) + Math.max(...values)) / 2) * 1e7) / 1e7;
+  const middle = (values: readonly number[]): number =>
+    Math.round(((Math.min(...values) + Math.max(...values)) / 2) * 1e7) / 1e7;
   return [middle(lons), middle(lats)];
 }
 
@@ -160,7 +174,9 @@ function streetsOf(
     if (!at) continue;
     const sorted = [...names].sort();
     const city = cityAt(at);
-    sorted.forEach((first, i) => sorted.slice(i + 1).forEach((second) => corners.push({ first, second, city, at })));
+    sorted.forEach((first, i) =>
+      sorted.slice(i + 1).forEach((second) => corners.push({ first, second, city, at })),
+    );
   }
   return { streets: [...streets.values()], corners };
 }

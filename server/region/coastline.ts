@@ -9,7 +9,9 @@ type Box = readonly [west: number, south: number, east: number, north: number];
  * counter-clockwise. Empty when the extract has no coastline: then all of it is land.
  */
 export function landOf(extract: OsmExtract): PolygonRings[] {
-  const ways = [...extract.ways.values()].filter(({ tags, refs }) => tags['natural'] === 'coastline' && refs.length > 1);
+  const ways = [...extract.ways.values()].filter(
+    ({ tags, refs }) => tags['natural'] === 'coastline' && refs.length > 1,
+  );
   if (ways.length === 0) return [];
   const chains = stitched(
     ways.map(({ refs }) => refs),
@@ -28,10 +30,14 @@ export function landOf(extract: OsmExtract): PolygonRings[] {
     if (!isClosed || line.length < refs.length) shores.push(line);
     else (signedArea(line) > 0 ? islands : holes).push(line);
   }
-  const mainland = closedAlongBox(shores.flatMap((line) => cutToBox(line, extract.bbox)), extract.bbox);
+  const mainland = closedAlongBox(
+    shores.flatMap((line) => cutToBox(line, extract.bbox)),
+    extract.bbox,
+  );
   const outers = [...mainland, ...islands];
   // Coast that runs clockwise bounds water; with no land around it, everything else is land.
-  if (holes.some((hole) => !outers.some((outer) => isInsideRing(hole[0]!, outer)))) outers.push(boxRing(extract.bbox));
+  if (holes.some((hole) => !outers.some((outer) => isInsideRing(hole[0]!, outer))))
+    outers.push(boxRing(extract.bbox));
   return withHoles(outers, holes);
 }
 
@@ -74,7 +80,11 @@ export function cutToBox(line: readonly LonLat[], box: Box): LonLat[][] {
 }
 
 /** The part of a segment inside a box (Liang and Barsky); null when there is none. */
-function cutSegment(a: LonLat, b: LonLat, [west, south, east, north]: Box): [LonLat, LonLat] | null {
+function cutSegment(
+  a: LonLat,
+  b: LonLat,
+  [west, south, east, north]: Box,
+): [LonLat, LonLat] | null {
   const dx = b[0] - a[0];
   const dy = b[1] - a[1];
   let from = 0;

@@ -17,7 +17,10 @@ const DEMO_NAME = 'Skerry County';
 const DEMO_TIME_ZONE = 'America/New_York';
 
 /** Makes the demo county's region unless it is there. */
-export async function ensureDemoRegion(tilesFolder: string, onProgress?: (step: ImportStep) => void): Promise<ImportedRegion> {
+export async function ensureDemoRegion(
+  tilesFolder: string,
+  onProgress?: (step: ImportStep) => void,
+): Promise<ImportedRegion> {
   const origin = `county ${DEMO_SEED} ${DEMO_DATA}`;
   const existing = await findRegion(tilesFolder, (region) => region.manifest.origin === origin);
   if (existing) return existing;
@@ -46,6 +49,9 @@ export async function listRegions(tilesFolder: string): Promise<ImportedRegion[]
   return regions;
 }
 
-async function findRegion(tilesFolder: string, isWanted: (region: ImportedRegion) => boolean): Promise<ImportedRegion | null> {
+async function findRegion(
+  tilesFolder: string,
+  isWanted: (region: ImportedRegion) => boolean,
+): Promise<ImportedRegion | null> {
   return (await listRegions(tilesFolder)).find(isWanted) ?? null;
 }

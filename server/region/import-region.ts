@@ -58,12 +58,16 @@ export async function importRegion(order: RegionImport): Promise<ImportedRegion>
   const workshop = join(outFolder, `.making-${id}-${randomUUID()}`);
   await mkdir(workshop);
   try {
-    const extract = await readExtract(order.pbf, (share) => onProgress?.({ step: 'reading', share: share * 0.2 }));
+    const extract = await readExtract(order.pbf, (share) =>
+      onProgress?.({ step: 'reading', share: share * 0.2 }),
+    );
     if (extract.ways.size === 0) throw new UnreadableRegion('The file holds no streets.');
     onProgress?.({ step: 'sorting', share: 0.2 });
     const layers = mapLayers(extract);
     const book = addressBookOf(extract);
-    const base = await writeTiles(layers, extract.bbox, workshop, (share) => onProgress?.({ step: 'tiles', share: 0.3 + share * 0.5 }));
+    const base = await writeTiles(layers, extract.bbox, workshop, (share) =>
+      onProgress?.({ step: 'tiles', share: 0.3 + share * 0.5 }),
+    );
     onProgress?.({ step: 'addresses', share: 0.85 });
     const numbers = await writeAddressTiles(book.addresses, join(workshop, 'addr'));
     await writeAddressBook(workshop, book);
@@ -131,12 +135,16 @@ export function idOf(name: string): string {
 }
 
 async function hashOf({ pbf, timeZone, attribution }: RegionImport): Promise<string> {
-  const hash = createHash('sha256').update(JSON.stringify([IMPORTER_VERSION, timeZone, attribution]));
+  const hash = createHash('sha256').update(
+    JSON.stringify([IMPORTER_VERSION, timeZone, attribution]),
+  );
   if (typeof pbf !== 'string') return hash.update(pbf).digest('hex').slice(0, 12);
   try {
     for await (const chunk of createReadStream(pbf)) hash.update(chunk as Buffer);
   } catch (error) {
-    throw new UnreadableRegion(`The file ${pbf} cannot be read (${error instanceof Error ? error.message : String(error)}).`);
+    throw new UnreadableRegion(
+      `The file ${pbf} cannot be read (${error instanceof Error ? error.message : String(error)}).`,
+    );
   }
   return hash.digest('hex').slice(0, 12);
 }

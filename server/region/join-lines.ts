@@ -4,7 +4,9 @@ import type { LonLat } from './osm-extract';
  * Joins lines of one kind that meet end to end, so that a road cut into many ways is drawn and
  * labelled as one. Where three or more meet, which pair is joined is a matter of order only.
  */
-export function joinLines<T>(lines: readonly { readonly kind: string; readonly points: LonLat[]; readonly data: T }[]): { points: LonLat[]; data: T }[] {
+export function joinLines<T>(
+  lines: readonly { readonly kind: string; readonly points: LonLat[]; readonly data: T }[],
+): { points: LonLat[]; data: T }[] {
   const ends = new Map<string, number[]>();
   const keyOf = (kind: string, [lon, lat]: LonLat): string => `${lon},${lat},${kind}`;
   lines.forEach(({ kind, points }, i) => {

@@ -6,7 +6,15 @@ import type { OsmWay, Tags } from './osm-model';
 import { polygonsOf, ringOf, type PolygonRings } from './rings';
 
 /** The layers of a tile; the map's style names them. */
-export const LAYERS = ['land', 'green', 'water', 'waterways', 'buildings', 'roads', 'places'] as const;
+export const LAYERS = [
+  'land',
+  'green',
+  'water',
+  'waterways',
+  'buildings',
+  'roads',
+  'places',
+] as const;
 export type LayerName = (typeof LAYERS)[number];
 
 export type RoadClass = 'motorway' | 'primary' | 'secondary' | 'tertiary' | 'local' | 'service';
@@ -58,7 +66,15 @@ export const roadClassOf = (tags: Tags): RoadClass | null =>
 
 /** Sorts an extract into the layers of the map. */
 export function mapLayers(extract: OsmExtract): MapLayers {
-  const features: Record<LayerName, MapFeature[]> = { land: [], green: [], water: [], waterways: [], buildings: [], roads: [], places: [] };
+  const features: Record<LayerName, MapFeature[]> = {
+    land: [],
+    green: [],
+    water: [],
+    waterways: [],
+    buildings: [],
+    roads: [],
+    places: [],
+  };
   const land = landOf(extract);
   for (const rings of land) features.land.push(polygon(rings, {}, MIN_ZOOM));
 
@@ -74,14 +90,26 @@ export function mapLayers(extract: OsmExtract): MapLayers {
       const ring = ringOf(extract, way.refs);
       return ring ? [[ring]] : [];
     });
-    if (way.tags['waterway'] === 'river' || way.tags['waterway'] === 'stream' || way.tags['waterway'] === 'canal') {
+    if (
+      way.tags['waterway'] === 'river' ||
+      way.tags['waterway'] === 'stream' ||
+      way.tags['waterway'] === 'canal'
+    ) {
       for (const line of linesOf(extract, way)) {
-        features.waterways.push(lineFeature(line, kindAndName(way.tags['waterway'], way.tags), way.tags['waterway'] === 'stream' ? 12 : 9, MAX_ZOOM));
+        features.waterways.push(
+          lineFeature(
+            line,
+            kindAndName(way.tags['waterway'], way.tags),
+            way.tags['waterway'] === 'stream' ? 12 : 9,
+            MAX_ZOOM,
+          ),
+        );
       }
     }
   }
   for (const relation of extract.relations) {
-    if (relation.tags['type'] === 'multipolygon') addArea(relation.tags, () => polygonsOf(extract, relation));
+    if (relation.tags['type'] === 'multipolygon')
+      addArea(relation.tags, () => polygonsOf(extract, relation));
   }
   features.roads.push(...roadFeatures(extract));
   for (const { at, tags } of extract.namedNodes) {
@@ -90,14 +118,19 @@ export function mapLayers(extract: OsmExtract): MapLayers {
       features.places.push({
         minzoom: place.minzoom,
         maxzoom: MAX_ZOOM,
-        feature: { type: 'Feature', properties: { kind: place.kind, name: tags['name'] }, geometry: { type: 'Point', coordinates: [...at] } },
+        feature: {
+          type: 'Feature',
+          properties: { kind: place.kind, name: tags['name'] },
+          geometry: { type: 'Point', coordinates: [...at] },
+        },
       });
     }
   }
   return { features, hasCoastline: land.length > 0 };
 }
 
-const kindAndName = (kind: string, tags: Tags): Record<string, string> => (tags['name'] ? { kind, name: tags['name'] } : { kind });
+const kindAndName = (kind: string, tags: Tags): Record<string, string> =>
+  tags['name'] ? { kind, name: tags['name'] } : { kind };
 
 interface Area {
   readonly layer: 'green' | 'water' | 'buildings';
@@ -106,14 +139,28 @@ interface Area {
 }
 
 function areaOf(tags: Tags): Area | null {
-  const { natural, landuse, leisure, waterway } = tags as Record<'natural' | 'landuse' | 'leisure' | 'waterway', string | undefined>;
-  if (natural === 'water' || landuse === 'reservoir' || waterway === 'riverbank') return { layer: 'water', kind: tags['water'] ?? 'water', minzoom: 8 };
-  if (natural === 'wood' || landuse === 'forest') return { layer: 'green', kind: 'wood', minzoom: 10 };
-  if (natural === 'wetland' || natural === 'beach') return { layer: 'green', kind: natural, minzoom: 11 };
+  const { natural, landuse, leisure, waterway } = tags as Record<
+    'natural' | 'landuse' | 'leisure' | 'waterway',
+    string | undefined
+  >;
+  if (natural === 'water' || landuse === 'reservoir' || waterway === 'riverbank')
+    return { layer: 'water', kind: tags['water'] ?? 'water', minzoom: 8 };
+  if (natural === 'wood' || landuse === 'forest')
+    return { layer: 'green', kind: 'wood', minzoom: 10 };
+  if (natural === 'wetland' || natural === 'beach')
+    return { layer: 'green', kind: natural, minzoom: 11 };
   if (leisure === 'nature_reserve') return { layer: 'green', kind: 'reserve', minzoom: 10 };
-  if (leisure === 'park' || leisure === 'garden' || leisure === 'golf_course' || landuse === 'recreation_ground' || landuse === 'grass' || landuse === 'cemetery')
+  if (
+    leisure === 'park' ||
+    leisure === 'garden' ||
+    leisure === 'golf_course' ||
+    landuse === 'recreation_ground' ||
+    landuse === 'grass' ||
+    landuse === 'cemetery'
+  )
     return { layer: 'green', kind: 'park', minzoom: leisure === 'park' ? 11 : 13 };
-  if (tags['building'] && tags['building'] !== 'no') return { layer: 'buildings', kind: 'building', minzoom: MAX_ZOOM };
+  if (tags['building'] && tags['building'] !== 'no')
+    return { layer: 'buildings', kind: 'building', minzoom: MAX_ZOOM };
   return null;
 }
 
@@ -136,22 +183,36 @@ export function placeOf(tags: Tags): { kind: string; minzoom: number } | null {
   if (place !== undefined) return { kind: tags['place']!, minzoom: place };
   if (tags['natural'] === 'bay' || tags['natural'] === 'strait') return { kind: 'sea', minzoom: 9 };
   const amenity = tags['amenity'];
-  if (amenity && AMENITIES.has(amenity)) return { kind: amenity, minzoom: amenity === 'hospital' ? 12 : 14 };
+  if (amenity && AMENITIES.has(amenity))
+    return { kind: amenity, minzoom: amenity === 'hospital' ? 12 : 14 };
   if (tags['shop'] === 'supermarket') return { kind: 'grocery', minzoom: 14 };
   if (tags['leisure'] === 'marina') return { kind: 'marina', minzoom: 13 };
   return null;
 }
 
-const AMENITIES = new Set(['hospital', 'clinic', 'school', 'pharmacy', 'fire_station', 'townhall', 'library', 'police']);
+const AMENITIES = new Set([
+  'hospital',
+  'clinic',
+  'school',
+  'pharmacy',
+  'fire_station',
+  'townhall',
+  'library',
+  'police',
+]);
 
 /** Roads for the two ends of the scale: joined to long lines below z13, with their bridges from z13. */
 function roadFeatures(extract: OsmExtract): MapFeature[] {
   const roads: { way: OsmWay; roadClass: RoadClass; points: LonLat[] }[] = [];
   for (const way of extract.ways.values()) {
     const roadClass = roadClassOf(way.tags);
-    if (roadClass) for (const points of linesOf(extract, way)) roads.push({ way, roadClass, points });
+    if (roadClass)
+      for (const points of linesOf(extract, way)) roads.push({ way, roadClass, points });
   }
-  const properties = ({ way, roadClass }: { way: OsmWay; roadClass: RoadClass }, withBridge: boolean): Record<string, string> => ({
+  const properties = (
+    { way, roadClass }: { way: OsmWay; roadClass: RoadClass },
+    withBridge: boolean,
+  ): Record<string, string> => ({
     class: roadClass,
     ...(way.tags['name'] ? { name: way.tags['name'] } : {}),
     ...(way.tags['ref'] ? { ref: way.tags['ref'] } : {}),
@@ -164,27 +225,48 @@ function roadFeatures(extract: OsmExtract): MapFeature[] {
         return { kind: JSON.stringify(data), points: road.points, data };
       }),
     );
-  const near = joined(true).map(({ points, data }) => lineFeature(points, data, Math.max(13, ROAD_MINZOOM[data['class'] as RoadClass]), MAX_ZOOM));
+  const near = joined(true).map(({ points, data }) =>
+    lineFeature(points, data, Math.max(13, ROAD_MINZOOM[data['class'] as RoadClass]), MAX_ZOOM),
+  );
   const far = joined(false)
     .filter(({ data }) => data['class'] !== 'service')
-    .map(({ points, data }) => lineFeature(points, data, ROAD_MINZOOM[data['class'] as RoadClass], 12));
+    .map(({ points, data }) =>
+      lineFeature(points, data, ROAD_MINZOOM[data['class'] as RoadClass], 12),
+    );
   return [...near, ...far];
 }
 
-const isBridge = ({ tags }: OsmWay): boolean => tags['bridge'] !== undefined && tags['bridge'] !== 'no';
+const isBridge = ({ tags }: OsmWay): boolean =>
+  tags['bridge'] !== undefined && tags['bridge'] !== 'no';
 
-const lineFeature = (points: readonly LonLat[], properties: Record<string, string>, minzoom: number, maxzoom: number): MapFeature => ({
+const lineFeature = (
+  points: readonly LonLat[],
+  properties: Record<string, string>,
+  minzoom: number,
+  maxzoom: number,
+): MapFeature => ({
   minzoom,
   maxzoom,
-  feature: { type: 'Feature', properties, geometry: { type: 'LineString', coordinates: points.map((p): Position => [...p]) } },
+  feature: {
+    type: 'Feature',
+    properties,
+    geometry: { type: 'LineString', coordinates: points.map((p): Position => [...p]) },
+  },
 });
 
-const polygon = (rings: PolygonRings, properties: Record<string, string>, minzoom: number): MapFeature => ({
+const polygon = (
+  rings: PolygonRings,
+  properties: Record<string, string>,
+  minzoom: number,
+): MapFeature => ({
   minzoom,
   maxzoom: MAX_ZOOM,
   feature: {
     type: 'Feature',
     properties,
-    geometry: { type: 'Polygon', coordinates: rings.map((ring) => ring.map((p): Position => [...p])) },
+    geometry: {
+      type: 'Polygon',
+      coordinates: rings.map((ring) => ring.map((p): Position => [...p])),
+    },
   },
 });

@@ -14,7 +14,10 @@ export interface OsmExtract {
 }
 
 /** Reads a whole extract. Files may be unsorted and may lack nodes that their ways name. */
-export async function readExtract(from: string | Uint8Array, onProgress?: (share: number) => void): Promise<OsmExtract> {
+export async function readExtract(
+  from: string | Uint8Array,
+  onProgress?: (share: number) => void,
+): Promise<OsmExtract> {
   const places = new NodePlaces();
   const namedNodes: { id: number; at: LonLat; tags: Tags }[] = [];
   const ways = new Map<number, OsmWay>();
@@ -66,7 +69,9 @@ class NodePlaces {
 
   finish(): void {
     if (this.isSorted) return;
-    const order = Array.from({ length: this.count }, (_, i) => i).sort((a, b) => this.ids[a]! - this.ids[b]!);
+    const order = Array.from({ length: this.count }, (_, i) => i).sort(
+      (a, b) => this.ids[a]! - this.ids[b]!,
+    );
     this.ids = Float64Array.from(order, (i) => this.ids[i]!);
     this.lons = Int32Array.from(order, (i) => this.lons[i]!);
     this.lats = Int32Array.from(order, (i) => this.lats[i]!);

@@ -1,7 +1,12 @@
 import { basename, resolve } from 'node:path';
 import { parseArgs } from 'node:util';
 import { ensureDemoRegion } from './demo-region';
-import { importRegion, OSM_ATTRIBUTION, type ImportedRegion, type ImportStep } from './import-region';
+import {
+  importRegion,
+  OSM_ATTRIBUTION,
+  type ImportedRegion,
+  type ImportStep,
+} from './import-region';
 import { UnreadableRegion } from './unreadable-region';
 
 const HELP = `Makes a region's tiles and address book from OpenStreetMap data.
@@ -36,14 +41,22 @@ async function main(): Promise<number> {
     }
     const name = values.name ?? basename(file).replace(/(\.osm)?\.pbf$/, '');
     return report(
-      await importRegion({ pbf: resolve(file), outFolder: tiles, name, timeZone, attribution: values.attribution ?? OSM_ATTRIBUTION, onProgress: say }),
+      await importRegion({
+        pbf: resolve(file),
+        outFolder: tiles,
+        name,
+        timeZone,
+        attribution: values.attribution ?? OSM_ATTRIBUTION,
+        onProgress: say,
+      }),
     );
   }
   process.stdout.write(HELP);
   return values.help ? 0 : 2;
 }
 
-const say = ({ step, share }: ImportStep): void => void process.stderr.write(`${String(Math.round(share * 100)).padStart(3)} %  ${step}\n`);
+const say = ({ step, share }: ImportStep): void =>
+  void process.stderr.write(`${String(Math.round(share * 100)).padStart(3)} %  ${step}\n`);
 
 function report({ manifest, folder }: ImportedRegion): number {
   const { addresses, streets, corners, tiles, bytes } = manifest.counts;
@@ -68,7 +81,9 @@ main().then(
     process.exitCode = code;
   },
   (error: unknown) => {
-    process.stderr.write(`${error instanceof UnreadableRegion ? error.message : String(error instanceof Error ? error.stack : error)}\n`);
+    process.stderr.write(
+      `${error instanceof UnreadableRegion ? error.message : String(error instanceof Error ? error.stack : error)}\n`,
+    );
     process.exitCode = 1;
   },
 );

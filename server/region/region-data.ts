@@ -1,7 +1,13 @@
 import { readFile, writeFile } from 'node:fs/promises';
 import { join } from 'node:path';
 import { gunzipSync, gzipSync } from 'node:zlib';
-import type { AddressBook, AddressPoint, NamedStreet, PlaceName, StreetCorner } from './address-points';
+import type {
+  AddressBook,
+  AddressPoint,
+  NamedStreet,
+  PlaceName,
+  StreetCorner,
+} from './address-points';
 import type { LonLat } from './osm-extract';
 
 /** What a region's folder says about itself, in `region.json`. */
@@ -39,9 +45,23 @@ const ADDRESS_FILE = 'addresses.json.gz';
 /** Column by column: half the size of row by row, and quicker to read. */
 interface PackedBook {
   readonly strings: string[];
-  readonly addresses: { number: string[]; street: number[]; city: number[]; postcode: number[]; flats: number[]; lon: number[]; lat: number[] };
+  readonly addresses: {
+    number: string[];
+    street: number[];
+    city: number[];
+    postcode: number[];
+    flats: number[];
+    lon: number[];
+    lat: number[];
+  };
   readonly streets: { name: number[]; city: number[]; lon: number[]; lat: number[] };
-  readonly corners: { first: number[]; second: number[]; city: number[]; lon: number[]; lat: number[] };
+  readonly corners: {
+    first: number[];
+    second: number[];
+    city: number[];
+    lon: number[];
+    lat: number[];
+  };
   readonly places: { name: number[]; kind: number[]; city: number[]; lon: number[]; lat: number[] };
 }
 
@@ -56,7 +76,9 @@ export async function writeAddressBook(folder: string, book: AddressBook): Promi
     known.set(text, strings.length);
     return strings.push(text) - 1;
   };
-  const places = <T extends { readonly at: LonLat }>(items: readonly T[]): { lon: number[]; lat: number[] } => ({
+  const places = <T extends { readonly at: LonLat }>(
+    items: readonly T[],
+  ): { lon: number[]; lat: number[] } => ({
     lon: items.map(({ at }) => packed(at[0])),
     lat: items.map(({ at }) => packed(at[1])),
   });
@@ -70,7 +92,11 @@ export async function writeAddressBook(folder: string, book: AddressBook): Promi
       flats: addresses.map((a) => a.flats),
       ...places(addresses),
     },
-    streets: { name: streets.map((s) => number(s.name)), city: streets.map((s) => number(s.city)), ...places(streets) },
+    streets: {
+      name: streets.map((s) => number(s.name)),
+      city: streets.map((s) => number(s.city)),
+      ...places(streets),
+    },
     corners: {
       first: corners.map((c) => number(c.first)),
       second: corners.map((c) => number(c.second)),
@@ -92,8 +118,12 @@ export async function writeAddressBook(folder: string, book: AddressBook): Promi
 export async function readAddressBook(folder: string): Promise<AddressBook> {
   const file = await readFile(join(folder, ADDRESS_FILE));
   const content = JSON.parse(gunzipSync(file).toString('utf8')) as PackedBook;
-  const text = (numbers: readonly number[], i: number): string => content.strings[numbers[i]!] ?? '';
-  const at = ({ lon, lat }: { lon: number[]; lat: number[] }, i: number): LonLat => [lon[i]! / 1e7, lat[i]! / 1e7];
+  const text = (numbers: readonly number[], i: number): string =>
+    content.strings[numbers[i]!] ?? '';
+  const at = ({ lon, lat }: { lon: number[]; lat: number[] }, i: number): LonLat => [
+    lon[i]! / 1e7,
+    lat[i]! / 1e7,
+  ];
   const { addresses, streets, corners, places } = content;
   return {
     addresses: addresses.number.map((number, i): AddressPoint => ({
@@ -104,14 +134,23 @@ export async function readAddressBook(folder: string): Promise<AddressBook> {
       postcode: text(addresses.postcode, i),
       flats: addresses.flats[i] ?? 1,
     })),
-    streets: streets.name.map((_, i): NamedStreet => ({ name: text(streets.name, i), city: text(streets.city, i), at: at(streets, i) })),
+    streets: streets.name.map((_, i): NamedStreet => ({
+      name: text(streets.name, i),
+      city: text(streets.city, i),
+      at: at(streets, i),
+    })),
     corners: corners.first.map((_, i): StreetCorner => ({
       first: text(corners.first, i),
       second: text(corners.second, i),
       city: text(corners.city, i),
       at: at(corners, i),
     })),
-    places: places.name.map((_, i): PlaceName => ({ name: text(places.name, i), kind: text(places.kind, i), city: text(places.city, i), at: at(places, i) })),
+    places: places.name.map((_, i): PlaceName => ({
+      name: text(places.name, i),
+      kind: text(places.kind, i),
+      city: text(places.city, i),
+      at: at(places, i),
+    })),
   };
 }
 

@@ -38,7 +38,8 @@ export function stitched(ways: readonly (readonly number[])[], mayTurn: boolean)
     chains.push(chain);
   };
   // Chains that begin nowhere else come first, so that an open chain is found from its beginning.
-  if (!mayTurn) ways.forEach((refs, i) => void (open.has(i) && !hasBefore.has(refs[0]!) && follow(i)));
+  if (!mayTurn)
+    ways.forEach((refs, i) => void (open.has(i) && !hasBefore.has(refs[0]!) && follow(i)));
   ways.forEach((_, i) => void (open.has(i) && follow(i)));
   return mayTurn ? joinedBackwards(chains) : chains;
 }
@@ -48,7 +49,13 @@ function joinedBackwards(chains: number[][]): number[][] {
   const result: number[][] = [];
   for (let chain of chains) {
     const isClosed = chain[0] === chain[chain.length - 1];
-    const at = isClosed ? -1 : result.findIndex((other) => other[0] !== other[other.length - 1] && (other[0] === chain[0] || other[0] === chain[chain.length - 1]));
+    const at = isClosed
+      ? -1
+      : result.findIndex(
+          (other) =>
+            other[0] !== other[other.length - 1] &&
+            (other[0] === chain[0] || other[0] === chain[chain.length - 1]),
+        );
     if (at >= 0) {
       const [other] = result.splice(at, 1) as [number[]];
       if (other[0] === chain[0]) chain = [...chain].reverse();
@@ -74,7 +81,8 @@ export function ringOf(extract: OsmExtract, refs: readonly number[]): LonLat[] |
 export function polygonsOf(extract: OsmExtract, relation: OsmRelation): PolygonRings[] {
   const waysOf = (isInner: boolean): OsmWay[] =>
     relation.members.flatMap(({ type, ref, role }) => {
-      const way = type === 'way' && (role === 'inner') === isInner ? extract.ways.get(ref) : undefined;
+      const way =
+        type === 'way' && (role === 'inner') === isInner ? extract.ways.get(ref) : undefined;
       return way && way.refs.length > 1 ? [way] : [];
     });
   const closed = (ways: readonly OsmWay[]): LonLat[][] =>
@@ -93,7 +101,8 @@ export function withHoles(outers: readonly LonLat[][], holes: readonly LonLat[][
   const polygons = outers
     .map((outer) => ({ outer, area: Math.abs(signedArea(outer)), holes: [] as LonLat[][] }))
     .sort((a, b) => a.area - b.area);
-  for (const hole of holes) polygons.find(({ outer }) => isInsideRing(hole[0]!, outer))?.holes.push(hole);
+  for (const hole of holes)
+    polygons.find(({ outer }) => isInsideRing(hole[0]!, outer))?.holes.push(hole);
   return polygons.map(({ outer, holes: own }) => [outer, ...own]);
 }
 
@@ -103,7 +112,8 @@ export function signedArea(ring: readonly LonLat[]): number {
   for (let i = 1; i < ring.length; i++) {
     const a = ring[i - 1]!;
     const b = ring[i]!;
-    twice += (a[0] - ring[0]![0]) * (b[1] - ring[0]![1]) - (b[0] - ring[0]![0]) * (a[1] - ring[0]![1]);
+    twice +=
+      (a[0] - ring[0]![0]) * (b[1] - ring[0]![1]) - (b[0] - ring[0]![0]) * (a[1] - ring[0]![1]);
   }
   return twice / 2;
 }

@@ -1,4 +1,8 @@
-import { canonicalNumber, houseNumberOrder, isEvenNumber } from '@shared/domain/address/house-number';
+import {
+  canonicalNumber,
+  houseNumberOrder,
+  isEvenNumber,
+} from '@shared/domain/address/house-number';
 import { tokensOf } from '@shared/domain/address/parse-address';
 import { canonical, wordsOfStreet, type StreetWords } from '@shared/domain/address/street-words';
 import type { AddressBook, AddressPoint } from './address-points';
@@ -25,7 +29,10 @@ export const wordsOf = (text: string): string[] => tokensOf(text).map(canonical)
 
 /** Groups a region's addresses and named roads by street and city; spellings of one street become one. */
 export function streetEntries(book: AddressBook): StreetEntry[] {
-  const drafts = new Map<string, { name: string; city: string; at: LonLat; points: AddressPoint[] }>();
+  const drafts = new Map<
+    string,
+    { name: string; city: string; at: LonLat; points: AddressPoint[] }
+  >();
   const draftOf = (name: string, city: string, at: LonLat): { points: AddressPoint[] } => {
     const key = `${wordsOf(name).join(' ')}|${city.toLowerCase()}`;
     const known = drafts.get(key);
@@ -35,7 +42,8 @@ export function streetEntries(book: AddressBook): StreetEntry[] {
     return draft;
   };
   for (const { name, city, at } of book.streets) draftOf(name, city, at);
-  for (const point of book.addresses) draftOf(point.street, point.city, point.at).points.push(point);
+  for (const point of book.addresses)
+    draftOf(point.street, point.city, point.at).points.push(point);
   return [...drafts.values()].map(({ name, city, at, points }) => {
     const houses = points
       .flatMap((point): House[] => {
@@ -45,12 +53,22 @@ export function streetEntries(book: AddressBook): StreetEntry[] {
       .sort((a, b) => a.order - b.order);
     const byNumber = new Map<string, AddressPoint>();
     // Exact spellings first: "21809" written without its hyphen must not hide a real 21809.
-    for (const point of points) if (!byNumber.has(canonicalNumber(point.number))) byNumber.set(canonicalNumber(point.number), point);
+    for (const point of points)
+      if (!byNumber.has(canonicalNumber(point.number)))
+        byNumber.set(canonicalNumber(point.number), point);
     for (const point of points) {
       const bare = point.number.toLowerCase().replace(/\D+/g, '');
       if (point.number.includes('-') && !byNumber.has(bare)) byNumber.set(bare, point);
     }
-    return { name, city, words: wordsOfStreet(wordsOf(name)), cityWords: wordsOf(city), at, houses, byNumber };
+    return {
+      name,
+      city,
+      words: wordsOfStreet(wordsOf(name)),
+      cityWords: wordsOf(city),
+      at,
+      houses,
+      byNumber,
+    };
   });
 }
 
@@ -68,7 +86,8 @@ export function matchNumber(entry: StreetEntry, number: string): NumberMatch {
   const exact = entry.byNumber.get(canonicalNumber(number));
   if (exact) return { kind: 'rooftop', at: exact.at, postcode: exact.postcode };
   const order = houseNumberOrder(number);
-  if (order === null || entry.houses.length === 0) return { kind: 'street', at: entry.at, postcode: '' };
+  if (order === null || entry.houses.length === 0)
+    return { kind: 'street', at: entry.at, postcode: '' };
   const isEven = isEvenNumber(order);
   let low = 0;
   let high = entry.houses.length;
@@ -88,10 +107,17 @@ export function matchNumber(entry: StreetEntry, number: string): NumberMatch {
   const above = sameSide(low, 1);
   if (below && above && above.order - below.order <= WIDEST_GAP) {
     const share = (order - below.order) / (above.order - below.order || 1);
-    const at = (i: 0 | 1): number => below.point.at[i] + (above.point.at[i] - below.point.at[i]) * share;
+    const at = (i: 0 | 1): number =>
+      below.point.at[i] + (above.point.at[i] - below.point.at[i]) * share;
     const postcode = below.point.postcode === above.point.postcode ? below.point.postcode : '';
     return { kind: 'interpolated', at: [at(0), at(1)], postcode };
   }
-  const nearest = [below, above].flatMap((house) => (house ? [house] : [])).sort((a, b) => Math.abs(a.order - order) - Math.abs(b.order - order))[0];
-  return { kind: 'street', at: nearest?.point.at ?? entry.at, postcode: nearest?.point.postcode ?? '' };
+  const nearest = [below, above]
+    .flatMap((house) => (house ? [house] : []))
+    .sort((a, b) => Math.abs(a.order - order) - Math.abs(b.order - order))[0];
+  return {
+    kind: 'street',
+    at: nearest?.point.at ?? entry.at,
+    postcode: nearest?.point.postcode ?? '',
+  };
 }

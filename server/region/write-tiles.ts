@@ -21,7 +21,8 @@ export interface TileCount {
 
 type Box = readonly [west: number, south: number, east: number, north: number];
 
-const columnOf = (lon: number, z: number): number => Math.min(2 ** z - 1, Math.max(0, Math.floor(((lon + 180) / 360) * 2 ** z)));
+const columnOf = (lon: number, z: number): number =>
+  Math.min(2 ** z - 1, Math.max(0, Math.floor(((lon + 180) / 360) * 2 ** z)));
 
 /** Web Mercator's northing as a share of the map, 0 in the north. */
 function mercatorY(lat: number): number {
@@ -29,10 +30,16 @@ function mercatorY(lat: number): number {
   return 0.5 - Math.log((1 + sine) / (1 - sine)) / (4 * Math.PI);
 }
 
-const rowOf = (lat: number, z: number): number => Math.min(2 ** z - 1, Math.max(0, Math.floor(mercatorY(lat) * 2 ** z)));
+const rowOf = (lat: number, z: number): number =>
+  Math.min(2 ** z - 1, Math.max(0, Math.floor(mercatorY(lat) * 2 ** z)));
 
 /** Writes `z/x/y.pbf` for every tile that holds something, packed with gzip. */
-export async function writeTiles(layers: MapLayers, box: Box, folder: string, onProgress?: (share: number) => void): Promise<TileCount> {
+export async function writeTiles(
+  layers: MapLayers,
+  box: Box,
+  folder: string,
+  onProgress?: (share: number) => void,
+): Promise<TileCount> {
   const sources = LAYERS.map((name) => ({
     name,
     index: new GeoJSONVT(
@@ -55,7 +62,8 @@ export async function writeTiles(layers: MapLayers, box: Box, folder: string, on
       for (let y = rowOf(north, z); y <= rowOf(south, z); y++) {
         const found: Partial<Record<LayerName, { features: LegacyFeature[] }>> = {};
         for (const { name, index } of sources) {
-          const features = index.getTile(z, x, y)?.features.flatMap((feature) => shownAt(z, feature)) ?? [];
+          const features =
+            index.getTile(z, x, y)?.features.flatMap((feature) => shownAt(z, feature)) ?? [];
           if (features.length > 0) found[name] = { features };
         }
         if (Object.keys(found).length === 0) continue;
@@ -76,16 +84,25 @@ function shownAt(z: number, feature: LegacyFeature): LegacyFeature[] {
   return z >= minzoom && z <= maxzoom ? [{ ...feature, tags }] : [];
 }
 
-async function writeTile(path: string, layers: Partial<Record<string, { features: LegacyFeature[] }>>): Promise<number> {
+async function writeTile(
+  path: string,
+  layers: Partial<Record<string, { features: LegacyFeature[] }>>,
+): Promise<number> {
   // The encoder's own tile type names only what it reads: type, geometry and tags.
-  const pbf = fromGeojsonVt(layers as Parameters<typeof fromGeojsonVt>[0], { version: 2, extent: EXTENT });
+  const pbf = fromGeojsonVt(layers as Parameters<typeof fromGeojsonVt>[0], {
+    version: 2,
+    extent: EXTENT,
+  });
   const packed = gzipSync(pbf, { level: 9 });
   await writeFile(path, packed);
   return packed.length;
 }
 
 /** Writes house numbers as `addr/16/x/y.pbf`. */
-export async function writeAddressTiles(addresses: readonly AddressPoint[], folder: string): Promise<TileCount> {
+export async function writeAddressTiles(
+  addresses: readonly AddressPoint[],
+  folder: string,
+): Promise<TileCount> {
   const scale = 2 ** ADDRESS_ZOOM;
   const byTile = new Map<string, LegacyFeature[]>();
   for (const { at, number } of addresses) {

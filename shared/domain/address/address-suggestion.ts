@@ -3,7 +3,14 @@
  * `interpolated` between known neighbours, `corner` where two streets meet, `street` somewhere on
  * it, `place` a named place, `pin` a point set on the map by hand.
  */
-export const ADDRESS_KINDS = ['rooftop', 'interpolated', 'corner', 'street', 'place', 'pin'] as const;
+export const ADDRESS_KINDS = [
+  'rooftop',
+  'interpolated',
+  'corner',
+  'street',
+  'place',
+  'pin',
+] as const;
 export type AddressKind = (typeof ADDRESS_KINDS)[number];
 
 export interface AddressSuggestion {

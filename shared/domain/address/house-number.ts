@@ -9,7 +9,9 @@ export function houseNumberOrder(number: string): number | null {
   const [, first, second, letter] = found;
   const half = number.includes('1/2') ? 0.5 : 0;
   const suffix = letter ? (letter.toLowerCase().charCodeAt(0) - 96) / 100 : 0;
-  return second === undefined ? Number(first) + half + suffix : Number(first) * 10_000 + Number(second) + suffix;
+  return second === undefined
+    ? Number(first) + half + suffix
+    : Number(first) * 10_000 + Number(second) + suffix;
 }
 
 /** One spelling for all spellings of a number: "218 - 09" and "218-9" are the same house. */

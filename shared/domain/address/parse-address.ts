@@ -40,19 +40,26 @@ export function parseAddress(text: string): ParsedAddress {
   const units = segments.map(takeUnit);
   const unit = units.map((found) => found.unit).find((found) => found !== null) ?? null;
   const parts = joinLoneNumber(units.map(({ rest }) => rest).filter((rest) => rest.length > 0));
-  const main = Math.max(0, parts.findIndex((tokens) => tokens.some((token) => NUMBER.test(token) && !POSTCODE.test(token))));
+  const main = Math.max(
+    0,
+    parts.findIndex((tokens) =>
+      tokens.some((token) => NUMBER.test(token) && !POSTCODE.test(token)),
+    ),
+  );
   const streetTokens = parts[main] ?? [];
   const tailTokens = parts.filter((_, i) => i !== main).flat();
 
   const ownTail = takePostcode(tailTokens);
   const split = splitCross(streetTokens);
   const { number, rest } = takeNumber(split.first);
-  const ownStreet = number !== null && ownTail.postcode === null ? takePostcode(rest) : { postcode: null, rest };
+  const ownStreet =
+    number !== null && ownTail.postcode === null ? takePostcode(rest) : { postcode: null, rest };
   return {
     number,
     unit,
     street: upToNote(ownStreet.rest).map(canonical),
-    cross: split.second.length > 0 && number === null ? upToNote(split.second).map(canonical) : null,
+    cross:
+      split.second.length > 0 && number === null ? upToNote(split.second).map(canonical) : null,
     tail: ownTail.rest.map(canonical),
     postcode: ownTail.postcode ?? ownStreet.postcode,
     isPostBox,
@@ -78,15 +85,23 @@ function takeUnit(tokens: readonly string[]): { unit: string | null; rest: strin
   for (let i = 0; i < tokens.length; i++) {
     const token = tokens[i]!;
     const next = tokens[i + 1];
-    const without = (count: number): string[] => [...tokens.slice(0, i), ...tokens.slice(i + count)];
+    const without = (count: number): string[] => [
+      ...tokens.slice(0, i),
+      ...tokens.slice(i + count),
+    ];
     const word = UNIT_WORDS.get(token);
-    if (word && next === '#' && tokens[i + 2] !== undefined) return { unit: `${word} ${tokens[i + 2]!.toUpperCase()}`, rest: without(3) };
-    if (word && next !== undefined && UNIT_ID.test(next)) return { unit: `${word} ${next.toUpperCase()}`, rest: without(2) };
-    if (token === '#' && next !== undefined && UNIT_ID.test(next)) return { unit: `Unit ${next.toUpperCase()}`, rest: without(2) };
+    if (word && next === '#' && tokens[i + 2] !== undefined)
+      return { unit: `${word} ${tokens[i + 2]!.toUpperCase()}`, rest: without(3) };
+    if (word && next !== undefined && UNIT_ID.test(next))
+      return { unit: `${word} ${next.toUpperCase()}`, rest: without(2) };
+    if (token === '#' && next !== undefined && UNIT_ID.test(next))
+      return { unit: `Unit ${next.toUpperCase()}`, rest: without(2) };
     const glued = GLUED_UNIT.exec(token);
-    if (glued) return { unit: `${UNIT_WORDS.get(glued[1]!)!} ${glued[2]!.toUpperCase()}`, rest: without(1) };
+    if (glued)
+      return { unit: `${UNIT_WORDS.get(glued[1]!)!} ${glued[2]!.toUpperCase()}`, rest: without(1) };
     const floor = /^(\d{1,2})(st|nd|rd|th)$/.exec(token);
-    if (floor && (next === 'floor' || next === 'fl')) return { unit: `Fl ${floor[1]!}`, rest: without(2) };
+    if (floor && (next === 'floor' || next === 'fl'))
+      return { unit: `Fl ${floor[1]!}`, rest: without(2) };
     const bare = BARE_UNITS.get(token);
     if (bare && i > 1 && i === tokens.length - 1) return { unit: bare, rest: without(1) };
   }
@@ -95,7 +110,9 @@ function takeUnit(tokens: readonly string[]): { unit: string | null; rest: strin
 
 /** "1210, N Heron St" is one line that a form has cut in two. */
 function joinLoneNumber(parts: readonly string[][]): string[][] {
-  const at = parts.findIndex((tokens) => tokens.length === 1 && NUMBER.test(tokens[0]!) && !POSTCODE.test(tokens[0]!));
+  const at = parts.findIndex(
+    (tokens) => tokens.length === 1 && NUMBER.test(tokens[0]!) && !POSTCODE.test(tokens[0]!),
+  );
   if (at < 0) return [...parts];
   const neighbour = at + 1 < parts.length ? at + 1 : at - 1;
   if (neighbour < 0) return [...parts];
@@ -111,13 +128,23 @@ function takePostcode(tokens: readonly string[]): { postcode: string | null; res
 
 function splitCross(tokens: readonly string[]): { first: string[]; second: string[] } {
   const at = tokens.findIndex((token, i) => i > 0 && i < tokens.length - 1 && CROSSES.has(token));
-  return at < 0 ? { first: [...tokens], second: [] } : { first: tokens.slice(0, at), second: tokens.slice(at + 1).filter((token) => !CROSSES.has(token)) };
+  return at < 0
+    ? { first: [...tokens], second: [] }
+    : {
+        first: tokens.slice(0, at),
+        second: tokens.slice(at + 1).filter((token) => !CROSSES.has(token)),
+      };
 }
 
 function takeNumber(tokens: readonly string[]): { number: string | null; rest: string[] } {
   const first = tokens[0];
-  const withoutHalf = (number: string, rest: readonly string[]): { number: string; rest: string[] } =>
-    rest[0] === 'half' ? { number: `${number} 1/2`, rest: rest.slice(1) } : { number, rest: [...rest] };
+  const withoutHalf = (
+    number: string,
+    rest: readonly string[],
+  ): { number: string; rest: string[] } =>
+    rest[0] === 'half'
+      ? { number: `${number} 1/2`, rest: rest.slice(1) }
+      : { number, rest: [...rest] };
   if (first !== undefined && NUMBER.test(first)) {
     const rest = tokens.slice(1);
     // "94 road" is a street, not house 94 of a street called Road.
@@ -129,7 +156,13 @@ function takeNumber(tokens: readonly string[]): { number: string | null; rest: s
   const last = body[body.length - 1];
   const before = body[body.length - 2];
   if (last !== undefined && before !== undefined && NUMBER.test(last) && !isRoadNumber(body)) {
-    return { number: last, rest: [...body.slice(0, -1), ...(postcode.postcode?.startsWith('0') ? [postcode.postcode] : [])] };
+    return {
+      number: last,
+      rest: [
+        ...body.slice(0, -1),
+        ...(postcode.postcode?.startsWith('0') ? [postcode.postcode] : []),
+      ],
+    };
   }
   return { number: null, rest: [...tokens] };
 }
@@ -138,7 +171,10 @@ function takeNumber(tokens: readonly string[]): { number: string | null; rest: s
 function isRoadNumber(tokens: readonly string[]): boolean {
   const before = canonical(tokens[tokens.length - 2]!);
   if (!BEFORE_ROAD_NUMBER.has(before)) return false;
-  const name = tokens.slice(0, -2).map(canonical).filter((token) => !BEFORE_ROAD_NUMBER.has(token) && token.length > 1);
+  const name = tokens
+    .slice(0, -2)
+    .map(canonical)
+    .filter((token) => !BEFORE_ROAD_NUMBER.has(token) && token.length > 1);
   return name.length === 0;
 }
 

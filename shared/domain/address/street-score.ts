@@ -37,10 +37,12 @@ export interface Candidate {
 /** Cost of reading one word for another; null when they are too different. */
 export function wordCost(said: string, known: string, mayBePrefix: boolean): number | null {
   if (said === known) return 0;
-  if (/^\d/.test(said) || /^\d/.test(known)) return mayBePrefix && known.startsWith(said) ? 0.3 : null;
+  if (/^\d/.test(said) || /^\d/.test(known))
+    return mayBePrefix && known.startsWith(said) ? 0.3 : null;
   let best: number | null = null;
-  if (mayBePrefix && said.length >= 1 && known.startsWith(said)) best = 0.1 + 0.02 * (known.length - said.length);
-  const limit = known.length <= 3 ? (said.length >= 3 ? 1 : 0) : known.length <= 6 ? 2 : 3;
+  if (mayBePrefix && said.length >= 1 && known.startsWith(said))
+    best = 0.1 + 0.02 * (known.length - said.length);
+  const limit = known.length <= 3 ? (said.length >= 3 ? 1 : 0) : known.length <= 8 ? 2 : 3;
   const off = editDistance(said, known, limit);
   if (off <= limit) {
     const cost = (off * 2.1) / Math.max(known.length, said.length, 4);
@@ -57,15 +59,30 @@ export function wordCost(said: string, known: string, mayBePrefix: boolean): num
 /** Cost of reading a search as this street in this city. */
 export function streetCost(query: Query, { words, city }: Candidate): number {
   const left = [...query.street];
-  const mayBePrefix = (i: number): boolean => query.isTyping && query.tail.length === 0 && i === left.length - 1;
+  const mayBePrefix = (i: number): boolean =>
+    query.isTyping && query.tail.length === 0 && i === left.length - 1;
   let cost = nameCost(words.names, left, mayBePrefix);
   cost += directionCost(words.directions, left);
   cost += typeCost(words.types, left, query.isTyping);
   return cost + cityCost(query, city, left);
 }
 
+/** The part of the cost that the street's name alone causes; no street of that name costs less. */
+export function namesCost(query: Query, names: readonly string[]): number {
+  const left = [...query.street];
+  return nameCost(
+    names,
+    left,
+    (i) => query.isTyping && query.tail.length === 0 && i === left.length - 1,
+  );
+}
+
 /** Matches the street's own words, the longest first, and takes them out of what is left. */
-function nameCost(names: readonly string[], left: string[], mayBePrefix: (i: number) => boolean): number {
+function nameCost(
+  names: readonly string[],
+  left: string[],
+  mayBePrefix: (i: number) => boolean,
+): number {
   let cost = 0;
   const open = [...names].sort((a, b) => b.length - a.length);
   for (const name of open) {
@@ -113,7 +130,9 @@ function directionCost(directions: readonly string[], left: string[]): number {
 function typeCost(types: readonly string[], left: string[], isTyping: boolean): number {
   let cost = 0;
   for (const type of types) {
-    const at = left.findIndex((word, i) => word === type || isAlmostType(word, type, isTyping && i === left.length - 1));
+    const at = left.findIndex(
+      (word, i) => word === type || isAlmostType(word, type, isTyping && i === left.length - 1),
+    );
     if (at >= 0) {
       cost += left[at] === type ? 0 : 0.05;
       left.splice(at, 1);
@@ -137,7 +156,9 @@ function typeCost(types: readonly string[], left: string[], isTyping: boolean): 
 function isAlmostType(word: string, type: string, mayBePrefix: boolean): boolean {
   const long = longType(type);
   if (mayBePrefix && word.length >= 2 && long.startsWith(word)) return true;
-  return word.length >= 4 && long.length >= 4 && editDistance(word, long, 2) <= (long.length > 5 ? 2 : 1);
+  return (
+    word.length >= 4 && long.length >= 4 && editDistance(word, long, 2) <= (long.length > 5 ? 2 : 1)
+  );
 }
 
 function cityCost(query: Query, city: readonly string[], left: string[]): number {
@@ -153,7 +174,8 @@ function cityCost(query: Query, city: readonly string[], left: string[]): number
     return true;
   };
   left.forEach((word, i) => {
-    if (!isCityWord(word, query.isTyping && query.tail.length === 0 && i === left.length - 1)) cost += COST.extraWord;
+    if (!isCityWord(word, query.isTyping && query.tail.length === 0 && i === left.length - 1))
+      cost += COST.extraWord;
   });
   let isNamed = false;
   query.tail.forEach((word, i) => {

@@ -69,18 +69,32 @@ const shortOf = (table: readonly (readonly string[])[]): ReadonlyMap<string, str
 
 const SHORT_TYPE = shortOf(TYPES);
 const SHORT_DIRECTION = shortOf(DIRECTIONS);
-const LONG_TYPE: ReadonlyMap<string, string> = new Map(TYPES.map((words) => [words[0]!, words[1]!]));
+const LONG_TYPE: ReadonlyMap<string, string> = new Map(
+  TYPES.map((words) => [words[0]!, words[1]!]),
+);
 
 export const isType = (canonical: string): boolean => LONG_TYPE.has(canonical);
-export const isDirection = (canonical: string): boolean => SHORT_DIRECTION.get(canonical) === canonical;
+export const isDirection = (canonical: string): boolean =>
+  SHORT_DIRECTION.get(canonical) === canonical;
 
 /** The long form of a type's short form: 'st' gives 'street'. */
 export const longType = (short: string): string => LONG_TYPE.get(short) ?? short;
 
 const ORDINAL_WORDS: ReadonlyMap<string, string> = new Map(
-  ['first', 'second', 'third', 'fourth', 'fifth', 'sixth', 'seventh', 'eighth', 'ninth', 'tenth', 'eleventh', 'twelfth'].map(
-    (word, i): [string, string] => [word, String(i + 1)],
-  ),
+  [
+    'first',
+    'second',
+    'third',
+    'fourth',
+    'fifth',
+    'sixth',
+    'seventh',
+    'eighth',
+    'ninth',
+    'tenth',
+    'eleventh',
+    'twelfth',
+  ].map((word, i): [string, string] => [word, String(i + 1)]),
 );
 
 /** One spelling for all spellings of a word: 'Street' and 'str' give 'st', '94th' gives '94'. */
@@ -121,8 +135,10 @@ export function postalStreet(name: string): string {
   return words
     .map((word, i) => {
       const lower = word.toLowerCase();
-      if (i === 0 && words.length > 2 && SHORT_DIRECTION.has(lower) && lower.length > 2) return SHORT_DIRECTION.get(lower)!.toUpperCase();
-      if (i === last && SHORT_DIRECTION.has(lower) && lower.length > 2 && words.length > 2) return SHORT_DIRECTION.get(lower)!.toUpperCase();
+      if (i === 0 && words.length > 2 && SHORT_DIRECTION.has(lower) && lower.length > 2)
+        return SHORT_DIRECTION.get(lower)!.toUpperCase();
+      if (i === last && SHORT_DIRECTION.has(lower) && lower.length > 2 && words.length > 2)
+        return SHORT_DIRECTION.get(lower)!.toUpperCase();
       if (i !== last || lower === 'saint' || !LONG_FORMS.has(lower)) return word;
       const short = SHORT_TYPE.get(lower)!;
       return short[0]!.toUpperCase() + short.slice(1);

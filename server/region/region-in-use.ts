@@ -1,0 +1,13 @@
+import type { RegionDto } from '@shared/contract/areas';
+import type { AddressSuggestion } from '@shared/contract/calls';
+import type { LonLat } from '@shared/contract/common';
+
+/** The region that the application works in: its map, its zone and its addresses. */
+export interface RegionInUse {
+  readonly dto: RegionDto;
+  /** Suggestions for what a call taker has typed so far, likeliest first. */
+  suggest(text: string, near: LonLat | null): AddressSuggestion[];
+  /** The one address that a written line means, or `null` when that is not sure enough. */
+  locate(text: string): AddressSuggestion | null;
+  nearest(lonLat: LonLat): AddressSuggestion | null;
+}
