@@ -146,6 +146,7 @@ export class WorkerClient<Request, Response> {
     } catch (error) {
       // The request holds something that cannot be copied to a thread, such as a function.
       this.current = null;
+      clearTimeout(job.timer);
       this.worker!.unref();
       this.settle(job, () => job.reject(this.error('refused', String(error))));
       this.sendNext();
