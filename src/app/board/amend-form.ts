@@ -1,0 +1,199 @@
+import {
+  ChangeDetectionStrategy,
+  Component,
+  computed,
+  inject,
+  linkedSignal,
+  output,
+  signal,
+} from '@angular/core';
+import type { CallDetail, CompartmentFacts, UnitFacts } from '@shared/contract/calls';
+import type { CompartmentKind, InspectionFinding, UnitKind } from '@shared/domain/cold-unit';
+import { UNIT_KINDS } from '@shared/domain/cold-unit';
+import type { Instant } from '@shared/domain/instant';
+import { newId } from '../core/api';
+import { Clock } from '../core/clock';
+import { Session } from '../core/session';
+import { Zone } from '../core/zone';
+import { AddressField } from '../intake/address-field';
+import { changeCompartment, changeUnit, newUnit } from '../intake/intake-draft';
+import { readTimeEntry } from '../intake/time-entry';
+import { UnitCard } from '../intake/unit-card';
+import { CallModel } from './call-model';
+import { COMPARTMENT_WORDS, UNIT_WORDS } from './compartment-words';
+import { fromNowWords } from './time-words';
+
+const FINDINGS: readonly { readonly value: InspectionFinding; readonly label: string }[] = [
+  { value: 'ice-crystals', label: 'Ice crystals' },
+  { value: 'at-or-below-40', label: '40 °F or below' },
+  { value: 'thawed', label: 'Thawed' },
+];
+
+/** Corrects a call and adds what is found out later: readings, a look inside, dry ice. */
+@Component({
+  selector: 'thaw-amend-form',
+  imports: [AddressField, UnitCard],
+  templateUrl: './amend-form.html',
+  styleUrls: ['../intake/fields.scss', './amend-form.scss'],
+  changeDetection: ChangeDetectionStrategy.OnPush,
+})
+export class AmendForm {
+  protected readonly call = inject(CallModel);
+  private readonly clock = inject(Clock);
+  private readonly session = inject(Session);
+  private readonly zone = inject(Zone);
+
+  readonly closed = output();
+
+  /**
+   * What is edited. It starts from the call as it was when the form was opened and keeps what was
+   * typed when the call changes meanwhile.
+   */
+  protected readonly edited = linkedSignal<CallDetail | null, Edited | null>({
+    source: () => this.call.detail(),
+    computation: (detail, previous) => previous?.value ?? (detail ? startFrom(detail) : null),
+  });
+  protected readonly error = signal('');
+
+  protected readonly findings = FINDINGS;
+  protected readonly unitKinds = UNIT_KINDS.map((kind) => ({ kind, name: UNIT_WORDS[kind] }));
+  protected readonly words = COMPARTMENT_WORDS;
+  protected readonly unitWords = UNIT_WORDS;
+
+  protected readonly out = computed(() => this.meaning(this.edited()?.outAt ?? null));
+  protected readonly back = computed(() => this.meaning(this.edited()?.backAt ?? null));
+
+  protected set(part: Partial<Edited>): void {
+    this.edited.update((edited) => (edited ? { ...edited, ...part } : null));
+  }
+
+  protected setUnit(id: string, next: UnitFacts): void {
+    this.set({ units: changeUnit(this.edited()?.units ?? [], id, () => next) });
+  }
+
+  protected addUnit(kind: string): void {
+    if (kind === '') return;
+    this.set({ units: [...(this.edited()?.units ?? []), newUnit(kind as UnitKind, newId())] });
+  }
+
+  protected removeUnit(id: string): void {
+    this.set({ units: (this.edited()?.units ?? []).filter((unit) => unit.id !== id) });
+  }
+
+  protected typeTime(which: 'out' | 'back', text: string): void {
+    const entry = readTimeEntry(text, this.clock.exact(), this.session.zone());
+    const at = entry.kind === 'moment' ? entry.at : null;
+    this.error.set(entry.kind === 'unreadable' ? entry.why : '');
+    if (which === 'out') this.set({ outText: text, outAt: at, timesTouched: true });
+    else this.set({ backText: text, backAt: at, timesTouched: true, stillOut: false });
+  }
+
+  protected addReading(unit: UnitFacts, compartment: CompartmentFacts, text: string): void {
+    const temperatureF = Number(text);
+    if (text.trim() === '' || !(temperatureF >= -60 && temperatureF <= 150)) return;
+    const readings = [...compartment.readings, { at: this.clock.exact(), temperatureF }];
+    this.setUnit(unit.id, changeCompartment(unit, compartment.kind, { readings }));
+  }
+
+  protected addInspection(unit: UnitFacts, compartment: CompartmentFacts, finding: string): void {
+    if (finding === '') return;
+    const look = { at: this.clock.exact(), finding: finding as InspectionFinding };
+    const inspections = [...compartment.inspections, look];
+    this.setUnit(unit.id, changeCompartment(unit, compartment.kind, { inspections }));
+  }
+
+  protected addDryIce(
+    unit: UnitFacts,
+    compartment: CompartmentFacts,
+    pounds: string,
+    cubicFeet: string,
+  ): void {
+    const ice = { at: this.clock.exact(), pounds: Number(pounds), cubicFeet: Number(cubicFeet) };
+    if (!(ice.pounds > 0 && ice.cubicFeet > 0)) return;
+    const dryIce = [...compartment.dryIce, ice];
+    this.setUnit(unit.id, changeCompartment(unit, compartment.kind, { dryIce }));
+  }
+
+  protected foundWords(compartment: CompartmentFacts): string {
+    const { readings, inspections, dryIce } = compartment;
+    return [
+      ...readings.map((one) => `${one.temperatureF} °F at ${this.zone.dayTime(one.at)}`),
+      ...inspections.map(
+        (one) =>
+          `${FINDINGS.find(({ value }) => value === one.finding)?.label ?? one.finding} at ${this.zone.dayTime(one.at)}`,
+      ),
+      ...dryIce.map((one) => `${one.pounds} lb dry ice at ${this.zone.dayTime(one.at)}`),
+    ].join('; ');
+  }
+
+  protected isFrozenKind(kind: CompartmentKind): boolean {
+    return kind === 'freezer';
+  }
+
+  protected async save(): Promise<void> {
+    const edited = this.edited();
+    if (!edited) return;
+    const problem = problemIn(edited);
+    this.error.set(problem);
+    if (problem !== '' || edited.outAt === null) return;
+    const isSaved = await this.call.amend({
+      name: edited.name.trim(),
+      address: { ...edited.address, text: edited.address.text.trim() },
+      mayText: edited.mayText,
+      language: edited.language,
+      units: [...edited.units],
+      ...(edited.timesTouched
+        ? {
+            powerOutAt: edited.outAt,
+            powerBackAt: edited.stillOut ? null : edited.backAt,
+            timesFrom: 'caller' as const,
+          }
+        : {}),
+    });
+    if (isSaved) this.closed.emit();
+  }
+
+  private meaning(at: Instant | null): { readonly at: string; readonly words: string } {
+    if (at === null) return { at: '', words: '' };
+    return { at: this.zone.dayTime(at), words: fromNowWords(at, this.clock.now()) };
+  }
+}
+
+interface Edited {
+  readonly name: string;
+  readonly address: CallDetail['row']['address'];
+  readonly mayText: boolean;
+  readonly language: 'en' | 'es';
+  readonly outText: string;
+  readonly backText: string;
+  readonly outAt: Instant | null;
+  readonly backAt: Instant | null;
+  readonly stillOut: boolean;
+  /** Times that nobody touched keep following the outage area. */
+  readonly timesTouched: boolean;
+  readonly units: readonly UnitFacts[];
+}
+
+const startFrom = (detail: CallDetail): Edited => ({
+  name: detail.row.name,
+  address: detail.row.address,
+  mayText: detail.mayText,
+  language: detail.language,
+  outText: '',
+  backText: '',
+  outAt: detail.powerOutAt,
+  backAt: detail.powerBackAt,
+  stillOut: detail.powerBackAt === null,
+  timesTouched: false,
+  units: detail.units,
+});
+
+function problemIn({ name, address, units, outAt, backAt, stillOut }: Edited): string {
+  if (name.trim() === '') return 'A name is needed.';
+  if (address.text.trim() === '') return 'An address is needed.';
+  if (units.length === 0) return 'A call has at least one unit.';
+  if (outAt === null) return 'When did the power go?';
+  if (!stillOut && backAt === null) return 'When did it come back? Or tick "still out".';
+  if (!stillOut && backAt !== null && backAt < outAt) return 'It came back before it went.';
+  return '';
+}
