@@ -4,7 +4,7 @@ const clock = (raw: string): string | null => {
   const said = readWhen(raw).clock;
   return (
     said &&
-    `${said.hour}:${String(said.minute).padStart(2, '0')}${said.half === 'unknown' ? '?' : ''}`
+    `${said.hour}:${String(said.minute).padStart(2, '0')}${said.style === 'bare' ? '?' : ''}`
   );
 };
 

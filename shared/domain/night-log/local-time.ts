@@ -21,6 +21,11 @@ export interface ClockSaid {
   readonly hour: number;
   readonly minute: number;
   readonly half: 'known' | 'unknown';
+  /**
+   * How it is written: "2:15a" is 12h; "14:20", "00:15" and "0215 hrs" can only be 24h; "02:15" is
+   * padded and most often 24h; "2:15" is bare and says nothing.
+   */
+  readonly style: '12h' | '24h' | 'padded' | 'bare';
 }
 
 /** A day as somebody wrote it. */
@@ -190,7 +195,10 @@ function findClock(text: string): { said: ClockSaid; rest: string } | null {
   const word = /\b(?:(12)\s*)?(midnight|midnite|mid|noon|midday|medianoche|mediodia)\b/.exec(text);
   if (word) {
     const noon = /noon|midday|mediodia/.test(word[2] ?? '');
-    return { said: { hour: noon ? 12 : 0, minute: 0, half: 'known' }, rest: without(text, word) };
+    return {
+      said: { hour: noon ? 12 : 0, minute: 0, half: 'known', style: '12h' },
+      rest: without(text, word),
+    };
   }
   const half = String.raw`(?:\s*(a\.?\s?m?|p\.?\s?m?|in the morning|at night|hrs?|hours|h|u)\b\.?)?`;
   const patterns = [
@@ -219,14 +227,15 @@ function clockOf(hourText: string, minuteText: string, halfText: string): ClockS
   const half = halfText.replace(/[.\s]/g, '');
   const afternoon = half.startsWith('p') || half === 'atnight';
   if (half.startsWith('a') || half.startsWith('p') || half === 'inthemorning') {
-    if (hour > 12) return { hour, minute, half: 'known' };
+    if (hour > 12) return { hour, minute, half: 'known', style: '24h' };
     if (half === 'atnight' && (hour < 5 || hour === 12))
-      return { hour: hour % 12, minute, half: 'known' };
-    return { hour: (hour % 12) + (afternoon ? 12 : 0), minute, half: 'known' };
+      return { hour: hour % 12, minute, half: 'known', style: '12h' };
+    return { hour: (hour % 12) + (afternoon ? 12 : 0), minute, half: 'known', style: '12h' };
   }
-  const twentyFour =
-    hour > 12 || hour === 0 || /^0\d/.test(hourText) || /^(?:h|hrs?|hours|u)$/.test(half);
-  return { hour, minute, half: twentyFour ? 'known' : 'unknown' };
+  if (hour > 12 || hour === 0 || /^(?:h|hrs?|hours|u)$/.test(half)) {
+    return { hour, minute, half: 'known', style: '24h' };
+  }
+  return { hour, minute, half: 'unknown', style: /^0\d/.test(hourText) ? 'padded' : 'bare' };
 }
 
 function absolute(text: string): number | null {
@@ -249,7 +258,12 @@ function spreadsheetSerial(text: string): WhenSaid | null {
   const fraction = whole ? whole[2] : /^0?[.,](\d{2,})$/.exec(text)?.[1];
   if (!whole && (fraction === undefined || fraction.length < 3)) return null;
   const minutes = Math.round(Number(`0.${fraction ?? '0'}`) * 24 * 60) % (24 * 60);
-  const clock: ClockSaid = { hour: Math.floor(minutes / 60), minute: minutes % 60, half: 'known' };
+  const clock: ClockSaid = {
+    hour: Math.floor(minutes / 60),
+    minute: minutes % 60,
+    half: 'known',
+    style: '24h',
+  };
   let date: DateSaid | null = null;
   if (whole) {
     const day = new Date(Date.UTC(1899, 11, 30) + Number(whole[1]) * 86_400_000);
