@@ -77,6 +77,10 @@ describe('readAddress', () => {
     ],
     [{ whole: 'Cape Loop Rd', number: '12' }, '12|Cape Loop Rd|-|-|-|-'],
     [{ city: 'Port Ness' }, '-|-|-|Port Ness|-|-'],
+    [
+      { whole: '12 Cape Loop Rd', city: 'Port Ness, NC 27999' },
+      '12|Cape Loop Rd|-|Port Ness|NC|27999',
+    ],
   ])('joins %j into %p', (cells, expected) => {
     expect(shown(cells)).toBe(expected);
   });

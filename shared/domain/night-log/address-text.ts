@@ -62,9 +62,11 @@ export function readAddress(
   const cut = whole ? cutWhole(whole, cities) : EMPTY;
   const unitCell = blankOut(cells.unit);
   const unitNo = unitCell ? unitOf(unitCell) : cut.unitNo;
-  const city = titled(blankOut(cells.city)) || cut.city;
-  const state = blankOut(cells.state).toUpperCase() || cut.state;
-  const postcode = blankOut(cells.postcode).replace(/^'|\.0$/g, '') || cut.postcode;
+  // "Port Ness, NC 27999" in the town's cell
+  const town = /^(.*?),?(?:\s+([A-Za-z]{2}))?,?\s+(\d{5}(?:-\d{4})?)$/.exec(blankOut(cells.city));
+  const city = titled(town?.[1] ?? blankOut(cells.city)) || cut.city;
+  const state = (blankOut(cells.state) || (town?.[2] ?? '')).toUpperCase() || cut.state;
+  const postcode = blankOut(cells.postcode).replace(/^'|\.0$/g, '') || (town?.[3] ?? cut.postcode);
   if (!cut.street && !city && !postcode) return null;
   const line = [cut.number, cut.street].filter(Boolean).join(' ');
   const text = [line, city, [state, postcode].filter(Boolean).join(' ')].filter(Boolean).join(', ');

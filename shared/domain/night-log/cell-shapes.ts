@@ -15,6 +15,7 @@ export type CellShape =
   | 'date-time'
   | 'duration'
   | 'address'
+  | 'town-line'
   | 'street'
   | 'apartment'
   | 'house-number'
@@ -63,6 +64,7 @@ export function shapeOf(raw: string): CellShape | null {
   if (/^[~<>]?\s*\d{1,2}(?:[.,]\d)?\+?\s*(?:h|hrs?|hours?|horas?)\b\.?(?: ago)?$/.test(folded))
     return 'duration';
   if (looksLikeAddress(text)) return 'address';
+  if (/^\p{L}[\p{L} .'-]+,?(?: [A-Za-z]{2},?)? \d{5}(?:-\d{4})?$/u.test(text)) return 'town-line';
   if (
     /^(?:apt|apartment|unit|ste|suite|lot|rm|room|trlr|flat|fl|apto|spc)\b\.? ?#? ?[a-z0-9-]{1,6}$|^# ?[a-z0-9-]{1,5}$|^\d{1,4}[a-z]$|^[a-z]-?\d{1,3}$/.test(
       folded,
@@ -110,11 +112,11 @@ const FITS: Readonly<Partial<Record<ColumnRole, readonly CellShape[]>>> = {
   business: ['name'],
   phone: ['phone'],
   altPhone: ['phone'],
-  address: ['address', 'street'],
+  address: ['address', 'street', 'town-line'],
   streetNumber: ['number', 'house-number', 'apartment'],
   street: ['street', 'name', 'address'],
   unitNo: ['apartment', 'number', 'state'],
-  city: ['name', 'street'],
+  city: ['name', 'street', 'town-line'],
   state: ['state'],
   postcode: ['postcode'],
   unitKind: ['unit'],

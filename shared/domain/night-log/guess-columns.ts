@@ -26,12 +26,9 @@ export function guessColumns(
   header: readonly string[] | null,
   rows: readonly (readonly string[])[],
 ): ColumnMap {
-  const width = Math.max(
-    header?.length ?? 0,
-    ...rows.slice(0, SAMPLE_ROWS).map((row) => row.length),
-    0,
-  );
   const usual = header?.length ?? usualWidth(rows);
+  // A row with too many cells has slipped; only when most have is a column without a title.
+  const width = Math.max(usual, usualWidth(rows));
   // Ragged rows would blur every column to the right of the slip.
   const sampled = rows.filter((row) => row.length === usual).slice(0, SAMPLE_ROWS);
   const from = sampled.length >= 3 ? sampled : rows.slice(0, SAMPLE_ROWS);
@@ -54,6 +51,8 @@ export function guessColumns(
   }
   promotePhone(chosen);
   promoteTime(chosen, candidates);
+
+  promoteMessage(chosen, samples);
 
   const columns: ColumnGuess[] = samples.map((sample, index) => {
     const title = header?.[index]?.trim() || null;
@@ -204,7 +203,7 @@ function contentScore(role: ColumnRole, sample: ColumnSample): [number, string] 
         'its cells are words',
       ];
     case 'address': {
-      const addresses = share('address') + share('street') * 0.5;
+      const addresses = share('address') + share('street') * 0.5 + share('town-line') * 0.5;
       return [
         addresses >= 0.35 ? Math.min(1, addresses) : -0.8,
         `${percent(share('address'))} are addresses`,
@@ -238,10 +237,10 @@ function contentScore(role: ColumnRole, sample: ColumnSample): [number, string] 
       ];
     }
     case 'city': {
-      const names = share('name', 'street', 'other', 'apartment');
+      const names = share('name', 'street', 'other', 'apartment', 'town-line');
       const few = sample.different <= Math.max(4, sample.count * 0.35) && sample.different <= 40;
       return [
-        share('name') + share('street') >= 0.6 ? names * (few ? 0.8 : 0.25) : -0.7,
+        share('name', 'street', 'town-line') >= 0.6 ? names * (few ? 0.8 : 0.25) : -0.7,
         `${sample.different} different names`,
       ];
     }
@@ -363,6 +362,28 @@ function promoteTime(chosen: Map<number, Candidate>, candidates: readonly Candid
       ['ignore', 'detail', 'callId', undefined].includes(chosen.get(index)?.role),
   );
   if (best) chosen.set(best.index, best);
+}
+
+/** Without a message of its own, the column that talks most is the message. */
+function promoteMessage(chosen: Map<number, Candidate>, samples: readonly ColumnSample[]): void {
+  if ([...chosen.values()].some(({ role }) => role === 'remarks')) return;
+  const free = samples
+    .map((sample, index) => ({ sample, index }))
+    .filter(
+      ({ sample, index }) =>
+        sample.count > 0 &&
+        sample.meanWords >= 1.5 &&
+        ['detail', undefined].includes(chosen.get(index)?.role),
+    )
+    .sort((a, b) => b.sample.meanWords - a.sample.meanWords)[0];
+  if (free) {
+    chosen.set(free.index, {
+      index: free.index,
+      role: 'remarks',
+      score: 0.35,
+      why: 'the wordiest column left',
+    });
+  }
 }
 
 function leftOver(index: number, sample: ColumnSample): Candidate {

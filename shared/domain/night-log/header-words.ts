@@ -76,13 +76,13 @@ const TITLES: readonly (readonly [ColumnRole, number, RegExp])[] = [
   t(
     'receivedDate',
     1,
-    `${CALL}? ?(?:date|dt|day|fecha)|date (?:of call|called|in|recd|received|rcvd|taken|rec d|of msg|of message)|(?:recd|received|rcvd|taken|rec d|logged|start|entry|msg) (?:date|dt|day)|call day|fecha(?: de llamada)?`,
+    `${CALL}? ?(?:date|dt|day|fecha)|date (?:of call|called|in|recd|received|rcvd|taken|rec d|of msg|of message)|(?:recd|received|rcvd|taken|rec d|logged|start|entry|msg) (?:date|dt|day)|call day|shift (?:date|dt|day)|service date|fecha(?: de llamada)?`,
   ),
   t('receivedDate', 0.4, `received|recd|rcvd|taken|(?:msg|message) taken`),
   t(
     'receivedTime',
     1,
-    `${CALL}? ?(?:time|tm|hora|clock)|time (?:of call|called|in|recd|received|rcvd|taken|rec d|of msg|of message|stamp)|(?:recd|received|rcvd|taken|rec d|logged|start|entry|msg|call) (?:time|tm|at|hr|hrs)|hour|hr|hrs|hora(?: de llamada)?|called at|at`,
+    `${CALL}? ?(?:time|tm|hora|clock)|time (?:of call|called|in|recd|received|rcvd|taken|rec d|of msg|of message|stamp)|(?:recd|received|rcvd|taken|rec d|logged|start|entry|msg|call) (?:time|tm|at|hr|hrs)|hour|hr|hrs|uhr(?:zeit)?|heure|hora(?: de llamada)?|called at|at`,
   ),
   t('receivedTime', 0.75, `received|recd|rcvd|taken|called|(?:msg|message) taken|in|start|logged`),
 
@@ -133,7 +133,7 @@ const TITLES: readonly (readonly [ColumnRole, number, RegExp])[] = [
   t(
     'address',
     0.7,
-    `(?:addr|address|adr)(?: (?:line|ln))? 2|addr cont|address (?:cont|2 line)|address unit|street (?:and )?(?:no|number)|street|house`,
+    `(?:addr|address|adr)(?: (?:line|ln))? [23]|addr cont|address (?:cont|2 line)|address unit|street (?:and )?(?:no|number)|street|house`,
   ),
   part('address', 0.6, `address|addr|direccion`),
   t(
@@ -232,5 +232,6 @@ const TITLES: readonly (readonly [ColumnRole, number, RegExp])[] = [
     1,
     `op|oper|opr|operator|operador|agent|agt|rep|csr|initials?|inits?|ini|taken by|tkn by|taker|call taker|attendant|by|user|clerk|staff|recorded by|logged by|answered by|entered by|handled by|tsr|emp|employee|station|desk|seat|queue|que|skill|line ?no|trunk|dnis|dialed|account code|acct code|status|stat|st code|disp|dispo|disposition|delivered|dlvd|delivery|sent|read|ack|acked|duration|dur|length|len|talk time|hold time|hold|wait|ring|rings|secs?|seconds|min|mins|minutes|client acct|acct|account|billing|bill code|shift|team|result|outcome|call length|end|end time|ended|hang ?up|time out|closed|completed|relayed|relayed to|paged|dispatched|dispatched to|on call|x|file|recording|audio|url|link|type code`,
   ),
+  t('ignore', 0.6, `taken|received|recd|logged|entered|answered`),
   part('ignore', 0.6, `operator|agent|initials|taken by|duration`),
 ];

@@ -80,7 +80,8 @@ function fromMessage(
   pick: 'earliest' | 'latest',
 ): Instant | null {
   const match = pattern.exec(message);
-  return match?.[1] ? moment(match[1], setting, pick, []) : null;
+  // People say "since 7" in the evening, whatever clock the form keeps.
+  return match?.[1] ? moment(match[1], { ...setting, is24: false }, pick, []) : null;
 }
 
 function moment(

@@ -48,22 +48,20 @@ export function understandRow(
     .filter((cell) => !saysNothing(cell))
     .join(' / ');
   const details = labelled(map, cells);
+  const told = [message, details].filter(Boolean).join(' / ');
 
   const who = nameOf(of);
-  const reached = phonesOf(map, cells, message, { areaCode: setting.areaCode });
+  const reached = phonesOf(map, cells, told, { areaCode: setting.areaCode });
   doubts.push(...reached.doubts);
-  const address = addressOf(of, message, setting.cities, doubts);
+  const address = addressOf(of, map, cells, told, setting.cities, doubts);
 
   const unitCell = of('unitKind');
-  const unitsSaid = readUnits(
-    unitCell,
-    [message, of('contents'), details].filter(Boolean).join(' . '),
-  );
+  const unitsSaid = readUnits(unitCell, [told, of('contents')].filter(Boolean).join(' . '));
   doubts.push(...unitsSaid.doubts);
   const everything = spoken(map, cells, further);
   const medicine = medicineOf(map, cells, everything);
   const power = readPower(
-    { out: of('powerOutAt'), back: of('powerBackAt'), hours: of('hoursOut'), message },
+    { out: of('powerOutAt'), back: of('powerBackAt'), hours: of('hoursOut'), message: told },
     { ...setting.power, receivedAt: setting.received.at },
   );
   doubts.push(...power.doubts);
@@ -81,7 +79,7 @@ export function understandRow(
     units: unitsSaid.units.map((unit) => ({ ...unit, compartments: COMPARTMENTS_OF[unit.kind] })),
     medicine,
     dangers: dangersOf(map, cells, everything),
-    language: languageOf(map, cells, `${message} ${of('unitKind')}`),
+    language: languageOf(map, cells, `${told} ${unitCell}`),
     contents: of('contents'),
     remarks: [message, reached.rest, who.note, address?.note ?? '', details]
       .filter(Boolean)
@@ -89,10 +87,15 @@ export function understandRow(
     powerOutAt: power.outAt,
     powerBackAt: power.backAt,
     powerStillOut: power.stillOut,
-    saysRunning: unitsSaid.running || CALLS_OFF.test(plain(message)),
+    saysRunning: unitsSaid.running || CALLS_OFF.test(plain(told)),
     doubts,
   };
-  const reason = whyAside(call, reached, unitsSaid.other, `${message} ${unitCell} ${details}`);
+  const reason = whyAside(
+    call,
+    reached,
+    unitsSaid.other,
+    `${of('callerName')} ${message} ${unitCell} ${details}`,
+  );
   return reason === null ? { kind: 'understood', call } : { kind: 'aside', reason, call };
 }
 
@@ -181,7 +184,8 @@ function nameOf(of: Cell): { name: string | null; business: string | null; note:
   const last = of('lastName');
   const whole = of('callerName');
   // "Name" beside "First" holds the last name.
-  const isLast = whole !== '' && !/[\s,]/.test(whole) && first !== '' && last === '';
+  const isLast =
+    whole !== '' && first !== '' && last === '' && !plain(whole).includes(plain(first));
   const raw = whole && !isLast ? whole : joinName(first, isLast ? whole : last);
   const { name, note } = readName(raw);
   const business = saysNothing(of('business')) ? null : of('business');
@@ -190,12 +194,17 @@ function nameOf(of: Cell): { name: string | null; business: string | null; note:
 
 function addressOf(
   of: Cell,
+  map: ColumnMap,
+  row: readonly string[],
   message: string,
   cities: readonly string[],
   doubts: string[],
 ): AddressSaid | null {
   const cells = {
-    whole: of('address'),
+    whole: cellsOf(map, row, 'address')
+      .map((cell) => cell.trim())
+      .filter(Boolean)
+      .join(', '),
     number: of('streetNumber'),
     street: of('street'),
     unit: of('unitNo'),
