@@ -52,14 +52,11 @@ async function serve() {
     THAWLINE_DATA_FOLDER: data,
     THAWLINE_TILES_FOLDER: process.env.THAWLINE_TILES_FOLDER || path.join(root, 'tiles'),
   };
-  const start = async (name, at, answers) => {
-    const url = `http://127.0.0.1:${at}${answers}`;
-    const program = await startAndWait(name, 'browser', env, url, START_SECONDS, (pid) =>
+  const start = (name, at, answers) =>
+    startAndWait(name, 'browser', env, `http://127.0.0.1:${at}${answers}`, START_SECONDS, (pid) =>
       pids.push(pid),
     );
-    return program.ended;
-  };
   const fakes = await start('fakes-main', port + 1, '/');
   const server = await start('main', port, '/readyz');
-  await Promise.race([fakes, server]);
+  await Promise.race([fakes.ended, server.ended]);
 }

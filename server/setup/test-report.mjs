@@ -1,3 +1,5 @@
+import { stripVTControlCharacters } from 'node:util';
+
 import { SetupProblem } from './problem.mjs';
 
 const PARTS = ['checks', 'domain', 'client', 'build', 'server', 'browser'];
@@ -24,7 +26,7 @@ export function wantedParts(args) {
 export function describeFailures(results) {
   const all = results.flatMap(({ name, details }) => details.map((text) => ({ name, text })));
   const shown = all.slice(0, SHOWN_FAILURES).map(({ name, text }) => {
-    const lines = text.trimEnd().split('\n');
+    const lines = stripVTControlCharacters(text).trimEnd().split('\n');
     const cut =
       lines.length > LINES_EACH
         ? [...lines.slice(0, LINES_EACH), `… ${lines.length - LINES_EACH} more lines`]
