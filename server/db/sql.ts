@@ -49,3 +49,9 @@ export async function insert(
 export function json<T>(stored: unknown): T {
   return (typeof stored === 'string' ? JSON.parse(stored) : stored) as T;
 }
+
+/** Whether a write failed because a unique key holds that value already. */
+export function isDuplicateOf(error: unknown, key: string): boolean {
+  const parent = (error as { parent?: { errno?: unknown; sqlMessage?: unknown } } | null)?.parent;
+  return parent?.errno === 1062 && String(parent.sqlMessage).includes(`'${key}'`);
+}

@@ -46,10 +46,7 @@ function isWorthAnotherTry(error: unknown): boolean {
 }
 
 /** MariaDB's error number behind whatever Sequelize wrapped it in. */
-export function errorNumber(error: unknown): number | undefined {
+function errorNumber(error: unknown): number | undefined {
   const parent = (error as { parent?: { errno?: unknown } } | null)?.parent;
   return typeof parent?.errno === 'number' ? parent.errno : undefined;
 }
-
-const DUPLICATE_ENTRY = 1062;
-export const isDuplicate = (error: unknown): boolean => errorNumber(error) === DUPLICATE_ENTRY;

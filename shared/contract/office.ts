@@ -74,6 +74,7 @@ export const Me = z.strictObject({
 });
 export type Me = z.infer<typeof Me>;
 export const MaybeMe = z.strictObject({ me: Me.nullable() });
+export type MaybeMe = z.infer<typeof MaybeMe>;
 
 export const AddUser = Command.extend({
   userId: Id,

@@ -1,0 +1,108 @@
+import type { Sequelize, Transaction } from 'sequelize';
+import type { CallDetail, UnitFacts } from '@shared/contract/calls';
+import type { CallState } from '@shared/domain/call-state';
+import { Refusal } from '@shared/domain/errors';
+import type { Instant } from '@shared/domain/instant';
+import { json, select } from '../db/sql';
+import { messageDtos } from '../texts/message-rows';
+import { CallRecord } from './call-record';
+import { callRows } from './call-rows';
+import { ColdUnitRecord, CompartmentRecord } from './cold-unit-record';
+
+/** Everything about one call. @throws Refusal `not-found` */
+export async function callDetail(
+  sequelize: Sequelize,
+  callId: string,
+  now: Instant,
+  tx?: Transaction,
+): Promise<CallDetail> {
+  const transaction = tx ? { transaction: tx } : {};
+  const call = await CallRecord.findByPk(callId, transaction);
+  const [row] = await callRows(sequelize, { ids: [callId] }, now, tx);
+  if (!call || !row) throw new Refusal('not-found', 'There is no such call.');
+  const { units, reasons } = await unitsWithReasons(callId, tx);
+  return {
+    row,
+    language: call.language,
+    mayText: call.mayText,
+    powerOutAt: call.powerOutAt.getTime(),
+    powerBackAt: call.powerBackAt?.getTime() ?? null,
+    timesFrom: call.timesFrom,
+    units,
+    clockReasons: reasons,
+    phoneCheck: call.phoneCheck,
+    remarks: await remarksOf(sequelize, callId, tx),
+    history: await historyOf(sequelize, callId, tx),
+    messages: await messageDtos(sequelize, { callId }, tx),
+  };
+}
+
+async function unitsWithReasons(
+  callId: string,
+  tx?: Transaction,
+): Promise<{ units: UnitFacts[]; reasons: string[][][] }> {
+  const transaction = tx ? { transaction: tx } : {};
+  const units = await ColdUnitRecord.findAll({
+    where: { callId },
+    order: [['placeNo', 'ASC']],
+    ...transaction,
+  });
+  const compartments = await CompartmentRecord.findAll({
+    where: { unitId: units.map((unit) => unit.id) },
+    order: [['placeNo', 'ASC']],
+    ...transaction,
+  });
+  const inUnit = (unitId: string) => compartments.filter((one) => one.unitId === unitId);
+  return {
+    units: units.map((unit) => ({
+      id: unit.id,
+      kind: unit.kind,
+      compressorStart: unit.compressorStart,
+      ageYears: unit.ageYears,
+      cubicFeet: unit.cubicFeet,
+      place: unit.place,
+      compartments: inUnit(unit.id).map((one) => one.facts as UnitFacts['compartments'][number]),
+    })),
+    reasons: units.map((unit) => inUnit(unit.id).map((one) => json<string[]>(one.reasons))),
+  };
+}
+
+async function remarksOf(
+  sequelize: Sequelize,
+  callId: string,
+  tx?: Transaction,
+): Promise<CallDetail['remarks']> {
+  const rows = await select<{ at: Date; actor: string; text: string }>(
+    sequelize,
+    'SELECT at, actor, text FROM remarks WHERE call_id = ? ORDER BY at, id',
+    [callId],
+    tx,
+  );
+  return rows.map(({ at, actor, text }) => ({ at: at.getTime(), by: actor, text }));
+}
+
+async function historyOf(
+  sequelize: Sequelize,
+  callId: string,
+  tx?: Transaction,
+): Promise<CallDetail['history']> {
+  const rows = await select<{
+    at: Date;
+    from_state: CallState | null;
+    to_state: CallState;
+    actor: string;
+    reason: string;
+  }>(
+    sequelize,
+    'SELECT at, from_state, to_state, actor, reason FROM call_changes WHERE call_id = ? ORDER BY n',
+    [callId],
+    tx,
+  );
+  return rows.map((row) => ({
+    at: row.at.getTime(),
+    from: row.from_state,
+    to: row.to_state,
+    by: row.actor,
+    reason: row.reason,
+  }));
+}

@@ -1,0 +1,105 @@
+import type { UnitFacts } from '@shared/contract/calls';
+import { thawClock } from '@shared/domain/thaw/thaw-clock';
+import type { Job } from '../commands/run-command';
+import { change } from '../db/sql';
+import type { CallRecord } from './call-record';
+import { ColdUnitRecord, CompartmentRecord } from './cold-unit-record';
+
+/** Writes a call's units anew, with the clocks that follow from the facts. */
+export async function storeUnits(
+  job: Job,
+  call: CallRecord,
+  units: readonly UnitFacts[],
+): Promise<void> {
+  await removeUnits(job, call.id);
+  await ColdUnitRecord.bulkCreate(
+    units.map((unit, placeNo) => ({
+      id: unit.id,
+      callId: call.id,
+      placeNo,
+      kind: unit.kind,
+      compressorStart: unit.compressorStart,
+      ageYears: unit.ageYears,
+      cubicFeet: unit.cubicFeet,
+      place: unit.place,
+    })),
+    { transaction: job.tx },
+  );
+  await CompartmentRecord.bulkCreate(
+    units.flatMap((unit) =>
+      unit.compartments.map((facts, placeNo) => ({
+        unitId: unit.id,
+        placeNo,
+        kind: facts.kind,
+        facts,
+        valueCents: facts.valueCents,
+        ...clockOf(call, facts),
+      })),
+    ),
+    { transaction: job.tx },
+  );
+}
+
+/** The units of a call as they were told. */
+export async function unitsOf(job: Pick<Job, 'tx'>, callId: string): Promise<UnitFacts[]> {
+  const transaction = { transaction: job.tx };
+  const units = await ColdUnitRecord.findAll({
+    where: { callId },
+    order: [['placeNo', 'ASC']],
+    ...transaction,
+  });
+  const compartments = await CompartmentRecord.findAll({
+    where: { unitId: units.map((unit) => unit.id) },
+    order: [['placeNo', 'ASC']],
+    ...transaction,
+  });
+  return units.map((unit) => ({
+    id: unit.id,
+    kind: unit.kind,
+    compressorStart: unit.compressorStart,
+    ageYears: unit.ageYears,
+    cubicFeet: unit.cubicFeet,
+    place: unit.place,
+    compartments: compartments
+      .filter((one) => one.unitId === unit.id)
+      .map((one) => one.facts as UnitFacts['compartments'][number]),
+  }));
+}
+
+/** Works the clocks out again after the times of a call have moved. */
+export async function windClocks(job: Job, call: CallRecord): Promise<void> {
+  const units = await ColdUnitRecord.findAll({
+    where: { callId: call.id },
+    transaction: job.tx,
+  });
+  const compartments = await CompartmentRecord.findAll({
+    where: { unitId: units.map((unit) => unit.id) },
+    transaction: job.tx,
+  });
+  for (const one of compartments) {
+    one.set(clockOf(call, one.facts));
+    await one.save({ transaction: job.tx });
+  }
+}
+
+function clockOf(call: CallRecord, facts: CompartmentRecord['facts']) {
+  const clock = thawClock(facts, {
+    lostAt: call.powerOutAt.getTime(),
+    restoredAt: call.restoredAt?.getTime() ?? null,
+  });
+  return {
+    atRiskAt: new Date(Math.round(clock.atRiskAt)),
+    saveByAt: clock.saveByAt === null ? null : new Date(Math.round(clock.saveByAt)),
+    reasons: [...clock.reasons],
+  };
+}
+
+async function removeUnits(job: Job, callId: string): Promise<void> {
+  await change(
+    job.sequelize,
+    'DELETE k FROM compartments k JOIN cold_units u ON u.id = k.unit_id WHERE u.call_id = ?',
+    [callId],
+    job.tx,
+  );
+  await change(job.sequelize, 'DELETE FROM cold_units WHERE call_id = ?', [callId], job.tx);
+}

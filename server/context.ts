@@ -1,0 +1,22 @@
+import type { Logger } from 'pino';
+import type { Sequelize } from 'sequelize';
+import type { Instant } from '@shared/domain/instant';
+import type { Config } from './config';
+import type { Live } from './realtime/live';
+import type { RegionInUse } from './region/region-in-use';
+import type { PlannerPort, PocketsPort } from './workers/ports';
+
+/** What every command and query may reach. Made once, in main.ts or by a test. */
+export interface Context {
+  readonly config: Config;
+  readonly sequelize: Sequelize;
+  readonly log: Logger;
+  /** The only clock; tests set it. */
+  readonly clock: () => Instant;
+  readonly live: Live;
+  readonly region: RegionInUse;
+  readonly planner: PlannerPort;
+  readonly pockets: PocketsPort;
+  /** Tells the outbox worker that a text is waiting, so that it need not poll fast. */
+  readonly wakeOutbox: () => void;
+}

@@ -1,0 +1,95 @@
+import path from 'node:path';
+import { pino } from 'pino';
+import { createApp } from './app';
+import { EXIT_CONFIG, InvalidConfig, readConfig, type Config } from './config';
+import { connect } from './db/connect';
+import { migrate } from './db/migrate';
+import { seedDemo } from './demo/seed-demo';
+import { ensureDemoRegion, listRegions } from './region/demo-region';
+import { openRegion } from './region/open-region';
+import { createPlannerWorker } from './workers/planner-client';
+import { createPocketsWorker } from './workers/pockets-client';
+import { startOutbox } from './texts/outbox';
+
+/** How long open requests may take to end once the process is told to stop, in milliseconds. */
+const DRAIN_MS = 10_000;
+
+void main();
+
+async function main(): Promise<void> {
+  const config = configOrExit();
+  const log = pino({ level: config.logLevel });
+  process.on('unhandledRejection', (error) => {
+    log.fatal({ err: error }, 'a failure that nobody handled');
+    process.exit(1);
+  });
+
+  const sequelize = connect(config.database);
+  const applied = await migrate(sequelize);
+  if (applied.length > 0) log.info({ applied }, 'migrated');
+
+  const imported = config.isDemo
+    ? await ensureDemoRegion(config.tilesFolder, (step) => log.info(step, 'importing the region'))
+    : (await listRegions(config.tilesFolder))[0];
+  if (!imported) {
+    log.fatal('There is no region. Import one: node dist/server/region-cli.js import FILE.osm.pbf');
+    process.exit(EXIT_CONFIG);
+  }
+
+  const planner = createPlannerWorker(path.join(__dirname, 'planner-worker.js'), {
+    onCrash: (error) => log.error({ err: error }, 'the planner crashed'),
+  });
+  const pockets = createPocketsWorker(path.join(__dirname, 'pockets-worker.js'), {
+    onCrash: (error) => log.error({ err: error }, 'the pocket maker crashed'),
+  });
+  const outbox = { wake: () => undefined as void };
+  const app = await createApp({
+    config,
+    sequelize,
+    log,
+    clock: () => Date.now(),
+    region: await openRegion(imported),
+    planner,
+    pockets,
+    wakeOutbox: () => outbox.wake(),
+  });
+  const worker = startOutbox(app.context);
+  outbox.wake = () => worker.wake();
+  if (config.isDemo) await seedDemo(app.context);
+
+  app.http.on('error', (error: NodeJS.ErrnoException) => {
+    log.fatal(
+      error.code === 'EADDRINUSE'
+        ? `Port ${String(config.http.port)} is taken; choose another with THAWLINE_PORT.`
+        : error.message,
+    );
+    process.exit(1);
+  });
+  app.http.listen(config.http.port, config.http.host, () =>
+    log.info({ address: config.http.publicUrl }, 'serving'),
+  );
+
+  let isStopping = false;
+  const stop = async (): Promise<void> => {
+    if (isStopping) return;
+    isStopping = true;
+    setTimeout(() => process.exit(1), DRAIN_MS).unref();
+    await worker.stop();
+    await app.close();
+    await Promise.all([planner.close(), pockets.close()]);
+    await sequelize.close();
+    process.exit(0);
+  };
+  process.on('SIGTERM', () => void stop());
+  process.on('SIGINT', () => void stop());
+}
+
+function configOrExit(): Config {
+  try {
+    return readConfig(process.env);
+  } catch (error) {
+    if (!(error instanceof InvalidConfig)) throw error;
+    process.stderr.write(`${error.message}\n`);
+    process.exit(EXIT_CONFIG);
+  }
+}

@@ -1,0 +1,196 @@
+import { randomUUID } from 'node:crypto';
+import type { AddressInfo } from 'node:net';
+import os from 'node:os';
+import { pino } from 'pino';
+import type { Sequelize } from 'sequelize';
+import { io, type Socket } from 'socket.io-client';
+import request, { type Test } from 'supertest';
+import type { Role } from '@shared/contract/common';
+import { PATHS, type RouteName } from '@shared/contract/paths';
+import type { ClientEvents, ServerEvents } from '@shared/contract/realtime';
+import type { Instant } from '@shared/domain/instant';
+import { createApp, type App } from '../../server/app';
+import type { Config } from '../../server/config';
+import type { Context } from '../../server/context';
+import { hashPassword } from '../../server/staff/passwords';
+import { UserRecord } from '../../server/staff/user-record';
+import { StormRecord } from '../../server/storms/storm-record';
+import { TechnicianRecord } from '../../server/technicians/technician-record';
+import { emptyAll, freshDatabase, testDatabase } from './database';
+import { TEST_REGION } from './region';
+
+export const PASSWORD = 'a heron on the sandbar';
+/** 2026-10-03 06:00 UTC, some night of a storm. */
+export const NIGHT: Instant = Date.UTC(2026, 9, 3, 6);
+
+export interface TestServer {
+  readonly app: App;
+  readonly context: Context;
+  readonly sequelize: Sequelize;
+  readonly url: string;
+  /** Moves the server's clock. */
+  setNow(now: Instant): void;
+  now(): Instant;
+  /** Starts again with empty tables, an open storm and nobody known. */
+  reset(): Promise<void>;
+  readonly stormId: string;
+  /** Makes an account and signs it in. */
+  signIn(role: Role, name?: string): Promise<TestPerson>;
+  close(): Promise<void>;
+}
+
+/** Somebody at a browser: cookies, the echoed token, and a socket when asked for. */
+export interface TestPerson {
+  readonly userId: string;
+  readonly technicianId: string | null;
+  readonly cookies: string;
+  /** Calls a route by its name. Refusals come back as they are. */
+  call(
+    name: RouteName,
+    args?: {
+      readonly params?: Record<string, string>;
+      readonly query?: Record<string, string>;
+      readonly body?: object;
+      readonly bytes?: Buffer;
+    },
+  ): Test;
+  socket(): Promise<Socket<ServerEvents, ClientEvents>>;
+}
+
+const PLACE: readonly [number, number] = TEST_REGION.dto.centre;
+
+/** The whole server on a real database and a free port, with a clock that stands until it is set. */
+export async function startServer(
+  options: { suffix?: string; config?: Partial<Config>; context?: Partial<Context> } = {},
+): Promise<TestServer> {
+  const sequelize = await freshDatabase(options.suffix);
+  let now = NIGHT;
+  let stormId = '';
+  const config: Config = {
+    environment: 'test',
+    logLevel: 'silent',
+    http: { host: '127.0.0.1', port: 0, publicUrl: 'http://localhost:4310', trustProxyHops: 0 },
+    database: testDatabase(options.suffix),
+    sessionSecret: 'a session secret that is long enough for a test 0123456789',
+    texts: {
+      account: `AC${'0'.repeat(32)}`,
+      token: 'a token for the fake text service',
+      baseUrl: null,
+      from: '+12525550100',
+    },
+    dataFolder: os.tmpdir(),
+    tilesFolder: os.tmpdir(),
+    clientFolder: os.tmpdir(),
+    regionZone: 'America/New_York',
+    defaultAreaCode: '252',
+    isDemo: false,
+    ...options.config,
+  };
+  const unused = { run: () => Promise.reject(new Error('this test has no such worker')) };
+  const app = await createApp({
+    config,
+    sequelize,
+    log: pino({ level: process.env['THAWLINE_TEST_LOG'] ?? 'silent' }),
+    clock: () => now,
+    region: TEST_REGION,
+    planner: unused,
+    pockets: unused,
+    wakeOutbox: () => undefined,
+    ...options.context,
+  });
+  await new Promise<void>((resolve) => app.http.listen(0, '127.0.0.1', resolve));
+  const url = `http://127.0.0.1:${String((app.http.address() as AddressInfo).port)}`;
+  const origin = config.http.publicUrl;
+
+  const reset = async (): Promise<void> => {
+    await emptyAll(sequelize);
+    now = NIGHT;
+    stormId = randomUUID();
+    await StormRecord.create({ id: stormId, name: 'Test storm', openedAt: new Date(now) });
+  };
+  await reset();
+
+  const signIn = async (role: Role, name: string = role): Promise<TestPerson> => {
+    const technicianId = role === 'technician' ? randomUUID() : null;
+    if (technicianId)
+      await TechnicianRecord.create({
+        id: technicianId,
+        name,
+        phone: '+12525550120',
+        skills: ['electrical', 'sealed-system', 'commercial'],
+        van: {},
+        startLon: PLACE[0],
+        startLat: PLACE[1],
+      });
+    const userId = randomUUID();
+    const signInName = `${name.toLowerCase().replace(/\W+/g, '.')}.${userId.slice(0, 4)}@example.com`;
+    await UserRecord.create({
+      id: userId,
+      name,
+      signInName,
+      role,
+      technicianId,
+      passwordHash: await sharedHash(),
+    });
+    const entered = await request(url)
+      .post('/api/session')
+      .set('Origin', origin)
+      .send({ signInName, password: PASSWORD });
+    if (entered.status !== 200) throw new Error(`sign-in failed: ${entered.text}`);
+    const set = entered.get('Set-Cookie') ?? [];
+    const cookies = set.map((cookie) => cookie.split(';')[0]).join('; ');
+    const token = /XSRF-TOKEN=([^;]+)/.exec(cookies)?.[1] ?? '';
+
+    return {
+      userId,
+      technicianId,
+      cookies,
+      call: (route, { params = {}, query = {}, body, bytes } = {}) => {
+        const [method, pattern] = PATHS[route];
+        const path = pattern.replace(/:(\w+)/g, (_, key: string) => params[key] ?? '');
+        const verb = method.toLowerCase() as 'get' | 'post' | 'patch' | 'delete';
+        const asked = request(url)
+          [verb](path)
+          .query(query)
+          .set('Cookie', cookies)
+          .set('Origin', origin)
+          .set('X-XSRF-TOKEN', token);
+        if (bytes) return asked.type('application/octet-stream').send(bytes);
+        return body === undefined ? asked : asked.send(body);
+      },
+      socket: () =>
+        new Promise((resolve, reject) => {
+          const socket: Socket<ServerEvents, ClientEvents> = io(url, {
+            transports: ['websocket'],
+            extraHeaders: { Cookie: cookies, Origin: origin },
+            reconnection: false,
+            forceNew: true,
+          });
+          socket.once('connect', () => resolve(socket));
+          socket.once('connect_error', reject);
+        }),
+    };
+  };
+
+  return {
+    app,
+    context: app.context,
+    sequelize,
+    url,
+    setNow: (moment) => (now = moment),
+    now: () => now,
+    reset,
+    get stormId() {
+      return stormId;
+    },
+    signIn,
+    close: async () => {
+      await app.close();
+      await sequelize.close();
+    },
+  };
+}
+
+let hashed: Promise<string> | undefined;
+/** Hashing is slow on purpose; once is enough for all accounts of a test run. */
+const sharedHash = (): Promise<string> => (hashed ??= hashPassword(PASSWORD));
