@@ -8,7 +8,7 @@ const MEAN_REMOVED = 10;
 const LONGEST_STRING = 10;
 /** A position is passed over with this chance, so that the same hole is not refilled the same way. */
 const BLINK_BELOW = Math.floor(0.01 * 2 ** 32);
-const NEIGHBOURS = 48;
+const NEIGHBOURS = 32;
 /** Up to so many jobs every position is tried; beyond, those beside a near job, and all now and then. */
 const FULL_SCAN_JOBS = 150;
 const FULL_SCAN_EVERY = 12;

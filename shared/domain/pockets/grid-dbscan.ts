@@ -149,7 +149,7 @@ function least(values: Float64Array): number {
 function findCores(grid: Grid, minPoints: number): Uint8Array {
   const isCore = new Uint8Array(grid.x.length);
   for (let cell = 0; cell < grid.cellCount; cell++) {
-    const own = grid.members.subarray(grid.offset[cell]!, grid.offset[cell + 1]!);
+    const own = grid.members.subarray(grid.offset[cell], grid.offset[cell + 1]);
     if (own.length >= minPoints) {
       for (const point of own) isCore[point] = 1;
       continue;
@@ -174,7 +174,7 @@ function joinCells(grid: Grid, isCore: Uint8Array): Int32Array {
   const parent = Int32Array.from({ length: grid.cellCount }, (_, cell) => cell);
   const cores = Array.from({ length: grid.cellCount }, (_, cell) =>
     grid.members
-      .subarray(grid.offset[cell]!, grid.offset[cell + 1]!)
+      .subarray(grid.offset[cell], grid.offset[cell + 1])
       .filter((point) => isCore[point] === 1),
   );
   for (let cell = 0; cell < grid.cellCount; cell++) {
