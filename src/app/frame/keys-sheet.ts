@@ -61,7 +61,7 @@ export class KeysSheet {
     return keys.split(' ').map((step) =>
       step
         .split('+')
-        .map((part) => KEY_WORDS[part] ?? (part.length === 1 ? part : part))
+        .map((part) => KEY_WORDS[part] ?? part)
         .join(' '),
     );
   }
