@@ -50,20 +50,33 @@ export function splitRecords(
   return records;
 }
 
-/** The commonest number of cells among lines that hold no quotes. */
+/**
+ * The commonest number of cells in a record.
+ *
+ * Judged twice, with quotes trusted over line ends and with every line for itself: stray quotes spoil
+ * the first, messages over several lines the second. The one that fits more records is right.
+ */
 export function usualWidth(text: string, delimiter: string): number {
+  const head = text.slice(0, 200_000);
+  const trusting = splitRecords(head, delimiter, 0, 400).map(({ cells }) => cells);
+  const lines = head
+    .split(/\r\n|\n|\r/, 400)
+    .map((line) => parseRecord(line, 0, delimiter, true).cells);
+  const [byRecord, byLine] = [trusting, lines].map(commonest);
+  const best = byRecord && byLine && byLine.share > byRecord.share ? byLine : byRecord;
+  return best?.width ?? 1;
+}
+
+function commonest(records: readonly (readonly string[])[]): { width: number; share: number } {
   const counts = new Map<number, number>();
-  for (const line of text.split(/\r\n|\n|\r/, 2000)) {
-    if (line.trim() === '' || line.includes('"')) continue;
-    const width = line.split(delimiter).length;
-    if (width > 1) counts.set(width, (counts.get(width) ?? 0) + 1);
+  let said = 0;
+  for (const cells of records) {
+    if (cells.every((cell) => cell.trim() === '')) continue;
+    said++;
+    if (cells.length > 1) counts.set(cells.length, (counts.get(cells.length) ?? 0) + 1);
   }
-  if (counts.size === 0) {
-    for (const { cells } of splitRecords(text, delimiter, 0, 300)) {
-      if (cells.length > 1) counts.set(cells.length, (counts.get(cells.length) ?? 0) + 1);
-    }
-  }
-  return [...counts].sort((a, b) => b[1] - a[1] || b[0] - a[0])[0]?.[0] ?? 1;
+  const [width, count] = [...counts].sort((a, b) => b[1] - a[1] || b[0] - a[0])[0] ?? [1, 0];
+  return { width, share: said === 0 ? 0 : count / said };
 }
 
 function parseRecord(

@@ -172,7 +172,8 @@ function repair(text: string): string {
   const digitLike = text
     .replace(/[oO](?=[\d\s.\-()]|$)/g, '0')
     .replace(/[lI|](?=[\d\s.\-()])/g, '1');
-  if (/^[+\d\s.\-()/_*,'"]+$/.test(digitLike)) {
+  const isDate = /(?<!\d)\d{1,2}([-./])\d{1,2}\1(?:\d{4}|\d{2})(?!\d)/.test(digitLike);
+  if (!isDate && /^[+\d\s.\-()/_*,'"]+$/.test(digitLike)) {
     const digits = digitLike.replace(/\D/g, '');
     if (/^1?\d{10}$/.test(digits)) return digits;
     if (digits.length === 7) return digits;

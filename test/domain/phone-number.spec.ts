@@ -115,6 +115,7 @@ describe('readPhone', () => {
     ['000-000-0000', 'exist'],
     ['9999999999', 'exist'],
     ['ask the neighbour', 'no phone number'],
+    ['12/01/2026 6.49', '11 digits|exist'],
   ])('refuses %p and says why', (raw, why) => {
     const reading = readPhone(raw, { areaCode: null });
     expect(reading).toMatchObject({ kind: 'unreadable' });

@@ -139,8 +139,12 @@ export interface ColumnSample {
   readonly distinct: number;
   readonly different: number;
   readonly meanWords: number;
-  /** Share of steps from cell to cell that go forward on the clock or up in number. */
+  /** Share of the steps from cell to cell that go the commoner way, on the clock or in number; 0 if few move. */
   readonly rising: number;
+  /** Share of steps of exactly one, as of a number that is counted up or down. */
+  readonly counting: number;
+  /** Share of cells that can be a time such as 0215 or 1930. */
+  readonly compactTimes: number;
   readonly medicine: number;
   readonly danger: number;
   readonly namesUnits: number;
@@ -168,6 +172,8 @@ export function sampleColumn(cells: readonly string[]): ColumnSample {
     meanWords:
       said.reduce((sum, cell) => sum + cell.trim().split(/\s+/).length, 0) / Math.max(count, 1),
     rising: risingShare(said),
+    counting: countingShare(said),
+    compactTimes: share((cell) => /^(?:[01]?\d|2[0-3])[0-5]\d$/.test(cell.trim())),
     medicine: share((cell) => readMedicine(cell).mentioned),
     danger: share((cell) => readDangers(cell).length > 0),
     namesUnits: share((cell) => namesUnit(cell, false)),
@@ -184,6 +190,7 @@ function risingShare(cells: readonly string[]): number {
     return /^\d+$/.test(cell.trim()) ? Number(cell) : null;
   });
   let up = 0;
+  let down = 0;
   let steps = 0;
   for (let i = 1; i < values.length; i++) {
     const before = values[i - 1];
@@ -192,7 +199,17 @@ function risingShare(cells: readonly string[]): number {
     steps++;
     const step = now - before;
     // Past midnight the clock falls by most of a day.
-    if (step > 0 || step < -12 * 60) up++;
+    if (step > 12 * 60 || (step < 0 && step >= -12 * 60)) down++;
+    else if (step !== 0) up++;
   }
-  return steps < 2 ? 0 : Math.max(up, steps - up) / steps;
+  // A time that hardly changes is when the power went, not when people called.
+  return steps < 2 || up + down < steps * 0.3 ? 0 : Math.max(up, down) / (up + down);
+}
+
+function countingShare(cells: readonly string[]): number {
+  const numbers = cells.map((cell) => Number(/\d+$/.exec(cell.trim())?.[0] ?? Number.NaN));
+  const steps = numbers.slice(1).map((value, i) => Math.abs(value - (numbers[i] ?? Number.NaN)));
+  return steps.length < 2
+    ? 0
+    : steps.filter((step) => step === 1 || step === 2).length / steps.length;
 }

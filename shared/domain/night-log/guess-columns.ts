@@ -50,6 +50,8 @@ export function guessColumns(
     taken.add(candidate.role);
   }
   promotePhone(chosen);
+  pairNames(chosen, samples);
+  questionState(chosen);
   promoteTime(chosen, candidates);
 
   promoteMessage(chosen, samples);
@@ -137,6 +139,7 @@ const CONTENT_ROLES: readonly ColumnRole[] = [
   'powerOutAt',
   'powerBackAt',
   'language',
+  'medicine',
 ];
 
 /** How well the cells of a column fit a role, -1 to 1, and why. */
@@ -177,7 +180,8 @@ function contentScore(role: ColumnRole, sample: ColumnSample): [number, string] 
     }
     case 'receivedTime': {
       const numbers = share('number');
-      const compact = share('time') + numbers >= 0.9 && sample.rising > 0.9 ? numbers : 0;
+      const compact =
+        sample.compactTimes >= 0.95 && sample.rising > 0.9 && sample.counting < 0.5 ? numbers : 0;
       const times = share('time') + compact;
       return [
         times >= 0.5 ? times * (0.45 + 0.55 * sample.rising) : share('date-time') > 0.5 ? -0.3 : -1,
@@ -186,7 +190,7 @@ function contentScore(role: ColumnRole, sample: ColumnSample): [number, string] 
     }
     case 'callerName': {
       const names = share('name');
-      const varied = Math.min(1, sample.distinct * 1.4);
+      const varied = Math.min(1, Math.max(sample.distinct * 1.4, sample.different / 12));
       return [
         names >= 0.4 ? names * varied * (sample.meanWords > 1.4 ? 1 : 0.7) : -0.7,
         `${percent(names)} look like names`,
@@ -292,9 +296,11 @@ function contentScore(role: ColumnRole, sample: ColumnSample): [number, string] 
       ];
     case 'medicine':
     case 'danger': {
-      const asked = share('yes-no') + (role === 'medicine' ? sample.medicine : sample.danger);
+      const flagged = role === 'medicine' ? sample.medicine : sample.danger;
+      const asked = share('yes-no') + flagged;
+      const isOther = share('phone', 'address') > 0.3 || when > 0.3 || sample.meanWords > 3;
       return [
-        asked >= 0.3 ? Math.min(1, asked) : share('phone', 'address') > 0.3 || when > 0.3 ? -1 : 0,
+        asked >= 0.3 && flagged > 0 ? Math.min(1, asked) : isOther ? -1 : asked >= 0.3 ? 0.3 : 0,
         'its cells answer it',
       ];
     }
@@ -350,6 +356,45 @@ function promotePhone(chosen: Map<number, Candidate>): void {
       role: 'phone',
       why: `${first.why}; the only telephone number`,
     });
+}
+
+/** Two columns of single names side by side are a first and a last name. */
+function pairNames(chosen: Map<number, Candidate>, samples: readonly ColumnSample[]): void {
+  const all = [...chosen.values()];
+  if (all.some(({ role }) => role === 'firstName' || role === 'lastName')) return;
+  const isSingle = (index: number): boolean => {
+    const sample = samples[index];
+    return (
+      sample !== undefined && (sample.shapes.get('name') ?? 0) >= 0.6 && sample.meanWords < 1.5
+    );
+  };
+  const name = all.find(({ role }) => role === 'callerName');
+  if (!name || !isSingle(name.index)) return;
+  const beside = [name.index + 1, name.index - 1].find(
+    (index) => isSingle(index) && ['detail', 'ignore', undefined].includes(chosen.get(index)?.role),
+  );
+  if (beside === undefined) return;
+  const [first, last] = [Math.min(name.index, beside), Math.max(name.index, beside)];
+  const why = 'two columns of single names side by side';
+  chosen.set(first, { index: first, role: 'firstName', score: 0.4, why });
+  chosen.set(last, { index: last, role: 'lastName', score: 0.4, why });
+}
+
+/** Two letters in a column without a title are a state only beside the town or the postcode. */
+function questionState(chosen: Map<number, Candidate>): void {
+  const state = [...chosen.values()].find(
+    ({ role, why }) => role === 'state' && !why.startsWith('titled'),
+  );
+  if (!state) return;
+  const beside = [state.index - 1, state.index + 1].map((index) => chosen.get(index)?.role);
+  if (!beside.includes('city') && !beside.includes('postcode')) {
+    chosen.set(state.index, {
+      ...state,
+      role: 'ignore',
+      score: 0.3,
+      why: 'two letters each; perhaps who took the call',
+    });
+  }
 }
 
 /** A log whose only clock column was taken for something else still came in at some time. */

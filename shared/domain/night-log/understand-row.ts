@@ -48,7 +48,11 @@ export function understandRow(
     .filter((cell) => !saysNothing(cell))
     .join(' / ');
   const details = labelled(map, cells);
-  const told = [message, details].filter(Boolean).join(' / ');
+  // A line break ends a thought: "insulin: no" must not run on into the next line.
+  const told = [message, details]
+    .filter(Boolean)
+    .join(' / ')
+    .replace(/\s*[\r\n]+\s*/g, ' ; ');
 
   const who = nameOf(of);
   const reached = phonesOf(map, cells, told, { areaCode: setting.areaCode });
@@ -270,7 +274,8 @@ function spoken(map: ColumnMap, cells: readonly string[], further: string): stri
     further,
   ]
     .filter(Boolean)
-    .join(' | ');
+    .join(' | ')
+    .replace(/\s*[\r\n]+\s*/g, ' ; ');
 }
 
 function medicineOf(map: ColumnMap, cells: readonly string[], everything: string): MedicineSaid {
