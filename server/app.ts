@@ -4,6 +4,7 @@ import compression from 'compression';
 import express, { type Request, type RequestHandler } from 'express';
 import { pinoHttp } from 'pino-http';
 import { areaRoutes } from './areas/area-routes';
+import { PocketWatch } from './areas/pocket-watch';
 import { callRoutes } from './calls/call-routes';
 import type { Context } from './context';
 import { bindRoutes, type Handlers } from './http/bind-routes';
@@ -53,8 +54,12 @@ export async function createApp(given: Omit<Context, 'live'>): Promise<App> {
     middlewares: signIn,
     personOf: (request: IncomingMessage) => personOf(request),
     isOwnOrigin,
+    onBoardChange: (stormId, change) => {
+      if (change.kind === 'calls') watch.callsChanged(stormId);
+    },
   });
   const context: Context = { ...given, live };
+  const watch = new PocketWatch(context);
 
   app.set('trust proxy', given.config.http.trustProxyHops);
   app.disable('x-powered-by');
@@ -101,7 +106,10 @@ export async function createApp(given: Omit<Context, 'live'>): Promise<App> {
   return {
     http,
     context,
-    close: () => closeAll(http, live, session),
+    close: () => {
+      watch.stop();
+      return closeAll(http, live, session);
+    },
   };
 }
 

@@ -1,9 +1,111 @@
+import { kinks, polygon } from '@turf/turf';
+import type { AreaDto } from '@shared/contract/areas';
+import type { LonLat } from '@shared/contract/common';
+import { Refusal } from '@shared/domain/errors';
+import { orderFrom, runCommand, type Job } from '../commands/run-command';
 import type { Context } from '../context';
 import type { SomeHandlers } from '../http/bind-routes';
-import { unbuilt } from '../http/unbuilt';
+import { refuseImpossibleTimes } from '../calls/take-call';
+import { lockOpenStorm } from '../storms/storm-queries';
+import { AreaRecord } from './area-record';
+import { toAreaDto } from './area-rows';
+import { callsFollowAreas } from './calls-follow-areas';
+import { pocketsOf } from './pockets';
 
 type Names = 'drawArea' | 'changeArea' | 'removeArea' | 'pockets';
 
-export function areaRoutes(_context: Context): SomeHandlers<Names> {
-  return unbuilt('drawArea', 'changeArea', 'removeArea', 'pockets');
+/** Outage areas, and the pockets that open calls form. */
+export function areaRoutes(context: Context): SomeHandlers<Names> {
+  return {
+    drawArea: ({ params, body, person }) =>
+      runCommand(
+        context,
+        orderFrom('drawArea', person, { ...body, ...params }),
+        async (job): Promise<AreaDto> => {
+          refuseCrossing(body.ring);
+          refuseTimes(job, body.outAt, body.backAt);
+          await lockOpenStorm(params.stormId, job.tx);
+          job.inStorm(params.stormId);
+          const area = await AreaRecord.create(
+            {
+              id: body.areaId,
+              stormId: params.stormId,
+              name: body.name,
+              ring: JSON.stringify(body.ring),
+              outAt: new Date(body.outAt),
+              backAt: body.backAt === null ? null : new Date(body.backAt),
+            },
+            { transaction: job.tx },
+          );
+          const moved = await callsFollowAreas(job, params.stormId);
+          job.touched.areas.add(area.id);
+          job.note('area', area.id, `drew an outage area; ${String(moved)} calls follow`);
+          return toAreaDto(area);
+        },
+      ),
+
+    changeArea: ({ params, body, person }) =>
+      runCommand(
+        context,
+        orderFrom('changeArea', person, { ...body, ...params }),
+        async (job): Promise<AreaDto> => {
+          const area = await lockArea(job, params.areaId, body.version);
+          if (body.ring) refuseCrossing(body.ring);
+          area.set({
+            ...(body.name === undefined ? {} : { name: body.name }),
+            ...(body.ring === undefined ? {} : { ring: JSON.stringify(body.ring) }),
+            ...(body.outAt === undefined ? {} : { outAt: new Date(body.outAt) }),
+            ...(body.backAt === undefined
+              ? {}
+              : { backAt: body.backAt === null ? null : new Date(body.backAt) }),
+            version: area.version + 1,
+          });
+          refuseTimes(job, area.outAt.getTime(), area.backAt?.getTime() ?? null);
+          await area.save({ transaction: job.tx });
+          const moved = await callsFollowAreas(job, area.stormId);
+          job.touched.areas.add(area.id);
+          job.note('area', area.id, `changed an outage area; ${String(moved)} calls follow`);
+          return toAreaDto(area);
+        },
+      ),
+
+    removeArea: ({ params, body, person }) =>
+      runCommand(
+        context,
+        orderFrom('removeArea', person, { ...body, ...params }),
+        async (job): Promise<{ done: true }> => {
+          const area = await lockArea(job, params.areaId, body.version);
+          const { stormId } = area;
+          await area.destroy({ transaction: job.tx });
+          const moved = await callsFollowAreas(job, stormId);
+          job.touched.areasGone.add(params.areaId);
+          job.note('area', params.areaId, `removed an outage area; ${String(moved)} calls change`);
+          return { done: true };
+        },
+      ),
+
+    pockets: async ({ params }) => ({ pockets: await pocketsOf(context, params.stormId) }),
+  };
+}
+
+/** The area, with its storm locked first: areas of a storm change one after the other. */
+async function lockArea(job: Job, areaId: string, version: number): Promise<AreaRecord> {
+  const found = await AreaRecord.findByPk(areaId, { transaction: job.tx });
+  if (!found) throw new Refusal('not-found', 'There is no such outage area.');
+  await lockOpenStorm(found.stormId, job.tx);
+  const area = await AreaRecord.findByPk(areaId, { transaction: job.tx, lock: job.tx.LOCK.UPDATE });
+  if (!area) throw new Refusal('not-found', 'The outage area was removed just now.');
+  job.inStorm(area.stormId);
+  if (area.version !== version)
+    throw new Refusal('stale-version', `"${area.name}" has changed.`, toAreaDto(area));
+  return area;
+}
+
+function refuseTimes(job: Job, outAt: number, backAt: number | null): void {
+  refuseImpossibleTimes({ powerOutAt: outAt, powerBackAt: backAt }, job.now);
+}
+
+function refuseCrossing(ring: readonly LonLat[]): void {
+  if (kinks(polygon([ring.map((point) => [...point])])).features.length > 0)
+    throw new Refusal('outline-crosses-itself', 'The outline crosses itself. Draw it again.');
 }

@@ -59,7 +59,7 @@ export async function takeCall(job: Job, stormId: string, told: CallToTake): Pro
       : told.powerBackAt === null
         ? null
         : new Date(told.powerBackAt),
-    timesFrom: followsArea ? 'area' : 'caller',
+    timesFrom: told.timesFrom,
     language: told.language,
     mayText: told.mayText,
     danger: told.danger,

@@ -17,6 +17,8 @@ import type { Touched } from './touched';
 export const BOARD = 'board';
 export const dayStream = (technicianId: string): string => `technician:${technicianId}`;
 
+const CALLS_PER_CHANGE = 200;
+
 type Change = { readonly stream: string; readonly change: BoardChange | DayChange };
 
 /**
@@ -103,7 +105,9 @@ async function boardChanges(
   const stops = await stopDtos(sequelize, { ids: [...touched.stops] }, tx);
   const callIds = new Set([...touched.calls, ...stops.map((stop) => stop.callId)]);
   const calls = await callRows(sequelize, { ids: [...callIds] }, now, tx);
-  if (calls.length > 0) changes.push({ kind: 'calls', calls });
+  // In pieces: an outage area with new times may move a thousand calls at once.
+  for (let i = 0; i < calls.length; i += CALLS_PER_CHANGE)
+    changes.push({ kind: 'calls', calls: calls.slice(i, i + CALLS_PER_CHANGE) });
   if (stops.length > 0) changes.push({ kind: 'stops', stops });
   if (touched.areas.size + touched.areasGone.size > 0)
     changes.push({

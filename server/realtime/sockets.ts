@@ -45,6 +45,8 @@ export interface SocketDoor {
   /** Whoever the request was signed in as; asked again for each event. */
   readonly personOf: (request: IncomingMessage) => Promise<SignedIn | null>;
   readonly isOwnOrigin: (origin: string | undefined) => boolean;
+  /** Told of every change to a board as it goes out. */
+  readonly onBoardChange: (stormId: string, change: BoardChange) => void;
 }
 
 /**
@@ -99,9 +101,10 @@ export async function serveSockets(door: SocketDoor): Promise<Live> {
   });
 
   const pump = new FeedPump(door.sequelize, door.log, (stormId, stream, n, change) => {
-    if (stream === BOARD)
+    if (stream === BOARD) {
       io.to(DESK_ROOM).emit('board:changed', { stormId, n, change } as Numbered<BoardChange>);
-    else io.to(stream).emit('day:changed', { stormId, n, change } as Numbered<DayChange>);
+      door.onBoardChange(stormId, change as BoardChange);
+    } else io.to(stream).emit('day:changed', { stormId, n, change } as Numbered<DayChange>);
   });
   await pump.start();
 

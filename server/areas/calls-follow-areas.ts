@@ -1,0 +1,124 @@
+import { thawClock } from '@shared/domain/thaw/thaw-clock';
+import { isInRing } from '@shared/domain/point-in-ring';
+import type { CompartmentFacts } from '@shared/domain/cold-unit';
+import type { Job } from '../commands/run-command';
+import { change, insert, json, select } from '../db/sql';
+import { lastBack } from './area-of';
+import { AreaRecord } from './area-record';
+
+interface PlacedCall {
+  id: string;
+  lon: number;
+  lat: number;
+  area_id: string | null;
+  times_from: 'area' | 'caller';
+  power_out_at: Date;
+  power_back_at: Date | null;
+}
+
+/** One statement winds this many clocks. */
+const BATCH = 500;
+
+/**
+ * Puts every open call of the storm into the outage area around it, and lets those whose times
+ * follow their area follow. In bulk: a county's worth of calls may move at once.
+ *
+ * @returns how many calls changed
+ */
+export async function callsFollowAreas(job: Job, stormId: string): Promise<number> {
+  const areas = await AreaRecord.findAll({ where: { stormId }, transaction: job.tx });
+  const outlines = areas.map((area) => ({ area, ring: area.outline() }));
+  const calls = await select<PlacedCall>(
+    job.sequelize,
+    `SELECT id, lon, lat, area_id, times_from, power_out_at, power_back_at
+       FROM calls WHERE storm_id = ? AND settled_at IS NULL AND lon IS NOT NULL
+      ORDER BY id FOR UPDATE`,
+    [stormId],
+    job.tx,
+  );
+
+  const byArea = new Map<AreaRecord | null, { move: string[]; wind: string[] }>();
+  for (const call of calls) {
+    const point: [number, number] = [call.lon, call.lat];
+    const area = lastBack(
+      outlines.filter(({ ring }) => isInRing(point, ring)).map((one) => one.area),
+    );
+    const winds = area !== null && call.times_from === 'area' && !hasTimesOf(call, area);
+    if (call.area_id === (area?.id ?? null) && !winds) continue;
+    const group = byArea.get(area) ?? { move: [], wind: [] };
+    byArea.set(area, group);
+    (winds ? group.wind : group.move).push(call.id);
+  }
+
+  let moved = 0;
+  for (const [area, { move, wind }] of byArea) {
+    if (move.length > 0)
+      await change(
+        job.sequelize,
+        'UPDATE calls SET area_id = ?, version = version + 1 WHERE id IN (?)',
+        [area?.id ?? null, move],
+        job.tx,
+      );
+    if (area && wind.length > 0) {
+      await change(
+        job.sequelize,
+        `UPDATE calls SET area_id = ?, power_out_at = ?, power_back_at = ?, version = version + 1
+          WHERE id IN (?)`,
+        [area.id, area.outAt, area.backAt, wind],
+        job.tx,
+      );
+      await windAll(job, wind, area.outAt.getTime());
+    }
+    for (const id of [...move, ...wind]) job.touched.call(id);
+    moved += move.length + wind.length;
+  }
+  return moved;
+}
+
+const hasTimesOf = (call: PlacedCall, area: AreaRecord): boolean =>
+  call.power_out_at.getTime() === area.outAt.getTime() &&
+  call.power_back_at?.getTime() === area.backAt?.getTime();
+
+/** Winds the clocks of many open calls whose power went at one moment. */
+async function windAll(job: Job, callIds: readonly string[], lostAt: number): Promise<void> {
+  for (let i = 0; i < callIds.length; i += BATCH) {
+    const rows = await select<{
+      unit_id: string;
+      place_no: number;
+      kind: string;
+      facts: unknown;
+      value_cents: number;
+    }>(
+      job.sequelize,
+      `SELECT k.unit_id, k.place_no, k.kind, k.facts, k.value_cents
+         FROM compartments k JOIN cold_units u ON u.id = k.unit_id WHERE u.call_id IN (?)`,
+      [callIds.slice(i, i + BATCH)],
+      job.tx,
+    );
+    if (rows.length === 0) continue;
+    await insert(
+      job.sequelize,
+      `INSERT INTO compartments
+         (unit_id, place_no, kind, facts, value_cents, at_risk_at, save_by_at, reasons)
+       VALUES ? ON DUPLICATE KEY UPDATE at_risk_at = VALUES(at_risk_at),
+         save_by_at = VALUES(save_by_at), reasons = VALUES(reasons)`,
+      [
+        rows.map((row) => {
+          const facts = json<CompartmentFacts>(row.facts);
+          const clock = thawClock(facts, { lostAt, restoredAt: null });
+          return [
+            row.unit_id,
+            row.place_no,
+            row.kind,
+            JSON.stringify(facts),
+            row.value_cents,
+            new Date(Math.round(clock.atRiskAt)),
+            clock.saveByAt === null ? null : new Date(Math.round(clock.saveByAt)),
+            JSON.stringify(clock.reasons),
+          ];
+        }),
+      ],
+      job.tx,
+    );
+  }
+}

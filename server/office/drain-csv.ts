@@ -1,0 +1,46 @@
+import { stringify } from 'csv-stringify/sync';
+import { DateTime } from 'luxon';
+import type { DrainDto } from '@shared/contract/office';
+import { safeCell } from './safe-cell';
+
+/**
+ * The drain as a table for a spreadsheet (RFC 4180), times in the region's zone. Three tables
+ * below each other: over time, by area, by technician.
+ */
+export function drainCsv(drain: DrainDto, zone: string): string {
+  const time = (at: number): string =>
+    DateTime.fromMillis(at, { zone }).toFormat('yyyy-LL-dd HH:mm');
+  const figures = [
+    'Arrivals',
+    'Settled by phone',
+    'Settled by visit',
+    'Open',
+    'Value at risk (USD)',
+    'Saved (USD)',
+    'Lost (USD)',
+  ];
+  const cells = (row: Omit<DrainDto['series'][number], 'at'>): string[] => [
+    String(row.arrivals),
+    String(row.settledByPhone),
+    String(row.settledByVisit),
+    String(row.open),
+    dollars(row.valueAtRiskCents),
+    dollars(row.savedCents),
+    dollars(row.lostCents),
+  ];
+  return stringify([
+    ['Time', ...figures],
+    ...drain.series.map((point) => [time(point.at), ...cells(point)]),
+    [],
+    ['Area', ...figures],
+    ...drain.byArea.map((share) => [safeCell(share.name), ...cells(share)]),
+    [],
+    ['Technician', ...figures],
+    ...drain.byTechnician.map((share) => [safeCell(share.name), ...cells(share)]),
+    [],
+    ['Forecast', drain.forecast.emptyAt === null ? 'never' : time(drain.forecast.emptyAt)],
+    ['Assumption', safeCell(drain.forecast.assumption)],
+  ]);
+}
+
+const dollars = (cents: number): string => (cents / 100).toFixed(2);
