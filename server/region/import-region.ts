@@ -10,7 +10,7 @@ import { UnreadableRegion } from './unreadable-region';
 import { ADDRESS_ZOOM, writeAddressTiles, writeTiles } from './write-tiles';
 
 /** Part of every region's hash: raise it when the same file would give other tiles or addresses. */
-const IMPORTER_VERSION = 1;
+const IMPORTER_VERSION = 2;
 
 export interface ImportStep {
   readonly step: 'reading' | 'sorting' | 'tiles' | 'addresses' | 'done';

@@ -1,9 +1,11 @@
 import type { Feature, Position } from 'geojson';
+import { postalStreet } from '@shared/domain/address/street-words';
 import { landOf } from './coastline';
 import { joinLines } from './join-lines';
 import { linesOf, type LonLat, type OsmExtract } from './osm-extract';
 import type { OsmWay, Tags } from './osm-model';
-import { polygonsOf, ringOf, type PolygonRings } from './rings';
+import { innerPoint, polygonsOf, ringOf, signedArea, type PolygonRings } from './rings';
+import { thinned } from './thin-line';
 
 /** The layers of a tile; the map's style names them. */
 export const LAYERS = [
@@ -52,11 +54,15 @@ const ROAD_CLASSES: Readonly<Record<string, RoadClass>> = {
   service: 'service',
 };
 
+/** Back roads join the villages, so they show as soon as the larger roads that they meet. */
+const minzoomOf = (tags: Tags, roadClass: RoadClass): number =>
+  tags['highway'] === 'unclassified' ? 10 : ROAD_MINZOOM[roadClass];
+
 const ROAD_MINZOOM: Readonly<Record<RoadClass, number>> = {
   motorway: 8,
   primary: 8,
-  secondary: 9,
-  tertiary: 11,
+  secondary: 8,
+  tertiary: 9,
   local: 12,
   service: 13,
 };
@@ -81,8 +87,21 @@ export function mapLayers(extract: OsmExtract): MapLayers {
   const addArea = (tags: Tags, rings: () => PolygonRings[]): void => {
     const area = areaOf(tags);
     if (!area) return;
-    for (const own of rings()) {
-      features[area.layer].push(polygon(own, kindAndName(area.kind, tags), area.minzoom));
+    const polygons = rings();
+    for (const own of polygons)
+      features[area.layer].push(polygon(own, { kind: area.kind }, area.minzoom));
+    const largest = [...polygons].sort(
+      (a, b) => Math.abs(signedArea(b[0]!)) - Math.abs(signedArea(a[0]!)),
+    )[0];
+    // The map library sets a polygon's name at its first corner, so names are points of their own.
+    if (largest && tags['name'] && area.layer !== 'buildings') {
+      features.places.push(
+        pointFeature(
+          innerPoint(largest[0]!),
+          { kind: area.layer, name: tags['name'] },
+          Math.max(11, area.minzoom),
+        ),
+      );
     }
   };
   for (const way of extract.ways.values()) {
@@ -115,15 +134,9 @@ export function mapLayers(extract: OsmExtract): MapLayers {
   for (const { at, tags } of extract.namedNodes) {
     const place = placeOf(tags);
     if (place) {
-      features.places.push({
-        minzoom: place.minzoom,
-        maxzoom: MAX_ZOOM,
-        feature: {
-          type: 'Feature',
-          properties: { kind: place.kind, name: tags['name'] },
-          geometry: { type: 'Point', coordinates: [...at] },
-        },
-      });
+      features.places.push(
+        pointFeature(at, { kind: place.kind, name: tags['name']! }, place.minzoom),
+      );
     }
   }
   return { features, hasCoastline: land.length > 0 };
@@ -201,6 +214,9 @@ const AMENITIES = new Set([
   'police',
 ]);
 
+/** Names are set on straight stretches only; points that do not matter to the eye would break them. */
+const THINNING_METRES = 2;
+
 /** Roads for the two ends of the scale: joined to long lines below z13, with their bridges from z13. */
 function roadFeatures(extract: OsmExtract): MapFeature[] {
   const roads: { way: OsmWay; roadClass: RoadClass; points: LonLat[] }[] = [];
@@ -214,27 +230,47 @@ function roadFeatures(extract: OsmExtract): MapFeature[] {
     withBridge: boolean,
   ): Record<string, string> => ({
     class: roadClass,
-    ...(way.tags['name'] ? { name: way.tags['name'] } : {}),
+    ...(way.tags['name'] ? { name: postalStreet(way.tags['name']) } : {}),
     ...(way.tags['ref'] ? { ref: way.tags['ref'] } : {}),
     ...(withBridge && isBridge(way) ? { bridge: 'yes' } : {}),
   });
-  const joined = (withBridge: boolean): { points: LonLat[]; data: Record<string, string> }[] =>
+  const joined = (withBridge: boolean): JoinedRoad[] =>
     joinLines(
       roads.map((road) => {
-        const data = properties(road, withBridge);
+        const data = {
+          tags: properties(road, withBridge),
+          minzoom: minzoomOf(road.way.tags, road.roadClass),
+        };
         return { kind: JSON.stringify(data), points: road.points, data };
       }),
-    );
-  const near = joined(true).map(({ points, data }) =>
-    lineFeature(points, data, Math.max(13, ROAD_MINZOOM[data['class'] as RoadClass]), MAX_ZOOM),
+    ).map(({ points, data }) => ({ points: thinned(points, THINNING_METRES), ...data }));
+  const near = joined(true).map(({ points, tags, minzoom }) =>
+    lineFeature(points, tags, Math.max(FIRST_NEAR_ZOOM, minzoom), MAX_ZOOM),
   );
   const far = joined(false)
-    .filter(({ data }) => data['class'] !== 'service')
-    .map(({ points, data }) =>
-      lineFeature(points, data, ROAD_MINZOOM[data['class'] as RoadClass], 12),
-    );
+    .filter(({ minzoom }) => minzoom < FIRST_NEAR_ZOOM)
+    .map(({ points, tags, minzoom }) => lineFeature(points, tags, minzoom, FIRST_NEAR_ZOOM - 1));
   return [...near, ...far];
 }
+
+interface JoinedRoad {
+  readonly points: LonLat[];
+  readonly tags: Record<string, string>;
+  readonly minzoom: number;
+}
+
+/** From here on bridges are told apart. */
+const FIRST_NEAR_ZOOM = 13;
+
+const pointFeature = (
+  at: LonLat,
+  properties: Record<string, string>,
+  minzoom: number,
+): MapFeature => ({
+  minzoom,
+  maxzoom: MAX_ZOOM,
+  feature: { type: 'Feature', properties, geometry: { type: 'Point', coordinates: [...at] } },
+});
 
 const isBridge = ({ tags }: OsmWay): boolean =>
   tags['bridge'] !== undefined && tags['bridge'] !== 'no';

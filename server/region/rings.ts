@@ -127,3 +127,40 @@ export function isInsideRing([x, y]: LonLat, ring: readonly LonLat[]): boolean {
   }
   return inside;
 }
+
+/** A point well inside a ring: its centroid, or the middle of its widest stretch at that height. */
+export function innerPoint(ring: readonly LonLat[]): LonLat {
+  let area = 0;
+  let x = 0;
+  let y = 0;
+  const [ox, oy] = ring[0]!;
+  for (let i = 1; i < ring.length; i++) {
+    const [ax, ay] = [ring[i - 1]![0] - ox, ring[i - 1]![1] - oy];
+    const [bx, by] = [ring[i]![0] - ox, ring[i]![1] - oy];
+    const cross = ax * by - bx * ay;
+    area += cross;
+    x += (ax + bx) * cross;
+    y += (ay + by) * cross;
+  }
+  const centroid: LonLat = area === 0 ? ring[0]! : [ox + x / (3 * area), oy + y / (3 * area)];
+  if (isInsideRing(centroid, ring)) return centroid;
+  const height = centroid[1];
+  const crossings: number[] = [];
+  for (let i = 1; i < ring.length; i++) {
+    const a = ring[i - 1]!;
+    const b = ring[i]!;
+    if (a[1] > height !== b[1] > height)
+      crossings.push(a[0] + ((height - a[1]) / (b[1] - a[1])) * (b[0] - a[0]));
+  }
+  crossings.sort((p, q) => p - q);
+  let best = centroid;
+  let widest = 0;
+  for (let i = 1; i < crossings.length; i += 2) {
+    const width = crossings[i]! - crossings[i - 1]!;
+    if (width > widest) {
+      widest = width;
+      best = [(crossings[i]! + crossings[i - 1]!) / 2, height];
+    }
+  }
+  return best;
+}

@@ -24,11 +24,10 @@ export function layOutSuburbs(
   let built = 0;
   for (let tries = 0; tries < wanted * 30 && built < wanted; tries++) {
     const way = chance.pick(DIRECTIONS);
-    const out = town.radius * chance.between(0.75, 1.45) + 150;
+    const out = town.radius * chance.between(0.75, 1.5) + 150;
     const middle: Point = [town.at[0] + way[0] * out, town.at[1] + way[1] * out];
-    const radius = chance.between(105, 270);
     const key = `${town.index}/l${tries}`;
-    const ring = loopAround(middle, radius, chance.below(10_000));
+    const ring = loopAround(middle, chance);
     if (ring.some((p) => terrain.clearance(p) < 110 || space.nearest(p, APART) !== null)) continue;
     const links = linksToStreets(ring, terrain, space, chance);
     if (links.length === 0) continue;
@@ -52,6 +51,8 @@ export function layOutSuburbs(
     };
     add(ring, key, 'loop', 100);
     links.forEach((points, k) => add(points, `${key}/e${k}`, 'loop', 10));
+    const through = streetThrough(ring, chance);
+    if (through) add(through, `${key}/e9`, 'loop', 100);
     addCuls(ring, middle, key, chance, terrain, space, (points, k) =>
       add(points, `${key}/c${k}`, 'cul', 1),
     );
@@ -59,12 +60,32 @@ export function layOutSuburbs(
   return lines;
 }
 
-function loopAround(middle: Point, radius: number, seed: number): Point[] {
-  const ring = circle(16).map(([x, y]): Point => {
-    const stretch = radius * (1 + 0.28 * noise2(x * 1.3 + 5, y * 1.3 + 5, seed));
-    return [middle[0] + x * stretch * 1.2, middle[1] + y * stretch];
+/** A lopsided loop, longer than it is wide. */
+function loopAround(middle: Point, chance: Chance): Point[] {
+  const radius = chance.between(140, 320);
+  const width = chance.between(0.5, 0.95);
+  const seed = chance.below(10_000);
+  const [ax, ay] = chance.pick(DIRECTIONS);
+  const ring = circle(14).map(([x, y]): Point => {
+    const stretch = radius * (1 + 0.42 * noise2(x * 1.2 + 5, y * 1.2 + 5, seed));
+    const u = x * stretch;
+    const v = y * stretch * width;
+    return [middle[0] + u * ax - v * ay, middle[1] + u * ay + v * ax];
   });
   return simplified(rounded([...ring, ring[0]!], 2, true), 0.8);
+}
+
+/** A bent street that cuts a large loop in two unequal parts; null when the loop is small. */
+function streetThrough(ring: readonly Point[], chance: Chance): Point[] | null {
+  const from = chance.below(ring.length - 1);
+  const to = (from + Math.round(ring.length * chance.between(0.3, 0.42))) % (ring.length - 1);
+  const a = ring[from]!;
+  const b = ring[to]!;
+  if (distance(a, b) < 220) return null;
+  const bend = chance.between(-0.14, 0.14);
+  const middle = between(a, b, 0.5);
+  const bent: Point = [middle[0] - (b[1] - a[1]) * bend, middle[1] + (b[0] - a[0]) * bend];
+  return simplified(rounded([a, bent, b], 3, false), 0.5);
 }
 
 /** One or two short streets from the loop to the nearest streets, without crossing anything. */
@@ -102,16 +123,17 @@ function addCuls(
   add: (points: readonly Point[], number: number) => void,
 ): void {
   let count = 0;
-  for (let i = 2; i < ring.length - 1; i += 5) {
+  for (let i = 1 + chance.below(4); i < ring.length - 1; i += 3 + chance.below(6)) {
+    if (!chance.happens(0.5)) continue;
     const foot = ring[i]!;
     const radius = distance(foot, middle);
-    const inward = chance.happens(0.4) ? -1 : 1;
+    const inward = chance.happens(0.25) ? -1 : 1;
     const length =
-      inward < 0 ? Math.min(radius * 0.55, chance.between(70, 130)) : chance.between(75, 190);
+      inward < 0 ? Math.min(radius * 0.5, chance.between(70, 110)) : chance.between(70, 170);
     if (length < 70) continue;
     const dx = ((foot[0] - middle[0]) / radius) * inward;
     const dy = ((foot[1] - middle[1]) / radius) * inward;
-    const bend = chance.between(-0.35, 0.35);
+    const bend = chance.between(-0.8, 0.8);
     const tip: Point = [foot[0] + (dx - dy * bend) * length, foot[1] + (dy + dx * bend) * length];
     const middleOfWay: Point = [foot[0] + dx * length * 0.5, foot[1] + dy * length * 0.5];
     const points = simplified(rounded([foot, middleOfWay, tip], 2, false), 0.5);

@@ -51,12 +51,16 @@ export function makeTerrain(seed: number): Terrain {
     700 * noise1(y / 9_000, barrierSeed) +
     130 * noise1(y / 1_900, barrierSeed + 1);
   const riverX = (y: number): number =>
-    -5_200 + 1_900 * noise1(y / 6_000, riverSeed) + 420 * noise1(y / 1_700, riverSeed + 1);
+    -5_200 + 1_900 * noise1(y / 6_000, riverSeed) + 640 * noise1(y / 1_700, riverSeed + 1);
 
   const estuaryHalfWidth = (y: number): number => {
     if (y > ESTUARY_HEAD) return 0;
     const t = (ESTUARY_HEAD - y) / 17_000;
-    return 30 + 1_500 * t * t + 60 * noise1(y / 700, riverSeed + 2) * Math.min(1, t * 4);
+    const ragged =
+      (110 * noise1(y / 900, riverSeed + 2) + 45 * noise1(y / 310, riverSeed + 4)) *
+      Math.min(1, t * 3);
+    // Narrower than the lattice can hold it would fall apart into ponds.
+    return Math.max(50, 40 + 1_500 * t * t + ragged);
   };
 
   const barrierDepth = (x: number, y: number): number => {

@@ -25,7 +25,7 @@ export function layOutTown(seed: number, town: Town, terrain: Terrain): TownPlan
   const warpSeed = seedOf(seed, 'warp', town.index);
   const edgeSeed = seedOf(seed, 'edge', town.index);
   const [ax, ay] = town.along;
-  const bendBy = town.isOnBarrier ? 0 : 55;
+  const bendBy = town.isOnBarrier ? 0 : 46;
 
   /** From the town's own coordinates (along, across) to the plane. */
   const place = (u: number, v: number): Point => {
@@ -33,8 +33,8 @@ export function layOutTown(seed: number, town: Town, terrain: Terrain): TownPlan
     const y = town.at[1] + u * ay + v * ax;
     if (town.isOnBarrier) return [x + terrain.barrierAt(y)[0] - town.at[0], y];
     return [
-      x + bendBy * noise2(x / 900, y / 900, warpSeed),
-      y + bendBy * noise2(x / 900, y / 900, warpSeed + 1),
+      x + bendBy * noise2(x / 1_250, y / 1_250, warpSeed),
+      y + bendBy * noise2(x / 1_250, y / 1_250, warpSeed + 1),
     ];
   };
 
@@ -48,7 +48,10 @@ export function layOutTown(seed: number, town: Town, terrain: Terrain): TownPlan
   const isBuilt = (u: number, k: number): boolean => {
     const v = k * town.blockDepth;
     const p = place(u, v);
-    const ragged = town.radius * (1 + 0.3 * noise2(p[0] / 620, p[1] / 620, edgeSeed));
+    // The two main streets run through to the edge; the rest ends raggedly.
+    const isMain = k === 0 || Math.abs(u) < 1;
+    const ragged =
+      town.radius * (isMain ? 0.97 : 1 + 0.3 * noise2(p[0] / 620, p[1] / 620, edgeSeed));
     return u * u + v * v < ragged * ragged && terrain.clearance(p) > SHORE_MARGIN;
   };
 
