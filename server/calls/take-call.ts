@@ -6,6 +6,7 @@ import { isDuplicateOf } from '../db/sql';
 import type { Job } from '../commands/run-command';
 import { readSettings } from '../office/settings';
 import { lockOpenStorm } from '../storms/storm-queries';
+import { tellCallReceived } from '../texts/tell-customer';
 import { CallRecord } from './call-record';
 import { callRows } from './call-rows';
 import { claim, writeHistory, writeRemark } from './change-call';
@@ -75,6 +76,7 @@ export async function takeCall(job: Job, stormId: string, told: CallToTake): Pro
   await storeUnits(job, call, told.units);
   await writeHistory(job, call, null, told.source === 'phone' ? 'rang' : 'from the night log');
   if (told.remark !== '') await writeRemark(job, call.id, told.remark);
+  if (told.source === 'phone' && call.mayText) await tellCallReceived(job, call);
   job.touched.call(call.id);
   job.note('call', call.id, `took call ${String(call.number)}`);
   return call;

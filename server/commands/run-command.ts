@@ -34,6 +34,8 @@ export interface Job {
   readonly now: Instant;
   readonly at: Date;
   readonly actor: Actor;
+  /** IANA name of the region's time zone, for quiet hours and times in texts. */
+  readonly zone: string;
   /** Which rows changed. Boards and phones are told of them once the command is certain. */
   readonly touched: Touched;
   /** Which storm it concerns; its board is told and its audit chain grows. */
@@ -58,6 +60,7 @@ export async function runCommand<R>(
   const fingerprint = fingerprintOf(order);
   const later: (() => void)[] = [];
   let storm: string | null = null;
+  let hasTexts = false;
 
   const reply = await inTransaction(context.sequelize, async (tx) => {
     // A retried attempt starts clean.
@@ -75,6 +78,7 @@ export async function runCommand<R>(
       now,
       at: new Date(now),
       actor: order.actor,
+      zone: context.region.dto.timeZone,
       touched,
       inStorm: (stormId) => (storm = stormId),
       note: (entity, entityId, summary) => notes.push({ entity, entityId, summary }),
@@ -92,10 +96,12 @@ export async function runCommand<R>(
     // The counters come last: they are the one row that all commands share, and so held briefly.
     await appendAudit(context.sequelize, { order, notes, at: job.at, stormId: storm }, tx);
     storm = await appendChanges(context.sequelize, { touched, stormId: storm, now }, tx);
+    hasTexts = touched.messages.size > 0;
     return result;
   });
 
   if (storm !== null) context.live.ring(storm);
+  if (hasTexts) context.wakeOutbox();
   for (const act of later) act();
   return reply;
 }
