@@ -38,14 +38,10 @@ await runMain(async () => {
   }
 
   say();
-  await step('packages', ensurePackages);
-  const env = {};
-  if (parts.has('server') || parts.has('browser'))
-    Object.assign(env, await step('database', startDatabase));
-  if (parts.has('browser')) env.THAWLINE_CHROMIUM = await step('chromium', findChromium);
-  say();
-
   try {
+    // One waits for the npm registry, the other for Debian's packages.
+    const [, env] = await Promise.all([step('packages', ensurePackages), prepareMachine(parts)]);
+    say();
     await runParts(parts, { env, pattern });
   } finally {
     await stopDatabase();
@@ -53,6 +49,16 @@ await runMain(async () => {
   process.stdout.write(`${describeFailures(results)}\n${summary(results)}\n`);
   return results.some(({ failed }) => failed > 0) ? 1 : 0;
 });
+
+/** The database server and the browser, if a wanted part needs them. Returns the environment for the tests. */
+async function prepareMachine(parts) {
+  const env = {};
+  if (parts.has('server') || parts.has('browser')) {
+    Object.assign(env, await step('database', startDatabase));
+  }
+  if (parts.has('browser')) env.THAWLINE_CHROMIUM = await step('chromium', findChromium);
+  return env;
+}
 
 /**
  * Two cores: first, side by side, what only thinks (the checks and the build; rules and components),
