@@ -1,10 +1,12 @@
 import {
+  afterNextRender,
   ChangeDetectionStrategy,
   Component,
   computed,
   DestroyRef,
   effect,
   inject,
+  Injector,
   input,
   output,
   signal,
@@ -45,6 +47,7 @@ export class CallPanel {
   protected readonly clock = inject(Clock);
   private readonly board = inject(BoardStore);
   private readonly zone = inject(Zone);
+  private readonly injector = inject(Injector);
 
   readonly callId = input.required<string>();
   readonly closed = output();
@@ -151,7 +154,8 @@ export class CallPanel {
   /** Starts the phone check or goes on with it. */
   async startCheck(): Promise<void> {
     if (!this.call.isMine() && !(await this.call.takeClaim())) return;
-    this.check()?.focus();
+    // The panel appears with the answer to the claim.
+    afterNextRender(() => this.check()?.focus(), { injector: this.injector });
   }
 
   async toggleClaim(): Promise<void> {

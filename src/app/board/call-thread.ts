@@ -27,11 +27,10 @@ const STATE_WORDS: Readonly<Record<MessageDto['state'], string>> = {
 })
 export class CallThread {
   protected readonly call = inject(CallModel);
-  protected readonly clock = inject(Clock);
+  private readonly clock = inject(Clock);
   private readonly zone = inject(Zone);
 
   protected readonly text = signal('');
-  protected readonly stateWords = STATE_WORDS;
   protected readonly messages = computed(() =>
     [...(this.call.detail()?.messages ?? [])].sort((a, b) => a.at - b.at),
   );
@@ -42,8 +41,11 @@ export class CallThread {
   protected readonly unread = computed(() => this.call.row()?.unreadTexts ?? 0);
   protected readonly mayText = computed(() => this.call.detail()?.mayText ?? false);
 
-  protected when(message: MessageDto): string {
-    return whenWords(message.at, this.clock.now(), this.zone.name());
+  protected about(message: MessageDto): string {
+    const when = whenWords(message.at, this.clock.now(), this.zone.name());
+    if (message.direction === 'in') return `Customer, ${when}`;
+    const trouble = message.trouble === null ? '' : `: ${message.trouble}`;
+    return `We, ${when}, ${STATE_WORDS[message.state]}${trouble}`;
   }
 
   protected async send(): Promise<void> {

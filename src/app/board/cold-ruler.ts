@@ -9,7 +9,7 @@ import { whenWords } from './time-words';
   selector: 'thaw-cold-ruler',
   template: `
     @for (label of labels(); track label.hours) {
-      <span class="label" [class.now]="label.hours === 0" [style.left.%]="label.share * 100">
+      <span class="label" [class]="label.place" [style.left.%]="label.share * 100">
         <span class="hours">{{ label.text }}</span>
         @if (label.clock) {
           <span class="clock">{{ label.clock }}</span>
@@ -29,6 +29,7 @@ export class ColdRuler {
     RULER_LABELS.map(({ hours, text }) => ({
       hours,
       text,
+      place: placeOf(hours),
       share: shareOfHours(hours),
       // Between the other labels there is no room for a clock time.
       clock: CLOCK_AT.has(hours)
@@ -39,3 +40,10 @@ export class ColdRuler {
 }
 
 const CLOCK_AT: ReadonlySet<number> = new Set([0, 4, 12, 24, 48]);
+const LAST_HOURS = 48;
+
+function placeOf(hours: number): string {
+  if (hours === 0) return 'now';
+  if (hours === LAST_HOURS) return 'last';
+  return hours === 24 ? 'day' : '';
+}

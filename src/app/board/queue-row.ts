@@ -39,7 +39,17 @@ export class QueueRow {
     const urgency = this.urgency();
     return urgency ? lossWords(urgency) : '';
   });
-  protected readonly reasons = computed(() => this.urgency()?.reasons.join('; ') ?? '');
+  protected readonly reasons = computed(() => this.urgency()?.reasons ?? []);
+
+  /** The street above, the town and the name below it. */
+  protected readonly place = computed(() => {
+    const { address, name } = this.call();
+    const [street = '', ...rest] = address.text.split(', ');
+    return {
+      street: address.unitNo ? `${street}, ${address.unitNo}` : street,
+      rest: [...rest, name].join(', '),
+    };
+  });
 
   protected readonly saveBy = computed(() => {
     const at = this.urgency()?.saveByAt ?? null;
@@ -53,9 +63,12 @@ export class QueueRow {
     const { claim, etaAt } = this.call();
     const now = this.now();
     if (claim && claim.until > now) {
-      const who = claim.userId === this.myUserId() ? 'You have' : `${claim.name} has`;
+      const who = claim.userId === this.myUserId() ? 'You have' : `${firstName(claim.name)} has`;
       return `${who} it until ${whenWords(claim.until, now, this.zone.name())}`;
     }
     return etaAt === null ? '' : `Arrives ${whenWords(etaAt, now, this.zone.name())}`;
   });
 }
+
+/** A row has no room for more, and the open call tells the whole name. */
+const firstName = (name: string): string => name.split(' ')[0] ?? name;

@@ -12,10 +12,9 @@ export const LANE_WORDS: Readonly<Record<Lane, string>> = {
   4: 'Ordinary repair',
 };
 
-/** "$4.20 a minute"; below a cent nobody is helped by a number. */
+/** "$4.20", for each minute that the call waits; below a cent nobody is helped by a number. */
 export function lossWords({ lossPerMinuteCents }: Urgency): string {
-  if (lossPerMinuteCents < 1) return '';
-  return `$${(lossPerMinuteCents / 100).toFixed(2)} a minute`;
+  return lossPerMinuteCents < 1 ? '' : `$${(lossPerMinuteCents / 100).toFixed(2)}`;
 }
 
 export const SKILL_WORDS: Readonly<Record<Skill, string>> = {

@@ -1,3 +1,4 @@
+import { BreakpointObserver } from '@angular/cdk/layout';
 import { CdkVirtualScrollViewport, ScrollingModule } from '@angular/cdk/scrolling';
 import {
   afterNextRender,
@@ -15,6 +16,8 @@ import {
   untracked,
   viewChild,
 } from '@angular/core';
+import { toSignal } from '@angular/core/rxjs-interop';
+import { map } from 'rxjs';
 import { Announce } from '../core/announce';
 import { BoardStore } from '../core/board-store';
 import { Clock } from '../core/clock';
@@ -25,10 +28,12 @@ import { EMPTY_ORDER, heldWords, type HeldOrder, nextOrder, takeOrder } from './
 import { QueueFilters } from './queue-filters';
 import { QueueRow } from './queue-row';
 
-/** Height of a row, in CSS pixels; the virtual scrolling needs one height for all. */
-const ROW_PX = 46;
-/** Rows kept ready above and below the ones in sight, in pixels; bounds what is drawn at once. */
-const BUFFER_PX = 10 * ROW_PX;
+/** Heights of a row, in CSS pixels; the virtual scrolling needs one height for all. */
+const ROW_PX = 52;
+const TALL_ROW_PX = 128;
+const NARROW = '(width < 640px)';
+/** Rows kept ready above and below the ones in sight; bounds what is drawn at once. */
+const BUFFER_ROWS = 8;
 
 interface OrderSource {
   readonly live: readonly string[];
@@ -58,8 +63,14 @@ export class Queue {
   /** Enter or a click: open this call. */
   readonly opened = output<string>();
 
-  protected readonly rowPx = ROW_PX;
-  protected readonly bufferPx = BUFFER_PX;
+  private readonly isNarrow = toSignal(
+    inject(BreakpointObserver)
+      .observe(NARROW)
+      .pipe(map(({ matches }) => matches)),
+    { initialValue: false },
+  );
+  protected readonly rowPx = computed(() => (this.isNarrow() ? TALL_ROW_PX : ROW_PX));
+  protected readonly bufferRows = BUFFER_ROWS;
 
   private readonly viewport = viewChild(CdkVirtualScrollViewport);
   private readonly viewportElement = viewChild(CdkVirtualScrollViewport, { read: ElementRef });
@@ -156,7 +167,10 @@ export class Queue {
 
   protected press(event: KeyboardEvent): void {
     if (event.ctrlKey || event.altKey || event.metaKey) return;
-    const page = Math.max(1, Math.floor((this.viewport()?.getViewportSize() ?? 0) / ROW_PX) - 1);
+    const page = Math.max(
+      1,
+      Math.floor((this.viewport()?.getViewportSize() ?? 0) / this.rowPx()) - 1,
+    );
     const steps: Readonly<Record<string, number>> = {
       ArrowDown: 1,
       ArrowUp: -1,
@@ -187,7 +201,7 @@ export class Queue {
 
   private firstInSight(): number {
     const top = this.viewport()?.measureScrollOffset('top') ?? 0;
-    return Math.min(Math.ceil(top / ROW_PX), Math.max(this.ids().length - 1, 0));
+    return Math.min(Math.ceil(top / this.rowPx()), Math.max(this.ids().length - 1, 0));
   }
 
   private bringIntoSight(id: string): void {
@@ -196,9 +210,9 @@ export class Queue {
     if (!viewport || index < 0) return;
     const top = viewport.measureScrollOffset('top');
     const height = viewport.getViewportSize();
-    if (index * ROW_PX < top) viewport.scrollToOffset(index * ROW_PX);
-    else if ((index + 1) * ROW_PX > top + height) {
-      viewport.scrollToOffset((index + 1) * ROW_PX - height);
+    if (index * this.rowPx() < top) viewport.scrollToOffset(index * this.rowPx());
+    else if ((index + 1) * this.rowPx() > top + height) {
+      viewport.scrollToOffset((index + 1) * this.rowPx() - height);
     }
   }
 

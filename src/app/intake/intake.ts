@@ -16,6 +16,7 @@ import type { UnitFacts } from '@shared/contract/calls';
 import { UNIT_KINDS, type UnitKind } from '@shared/domain/cold-unit';
 import type { Instant } from '@shared/domain/instant';
 import { AsYouType } from 'libphonenumber-js/min';
+import { ColdRuler } from '../board/cold-ruler';
 import { ColdStrip } from '../board/cold-strip';
 import { stripState } from '../board/cold-strip-scale';
 import { UNIT_WORDS } from '../board/compartment-words';
@@ -27,12 +28,13 @@ import { money, Zone } from '../core/zone';
 import { AddressField } from './address-field';
 import { changeUnit } from './intake-draft';
 import { IntakeModel } from './intake-model';
+import { PinRequest } from './pin-request';
 import { UnitCard } from './unit-card';
 
 /** Takes a call by keyboard alone. What was typed is kept until the server has it. */
 @Component({
   selector: 'thaw-intake',
-  imports: [AddressField, ColdStrip, MatIcon, UnitCard],
+  imports: [AddressField, ColdRuler, ColdStrip, MatIcon, UnitCard],
   templateUrl: './intake.html',
   styleUrls: ['./fields.scss', './intake.scss'],
   providers: [IntakeModel],
@@ -43,6 +45,7 @@ export class Intake {
   protected readonly clock = inject(Clock);
   private readonly zone = inject(Zone);
   private readonly announce = inject(Announce);
+  private readonly pins = inject(PinRequest);
   private readonly injector = inject(Injector);
   private readonly element = inject<ElementRef<HTMLElement>>(ElementRef);
 
@@ -77,11 +80,24 @@ export class Intake {
     return `About ${money(cents)} can still be saved.`;
   });
 
-  protected readonly places = computed(() =>
-    this.model
-      .draft()
-      .units.flatMap((unit) => unit.compartments.map(() => unit.place || UNIT_WORDS[unit.kind])),
-  );
+  /** What is known of the number, in a sentence. */
+  protected readonly knownWords = computed(() => {
+    const found = this.model.household();
+    if (!found) return '';
+    if (!found.household) return 'Not known yet.';
+    const calls = `${found.earlierCalls} ${found.earlierCalls === 1 ? 'call' : 'calls'} before`;
+    const texts = found.household.optedOut ? '; wants no texts' : '';
+    return `Known: ${found.household.name}, ${calls}${texts}.`;
+  });
+
+  /** What the outage area around the address says of the times. */
+  protected readonly areaWords = computed(() => {
+    const area = this.model.area();
+    if (!area) return '';
+    if (this.model.times().from === 'area') return `Times of outage area ${area.name}.`;
+    const back = area.backAt === null ? 'still out' : `back ${this.zone.dayTime(area.backAt)}`;
+    return `Outage area ${area.name}: out ${this.zone.dayTime(area.outAt)}, ${back}.`;
+  });
 
   constructor() {
     afterNextRender(() => this.phoneField().nativeElement.focus());
@@ -106,7 +122,7 @@ export class Intake {
           does: 'Put the call aside; its draft is kept',
           scope: 'Intake',
           inFields: true,
-          run: () => this.closed.emit(),
+          run: () => this.putAside(),
         },
       ],
       inject(DestroyRef),
@@ -170,6 +186,12 @@ export class Intake {
     const call = this.model.sameCall();
     if (!call) return;
     this.opened.emit(call.id);
+  }
+
+  private putAside(): void {
+    // While the map is asked for a place, Escape only takes that question back.
+    if (this.pins.wanted()) this.pins.cancel();
+    else this.closed.emit();
   }
 
   protected throwAway(): void {
