@@ -79,8 +79,11 @@ module.exports = {
           '^server/app\\.ts$',
           '^server/http/',
           '^server/fakes/',
-          '^server/staff/(session|sign-in)[^/]*\\.ts$',
-          '-routes\\.ts$',
+          '-(routes|webhooks)\\.ts$',
+          // Files served as they are; the sign-in strategy; the same session for sockets as for requests.
+          '^server/region/serve-tiles\\.ts$',
+          '^server/staff/person\\.ts$',
+          '^server/realtime/sockets\\.ts$',
         ],
       },
       to: {
