@@ -256,7 +256,7 @@ function roadRules({ roads, bridgeEdge }: Palette): PaintRule[] {
   return rules;
 }
 
-function labelRules({ text, quietText, waterText, halo }: Palette): LabelRule[] {
+function labelRules({ text, quietText, waterText, halo, sea }: Palette): LabelRule[] {
   const place = (
     size: number,
     weight: number,
@@ -266,7 +266,7 @@ function labelRules({ text, quietText, waterText, halo }: Palette): LabelRule[] 
     new CenteredTextSymbolizer({
       labelProps: ['name'],
       fill,
-      stroke: halo,
+      stroke: fill === waterText ? sea : halo,
       width: 2,
       lineHeight: 1.2,
       maxLineChars: 16,
