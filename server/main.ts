@@ -7,6 +7,7 @@ import { migrate } from './db/migrate';
 import { seedDemo } from './demo/seed-demo';
 import { ensureDemoRegion, listRegions } from './region/demo-region';
 import { openRegion } from './region/open-region';
+import { readAddressBook } from './region/region-data';
 import { createPlannerWorker } from './workers/planner-client';
 import { createPocketsWorker } from './workers/pockets-client';
 import { startOutbox } from './texts/outbox';
@@ -53,9 +54,10 @@ async function main(): Promise<void> {
     pockets,
     wakeOutbox: () => outbox.wake(),
   });
+  if (config.isDemo)
+    await seedDemo(app.context, (await readAddressBook(imported.folder)).addresses);
   const worker = startOutbox(app.context);
   outbox.wake = () => worker.wake();
-  if (config.isDemo) await seedDemo(app.context);
 
   app.http.on('error', (error: NodeJS.ErrnoException) => {
     log.fatal(

@@ -1,69 +1,209 @@
-import { randomUUID } from 'node:crypto';
 import { mkdir, writeFile } from 'node:fs/promises';
 import path from 'node:path';
+import { isInRing } from '@shared/domain/point-in-ring';
+import { HOUR_MS, MINUTE_MS, type Instant } from '@shared/domain/instant';
 import type { Role } from '@shared/contract/common';
+import { AreaRecord } from '../areas/area-record';
+import { CallRecord } from '../calls/call-record';
+import { concludeCall } from '../calls/check-by-phone';
+import { takeCall } from '../calls/take-call';
+import { machine } from '../commands/actor';
+import { runCommand, type Job } from '../commands/run-command';
 import type { Context } from '../context';
+import { change } from '../db/sql';
+import type { AddressPoint } from '../region/address-points';
+import { DEMO_SEED } from '../region/demo-region';
+import { demoOutageAreas } from '../region/county/outage-areas';
 import { hashPassword, makePassphrase } from '../staff/passwords';
 import { UserRecord } from '../staff/user-record';
 import { StormRecord } from '../storms/storm-record';
-import { TechnicianRecord } from '../technicians/technician-record';
+import { ShiftRecord, TechnicianRecord } from '../technicians/technician-record';
+import { Chance, demoCall, ringsAfter } from './demo-calls';
+import { DESK, TECHNICIANS, type DemoPerson } from './demo-people';
 
-interface SignIn {
-  readonly role: Role;
-  readonly name: string;
-  readonly email: string;
-  readonly password: string;
-}
-
-const PEOPLE: readonly { role: Role; name: string; email: string }[] = [
-  { role: 'dispatcher', name: 'Mara Quill', email: 'mara@example.com' },
-  { role: 'dispatcher', name: 'Jonas Fenwick', email: 'jonas@example.com' },
-  { role: 'technician', name: 'Theo Larkspur', email: 'theo@example.com' },
-  { role: 'manager', name: 'Ines Calloway', email: 'ines@example.com' },
-  { role: 'owner', name: 'Ruth Oakhaven', email: 'ruth@example.com' },
-];
+const CALLS = 240;
+/** Of the calls that were checked, these many hundredths were settled by phone. */
+const SETTLED_BY_PHONE = 0.3;
+const WAITING = 0.75;
 
 /**
- * Fills an empty database with the demo's people and an open storm. The passphrases are made here
- * and written beside the data, readable by its owner alone; the next start finds them there.
+ * Fills an empty database with the demo's people and an open storm, by the same commands that
+ * people give, with the clock set back to when each would have been given. Passphrases are made
+ * here and written beside the data, readable by its owner alone.
  */
-export async function seedDemo(context: Context): Promise<void> {
+export async function seedDemo(
+  context: Context,
+  addresses: readonly AddressPoint[],
+): Promise<void> {
   if ((await UserRecord.count()) > 0) return;
-  const [lon, lat] = context.region.dto.centre;
-  const signIns: SignIn[] = [];
-  for (const person of PEOPLE) {
-    const password = makePassphrase();
-    const technician =
-      person.role === 'technician'
-        ? await TechnicianRecord.create({
-            id: randomUUID(),
-            name: person.name,
-            phone: '+12525550111',
-            skills: ['electrical', 'sealed-system'],
-            van: { 'start-relay': 4, overload: 4 },
-            startLon: lon,
-            startLat: lat,
-          })
-        : null;
-    await UserRecord.create({
-      id: randomUUID(),
-      name: person.name,
-      signInName: person.email,
-      role: person.role,
-      technicianId: technician?.id ?? null,
-      passwordHash: await hashPassword(password),
-    });
-    signIns.push({ ...person, password });
-  }
-  await StormRecord.create({
-    id: randomUUID(),
-    name: 'Demo storm',
-    openedAt: new Date(context.clock()),
-  });
+  const now = context.clock();
+  const chance = new Chance(`demo storm ${String(DEMO_SEED)}`);
+  const signIns = await seedPeople(context, chance, addresses, now);
   await mkdir(context.config.dataFolder, { recursive: true });
   await writeFile(
     path.join(context.config.dataFolder, 'demo-sign-ins.json'),
     JSON.stringify(signIns, null, 2),
     { mode: 0o600 },
   );
+  await seedStorm(context, chance, addresses, now);
+  // What households were told in the demo's past lies in the past: nothing of it is sent now.
+  await change(
+    context.sequelize,
+    "UPDATE messages SET state = 'delivered' WHERE state = 'new'",
+    [],
+  );
+}
+
+async function seedPeople(
+  context: Context,
+  chance: Chance,
+  addresses: readonly AddressPoint[],
+  now: Instant,
+): Promise<{ role: Role; name: string; email: string; password: string }[]> {
+  const signIns: { role: Role; name: string; email: string; password: string }[] = [];
+  const account = async (person: DemoPerson, technicianId: string | null): Promise<void> => {
+    const password = makePassphrase();
+    await UserRecord.create({
+      id: chance.uuid(),
+      name: person.name,
+      signInName: person.email,
+      role: person.role,
+      technicianId,
+      passwordHash: await hashPassword(password),
+    });
+    const { role, name, email } = person;
+    signIns.push({ role, name, email, password });
+  };
+
+  for (const person of DESK) await account(person, null);
+  for (const [index, person] of TECHNICIANS.entries()) {
+    const home = chance.pick(addresses).at;
+    const technician = await TechnicianRecord.create({
+      id: chance.uuid(),
+      name: person.name,
+      phone: `+125255501${String(10 + index)}`,
+      skills: [...person.skills],
+      van: person.van,
+      startLon: home[0],
+      startLat: home[1],
+    });
+    // On shift now and for the next days, whatever hour the demo is started at.
+    for (let day = 0; day < 3; day++) {
+      const startsAt = now + day * 24 * HOUR_MS - (day === 0 ? HOUR_MS : 0);
+      await ShiftRecord.create({
+        id: chance.uuid(),
+        technicianId: technician.id,
+        startsAt: new Date(startsAt),
+        endsAt: new Date(startsAt + 11 * HOUR_MS),
+      });
+    }
+    await account(person, technician.id);
+  }
+  return signIns;
+}
+
+async function seedStorm(
+  context: Context,
+  chance: Chance,
+  addresses: readonly AddressPoint[],
+  now: Instant,
+): Promise<void> {
+  const wentOut = now - 13 * HOUR_MS;
+  const stormId = chance.uuid();
+  const give = async (at: Instant, type: string, work: (job: Job) => Promise<void>) => {
+    const then: Context = { ...context, clock: () => Math.min(at, now) };
+    await runCommand(
+      then,
+      { actor: machine('Demo'), type, commandId: chance.uuid(), asked: null },
+      async (job) => {
+        await work(job);
+        return null;
+      },
+    );
+  };
+
+  await give(wentOut, 'openStorm', async (job) => {
+    await StormRecord.create(
+      { id: stormId, name: 'October gale', openedAt: job.at },
+      { transaction: job.tx },
+    );
+    job.inStorm(stormId);
+    job.touched.storm = true;
+    job.note('storm', stormId, 'opened the storm');
+  });
+
+  const areas = demoOutageAreas(DEMO_SEED).map((plan, wave) => ({
+    id: chance.uuid(),
+    name: plan.name,
+    ring: plan.polygon.coordinates[0] ?? [],
+    outAt: wentOut + chance.below(50) * MINUTE_MS,
+    // Restored in waves; the last of them is still out.
+    backAt: now - (9.5 - wave * 1.15) * HOUR_MS,
+  }));
+  for (const [index, area] of areas.entries())
+    await give(wentOut + HOUR_MS, 'drawArea', async (job) => {
+      const isStillOut = index === areas.length - 1;
+      await AreaRecord.create(
+        {
+          id: area.id,
+          stormId,
+          name: area.name,
+          ring: JSON.stringify(area.ring),
+          outAt: new Date(area.outAt),
+          backAt: isStillOut ? null : new Date(Math.min(area.backAt, now - HOUR_MS / 2)),
+        },
+        { transaction: job.tx },
+      );
+      job.inStorm(stormId);
+      job.touched.areas.add(area.id);
+      job.note('area', area.id, 'drew an outage area');
+    });
+
+  const inside = areas.map((area) =>
+    addresses.filter(({ at }) => isInRing([at[0], at[1]], area.ring)),
+  );
+  const calls = Array.from({ length: CALLS }, (_, number) => {
+    const index = chance.below(areas.length - 1);
+    const area = areas[index];
+    const doors = inside[index];
+    if (!area || !doors || doors.length === 0) return null;
+    const receivedAt = Math.min(
+      area.backAt + ringsAfter(chance),
+      now - chance.below(20) * MINUTE_MS,
+    );
+    return demoCall(chance, chance.pick(doors), number, {
+      receivedAt,
+      outAt: area.outAt,
+      backAt: area.backAt,
+    });
+  })
+    .filter((call) => call !== null)
+    .sort((a, b) => a.receivedAt - b.receivedAt);
+
+  for (const call of calls) {
+    await give(call.receivedAt, 'takeCall', async (job) => {
+      const taken = await takeCall(job, stormId, call);
+      taken.set({ claimUserId: null, claimUntil: null });
+      await taken.save({ transaction: job.tx });
+    });
+    const fate = chance.next();
+    if (fate > SETTLED_BY_PHONE + WAITING * (1 - SETTLED_BY_PHONE)) continue;
+    const outcome =
+      fate > SETTLED_BY_PHONE
+        ? 'waiting'
+        : chance.pick(['running-again', 'running-again', 'running-again', 'referred'] as const);
+    await give(
+      call.receivedAt + (4 + chance.below(12)) * MINUTE_MS,
+      'concludeCall',
+      async (job) => {
+        const taken = await CallRecord.findByPk(call.callId, { transaction: job.tx });
+        await concludeCall(job, call.callId, {
+          commandId: chance.uuid(),
+          version: taken?.version ?? 0,
+          outcome,
+          reason: '',
+        });
+      },
+    );
+  }
 }
