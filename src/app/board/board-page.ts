@@ -1,3 +1,4 @@
+import { Location } from '@angular/common';
 import {
   afterNextRender,
   ChangeDetectionStrategy,
@@ -8,6 +9,7 @@ import {
   inject,
   Injector,
   input,
+  linkedSignal,
   signal,
   viewChild,
 } from '@angular/core';
@@ -34,10 +36,11 @@ const NEW_CALL = 'new';
 export class BoardPage {
   private readonly board = inject(BoardStore);
   private readonly router = inject(Router);
+  private readonly location = inject(Location);
   private readonly injector = inject(Injector);
   private readonly pins = inject(PinRequest);
 
-  /** From the address, so that a reload opens the same call again. */
+  /** From the address, so that a reload or a link opens the call again. */
   readonly call = input<string>();
 
   private readonly queue = viewChild(Queue);
@@ -45,10 +48,14 @@ export class BoardPage {
   private readonly map = viewChild<ElementRef<HTMLElement>>('map');
   private readonly wantsMap = signal(false);
 
+  private readonly shown = linkedSignal<string | null>(() => this.call() ?? null);
+  protected readonly openCallId = computed(() => {
+    const shown = this.shown();
+    return shown === NEW_CALL ? null : shown;
+  });
   protected readonly side = computed<'none' | 'intake' | 'call'>(() => {
-    const call = this.call();
-    if (!call) return 'none';
-    return call === NEW_CALL ? 'intake' : 'call';
+    if (this.shown() === NEW_CALL) return 'intake';
+    return this.openCallId() === null ? 'none' : 'call';
   });
   /** On a small screen the map takes the place of the panel while a point on it is asked for. */
   protected readonly isMapFirst = computed(() => this.wantsMap() || this.pins.wanted() !== null);
@@ -57,58 +64,53 @@ export class BoardPage {
     this.registerKeys();
   }
 
-  protected async open(callId: string): Promise<void> {
+  protected open(callId: string): void {
     this.board.selectedCallId.set(callId);
     this.wantsMap.set(false);
-    await this.show(callId);
+    this.show(callId);
   }
 
-  protected async take(): Promise<void> {
+  protected take(): void {
     this.wantsMap.set(false);
-    await this.show(NEW_CALL);
+    this.show(NEW_CALL);
   }
 
   /** Closes what is beside the queue; the cursor goes back to the rows. */
-  protected async close(): Promise<void> {
-    await this.show(null);
-    this.queue()?.focus();
+  protected close(): void {
+    this.show(null);
+    this.afterRender(() => this.queue()?.focus());
   }
 
   protected toggleMap(): void {
     this.wantsMap.update((wants) => !wants);
-    if (this.wantsMap()) {
-      afterNextRender(
-        () => this.map()?.nativeElement.querySelector<HTMLElement>('[tabindex="0"]')?.focus(),
-        { injector: this.injector },
-      );
-    }
-  }
-
-  private async show(call: string | null): Promise<void> {
-    await this.router.navigate([], {
-      queryParams: { call },
-      queryParamsHandling: 'merge',
-      replaceUrl: true,
-    });
-  }
-
-  /** Does something with the selected call, opening it first. */
-  private async withSelected(act: (panel: CallPanel) => Promise<void>): Promise<void> {
-    const selected = this.board.selectedCallId() ?? this.openCallId();
-    if (selected === null) return;
-    if (selected !== this.openCallId()) await this.open(selected);
-    afterNextRender(
-      () => {
-        const panel = this.panel();
-        if (panel) void act(panel);
-      },
-      { injector: this.injector },
+    if (!this.wantsMap()) return;
+    this.afterRender(() =>
+      this.map()?.nativeElement.querySelector<HTMLElement>('[tabindex="0"]')?.focus(),
     );
   }
 
-  private openCallId(): string | null {
-    const call = this.call();
-    return call && call !== NEW_CALL ? call : null;
+  /**
+   * The address follows without a navigation: that would move the focus, which the dispatcher has
+   * just put where it belongs.
+   */
+  private show(call: string | null): void {
+    this.shown.set(call);
+    this.location.replaceState('/board', call === null ? '' : `call=${encodeURIComponent(call)}`);
+  }
+
+  /** Does something with the selected call, opening it first. */
+  private withSelected(act: (panel: CallPanel) => Promise<void>): void {
+    const selected = this.board.selectedCallId() ?? this.openCallId();
+    if (selected === null) return;
+    if (selected !== this.openCallId()) this.open(selected);
+    this.afterRender(() => {
+      const panel = this.panel();
+      if (panel) void act(panel);
+    });
+  }
+
+  private afterRender(act: () => void): void {
+    afterNextRender(act, { injector: this.injector });
   }
 
   private registerKeys(): void {
@@ -117,20 +119,20 @@ export class BoardPage {
       this.board.selectedCallId() !== null || this.openCallId() !== null;
     inject(Keys).register(
       [
-        { keys: 'n', does: 'Take a new call', scope, run: () => void this.take() },
+        { keys: 'n', does: 'Take a new call', scope, run: () => this.take() },
         {
           keys: 'c',
           does: 'Claim the call, or release it',
           scope,
           when: hasCall,
-          run: () => void this.withSelected((panel) => panel.toggleClaim()),
+          run: () => this.withSelected((panel) => panel.toggleClaim()),
         },
         {
           keys: 'p',
           does: 'Start the phone check',
           scope,
           when: hasCall,
-          run: () => void this.withSelected((panel) => panel.startCheck()),
+          run: () => this.withSelected((panel) => panel.startCheck()),
         },
         { keys: 'm', does: 'Show the map, or the call again', scope, run: () => this.toggleMap() },
         {

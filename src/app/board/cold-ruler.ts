@@ -42,8 +42,10 @@ export class ColdRuler {
 const CLOCK_AT: ReadonlySet<number> = new Set([0, 4, 12, 24, 48]);
 const LAST_HOURS = 48;
 
+/** Labels that give way where there is little room have a name of their own. */
 function placeOf(hours: number): string {
   if (hours === 0) return 'now';
   if (hours === LAST_HOURS) return 'last';
-  return hours === 24 ? 'day' : '';
+  if (hours === -4) return 'past';
+  return hours === 4 || hours === 24 ? 'crowded' : '';
 }

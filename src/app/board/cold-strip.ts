@@ -1,10 +1,10 @@
-import { DOCUMENT } from '@angular/common';
 import { ChangeDetectionStrategy, Component, computed, inject, input } from '@angular/core';
 import type { Instant } from '@shared/domain/instant';
 import { Zone } from '../core/zone';
-import { lanesByKind, lanesOfEach, rulerBackground, type StripFacts } from './cold-strip-scale';
+import { lanesByKind, lanesOfEach, type StripFacts } from './cold-strip-scale';
 import { laneWords, stripWords } from './cold-strip-words';
 import { ColdRuler } from './cold-ruler';
+import { useRulerBackground } from './ruler-background';
 import { CompartmentGlyph } from './compartment-glyph';
 import { whenWords } from './time-words';
 
@@ -50,15 +50,8 @@ export class ColdStrip {
   protected readonly words = computed(() => stripWords(this.lanes(), this.now(), this.clock));
 
   constructor() {
-    setGrid(inject(DOCUMENT).documentElement);
+    useRulerBackground();
   }
 
   private readonly clock = (at: Instant): string => whenWords(at, this.now(), this.zone.name());
-}
-
-const GRID = '--strip-grid';
-
-/** Written once into the page, where all strips find it. */
-function setGrid(root: HTMLElement): void {
-  if (root.style.getPropertyValue(GRID) === '') root.style.setProperty(GRID, rulerBackground());
 }

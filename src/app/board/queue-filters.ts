@@ -6,6 +6,7 @@ import {
   inject,
   input,
   output,
+  signal,
   viewChild,
 } from '@angular/core';
 import { SKILLS, type Skill } from '@shared/domain/skills';
@@ -34,6 +35,8 @@ export class QueueFilters {
   protected readonly skills = SKILLS.map((skill) => ({ skill, label: SKILL_WORDS[skill] }));
 
   protected readonly filter = this.board.filter;
+  /** On a narrow screen the choices are folded away. */
+  protected readonly isUnfolded = signal(false);
   protected readonly isFiltering = computed(() => isFiltering(this.filter()));
   protected readonly stateKey = computed(() => {
     const wanted = this.filter().states.join();

@@ -63,8 +63,8 @@ export class QueueRow {
     const { claim, etaAt } = this.call();
     const now = this.now();
     if (claim && claim.until > now) {
-      const who = claim.userId === this.myUserId() ? 'You have' : `${firstName(claim.name)} has`;
-      return `${who} it until ${whenWords(claim.until, now, this.zone.name())}`;
+      const who = claim.userId === this.myUserId() ? 'Yours' : `${firstName(claim.name)} has it`;
+      return `${who} until ${whenWords(claim.until, now, this.zone.name())}`;
     }
     return etaAt === null ? '' : `Arrives ${whenWords(etaAt, now, this.zone.name())}`;
   });
