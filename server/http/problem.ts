@@ -44,6 +44,7 @@ const PROBLEMS: Readonly<Record<ProblemCode, { status: number; title: string }>>
   'storm-already-open': { status: 409, title: 'A storm is open already' },
   'times-disagree': { status: 422, title: 'The times do not fit together' },
   'outline-crosses-itself': { status: 422, title: 'The outline crosses itself' },
+  'no-phone': { status: 409, title: 'The call has no phone number' },
   'opted-out': { status: 409, title: 'This number wants no texts' },
   'log-not-readable': { status: 422, title: 'The log cannot be read' },
   'log-busy': { status: 409, title: 'The log is being imported' },

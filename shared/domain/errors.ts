@@ -24,6 +24,7 @@ export type ProblemCode =
   | 'times-disagree'
   | 'outline-crosses-itself'
   | 'opted-out'
+  | 'no-phone'
   | 'log-not-readable'
   | 'log-busy'
   | 'already-used'
