@@ -91,7 +91,8 @@ function fieldsOf(style: Omit<LogStyle, 'fields' | 'titles'>, random: SeededRand
     style.units === 'column' ? ['unitKind', 'remarks'] : ['remarks'],
   ];
   if (style.power === 'columns') blocks.push(['powerOutAt', 'powerBackAt']);
-  if (style.medicineColumn) blocks.push(['medicine']);
+  // A bare yes or no means nothing without a title above it.
+  if (style.medicineColumn && style.hasHeader) blocks.push(['medicine']);
   if (style.languageColumn) blocks.push(['language']);
   if (random.below(2) === 0) blocks.push(['callId']);
   if (random.below(2) === 0) blocks.push(['operator']);

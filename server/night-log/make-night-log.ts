@@ -172,14 +172,15 @@ function callRow(of: {
   const typoRate = order.typoRate ?? 0.05;
   const mistype = (text: string): string => (random.unit() < typoRate ? typo(text, random) : text);
 
+  const asksMedicine = style.fields.includes('medicine');
   const medicine = why === null && chance(9);
   const danger = why === null && chance(5);
   const remarks: string[] = [of.isAgain ? one(AGAIN_REMARKS) : mistype(one(TROUBLES))];
   if (style.units === 'in-message' && why !== 'not-a-cold-unit' && !(of.isAgain && chance(30)))
     remarks.unshift(caller.wording);
   const unitsSaid = style.units === 'column' || remarks.includes(caller.wording);
-  if (medicine && !style.medicineColumn) remarks.push(one(MEDICINE_REMARKS));
-  else if (!style.medicineColumn && chance(12)) remarks.push(one(NO_MEDICINE_REMARKS));
+  if (medicine && !asksMedicine) remarks.push(one(MEDICINE_REMARKS));
+  else if (!asksMedicine && chance(12)) remarks.push(one(NO_MEDICINE_REMARKS));
   if (danger) remarks.push(one(DANGER_REMARKS));
   else if (chance(10)) remarks.push(one(NO_DANGER_REMARKS));
   const back = chance(70) ? roundTo(of.powerOut + (1 + random.unit()) * HOUR_MS, 5) : null;

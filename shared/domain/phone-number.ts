@@ -105,6 +105,12 @@ function findIn(text: string, options: PhoneOptions): Found[] {
   for (const match of text.matchAll(TEN_DIGITS)) {
     const e164 = northAmerican(`${match[1]}${match[2]}${match[3]}`);
     if (e164) add(found, match, e164, match[4] ?? null, false);
+    // "252-555-0142 / 0143": the second shares all but its last four digits.
+    const end = match.index + match[0].length;
+    const twin = /^\s*(?:\/|or|&|,)\s*(\d{4})(?![\d:./-])/.exec(text.slice(end));
+    const second = twin && northAmerican(`${match[1]}${match[2]}${twin[1]}`);
+    if (e164 && twin && second)
+      add(found, Object.assign(twin, { index: end }), second, null, false);
   }
   if (options.areaCode) {
     for (const match of text.matchAll(SEVEN_DIGITS)) {

@@ -91,6 +91,7 @@ describe('readWhen', () => {
             ? `weekday ${date.weekday}`
             : `relative ${date.days}`;
     expect([shown, clock(raw)]).toEqual([day, time]);
+    expect(isWholeWhen(raw)).toBe(true);
   });
 
   it.each([

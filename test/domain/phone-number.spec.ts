@@ -85,6 +85,14 @@ describe('readPhone', () => {
     });
   });
 
+  it('hears the short second number', () => {
+    expect(readPhone('252-555-0142 / 0143')).toMatchObject({
+      number: { e164: OURS },
+      others: [{ e164: '+12525550143' }],
+      rest: '',
+    });
+  });
+
   it.each([
     '',
     '  ',

@@ -34,8 +34,9 @@ export interface AddressCells {
 
 const UNIT_WORD =
   'apt|apartment|apmt|aptmt|unit|ste|suite|rm|room|lot|trlr|trailer|fl|floor|bldg|building|spc|space|slip|flat|apto|depto|ph|no';
+const UNIT_NAME = String.raw`(?:\d[a-z0-9-]{0,6}|[a-z](?:-?\d{1,4})?[a-z]?)`;
 const UNIT = new RegExp(
-  String.raw`(?:[,;/]\s*|\s|^)(?:(?:${UNIT_WORD})\b\.?\s*(?:no\.?|#|:)?\s*#?|#\s*)([a-z0-9][a-z0-9-]{0,7})(?![a-z0-9])`,
+  String.raw`(?:[,;/]\s*|\s|^)(?:(?:${UNIT_WORD})\b\.?\s*(?:no\.?|#|:)?\s*#?|#\s*)(${UNIT_NAME})(?![a-z0-9])`,
   'gi',
 );
 const FLOOR_WORD =
@@ -90,18 +91,17 @@ export function findAddress(message: string, cities: readonly string[] = []): Ad
     for (let j = i + 2; j < Math.min(i + 6, words.length); j++) {
       const word = bare(words[j] ?? '');
       if (!/^[a-z']+$/.test(bare(words[j - 1] ?? '')) && j === i + 2) break;
-      if (isStrongType(word) && !isStreetType(bare(words[j + 1] ?? ''))) {
-        return readAddress(
-          {
-            ...NO_CELLS,
-            whole:
-              words
-                .slice(i, j + 1)
-                .join('')
-                .trim() + unitAfter(words.slice(j + 1).join('')),
-          },
-          cities,
-        );
+      const isLast = /[,.;:]\s*$/.test(words[j] ?? '') || !isStrongType(bare(words[j + 1] ?? ''));
+      if (isStrongType(word) && isLast) {
+        const after = words.slice(j + 1).join('');
+        const unit = unitAfter(after);
+        const line = words
+          .slice(i, j + 1)
+          .join('')
+          .trim()
+          .replace(/[,;:]$/, '');
+        const whole = `${line} ${unit}${cityAfter(after.slice(unit.length), cities)}`;
+        return readAddress({ ...NO_CELLS, whole }, cities);
       }
     }
   }
@@ -301,11 +301,18 @@ function unitOf(cell: string): string {
 }
 
 function unitAfter(text: string): string {
+  const words = UNIT_WORD.replace('|no', '');
   const match = new RegExp(
-    `^[,\\s]*(?:(?:${UNIT_WORD})\\b\\.?\\s*#?|#\\s*)[a-z0-9-]{1,6}`,
+    `^[,\\s]*(?:(?:${words})\\b\\.?\\s*#?|#\\s*)${UNIT_NAME}(?![a-z0-9])`,
     'i',
   ).exec(text);
-  return match ? ` ${match[0]}` : '';
+  return match ? match[0] : '';
+}
+
+function cityAfter(text: string, cities: readonly string[]): string {
+  const rest = bare(text);
+  const city = cities.find((name) => rest.startsWith(bare(name)));
+  return city ? `, ${city}` : '';
 }
 
 /** All-capital and all-small text in the way that signs are written; mixed text is left alone. */

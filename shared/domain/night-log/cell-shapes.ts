@@ -47,6 +47,8 @@ export function shapeOf(raw: string): CellShape | null {
       return 'phone';
   }
   if (/^\d{5}(?:-\d{4})?$/.test(text)) return 'postcode';
+  // "1A" is a door; a time would be "1a" or "1 AM".
+  if (/^\d{1,3}A$/.test(text)) return 'apartment';
   if (digits > 0 && words <= 7) {
     const when = readWhen(text);
     if (
@@ -145,6 +147,8 @@ export interface ColumnSample {
   readonly counting: number;
   /** Share of cells that can be a time such as 0215 or 1930. */
   readonly compactTimes: number;
+  /** "still out", "not yet". */
+  readonly stillOut: number;
   readonly medicine: number;
   readonly danger: number;
   readonly namesUnits: number;
@@ -174,6 +178,7 @@ export function sampleColumn(cells: readonly string[]): ColumnSample {
     rising: risingShare(said),
     counting: countingShare(said),
     compactTimes: share((cell) => /^(?:[01]?\d|2[0-3])[0-5]\d$/.test(cell.trim())),
+    stillOut: share((cell) => /^\s*(?:still\b|not (?:yet|back)|sigue)/i.test(cell)),
     medicine: share((cell) => readMedicine(cell).mentioned),
     danger: share((cell) => readDangers(cell).length > 0),
     namesUnits: share((cell) => namesUnit(cell, false)),

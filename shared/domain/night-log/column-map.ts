@@ -102,9 +102,24 @@ export function cellsOf(
   cells: readonly string[],
   role: ColumnRole,
 ): readonly string[] {
-  return map.columns
-    .filter((column) => column.role === role)
-    .map(({ index }) => cells[index] ?? '');
+  return (placesOf(map).get(role) ?? NOWHERE).map((index) => cells[index] ?? '');
+}
+
+const NOWHERE: readonly number[] = [];
+const PLACES = new WeakMap<ColumnMap, ReadonlyMap<ColumnRole, readonly number[]>>();
+
+/** Asked some twenty times for every row, so it is worked out once for every map. */
+function placesOf(map: ColumnMap): ReadonlyMap<ColumnRole, readonly number[]> {
+  const known = PLACES.get(map);
+  if (known) return known;
+  const places = new Map<ColumnRole, number[]>();
+  for (const { role, index } of map.columns) {
+    const list = places.get(role);
+    if (list) list.push(index);
+    else places.set(role, [index]);
+  }
+  PLACES.set(map, places);
+  return places;
 }
 
 /** A map in which a person has given one column another role. */

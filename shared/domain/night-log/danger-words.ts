@@ -65,9 +65,14 @@ const LIST_WORD =
   /(?:smoke|sparks?|sparking|fire|flames?|burning|burnt|smells?|odou?rs?|water|flooding|shocks?|wires?|lines?|humo|chispas?|downed lines?|burning smells?)/;
 const NO_DANGER = /^(?:smoke[sd]? (?:fish|meat|salmon|ham|house)|smoking section)/;
 
+/** Without one of these stems no word above can stand in the text; most messages have none. */
+const HINT =
+  /smok|humo|fume|burn|scorch|melt|hot|char|smell|odou?r|olor|huele|quem|spark|arc|popp|chisp|buzz|fire|flame|incend|fueg|flood|water|wet|agua|puddle|inches|soak|submerg|inund|surge|line|wire|pole|cable|poste|shock|zap|tingl|toque|gas|carbon|co (?:alarm|det|mon)|ammonia|chemical|gen/;
+
 /** The dangers that a text names and does not deny. */
 export function readDangers(raw: string): readonly Danger[] {
   const text = plain(raw);
+  if (!HINT.test(text)) return [];
   const found = new Set<Danger>();
   for (const { danger, pattern } of WORDS) {
     if (found.has(danger)) continue;

@@ -52,6 +52,7 @@ export function guessColumns(
   promotePhone(chosen);
   pairNames(chosen, samples);
   questionState(chosen);
+  splitPower(chosen);
   promoteTime(chosen, candidates);
 
   promoteMessage(chosen, samples);
@@ -244,7 +245,9 @@ function contentScore(role: ColumnRole, sample: ColumnSample): [number, string] 
       const names = share('name', 'street', 'other', 'apartment', 'town-line');
       const few = sample.different <= Math.max(4, sample.count * 0.35) && sample.different <= 40;
       return [
-        share('name', 'street', 'town-line') >= 0.6 ? names * (few ? 0.8 : 0.25) : -0.7,
+        share('name', 'street', 'town-line') >= 0.6 && share('street') < 0.5
+          ? names * (few ? 0.8 - sample.different / 100 : 0.25)
+          : -0.7,
         `${sample.different} different names`,
       ];
     }
@@ -279,13 +282,14 @@ function contentScore(role: ColumnRole, sample: ColumnSample): [number, string] 
     }
     case 'powerOutAt':
     case 'powerBackAt': {
-      const times =
-        when +
-        share('duration') +
-        (role === 'powerBackAt' ? share('yes-no') * 0.5 : 0) +
-        share('number') * 0.3;
+      const back = role === 'powerBackAt' ? share('yes-no') * 0.5 + sample.stillOut : 0;
+      const times = when + share('duration') + back + share('number') * 0.3;
       return [
-        times >= 0.4 ? Math.min(1, times) * 0.55 : words > 0.5 ? -0.2 : -0.6,
+        times >= 0.4
+          ? Math.min(1, times) * (sample.stillOut > 0 && role === 'powerOutAt' ? 0.5 : 0.6)
+          : words > 0.5
+            ? -0.2
+            : -0.6,
         `${percent(when)} are times`,
       ];
     }
@@ -380,6 +384,23 @@ function pairNames(chosen: Map<number, Candidate>, samples: readonly ColumnSampl
   chosen.set(last, { index: last, role: 'lastName', score: 0.4, why });
 }
 
+/** Of two columns of times without titles the first is when the power went, the second when it came back. */
+function splitPower(chosen: Map<number, Candidate>): void {
+  const untitled = [...chosen.values()]
+    .filter(
+      ({ role, why }) =>
+        (role === 'powerOutAt' || role === 'powerBackAt') && !why.startsWith('titled'),
+    )
+    .sort((a, b) => a.index - b.index);
+  const titled = [...chosen.values()].some(
+    ({ role, why }) => role.startsWith('power') && why.startsWith('titled'),
+  );
+  const [out, back] = untitled;
+  if (titled || !out || !back) return;
+  chosen.set(out.index, { ...out, role: 'powerOutAt' });
+  chosen.set(back.index, { ...back, role: 'powerBackAt' });
+}
+
 /** Two letters in a column without a title are a state only beside the town or the postcode. */
 function questionState(chosen: Map<number, Candidate>): void {
   const state = [...chosen.values()].find(
@@ -433,7 +454,7 @@ function promoteMessage(chosen: Map<number, Candidate>, samples: readonly Column
 
 function leftOver(index: number, sample: ColumnSample): Candidate {
   if (sample.count === 0) return { index, role: 'ignore', score: 0.5, why: 'empty in every row' };
-  const talks = sample.meanWords >= 2 || sample.distinct > 0.3;
+  const talks = sample.meanWords >= 2 || sample.distinct > 0.3 || sample.shapes.has('yes-no');
   const role: ColumnRole = talks ? 'detail' : 'ignore';
   return { index, role, score: 0.2, why: `not recognised: ${ROLE_LABELS[role].toLowerCase()}` };
 }

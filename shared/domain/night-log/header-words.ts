@@ -232,6 +232,10 @@ const TITLES: readonly (readonly [ColumnRole, number, RegExp])[] = [
     1,
     `op|oper|opr|operator|operador|agent|agt|rep|csr|initials?|inits?|ini|taken by|tkn by|taker|call taker|attendant|by|user|clerk|staff|recorded by|logged by|answered by|entered by|handled by|tsr|emp|employee|station|desk|seat|queue|que|skill|line ?no|trunk|dnis|dialed|account code|acct code|status|stat|st code|disp|dispo|disposition|delivered|dlvd|delivery|sent|read|ack|acked|duration|dur|length|len|talk time|hold time|hold|wait|ring|rings|secs?|seconds|min|mins|minutes|client acct|acct|account|billing|bill code|shift|team|result|outcome|call length|end|end time|ended|hang ?up|time out|closed|completed|relayed|relayed to|paged|dispatched|dispatched to|on call|x|file|recording|audio|url|link|type code`,
   ),
-  t('ignore', 0.6, `taken|received|recd|logged|entered|answered`),
+  t(
+    'ignore',
+    0.6,
+    `taken|received|recd|logged|entered|answered|to|destination|did|called (?:party|no)`,
+  ),
   part('ignore', 0.6, `operator|agent|initials|taken by|duration`),
 ];

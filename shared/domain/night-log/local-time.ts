@@ -142,7 +142,7 @@ const DATE_FINDERS: readonly { pattern: RegExp; read: (m: RegExpExecArray) => Da
   [
     // 2026-12-01, 2026/12/1
     {
-      pattern: /(?<!\d)((?:19|20)\d{2})[-/.](\d{1,2})[-/.](\d{1,2})(?:t(?=\d))?(?![\d])/,
+      pattern: /(?<!\d)((?:19|20)\d{2})[-/.](\d{1,2})[-/.](\d{1,2})(?:t(?=\d)|(?!\d))/,
       read: (m) => full(Number(m[1]), Number(m[2]), Number(m[3])),
     },
     // 01-Dec-26, 1 December 2026, 01DEC26, 1st of Dec

@@ -47,12 +47,18 @@ const NOT_COLD =
 const LIST_WORD =
   /(?:insulina?|meds?|med's|medicines?|medications?|medical|vaccines?|formula|(?:breast ?)?milk|rx|food|kids|children|infants?|bab(?:y|ies)|elderly|pets?|oxygen|medicinas?|vacunas?|leche)/;
 
+const NO_MEDICINE: MedicineSaid = { mentioned: false, kinds: [], words: [] };
+/** Without one of these stems no word above can stand in the text; most messages have none. */
+const HINT =
+  /med|milk|ebm|\bbm\b|formula|leche|vac|inject|inyec|biolog|shot|hormone|fertil|chemo|\biv\b|tpn|infus|semag|rx|prescr|script|eye ?dr|antibio|supposit|probiot|diabet|pharm|farmac|drug|specimen|sample|\b[ei]n?[sz]/;
+
 /**
  * Looks for medicine, vaccines and mother's milk in a row's own words. Denials are heard ("no
  * insulin"); what is unclear counts as mentioned, so that a person asks.
  */
 export function readMedicine(raw: string): MedicineSaid {
   const text = plain(raw);
+  if (!HINT.test(text)) return NO_MEDICINE;
   const kinds = new Set<MedicineKind>();
   const words: string[] = [];
   const taken: [number, number][] = [];

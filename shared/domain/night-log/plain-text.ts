@@ -1,8 +1,12 @@
+/** ASCII with single spaces: most cells, most of the time. */
+const TIDY = /^(?:[!-~]+(?: [!-~]+)*)?$/;
+
 /**
  * Text without what makes equal words look different: case, accents, typographic quotes and runs of
  * white space. Punctuation stays.
  */
 export function plain(text: string): string {
+  if (TIDY.test(text)) return text.toLowerCase();
   // Almost every cell is ASCII already, and normalising is the dear part.
   // eslint-disable-next-line no-control-regex
   const ascii = /^[\x00-\x7f]*$/.test(text)

@@ -106,7 +106,7 @@ export function understandRow(
 const CALLS_OFF =
   /\b(?:cancel(?:led|ed)?|disregard|never ?mind|(?:running|working|cooling) again|came back on its own|all good now|no longer needed|fixed itself|back on now and (?:cold|running)|ya (?:funciona|sirve))\b/;
 const NO_CALL =
-  /\b(?:wrong (?:number|no|#)|test (?:call|message|msg)|hang ?-?up|hung up|no message left|dead air|sales call|solicit\w*|telemarket\w*|robo ?call|fax tone|prank|pocket dial|butt dial|do not dispatch|shift change|relief operator|numero equivocado)\b/;
+  /\b(?:wrong (?:number|no|#)|test (?:call|message|msg)|hang ?-?up|hung up|no message left|dead air|sales call|solicit\w*|telemarket\w*|robo ?call|fax tone|prank|pocket dial|butt dial|do not dispatch|shift change|relief operator|numero equivocado|billing|invoice|vendor|job application|wants (?:a )?(?:receipt|quote|price))\b/;
 
 function whyAside(
   call: NightCall,

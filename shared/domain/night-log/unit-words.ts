@@ -69,7 +69,7 @@ export const UNIT_PATTERNS: readonly { family: UnitFamily | 'no-unit'; pattern: 
   {
     family: 'refrigerator',
     pattern: new RegExp(
-      String.raw`\b(?:(?:mini|dorm|bar|beer|wine|beverage|drinks?|compact|under ?-?counter|small office)[ -]?(?:size )?(?:${FRIDGE}|coolers?|chillers?)|minifridges?|minibar|all[ -](?:${FRIDGE})|${FRIDGE} only|${FRIDGE},? \(?(?:no|without|w\/o|sin) ${FREEZER}\)?)(?![a-z])`,
+      String.raw`\b(?:(?:mini|dorm|bar|beer|wine|beverage|drinks?|compact|larder|under ?-?counter|small office)[ -]?(?:size )?(?:${FRIDGE}|coolers?|chillers?)|minifridges?|minibar|all[ -](?:${FRIDGE})|${FRIDGE} only|${FRIDGE},? \(?(?:no|without|w\/o|sin) ${FREEZER}\)?)(?![a-z])`,
       'g',
     ),
   },
@@ -88,6 +88,7 @@ export const UNIT_PATTERNS: readonly { family: UnitFamily | 'no-unit'; pattern: 
 /** Short forms that mean a unit only in a column of appliances. */
 export const COLUMN_ONLY: Readonly<Record<string, UnitFamily>> = {
   ref: 'plain-fridge',
+  refer: 'plain-fridge',
   rf: 'plain-fridge',
   rfr: 'plain-fridge',
   rfg: 'plain-fridge',
