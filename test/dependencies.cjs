@@ -103,13 +103,6 @@ module.exports = {
       to: { path: `${packages}twilio/` },
     },
     {
-      name: 'records-stay-in-their-feature',
-      comment: "A feature calls another's command or query; db/ registers them all.",
-      severity: 'warn',
-      from: { path: '^server/([^/]+)/', pathNot: '^server/db/' },
-      to: { path: '^server/[^/]+/[^/]+-record\\.ts$', pathNot: '^server/$1/' },
-    },
-    {
       name: 'no-circle',
       severity: 'error',
       from: { path: '^(server|shared|src)/' },

@@ -38,7 +38,7 @@ module.exports = {
       transform: { '^.+\\.[jt]s$': swc },
       // These ship as ES modules only; the rest of node_modules is left alone for speed.
       transformIgnorePatterns: [
-        '/node_modules/(?!(pbf|geojson-vt|@maplibre/vt-pbf|@maplibre/geojson-vt|@mapbox/point-geometry|@mapbox/vector-tile|flatbush|flatqueue)/)',
+        '/node_modules/(?!(@seriousme/openapi-schema-validator|pbf|geojson-vt|@maplibre/vt-pbf|@maplibre/geojson-vt|@mapbox/point-geometry|@mapbox/vector-tile|flatbush|flatqueue)/)',
       ],
       moduleNameMapper: shared,
     },
