@@ -1,50 +1,41 @@
 import type { CallRecord } from '../calls/call-record';
 import type { Job } from '../commands/run-command';
 import { select } from '../db/sql';
-import { TechnicianRecord } from '../technicians/technician-record';
-import { StopRecord } from './stop-record';
+import { endStop, lockRoutes, routeOf } from './lock-routes';
+import { settleRoutes } from './settle-routes';
 
 /**
- * Locks the route that a call stands on, if any: before the call itself, so that all commands lock
- * in one order.
+ * Locks the route that a call stands on, if any, with all its calls: before the call alone, so that
+ * all commands lock in one order.
  */
 export async function lockRouteOf(job: Job, callId: string): Promise<void> {
-  const [stop] = await select<{ technician_id: string }>(
-    job.sequelize,
-    'SELECT technician_id FROM stops WHERE active_call = ?',
-    [callId],
-    job.tx,
-  );
-  if (stop)
-    await TechnicianRecord.findByPk(stop.technician_id, {
-      transaction: job.tx,
-      lock: job.tx.LOCK.UPDATE,
-    });
+  const seen = await activeStop(job, callId);
+  if (seen) await lockRoutes(job, seen.storm_id, [seen.technician_id], [callId]);
 }
 
 /**
- * Takes a call that is settled otherwise off its route. The technician is told why.
- * The call's own state is the caller's to set.
+ * Takes a call that is settled otherwise off its route, whatever state its stop is in. The technician
+ * is told why and gets the next offer. The call's own state is the caller's to set.
  */
 export async function leaveRoute(job: Job, call: CallRecord, because: string): Promise<void> {
-  const [active] = await select<{ id: string }>(
+  const seen = await activeStop(job, call.id);
+  if (!seen) return;
+  const routes = await lockRoutes(job, seen.storm_id, [seen.technician_id], [call.id]);
+  const stop = routeOf(routes, seen.technician_id).find(({ callId }) => callId === call.id);
+  if (!stop) return;
+  endStop(job, routes, stop, 'pulled', because);
+  await settleRoutes(job, routes);
+}
+
+async function activeStop(
+  job: Job,
+  callId: string,
+): Promise<{ technician_id: string; storm_id: string } | undefined> {
+  const [stop] = await select<{ technician_id: string; storm_id: string }>(
     job.sequelize,
-    'SELECT id FROM stops WHERE active_call = ?',
-    [call.id],
+    'SELECT technician_id, storm_id FROM stops WHERE active_call = ?',
+    [callId],
     job.tx,
   );
-  if (!active) return;
-  const stop = await StopRecord.findByPk(active.id, {
-    transaction: job.tx,
-    lock: job.tx.LOCK.UPDATE,
-  });
-  if (!stop) return;
-  stop.set({
-    state: 'pulled',
-    endedAt: job.at,
-    endedBecause: because.slice(0, 300),
-    version: stop.version + 1,
-  });
-  await stop.save({ transaction: job.tx });
-  job.touched.stop(stop.id);
+  return stop;
 }

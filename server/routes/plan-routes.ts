@@ -1,9 +1,24 @@
+import { orderFrom, runCommand } from '../commands/run-command';
 import type { Context } from '../context';
 import type { SomeHandlers } from '../http/bind-routes';
-import { unbuilt } from '../http/unbuilt';
+import { proposePlan } from './propose-plan';
+import { discardPlan, publishPlan } from './publish-plan';
 
 type Names = 'proposePlan' | 'publishPlan' | 'discardPlan';
 
-export function planRoutes(_context: Context): SomeHandlers<Names> {
-  return unbuilt('proposePlan', 'publishPlan', 'discardPlan');
+/** Proposed routes: made, compared, published or discarded. */
+export function planRoutes(context: Context): SomeHandlers<Names> {
+  return {
+    proposePlan: ({ params, body, person }) => proposePlan(context, person, { ...body, ...params }),
+
+    publishPlan: ({ params, body, person }) =>
+      runCommand(context, orderFrom('publishPlan', person, { ...body, ...params }), (job) =>
+        publishPlan(job, { ...body, ...params }),
+      ),
+
+    discardPlan: ({ params, body, person }) =>
+      runCommand(context, orderFrom('discardPlan', person, { ...body, ...params }), (job) =>
+        discardPlan(job, { ...body, ...params }),
+      ),
+  };
 }

@@ -40,6 +40,8 @@ export async function stopCards(
     readonly stopIds?: readonly string[];
     readonly callIds?: readonly string[];
     readonly technicianId?: string;
+    /** Whether a stop that is over gets a card too: whoever ended it is shown it once more. */
+    readonly alsoEnded?: true;
   },
   tx?: Transaction,
 ): Promise<{ cards: StopCard[]; ended: EndedStop[] }> {
@@ -85,7 +87,7 @@ export async function stopCards(
   for (const stop of stops) {
     const call = calls.get(stop.callId);
     if (!call) continue;
-    if (!isActive(stop.state)) {
+    if (!isActive(stop.state) && !which.alsoEnded) {
       ended.push({
         technicianId: stop.technicianId,
         stopId: stop.id,
