@@ -1,12 +1,10 @@
 import {
-  afterNextRender,
   ChangeDetectionStrategy,
   Component,
   computed,
   DestroyRef,
   effect,
   inject,
-  Injector,
   input,
   output,
   signal,
@@ -47,12 +45,12 @@ export class CallPanel {
   protected readonly clock = inject(Clock);
   private readonly board = inject(BoardStore);
   private readonly zone = inject(Zone);
-  private readonly injector = inject(Injector);
 
   readonly callId = input.required<string>();
   readonly closed = output();
 
   protected readonly isAmending = signal(false);
+  private readonly wantsCheck = signal(false);
   protected readonly remark = signal('');
   protected readonly stateWords = STATE_WORDS;
   protected readonly kindWords = ADDRESS_KIND_WORDS;
@@ -136,6 +134,13 @@ export class CallPanel {
         this.remark.set('');
       });
     });
+    // The check appears once the call has been fetched; the cursor waits for it.
+    effect(() => {
+      const check = this.check();
+      if (!check || !this.wantsCheck()) return;
+      this.wantsCheck.set(false);
+      check.focus();
+    });
     const scope = 'Open call';
     inject(Keys).register(
       [
@@ -154,8 +159,7 @@ export class CallPanel {
   /** Starts the phone check or goes on with it. */
   async startCheck(): Promise<void> {
     if (!this.call.isMine() && !(await this.call.takeClaim())) return;
-    // The panel appears with the answer to the claim.
-    afterNextRender(() => this.check()?.focus(), { injector: this.injector });
+    this.wantsCheck.set(true);
   }
 
   async toggleClaim(): Promise<void> {

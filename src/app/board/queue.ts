@@ -26,6 +26,7 @@ import { Session } from '../core/session';
 import { ColdRuler } from './cold-ruler';
 import { EMPTY_ORDER, heldWords, type HeldOrder, nextOrder, takeOrder } from './held-order';
 import { QueueFilters } from './queue-filters';
+import { QueueList } from './queue-list';
 import { QueueRow } from './queue-row';
 
 /** Heights of a row, in CSS pixels; the virtual scrolling needs one height for all. */
@@ -48,7 +49,7 @@ interface OrderSource {
  */
 @Component({
   selector: 'thaw-queue',
-  imports: [ColdRuler, QueueFilters, QueueRow, ScrollingModule],
+  imports: [ColdRuler, QueueFilters, QueueList, QueueRow, ScrollingModule],
   templateUrl: './queue.html',
   styleUrl: './queue.scss',
   changeDetection: ChangeDetectionStrategy.OnPush,
@@ -77,7 +78,9 @@ export class Queue {
   protected readonly filters = viewChild.required(QueueFilters);
 
   private readonly hasPointer = signal(false);
-  private readonly hasFocus = signal(false);
+  protected readonly hasFocus = signal(false);
+  /** The paged table instead of the scrolling rows. */
+  protected readonly isList = signal(false);
   private readonly taken = signal(0);
 
   protected readonly byId = computed(
@@ -235,6 +238,12 @@ export class Queue {
           },
         },
         { keys: 'u', does: 'Take the new order', scope, run: () => this.takeNewOrder() },
+        {
+          keys: 'w',
+          does: 'The queue as a list in words, or as rows',
+          scope,
+          run: () => this.isList.update((isList) => !isList),
+        },
         { keys: 'q', does: 'Go to the queue', scope, run: () => this.focus() },
       ],
       inject(DestroyRef),
