@@ -1,0 +1,169 @@
+import type { PlanDto, StopDto } from '@shared/contract/routes';
+import type { Instant } from '@shared/domain/instant';
+import { MINUTE_MS } from '@shared/domain/instant';
+import { duration, money } from '../core/zone';
+
+/** One line of the comparison: the routes in force, the proposal, and the difference in words. */
+export interface FigureLine {
+  readonly label: string;
+  readonly inForce: string;
+  readonly proposed: string;
+  readonly difference: string;
+  readonly turn: 'better' | 'worse' | 'same' | 'neither';
+}
+
+type Figures = PlanDto['figures'];
+
+interface FigureKind {
+  readonly label: string;
+  readonly of: (figures: Figures) => number;
+  readonly words: (value: number) => string;
+  /** `neither`: more of it is neither good nor bad. */
+  readonly good: 'more' | 'less' | 'neither';
+}
+
+const whole = (value: number): string => Math.round(value).toLocaleString('en-US');
+const minutes = (value: number): string => duration(Math.round(value) * MINUTE_MS);
+
+const FIGURES: readonly FigureKind[] = [
+  { label: 'Food saved', of: (f) => f.savedCents, words: money, good: 'more' },
+  { label: 'Food lost', of: (f) => f.lostCents, words: money, good: 'less' },
+  { label: 'Miles', of: (f) => f.driveMiles, words: whole, good: 'less' },
+  { label: 'Driving', of: (f) => f.driveMinutes, words: minutes, good: 'less' },
+  { label: 'Lateness', of: (f) => f.lateMinutes, words: minutes, good: 'less' },
+  { label: 'Stops', of: (f) => f.stops, words: whole, good: 'more' },
+];
+
+/** The proposal against the routes in force, figure by figure. */
+export function figureLines({
+  figures,
+  inForce,
+}: Pick<PlanDto, 'figures' | 'inForce'>): FigureLine[] {
+  const lines = FIGURES.map(({ label, of, words, good }): FigureLine => {
+    const before = words(of(inForce));
+    const after = words(of(figures));
+    const change = of(figures) - of(inForce);
+    // What reads the same is the same, whatever the cents say.
+    if (before === after) {
+      return { label, inForce: before, proposed: after, difference: 'same', turn: 'same' };
+    }
+    return {
+      label,
+      inForce: before,
+      proposed: after,
+      difference: `${words(Math.abs(change))} ${change > 0 ? 'more' : 'less'}`,
+      turn: turnOf(change, good),
+    };
+  });
+  lines.push({
+    label: 'Stops moved',
+    inForce: '',
+    proposed: whole(figures.moved),
+    difference: '',
+    turn: 'neither',
+  });
+  return lines;
+}
+
+function turnOf(change: number, good: FigureKind['good']): FigureLine['turn'] {
+  if (good === 'neither') return 'neither';
+  return change > 0 === (good === 'more') ? 'better' : 'worse';
+}
+
+export interface CallChange {
+  readonly callId: string;
+  readonly kind: 'added' | 'from-other' | 'to-other' | 'off-route' | 'retimed';
+  /** With `from-other` and `to-other`. */
+  readonly otherTechnicianId: string | null;
+  /** With `retimed`: later when positive. */
+  readonly laterMs: number;
+}
+
+/** What the proposal changes for one technician. */
+export interface TechnicianChanges {
+  readonly technicianId: string;
+  readonly changes: readonly CallChange[];
+  readonly unchanged: number;
+}
+
+/** A start that moves by less is the same promise; the plan's own figures count alike. */
+const SAME_START_MS = 30 * MINUTE_MS;
+
+/** Per technician what the proposal changes; those for whom nothing changes come last. */
+export function changesByTechnician(
+  plan: Pick<PlanDto, 'routes'>,
+  inForce: readonly StopDto[],
+): TechnicianChanges[] {
+  const before = new Map(inForce.map((stop) => [stop.callId, stop]));
+  const after = new Map(
+    plan.routes.flatMap(({ technicianId, stops }) =>
+      stops.map((stop) => [stop.callId, { ...stop, technicianId }] as const),
+    ),
+  );
+  const byTechnician = new Map<string, { changes: CallChange[]; unchanged: number }>();
+  const of = (technicianId: string) => {
+    const known = byTechnician.get(technicianId) ?? { changes: [], unchanged: 0 };
+    byTechnician.set(technicianId, known);
+    return known;
+  };
+  for (const { callId, technicianId, arriveAt } of after.values()) {
+    const was = before.get(callId);
+    const mine = of(technicianId);
+    if (!was) mine.changes.push(change(callId, 'added'));
+    else if (was.technicianId !== technicianId) {
+      mine.changes.push(change(callId, 'from-other', was.technicianId));
+      of(was.technicianId).changes.push(change(callId, 'to-other', technicianId));
+    } else if (Math.abs(arriveAt - was.arriveAt) > SAME_START_MS) {
+      mine.changes.push(change(callId, 'retimed', null, arriveAt - was.arriveAt));
+    } else mine.unchanged++;
+  }
+  for (const { callId, technicianId } of inForce) {
+    if (!after.has(callId)) of(technicianId).changes.push(change(callId, 'off-route'));
+  }
+  return [...byTechnician]
+    .map(([technicianId, { changes, unchanged }]) => ({ technicianId, changes, unchanged }))
+    .sort((a, b) => b.changes.length - a.changes.length);
+}
+
+const change = (
+  callId: string,
+  kind: CallChange['kind'],
+  otherTechnicianId: string | null = null,
+  laterMs = 0,
+): CallChange => ({ callId, kind, otherTechnicianId, laterMs });
+
+/**
+ * "call 214 is new", "call 12 comes 40 min later".
+ *
+ * @param numberOf what people call a call by
+ * @param nameOf a technician's name
+ */
+export function changeWords(
+  { callId, kind, otherTechnicianId, laterMs }: CallChange,
+  numberOf: (callId: string) => string,
+  nameOf: (technicianId: string) => string,
+): string {
+  const call = `Call ${numberOf(callId)}`;
+  const other = otherTechnicianId === null ? '' : nameOf(otherTechnicianId);
+  switch (kind) {
+    case 'added':
+      return `${call} is new`;
+    case 'from-other':
+      return `${call} comes from ${other}`;
+    case 'to-other':
+      return `${call} goes to ${other}`;
+    case 'off-route':
+      return `${call} leaves the route`;
+    case 'retimed':
+      return `${call} comes ${duration(Math.abs(laterMs))} ${laterMs > 0 ? 'later' : 'earlier'}`;
+  }
+}
+
+/** Whether a call's stop is another in the proposal: for the mark on its block. */
+export const isMovedBy = (
+  stop: { readonly technicianId: string; readonly arriveAt: Instant },
+  was: { readonly technicianId: string; readonly arriveAt: Instant } | undefined,
+): boolean =>
+  was === undefined ||
+  was.technicianId !== stop.technicianId ||
+  Math.abs(was.arriveAt - stop.arriveAt) > SAME_START_MS;

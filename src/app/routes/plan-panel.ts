@@ -1,0 +1,119 @@
+import { ChangeDetectionStrategy, Component, computed, inject, input, output } from '@angular/core';
+import { MatIcon } from '@angular/material/icon';
+import type { CallRow } from '@shared/contract/calls';
+import type { PlanDto, StopDto, TechnicianDto } from '@shared/contract/routes';
+import type { Instant } from '@shared/domain/instant';
+import { ago } from '../core/zone';
+import { changesByTechnician, changeWords, figureLines } from './plan-comparison';
+import { Zone } from '../core/zone';
+
+/** The proposal beside the routes in force: what it saves and costs, and what it changes for whom. */
+@Component({
+  selector: 'thaw-plan-panel',
+  imports: [MatIcon],
+  template: `
+    <h2>
+      Proposal
+      <span class="soft">by {{ plan().proposedBy }}, {{ age() }}</span>
+    </h2>
+    <table>
+      <caption class="visually-hidden">
+        The proposal against the routes in force
+      </caption>
+      <thead>
+        <tr>
+          <td></td>
+          <th scope="col">In force</th>
+          <th scope="col">Proposed</th>
+          <th scope="col">Difference</th>
+        </tr>
+      </thead>
+      <tbody>
+        @for (line of figures(); track line.label) {
+          <tr>
+            <th scope="row">{{ line.label }}</th>
+            <td>{{ line.inForce }}</td>
+            <td>{{ line.proposed }}</td>
+            <td class="turn" [class]="line.turn">
+              @if (line.turn === 'better') {
+                <mat-icon svgIcon="check" aria-hidden="true" />
+                <span class="visually-hidden">better: </span>
+              } @else if (line.turn === 'worse') {
+                <mat-icon svgIcon="warning" aria-hidden="true" />
+                <span class="visually-hidden">worse: </span>
+              }
+              {{ line.difference }}
+            </td>
+          </tr>
+        }
+      </tbody>
+    </table>
+    <div class="acts">
+      <button type="button" class="plain main" [disabled]="isBusy()" (click)="published.emit()">
+        Publish <kbd>Ctrl Enter</kbd>
+      </button>
+      <button type="button" class="plain" [disabled]="isBusy()" (click)="discarded.emit()">
+        Discard <kbd>X</kbd>
+      </button>
+    </div>
+    <details [open]="changed().length > 0 && changed().length <= 4">
+      <summary>{{ summary() }}</summary>
+      <ul>
+        @for (one of changed(); track one.technicianId) {
+          <li>
+            <strong>{{ one.name }}</strong>
+            @if (one.unchanged > 0) {
+              <span class="soft">{{ one.unchanged }} as before</span>
+            }
+            <span class="words">{{ one.words }}</span>
+          </li>
+        }
+      </ul>
+    </details>
+  `,
+  styleUrls: ['../intake/fields.scss', './plan-panel.scss'],
+  changeDetection: ChangeDetectionStrategy.OnPush,
+})
+export class PlanPanel {
+  private readonly zone = inject(Zone);
+
+  readonly plan = input.required<PlanDto>();
+  readonly stops = input.required<readonly StopDto[]>();
+  readonly calls = input.required<ReadonlyMap<string, CallRow>>();
+  readonly technicians = input.required<ReadonlyMap<string, TechnicianDto>>();
+  readonly now = input.required<Instant>();
+  readonly isBusy = input(false);
+
+  readonly published = output();
+  readonly discarded = output();
+
+  protected readonly figures = computed(() => figureLines(this.plan()));
+  protected readonly age = computed(
+    () =>
+      `${this.zone.clockTime(this.plan().proposedAt)}, ${ago(this.plan().proposedAt, this.now())}`,
+  );
+
+  private readonly changes = computed(() => changesByTechnician(this.plan(), this.stops()));
+  protected readonly changed = computed(() =>
+    this.changes()
+      .filter(({ changes }) => changes.length > 0)
+      .map(({ technicianId, changes, unchanged }) => ({
+        technicianId,
+        unchanged,
+        name: this.nameOf(technicianId),
+        words: changes.map((one) => changeWords(one, this.numberOf, this.nameOf)).join('; '),
+      })),
+  );
+  protected readonly summary = computed(() => {
+    const changed = this.changed().length;
+    const same = this.changes().length - changed;
+    if (changed === 0) return 'Nothing changes for anybody';
+    const who = changed === 1 ? '1 technician' : `${changed} technicians`;
+    return `What changes for ${who}${same > 0 ? `; ${same} as before` : ''}`;
+  });
+
+  private readonly numberOf = (callId: string): string =>
+    String(this.calls().get(callId)?.number ?? '?');
+  private readonly nameOf = (id: string): string =>
+    this.technicians().get(id)?.name ?? 'a technician who left';
+}
