@@ -4,6 +4,9 @@ import { StreetSpace, type StreetLine, type StreetPart } from './street-line';
 import type { Terrain } from './terrain';
 import type { Town } from './towns';
 
+// Taken out once: inside a test's sandbox every look-up of a global is slow.
+const { floor } = Math;
+
 export interface HouseAddress {
   readonly at: Point;
   readonly number: number;
@@ -94,7 +97,7 @@ export function houseAddresses(
           if (built.nearest(at, 14) !== null) continue;
           if (built.nearest(at, 55, (street) => street === line.street) === null) continue;
           const measure = numbers[i - 1]! + (numbers[i]! - numbers[i - 1]!) * share;
-          const number = 2 * Math.floor(measure / 2) + (side > 0 ? 1 : 2);
+          const number = 2 * floor(measure / 2) + (side > 0 ? 1 : 2);
           const town = isTown ? towns[line.town!]! : postTown(towns, at);
           const streetName = nameOf(line.street);
           const key = `${number} ${streetName} ${town.index}`;
@@ -123,8 +126,8 @@ class DoorSpace {
 
   /** Whether a door may stand here; if so, it does from now on. */
   take(p: Point): boolean {
-    const i = Math.floor(p[0] / DOORS_APART);
-    const j = Math.floor(p[1] / DOORS_APART);
+    const i = floor(p[0] / DOORS_APART);
+    const j = floor(p[1] / DOORS_APART);
     for (let dj = -1; dj <= 1; dj++) {
       for (let di = -1; di <= 1; di++) {
         if (this.buckets.get(key(i + di, j + dj))?.some((door) => distance(door, p) < DOORS_APART))

@@ -1,5 +1,8 @@
 import type { Point } from './plane';
 
+// Taken out once: inside a test's sandbox every look-up of a global is slow.
+const { floor, sqrt } = Math;
+
 /** Numbers on a square lattice. */
 export interface Field {
   readonly columns: number;
@@ -61,13 +64,13 @@ export function distanceField({
     for (let i = 1; i < columns; i++) take(j * columns + i, j * columns + i - 1, 1, 0);
   }
   const distances = new Float32Array(values.length);
-  for (let k = 0; k < values.length; k++) distances[k] = Math.sqrt(square(dx[k]!, dy[k]!)) * cell;
+  for (let k = 0; k < values.length; k++) distances[k] = sqrt(square(dx[k]!, dy[k]!)) * cell;
 
   return ([x, y]) => {
     const fi = (x - left) / cell;
     const fj = (y - bottom) / cell;
-    const i = Math.floor(fi);
-    const j = Math.floor(fj);
+    const i = floor(fi);
+    const j = floor(fj);
     if (i < 0 || j < 0 || i >= columns - 1 || j >= rows - 1) return 0;
     const u = fi - i;
     const v = fj - j;

@@ -2,6 +2,9 @@ import Flatbush from 'flatbush';
 import { between, distance, lengthOf, shareAlong, type Point } from './plane';
 import type { StreetLine } from './street-line';
 
+// Taken out once: inside a test's sandbox every look-up of a global is slow.
+const { floor, min, max, abs } = Math;
+
 /** A stretch of a street between two junctions (or a junction and a dead end). */
 export interface Stretch {
   readonly line: number;
@@ -58,8 +61,8 @@ class NodeBook {
   private readonly buckets = new Map<string, number[]>();
 
   add(p: Point): number {
-    const i = Math.floor(p[0] / SNAP);
-    const j = Math.floor(p[1] / SNAP);
+    const i = floor(p[0] / SNAP);
+    const j = floor(p[1] / SNAP);
     let nearest = -1;
     let least = SNAP;
     for (let dj = -1; dj <= 1; dj++) {
@@ -105,12 +108,7 @@ function findCuts(lines: readonly StreetLine[], nodes: NodeBook): Cut[][] {
   };
   for (let k = 0; k < owner.length; k++) {
     const [a, b] = segment(k);
-    index.add(
-      Math.min(a[0], b[0]),
-      Math.min(a[1], b[1]),
-      Math.max(a[0], b[0]),
-      Math.max(a[1], b[1]),
-    );
+    index.add(min(a[0], b[0]), min(a[1], b[1]), max(a[0], b[0]), max(a[1], b[1]));
   }
   index.finish();
 
@@ -127,7 +125,7 @@ function findCuts(lines: readonly StreetLine[], nodes: NodeBook): Cut[][] {
       for (const k of index
         .search(p[0] - SNAP, p[1] - SNAP, p[0] + SNAP, p[1] + SNAP)
         .sort((x, y) => x - y)) {
-        if (owner[k] === number && Math.abs(segmentOf[k]! - at) < 3) continue;
+        if (owner[k] === number && abs(segmentOf[k]! - at) < 3) continue;
         if (line.isBridge !== lines[owner[k]!]!.isBridge && !isEndOf(lines[owner[k]!]!, p))
           continue;
         const [a, b] = segment(k);
@@ -139,15 +137,10 @@ function findCuts(lines: readonly StreetLine[], nodes: NodeBook): Cut[][] {
   });
   for (let k = 0; k < owner.length; k++) {
     const [a, b] = segment(k);
-    const found = index.search(
-      Math.min(a[0], b[0]),
-      Math.min(a[1], b[1]),
-      Math.max(a[0], b[0]),
-      Math.max(a[1], b[1]),
-    );
+    const found = index.search(min(a[0], b[0]), min(a[1], b[1]), max(a[0], b[0]), max(a[1], b[1]));
     for (const other of found.sort((x, y) => x - y)) {
       if (other <= k) continue;
-      if (owner[other] === owner[k] && Math.abs(segmentOf[other]! - segmentOf[k]!) < 2) continue;
+      if (owner[other] === owner[k] && abs(segmentOf[other]! - segmentOf[k]!) < 2) continue;
       // A road under a bridge does not meet it.
       if (lines[owner[k]!]!.isBridge !== lines[owner[other]!]!.isBridge) continue;
       const [c, d] = segment(other);
@@ -176,7 +169,7 @@ function crossing(
   const sx = d[0] - c[0];
   const sy = d[1] - c[1];
   const cross = rx * sy - ry * sx;
-  if (Math.abs(cross) < 1e-9) return null;
+  if (abs(cross) < 1e-9) return null;
   const first = ((c[0] - a[0]) * sy - (c[1] - a[1]) * sx) / cross;
   const second = ((c[0] - a[0]) * ry - (c[1] - a[1]) * rx) / cross;
   const slack = 1e-9;
@@ -204,7 +197,7 @@ function withoutTwins(stretches: readonly Stretch[]): Stretch[] {
     const key = from < to ? `${from}-${to}` : `${to}-${from}`;
     const length = lengthOf(points);
     const others = known.get(key) ?? [];
-    if (others.some((other) => Math.abs(other - length) < Math.max(8, other * 0.06))) return false;
+    if (others.some((other) => abs(other - length) < max(8, other * 0.06))) return false;
     known.set(key, [...others, length]);
     return true;
   });
@@ -249,7 +242,7 @@ function largestPart(stretches: readonly Stretch[]): Stretch[] {
     }
     sizes.push(size);
   }
-  const largest = sizes.indexOf(Math.max(...sizes));
+  const largest = sizes.indexOf(max(...sizes));
   return stretches.filter(({ from }) => part.get(from) === largest);
 }
 

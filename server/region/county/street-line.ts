@@ -1,5 +1,8 @@
 import { distance, type Point } from './plane';
 
+// Taken out once: inside a test's sandbox every look-up of a global is slow.
+const { floor, ceil, max } = Math;
+
 /** The importance of a street, the way OpenStreetMap's `highway` tag tells it. */
 export type StreetClass = 'primary' | 'secondary' | 'tertiary' | 'unclassified' | 'residential';
 
@@ -47,7 +50,7 @@ export class StreetSpace {
     for (let i = 1; i < points.length; i++) {
       const a = points[i - 1]!;
       const b = points[i]!;
-      const steps = Math.max(1, Math.ceil(distance(a, b) / SAMPLE_METRES));
+      const steps = max(1, ceil(distance(a, b) / SAMPLE_METRES));
       for (let s = i === 1 ? 0 : 1; s <= steps; s++) {
         const share = s / steps;
         this.put([a[0] + (b[0] - a[0]) * share, a[1] + (b[1] - a[1]) * share], street);
@@ -61,9 +64,9 @@ export class StreetSpace {
     reach: number,
     wanted: (street: string) => boolean = () => true,
   ): { p: Point; street: string; metres: number } | null {
-    const span = Math.ceil(reach / BUCKET_METRES);
-    const i0 = Math.floor(p[0] / BUCKET_METRES);
-    const j0 = Math.floor(p[1] / BUCKET_METRES);
+    const span = ceil(reach / BUCKET_METRES);
+    const i0 = floor(p[0] / BUCKET_METRES);
+    const j0 = floor(p[1] / BUCKET_METRES);
     let best: { p: Point; street: string; metres: number } | null = null;
     let bestMetres = reach;
     for (let j = j0 - span; j <= j0 + span; j++) {
@@ -81,7 +84,7 @@ export class StreetSpace {
   }
 
   private put(p: Point, street: string): void {
-    const key = bucket(Math.floor(p[0] / BUCKET_METRES), Math.floor(p[1] / BUCKET_METRES));
+    const key = bucket(floor(p[0] / BUCKET_METRES), floor(p[1] / BUCKET_METRES));
     const found = this.buckets.get(key);
     if (found) found.push({ p, street });
     else this.buckets.set(key, [{ p, street }]);

@@ -1,7 +1,10 @@
 import { chanceOf, noise1, noise2, seedOf } from './chance';
-import type { Point } from './plane';
+import { between, type Point } from './plane';
 import { contours } from './contours';
 import { distanceField, type Field } from './field';
+
+// Taken out once: inside a test's sandbox every look-up of a global is slow.
+const { abs, min, max, sqrt, round } = Math;
 
 /** Half the county's extent on the plane, in metres. */
 export const HALF_WIDTH = 21_000;
@@ -43,7 +46,7 @@ export function makeTerrain(seed: number): Terrain {
 
   const shoreAt = (y: number): number => {
     const t = y / 20_500;
-    return -2_500 + 14_500 * Math.sqrt(Math.max(0, 1 - t * t));
+    return -2_500 + 14_500 * sqrt(max(0, 1 - t * t));
   };
   const barrierX = (y: number): number =>
     shoreAt(y * 0.82) +
@@ -57,20 +60,19 @@ export function makeTerrain(seed: number): Terrain {
     if (y > ESTUARY_HEAD) return 0;
     const t = (ESTUARY_HEAD - y) / 17_000;
     const ragged =
-      (110 * noise1(y / 900, riverSeed + 2) + 45 * noise1(y / 310, riverSeed + 4)) *
-      Math.min(1, t * 3);
+      (110 * noise1(y / 900, riverSeed + 2) + 45 * noise1(y / 310, riverSeed + 4)) * min(1, t * 3);
     // Narrower than the lattice can hold it would fall apart into ponds.
-    return Math.max(50, 40 + 1_500 * t * t + ragged);
+    return max(50, 40 + 1_500 * t * t + ragged);
   };
 
   const barrierDepth = (x: number, y: number): number => {
-    const taper = Math.min(1, (BARRIER_REACH - Math.abs(y)) / 1_500);
+    const taper = min(1, (BARRIER_REACH - abs(y)) / 1_500);
     let half = (330 + 120 * noise1(y / 1_300, barrierSeed + 2)) * taper;
     for (const inlet of inlets) {
-      const off = Math.abs(y - inlet);
-      if (off < 900) half = Math.min(half, off - 420);
+      const off = abs(y - inlet);
+      if (off < 900) half = min(half, off - 420);
     }
-    return half - Math.abs(x - barrierX(y)) + 45 * noise2(x / 420, y / 420, barrierSeed + 3);
+    return half - abs(x - barrierX(y)) + 45 * noise2(x / 420, y / 420, barrierSeed + 3);
   };
 
   const mainlandDepth = (x: number, y: number): number => {
@@ -86,36 +88,36 @@ export function makeTerrain(seed: number): Terrain {
       620 * noise2(x / 2_000, y / 2_000, coastSeed + 2) +
       250 * noise2(x / 900, y / 900, coastSeed + 3) +
       90 * noise2(x / 380, y / 380, coastSeed + 4);
-    if (Math.abs(y) < BARRIER_REACH + 1_500) {
+    if (abs(y) < BARRIER_REACH + 1_500) {
       const sound =
         1_250 +
         450 * noise1(y / 2_400, barrierSeed + 4) +
         120 * noise2(x / 500, y / 500, barrierSeed + 5);
-      depth = Math.min(depth, barrierX(y) - sound - x);
+      depth = min(depth, barrierX(y) - sound - x);
     }
-    if (y < ESTUARY_HEAD) depth = Math.min(depth, Math.abs(x - riverX(y)) - estuaryHalfWidth(y));
+    if (y < ESTUARY_HEAD) depth = min(depth, abs(x - riverX(y)) - estuaryHalfWidth(y));
     return depth;
   };
 
   const islets = isletBlobs(seed, barrierX);
   const depthOf = (x: number, y: number): number => {
     let depth = mainlandDepth(x, y);
-    if (Math.abs(y) < BARRIER_REACH && Math.abs(x - barrierX(y)) < 1_200)
-      depth = Math.max(depth, barrierDepth(x, y));
+    if (abs(y) < BARRIER_REACH && abs(x - barrierX(y)) < 1_200)
+      depth = max(depth, barrierDepth(x, y));
     for (const { at, radius } of islets) {
       const dx = x - at[0];
       const dy = y - at[1];
-      if (Math.abs(dx) > 700 || Math.abs(dy) > 700) continue;
-      depth = Math.max(
+      if (abs(dx) > 700 || abs(dy) > 700) continue;
+      depth = max(
         depth,
-        radius - Math.sqrt(dx * dx + dy * dy) + 70 * noise2(x / 230, y / 230, coastSeed + 6),
+        radius - sqrt(dx * dx + dy * dy) + 70 * noise2(x / 230, y / 230, coastSeed + 6),
       );
     }
     return depth;
   };
 
-  const columns = Math.round((2 * HALF_WIDTH) / CELL) + 1;
-  const rows = Math.round((2 * HALF_HEIGHT) / CELL) + 1;
+  const columns = round((2 * HALF_WIDTH) / CELL) + 1;
+  const rows = round((2 * HALF_HEIGHT) / CELL) + 1;
   const depths = new Float64Array(columns * rows);
   for (let j = 0; j < rows; j++) {
     for (let i = 0; i < columns; i++) {
@@ -169,28 +171,27 @@ function carveLakes(seed: number, field: Field): Point[][] {
     const at: Point = [chance.between(-15_000, 9_000), chance.between(-17_000, 17_000)];
     const radius = chance.between(260, 720);
     if (dry(at) < radius * 2 + 900) continue;
-    if (lakes.some((lake) => Math.abs(lake.at[0] - at[0]) + Math.abs(lake.at[1] - at[1]) < 5_000))
-      continue;
+    if (lakes.some((lake) => abs(lake.at[0] - at[0]) + abs(lake.at[1] - at[1]) < 5_000)) continue;
     lakes.push({ at, radius });
   }
   const water: Field = { ...field, values: new Float64Array(field.values.length).fill(-1_000) };
   for (const { at, radius } of lakes) {
     for (let j = 0; j < field.rows; j++) {
       const y = field.bottom + j * field.cell;
-      if (Math.abs(y - at[1]) > radius * 2) continue;
+      if (abs(y - at[1]) > radius * 2) continue;
       for (let i = 0; i < field.columns; i++) {
         const x = field.left + i * field.cell;
-        if (Math.abs(x - at[0]) > radius * 2) continue;
+        if (abs(x - at[0]) > radius * 2) continue;
         const dx = x - at[0];
         const dy = (y - at[1]) * 1.35;
         const depth =
           radius -
-          Math.sqrt(dx * dx + dy * dy) +
+          sqrt(dx * dx + dy * dy) +
           radius * 0.45 * noise2(x / 420, y / 420, noiseSeed) +
           50 * noise2(x / 170, y / 170, noiseSeed + 1);
         const k = j * field.columns + i;
-        water.values[k] = Math.max(water.values[k]!, depth);
-        if (depth > 0) field.values[k] = Math.min(field.values[k]!, -depth);
+        water.values[k] = max(water.values[k]!, depth);
+        if (depth > 0) field.values[k] = min(field.values[k]!, -depth);
       }
     }
   }
@@ -199,10 +200,14 @@ function carveLakes(seed: number, field: Field): Point[][] {
 
 /** Makes the cells along a line wet, so that whatever keeps clear of water keeps clear of the river. */
 function carveLine(field: Field, line: readonly Point[]): void {
-  for (const [x, y] of line) {
-    const i = Math.round((x - field.left) / field.cell);
-    const j = Math.round((y - field.bottom) / field.cell);
-    field.values[j * field.columns + i] = -1;
+  for (let k = 1; k < line.length; k++) {
+    // Half a cell at a time, so that no way leads through between two wet cells.
+    for (let share = 0; share <= 1; share += 0.2) {
+      const [x, y] = between(line[k - 1]!, line[k]!, share);
+      const i = round((x - field.left) / field.cell);
+      const j = round((y - field.bottom) / field.cell);
+      field.values[j * field.columns + i] = -1;
+    }
   }
 }
 
@@ -211,12 +216,12 @@ function banks(line: readonly Point[], halfWidth: number): Point[] {
   const left: Point[] = [];
   const right: Point[] = [];
   line.forEach((p, i) => {
-    const a = line[Math.max(0, i - 1)]!;
-    const b = line[Math.min(line.length - 1, i + 1)]!;
+    const a = line[max(0, i - 1)]!;
+    const b = line[min(line.length - 1, i + 1)]!;
     const dx = b[0] - a[0];
     const dy = b[1] - a[1];
-    const length = Math.sqrt(dx * dx + dy * dy);
-    const width = halfWidth * Math.min(1, (line.length - 1 - i) / 40 + 0.15);
+    const length = sqrt(dx * dx + dy * dy);
+    const width = halfWidth * min(1, (line.length - 1 - i) / 40 + 0.15);
     left.push([p[0] - (dy / length) * width, p[1] + (dx / length) * width]);
     right.push([p[0] + (dy / length) * width, p[1] - (dx / length) * width]);
   });
