@@ -90,7 +90,7 @@ export async function runCommand<R>(
     await change(
       context.sequelize,
       'UPDATE applied_commands SET reply = ? WHERE id = ?',
-      [JSON.stringify(result), order.commandId],
+      [JSON.stringify(result ?? null), order.commandId],
       tx,
     );
     // The counters come last: they are the one row that all commands share, and so held briefly.

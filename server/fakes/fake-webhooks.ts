@@ -1,4 +1,5 @@
 import { createHmac } from 'node:crypto';
+import { setMaxListeners } from 'node:events';
 
 import type { Journal } from './fake-journal';
 
@@ -42,6 +43,8 @@ export function webhookPoster(
   retryAfterMs: readonly number[],
 ): WebhookPoster {
   const closing = new AbortController();
+  // One listener for each webhook on its way; there may be many.
+  setMaxListeners(0, closing.signal);
 
   const postOnce = async ({ sid, url, reported, fields }: Webhook): Promise<number | null> => {
     const httpStatus = await fetch(url, {
