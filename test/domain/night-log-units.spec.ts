@@ -51,6 +51,9 @@ describe('readUnits', () => {
     ['kitchen fridge, garage fridge', 'fridge-freezer + fridge-freezer'],
     ['nevera y congelador', 'fridge-freezer + upright-freezer'],
     ['refri y congelador horizontal', 'fridge-freezer + chest-freezer'],
+    ['two freezers (1 upright, 1 chest)', 'upright-freezer + chest-freezer'],
+    ['larder fridge', 'refrigerator'],
+    ['VAX FRIDGE', 'medicine-fridge'],
     ['washer', ''],
     ['', ''],
   ])('reads the appliance cell %p as %p', (cell, expected) => {

@@ -72,6 +72,7 @@ export const SHARED_ROLES: ReadonlySet<ColumnRole> = new Set<ColumnRole>([
   'ignore',
   'altPhone',
   'address',
+  'unitKind',
   'powerOutAt',
   'powerBackAt',
   'contents',

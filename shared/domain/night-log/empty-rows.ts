@@ -14,7 +14,8 @@ export function whyEmpty(
   if (header && repeatsHeader(cells, header)) return 'the titles again';
   const text = plain(said.join(' ')).replace(/^[\s*=_~#<>[(-]+|[\s*=_~#<>\])-]+$/g, '');
   if (said.length <= 3 && FURNITURE.test(text)) return 'a heading or footer of the report';
-  if (said.length <= 4 && TOTAL.test(text)) return 'a line of totals';
+  if (said.length <= 4 && TOTAL.test(text) && !/\d{3}\D{0,3}\d{4}/.test(text))
+    return 'a line of totals';
   if (said.length <= 2 && dayLine(cells)) return 'a date on a line of its own';
   return null;
 }

@@ -47,8 +47,10 @@ export function foldDuplicates(rows: readonly RowReading[]): readonly Household[
   const byPhone = new Map<string, number[]>();
   const byAddress = new Map<string, number[]>();
 
+  const common = commonPhones(understood.map(({ call }) => call));
+
   for (const { row } of inOrder) {
-    const keys = keysOf(row.call);
+    const keys = keysOf(row.call, common);
     const near = new Set([
       ...keys.phones.flatMap((phone) => byPhone.get(phone) ?? []),
       ...(keys.address ? (byAddress.get(keys.address) ?? []) : []),
@@ -58,7 +60,7 @@ export function foldDuplicates(rows: readonly RowReading[]): readonly Household[
     const doubtful: { group: number; reason: string }[] = [];
     for (const group of [...near].sort((a, b) => a - b)) {
       const members = groups[group]?.members ?? [];
-      const verdicts = members.map((member) => sameHousehold(member.call, row.call));
+      const verdicts = members.map((member) => sameHousehold(member.call, row.call, common));
       const yes = verdicts.find(({ same }) => same === 'yes');
       const against = verdicts.find(({ same, firm }) => same !== 'yes' && firm);
       if (yes && !against && home === null) {
@@ -103,8 +105,12 @@ export interface Verdict {
 }
 
 /** Whether two calls come from one household; also for a call that is on the board already. */
-export function sameHousehold(a: NightCall, b: NightCall): Verdict {
-  const phone = sharedPhone(a, b);
+export function sameHousehold(
+  a: NightCall,
+  b: NightCall,
+  common: ReadonlySet<string> = new Set(),
+): Verdict {
+  const phone = sharedPhone(a, b, common);
   const place = comparePlaces(a, b);
   const names = compareNames(a.name, b.name);
   if (phone) {
@@ -138,9 +144,42 @@ export function sameHousehold(a: NightCall, b: NightCall): Verdict {
   return { same: 'no', reason: firm ? 'another address' : 'nothing in common', firm };
 }
 
-function sharedPhone(a: NightCall, b: NightCall): string | null {
+function sharedPhone(a: NightCall, b: NightCall, common: ReadonlySet<string>): string | null {
   const mine = phonesOf(a);
-  return phonesOf(b).find((phone) => mine.includes(phone)) ?? null;
+  return phonesOf(b).find((phone) => mine.includes(phone) && !common.has(phone)) ?? null;
+}
+
+/**
+ * Numbers that stand in the rows of three places or of five names: a switchboard's, or the service's
+ * own line. One household misspelt does not come to that.
+ */
+function commonPhones(calls: readonly NightCall[]): ReadonlySet<string> {
+  const seen = new Map<string, { places: string[]; names: string[] }>();
+  for (const call of calls) {
+    const place = call.address && addressKey(call.address);
+    for (const phone of phonesOf(call)) {
+      const known = seen.get(phone) ?? { places: [], names: [] };
+      seen.set(phone, known);
+      if (
+        place &&
+        known.places.length < 3 &&
+        !known.places.some((other) => nearText(other, place))
+      ) {
+        known.places.push(place);
+      }
+      const { name } = call;
+      if (
+        name &&
+        known.names.length < 5 &&
+        known.names.every((other) => compareNames(other, name) === 'other')
+      ) {
+        known.names.push(name);
+      }
+    }
+  }
+  const isCommon = ({ places, names }: { places: string[]; names: string[] }): boolean =>
+    places.length >= 3 || names.length >= 5;
+  return new Set([...seen].flatMap(([phone, of]) => (isCommon(of) ? [phone] : [])));
 }
 
 const phonesOf = (call: NightCall): string[] =>
@@ -201,10 +240,16 @@ function compareNames(a: string | null, b: string | null): 'same' | 'other' | 'u
   return 'other';
 }
 
-function keysOf(call: NightCall): { phones: string[]; address: string | null } {
+function keysOf(
+  call: NightCall,
+  common: ReadonlySet<string>,
+): { phones: string[]; address: string | null } {
   const key = call.address && addressKey(call.address);
   // House number and the street's first letter: near enough to be looked at, few enough to be quick.
-  return { phones: phonesOf(call), address: key ? key.replace(/^(\S+ .{2}).*$/, '$1') : null };
+  return {
+    phones: phonesOf(call).filter((phone) => !common.has(phone)),
+    address: key ? key.replace(/^(\S+ .{2}).*$/, '$1') : null,
+  };
 }
 
 function remember(index: Map<string, number[]>, key: string, group: number): void {

@@ -46,6 +46,13 @@ export function guessColumns(
     if (chosen.has(candidate.index) || candidate.score < LEAST_SCORE) continue;
     if (taken.has(candidate.role) && !SHARED_ROLES.has(candidate.role)) continue;
     if (isRival(candidate.role, taken)) continue;
+    // A second appliance column has to say so.
+    if (
+      candidate.role === 'unitKind' &&
+      taken.has('unitKind') &&
+      !candidate.why.startsWith('titled')
+    )
+      continue;
     chosen.set(candidate.index, candidate);
     taken.add(candidate.role);
   }

@@ -169,6 +169,7 @@ const TITLES: readonly (readonly [ColumnRole, number, RegExp])[] = [
     `(?:(?:type of |kind of |which |what )?(?:appl|appliance|appliances|applnc|equip|equipment|eqp|unit type|unit kind|units|device|product|machine|electrodomestico|aparato|equipo)(?: ?(?:type|affected|down|desc|description|s|name|involved|in question))?|(?:fridge|frig|refrig|refrigerator|ref|freezer|frzr|frz)(?: (?:or|and|fridge|frig|refrig|refrigerator|freezer|frzr|frz|deep|chest|type|unit|other|which))*|what (?:unit|appliance|is down|broke)|item type|which unit|type of unit|unit affected|unit s affected|unit s)`,
   ),
   t('unitKind', 0.6, `unit|item|type|what|what for|asset|category|cat|kind|service type|call type`),
+  t('unitKind', 0.9, `(?:unit|appl|appliance|equip|equipment|item)s? ?[1-4](?: type)?`),
   part('unitKind', 0.6, `appliances?|appl|equip|equipment`),
 
   t(

@@ -97,6 +97,9 @@ export function readWhen(raw: string): WhenSaid {
       day: Number(packed[3]),
     };
     text = packed[4] && packed[5] ? `${packed[4]}:${packed[5]}` : '';
+  } else if (/^\d{4}(?:19|20)\d{2}$/.test(text)) {
+    date = either(Number(text.slice(0, 2)), Number(text.slice(2, 4)), Number(text.slice(4)));
+    if (date) text = '';
   } else {
     for (const finder of DATE_FINDERS) {
       const match = finder.pattern.exec(text);

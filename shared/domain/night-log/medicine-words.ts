@@ -19,7 +19,7 @@ const WORDS: readonly { kind: MedicineKind; pattern: RegExp }[] = [
   {
     kind: 'milk-or-formula',
     pattern:
-      /\b(?:b(?:r)?e?a?st ?-?milk|breast milk|brest milk|expressed milk|pumped milk|ebm|donor milk|(?:baby|infant) (?:formula|milk)|formula|leche materna|formula infantil)\b/g,
+      /\b(?:b(?:r)?e?a?st ?-?milk|breast milk|brest milk|expressed milk|pumped milk|ebm|donor milk|(?:bab(?:y|ies)(?:'?s)?|infant(?:'?s)?) (?:formula|milk)|formula|leche materna|formula infantil)\b/g,
   },
   {
     kind: 'insulin',
@@ -28,7 +28,7 @@ const WORDS: readonly { kind: MedicineKind; pattern: RegExp }[] = [
   {
     kind: 'injectable',
     pattern:
-      /\b(?:vaccin\w*|vacc?unas?|vacines?|injectables?|injections?|inyecci\w*|biologics?|(?:allergy|fertility|arthritis|ms|migraine|weekly|hormone) shots?|growth hormone|fertility (?:meds?|drugs?)|chemo\w*|iv (?:meds?|bags?|antibiotics?)|tpn|infusions?|semaglutide)\b/g,
+      /\b(?:vaccin\w*|vacc?unas?|vacines?|vax|injectables?|injections?|inyecci\w*|biologics?|(?:allergy|fertility|arthritis|ms|migraine|weekly|hormone) shots?|growth hormone|fertility (?:meds?|drugs?)|chemo\w*|iv (?:meds?|bags?|antibiotics?)|tpn|infusions?|semaglutide)\b/g,
   },
   {
     kind: 'label-not-read',
@@ -50,7 +50,7 @@ const LIST_WORD =
 const NO_MEDICINE: MedicineSaid = { mentioned: false, kinds: [], words: [] };
 /** Without one of these stems no word above can stand in the text; most messages have none. */
 const HINT =
-  /med|milk|ebm|\bbm\b|formula|leche|vac|inject|inyec|biolog|shot|hormone|fertil|chemo|\biv\b|tpn|infus|semag|rx|prescr|script|eye ?dr|antibio|supposit|probiot|diabet|pharm|farmac|drug|specimen|sample|\b[ei]n?[sz]/;
+  /med|milk|ebm|\bbm\b|formula|leche|va[cx]|inject|inyec|biolog|shot|hormone|fertil|chemo|\biv\b|tpn|infus|semag|rx|prescr|script|eye ?dr|antibio|supposit|probiot|diabet|pharm|farmac|drug|specimen|sample|\b[ei]n?[sz]/;
 
 /**
  * Looks for medicine, vaccines and mother's milk in a row's own words. Denials are heard ("no
@@ -106,7 +106,9 @@ export function readMedicineCell(raw: string, header: string | null): MedicineSa
   }
   const nothing =
     cell === '' ||
-    /^(?:n|no|none|0|f|false|neg\w*|nope|nada|ningun\w*|n\/?a|unk\w*|not asked)\b/.test(cell) ||
+    /^(?:n|no|non|nein|none|0|f|false|neg\w*|nope|nada|ningun\w*|n\/?a|unk\w*|not asked)\b/.test(
+      cell,
+    ) ||
     !/[a-z]{3}/.test(cell);
   if (nothing || /\b(?:no|none|denies|denied|not)\b/.test(cell)) return said;
   return { mentioned: true, kinds: ['label-not-read'], words: [cell] };

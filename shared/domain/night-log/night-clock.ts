@@ -171,7 +171,7 @@ function optionsOf({ when, dayAbove }: ReceivedSaid, setting: Setting): readonly
   const said = when.date ?? dayAbove;
   let days: readonly LocalDate[];
   if (when.date) days = daysOf(when.date, zone, span, order);
-  else if (said) days = daysOf(said, zone, span, order).flatMap((day) => [day, addDays(day, 1)]);
+  else if (said) days = daysAround(said, when.clock, setting);
   else days = daysBetween(zone, span);
   const times = timesOf(when.clock, is24);
   return days
@@ -182,6 +182,23 @@ function optionsOf({ when, dayAbove }: ReceivedSaid, setting: Setting): readonly
       })),
     )
     .sort((a, b) => a.at - b.at);
+}
+
+/**
+ * The day that stands above a row, or the next, since a night has two. A report that is dated the
+ * morning after means the evening before.
+ */
+function daysAround(said: DateSaid, clock: ClockSaid, setting: Setting): readonly LocalDate[] {
+  const { zone, span, order, is24 } = setting;
+  const days = daysOf(said, zone, span, order).flatMap((day) => [day, addDays(day, 1)]);
+  const fits = days.some((day) =>
+    timesOf(clock, is24).some(({ hour, minute }) => {
+      const at = zone.toInstant({ ...day, hour, minute });
+      return at >= span.from - SLACK_MS && at <= span.to + SLACK_MS;
+    }),
+  );
+  const [first] = days;
+  return fits || !first ? days : [addDays(first, -1), ...days];
 }
 
 function daysBetween(zone: ZoneClock, span: NightSpan): LocalDate[] {

@@ -24,7 +24,10 @@ export function readName(raw: string): NameSaid {
   if (text === '' || saysNothing(text) || NO_NAME.test(text))
     return { name: null, note: notes.join('; ') };
   const flipped = /^([^,]+),\s*([^,]+)$/.exec(text);
-  if (
+  const suffix = /\s(jr|sr|ii|iii)\.?$/i.exec(flipped?.[2] ?? '');
+  if (flipped && suffix && !COMPANY.test(text)) {
+    text = `${(flipped[2] ?? '').slice(0, suffix.index)} ${flipped[1]}${suffix[0]}`;
+  } else if (
     flipped &&
     !COMPANY.test(text) &&
     !/^(?:jr|sr|ii|iii|iv|md|phd|rn|dds)\b\.?$/i.test(flipped[2] ?? '')

@@ -40,6 +40,7 @@ export function readPower(
   const message = plain(cells.message);
   let outAt = moment(cells.out, setting, 'earliest', doubts);
   outAt ??= hoursAgo(cells.hours, setting, true);
+  outAt ??= moment(cells.hours, setting, 'earliest', doubts);
   if (outAt === null) outAt = fromMessage(message, OUT, setting, 'earliest');
   if (outAt === null) {
     const lasting = LASTING.exec(message);
@@ -48,19 +49,21 @@ export function readPower(
   const stillOut =
     /\b(?:still|not yet|not back|no\b|n\b|out\b|off\b|sigue)/.test(plain(cells.back)) ||
     STILL.test(message);
+  const until = UNTIL.exec(message);
   let backAt =
     stillOut && !/\d/.test(cells.back) ? null : moment(cells.back, setting, 'latest', doubts);
   if (backAt === null && !stillOut) backAt = fromMessage(message, BACK, setting, 'latest');
+  if (backAt === null && !stillOut && until?.[2]) {
+    backAt = moment(until[2], { ...setting, is24: false }, 'latest', []);
+  }
   if (outAt !== null && backAt !== null && backAt < outAt) {
-    doubts.push(
-      'the power came back before it went, by what the row says; the later time was dropped',
-    );
+    doubts.push('the power came back before it went, by what the row says; the return was dropped');
     backAt = null;
   }
   return { outAt, backAt, stillOut: stillOut && backAt === null, doubts };
 }
 
-const TIME = String.raw`((?:last night|yesterday|tonight|anoche)?[ ,]*(?:at|@|~|about|abt|around)?\s*(?:\d{1,2}[:.]\d{2}\s*(?:[ap]\.?m?\b\.?)?|\d{1,4}\s*(?:[ap]\.?m?\b\.?|hrs\b|o'?clock)|\d{1,2}(?![\d:.%/-]| ?(?:h|hrs?|hours?|min|yrs?|years?|deg|days?|f)\b)|midnight|noon|medianoche)(?: (?:last night|yesterday|this morning))?)`;
+const TIME = String.raw`((?:last night|yesterday|tonight|anoche)?[ ,]*(?:at|@|~|about|abt|around)?\s*(?:\d{1,2}[:.]\d{2}\s*(?:[ap]\.?m?\b\.?)?|\d{1,4}\s*(?:[ap]\.?m?\b\.?|hrs\b|o'?clock)|\d{1,2}(?![\d:.%/-]| ?(?:h|hrs?|hours?|min|yrs?|years?|deg|days?|f)\b)|(?:[01]\d|2[0-3])[0-5]\d(?![\d:-])|midnight|noon|medianoche)(?: (?:last night|yesterday|this morning))?)`;
 const LINK = String.raw`\s*(?:(?:since|at|@|from|around|about|abt|approx\.?|~|desde|a|for|on|again|sometime|las?|the)\s*)*`;
 const OUT = new RegExp(
   String.raw`\b(?:(?:power|pwr|elec\w*|lights?|current|luz)\s*(?:(?:has been|been|was|is|went|all)\s*)?(?:out|off|down|failed|lost|cut)|no (?:power|pwr|lights?|elec\w*)|without (?:power|pwr)|w\/?o (?:power|pwr)|lost (?:power|pwr|elec\w*|lights?)|went (?:out|off)|(?:out|off|down) since|out(?= ?\d)|se fue la luz|sin luz|outage)${LINK}${TIME}`,
@@ -68,6 +71,8 @@ const OUT = new RegExp(
 const BACK = new RegExp(
   String.raw`\b(?:(?:power|pwr|lights?|elec\w*|luz)\s*(?:(?:came|is|was|got|went)\s*)?(?:back|on again|restored|returned|on)(?: (?:on|up))?|(?<!call )(?<!ring )(?<!cb )back(?: (?:on|up))?|came back(?: on)?|restored|volvio(?: la luz)?)${LINK}${TIME}`,
 );
+/** "out 5:30p - 7:10p" */
+const UNTIL = new RegExp(String.raw`${OUT.source}\s*(?:-|to|until|till?|thru|hasta)\s*${TIME}`);
 const STILL =
   /\b(?:still (?:out|no power|no pwr|off|without)|(?:power|pwr) (?:is )?still (?:out|off)|no (?:power|pwr) yet|(?:power|pwr) not back|sigue sin luz|todavia sin luz)\b/;
 const LASTING =

@@ -115,8 +115,11 @@ function mentionsIn(raw: string, isColumn: boolean): Mention[] {
       const match = String(args[0]);
       // Groups are never captured in these patterns, so the offset is the second argument.
       const start = Number(args[1]);
-      if (family !== 'no-unit')
-        mentions.push(mentionAt(original, family, start, start + match.length));
+      if (family !== 'no-unit') {
+        mentions.push(
+          ...sorted(mentionAt(original, family, start, start + match.length), original),
+        );
+      }
       return '\u0001'.repeat(match.length);
     });
   }
@@ -171,6 +174,20 @@ function mentionAt(text: string, family: UnitFamily, start: number, end: number)
     isRunning:
       RUNS.test(after) && !/\b(?:not|isn'?t|no longer|never|stopped|won'?t|no) $/.test(before),
   };
+}
+
+/** "two freezers (1 upright, 1 chest)" */
+function sorted(mention: Mention, text: string): Mention[] {
+  const after = text.slice(mention.end, mention.end + 40);
+  const both =
+    /^ ?\([^)]*\b(?:upright|stand ?-?up)\b[^)]*\b(?:chest|deep)\b|^ ?\([^)]*\b(?:chest|deep)\b[^)]*\b(?:upright|stand ?-?up)\b/.test(
+      after,
+    );
+  if (mention.family !== 'plain-freezer' || mention.count !== 2 || !both) return [mention];
+  return [
+    { ...mention, family: 'upright-freezer', count: 1 },
+    { ...mention, family: 'chest-freezer', count: 1 },
+  ];
 }
 
 function bareMention(family: UnitFamily, text: string): Mention {

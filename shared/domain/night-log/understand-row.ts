@@ -57,9 +57,16 @@ export function understandRow(
   const who = nameOf(of);
   const reached = phonesOf(map, cells, told, { areaCode: setting.areaCode });
   doubts.push(...reached.doubts);
+  // "Wren Ashgrove 252-555-0142" in the one column for both
+  const hasNames = NAMES.some((role) => cellsOf(map, cells, role).length > 0);
+  const isName = /^\p{Lu}[\p{L}'. -]+$/u.test(reached.beside) && !NOT_A_NAME.test(reached.beside);
+  const beside = hasNames || !isName ? null : readName(reached.beside).name;
   const address = addressOf(of, map, cells, told, setting.cities, doubts);
 
-  const unitCell = of('unitKind');
+  const unitCell = cellsOf(map, cells, 'unitKind')
+    .map((cell) => cell.trim())
+    .filter((cell) => !saysNothing(cell))
+    .join(' + ');
   const unitsSaid = readUnits(unitCell, [told, of('contents')].filter(Boolean).join(' . '));
   doubts.push(...unitsSaid.doubts);
   const everything = spoken(map, cells, further);
@@ -73,7 +80,7 @@ export function understandRow(
   if (unitsSaid.units.length === 0) doubts.push('no appliance is named');
 
   const call: NightCall = {
-    name: who.name,
+    name: who.name ?? beside,
     business: who.business,
     phone: reached.phone,
     otherPhones: reached.others,
@@ -106,7 +113,7 @@ export function understandRow(
 const CALLS_OFF =
   /\b(?:cancel(?:led|ed)?|disregard|never ?mind|(?:running|working|cooling) again|came back on its own|all good now|no longer needed|fixed itself|back on now and (?:cold|running)|ya (?:funciona|sirve))\b/;
 const NO_CALL =
-  /\b(?:wrong (?:number|no|#)|test (?:call|message|msg)|hang ?-?up|hung up|no message left|dead air|sales call|solicit\w*|telemarket\w*|robo ?call|fax tone|prank|pocket dial|butt dial|do not dispatch|shift change|relief operator|numero equivocado|billing|invoice|vendor|job application|wants (?:a )?(?:receipt|quote|price))\b/;
+  /\b(?:wrong (?:number|no|#)|test (?:call|message|msg)|hang ?-?up|hung up|no message left|dead air|static on (?:the )?line|(?:call|caller) (?:dropped|disconnected|cut off)|no one (?:there|on (?:the )?line)|sales call|solicit\w*|telemarket\w*|robo ?call|fax tone|prank|pocket dial|butt dial|do not dispatch|shift change|relief operator|numero equivocado|billing|invoice|vendor|job application|wants (?:a )?(?:receipt|quote|price))\b/;
 
 function whyAside(
   call: NightCall,
@@ -131,6 +138,8 @@ interface Reached {
   readonly phone: PhoneNumber | null;
   readonly others: readonly PhoneNumber[];
   readonly rest: string;
+  /** What stood in the phone's own cell beside the number. */
+  readonly beside: string;
   readonly unreadable: string | null;
   readonly doubts: readonly string[];
 }
@@ -160,6 +169,7 @@ function phonesOf(
   };
   for (const cell of cellsOf(map, cells, 'phone')) read(cell, true);
   const main = numbers[0] ?? null;
+  const beside = rests[0] ?? '';
   for (const cell of cellsOf(map, cells, 'altPhone')) read(cell, false);
   const inMessage = findPhones(message, options);
   numbers.push(...inMessage);
@@ -178,8 +188,12 @@ function phonesOf(
       `the phone number cannot be read (${String(unreadable)}); another in the row was taken`,
     );
   else if (!phone && !unreadable) doubts.push('no phone number');
-  return { phone, others, rest: rests.join(' / '), unreadable, doubts };
+  return { phone, others, rest: rests.join(' / '), beside, unreadable, doubts };
 }
+
+const NAMES: readonly ColumnRole[] = ['callerName', 'firstName', 'lastName', 'business'];
+const NOT_A_NAME =
+  /\b(?:call|after|before|ask|cell|home|work|no name|or|text|only|ext|mobile|night|day|landline)\b/i;
 
 type Cell = (role: ColumnRole) => string;
 

@@ -41,7 +41,7 @@ export const UNIT_PATTERNS: readonly { family: UnitFamily | 'no-unit'; pattern: 
   {
     family: 'medicine-fridge',
     pattern: new RegExp(
-      String.raw`\b(?:(?:med(?:s|ical|ication|icine)?|vacc?ines?|pharm(?:acy|a|aceutical)?|insulin|lab|drug|specimen|rx|biologics?)[ /-]+(?:storage )?(?:mini[ -]?)?(?:${FRIDGE}|coolers?|${FREEZER})|(?:nevera|refrigerador) (?:de |para )?(?:medicinas?|medicamentos?|vacunas?|insulina))\b`,
+      String.raw`\b(?:(?:med(?:s|ical|ication|icine)?|vacc?ines?|vax|pharm(?:acy|a|aceutical)?|insulin|lab|drug|specimen|rx|biologics?)[ /-]+(?:storage )?(?:mini[ -]?)?(?:${FRIDGE}|coolers?|${FREEZER})|(?:nevera|refrigerador) (?:de |para )?(?:medicinas?|medicamentos?|vacunas?|insulina))\b`,
       'g',
     ),
   },
