@@ -24,7 +24,7 @@ export interface AuditEntry extends AuditNote {
 /** The hash that an empty chain starts from. */
 export const FIRST_HASH = '0'.repeat(64);
 /** Where commands are written that belong to no storm. */
-const OFFICE = 'office';
+export const OFFICE = 'office';
 
 /** Each entry's hash covers the one before it, so a row that was changed or taken out shows. */
 export function auditHash(before: string, entry: AuditEntry): string {

@@ -36,6 +36,11 @@ const numberText = (least: number, most: number) =>
   z.string().max(24).pipe(z.coerce.number<string>().min(least).max(most));
 const StopChanged = z.strictObject({ stop: routes.StopDto });
 const CardChanged = z.strictObject({ card: routes.StopCard });
+const AuditPage = z.strictObject({
+  entityId: Id.optional(),
+  before: numberText(1, 2 ** 50).optional(),
+});
+const AuditEntries = z.strictObject({ entries: z.array(office.AuditEntryDto) });
 
 /** The whole HTTP contract: types, validation, rights and `/api/openapi.json` come from here. */
 export const HTTP = {
@@ -184,6 +189,11 @@ export const HTTP = {
     reply: z.strictObject({ pockets: z.array(areas.PocketDto) }),
   },
 
+  listTechnicians: {
+    summary: 'All technicians, also while no storm is open',
+    who: DESK,
+    reply: z.strictObject({ technicians: z.array(routes.TechnicianDto) }),
+  },
   addTechnician: {
     summary: 'Add a technician',
     who: OFFICE,
@@ -377,13 +387,16 @@ export const HTTP = {
     reply: office.UserWithPassphrase,
   },
   audit: {
-    summary: 'What anyone did, newest first',
+    summary: 'What anyone did in a storm, newest first',
     who: OFFICE,
-    query: z.strictObject({
-      entityId: Id.optional(),
-      before: numberText(1, 2 ** 50).optional(),
-    }),
-    reply: z.strictObject({ entries: z.array(office.AuditEntryDto) }),
+    query: AuditPage,
+    reply: AuditEntries,
+  },
+  officeAudit: {
+    summary: 'What anyone did outside every storm, such as to accounts, newest first',
+    who: OFFICE,
+    query: AuditPage,
+    reply: AuditEntries,
   },
 } as const satisfies Record<RouteName, RouteSpec>;
 

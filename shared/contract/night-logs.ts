@@ -1,33 +1,6 @@
 import { z } from 'zod';
+import { COLUMN_ROLES } from '../domain/night-log/column-map';
 import { Command, Id, line, Moment } from './common';
-
-/** What a column of a log may hold; `ignore` is for what Thawline has no use for. */
-export const COLUMN_ROLES = [
-  'ignore',
-  'call-number',
-  'received-at',
-  'received-date',
-  'received-time',
-  'name',
-  'first-name',
-  'last-name',
-  'phone',
-  'other-phone',
-  'address',
-  'house-number',
-  'street',
-  'unit-number',
-  'city',
-  'state',
-  'postcode',
-  'unit-kind',
-  'remark',
-  'power-out-at',
-  'power-back-at',
-  'contents',
-  'language',
-] as const;
-export type ColumnRole = (typeof COLUMN_ROLES)[number];
 
 export const ColumnGuess = z.strictObject({
   index: z.int().nonnegative(),

@@ -1,5 +1,14 @@
 import { z } from 'zod';
-import { Command, filledLine, Id, Moment, Role, Version, VersionedCommand } from './common';
+import {
+  Command,
+  filledLine,
+  Id,
+  Moment,
+  PhoneNumber,
+  Role,
+  Version,
+  VersionedCommand,
+} from './common';
 import { RegionDto } from './areas';
 
 export const SignInName = z.string().trim().toLowerCase().max(120).pipe(z.email());
@@ -60,9 +69,11 @@ export const Settings = z.strictObject({
   version: Version,
 });
 export type Settings = z.infer<typeof Settings>;
-export const ChangeSettings = VersionedCommand.extend(
-  Settings.omit({ version: true }).partial().shape,
-);
+export const ChangeSettings = VersionedCommand.extend({
+  ...Settings.omit({ version: true }).partial().shape,
+  companyName: filledLine(80).optional(),
+  companyPhone: PhoneNumber.optional(),
+});
 
 /** Who is signed in and what every screen needs to know first. */
 export const Me = z.strictObject({

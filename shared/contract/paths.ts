@@ -35,6 +35,7 @@ export const PATHS = {
   removeArea: ['POST', '/api/areas/:areaId/removal'],
   pockets: ['GET', '/api/storms/:stormId/pockets'],
 
+  listTechnicians: ['GET', '/api/technicians'],
   addTechnician: ['POST', '/api/technicians'],
   changeTechnician: ['PATCH', '/api/technicians/:technicianId'],
 
@@ -74,6 +75,7 @@ export const PATHS = {
   changeUser: ['PATCH', '/api/users/:userId'],
   resetPassword: ['POST', '/api/users/:userId/passphrase'],
   audit: ['GET', '/api/storms/:stormId/audit'],
+  officeAudit: ['GET', '/api/audit'],
 } as const satisfies Record<string, readonly ['GET' | 'POST' | 'PATCH' | 'DELETE', string]>;
 
 export type RouteName = keyof typeof PATHS;
