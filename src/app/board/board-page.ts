@@ -5,12 +5,14 @@ import {
   Component,
   computed,
   DestroyRef,
+  effect,
   ElementRef,
   inject,
   Injector,
   input,
   linkedSignal,
   signal,
+  untracked,
   viewChild,
 } from '@angular/core';
 import { Router } from '@angular/router';
@@ -61,6 +63,11 @@ export class BoardPage {
   protected readonly isMapFirst = computed(() => this.wantsMap() || this.pins.wanted() !== null);
 
   constructor() {
+    // After a reload, or from a link, the open call is the selected one in queue and map.
+    effect(() => {
+      const open = this.openCallId();
+      if (open !== null) untracked(() => this.board.selectedCallId.set(open));
+    });
     this.registerKeys();
   }
 

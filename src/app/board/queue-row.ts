@@ -41,13 +41,13 @@ export class QueueRow {
   });
   protected readonly reasons = computed(() => this.urgency()?.reasons ?? []);
 
-  /** The street above, the town and the name below it. */
+  /** The street above, the name and the town below it. */
   protected readonly place = computed(() => {
     const { address, name } = this.call();
     const [street = '', ...rest] = address.text.split(', ');
     return {
       street: address.unitNo ? `${street}, ${address.unitNo}` : street,
-      rest: [...rest, name].join(', '),
+      rest: [name, ...rest].join(', '),
     };
   });
 
