@@ -4,6 +4,7 @@ import type { StopCard, StopDto } from '@shared/contract/routes';
 import { HOUR_MS, MINUTE_MS } from '@shared/domain/instant';
 import { change, select } from '../../server/db/sql';
 import { MessageRecord } from '../../server/texts/message-record';
+import { atOnce } from '../support/at-once';
 import { act, aStop, aTechnician, dayOf, done, stateOf, until } from '../support/routes';
 import { NIGHT, startServer, type TestPerson, type TestServer } from '../support/server';
 
@@ -318,26 +319,27 @@ describe('one technician, two places', () => {
 
   it('accepts once when two windows of one technician press at once', async () => {
     const stop = await aStop(server, mara, theo.technicianId);
-    const replies = await Promise.all(
-      Array.from({ length: 4 }, () => act(theo, 'acceptStop', stop)),
-    );
-    expect(replies.map((reply) => reply.status).sort()).toEqual([200, 409, 409, 409]);
+    const row = { table: 'technicians', id: theo.technicianId } as const;
+    const accept = () => act(theo, 'acceptStop', stop);
+    const replies = await atOnce(server, row, [accept, accept, accept]);
+    expect(replies.map((reply) => reply.status).sort()).toEqual([200, 409, 409]);
   });
 
   it('gives a stop either to the hand that pulls it or to the one that accepts', async () => {
-    for (let round = 0; round < 5; round++) {
+    const row = { table: 'technicians', id: theo.technicianId } as const;
+    const pull = (stop: StopDto) => () => act(mara, 'pullStop', stop, { reason: 'at the desk' });
+    const accept = (stop: StopDto) => () => act(theo, 'acceptStop', stop);
+    const orders = [
+      (stop: StopDto) => [pull(stop), accept(stop)],
+      (stop: StopDto) => [accept(stop), pull(stop)],
+    ];
+    for (const order of orders) {
       const stop = await aStop(server, mara, theo.technicianId);
-      const [pull, accept] = await Promise.all([
-        act(mara, 'pullStop', stop, { reason: 'cancelled at the desk' }),
-        act(theo, 'acceptStop', stop),
-      ]);
-      expect([pull.status, accept.status].sort()).toEqual([200, 409]);
-      const state = await stateOf(server, stop.callId);
-      expect(state).toBe(pull.status === 200 ? 'waiting' : 'accepted');
-      if (accept.status === 200)
-        await done(mara, 'pullStop', (accept.body as { card: StopCard }).card.stop, {
-          reason: 'next round',
-        });
+      const replies = await atOnce(server, row, order(stop));
+      expect(replies.map((reply) => reply.status).sort()).toEqual([200, 409]);
+      const won = replies.find((reply) => reply.status === 200)?.body as { card?: StopCard };
+      expect(await stateOf(server, stop.callId)).toBe(won.card ? 'accepted' : 'waiting');
+      if (won.card) await done(mara, 'pullStop', won.card.stop, { reason: 'next round' });
     }
   });
 });

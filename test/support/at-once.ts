@@ -1,0 +1,50 @@
+import { setTimeout as pause } from 'node:timers/promises';
+import type { Response, Test } from 'supertest';
+import { select } from '../../server/db/sql';
+import type { TestServer } from './server';
+
+/** `innodb_trx` is filled anew ten times a second at most, so asking faster learns nothing. */
+const LOOK_MS = 120;
+
+/**
+ * Lets requests meet for certain: holds the row that they all need, sends them, waits until every one
+ * of them waits for a lock, and lets go.
+ */
+export async function atOnce(
+  server: TestServer,
+  row: { readonly table: 'storms' | 'technicians' | 'calls'; readonly id: string },
+  presses: readonly (() => Test)[],
+): Promise<Response[]> {
+  const tx = await server.sequelize.transaction();
+  try {
+    await select(
+      server.sequelize,
+      `SELECT id FROM ${row.table} WHERE id = ? FOR UPDATE`,
+      [row.id],
+      tx,
+    );
+    // A request is sent when somebody waits for it.
+    const replies = Promise.all(presses.map((press) => press().then((reply) => reply)));
+    const end = Date.now() + 4000;
+    while ((await waiting(server)) < presses.length) {
+      if (Date.now() > end) throw new Error('the requests never met');
+      await pause(LOOK_MS);
+    }
+    await tx.commit();
+    return await replies;
+  } catch (error) {
+    await tx.rollback().catch(() => undefined);
+    throw error;
+  }
+}
+
+/** How many transactions of this test's own database wait for a lock. */
+async function waiting(server: TestServer): Promise<number> {
+  const [row] = await select<{ n: number }>(
+    server.sequelize,
+    `SELECT COUNT(*) AS n FROM information_schema.innodb_trx t
+       JOIN information_schema.processlist p ON p.id = t.trx_mysql_thread_id
+      WHERE t.trx_state = 'LOCK WAIT' AND p.db = DATABASE()`,
+  );
+  return Number(row?.n);
+}
