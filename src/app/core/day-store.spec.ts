@@ -110,6 +110,41 @@ describe('DayStore', () => {
     );
   });
 
+  it('keeps what was taken until it is acknowledged, but not what was only planned', async () => {
+    await open(aDay(aCard(1), aCard(2, { state: 'planned' })));
+    await announce(5, { kind: 'gone', stopId: idOf(3001), reason: 'It runs again.' });
+    await announce(6, { kind: 'gone', stopId: idOf(3002), reason: 'It runs again.' });
+    expect(day.taken().map(({ card }) => card.callNumber)).toEqual([1]);
+    day.acknowledgeTaken();
+    expect(day.taken()).toEqual([]);
+  });
+
+  it('tells of stops that went while it was away too long to be told of each', async () => {
+    await open(aDay(aCard(1), aCard(2)));
+    socket.cut();
+    socket.answer = () => ({ kind: 'start-over' });
+    socket.up();
+    await settled();
+    http.expectOne('/api/me').flush({ me: aMe('technician') });
+    await settled();
+    socket.answer = () => ({ kind: 'changes', changes: [] });
+    http.expectOne('/api/day').flush({ ...aDay(aCard(2)), n: 900 });
+    await settled();
+    expect(day.taken().map(({ card }) => card.callNumber)).toEqual([1]);
+  });
+
+  it('says nothing of a stop that this technician ended, in whichever order the news come', async () => {
+    await open(aDay(aCard(1), aCard(2)));
+    day.endsByMe(idOf(3001));
+    await announce(5, { kind: 'gone', stopId: idOf(3001), reason: 'Finished: cooling restored' });
+    day.endsByMe(idOf(3002));
+    day.takeReply(aCard(2, { state: 'done', version: 2 }));
+    await announce(6, { kind: 'gone', stopId: idOf(3002), reason: 'Finished: cooling restored' });
+    expect(notice).not.toHaveBeenCalled();
+    expect(day.taken()).toEqual([]);
+    expect(day.ahead()).toEqual([]);
+  });
+
   it('never shows an older stop over a newer one, from a reply or from an announcement', async () => {
     await open(aDay(aCard(1, { version: 3, state: 'travelling' })));
     day.takeReply(aCard(1, { version: 2, state: 'accepted' }));

@@ -8,6 +8,12 @@ import { type FeedPlace, OrderedFeed } from './ordered-feed';
 import { ProblemError } from './problem-error';
 import { Session } from './session';
 
+/** A stop that somebody else took off the route. */
+export interface TakenStop {
+  readonly card: StopCard;
+  readonly reason: string;
+}
+
 /** A technician's own stops, kept current in the same way as the boards. */
 @Injectable({ providedIn: 'root' })
 export class DayStore {
@@ -19,6 +25,9 @@ export class DayStore {
   private readonly day = signal<TechnicianDay | null>(null);
   private readonly isCurrent = signal(false);
   private readonly trouble = signal<ProblemError | null>(null);
+  private readonly takenNow = signal<readonly TakenStop[]>([]);
+  /** Stops that this technician ends: that they go is no news here. */
+  private readonly ownEnds = new Set<string>();
   private feed: OrderedFeed<DayChange> | null = null;
   private unsubscribe: (() => void)[] = [];
 
@@ -28,6 +37,8 @@ export class DayStore {
   });
   readonly isLoaded = computed(() => this.day() !== null);
   readonly problem = this.trouble.asReadonly();
+  /** Offered or accepted, then taken off by others, and not yet acknowledged; the latest last. */
+  readonly taken = this.takenNow.asReadonly();
   readonly stormId = computed(() => this.day()?.stormId ?? null);
   readonly technician = computed(() => this.day()?.technician ?? null);
 
@@ -82,6 +93,8 @@ export class DayStore {
     this.day.set(null);
     this.isCurrent.set(false);
     this.trouble.set(null);
+    this.takenNow.set([]);
+    this.ownEnds.clear();
   }
 
   /** Shows the answer to one's own action at once; its announcement may come later, or has come. */
@@ -89,6 +102,15 @@ export class DayStore {
     const known = this.day()?.stops.find((c) => c.stop.id === card.stop.id);
     if (known && known.stop.version >= card.stop.version) return;
     this.day.update((day) => day && withCard(day, card));
+  }
+
+  /** This technician finishes or declines the stop; its end may be announced before the answer. */
+  endsByMe(stopId: string): void {
+    this.ownEnds.add(stopId);
+  }
+
+  acknowledgeTaken(): void {
+    this.takenNow.set([]);
   }
 
   reload(): void {
@@ -99,6 +121,12 @@ export class DayStore {
     if (this.day()) await this.session.refresh();
     const day = await this.api.call('technicianDay');
     if (!this.feed) return null;
+    const stays = new Set(day.stops.map((card) => card.stop.id));
+    for (const card of this.ahead()) {
+      if (!stays.has(card.stop.id) && !this.ownEnds.has(card.stop.id)) {
+        this.tellTaken(card, 'It went while this phone had no connection.');
+      }
+    }
     this.day.set(day);
     this.trouble.set(null);
     return day.stormId === null ? null : { stormId: day.stormId, n: day.n };
@@ -116,10 +144,19 @@ export class DayStore {
     this.day.set(day);
   }
 
+  /** What was only planned was no promise yet. */
+  private tellTaken(card: StopCard, reason: string): void {
+    if (card.stop.state === 'planned') return;
+    this.takenNow.update((taken) => [...taken, { card, reason }]);
+  }
+
   private without(day: TechnicianDay, stopId: string, reason: string): TechnicianDay {
     const gone = day.stops.find((card) => card.stop.id === stopId);
-    if (!gone) return day;
-    this.announce.notice(`${gone.name}, ${gone.address.text}: taken off your route. ${reason}`);
+    if (!gone || gone.stop.state === 'done') return day;
+    if (!this.ownEnds.has(stopId)) {
+      this.tellTaken(gone, reason);
+      this.announce.notice(`${gone.name}, ${gone.address.text}: taken off your route. ${reason}`);
+    }
     return { ...day, stops: day.stops.filter((card) => card !== gone) };
   }
 }
