@@ -2,6 +2,7 @@ import type { Logger } from 'pino';
 import type { Sequelize } from 'sequelize';
 import type { Instant } from '@shared/domain/instant';
 import type { Config } from './config';
+import type { LogReaderPort } from './night-log/log-reader';
 import type { Live } from './realtime/live';
 import type { RegionInUse } from './region/region-in-use';
 import type { PlannerPort, PocketsPort } from './workers/ports';
@@ -17,6 +18,7 @@ export interface Context {
   readonly region: RegionInUse;
   readonly planner: PlannerPort;
   readonly pockets: PocketsPort;
+  readonly logReader: LogReaderPort;
   /** Tells the outbox worker that a text is waiting, so that it need not poll fast. */
   readonly wakeOutbox: () => void;
 }

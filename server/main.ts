@@ -5,6 +5,9 @@ import { EXIT_CONFIG, InvalidConfig, readConfig, type Config } from './config';
 import { connect } from './db/connect';
 import { migrate } from './db/migrate';
 import { seedDemo } from './demo/seed-demo';
+import { createLogReader } from './night-log/log-reader';
+import { resumeImports } from './night-log/import-log';
+import { machine } from './commands/actor';
 import { ensureDemoRegion, listRegions } from './region/demo-region';
 import { openRegion } from './region/open-region';
 import { readAddressBook } from './region/region-data';
@@ -43,6 +46,9 @@ async function main(): Promise<void> {
   const pockets = createPocketsWorker(path.join(__dirname, 'pockets-worker.js'), {
     onCrash: (error) => log.error({ err: error }, 'the pocket maker crashed'),
   });
+  const logReader = createLogReader(path.join(__dirname, 'import-worker.js'), {
+    onCrash: (error) => log.error({ err: error }, 'the log reader crashed'),
+  });
   const outbox = { wake: () => undefined as void };
   const app = await createApp({
     config,
@@ -52,12 +58,15 @@ async function main(): Promise<void> {
     region: await openRegion(imported),
     planner,
     pockets,
+    logReader,
     wakeOutbox: () => outbox.wake(),
   });
   if (config.isDemo)
     await seedDemo(app.context, (await readAddressBook(imported.folder)).addresses);
   const worker = startOutbox(app.context);
   outbox.wake = () => worker.wake();
+
+  void resumeImports(app.context, machine('Night log'));
 
   app.http.on('error', (error: NodeJS.ErrnoException) => {
     log.fatal(
@@ -78,7 +87,7 @@ async function main(): Promise<void> {
     setTimeout(() => process.exit(1), DRAIN_MS).unref();
     await worker.stop();
     await app.close();
-    await Promise.all([planner.close(), pockets.close()]);
+    await Promise.all([planner.close(), pockets.close(), logReader.close()]);
     await sequelize.close();
     process.exit(0);
   };

@@ -6,7 +6,7 @@ import type { Job } from '../commands/run-command';
 import { isDuplicateOf } from '../db/sql';
 import type { CallRecord } from './call-record';
 import { lockCall, refuseIfClaimedByAnother, saveCall } from './change-call';
-import { keepHousehold } from './households';
+import { keepHouseholds } from './households';
 import { storeUnits, windClocks } from './store-units';
 import { refuseImpossibleTimes } from './take-call';
 
@@ -34,15 +34,11 @@ export async function amendCall(job: Job, callId: string, told: AmendCall): Prom
       lat: told.address.lonLat?.[1] ?? null,
       addressKind: told.address.kind,
     });
-  if (call.phone !== null)
-    call.householdId = (
-      await keepHousehold(job, call.phone, {
-        name: call.name,
-        address: call.address(),
-        language: call.language,
-        mayText: call.mayText,
-      })
-    ).id;
+  if (call.phone !== null) {
+    const { phone, name, language, mayText } = call;
+    const told = [{ phone, name, address: call.address(), language, mayText }];
+    call.householdId = (await keepHouseholds(job, told, 'person')).get(phone) ?? null;
+  }
   const timesMoved = await setTimes(job, call, told);
 
   await save(job, call);

@@ -12,29 +12,41 @@ export async function storeUnits(
   units: readonly UnitFacts[],
 ): Promise<void> {
   await removeUnits(job, call.id);
+  await storeNewUnits(job, [{ call, units }]);
+}
+
+/** Writes the units of calls that have none yet. */
+export async function storeNewUnits(
+  job: Job,
+  calls: readonly { readonly call: CallRecord; readonly units: readonly UnitFacts[] }[],
+): Promise<void> {
   await ColdUnitRecord.bulkCreate(
-    units.map((unit, placeNo) => ({
-      id: unit.id,
-      callId: call.id,
-      placeNo,
-      kind: unit.kind,
-      compressorStart: unit.compressorStart,
-      ageYears: unit.ageYears,
-      cubicFeet: unit.cubicFeet,
-      place: unit.place,
-    })),
+    calls.flatMap(({ call, units }) =>
+      units.map((unit, placeNo) => ({
+        id: unit.id,
+        callId: call.id,
+        placeNo,
+        kind: unit.kind,
+        compressorStart: unit.compressorStart,
+        ageYears: unit.ageYears,
+        cubicFeet: unit.cubicFeet,
+        place: unit.place,
+      })),
+    ),
     { transaction: job.tx },
   );
   await CompartmentRecord.bulkCreate(
-    units.flatMap((unit) =>
-      unit.compartments.map((facts, placeNo) => ({
-        unitId: unit.id,
-        placeNo,
-        kind: facts.kind,
-        facts,
-        valueCents: facts.valueCents,
-        ...clockOf(call, facts),
-      })),
+    calls.flatMap(({ call, units }) =>
+      units.flatMap((unit) =>
+        unit.compartments.map((facts, placeNo) => ({
+          unitId: unit.id,
+          placeNo,
+          kind: facts.kind,
+          facts,
+          valueCents: facts.valueCents,
+          ...clockOf(call, facts),
+        })),
+      ),
     ),
     { transaction: job.tx },
   );

@@ -1,17 +1,20 @@
 import type { TakeCall } from '@shared/contract/calls';
 import { Refusal } from '@shared/domain/errors';
 import { HOUR_MS, type Instant } from '@shared/domain/instant';
-import { areaAround } from '../areas/area-of';
-import { isDuplicateOf } from '../db/sql';
+import { isInRing } from '@shared/domain/point-in-ring';
+import { lastBack } from '../areas/area-of';
+import { AreaRecord } from '../areas/area-record';
+import { insert, isDuplicateOf } from '../db/sql';
 import type { Job } from '../commands/run-command';
 import { readSettings } from '../office/settings';
 import { lockOpenStorm } from '../storms/storm-queries';
+import type { StormRecord } from '../storms/storm-record';
 import { tellCallReceived } from '../texts/tell-customer';
 import { CallRecord } from './call-record';
 import { callRows } from './call-rows';
-import { claim, writeHistory, writeRemark } from './change-call';
-import { keepHousehold } from './households';
-import { storeUnits } from './store-units';
+import { claim } from './change-call';
+import { keepHouseholds } from './households';
+import { storeNewUnits } from './store-units';
 
 /** A clock on the caller's desk may run ahead of ours by this much. */
 const CLOCK_SLACK_MS = 5 * 60_000;
@@ -22,29 +25,100 @@ export interface CallToTake extends Omit<TakeCall, 'commandId' | 'phone'> {
   readonly phone: string | null;
   readonly receivedAt: Instant;
   readonly source: CallRecord['source'];
+  /** `false` keeps the number without recognising a household by it. */
+  readonly isHousehold?: boolean;
 }
 
 /**
- * Takes one call into an open storm. Whoever took it by phone holds the claim.
+ * Takes one call by phone. Whoever takes it holds the claim, and the customer is told.
  *
  * @throws Refusal `household-has-open-call` with that call's row: the same household is one call
  */
 export async function takeCall(job: Job, stormId: string, told: CallToTake): Promise<CallRecord> {
-  refuseImpossibleTimes(told, job.now);
+  const [call] = await takeCalls(job, stormId, [told]);
+  if (!call) throw new Error('a call was told and none was taken');
+  if (job.actor.userId !== null) {
+    const { claimMinutes } = await readSettings(job.sequelize, job.tx);
+    claim(job, call, claimMinutes);
+    await call.save({ transaction: job.tx });
+  }
+  if (call.mayText) await tellCallReceived(job, call);
+  return call;
+}
+
+/**
+ * Takes calls into an open storm, all or none: one phone call, or a piece of a night log. Each gets
+ * its number, its household, the outage area around it, and its clocks.
+ *
+ * @throws Refusal `household-has-open-call` with the open call's row
+ */
+export async function takeCalls(
+  job: Job,
+  stormId: string,
+  told: readonly CallToTake[],
+): Promise<CallRecord[]> {
+  for (const one of told) refuseImpossibleTimes(one, job.now);
   const storm = await lockOpenStorm(stormId, job.tx);
   job.inStorm(storm.id);
-  const household = told.phone === null ? null : await keepHousehold(job, told.phone, told);
-  const area = told.address.lonLat && (await areaAround(job.tx, stormId, told.address.lonLat));
-  const followsArea = told.timesFrom === 'area' && area !== null;
+  const areas = (await AreaRecord.findAll({ where: { stormId }, transaction: job.tx })).map(
+    (area) => ({ area, ring: area.outline() }),
+  );
+  const households = await householdsOf(job, told);
 
-  storm.callsTaken += 1;
+  const calls = told.map((one) => {
+    const { lonLat } = one.address;
+    const area =
+      lonLat &&
+      lastBack(areas.filter(({ ring }) => isInRing(lonLat, ring)).map((inside) => inside.area));
+    storm.callsTaken += 1;
+    const householdId =
+      one.isHousehold === false ? null : (households.get(one.phone ?? '') ?? null);
+    return CallRecord.build(callFacts(one, storm, area, householdId));
+  });
   await storm.save({ transaction: job.tx });
-  const call = CallRecord.build({
+  await insertCalls(job, calls);
+  await storeNewUnits(
+    job,
+    calls.map((call, i) => ({ call, units: told[i]?.units ?? [] })),
+  );
+  await writeBeginnings(job, calls, told);
+  for (const call of calls) {
+    job.touched.call(call.id);
+    job.note('call', call.id, `took call ${String(call.number)}`);
+  }
+  return calls;
+}
+
+/** Phone calls replace what is known of a household; a log does not. */
+async function householdsOf(job: Job, told: readonly CallToTake[]): Promise<Map<string, string>> {
+  const found = new Map<string, string>();
+  for (const source of ['person', 'log'] as const) {
+    const theirs = told.flatMap((one) =>
+      one.phone !== null &&
+      one.isHousehold !== false &&
+      (one.source === 'night-log') === (source === 'log')
+        ? [{ ...one, phone: one.phone }]
+        : [],
+    );
+    for (const [phone, id] of await keepHouseholds(job, theirs, source)) found.set(phone, id);
+  }
+  return found;
+}
+
+function callFacts(
+  told: CallToTake,
+  storm: StormRecord,
+  area: AreaRecord | null,
+  householdId: string | null,
+) {
+  const follows = told.timesFrom === 'area' && area !== null;
+  const toldBackAt = told.powerBackAt === null ? null : new Date(told.powerBackAt);
+  return {
     id: told.callId,
-    stormId,
+    stormId: storm.id,
     number: storm.callsTaken,
-    householdId: household?.id ?? null,
-    state: 'new',
+    householdId,
+    state: 'new' as const,
     receivedAt: new Date(told.receivedAt),
     name: told.name,
     phone: told.phone,
@@ -54,12 +128,8 @@ export async function takeCall(job: Job, stormId: string, told: CallToTake): Pro
     lat: told.address.lonLat?.[1] ?? null,
     addressKind: told.address.kind,
     areaId: area?.id ?? null,
-    powerOutAt: followsArea ? area.outAt : new Date(told.powerOutAt),
-    powerBackAt: followsArea
-      ? area.backAt
-      : told.powerBackAt === null
-        ? null
-        : new Date(told.powerBackAt),
+    powerOutAt: follows ? area.outAt : new Date(told.powerOutAt),
+    powerBackAt: follows ? area.backAt : toldBackAt,
     timesFrom: told.timesFrom,
     language: told.language,
     mayText: told.mayText,
@@ -69,26 +139,24 @@ export async function takeCall(job: Job, stormId: string, told: CallToTake): Pro
     skills: [],
     parts: [],
     causes: [],
-  });
-  if (told.source === 'phone')
-    claim(job, call, (await readSettings(job.sequelize, job.tx)).claimMinutes);
-  await insertCall(job, call);
-  await storeUnits(job, call, told.units);
-  await writeHistory(job, call, null, told.source === 'phone' ? 'rang' : 'from the night log');
-  if (told.remark !== '') await writeRemark(job, call.id, told.remark);
-  if (told.source === 'phone' && call.mayText) await tellCallReceived(job, call);
-  job.touched.call(call.id);
-  job.note('call', call.id, `took call ${String(call.number)}`);
-  return call;
+  };
 }
 
-async function insertCall(job: Job, call: CallRecord): Promise<void> {
+async function insertCalls(job: Job, calls: readonly CallRecord[]): Promise<void> {
   try {
-    await call.save({ transaction: job.tx });
+    await CallRecord.bulkCreate(
+      calls.map((call) => call.get({ plain: true })),
+      { transaction: job.tx },
+    );
+    for (const call of calls) call.isNewRecord = false;
   } catch (error) {
     if (!isDuplicateOf(error, 'one_open_call')) throw error;
     const open = await CallRecord.findOne({
-      where: { stormId: call.stormId, householdId: call.householdId, settledAt: null },
+      where: {
+        stormId: calls[0]?.stormId ?? '',
+        householdId: calls.flatMap((call) => call.householdId ?? []),
+        settledAt: null,
+      },
       transaction: job.tx,
     });
     const [current] = open
@@ -100,6 +168,44 @@ async function insertCall(job: Job, call: CallRecord): Promise<void> {
       current,
     );
   }
+}
+
+/** The first line of each call's history, and its remark. */
+async function writeBeginnings(
+  job: Job,
+  calls: readonly CallRecord[],
+  told: readonly CallToTake[],
+): Promise<void> {
+  const { userId, name } = job.actor;
+  await insert(
+    job.sequelize,
+    `INSERT INTO call_changes (call_id, n, at, from_state, to_state, user_id, actor, reason)
+     VALUES ?`,
+    [
+      calls.map((call) => [
+        call.id,
+        1,
+        job.at,
+        null,
+        call.state,
+        userId,
+        name,
+        call.source === 'phone' ? 'rang' : 'from the night log',
+      ]),
+    ],
+    job.tx,
+  );
+  const remarks = calls.flatMap((call, i) => {
+    const text = told[i]?.remark ?? '';
+    return text === '' ? [] : [[call.id, job.at, userId, name, text]];
+  });
+  if (remarks.length > 0)
+    await insert(
+      job.sequelize,
+      'INSERT INTO remarks (call_id, at, user_id, actor, text) VALUES ?',
+      [remarks],
+      job.tx,
+    );
 }
 
 /** @throws Refusal `times-disagree` */

@@ -182,9 +182,7 @@ async function seedStorm(
 
   for (const call of calls) {
     await give(call.receivedAt, 'takeCall', async (job) => {
-      const taken = await takeCall(job, stormId, call);
-      taken.set({ claimUserId: null, claimUntil: null });
-      await taken.save({ transaction: job.tx });
+      await takeCall(job, stormId, call);
     });
     const fate = chance.next();
     if (fate > SETTLED_BY_PHONE + WAITING * (1 - SETTLED_BY_PHONE)) continue;

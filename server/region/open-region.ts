@@ -3,12 +3,14 @@ import type { AddressSuggestion } from '@shared/contract/calls';
 import type { AddressSuggestion as Found } from '@shared/domain/address/address-suggestion';
 import { ACCEPT_CONFIDENCE } from '@shared/domain/address/address-suggestion';
 import { AddressIndex } from './address-index';
+import { readAddressBook } from './region-data';
 import type { ImportedRegion } from './import-region';
 import type { RegionInUse } from './region-in-use';
 
 /** Loads an imported region's address book, and says where its tiles are. */
 export async function openRegion({ manifest, folder }: ImportedRegion): Promise<RegionInUse> {
-  const index = await AddressIndex.open(folder);
+  const book = await readAddressBook(folder);
+  const index = new AddressIndex(book);
   const tiles = `/tiles/${manifest.id}-${manifest.hash}`;
   const dto: RegionDto = {
     id: manifest.id,
@@ -24,6 +26,7 @@ export async function openRegion({ manifest, folder }: ImportedRegion): Promise<
   };
   return {
     dto,
+    cities: [...new Set(book.addresses.map(({ city }) => city))],
     suggest: (text, near) =>
       index.suggest(text, { ...(near ? { near } : {}), limit: 8 }).map(toSuggestion),
     locate: (text) => {

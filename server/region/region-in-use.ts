@@ -5,6 +5,8 @@ import type { LonLat } from '@shared/contract/common';
 /** The region that the application works in: its map, its zone and its addresses. */
 export interface RegionInUse {
   readonly dto: RegionDto;
+  /** Names of its towns, so that a written address can be cut where its town begins. */
+  readonly cities: readonly string[];
   /** Suggestions for what a call taker has typed so far, likeliest first. */
   suggest(text: string, near: LonLat | null): AddressSuggestion[];
   /** The one address that a written line means, or `null` when that is not sure enough. */

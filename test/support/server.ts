@@ -95,6 +95,7 @@ export async function startServer(
     region: TEST_REGION,
     planner: unused,
     pockets: unused,
+    logReader: unused,
     wakeOutbox: () => undefined,
     ...options.context,
   });
