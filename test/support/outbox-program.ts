@@ -1,6 +1,5 @@
 import { pino } from 'pino';
 import { z } from 'zod';
-import type { Config } from '../../server/config';
 import type { Context } from '../../server/context';
 import { connect } from '../../server/db/connect';
 import { SILENT } from '../../server/realtime/live';
@@ -50,18 +49,15 @@ const clock = (): number => {
   return Date.now() + told.clockOffsetMs;
 };
 
-const unused = { run: () => Promise.reject(new Error('not here')) };
-const context: Context = {
-  // The outbox reads only the texts' part of it, and that is given by the sender.
-  config: { environment: 'test' } as Config,
+// Only what the outbox reaches; the texts' configuration is in the sender.
+const context = {
+  config: { environment: 'test' },
   sequelize: connect(told.database),
   log: pino({ level: 'error' }, pino.destination(2)),
   clock,
   live: SILENT,
   region: TEST_REGION,
-  planner: unused,
-  pockets: unused,
   wakeOutbox: () => undefined,
-};
+} as unknown as Context;
 startOutbox(context, { sender, leaseMs: told.leaseMs, pollMs: 50, roll: () => 0 });
 say('ready');

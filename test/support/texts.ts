@@ -36,7 +36,7 @@ export interface TextLab {
   /** Starts a worker of the outbox in this process; `wake` of the server reaches the newest. */
   work(options?: OutboxOptions): Outbox;
   sender(timeoutMs?: number): TextSender;
-  /** What the service took, oldest first. */
+  /** What the service took since the last reset, oldest first. */
   accepted(): Extract<JournalEntry, { kind: 'accepted' }>[];
   /** Posts a webhook to the public address; the signature is right unless one is given. */
   post(to: string, fields: Record<string, string>, signature?: string): Promise<Response>;
@@ -60,6 +60,7 @@ export async function startTextLab(suffix: string): Promise<TextLab> {
   });
   const workers: Outbox[] = [];
   let offsetMs = 0;
+  let journalFrom = 0;
   const setNow = (now: Instant): void => {
     offsetMs = now - Date.now();
   };
@@ -90,6 +91,7 @@ export async function startTextLab(suffix: string): Promise<TextLab> {
       await server.reset();
       setNow(AFTERNOON);
       fake.setFaults({});
+      journalFrom = fake.journal().length;
     },
     sender,
     work: (options = {}) => {
@@ -112,8 +114,8 @@ export async function startTextLab(suffix: string): Promise<TextLab> {
     accepted: () =>
       fake
         .journal()
-        .filter((entry) => entry.kind === 'accepted')
-        .map((entry) => entry as Extract<JournalEntry, { kind: 'accepted' }>),
+        .slice(journalFrom)
+        .filter((entry) => entry.kind === 'accepted'),
     post: (to, fields, signature) => {
       const url = `${proxy.url}/webhooks/texts/${to}`;
       return fetch(url, {
