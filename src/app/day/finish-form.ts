@@ -1,0 +1,196 @@
+import {
+  afterNextRender,
+  ChangeDetectionStrategy,
+  Component,
+  computed,
+  effect,
+  ElementRef,
+  inject,
+  input,
+  output,
+  signal,
+  untracked,
+  viewChild,
+} from '@angular/core';
+import type { StopCard, TechnicianDto } from '@shared/contract/routes';
+import { VISIT_OUTCOMES, type VisitOutcome } from '@shared/domain/call-state';
+import { type Part, PARTS } from '@shared/domain/skills';
+import { PART_WORDS } from '../board/part-words';
+import { Drafts } from '../core/drafts';
+import { formDraftKey } from './day-orders';
+import { OUTCOME_CHOICES } from './day-words';
+
+export interface FinishAnswer {
+  readonly outcome: VisitOutcome;
+  readonly note: string;
+  readonly partsUsed: Part[];
+}
+
+type Used = Readonly<Partial<Record<Part, number>>>;
+
+/** The contract's own bound on parts of one visit. */
+const MOST_PARTS = 20;
+
+/** Ends the visit: what came of it, in plain words, and what it took from the van. */
+@Component({
+  selector: 'thaw-finish-form',
+  template: `
+    <form (submit)="$event.preventDefault(); submit()" novalidate>
+      <h1 #title tabindex="-1">Finish call {{ card().callNumber }}</h1>
+      <fieldset>
+        <legend>What came of it?</legend>
+        @for (one of outcomes; track one.outcome) {
+          <label class="choice" [class.chosen]="outcome() === one.outcome">
+            <input
+              type="radio"
+              name="outcome"
+              [checked]="outcome() === one.outcome"
+              (change)="outcome.set(one.outcome)"
+            />
+            <span
+              >{{ one.label }} <span class="soft">{{ one.means }}</span></span
+            >
+          </label>
+        }
+      </fieldset>
+      <label class="field">
+        What you found and did
+        <textarea
+          #field
+          rows="3"
+          maxlength="2000"
+          [value]="note()"
+          (input)="note.set(field.value)"
+        ></textarea>
+      </label>
+      @if (parts().length > 0) {
+        <fieldset>
+          <legend>Parts used from the van</legend>
+          @for (part of parts(); track part) {
+            <div class="part">
+              <span class="what"
+                >{{ words[part] }}
+                <span class="soft">{{ technician().van[part] ?? 0 }} on the van</span></span
+              >
+              <button
+                type="button"
+                [attr.aria-label]="'One ' + words[part] + ' less'"
+                [disabled]="(used()[part] ?? 0) === 0"
+                (click)="count(part, -1)"
+              >
+                <span aria-hidden="true">−</span>
+              </button>
+              <output [attr.aria-label]="words[part] + ' used'">{{ used()[part] ?? 0 }}</output>
+              <button
+                type="button"
+                [attr.aria-label]="'One ' + words[part] + ' more'"
+                [disabled]="total() >= mostParts"
+                (click)="count(part, 1)"
+              >
+                <span aria-hidden="true">+</span>
+              </button>
+            </div>
+          }
+        </fieldset>
+      }
+      @if (wrong()) {
+        <p class="wrong" role="alert">{{ wrong() }}</p>
+      }
+      <div class="bar">
+        <button type="button" class="second" (click)="closed.emit()">Back</button>
+        <button type="submit" class="first" [disabled]="isBusy()">{{ submitWords() }}</button>
+      </div>
+    </form>
+  `,
+  styleUrl: './day-form.scss',
+  changeDetection: ChangeDetectionStrategy.OnPush,
+})
+export class FinishForm {
+  private readonly drafts = inject(Drafts);
+
+  readonly card = input.required<StopCard>();
+  readonly technician = input.required<TechnicianDto>();
+  readonly isBusy = input(false);
+  readonly answered = output<FinishAnswer>();
+  readonly closed = output();
+
+  protected readonly outcomes = OUTCOME_CHOICES;
+  protected readonly words = PART_WORDS;
+  protected readonly mostParts = MOST_PARTS;
+  protected readonly outcome = signal<VisitOutcome | null>(null);
+  protected readonly note = signal('');
+  protected readonly used = signal<Used>({});
+  protected readonly wrong = signal('');
+  private readonly title = viewChild.required<ElementRef<HTMLElement>>('title');
+
+  /** What the van carries, and what this call was thought to need though the van has none. */
+  protected readonly parts = computed(() =>
+    PARTS.filter(
+      (part) => (this.technician().van[part] ?? 0) > 0 || this.card().parts.includes(part),
+    ),
+  );
+  protected readonly total = computed(() =>
+    Object.values(this.used()).reduce((sum, count) => sum + count, 0),
+  );
+  protected readonly submitWords = computed(() => {
+    const chosen = OUTCOME_CHOICES.find(({ outcome }) => outcome === this.outcome());
+    return chosen ? `Finish: ${chosen.label.toLowerCase()}` : 'Finish';
+  });
+
+  constructor() {
+    let isRestored = false;
+    effect(() => {
+      const key = formDraftKey('finish', this.card().stop.id);
+      if (!isRestored) {
+        isRestored = true;
+        untracked(() => this.restore(key));
+        return;
+      }
+      this.drafts.save(key, { outcome: this.outcome(), note: this.note(), used: this.used() });
+    });
+    afterNextRender(() => this.title().nativeElement.focus());
+  }
+
+  protected count(part: Part, step: number): void {
+    this.used.update((used) => ({ ...used, [part]: Math.max(0, (used[part] ?? 0) + step) }));
+  }
+
+  protected submit(): void {
+    const outcome = this.outcome();
+    if (outcome === null) {
+      this.wrong.set('Choose what came of it first.');
+      return;
+    }
+    const used = this.used();
+    this.answered.emit({
+      outcome,
+      note: this.note().trim(),
+      partsUsed: PARTS.flatMap((part) => Array<Part>(used[part] ?? 0).fill(part)),
+    });
+  }
+
+  private restore(key: string): void {
+    const draft = this.drafts.load(key, isDraft);
+    if (!draft) return;
+    this.outcome.set(draft.outcome);
+    this.note.set(draft.note);
+    this.used.set(draft.used);
+  }
+}
+
+interface Draft {
+  readonly outcome: VisitOutcome | null;
+  readonly note: string;
+  readonly used: Used;
+}
+
+const isDraft = (value: unknown): value is Draft =>
+  typeof value === 'object' &&
+  value !== null &&
+  'note' in value &&
+  typeof value.note === 'string' &&
+  'outcome' in value &&
+  (value.outcome === null || (VISIT_OUTCOMES as readonly unknown[]).includes(value.outcome)) &&
+  'used' in value &&
+  typeof value.used === 'object' &&
+  value.used !== null;
