@@ -143,6 +143,7 @@ async function takePiece(
   job.inStorm(log.stormId);
   const open = await openCallsByPhone(
     job,
+    log.id,
     log.stormId,
     fresh.flatMap(({ call }) => call.phone?.e164 ?? []),
   );
@@ -165,7 +166,8 @@ async function takePiece(
     // The same number with an open call at another address: both are kept, and kept apart.
     const isHousehold = told.phone !== null && !open.has(told.phone);
     taken.push({ ...told, isHousehold });
-    if (told.phone !== null) open.set(told.phone, { id: told.callId, text: told.address.text });
+    if (isHousehold && told.phone !== null)
+      open.set(told.phone, { id: told.callId, text: told.address.text, isOfThisLog: true });
     mark(fates, household, known, (i) => ({
       outcome: i === 0 ? 'call' : 'folded',
       reason: household.rows[i]?.reason ?? '',
@@ -197,28 +199,50 @@ function mark(
   });
 }
 
-type OpenCalls = Map<string, { readonly id: string; readonly text: string }>;
+/** Open calls by the phone of their household. */
+type OpenCalls = Map<
+  string,
+  { readonly id: string; readonly text: string; readonly isOfThisLog: boolean }
+>;
 
 async function openCallsByPhone(
   job: Job,
+  logId: string,
   stormId: string,
   phones: readonly string[],
 ): Promise<OpenCalls> {
   if (phones.length === 0) return new Map();
-  const rows = await select<{ id: string; phone: string; address_text: string }>(
+  const rows = await select<{
+    id: string;
+    phone: string;
+    address_text: string;
+    of_this_log: number;
+  }>(
     job.sequelize,
-    `SELECT c.id, h.phone, c.address_text FROM households h
+    `SELECT c.id, h.phone, c.address_text,
+            EXISTS (SELECT 1 FROM night_log_rows r
+                     WHERE r.call_id = c.id AND r.log_id = ?) AS of_this_log
+       FROM households h
        JOIN calls c ON c.open_household = h.id AND c.storm_id = ? WHERE h.phone IN (?)`,
-    [stormId, phones],
+    [logId, stormId, phones],
     job.tx,
   );
-  return new Map(rows.map(({ id, phone, address_text }) => [phone, { id, text: address_text }]));
+  return new Map(
+    rows.map(({ id, phone, address_text, of_this_log }) => [
+      phone,
+      { id, text: address_text, isOfThisLog: Boolean(of_this_log) },
+    ]),
+  );
 }
 
-/** The open call of the same phone, unless the two name different houses. */
+/**
+ * The open call of the same phone, unless the two name different houses. Rows of one log have been
+ * compared with each other already, and better: by name, house and apartment.
+ */
 function matching(open: OpenCalls, told: CallToTake, call: NightCall): string | undefined {
   const there = told.phone === null ? undefined : open.get(told.phone);
-  if (!there || !call.address) return there?.id;
+  if (!there || there.isOfThisLog) return undefined;
+  if (!call.address) return there.id;
   const houseOf = (text: string): string =>
     text
       .toLowerCase()
