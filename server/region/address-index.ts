@@ -4,7 +4,7 @@ import { NameGrams } from '@shared/domain/address/name-grams';
 import { parseAddress, type ParsedAddress } from '@shared/domain/address/parse-address';
 import { namesCost, streetCost, wordCost, type Query } from '@shared/domain/address/street-score';
 import { isDirection, isType, postalStreet } from '@shared/domain/address/street-words';
-import type { AddressBook, AddressPoint, PlaceName, StreetCorner } from './address-points';
+import type { AddressBook, PlaceName, StreetCorner } from './address-points';
 import type { LonLat } from './osm-extract';
 import { readAddressBook } from './region-data';
 import { matchNumber, streetEntries, wordsOf, type StreetEntry } from './street-book';
@@ -351,5 +351,3 @@ function lineOf(
     .filter((part) => part)
     .join(', ');
 }
-
-export type { AddressPoint };

@@ -1,12 +1,13 @@
 import { deflateSync } from 'node:zlib';
 import { join } from 'node:path';
 import { PbfWriter } from 'pbf';
+import type { OsmData, OsmNode } from '../../server/region/osm-model';
 import { readOsmPbf, type OsmVisitor } from '../../server/region/osm-pbf';
 import { writeOsmPbf } from '../../server/region/osm-pbf-writer';
 import { UnreadableRegion } from '../../server/region/unreadable-region';
 import { readAll } from '../support/region-files';
 
-const SMALL = {
+const SMALL: OsmData = {
   nodes: [
     { id: 7, lon: -47.6999999, lat: 36.4, tags: {} },
     { id: 3, lon: -47.7, lat: 36.4000001, tags: { place: 'town', name: 'Sedgehölm' } },
@@ -19,8 +20,8 @@ const SMALL = {
     {
       id: 9,
       members: [
-        { type: 'way' as const, ref: 4, role: 'outer' },
-        { type: 'node' as const, ref: 3, role: '' },
+        { type: 'way', ref: 4, role: 'outer' },
+        { type: 'node', ref: 3, role: '' },
       ],
       tags: { type: 'multipolygon' },
     },
@@ -103,7 +104,7 @@ describe('readOsmPbf', () => {
   });
 
   it('reads more than one block of each kind', async () => {
-    const nodes = Array.from({ length: 20_001 }, (_, i) => ({
+    const nodes = Array.from({ length: 20_001 }, (_, i): OsmNode => ({
       id: i + 1,
       lon: i / 1e5,
       lat: -i / 1e5,

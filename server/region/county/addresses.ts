@@ -1,6 +1,6 @@
 import { chanceOf } from './chance';
 import { between, distance, isInside, type Point } from './plane';
-import { StreetSpace, type StreetLine, type StreetPart } from './street-line';
+import { type StreetSpace, type StreetLine, type StreetPart } from './street-line';
 import type { Terrain } from './terrain';
 import type { Town } from './towns';
 
@@ -98,7 +98,7 @@ export function houseAddresses(
           if (built.nearest(at, 55, (street) => street === line.street) === null) continue;
           const measure = numbers[i - 1]! + (numbers[i]! - numbers[i - 1]!) * share;
           const number = 2 * floor(measure / 2) + (side > 0 ? 1 : 2);
-          const town = isTown ? towns[line.town!]! : postTown(towns, at);
+          const town = isTown ? towns[line.town]! : postTown(towns, at);
           const streetName = nameOf(line.street);
           const key = `${number} ${streetName} ${town.index}`;
           if (number < 1 || taken.has(key) || !doors.take(at)) continue;

@@ -19,11 +19,6 @@ export const toLonLat = ([x, y]: Point): [lon: number, lat: number] => [
   round7(MIDDLE_LAT + y / METRES_PER_DEGREE_LAT),
 ];
 
-export const fromLonLat = (lon: number, lat: number): Point => [
-  (lon - MIDDLE_LON) * METRES_PER_DEGREE_LON,
-  (lat - MIDDLE_LAT) * METRES_PER_DEGREE_LAT,
-];
-
 export function distance(a: Point, b: Point): number {
   const dx = a[0] - b[0];
   const dy = a[1] - b[1];

@@ -1,6 +1,6 @@
 import { chanceOf, noise1, noise2, type Chance } from './chance';
 import { between, circle, distance, rounded, simplified, type Point } from './plane';
-import { numbersAlong, StreetSpace, type StreetLine } from './street-line';
+import { numbersAlong, type StreetSpace, type StreetLine } from './street-line';
 import type { Terrain } from './terrain';
 import type { Town } from './towns';
 

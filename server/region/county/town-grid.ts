@@ -1,5 +1,5 @@
 import { chanceOf, noise2, seedOf } from './chance';
-import { isInside, simplified, type Point } from './plane';
+import { simplified, type Point } from './plane';
 import { numbersAlong, type StreetClass, type StreetLine } from './street-line';
 import type { Terrain } from './terrain';
 import type { Town } from './towns';
@@ -321,6 +321,3 @@ export function waterfront(town: Town, shoreLines: readonly Point[][]): StreetLi
   }
   return lines;
 }
-
-export const isInAny = (p: Point, rings: readonly (readonly Point[])[]): boolean =>
-  rings.some((ring) => isInside(p, ring));

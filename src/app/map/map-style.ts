@@ -128,7 +128,7 @@ export function mapStyle(theme: MapTheme, hasCoastline: boolean): MapStyle {
 const isKind =
   (...kinds: readonly string[]) =>
   (_zoom: number, { props }: Feature): boolean =>
-    kinds.includes(String(props['kind']));
+    kinds.some((kind) => kind === props['kind']);
 
 const isClass =
   (roadClass: RoadClass) =>
