@@ -106,14 +106,14 @@ export function makeNightLog(order: NightLogOrder): MadeNightLog {
   const times = timesOf(order, random, style);
   const powerOut = roundTo(order.night.fromAt - 30 * MINUTE_MS, 5);
   const callers: Caller[] = [];
-  const rows: { cells: Record<TitledField, string>; truth: RowTruth; raw: string | null }[] = [];
+  const rows: { cells: Record<TitledField, string>; truth: RowTruth }[] = [];
   const said = new Map<number, number>();
 
   for (let row = 0; row < order.rows; row++) {
     const at = times[row] ?? order.night.fromAt;
     const kind = random.below(100);
     if (kind < EMPTY_PERCENT) {
-      rows.push({ cells: blankCells(), truth: emptyTruth(row), raw: null });
+      rows.push({ cells: blankCells(), truth: emptyTruth(row) });
       continue;
     }
     const repeats = kind < EMPTY_PERCENT + REPEATS_PERCENT && callers.length > 5;
@@ -162,7 +162,7 @@ function callRow(of: {
   isAgain: boolean;
   unusable: boolean;
   powerOut: Instant;
-}): { cells: Record<TitledField, string>; truth: RowTruth; raw: null } {
+}): { cells: Record<TitledField, string>; truth: RowTruth } {
   const { order, style, random, zone, caller } = of;
   const one = <T>(choices: readonly T[]): T => choices[random.below(choices.length)] as T;
   const chance = (percent: number): boolean => random.below(100) < percent;
@@ -247,7 +247,7 @@ function callRow(of: {
     powerOutAt: knowsPower ? of.powerOut : null,
     powerBackAt: knowsPower ? back : null,
   };
-  return { cells, truth, raw: null };
+  return { cells, truth };
 }
 
 function layOut(

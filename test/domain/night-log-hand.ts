@@ -32,7 +32,7 @@ const U = 'upright-freezer';
 const C = 'chest-freezer';
 
 /**
- * Logs written by hand in the way of ten different services, for the night from 30 November to
+ * Logs written by hand in the way of twelve different services, for the night from 30 November to
  * 1 December 2026 (power out from 18:40). They share nothing with the generator.
  */
 export const HAND_LOGS: readonly HandLog[] = [
@@ -540,6 +540,106 @@ BLOCKED;2.525550173E+09;Jo Dell;3 Tern Ct;;Port Ness 27999;both;;fridge and free
       },
     ],
     aside: {},
+    empty: [],
+  },
+  {
+    name: 'a report dated the morning after, with codes for appliances',
+    text: `Harborview Answering Svc   Client: Cold Units   Date: 12/01/2026
+,,,,,,,
+Line,Caller ID,Caller,Phone given,Location of unit,Type,Message text,Time (24h)
+1,BLOCKED,Ms. A. Ferro,2525550111,"1402 Bayshore Dr, Apt 3, Port Ness",FRZ-CHEST,"chest frzr warm; pwr back 1900, unit dead",1912
+2,2525550112,"Ferro, Al",,"1402 Bayshore Dr #3, Port Ness",FRIDGE,"same family, fridge too",2005
+3,2525550113,Garza,(252) 555-0113,,RF,"will text addr. baby's milk",2340
+4,2525550115,?,?,?,?,static on line,0130
+5,2525550116,Dr Voss clinic,2525550116,"5 Quay Row Ste 200, Port Ness",VAX FRIDGE,12C inside,0245
+Page 1 of 1,,,,,,,
+Total: 5 calls,,,,,,,
+`,
+    calls: [
+      {
+        at: '2026-11-30 19:12',
+        name: 'Ms. A. Ferro',
+        phone: '+12525550111',
+        place: '1402 Bayshore Dr',
+        unitNo: '3',
+        units: `${C} + ${F}`,
+        lines: [4, 5],
+        back: '2026-11-30 19:00',
+      },
+      {
+        at: '2026-11-30 23:40',
+        name: 'Garza',
+        phone: '+12525550113',
+        place: null,
+        units: F,
+        medicine: true,
+        lines: [6],
+      },
+      {
+        at: '2026-12-01 02:45',
+        name: 'Dr Voss clinic',
+        phone: '+12525550116',
+        place: '5 Quay Row',
+        unitNo: '200',
+        units: 'medicine-fridge',
+        medicine: true,
+        lines: [8],
+      },
+    ],
+    aside: { 7: /static on line/ },
+    empty: [9, 10],
+  },
+  {
+    name: 'a help desk: everything in the message, a subject beside it',
+    text: `"Time";"Operator";"Subject";"Caller Phone";"Caller Name";"Message"
+"19:55";"Kim";"Refrigerator not working";"252 555 0150";"Lia Moor";"Lives at 14 Elder St, Apt 2, Port Ness. Fridge quit after storm. Spoke Spanish."
+"20:10";"Kim";"Freezer";"2525550151";"Abe Nix";"Address: 15 Elder Street Port Ness. Chest freezer w/ venison; also needs insulin kept cold"
+"20:20";"Kim";"Fridge & freezer";"252-555-0152 ext 9";"";"16 Elder st. no insulin or breast milk. sparks from outlet! out 7:15p - 8pm"
+"20:31";"Kim";"Fridge";"(252) 555 0150";"Lia Moor";"same caller as 19:55, wants eta"
+"00:01";"Lou";"Billing question";"252-555-0153";"Ann Poe";"wants invoice"
+"00:15";"Lou";"Walk-in down";"252-555-0154 / 0155";"Harbor Diner";"Harbor Diner, 200 Main St, walk in cooler at 48 and rising, 3000 lbs seafood"
+`,
+    calls: [
+      {
+        at: '2026-11-30 19:55',
+        name: 'Lia Moor',
+        phone: '+12525550150',
+        place: '14 Elder St',
+        unitNo: '2',
+        units: F,
+        language: 'es',
+        lines: [2, 5],
+      },
+      {
+        at: '2026-11-30 20:10',
+        name: 'Abe Nix',
+        phone: '+12525550151',
+        place: '15 Elder St',
+        units: C,
+        medicine: true,
+        lines: [3],
+      },
+      {
+        at: '2026-11-30 20:20',
+        name: null,
+        phone: '+12525550152',
+        place: '16 Elder St',
+        units: `${F} + ${U}`,
+        dangers: ['sparks'],
+        lines: [4],
+        out: '2026-11-30 19:15',
+        back: '2026-11-30 20:00',
+      },
+      {
+        at: '2026-12-01 00:15',
+        name: 'Harbor Diner',
+        phone: '+12525550154',
+        place: '200 Main St',
+        units: 'walk-in',
+        lines: [7],
+      },
+    ],
+    aside: { 6: /billing/ },
     empty: [],
   },
 ];

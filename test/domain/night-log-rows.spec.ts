@@ -211,8 +211,8 @@ describe('rowKey', () => {
     expect(rowKeys([...log, { line: 4, cells: ['c'] }]).slice(0, 3)).toEqual(keys);
   });
 
-  it('has no two of 100,000 rows share a key, nor any half of one', () => {
-    const keys = Array.from({ length: 100_000 }, (_, i) =>
+  it('has no two of 40,000 rows share a key, nor any half of one', () => {
+    const keys = Array.from({ length: 40_000 }, (_, i) =>
       rowKey([`${i % 13}:${i % 60}p`, `252-555-0${100 + (i % 100)}`, `row ${i}`]),
     );
     expect(new Set(keys).size).toBe(keys.length);

@@ -1,3 +1,5 @@
+import fc from 'fast-check';
+import { parsePhoneNumberFromString } from 'libphonenumber-js/min';
 import { findPhones, formatPhone, readPhone } from '@shared/domain/phone-number';
 
 const OURS = '+12525550142';
@@ -133,6 +135,33 @@ describe('readPhone', () => {
   it('reads a number from abroad by its own country’s rules', () => {
     // Ofcom sets 020 7946 0000 to 0999 aside for drama.
     expect(e164('+44 20 7946 0018')).toBe('+442079460018');
+  });
+});
+
+describe('readPhone beside libphonenumber', () => {
+  const spellings = [
+    (a: string, b: string, c: string) => `(${a}) ${b}-${c}`,
+    (a: string, b: string, c: string) => `+1 ${a} ${b} ${c}`,
+    (a: string, b: string, c: string) => `${a}.${b}.${c}`,
+    (a: string, b: string, c: string) => `${a}${b}${c}`,
+  ];
+
+  it('reads every number of the fictional range alike', () => {
+    const area = fc.integer({ min: 200, max: 989 }).filter((code) => code % 100 !== 11);
+    fc.assert(
+      fc.property(
+        area,
+        fc.integer({ min: 0, max: 99 }),
+        fc.constantFrom(...spellings),
+        (a, line, spell) => {
+          const raw = spell(String(a), '555', `01${String(line).padStart(2, '0')}`);
+          const theirs = parsePhoneNumberFromString(raw, 'US');
+          expect(theirs?.isPossible()).toBe(true);
+          expect(e164(raw, null)).toBe(theirs?.number);
+        },
+      ),
+      { numRuns: 400, seed: 3 },
+    );
   });
 });
 

@@ -1,4 +1,4 @@
-import { findPhones, readPhone } from '../phone-number';
+import { readPhone } from '../phone-number';
 import { looksLikeAddress, looksLikeStreet } from './address-text';
 import type { ColumnRole } from './column-map';
 import { readDangers } from './danger-words';
@@ -18,7 +18,6 @@ export type CellShape =
   | 'town-line'
   | 'street'
   | 'apartment'
-  | 'house-number'
   | 'postcode'
   | 'state'
   | 'unit'
@@ -115,7 +114,7 @@ const FITS: Readonly<Partial<Record<ColumnRole, readonly CellShape[]>>> = {
   phone: ['phone'],
   altPhone: ['phone'],
   address: ['address', 'street', 'town-line'],
-  streetNumber: ['number', 'house-number', 'apartment'],
+  streetNumber: ['number', 'apartment'],
   street: ['street', 'name', 'address'],
   unitNo: ['apartment', 'number', 'state'],
   city: ['name', 'street', 'town-line'],
@@ -152,8 +151,6 @@ export interface ColumnSample {
   readonly medicine: number;
   readonly danger: number;
   readonly namesUnits: number;
-  readonly holdsPhones: number;
-  readonly commaNames: number;
 }
 
 export function sampleColumn(cells: readonly string[]): ColumnSample {
@@ -182,8 +179,6 @@ export function sampleColumn(cells: readonly string[]): ColumnSample {
     medicine: share((cell) => readMedicine(cell).mentioned),
     danger: share((cell) => readDangers(cell).length > 0),
     namesUnits: share((cell) => namesUnit(cell, false)),
-    holdsPhones: share((cell) => findPhones(cell).length > 0),
-    commaNames: share((cell) => /^\p{L}[\p{L}' -]+, ?\p{L}/u.test(cell)),
   };
 }
 

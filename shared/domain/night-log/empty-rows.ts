@@ -36,10 +36,27 @@ export function dayLine(cells: readonly string[]): DateSaid | null {
 }
 
 function repeatsHeader(cells: readonly string[], header: readonly string[]): boolean {
+  const titles = titlesOf(header);
+  let said = 0;
+  let same = 0;
+  for (const cell of cells) {
+    if (cell.trim() === '') continue;
+    said++;
+    if (titles.has(plain(cell))) same++;
+    // Three cells that are no titles settle it for every row of a call.
+    if (same === 0 && said === 3) return false;
+  }
+  return said >= 2 && same >= said * 0.7 && same >= Math.min(3, titles.size);
+}
+
+const TITLES = new WeakMap<readonly string[], ReadonlySet<string>>();
+
+function titlesOf(header: readonly string[]): ReadonlySet<string> {
+  const known = TITLES.get(header);
+  if (known) return known;
   const titles = new Set(header.map(plain).filter(Boolean));
-  const said = cells.map(plain).filter(Boolean);
-  const same = said.filter((cell) => titles.has(cell)).length;
-  return said.length >= 2 && same >= said.length * 0.7 && same >= Math.min(3, titles.size);
+  TITLES.set(header, titles);
+  return titles;
 }
 
 const FURNITURE =

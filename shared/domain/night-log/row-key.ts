@@ -44,7 +44,12 @@ export function rowKeys(rows: readonly LogRow[]): readonly string[] {
 }
 
 function settled(cells: readonly string[]): string {
-  const tidy = cells.map((cell) => cell.normalize('NFC').replace(/\s+/g, ' ').trim().toLowerCase());
+  const tidy = cells.map((cell) =>
+    // Most cells are tidy already, and normalising is the dear part.
+    /^(?:[!-~]+(?: [!-~]+)*)?$/.test(cell)
+      ? cell.toLowerCase()
+      : cell.normalize('NFC').replace(/\s+/g, ' ').trim().toLowerCase(),
+  );
   while (tidy.length > 0 && tidy[tidy.length - 1] === '') tidy.pop();
   return tidy.join('\u001f');
 }
