@@ -7,6 +7,7 @@ import os from 'node:os';
 import path from 'node:path';
 import type { CallDetail } from '@shared/contract/calls';
 import { MINUTE_MS, type Instant } from '@shared/domain/instant';
+import type { Context } from '../../server/context';
 import type { JournalEntry } from '../../server/fakes/fake-journal';
 import { type FakeTexts, startFakeTexts } from '../../server/fakes/text-service';
 import { webhookSignature } from '../../server/fakes/fake-webhooks';
@@ -44,7 +45,10 @@ export interface TextLab {
 }
 
 /** The product, the stand-in of the text service, and a proxy between the two. */
-export async function startTextLab(suffix: string): Promise<TextLab> {
+export async function startTextLab(
+  suffix: string,
+  context: Partial<Context> = {},
+): Promise<TextLab> {
   const folder = mkdtempSync(path.join(os.tmpdir(), 'thawline-texts-'));
   const proxy = await startProxy();
   const fake = await startFakeTexts({
@@ -54,7 +58,7 @@ export async function startTextLab(suffix: string): Promise<TextLab> {
     number: OURS,
     inboundUrl: `${proxy.url}/webhooks/texts/inbound`,
     journalPath: path.join(folder, 'texts.jsonl'),
-    stepMs: 20,
+    stepMs,
     slowMs: 100,
     webhookRetryMs: [100, 200, 400, 800],
   });
@@ -75,6 +79,7 @@ export async function startTextLab(suffix: string): Promise<TextLab> {
       wakeOutbox: () => workers.at(-1)?.wake(),
       // Retries are due later, so this clock has to run.
       clock: () => Date.now() + offsetMs,
+      ...context,
     },
   });
   proxy.pointAt(server.url);
