@@ -181,6 +181,32 @@ describe('POST /api/calls/:callId/stop', () => {
   });
 });
 
+describe('a route on which desk and technician act at once', () => {
+  it.each(['the desk', 'the technician'])('stays in order when %s comes first', async (first) => {
+    const here = await aStop(server, mara, theo.technicianId);
+    const next = await aStop(server, mara, theo.technicianId);
+    const accepted = await done(theo, 'acceptStop', here);
+    const onTheWay = await done(theo, 'startTravel', accepted, { from: null });
+    const there = await done(theo, 'arrive', onTheWay);
+    const call = await aWaitingCall(server, mara);
+    const add = () => put(mara, call, theo.technicianId, 1);
+    const finish = () =>
+      act(theo, 'finishStop', there, { outcome: 'restored', note: '', partsUsed: [] });
+    const replies = await atOnce(
+      server,
+      { table: 'technicians', id: theo.technicianId },
+      first === 'the desk' ? [add, finish] : [finish, add],
+    );
+    expect(replies.map((reply) => reply.status).sort()).toEqual([200, 201]);
+    const route = await routeOf(theo);
+    expect(route.map(([, state, position]) => [state, position])).toEqual([
+      ['offered', 0],
+      ['planned', 1],
+    ]);
+    expect(route.map(([id]) => id)).toContain(next.id);
+  });
+});
+
 describe('POST /api/stops/:stopId/move', () => {
   it('changes the order of a route and the times of all that follow', async () => {
     const first = await aStop(server, mara, theo.technicianId);

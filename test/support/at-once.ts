@@ -7,8 +7,8 @@ import type { TestServer } from './server';
 const LOOK_MS = 120;
 
 /**
- * Lets requests meet for certain: holds the row that they all need, sends them, waits until every one
- * of them waits for a lock, and lets go.
+ * Lets requests meet for certain: holds the row that they all need, sends them one by one as soon as
+ * the one before waits for a lock, and lets go when all do. Locks are given in the order of asking.
  */
 export async function atOnce(
   server: TestServer,
@@ -23,15 +23,18 @@ export async function atOnce(
       [row.id],
       tx,
     );
-    // A request is sent when somebody waits for it.
-    const replies = Promise.all(presses.map((press) => press().then((reply) => reply)));
-    const end = Date.now() + 4000;
-    while ((await waiting(server)) < presses.length) {
-      if (Date.now() > end) throw new Error('the requests never met');
-      await pause(LOOK_MS);
+    const replies: Promise<Response>[] = [];
+    for (const press of presses) {
+      // A request is sent when somebody waits for it.
+      replies.push(press().then((reply) => reply));
+      const end = Date.now() + 4000;
+      while ((await waiting(server)) < replies.length) {
+        if (Date.now() > end) throw new Error('the requests never met');
+        await pause(LOOK_MS);
+      }
     }
     await tx.commit();
-    return await replies;
+    return await Promise.all(replies);
   } catch (error) {
     await tx.rollback().catch(() => undefined);
     throw error;
