@@ -99,7 +99,11 @@ async function lost(job: Job, message: MessageRecord, why: string): Promise<void
 /** Finds texts that some sender took and never came back with, and calls them unknown. */
 export async function giveUpLapsed(context: Context): Promise<void> {
   const { sequelize } = context;
-  const lapsed = { state: 'sending', claimUntil: { [Op.lt]: sequelize.fn('UTC_TIMESTAMP', 3) } };
+  const lapsed = {
+    state: 'sending' as const,
+    // One without a lease is no one's, however it came to be.
+    [Op.or]: [{ claimUntil: null }, { claimUntil: { [Op.lt]: sequelize.fn('UTC_TIMESTAMP', 3) } }],
+  };
   const found = await MessageRecord.findAll({ attributes: ['id'], where: lapsed, limit: 50 });
   for (const { id } of found)
     await unlessDone(

@@ -48,6 +48,8 @@ export interface TextLab {
 export async function startTextLab(
   suffix: string,
   context: Partial<Context> = {},
+  /** How long each step of a text takes at the service, and so how late its callbacks come. */
+  stepMs = 20,
 ): Promise<TextLab> {
   const folder = mkdtempSync(path.join(os.tmpdir(), 'thawline-texts-'));
   const proxy = await startProxy();
