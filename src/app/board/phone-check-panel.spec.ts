@@ -52,7 +52,7 @@ class PanelHarness {
     readonly warned: string[],
   ) {}
 
-  private get host(): HTMLElement {
+  get host(): HTMLElement {
     return this.fixture.nativeElement as HTMLElement;
   }
 
@@ -149,6 +149,17 @@ describe('PhoneCheckPanel', () => {
     await panel.press('1', '2', 'n');
     expect(call.sent).toEqual([]);
     expect(panel.text()).toContain('Tom Ebner is on this call');
+  });
+
+  it('lets no slip of a key out to the board while a question stands', async () => {
+    const panel = await aPanel();
+    const board = jest.fn();
+    document.addEventListener('keydown', board);
+    document.body.append(panel.host);
+    await panel.press('x', '9');
+    document.removeEventListener('keydown', board);
+    expect(board).not.toHaveBeenCalled();
+    expect(panel.question()).toBe(SAFETY_QUESTIONS[0]?.ask);
   });
 
   it('takes back the last answer with Backspace', async () => {

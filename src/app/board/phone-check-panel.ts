@@ -147,14 +147,12 @@ export class PhoneCheckPanel {
     }
     const chosen = answerOfKey(question, event.key);
     if (chosen) return handled(() => this.give(question, chosen.id));
-    if (
-      event.key === 'Enter' &&
-      !isButton(event.target) &&
-      this.timer() &&
-      !this.timer()?.isRunning
-    ) {
-      handled(() => this.startTimer());
+    const timer = this.timer();
+    if (event.key === 'Enter' && !isButton(event.target) && timer && !timer.isRunning) {
+      return handled(() => this.startTimer());
     }
+    // A slip while somebody is being asked must not open something else.
+    if (/^[a-z0-9]$/i.test(event.key)) handled(() => undefined);
   }
 
   protected give(question: Question, answer: string | number): void {
