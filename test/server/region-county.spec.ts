@@ -7,7 +7,7 @@ import { DEMO_DATA, DEMO_SEED } from '../../server/region/demo-region';
 import type { OsmNode, OsmWay } from '../../server/region/osm-model';
 import { readAll, type ReadOsm } from '../support/region-files';
 
-jest.setTimeout(60_000);
+jest.setTimeout(180_000);
 
 type Spot = readonly [x: number, y: number];
 

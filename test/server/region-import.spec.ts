@@ -17,7 +17,7 @@ import { readAddressBook } from '../../server/region/region-data';
 import { tileRoutes } from '../../server/region/serve-tiles';
 import { decodeTile, temporaryFolder } from '../support/region-files';
 
-jest.setTimeout(60_000);
+jest.setTimeout(180_000);
 
 const tiles = temporaryFolder();
 const steps: ImportStep[] = [];
