@@ -61,7 +61,12 @@ const PLACE: readonly [number, number] = TEST_REGION.dto.centre;
 
 /** The whole server on a real database and a free port, with a clock that stands until it is set. */
 export async function startServer(
-  options: { suffix?: string; config?: Partial<Config>; context?: Partial<Context> } = {},
+  options: {
+    suffix?: string;
+    port?: number;
+    config?: Partial<Config>;
+    context?: Partial<Context>;
+  } = {},
 ): Promise<TestServer> {
   const sequelize = await freshDatabase(options.suffix);
   let now = NIGHT;
@@ -99,7 +104,7 @@ export async function startServer(
     wakeOutbox: () => undefined,
     ...options.context,
   });
-  await new Promise<void>((resolve) => app.http.listen(0, '127.0.0.1', resolve));
+  await new Promise<void>((resolve) => app.http.listen(options.port ?? 0, '127.0.0.1', resolve));
   const url = `http://127.0.0.1:${String((app.http.address() as AddressInfo).port)}`;
   const origin = config.http.publicUrl;
 
