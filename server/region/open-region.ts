@@ -38,7 +38,8 @@ export async function openRegion({ manifest, folder }: ImportedRegion): Promise<
 }
 
 const toSuggestion = (found: Found): AddressSuggestion => ({
-  label: found.label,
+  // The apartment stays with the call, not with the point.
+  label: found.unit === null ? found.label : found.label.replace(` ${found.unit}`, ''),
   unitNo: found.unit ?? '',
   lonLat: [found.lon, found.lat],
   kind: found.kind,
