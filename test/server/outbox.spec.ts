@@ -172,6 +172,27 @@ describe('a text that is refused for sure', () => {
   });
 });
 
+it('shows a text whose sending breaks our own code, and sends the others', async () => {
+  const [poison, ...others] = [
+    await aWaitingText(lab.server),
+    await aWaitingText(lab.server),
+    await aWaitingText(lab.server),
+  ];
+  const real = lab.sender();
+  lab.work({
+    sender: {
+      ...real,
+      send: (text) => {
+        if (text.outboxId === poison?.id) throw new Error('a fault of ours');
+        return real.send(text);
+      },
+    },
+  });
+  for (const { id } of others) await becomes(id, 'delivered');
+  await becomes(poison?.id ?? '', 'unknown');
+  expect(await needPerson()).toEqual([poison?.id]);
+});
+
 describe('several workers at once', () => {
   it('send each of 60 texts once', async () => {
     const ids: string[] = [];
