@@ -42,7 +42,7 @@ export function planProblem(facts: PlanFacts): Problem {
       at: start,
       availableAt: seconds(freeAt),
       skills: technician.skills,
-      parts: technician.van as Readonly<Record<string, number>>,
+      parts: technician.van,
       shifts: technician.shifts.map((shift) => ({
         start: seconds(shift.startsAt),
         end: seconds(shift.endsAt),
