@@ -1,11 +1,14 @@
 import {
+  afterNextRender,
   ChangeDetectionStrategy,
   Component,
   computed,
+  ElementRef,
   inject,
   linkedSignal,
   output,
   signal,
+  viewChild,
 } from '@angular/core';
 import type { CallDetail, CompartmentFacts, UnitFacts } from '@shared/contract/calls';
 import type { CompartmentKind, InspectionFinding, UnitKind } from '@shared/domain/cold-unit';
@@ -62,6 +65,12 @@ export class AmendForm {
 
   protected readonly out = computed(() => this.meaning(this.edited()?.outAt ?? null));
   protected readonly back = computed(() => this.meaning(this.edited()?.backAt ?? null));
+
+  private readonly nameField = viewChild<ElementRef<HTMLInputElement>>('name');
+
+  constructor() {
+    afterNextRender(() => this.nameField()?.nativeElement.focus());
+  }
 
   protected set(part: Partial<Edited>): void {
     this.edited.update((edited) => (edited ? { ...edited, ...part } : null));

@@ -25,7 +25,7 @@ export function changesBetween(
   tell('Power went', clock(before.powerOutAt), clock(after.powerOutAt));
   tell('Power back', backOf(before, clock), backOf(after, clock));
   tell('Units', unitsOf(before), unitsOf(after));
-  tell('Claimed by', before.row.claim?.name ?? '', after.row.claim?.name ?? '');
+  tell('Claimed by', before.row.claim?.name ?? 'nobody', after.row.claim?.name ?? 'nobody');
   if (unitFacts(before) !== unitFacts(after) && unitsOf(before) === unitsOf(after)) {
     changes.push('What is known of the units was changed');
   }

@@ -140,7 +140,9 @@ export class AddressField {
       const [lon, lat] = point.map(String) as [string, string];
       const { suggestion } = await this.api.call('nearestAddress', { query: { lon, lat } });
       if (suggestion && this.address().lonLat === point) {
-        this.changed.emit({ ...this.address(), text: `Near ${suggestion.label}` });
+        // Far from every address the answer names the point itself.
+        const text = suggestion.kind === 'pin' ? suggestion.label : `Near ${suggestion.label}`;
+        this.changed.emit({ ...this.address(), text });
       }
     } catch (error) {
       if (!(error instanceof ProblemError)) throw error; // The coordinates stay as its name.

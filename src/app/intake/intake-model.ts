@@ -76,12 +76,12 @@ export class IntakeModel {
   );
   readonly isReady = computed(() => this.checked().ready);
 
-  /** Complaints beside their fields: all after an attempt to save, before it only where one has been. */
+  /** Complaints beside their fields: all of them only after an attempt to save. */
   readonly errors = computed<IntakeErrors>(() => {
     const checked = this.checked();
     const own: IntakeErrors = checked.ready ? {} : checked.errors;
     const shown = Object.entries(own).filter(
-      ([field]) => this.tried() || this.left().has(field as IntakeField),
+      ([field]) => this.tried() || this.isLeftUnfinished(field as IntakeField),
     );
     return { ...this.refused(), ...Object.fromEntries(shown) };
   });
@@ -198,6 +198,17 @@ export class IntakeModel {
     } finally {
       this.busy.set(false);
     }
+  }
+
+  /** A field that is still empty may just come later; one that was begun and left is complained of. */
+  private isLeftUnfinished(field: IntakeField): boolean {
+    const { phone, times } = this.draftNow();
+    const begun: Partial<Record<IntakeField, string>> = {
+      phone,
+      out: times.outText,
+      back: times.backText,
+    };
+    return this.left().has(field) && (begun[field] ?? '').trim() !== '';
   }
 
   private afterRefusal(error: ProblemError): SaveResult {
