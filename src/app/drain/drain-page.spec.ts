@@ -1,0 +1,163 @@
+import { HarnessLoader } from '@angular/cdk/testing';
+import { TestbedHarnessEnvironment } from '@angular/cdk/testing/testbed';
+import { signal } from '@angular/core';
+import { TestBed } from '@angular/core/testing';
+import { MatButtonHarness } from '@angular/material/button/testing';
+import { MatButtonToggleHarness } from '@angular/material/button-toggle/testing';
+import { provideRouter } from '@angular/router';
+import type { DrainDto } from '@shared/contract/office';
+import { Api } from '../core/api';
+import { BoardStore } from '../core/board-store';
+import { Clock } from '../core/clock';
+import { ProblemError } from '../core/problem-error';
+import { Session } from '../core/session';
+import { aCallRow, aMe, aStorm, settled } from '../core/testing';
+import { provideIcons } from '../ui/icons';
+import { AT, aDrain } from './drain-fixture';
+import { DrainPage } from './drain-page';
+
+const FULL = aDrain({
+  arrivals: 40,
+  settledByPhone: 12,
+  settledByVisit: 3,
+  open: 25,
+  valueAtRiskCents: 50_000,
+  savedCents: 20_000,
+  lostCents: 30_000,
+});
+
+describe('DrainPage', () => {
+  const storm = signal<ReturnType<typeof aStorm> | null>(null);
+  const n = signal(1);
+  let storms: ReturnType<typeof aStorm>[];
+  let answer: DrainDto | ProblemError;
+  const asked: { name: string; query?: unknown }[] = [];
+
+  async function show(): Promise<{ text: () => string; loader: HarnessLoader; root: HTMLElement }> {
+    const fixture = TestBed.createComponent(DrainPage);
+    const root = fixture.nativeElement as HTMLElement;
+    await fixture.whenStable();
+    await settled();
+    await settled();
+    await fixture.whenStable();
+    return {
+      text: () => (root.textContent ?? '').replace(/\s+/g, ' '),
+      loader: TestbedHarnessEnvironment.loader(fixture),
+      root,
+    };
+  }
+
+  beforeEach(() => {
+    // jsdom draws nothing; the page must not need the picture.
+    HTMLCanvasElement.prototype.getContext = () => null;
+    asked.length = 0;
+    storm.set(aStorm());
+    storms = [aStorm()];
+    answer = FULL;
+    const call = (name: string, args?: { query?: unknown }) => {
+      asked.push({ name, query: args?.query });
+      if (name === 'listStorms') return Promise.resolve({ storms });
+      return answer instanceof ProblemError ? Promise.reject(answer) : Promise.resolve(answer);
+    };
+    TestBed.configureTestingModule({
+      providers: [
+        provideIcons(),
+        provideRouter([]),
+        { provide: Api, useValue: { call } },
+        { provide: Clock, useValue: { now: signal(AT), exact: () => AT } },
+        {
+          provide: Session,
+          useValue: {
+            storm,
+            zone: signal('America/New_York'),
+            settings: signal(aMe().settings),
+          },
+        },
+        {
+          provide: BoardStore,
+          useValue: {
+            n,
+            storm,
+            link: signal('live'),
+            calls: signal(new Map([[aCallRow(1).id, aCallRow(1)]])),
+          },
+        },
+      ],
+    });
+  });
+
+  it('shows two sums that add up', async () => {
+    const { root } = await show();
+    const sums = [...root.querySelectorAll('dl')].map((dl) =>
+      [...dl.querySelectorAll('dd')].map((dd) => dd.textContent?.trim()),
+    );
+    expect(sums).toEqual([
+      ['40', '12', '3', '25'],
+      ['$1,000', '$500', '$200', '$300'],
+    ]);
+  });
+
+  it('says in words what the pictures show, and holds their figures as a table', async () => {
+    const { root, loader } = await show();
+    const words = [...root.querySelectorAll('canvas')].map((c) => c.getAttribute('aria-label'));
+    expect(words[0]).toContain('40 came in, 15 were settled, 25 are open');
+    expect(words[1]).toContain('$200 saved, $500 at risk, $300 lost');
+    await (await loader.getHarness(MatButtonHarness.with({ text: /Show the figures/ }))).click();
+    const rows = root.querySelectorAll('thaw-time-table tbody tr');
+    expect(rows).toHaveLength(2);
+    expect(rows[0]?.textContent).toContain('25');
+  });
+
+  it('asks again in the chosen buckets, also for the file', async () => {
+    const { root, loader } = await show();
+    await (await loader.getHarness(MatButtonToggleHarness.with({ text: '10 min' }))).check();
+    await settled();
+    await settled();
+    expect(asked.filter(({ name }) => name === 'drain').at(-1)?.query).toEqual({
+      bucketMinutes: '10',
+    });
+    expect(root.querySelector('a[download]')?.getAttribute('href')).toBe(
+      `/api/storms/${aStorm().id}/drain?format=csv&bucketMinutes=10`,
+    );
+  });
+
+  it('asks once for many changes, three seconds after the last time', async () => {
+    await show();
+    const before = asked.filter(({ name }) => name === 'drain').length;
+    for (let i = 0; i < 20; i++) {
+      n.update((old) => old + 1);
+      await settled();
+    }
+    expect(asked.filter(({ name }) => name === 'drain')).toHaveLength(before);
+    await new Promise((done) => setTimeout(done, 3_100));
+    expect(asked.filter(({ name }) => name === 'drain')).toHaveLength(before + 1);
+  });
+
+  it('keeps the last figures and says so when newer ones cannot be had', async () => {
+    const { text, loader } = await show();
+    answer = new ProblemError({ type: '/problems/no-connection', title: 'No line', status: 0 });
+    await (await loader.getHarness(MatButtonToggleHarness.with({ text: '60 min' }))).check();
+    await settled();
+    await settled();
+    await loader.getAllHarnesses(MatButtonHarness);
+    expect(text()).toContain('Figures as of Thu 02:15, not newer: No line');
+    expect(text()).toContain('settled by phone');
+  });
+
+  it('says that there is no call, no storm, or that the storm is over', async () => {
+    answer = aDrain({});
+    expect((await show()).text()).toContain('No call yet');
+
+    answer = { ...FULL };
+    const closed = aStorm({ state: 'closed', closedAt: AT });
+    storm.set(null);
+    storms = [closed];
+    const over = await show();
+    expect(over.text()).toContain('Closed Thu 02:15; these figures are final');
+    expect(over.text()).not.toContain('at this rate');
+    expect(over.root.querySelector('thaw-loss-ahead')).toBeNull();
+
+    storms = [];
+    expect((await show()).text()).toContain('No storm yet');
+  });
+});
