@@ -1,7 +1,7 @@
 import { randomUUID } from 'node:crypto';
 import { HOUR_MS, MINUTE_MS, type Instant } from '@shared/domain/instant';
 import { CallRecord } from '../../server/calls/call-record';
-import { takeCall } from '../../server/calls/take-call';
+import { takeCalls } from '../../server/calls/take-call';
 import { machine } from '../../server/commands/actor';
 import { runCommand, type Job } from '../../server/commands/run-command';
 import { change, select } from '../../server/db/sql';
@@ -123,11 +123,8 @@ describe('what the customer is told', () => {
 
     const { commandId: _, ...logged } = aCall(AFTERNOON);
     await command(async (job) => {
-      await takeCall(job, server.stormId, {
-        ...logged,
-        receivedAt: AFTERNOON,
-        source: 'night-log',
-      });
+      const told = { ...logged, receivedAt: AFTERNOON, source: 'night-log' as const };
+      await takeCalls(job, server.stormId, [told]);
     });
     expect(await texts()).toHaveLength(1);
   });
