@@ -1,4 +1,4 @@
-import { computed, effect, inject, Injectable, signal, untracked } from '@angular/core';
+import { computed, DestroyRef, effect, inject, Injectable, signal, untracked } from '@angular/core';
 import type { LonLat } from '@shared/contract/common';
 import type { SentBodyOf } from '@shared/contract/http';
 import type { StopCard } from '@shared/contract/routes';
@@ -7,7 +7,7 @@ import { Api, newId } from '../core/api';
 import { Clock } from '../core/clock';
 import { DayStore } from '../core/day-store';
 import { Drafts } from '../core/drafts';
-import type { LinkState } from '../core/live';
+import { Live } from '../core/live';
 import { ProblemError } from '../core/problem-error';
 import { type DayOrder, type DayRoute, formDraftKey, isCard, isOrder } from './day-orders';
 
@@ -15,6 +15,9 @@ const UNSENT = 'day-unsent';
 
 /** Refusals that say nothing about the order itself: it is kept and sent again. */
 const KEEPS = new Set<string>(['no-connection', 'busy', 'internal', 'not-signed-in']);
+
+const FIRST_RETRY_MS = 5_000;
+const LAST_RETRY_MS = 60_000;
 
 type Without<K extends DayRoute> = Omit<SentBodyOf<K>, 'commandId' | 'version'>;
 
@@ -26,6 +29,7 @@ type Without<K extends DayRoute> = Omit<SentBodyOf<K>, 'commandId' | 'version'>;
 export class DayModel {
   private readonly api = inject(Api);
   private readonly day = inject(DayStore);
+  private readonly live = inject(Live);
   private readonly clock = inject(Clock);
   private readonly drafts = inject(Drafts);
 
@@ -33,6 +37,9 @@ export class DayModel {
   private readonly sending = signal(false);
   private readonly refused = signal<string | null>(null);
   private readonly keptBecause = signal<string | null>(null);
+
+  private retryTimer: ReturnType<typeof setTimeout> | undefined;
+  private retryMs = FIRST_RETRY_MS;
 
   /** An order that has not reached the server, as far as this phone knows. */
   readonly unsent = computed(() => (this.sending() ? null : this.kept()));
@@ -44,14 +51,15 @@ export class DayModel {
 
   constructor() {
     this.kept.set(this.drafts.load(UNSENT, isOrder));
-    // Signal is back: what was kept goes out before anything else.
-    let before: LinkState | null = null;
+    // Signal is back: what was kept goes out before anything else. The socket may not have noticed
+    // a short break at all, so the network's own word counts too, and the time.
+    let wasBack = false;
     effect(() => {
-      const link = this.day.link();
-      const isBack = link === 'live' && before !== 'live';
-      before = link;
-      if (isBack) untracked(() => void this.sendAgain());
+      const isBack = this.day.link() === 'live' && this.live.isOnline();
+      if (isBack && !wasBack) untracked(() => void this.sendAgain());
+      wasBack = isBack;
     });
+    inject(DestroyRef).onDestroy(() => clearTimeout(this.retryTimer));
   }
 
   accept(card: StopCard): Promise<boolean> {
@@ -133,15 +141,24 @@ export class DayModel {
       return true;
     } catch (error) {
       if (!(error instanceof ProblemError)) throw error;
-      if (KEEPS.has(error.code)) this.keptBecause.set(error.message);
-      else this.tellRefusal(error, order);
+      if (KEEPS.has(error.code)) {
+        this.keptBecause.set(error.message);
+        this.retryLater();
+      } else this.tellRefusal(error, order);
       return false;
     } finally {
       this.sending.set(false);
     }
   }
 
+  private retryLater(): void {
+    this.retryTimer = setTimeout(() => void this.sendAgain(), this.retryMs);
+    this.retryMs = Math.min(this.retryMs * 2, LAST_RETRY_MS);
+  }
+
   private keep(order: DayOrder | null): void {
+    clearTimeout(this.retryTimer);
+    if (!order) this.retryMs = FIRST_RETRY_MS;
     this.kept.set(order);
     this.keptBecause.set(null);
     if (order) this.drafts.save(UNSENT, order);

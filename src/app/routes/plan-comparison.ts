@@ -162,8 +162,6 @@ export function changeWords(
 /** Whether a call's stop is another in the proposal: for the mark on its block. */
 export const isMovedBy = (
   stop: { readonly technicianId: string; readonly arriveAt: Instant },
-  was: { readonly technicianId: string; readonly arriveAt: Instant } | undefined,
+  was: { readonly technicianId: string; readonly arriveAt: Instant },
 ): boolean =>
-  was === undefined ||
-  was.technicianId !== stop.technicianId ||
-  Math.abs(was.arriveAt - stop.arriveAt) > SAME_START_MS;
+  was.technicianId !== stop.technicianId || Math.abs(was.arriveAt - stop.arriveAt) > SAME_START_MS;

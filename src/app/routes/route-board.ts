@@ -34,8 +34,11 @@ import {
 import { verdictShort, verdictWords } from './save-verdict';
 import { isFirmStop, STOP_STATE_WORDS } from './stop-words';
 
-/** A drive shorter than this on screen has no room for its minutes. */
-const DRIVE_WORDS_PX = 30;
+/** Room for "21 min", and for the number alone. */
+const DRIVE_WORDS_PX = 44;
+const DRIVE_NUMBER_PX = 18;
+/** An hour's label closer than this to the label of now would lie under it. */
+const LABEL_PX = 52;
 
 /**
  * All routes under each other on one ruler of time. Every stop is a block in its place, with the
@@ -75,6 +78,11 @@ export class RouteBoard {
   protected readonly nowX = computed(() => xOf(this.now(), this.span(), this.pxPerHour()));
   protected readonly ticks = computed(() =>
     ticksOf(this.span(), this.pxPerHour(), this.zone.name()),
+  );
+  protected readonly labels = computed(() =>
+    this.ticks().filter(
+      ({ x, isLabelled }) => isLabelled && x > LABEL_PX / 2 && Math.abs(x - this.nowX()) > LABEL_PX,
+    ),
   );
 
   /** Puts the keyboard on the cursor and brings it into sight. */
@@ -129,7 +137,10 @@ export class RouteBoard {
   }
 
   protected driveWords(stop: StopView | ProposedView, place: BlockPlace): string {
-    return place.x - place.driveX < DRIVE_WORDS_PX ? '' : `${Math.round(stop.driveMinutes)} min`;
+    const width = place.x - place.driveX;
+    const minutes = Math.round(stop.driveMinutes);
+    if (width < DRIVE_NUMBER_PX) return '';
+    return width < DRIVE_WORDS_PX ? String(minutes) : `${minutes} min`;
   }
 
   protected hourWords(at: Instant): string {

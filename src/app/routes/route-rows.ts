@@ -24,7 +24,8 @@ export interface ProposedView {
   readonly finishAt: Instant;
   readonly driveMinutes: number;
   readonly because: string;
-  readonly isMoved: boolean;
+  /** Against the routes in force. */
+  readonly change: 'none' | 'new' | 'moved';
   readonly verdict: SaveVerdict | null;
 }
 
@@ -118,7 +119,15 @@ function proposedView(
     finishAt: stop.finishAt,
     driveMinutes: stop.driveMinutes,
     because: stop.because,
-    isMoved: isMovedBy(stop, stopOfCall.get(stop.callId)),
+    change: changeOf(stop, stopOfCall.get(stop.callId)),
     verdict: call ? saveVerdict(valuedFactsOf(call), stop.finishAt, now) : null,
   };
 }
+
+const changeOf = (
+  stop: { readonly technicianId: string; readonly arriveAt: Instant },
+  was: StopDto | undefined,
+): ProposedView['change'] => {
+  if (!was) return 'new';
+  return isMovedBy(stop, was) ? 'moved' : 'none';
+};

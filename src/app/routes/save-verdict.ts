@@ -1,5 +1,5 @@
 import type { CompartmentKind } from '@shared/domain/cold-unit';
-import type { Instant } from '@shared/domain/instant';
+import { HOUR_MS, type Instant } from '@shared/domain/instant';
 import { type StripFacts, type StripState, stripState } from '../board/cold-strip-scale';
 import { COMPARTMENT_WORDS } from '../board/compartment-words';
 import { duration, money } from '../core/zone';
@@ -99,11 +99,14 @@ export function verdictWords({
   }
 }
 
+/** Beyond so many hours to spare nobody reads the minutes. */
+const MINUTES_UNTIL_MS = 10 * HOUR_MS;
+
 /** The same in the room that a block has. */
 export function verdictShort({ kind, spareMs }: SaveVerdict): string {
   switch (kind) {
     case 'in-time':
-      return duration(spareMs);
+      return spareMs < MINUTES_UNTIL_MS ? duration(spareMs) : `${Math.floor(spareMs / HOUR_MS)} h`;
     case 'part':
       return 'part';
     case 'too-late':

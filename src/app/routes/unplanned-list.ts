@@ -25,7 +25,8 @@ export interface UnplannedCall {
   readonly why: WhyUnplanned;
 }
 
-const ROW_PX = 74;
+/** Three lines of text and a strip as high as in the queue. */
+const ROW_PX = 98;
 
 /** Waiting calls that are on no route, most urgent first, each with the reason in words. */
 @Component({
