@@ -84,12 +84,10 @@ export class DeclineForm {
     let isRestored = false;
     effect(() => {
       const key = formDraftKey('decline', this.card().stop.id);
-      if (!isRestored) {
-        isRestored = true;
-        untracked(() => this.restore(key));
-        return;
-      }
-      this.drafts.save(key, { reason: this.reason(), note: this.note() });
+      const typed = { reason: this.reason(), note: this.note() };
+      if (isRestored) this.drafts.save(key, typed);
+      else untracked(() => this.restore(key));
+      isRestored = true;
     });
     afterNextRender(() => this.title().nativeElement.focus());
   }

@@ -141,12 +141,10 @@ export class FinishForm {
     let isRestored = false;
     effect(() => {
       const key = formDraftKey('finish', this.card().stop.id);
-      if (!isRestored) {
-        isRestored = true;
-        untracked(() => this.restore(key));
-        return;
-      }
-      this.drafts.save(key, { outcome: this.outcome(), note: this.note(), used: this.used() });
+      const typed = { outcome: this.outcome(), note: this.note(), used: this.used() };
+      if (isRestored) this.drafts.save(key, typed);
+      else untracked(() => this.restore(key));
+      isRestored = true;
     });
     afterNextRender(() => this.title().nativeElement.focus());
   }
