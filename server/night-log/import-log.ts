@@ -319,7 +319,8 @@ async function storeRows(
   );
 }
 
-async function knownRows(
+/** Rows that the storm has already, with the call that they went into. */
+export async function knownRows(
   { sequelize }: Context,
   stormId: string,
   keys: readonly string[],

@@ -7,16 +7,18 @@ import { orderFrom, runCommand } from '../commands/run-command';
 import type { Context } from '../context';
 import type { SomeHandlers } from '../http/bind-routes';
 import { findStorm } from '../storms/storm-queries';
-import { importLog } from './import-log';
+import { importLog, knownRows } from './import-log';
 import { logToRead } from './log-context';
 import { NightLogRecord, NightLogRowRecord } from './night-log-record';
 import {
   columnGuesses,
   NO_COUNTS,
   nightLogDto,
+  previewCounts,
   previewRows,
   storedRowView,
 } from './night-log-rows';
+import type { LogRead } from './read-log';
 
 type Names =
   | 'listNightLogs'
@@ -70,7 +72,7 @@ export function nightLogRoutes(context: Context): SomeHandlers<Names> {
           return nightLogDto(record);
         },
       );
-      return { log, rows: previewRows(read) };
+      return preview(context, log, read);
     },
 
     readNightLog: async ({ params }) => nightLogDto(await findLog(params.logId)),
@@ -81,10 +83,7 @@ export function nightLogRoutes(context: Context): SomeHandlers<Names> {
       const read = await context.logReader.run(
         await logToRead(context, log.stormId, log.bytes, { columns }),
       );
-      return {
-        log: { ...(await nightLogDto(log)), columns: columnGuesses(read) },
-        rows: previewRows(read),
-      };
+      return preview(context, await nightLogDto(log), read);
     },
 
     importNightLog: async ({ params, body, person }) => {
@@ -162,6 +161,19 @@ export function nightLogRoutes(context: Context): SomeHandlers<Names> {
           return storedRowView(row);
         },
       ),
+  };
+}
+
+async function preview(
+  context: Context,
+  log: NightLogDto,
+  read: LogRead,
+): Promise<NightLogPreview> {
+  const keys = read.reading.rows.map(({ key }) => key);
+  const known = await knownRows(context, log.stormId, keys);
+  return {
+    log: { ...log, columns: columnGuesses(read), counts: previewCounts(read, known) },
+    rows: previewRows(log.id, read, known),
   };
 }
 

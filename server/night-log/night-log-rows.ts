@@ -45,33 +45,68 @@ export function columnGuesses({ columns, samples }: LogRead): ColumnGuess[] {
 const PREVIEW_ROWS = 60;
 const PREVIEW_ASIDES = 200;
 
+/** Rows that the storm has already, by key, with the call that they went into. */
+export type KnownRows = ReadonlyMap<string, string | null>;
+
+/** What an import would come to. Calls that were taken by phone are only found while importing. */
+export function previewCounts({ reading }: LogRead, known: KnownRows): NightLogDto['counts'] {
+  const counts = { ...NO_COUNTS, empty: reading.counts.empty };
+  for (const { rows } of reading.households) {
+    const fresh = rows.filter(({ key }) => !known.has(key)).length;
+    counts.known += rows.length - fresh;
+    if (fresh === 0) continue;
+    const calls = fresh === rows.length ? 1 : 0;
+    counts.calls += calls;
+    counts.folded += fresh - calls;
+  }
+  for (const { key, result } of reading.rows) {
+    if (result.kind !== 'aside' && result.kind !== 'continued') continue;
+    if (known.has(key)) counts.known += 1;
+    else counts[result.kind === 'aside' ? 'aside' : 'folded'] += 1;
+  }
+  return counts;
+}
+
 /** What would become of the first rows, and of those that need a person. */
-export function previewRows({ reading }: LogRead): NightLogRowView[] {
+export function previewRows(
+  logId: string,
+  { reading }: LogRead,
+  known: KnownRows,
+): NightLogRowView[] {
   const folded = new Map<string, string>();
   for (const { rows } of reading.households)
     for (const { key, reason } of rows.slice(1))
       folded.set(key, `With line ${String(rows[0]?.line)}: ${reason ?? ''}`);
-  const isAside = (row: RowReading): boolean => row.result.kind === 'aside';
+  const isAside = (row: RowReading): boolean => row.result.kind === 'aside' && !known.has(row.key);
   const asides = reading.rows.filter(isAside).slice(0, PREVIEW_ASIDES);
   const first = reading.rows.slice(0, PREVIEW_ROWS).filter((row) => !isAside(row));
   return [...asides, ...first].map((row) => {
     const { result } = row;
+    if (result.kind !== 'empty' && known.has(row.key)) {
+      const call = result.kind === 'continued' ? null : result.call;
+      const seen = view(logId, row, 'known', 'Came with an earlier import', call);
+      return { ...seen, callId: known.get(row.key) ?? null };
+    }
     switch (result.kind) {
       case 'understood': {
         const reason = folded.get(row.key);
-        return view(row, reason === undefined ? 'call' : 'folded', reason ?? '', result.call);
+        const outcome = reason === undefined ? 'call' : 'folded';
+        return view(logId, row, outcome, reason ?? '', result.call);
       }
       case 'aside':
-        return view(row, 'aside', result.reason, result.call);
-      case 'continued':
-        return view(row, 'folded', `More of the message on line ${String(result.of)}`, null);
+        return view(logId, row, 'aside', result.reason, result.call);
+      case 'continued': {
+        const reason = `More of the message on line ${String(result.of)}`;
+        return view(logId, row, 'folded', reason, null);
+      }
       case 'empty':
-        return view(row, 'empty', result.reason, null);
+        return view(logId, row, 'empty', result.reason, null);
     }
   });
 }
 
 function view(
+  logId: string,
   row: Pick<RowReading, 'line' | 'cells'>,
   outcome: NightLogRowView['outcome'],
   reason: string,
@@ -79,6 +114,7 @@ function view(
 ): NightLogRowView {
   return {
     id: null,
+    logId,
     line: row.line,
     outcome,
     reason,
@@ -96,6 +132,7 @@ export function storedRowView(row: NightLogRowRecord): NightLogRowView {
   const call = row.understood === null ? null : (JSON.parse(row.understood) as NightCall);
   return {
     ...view(
+      row.logId,
       { line: row.line, cells: JSON.parse(row.cells) as string[] },
       row.outcome,
       row.reason,

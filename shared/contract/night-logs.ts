@@ -16,6 +16,8 @@ export type ColumnGuess = z.infer<typeof ColumnGuess>;
 /** One row as the preview shows it: what would become of it. */
 export const NightLogRowView = z.strictObject({
   id: Id.nullable(),
+  /** The log that the row is of: a storm may have several, and each counts its own lines. */
+  logId: Id,
   line: z.int(),
   outcome: z.enum(['call', 'folded', 'aside', 'empty', 'known', 'settled']),
   /** Why it is put aside or what it was folded into, in words. */
@@ -54,6 +56,7 @@ export const NightLogDto = z.strictObject({
 export type NightLogDto = z.infer<typeof NightLogDto>;
 
 export const NightLogPreview = z.strictObject({
+  /** Its counts are what an import with these columns would come to. */
   log: NightLogDto,
   /** The first rows, and every row that would be put aside, up to a limit. */
   rows: z.array(NightLogRowView),

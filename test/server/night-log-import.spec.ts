@@ -72,6 +72,7 @@ describe('a night log', () => {
       ]),
     );
     expect(await board()).toEqual([]);
+    expect(preview.log.counts).toEqual({ calls: 2, folded: 1, aside: 1, empty: 1, known: 0 });
     const log = await importIt(preview);
     expect(log).toMatchObject({
       state: 'imported',
@@ -97,6 +98,7 @@ describe('a night log', () => {
       rows: NightLogRowView[];
     };
     expect(rows).toHaveLength(1);
+    expect(rows[0]?.logId).toBe(log.id);
     expect(rows[0]?.reason).not.toBe('');
     expect(rows[0]?.cells).toContain('wants a washer fixed');
     expect(await brokenInvariants(server.sequelize)).toEqual([]);
@@ -105,7 +107,13 @@ describe('a night log', () => {
   it('changes nothing when it comes again, and takes only what is new when it has grown', async () => {
     await importIt(await upload(BY_HAND));
     const before = await board();
-    const again = await importIt(await upload(BY_HAND));
+    const seen = await upload(BY_HAND);
+    expect(seen.log.counts).toEqual({ calls: 0, folded: 0, aside: 0, empty: 1, known: 4 });
+    expect(seen.rows.map(({ outcome }) => outcome).sort()).toEqual([
+      'empty',
+      ...Array<string>(4).fill('known'),
+    ]);
+    const again = await importIt(seen);
     expect(again.counts).toEqual({ calls: 0, folded: 0, aside: 0, empty: 1, known: 4 });
     expect(await board()).toEqual(before);
     const grown = await importIt(
