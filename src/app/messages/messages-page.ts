@@ -1,9 +1,170 @@
-import { ChangeDetectionStrategy, Component } from '@angular/core';
+import { Location } from '@angular/common';
+import {
+  afterNextRender,
+  ChangeDetectionStrategy,
+  Component,
+  computed,
+  DestroyRef,
+  effect,
+  inject,
+  Injector,
+  input,
+  untracked,
+  viewChild,
+} from '@angular/core';
+import { MatIcon } from '@angular/material/icon';
+import { Router } from '@angular/router';
+import type { MessageDto } from '@shared/contract/messages';
+import { BoardStore } from '../core/board-store';
+import { type KeyAction, Keys } from '../core/keys';
+import { Session } from '../core/session';
+import { IntakePrefill } from '../night-log/intake-prefill';
+import { segmentWords, STATES_IN_ORDER, TEXT_STATES } from './message-words';
+import { type ListEntry, MessageListView } from './message-list';
+import { MessagesModel } from './messages-model';
+import { ThreadView } from './thread-view';
 
-// Replaced by the screen itself.
+/** All texts of the storm: what needs a person first, then the threads with households. */
 @Component({
   selector: 'thaw-messages-page',
-  template: '<h1>Messages</h1>',
+  imports: [MatIcon, MessageListView, ThreadView],
+  templateUrl: './messages-page.html',
+  styleUrls: ['../intake/fields.scss', './messages-page.scss'],
+  providers: [MessagesModel],
   changeDetection: ChangeDetectionStrategy.OnPush,
+  host: { '[class.has-thread]': 'model.openPhone() !== null' },
 })
-export class MessagesPage {}
+export class MessagesPage {
+  protected readonly model = inject(MessagesModel);
+  protected readonly session = inject(Session);
+  private readonly board = inject(BoardStore);
+  private readonly router = inject(Router);
+  private readonly location = inject(Location);
+  private readonly injector = inject(Injector);
+  private readonly prefill = inject(IntakePrefill);
+
+  /** From the address: the call whose thread is open, so that a reload or a link opens it again. */
+  readonly call = input<string>();
+
+  private readonly list = viewChild(MessageListView);
+  private readonly thread = viewChild(ThreadView);
+
+  protected readonly states = computed(() => {
+    const counts = this.model.list()?.countsByState ?? {};
+    return STATES_IN_ORDER.flatMap((state) => {
+      const count = counts[state] ?? 0;
+      return count > 0 ? [{ state, count, ...TEXT_STATES[state] }] : [];
+    });
+  });
+  protected readonly sentWords = computed(
+    () => `${segmentWords(this.model.list()?.segmentsSent ?? 0)} sent`,
+  );
+
+  constructor() {
+    let came = false;
+    effect(() => {
+      const callId = this.call();
+      const thread = this.model.threads().find((one) => one.callId === callId);
+      if (came || callId === undefined || !this.model.list()) return;
+      came = true;
+      if (thread) untracked(() => this.openPhone(thread.phone));
+    });
+    inject(Keys).register(this.keys(), inject(DestroyRef));
+  }
+
+  protected open(entry: ListEntry): void {
+    void this.openPhone(entry.phone);
+    this.afterRender(() =>
+      this.thread()?.focus(entry.kind === 'need' ? entry.messageId : undefined),
+    );
+  }
+
+  protected close(): void {
+    void this.model.open(null);
+    this.location.replaceState('/messages');
+    this.afterRender(() => this.list()?.focus());
+  }
+
+  protected toBoard(callId: string): void {
+    this.board.selectedCallId.set(callId);
+    void this.router.navigate(['/board'], { queryParams: { call: callId } });
+  }
+
+  protected takeCall(message: MessageDto): void {
+    void this.prefill.take({
+      phone: message.phone,
+      name: '',
+      address: '',
+      units: '',
+      remark: `By text: ${message.body}`,
+    });
+  }
+
+  private openPhone(phone: string): Promise<void> {
+    const opening = this.model.open(phone);
+    const callId = this.model.thread()?.callId;
+    // The call and not the phone: an address is kept in histories and logs.
+    this.location.replaceState('/messages', callId ? `call=${callId}` : '');
+    this.list()?.show(phone);
+    return opening;
+  }
+
+  private afterRender(act: () => void): void {
+    afterNextRender(act, { injector: this.injector });
+  }
+
+  private keys(): readonly KeyAction[] {
+    const scope = 'Messages';
+    const isOpen = (): boolean => this.model.openPhone() !== null;
+    return [
+      {
+        keys: 'j',
+        does: 'Next text or thread',
+        scope,
+        repeats: true,
+        run: () => this.list()?.move(1),
+      },
+      { keys: 'k', does: 'The one before', scope, repeats: true, run: () => this.list()?.move(-1) },
+      {
+        keys: 'Enter',
+        does: 'Open it; at a text that needs a person, go to the decision',
+        scope,
+        when: () => this.list()?.hasFocus() === true,
+        run: () => this.list()?.openCursor(),
+      },
+      {
+        keys: 'r',
+        does: 'Reply',
+        scope,
+        when: () => isOpen() && this.model.whyNoReply() === null,
+        run: () => this.thread()?.focusReply(),
+      },
+      {
+        keys: 'b',
+        does: 'Open the call on the board',
+        scope,
+        when: () => this.callId() !== null,
+        run: () => this.toBoard(this.callId()!),
+      },
+      {
+        keys: 'u',
+        does: 'Take the new order',
+        scope,
+        when: () => this.list()?.hasHeld() === true,
+        run: () => this.list()?.takeNewOrder(),
+      },
+      {
+        keys: 'Escape',
+        does: 'Back to the list; what was written is kept',
+        scope,
+        inFields: true,
+        when: isOpen,
+        run: () => this.close(),
+      },
+    ];
+  }
+
+  private callId(): string | null {
+    return this.model.thread()?.callId ?? this.model.replyCallId();
+  }
+}
