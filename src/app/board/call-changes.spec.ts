@@ -58,7 +58,7 @@ describe('changesBetween', () => {
     expect(changesBetween(aDetail(), aDetail({ units: [chest, second] }), clock)).toEqual([
       'Units: Chest freezer, now Chest freezer, Walk-in',
     ]);
-    const corrected = { ...chest, place: 'garage' } as typeof chest;
+    const corrected = { ...chest, place: 'garage' };
     expect(changesBetween(aDetail(), aDetail({ units: [corrected] }), clock)).toEqual([
       'What is known of the units was changed',
     ]);

@@ -1,4 +1,4 @@
-import { Component, provideZonelessChangeDetection, signal } from '@angular/core';
+import { CUSTOM_ELEMENTS_SCHEMA, provideZonelessChangeDetection, signal } from '@angular/core';
 import { type ComponentFixture, TestBed } from '@angular/core/testing';
 import { MatIcon } from '@angular/material/icon';
 import type { CallDetail } from '@shared/contract/calls';
@@ -9,9 +9,6 @@ import { Clock } from '../core/clock';
 import { Drafts } from '../core/drafts';
 import { CallModel } from './call-model';
 import { PhoneCheckPanel } from './phone-check-panel';
-
-@Component({ selector: 'mat-icon', template: '' })
-class NoIcon {}
 
 const aDetail = (answers: Record<string, string | number> = {}): CallDetail =>
   ({
@@ -104,7 +101,7 @@ async function aPanel(call = new FakeCall(), time = { now: START }): Promise<Pan
   });
   TestBed.overrideComponent(PhoneCheckPanel, {
     remove: { imports: [MatIcon] },
-    add: { imports: [NoIcon] },
+    add: { schemas: [CUSTOM_ELEMENTS_SCHEMA] },
   });
   TestBed.inject(Drafts).of('user-1');
   const fixture = TestBed.createComponent(PhoneCheckPanel);

@@ -7,7 +7,6 @@ import {
   computed,
   DestroyRef,
   effect,
-  ElementRef,
   inject,
   Injector,
   linkedSignal,
@@ -74,7 +73,6 @@ export class Queue {
   protected readonly bufferRows = BUFFER_ROWS;
 
   private readonly viewport = viewChild(CdkVirtualScrollViewport);
-  private readonly viewportElement = viewChild(CdkVirtualScrollViewport, { read: ElementRef });
   protected readonly filters = viewChild.required(QueueFilters);
 
   private readonly hasPointer = signal(false);
@@ -131,7 +129,7 @@ export class Queue {
   }
 
   focus(): void {
-    this.viewportElement()?.nativeElement.focus();
+    this.viewport()?.elementRef.nativeElement.focus();
   }
 
   protected readonly trackId = (_: number, id: string): string => id;
@@ -164,8 +162,15 @@ export class Queue {
   }
 
   protected hover(event: Event): void {
-    const row = (event.target as Element).closest<HTMLElement>('[data-call]');
-    this.board.hoveredCallId.set(row?.dataset['call'] ?? null);
+    this.board.hoveredCallId.set(callAt(event));
+  }
+
+  /** A click opens the row that it falls on; the keyboard's way is Enter. */
+  protected pick(event: Event): void {
+    const id = callAt(event);
+    if (id === null) return;
+    this.select(id);
+    this.opened.emit(id);
   }
 
   protected press(event: KeyboardEvent): void {
@@ -250,6 +255,10 @@ export class Queue {
     );
   }
 }
+
+/** The call whose row an event fell on. One listener serves all rows. */
+const callAt = (event: Event): string | null =>
+  (event.target as Element).closest<HTMLElement>('[data-call]')?.dataset['call'] ?? null;
 
 /** Whether nothing in particular has the focus. */
 const isOnPage = (): boolean =>

@@ -11,7 +11,7 @@ let groups = 0;
 @Component({
   selector: 'thaw-choices',
   template: `
-    <fieldset (keydown)="chooseByDigit($event)">
+    <fieldset>
       <legend>{{ legend() }}</legend>
       <div class="row">
         @for (choice of choices(); track choice.label; let i = $index) {
@@ -31,6 +31,7 @@ let groups = 0;
   `,
   styleUrl: './choices.scss',
   changeDetection: ChangeDetectionStrategy.OnPush,
+  host: { '(keydown)': 'chooseByDigit($event)' },
 })
 export class Choices<T extends string | number | boolean | null> {
   readonly legend = input.required<string>();

@@ -139,7 +139,7 @@ export class Intake {
   }
 
   /** Six chips are one stop of the Tab key: digits add, arrows move. */
-  protected pressChip(event: KeyboardEvent): void {
+  protected pressChip(event: KeyboardEvent, toolbar: HTMLElement): void {
     const kind = UNIT_KINDS[Number(event.key) - 1];
     if (/^[1-6]$/.test(event.key) && kind && !event.ctrlKey && !event.altKey) {
       event.preventDefault();
@@ -150,7 +150,7 @@ export class Intake {
     const step = { ArrowRight: 1, ArrowLeft: -1 }[event.key];
     if (step === undefined) return;
     event.preventDefault();
-    const chips = [...(event.currentTarget as HTMLElement).querySelectorAll('button')];
+    const chips = [...toolbar.querySelectorAll('button')];
     const at = chips.indexOf(event.target as HTMLButtonElement);
     chips[(at + step + chips.length) % chips.length]?.focus();
   }
