@@ -6,7 +6,7 @@ import {
   computed,
   DestroyRef,
   effect,
-  ElementRef,
+  type ElementRef,
   inject,
   Injector,
   input,
@@ -20,6 +20,8 @@ import { BoardStore } from '../core/board-store';
 import { Keys } from '../core/keys';
 import { Intake } from '../intake/intake';
 import { PinRequest } from '../intake/pin-request';
+import { MapWish } from '../map/map-wish';
+import { StormMap } from '../map/storm-map';
 import { CallPanel } from './call-panel';
 import { Queue } from './queue';
 
@@ -29,7 +31,7 @@ const NEW_CALL = 'new';
 /** The dispatcher's board: the queue, the map, and beside them the open call or the one being taken. */
 @Component({
   selector: 'thaw-board-page',
-  imports: [CallPanel, Intake, Queue],
+  imports: [CallPanel, Intake, Queue, StormMap],
   templateUrl: './board-page.html',
   styleUrl: './board-page.scss',
   changeDetection: ChangeDetectionStrategy.OnPush,
@@ -41,6 +43,7 @@ export class BoardPage {
   private readonly location = inject(Location);
   private readonly injector = inject(Injector);
   private readonly pins = inject(PinRequest);
+  private readonly mapWish = inject(MapWish);
 
   /** From the address, so that a reload or a link opens the call again. */
   readonly call = input<string>();
@@ -91,6 +94,7 @@ export class BoardPage {
   protected toggleMap(): void {
     this.wantsMap.update((wants) => !wants);
     if (!this.wantsMap()) return;
+    if (this.board.selectedCallId() !== null) this.mapWish.show('selected-call');
     this.afterRender(() =>
       this.map()?.nativeElement.querySelector<HTMLElement>('[tabindex="0"]')?.focus(),
     );

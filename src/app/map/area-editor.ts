@@ -1,0 +1,336 @@
+import { computed, inject, Injectable, signal } from '@angular/core';
+import type { AreaDto } from '@shared/contract/areas';
+import type { LonLat } from '@shared/contract/common';
+import { isInRing } from '@shared/domain/point-in-ring';
+import { Announce } from '../core/announce';
+import { Api, newId } from '../core/api';
+import { BoardStore } from '../core/board-store';
+import { Clock } from '../core/clock';
+import { ProblemError, problemWords } from '../core/problem-error';
+import { Zone } from '../core/zone';
+import {
+  areaChanges,
+  type AreaTimes,
+  BLANK_TIMES,
+  problemIn,
+  setStillOut,
+  timesOf,
+  typeBack,
+  typeOut,
+} from './area-times';
+import {
+  addCorner,
+  canClose,
+  closed,
+  crossesItself,
+  EMPTY_OUTLINE,
+  type Outline,
+  outlineOf,
+  ringOf,
+  select,
+} from './outline';
+
+/**
+ * An outage area while it is drawn or changed: its outline, its times, what went wrong with saving
+ * it. What somebody else saves meanwhile is shown and overwrites nothing.
+ */
+@Injectable()
+export class AreaEditor {
+  private readonly api = inject(Api);
+  private readonly board = inject(BoardStore);
+  private readonly clock = inject(Clock);
+  private readonly zone = inject(Zone);
+  private readonly announce = inject(Announce);
+
+  private readonly isOpenNow = signal(false);
+  /** The area as the person saw it when the change began; `null` for a new one. */
+  private readonly baseNow = signal<AreaDto | null>(null);
+  private readonly outlineNow = signal<Outline>(EMPTY_OUTLINE);
+  private readonly timesNow = signal<AreaTimes>(BLANK_TIMES);
+  private readonly earlier = signal<readonly Outline[]>([]);
+  private readonly pending = signal(false);
+  private readonly trouble = signal('');
+  private readonly isGoneNow = signal(false);
+  private areaId = '';
+  /** The command that was sent last and its content; a repeat of the same is the same command. */
+  private sent = { id: '', content: '' };
+
+  readonly isOpen = this.isOpenNow.asReadonly();
+  readonly base = this.baseNow.asReadonly();
+  readonly outline = this.outlineNow.asReadonly();
+  readonly times = this.timesNow.asReadonly();
+  readonly isBusy = this.pending.asReadonly();
+  /** Why saving did not work. */
+  readonly problem = this.trouble.asReadonly();
+  readonly canUndo = computed(() => this.earlier().length > 0);
+  readonly isDrawing = computed(() => this.isOpen() && !this.outline().isClosed);
+  readonly crosses = computed(() => crossesItself(this.outline()));
+
+  /** The area as somebody else has saved it since; `null` while nobody has. */
+  readonly theirs = computed<AreaDto | null>(() => {
+    const base = this.base();
+    const now = base && this.board.areas().get(base.id);
+    return now && now.version > base.version ? now : null;
+  });
+  readonly theirChanges = computed(() => {
+    const base = this.base();
+    const theirs = this.theirs();
+    return base && theirs ? areaChanges(base, theirs, this.words) : [];
+  });
+  /** Somebody else has removed the area. */
+  readonly isGone = computed(() => {
+    const base = this.base();
+    return this.isGoneNow() || (base !== null && !this.board.areas().has(base.id));
+  });
+
+  /** Open calls inside the outline as it is now. */
+  readonly callsInside = computed(() => {
+    const ring = ringOf(this.outline());
+    if (!ring || !this.isOpen()) return 0;
+    return this.board.openCalls().filter(({ address }) => {
+      const { lonLat } = address;
+      return lonLat !== null && isInRing(lonLat, ring);
+    }).length;
+  });
+
+  draw(): void {
+    this.start(null, EMPTY_OUTLINE, BLANK_TIMES);
+  }
+
+  change(area: AreaDto): void {
+    this.start(area, outlineOf(area.ring), timesOf(area, this.words));
+  }
+
+  /** Stops without saving. For a few seconds it can be taken up again where it was. */
+  cancel(): void {
+    const left = {
+      base: this.base(),
+      outline: this.outline(),
+      times: this.times(),
+      areaId: this.areaId,
+    };
+    const isWorthKeeping = this.canUndo();
+    this.close();
+    if (!isWorthKeeping) return;
+    this.announce.notice('The outage area was not saved.', {
+      label: 'Go on',
+      run: () => {
+        this.start(left.base, left.outline, left.times);
+        this.areaId = left.areaId;
+      },
+    });
+  }
+
+  private close(): void {
+    this.isOpenNow.set(false);
+    this.baseNow.set(null);
+    this.outlineNow.set(EMPTY_OUTLINE);
+    this.earlier.set([]);
+  }
+
+  /** Takes a step with the outline that can be undone. */
+  shape(step: (outline: Outline) => Outline): void {
+    const before = this.outline();
+    const after = step(before);
+    if (after === before) return;
+    this.earlier.update((steps) => [...steps, before]);
+    this.outlineNow.set(after);
+  }
+
+  /** The middle of a drag: shown, and undone together with its beginning. */
+  drag(step: (outline: Outline) => Outline): void {
+    this.outlineNow.update(step);
+  }
+
+  select(index: number | null): void {
+    this.outlineNow.update((outline) => select(outline, index));
+  }
+
+  undo(): void {
+    const last = this.earlier().at(-1);
+    if (!last) return;
+    this.earlier.update((steps) => steps.slice(0, -1));
+    this.outlineNow.set(last);
+  }
+
+  addCorner(corner: LonLat): void {
+    this.shape((outline) => addCorner(outline, corner));
+  }
+
+  /** Ends the drawing of the outline; the times come next. */
+  finish(): void {
+    if (!canClose(this.outline())) return;
+    this.shape(closed);
+    this.announce.say('The outline is finished. Give it a name and its times.');
+  }
+
+  rename(name: string): void {
+    this.timesNow.update((times) => ({ ...times, name }));
+  }
+  typeOut(text: string): void {
+    this.timesNow.update((times) => typeOut(times, text, this.clock.exact(), this.zone.name()));
+  }
+  typeBack(text: string): void {
+    this.timesNow.update((times) => typeBack(times, text, this.clock.exact(), this.zone.name()));
+  }
+  setStillOut(isStillOut: boolean): void {
+    this.timesNow.update((times) => setStillOut(times, isStillOut));
+  }
+
+  /** Goes on with the person's own changes; what they did not touch becomes the other's. */
+  keepMine(): void {
+    const base = this.base();
+    const theirs = this.theirs();
+    if (!base || !theirs) return;
+    const mine = timesOf(base, this.words);
+    const other = timesOf(theirs, this.words);
+    this.timesNow.update((times) => ({
+      ...times,
+      ...(times.name === mine.name ? { name: other.name } : {}),
+      ...(times.outAt === mine.outAt ? { outAt: other.outAt, outText: other.outText } : {}),
+      ...(times.backAt === mine.backAt && times.isStillOut === mine.isStillOut
+        ? { backAt: other.backAt, backText: other.backText, isStillOut: other.isStillOut }
+        : {}),
+    }));
+    if (isSameRing(ringOf(this.outline()), base.ring)) this.outlineNow.set(outlineOf(theirs.ring));
+    this.baseNow.set(theirs);
+    this.trouble.set('');
+  }
+
+  /** Drops the person's own changes for what the other one saved. */
+  takeTheirs(): void {
+    const theirs = this.theirs();
+    if (theirs) this.change(theirs);
+  }
+
+  /** The area was removed by somebody else; the work goes on as a new one. */
+  keepAsNew(): void {
+    this.baseNow.set(null);
+    this.isGoneNow.set(false);
+    this.areaId = newId();
+    this.trouble.set('');
+  }
+
+  async save(): Promise<void> {
+    const ring = ringOf(this.outline());
+    const times = this.times();
+    const problem = !ring || !this.outline().isClosed ? OPEN_OUTLINE : problemIn(times);
+    this.trouble.set(this.crosses() ? CROSSING_OUTLINE : problem);
+    if (this.problem() !== '' || !ring || times.outAt === null || this.pending()) return;
+    if (this.theirs()) {
+      this.trouble.set('Somebody else changed this area. Decide first whose version stays.');
+      return;
+    }
+    const content = {
+      name: times.name.trim(),
+      ring,
+      outAt: times.outAt,
+      backAt: times.isStillOut ? null : times.backAt,
+    };
+    await this.run(async () => {
+      const inside = this.callsInside();
+      const area = await this.send(content);
+      this.board.takeReply({ kind: 'areas', areas: [area], gone: [] });
+      this.close();
+      this.announce.notice(savedWords(area, inside));
+    });
+  }
+
+  async remove(): Promise<void> {
+    const base = this.base();
+    if (!base || this.pending()) return;
+    await this.run(async () => {
+      await this.api.call('removeArea', {
+        params: { areaId: base.id },
+        body: { commandId: this.commandFor(`remove ${base.version}`), version: base.version },
+      });
+      this.board.takeReply({ kind: 'areas', areas: [], gone: [base.id] });
+      this.close();
+      this.announce.notice(
+        `${base.name} is removed. Calls that followed it keep the times that they had, unless another area is around them.`,
+      );
+    });
+  }
+
+  private send(content: Pick<AreaDto, 'name' | 'ring' | 'outAt' | 'backAt'>): Promise<AreaDto> {
+    const base = this.base();
+    if (!base) {
+      const body = { areaId: this.areaId, ...content };
+      const stormId = this.board.storm()?.id ?? '';
+      const commandId = this.commandFor(JSON.stringify(body));
+      return this.api.call('drawArea', { params: { stormId }, body: { ...body, commandId } });
+    }
+    const body = { ...changedOnly(base, content), version: base.version };
+    const commandId = this.commandFor(JSON.stringify(body));
+    return this.api.call('changeArea', {
+      params: { areaId: base.id },
+      body: { ...body, commandId },
+    });
+  }
+
+  private async run(work: () => Promise<void>): Promise<void> {
+    this.pending.set(true);
+    try {
+      await work();
+    } catch (error) {
+      // Everything that was typed and drawn stays; the person decides.
+      if (!(error instanceof ProblemError)) throw error;
+      this.trouble.set(problemWords(error));
+      if (error.code === 'stale-version') {
+        const current = error.current as AreaDto | undefined;
+        if (current) this.board.takeReply({ kind: 'areas', areas: [current], gone: [] });
+      }
+      if (error.code === 'not-found' && this.base()) this.isGoneNow.set(true);
+    } finally {
+      this.pending.set(false);
+    }
+  }
+
+  private commandFor(content: string): string {
+    if (this.sent.content !== content) this.sent = { id: newId(), content };
+    return this.sent.id;
+  }
+
+  private start(base: AreaDto | null, outline: Outline, times: AreaTimes): void {
+    this.areaId = base?.id ?? newId();
+    this.baseNow.set(base);
+    this.outlineNow.set(outline);
+    this.timesNow.set(times);
+    this.earlier.set([]);
+    this.trouble.set('');
+    this.isGoneNow.set(false);
+    this.isOpenNow.set(true);
+  }
+
+  private readonly words = (at: number): string => this.zone.dayTime(at);
+}
+
+const OPEN_OUTLINE = 'Finish the outline first: it needs three corners.';
+const CROSSING_OUTLINE = 'The outline crosses itself. Move a corner until it does not.';
+
+function savedWords(area: AreaDto, inside: number): string {
+  const calls = inside === 1 ? '1 open call lies' : `${inside} open calls lie`;
+  if (inside === 0) return `${area.name} is saved. No open call lies inside.`;
+  return `${area.name} is saved. ${calls} inside; those without times of their own follow it now.`;
+}
+
+type AreaContent = Pick<AreaDto, 'name' | 'ring' | 'outAt' | 'backAt'>;
+
+/** Only what the person changed, so that nothing else is written over. */
+function changedOnly(base: AreaDto, content: AreaContent): Partial<AreaContent> {
+  return {
+    ...(content.name === base.name ? {} : { name: content.name }),
+    ...(isSameRing(content.ring, base.ring) ? {} : { ring: content.ring }),
+    ...(content.outAt === base.outAt ? {} : { outAt: content.outAt }),
+    ...(content.backAt === base.backAt ? {} : { backAt: content.backAt }),
+  };
+}
+
+/** Rounding moves a corner by less than a hand's breadth. */
+const isSameRing = (a: readonly LonLat[] | null, b: readonly LonLat[]): boolean =>
+  a !== null &&
+  a.length === b.length &&
+  a.every(([lon, lat], i) => {
+    const [otherLon = NaN, otherLat = NaN] = b[i] ?? [];
+    return Math.abs(lon - otherLon) < 2e-6 && Math.abs(lat - otherLat) < 2e-6;
+  });

@@ -1,0 +1,76 @@
+import {
+  ChangeDetectionStrategy,
+  Component,
+  computed,
+  effect,
+  ElementRef,
+  inject,
+  output,
+  signal,
+  untracked,
+  viewChild,
+} from '@angular/core';
+import { fromNowWords } from '../board/time-words';
+import { Clock } from '../core/clock';
+import { Zone } from '../core/zone';
+import { AreaEditor } from './area-editor';
+import { canClose, LEAST_CORNERS, removeCorner, selectNext } from './outline';
+
+/** Beside the map while an outage area is drawn or changed: what to do next, its times, saving. */
+@Component({
+  selector: 'thaw-area-form',
+  templateUrl: './area-form.html',
+  styleUrl: './map-panel.scss',
+  changeDetection: ChangeDetectionStrategy.OnPush,
+})
+export class AreaForm {
+  protected readonly editor = inject(AreaEditor);
+  private readonly clock = inject(Clock);
+  private readonly zone = inject(Zone);
+
+  /** The corner that the buttons have just chosen; the map shows it. */
+  readonly cornerChosen = output<number>();
+  readonly cornerAtCentre = output();
+  readonly cancelled = output();
+
+  private readonly nameField = viewChild<ElementRef<HTMLInputElement>>('name');
+  protected readonly isRemoving = signal(false);
+  protected readonly leastCorners = LEAST_CORNERS;
+
+  protected readonly title = computed(() => this.editor.base()?.name ?? 'New outage area');
+  protected readonly canFinish = computed(() => canClose(this.editor.outline()));
+  protected readonly corners = computed(() => this.editor.outline().corners.length);
+  protected readonly selectedCorner = computed(() => this.editor.outline().selected);
+  protected readonly outWords = computed(() => this.meaning(this.editor.times().outAt));
+  protected readonly backWords = computed(() => this.meaning(this.editor.times().backAt));
+  protected readonly insideWords = computed(() => {
+    const inside = this.editor.callsInside();
+    if (inside === 0) return 'No open call lies inside.';
+    return inside === 1
+      ? '1 open call lies inside. Unless it has times of its own, it takes these.'
+      : `${inside} open calls lie inside. Those without times of their own take these.`;
+  });
+
+  constructor() {
+    // The hand goes from the last corner to the name.
+    effect(() => {
+      const name = this.nameField()?.nativeElement;
+      if (name && untracked(() => this.editor.base()) === null) name.focus();
+    });
+  }
+
+  protected choose(step: 1 | -1): void {
+    const { selected } = selectNext(this.editor.outline(), step);
+    this.editor.select(selected);
+    if (selected !== null) this.cornerChosen.emit(selected);
+  }
+
+  protected removeChosen(): void {
+    const { selected } = this.editor.outline();
+    if (selected !== null) this.editor.shape((outline) => removeCorner(outline, selected));
+  }
+
+  private meaning(at: number | null): string {
+    return at === null ? '' : `${this.zone.dayTime(at)}, ${fromNowWords(at, this.clock.now())}`;
+  }
+}

@@ -1,0 +1,206 @@
+import type { AreaDto, PocketDto } from '@shared/contract/areas';
+import type { LonLat } from '@shared/contract/common';
+import type { CallMark } from './call-mark';
+import { type Box, isInBox, LabelBoxes } from './label-boxes';
+import { type MapInk } from './map-ink';
+import { type PlacedMark, marksAt, placeMarks } from './mark-places';
+import { MarkSprites } from './mark-sprites';
+import type { Outline } from './outline';
+import { type AreaShape, makeHatch, paintAreaLabels, paintAreas } from './paint-areas';
+import { paintCalls, paintRing } from './paint-calls';
+import { paintOutline } from './paint-outline';
+import { paintPocketLabels, paintPockets, type PocketShape } from './paint-pockets';
+import { paintRoutes, paintStopNumbers, paintTechnicians, type RouteShape } from './paint-routes';
+import { onScreen, toWorld, type View, type WorldPoint } from './world';
+
+/** What the map shows, but for what moves with the pointer. A layer that is left out is empty. */
+export interface MapScene {
+  /** In the order of the queue. */
+  readonly marks: readonly CallMark[];
+  readonly areas: readonly AreaShape[];
+  readonly pockets: readonly PocketShape[];
+  readonly routes: readonly RouteShape[];
+  readonly hasRoutes: boolean;
+  readonly hasTechnicians: boolean;
+  readonly chosenPocketKey: string | null;
+  readonly chosenTechnicianId: string | null;
+}
+
+/** What moves with the pointer and the cross-hair. */
+export interface MapTop {
+  readonly selected: CallMark | null;
+  readonly hovered: CallMark | null;
+  readonly outline: Outline | null;
+  readonly nextCorner: LonLat | null;
+  readonly pin: LonLat | null;
+}
+
+const EMPTY_SCENE: MapScene = {
+  marks: [],
+  areas: [],
+  pockets: [],
+  routes: [],
+  hasRoutes: false,
+  hasTechnicians: false,
+  chosenPocketKey: null,
+  chosenTechnicianId: null,
+};
+const EMPTY_TOP: MapTop = {
+  selected: null,
+  hovered: null,
+  outline: null,
+  nextCorner: null,
+  pin: null,
+};
+
+export type MapHit =
+  | { readonly kind: 'calls'; readonly marks: readonly CallMark[] }
+  | { readonly kind: 'technician'; readonly technicianId: string }
+  | { readonly kind: 'pocket'; readonly pocket: PocketDto }
+  | { readonly kind: 'area'; readonly area: AreaDto };
+
+/** Draws the scene, and knows afterwards what lies where. */
+export class MapPicture {
+  scene = EMPTY_SCENE;
+  top = EMPTY_TOP;
+
+  private ink: MapInk | null = null;
+  private sprites: MarkSprites | null = null;
+  private spritesFor = '';
+  private hatch: CanvasPattern | null = null;
+  private placed: readonly PlacedMark[] = [];
+  private placedFor: { readonly marks: readonly CallMark[]; readonly zoom: number } | null = null;
+  private view: View | null = null;
+  private plates: ReturnType<typeof paintTechnicians> = [];
+  private areaLabels: ReturnType<typeof paintAreaLabels> = [];
+  private pocketLabels: ReturnType<typeof paintPocketLabels> = [];
+
+  constructor(private readonly readInk: () => MapInk) {}
+
+  /** The colours have changed: everything that was drawn in them is forgotten. */
+  forgetInk(): void {
+    this.ink = null;
+    this.sprites = null;
+    this.hatch = null;
+  }
+
+  readonly paint = (ctx: CanvasRenderingContext2D, view: View, pixelRatio: number): void => {
+    const { scene } = this;
+    const ink = this.inkNow();
+    const sprites = this.spritesNow(ink, pixelRatio);
+    this.hatch ??= makeHatch(ctx, ink);
+    this.view = view;
+    const boxes = new LabelBoxes();
+
+    paintPockets(ctx, view, scene.pockets, scene.chosenPocketKey, ink);
+    paintAreas(ctx, view, scene.areas, this.hatch, ink);
+    if (scene.hasRoutes) paintRoutes(ctx, view, scene.routes, scene.chosenTechnicianId, ink);
+    paintCalls(ctx, view, this.placedAt(view.zoom), sprites, ink);
+    this.plates = scene.hasTechnicians
+      ? paintTechnicians(ctx, view, scene.routes, scene.chosenTechnicianId, boxes, ink)
+      : [];
+    this.pocketLabels = paintPocketLabels(
+      ctx,
+      view,
+      scene.pockets,
+      scene.chosenPocketKey,
+      boxes,
+      ink,
+    );
+    this.areaLabels = paintAreaLabels(ctx, view, scene.areas, boxes, ink);
+  };
+
+  readonly paintTop = (ctx: CanvasRenderingContext2D, view: View, pixelRatio: number): void => {
+    const { scene, top } = this;
+    const ink = this.inkNow();
+    const sprites = this.spritesNow(ink, pixelRatio);
+    const chosen = scene.routes.find((one) => one.technician.id === scene.chosenTechnicianId);
+    if (chosen && scene.hasRoutes) paintStopNumbers(ctx, view, chosen, ink);
+    for (const kind of ['hovered', 'selected'] as const) {
+      const mark = top[kind];
+      if (mark) paintRing(ctx, view, this.placedOf(mark, view.zoom), kind, sprites, ink);
+    }
+    if (top.outline) {
+      const next = top.nextCorner ? toWorld(top.nextCorner) : null;
+      paintOutline(ctx, view, top.outline, next, ink);
+    }
+    if (top.pin) paintPin(ctx, onScreen(view, toWorld(top.pin)), ink);
+  };
+
+  /**
+   * What lies under the pointer: calls before plates before labels.
+   *
+   * @param at pixels of the whole world
+   */
+  hit(at: WorldPoint, slackPx: number): MapHit | null {
+    const { view } = this;
+    if (!view) return null;
+    const near = marksAt(this.placedAt(view.zoom), view.zoom, at, slackPx);
+    if (near.length > 0) return { kind: 'calls', marks: meant(near) };
+    const x = at.x - view.left;
+    const y = at.y - view.top;
+    const inBox = ({ box }: { readonly box: Box }): boolean => isInBox(box, x, y);
+    const plate = this.plates.findLast(inBox);
+    if (plate) return { kind: 'technician', technicianId: plate.technicianId };
+    const pocket = this.pocketLabels.find(inBox);
+    if (pocket) return { kind: 'pocket', pocket: pocket.pocket };
+    const area = this.areaLabels.find(inBox);
+    return area ? { kind: 'area', area: area.area } : null;
+  }
+
+  private inkNow(): MapInk {
+    return (this.ink ??= this.readInk());
+  }
+
+  private spritesNow(ink: MapInk, pixelRatio: number): MarkSprites {
+    const key = String(pixelRatio);
+    if (!this.sprites || this.spritesFor !== key) {
+      this.sprites = new MarkSprites(ink, pixelRatio);
+      this.spritesFor = key;
+    }
+    return this.sprites;
+  }
+
+  private placedAt(zoom: number): readonly PlacedMark[] {
+    const whole = Math.round(zoom);
+    const { marks } = this.scene;
+    if (this.placedFor?.marks !== marks || this.placedFor.zoom !== whole) {
+      this.placed = placeMarks(marks, whole);
+      this.placedFor = { marks, zoom: whole };
+    }
+    return this.placed;
+  }
+
+  private placedOf(mark: CallMark, zoom: number): PlacedMark {
+    const found = this.placedAt(zoom).find((one) => one.mark.call.id === mark.call.id);
+    return found ?? { mark, isFull: false, count: 1 };
+  }
+}
+
+/** A full mark on top means itself and its house; dots beside each other mean all of them. */
+function meant(near: readonly PlacedMark[]): readonly CallMark[] {
+  const [first] = near;
+  if (!first) return [];
+  const sameHouse = near.filter(
+    ({ mark }) => Math.abs(mark.x - first.mark.x) < 2e-7 && Math.abs(mark.y - first.mark.y) < 2e-7,
+  );
+  const chosen = first.isFull ? sameHouse : near;
+  return chosen.map(({ mark }) => mark);
+}
+
+function paintPin(ctx: CanvasRenderingContext2D, { x, y }: WorldPoint, ink: MapInk): void {
+  const pin = new Path2D(
+    `M${x} ${y}C${x - 3} ${y - 9} ${x - 10} ${y - 13} ${x - 10} ${y - 20}` +
+      `A10 10 0 0 1 ${x + 10} ${y - 20}C${x + 10} ${y - 13} ${x + 3} ${y - 9} ${x} ${y}Z`,
+  );
+  ctx.lineJoin = 'round';
+  ctx.strokeStyle = ink.ground;
+  ctx.lineWidth = 5;
+  ctx.stroke(pin);
+  ctx.fillStyle = ink.accent;
+  ctx.fill(pin);
+  ctx.beginPath();
+  ctx.arc(x, y - 20, 3.5, 0, 2 * Math.PI);
+  ctx.fillStyle = ink.ground;
+  ctx.fill();
+}

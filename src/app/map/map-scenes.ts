@@ -1,0 +1,118 @@
+import { computed, inject, Injectable, signal } from '@angular/core';
+import type { LonLat } from '@shared/contract/common';
+import { MINUTE_MS } from '@shared/domain/instant';
+import { DEFAULT_WEIGHTS } from '@shared/domain/urgency';
+import { BoardStore } from '../core/board-store';
+import { Clock } from '../core/clock';
+import { rankedCall } from '../core/ranking';
+import { Session } from '../core/session';
+import { duration, Zone } from '../core/zone';
+import { AreaEditor } from './area-editor';
+import { areaTimesWords, pocketWords } from './area-words';
+import { type CallMark, callMark, CallMarks } from './call-mark';
+import { MapLayers } from './map-layers';
+import type { MapScene } from './map-picture';
+import { areaShape } from './paint-areas';
+import { pocketShape } from './paint-pockets';
+import { routeShape } from './paint-routes';
+import { toWorld, type WorldPoint } from './world';
+
+/** Makes what the map draws from what the board knows; each part anew only when it has changed. */
+@Injectable()
+export class MapScenes {
+  private readonly board = inject(BoardStore);
+  private readonly session = inject(Session);
+  private readonly clock = inject(Clock);
+  private readonly zone = inject(Zone);
+  private readonly layers = inject(MapLayers);
+  private readonly editor = inject(AreaEditor);
+
+  /** Whose route is drawn strongest, unless a call on another route is selected. */
+  readonly chosenTechnicianId = signal<string | null>(null);
+
+  private readonly minute = computed(() => Math.floor(this.clock.now() / MINUTE_MS) * MINUTE_MS);
+  private readonly callMarks = new CallMarks();
+
+  private readonly marks = computed(() =>
+    this.layers.isShown('calls') ? this.callMarks.of(this.board.shown(), this.minute()) : [],
+  );
+
+  private readonly areas = computed(() => {
+    if (!this.layers.isShown('areas')) return [];
+    const edited = this.editor.isOpen() ? this.editor.base()?.id : undefined;
+    return [...this.board.areas().values()]
+      .filter(({ id }) => id !== edited)
+      .map((area) => areaShape(area, areaTimesWords(area, this.minute(), this.zone.name())));
+  });
+
+  private readonly pockets = computed(() =>
+    this.layers.isShown('pockets')
+      ? this.board
+          .pockets()
+          .map((pocket) =>
+            pocketShape(pocket, pocketWords(pocket, this.minute(), this.zone.name())),
+          )
+      : [],
+  );
+
+  private readonly routes = computed(() => {
+    const calls = this.board.calls();
+    const placeOf = (callId: string): WorldPoint | null => {
+      const lonLat = calls.get(callId)?.address.lonLat;
+      return lonLat ? toWorld(lonLat) : null;
+    };
+    const now = this.clock.now();
+    return [...this.board.technicians().values()]
+      .filter(({ active }) => active)
+      .map((technician) =>
+        routeShape(
+          technician,
+          this.board.routes().get(technician.id) ?? [],
+          placeOf,
+          now,
+          duration,
+        ),
+      );
+  });
+
+  readonly scene = computed<MapScene>(() => ({
+    marks: this.marks(),
+    areas: this.areas(),
+    pockets: this.pockets(),
+    routes: this.routes(),
+    hasRoutes: this.layers.isShown('routes'),
+    hasTechnicians: this.layers.isShown('technicians'),
+    chosenPocketKey: this.board.filter().pocketKey,
+    chosenTechnicianId: this.board.selectedCall()?.technicianId ?? this.chosenTechnicianId(),
+  }));
+
+  readonly selectedMark = computed(() => this.markOf(this.board.selectedCallId()));
+  readonly hoveredMark = computed(() => this.markOf(this.board.hoveredCallId()));
+
+  /** Where all open calls are that the filter lets through. */
+  callPlaces(): LonLat[] {
+    return this.board
+      .shown()
+      .flatMap(({ call }) => (call.address.lonLat ? [call.address.lonLat] : []));
+  }
+
+  pocketOfSelection() {
+    const selected = this.board.selectedCallId();
+    const { pocketKey } = this.board.filter();
+    const pockets = this.board.pockets();
+    return (
+      pockets.find(({ callIds }) => selected !== null && callIds.includes(selected)) ??
+      pockets.find(({ key }) => key === pocketKey) ??
+      null
+    );
+  }
+
+  /** Also of a call that the filter keeps off the map: what is selected is always seen. */
+  private markOf(callId: string | null): CallMark | null {
+    const call = this.board.calls().get(callId ?? '');
+    if (!call) return null;
+    const medicine = this.session.settings()?.medicineWeight ?? DEFAULT_WEIGHTS.medicine;
+    const now = this.minute();
+    return callMark(rankedCall(call, now, medicine), now);
+  }
+}

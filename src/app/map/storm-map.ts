@@ -1,0 +1,290 @@
+import {
+  ChangeDetectionStrategy,
+  Component,
+  computed,
+  DestroyRef,
+  effect,
+  ElementRef,
+  inject,
+  output,
+  signal,
+  untracked,
+  viewChild,
+  ViewEncapsulation,
+} from '@angular/core';
+import type { LonLat } from '@shared/contract/common';
+import { BoardStore } from '../core/board-store';
+import { Clock } from '../core/clock';
+import { Keys } from '../core/keys';
+import { Session } from '../core/session';
+import { Theme } from '../core/theme';
+import { AgoPipe, ClockTimePipe } from '../core/zone';
+import { AreaEditor } from './area-editor';
+import { AreaForm } from './area-form';
+import { CallPopover } from './call-popover';
+import { LeafletStage } from './leaflet-stage';
+import { MapActions } from './map-actions';
+import { MapHands } from './map-hands';
+import { MAP_LAYERS, MapLayers } from './map-layers';
+import { MapLegend } from './map-legend';
+import { MapLists } from './map-lists';
+import { MapPopover } from './map-popover';
+import { MapScenes } from './map-scenes';
+import { MapWish } from './map-wish';
+import { PinTool } from './pin-tool';
+import { scaleBar } from './scale-bar';
+import { metresPerPixel } from './world';
+
+/**
+ * The storm on a map: calls, pockets, outage areas, technicians and their routes, over tiles of our
+ * own server. It asks for nothing and may stand on any screen of the desk, large or small.
+ */
+@Component({
+  selector: 'thaw-storm-map',
+  imports: [AgoPipe, AreaForm, CallPopover, ClockTimePipe, MapLegend, MapLists],
+  templateUrl: './storm-map.html',
+  styleUrls: ['./storm-map.scss', './leaflet-base.scss'],
+  encapsulation: ViewEncapsulation.None,
+  changeDetection: ChangeDetectionStrategy.OnPush,
+  providers: [AreaEditor, MapActions, MapHands, MapPopover, MapScenes, PinTool],
+})
+export class StormMap {
+  protected readonly board = inject(BoardStore);
+  protected readonly session = inject(Session);
+  protected readonly clock = inject(Clock);
+  protected readonly layers = inject(MapLayers);
+  protected readonly actions = inject(MapActions);
+  protected readonly hands = inject(MapHands);
+  protected readonly editor = inject(AreaEditor);
+  protected readonly pin = inject(PinTool);
+  protected readonly popover = inject(MapPopover);
+  private readonly scenes = inject(MapScenes);
+  private readonly theme = inject(Theme);
+  private readonly wish = inject(MapWish);
+
+  /** A call is to be opened, not only selected. */
+  readonly opened = output<string>();
+
+  private readonly host = viewChild.required<ElementRef<HTMLElement>>('map');
+  private readonly stage = this.actions.stage;
+  private focusedBefore: HTMLElement | null = null;
+
+  protected readonly layerNames = MAP_LAYERS;
+  protected readonly panel = this.actions.panel;
+  /** Moves with the map. */
+  private readonly sight = signal<{ readonly lat: number; readonly zoom: number } | null>(null);
+  protected readonly scale = computed(() => {
+    const sight = this.sight();
+    return sight ? scaleBar(metresPerPixel(sight.lat, sight.zoom)) : null;
+  });
+  protected readonly hasLegs = computed(
+    () => this.layers.isShown('routes') && this.board.stops().size > 0,
+  );
+  protected readonly popoverPlace = computed(() => {
+    this.sight();
+    const at = this.popover.at();
+    const stage = this.stage();
+    return at && stage ? this.popover.placeIn(stage.windowPoint(at), stage.map.getSize()) : null;
+  });
+
+  constructor() {
+    this.startWhenSized();
+    this.showScene();
+    this.showTop();
+    this.followTheme();
+    this.followSelection();
+    this.followPinRequest();
+    this.grantWishes();
+    this.registerKeys();
+  }
+
+  protected open(callId: string): void {
+    this.popover.close();
+    this.opened.emit(callId);
+  }
+
+  protected takePin(): void {
+    const placed = this.pin.placed();
+    if (placed) this.pin.take(placed);
+  }
+
+  /** Leaflet needs a window with a size; a map in a hidden part of the page waits for it. */
+  private startWhenSized(): void {
+    const sizes = new ResizeObserver(() => {
+      const host = this.host().nativeElement;
+      if (host.clientWidth === 0 || host.clientHeight === 0) return;
+      const stage = this.stage();
+      if (stage) stage.resized();
+      else this.start(host);
+    });
+    effect((onCleanup) => {
+      const host = this.host().nativeElement;
+      if (!this.session.region()) return;
+      sizes.observe(host);
+      onCleanup(() => sizes.unobserve(host));
+    });
+    inject(DestroyRef).onDestroy(() => {
+      sizes.disconnect();
+      this.hands.detach();
+      this.pin.reset();
+      this.stage()?.remove();
+    });
+  }
+
+  private start(host: HTMLElement): void {
+    const region = this.session.region();
+    if (!region) return;
+    const { picture } = this.actions;
+    const stage = new LeafletStage(host, region, {
+      theme: this.theme.scheme(),
+      paint: picture.paint,
+      paintTop: picture.paintTop,
+    });
+    const { map } = stage;
+    const look = (): void => {
+      this.sight.set({ lat: map.getCenter().lat, zoom: map.getZoom() });
+      if (this.hands.pointerAt() === null) this.pin.look(stage.centre());
+    };
+    map.on('move zoomend resize', look);
+    this.hands.attach(stage, host, (callId) => this.open(callId));
+    this.stage.set(stage);
+    look();
+  }
+
+  private showScene(): void {
+    effect(() => {
+      const stage = this.stage();
+      this.actions.picture.scene = this.scenes.scene();
+      stage?.refresh();
+    });
+  }
+
+  private showTop(): void {
+    effect(() => {
+      const stage = this.stage();
+      this.actions.picture.top = {
+        selected: this.scenes.selectedMark(),
+        hovered: this.scenes.hoveredMark(),
+        outline: this.editor.isOpen() ? this.editor.outline() : null,
+        nextCorner: this.nextCorner(),
+        pin: this.pin.placed(),
+      };
+      stage?.refreshTop();
+    });
+  }
+
+  private nextCorner(): LonLat | null {
+    const stage = this.stage();
+    if (!this.editor.isDrawing() || !stage) return null;
+    const pointer = this.hands.pointerAt();
+    if (pointer) return pointer;
+    this.sight();
+    return stage.centre();
+  }
+
+  private followTheme(): void {
+    effect(() => {
+      const scheme = this.theme.scheme();
+      this.theme.hasMoreContrast();
+      const stage = this.stage();
+      // The page takes its new colours in the same turn; they are read when the next frame is drawn.
+      this.actions.picture.forgetInk();
+      stage?.setTheme(scheme);
+      stage?.refresh();
+    });
+  }
+
+  /** What is selected elsewhere is brought into sight, and the map is not moved more than that. */
+  private followSelection(): void {
+    effect(() => {
+      const selected = this.board.selectedCallId();
+      untracked(() => {
+        const stage = this.stage();
+        if (selected === null || !stage || this.hands.hasTool()) return;
+        const lonLat = this.board.calls().get(selected)?.address.lonLat;
+        if (lonLat && stage.map.getSize().x > 0) stage.bringIntoSight(lonLat);
+        this.popover.selectionIs(selected);
+      });
+    });
+  }
+
+  private followPinRequest(): void {
+    effect(() => {
+      const wanted = this.pin.wanted();
+      const stage = this.stage();
+      untracked(() => {
+        if (wanted && stage) {
+          this.focusedBefore = document.activeElement as HTMLElement | null;
+          this.popover.close();
+          this.pin.reset();
+          if (wanted.near) stage.showCall(wanted.near);
+          this.actions.focus();
+        } else if (!wanted && this.focusedBefore) {
+          // Back to where the hands were, unless they have gone elsewhere already.
+          if (document.activeElement === this.host().nativeElement) this.focusedBefore.focus();
+          this.focusedBefore = null;
+        }
+      });
+    });
+  }
+
+  private grantWishes(): void {
+    effect(() => {
+      const wanted = this.wish.wanted();
+      const stage = this.stage();
+      if (!wanted || !stage) return;
+      untracked(() => {
+        this.wish.granted();
+        // The page may have just made room for the map.
+        requestAnimationFrame(() => {
+          stage.resized();
+          this.actions.show(wanted.sight);
+        });
+      });
+    });
+  }
+
+  private isInSight(): boolean {
+    return this.host().nativeElement.clientWidth > 0;
+  }
+
+  private registerKeys(): void {
+    const { actions } = this;
+    const when = (): boolean => this.isInSight();
+    const action = (keys: string, does: string, run: () => void) => ({
+      keys,
+      does,
+      scope: 'Map',
+      when,
+      run,
+    });
+    inject(Keys).register(
+      [
+        action('a', 'Draw an outage area', () => actions.draw()),
+        action('z a', 'Show all calls', () => actions.show('all')),
+        action('z s', 'Show the selected call', () => actions.show('selected-call')),
+        action('z p', 'Show the pocket of the selected call', () => actions.show('pocket')),
+        ...MAP_LAYERS.map(({ layer, name, key }) =>
+          action(`l ${key}`, `Show or hide ${name.toLowerCase()}`, () => this.layers.toggle(layer)),
+        ),
+        {
+          ...action('Escape', 'Leave the pin, the drawing or what is shown', () => this.stepBack()),
+          inFields: true,
+          when: () => this.isInSight() && this.canStepBack(),
+        },
+      ],
+      inject(DestroyRef),
+    );
+  }
+
+  private canStepBack(): boolean {
+    return this.hands.hasTool() || this.popover.at() !== null || this.panel() !== 'none';
+  }
+
+  private stepBack(): void {
+    if (this.pin.isOn()) this.pin.cancel();
+    else if (this.editor.isOpen()) this.actions.cancelArea();
+    else if (this.popover.at() !== null) this.popover.close();
+    else this.panel.set('none');
+  }
+}
