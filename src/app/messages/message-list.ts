@@ -179,21 +179,17 @@ export class MessageListView {
 
   private needRow(id: string, message: MessageDto) {
     const waits = this.model.needsPerson().has(message.id);
-    const state = TEXT_STATES[message.state];
-    const words = message.direction === 'in' ? 'belongs to no open call' : state.words;
+    const isReply = message.direction === 'in';
+    const state = isReply ? REPLY_WITHOUT_CALL : TEXT_STATES[message.state];
+    const trouble = isReply || message.trouble === null ? '' : `: ${message.trouble}`;
     return {
       id,
       who: this.nameOf(message.phone, message.callId),
       when: this.when(message.at),
       body: message.body,
-      icon: waits
-        ? message.direction === 'in'
-          ? ('help' as const)
-          : state.icon
-        : ('check' as const),
-      words: waits ? words : 'looked after',
+      icon: waits ? state.icon : ('check' as const),
+      words: waits ? `${state.words}${trouble}` : 'looked after',
       waits,
-      trouble: waits && message.direction === 'out' ? (message.trouble ?? '') : '',
     };
   }
 
@@ -229,6 +225,8 @@ interface OrderSource {
   /** Counts how often the new order was asked for. */
   readonly taken: number;
 }
+
+const REPLY_WITHOUT_CALL = { icon: 'message', words: 'belongs to no open call' } as const;
 
 const NEED = 'need-';
 const THREAD = 'thread-';

@@ -123,8 +123,11 @@ describe('MessagesPage', () => {
       await fixture.whenStable();
     }
   }
-  async function press(key: string, on: EventTarget = document.body): Promise<void> {
-    on.dispatchEvent(new KeyboardEvent('keydown', { key, bubbles: true, cancelable: true }));
+  /** Presses a key where the focus is, as a keyboard does. */
+  async function press(key: string): Promise<void> {
+    (document.activeElement ?? document.body).dispatchEvent(
+      new KeyboardEvent('keydown', { key, bubbles: true, cancelable: true }),
+    );
     await settle();
   }
   async function click(element: HTMLElement): Promise<void> {
@@ -134,6 +137,7 @@ describe('MessagesPage', () => {
 
   async function show(): Promise<void> {
     fixture = TestBed.createComponent(MessagesPage);
+    document.body.append(host());
     await settle();
   }
 

@@ -67,7 +67,12 @@ export class MessagesPage {
       const thread = this.model.threads().find((one) => one.callId === callId);
       if (came || callId === undefined || !this.model.list()) return;
       came = true;
-      if (thread) untracked(() => this.openPhone(thread.phone));
+      if (thread) {
+        untracked(() => {
+          void this.openPhone(thread.phone);
+          this.afterRender(() => this.list()?.show(thread.phone));
+        });
+      }
     });
     inject(Keys).register(this.keys(), inject(DestroyRef));
   }
@@ -105,7 +110,6 @@ export class MessagesPage {
     const callId = this.model.thread()?.callId;
     // The call and not the phone: an address is kept in histories and logs.
     this.location.replaceState('/messages', callId ? `call=${callId}` : '');
-    this.list()?.show(phone);
     return opening;
   }
 
@@ -116,43 +120,49 @@ export class MessagesPage {
   private keys(): readonly KeyAction[] {
     const scope = 'Messages';
     const isOpen = (): boolean => this.model.openPhone() !== null;
+    // The list takes these keys too, though it is a list of choices: only what is typed does not.
+    const inList = (
+      keys: string,
+      does: string,
+      run: () => void,
+      when: () => boolean = () => true,
+      repeats = false,
+    ): KeyAction => ({
+      keys,
+      does,
+      scope,
+      run,
+      repeats,
+      inFields: true,
+      when: () => !isTyping() && when(),
+    });
     return [
-      {
-        keys: 'j',
-        does: 'Next text or thread',
-        scope,
-        repeats: true,
-        run: () => this.list()?.move(1),
-      },
-      { keys: 'k', does: 'The one before', scope, repeats: true, run: () => this.list()?.move(-1) },
-      {
-        keys: 'Enter',
-        does: 'Open it; at a text that needs a person, go to the decision',
-        scope,
-        when: () => this.list()?.hasFocus() === true,
-        run: () => this.list()?.openCursor(),
-      },
-      {
-        keys: 'r',
-        does: 'Reply',
-        scope,
-        when: () => isOpen() && this.model.whyNoReply() === null,
-        run: () => this.thread()?.focusReply(),
-      },
-      {
-        keys: 'b',
-        does: 'Open the call on the board',
-        scope,
-        when: () => this.callId() !== null,
-        run: () => this.toBoard(this.callId()!),
-      },
-      {
-        keys: 'u',
-        does: 'Take the new order',
-        scope,
-        when: () => this.list()?.hasHeld() === true,
-        run: () => this.list()?.takeNewOrder(),
-      },
+      inList('j', 'Next text or thread', () => this.list()?.move(1), undefined, true),
+      inList('k', 'The one before', () => this.list()?.move(-1), undefined, true),
+      inList(
+        'Enter',
+        'Open it; at a text that needs a person, go to the decision',
+        () => this.list()?.openCursor(),
+        () => this.list()?.hasFocus() === true,
+      ),
+      inList(
+        'r',
+        'Reply',
+        () => this.thread()?.focusReply(),
+        () => isOpen() && this.model.whyNoReply() === null,
+      ),
+      inList(
+        'b',
+        'Open the call on the board',
+        () => this.toBoard(this.callId()!),
+        () => this.callId() !== null,
+      ),
+      inList(
+        'u',
+        'Take the new order',
+        () => this.list()?.takeNewOrder(),
+        () => this.list()?.hasHeld() === true,
+      ),
       {
         keys: 'Escape',
         does: 'Back to the list; what was written is kept',
@@ -168,3 +178,7 @@ export class MessagesPage {
     return this.model.thread()?.callId ?? this.model.replyCallId();
   }
 }
+
+const isTyping = (): boolean =>
+  document.activeElement instanceof HTMLTextAreaElement ||
+  document.activeElement instanceof HTMLInputElement;

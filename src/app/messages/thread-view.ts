@@ -80,6 +80,8 @@ export class ThreadView {
       milestone: milestoneWords(message),
       segments: message.direction === 'out' ? segmentWords(message.segments) : '',
       isNew: isUnread(message),
+      // What once held a text up is of no interest when it has arrived.
+      note: message.state === 'delivered' ? '' : (message.trouble ?? ''),
       why: waiting.has(message.id) ? whyWords(message) : '',
       decisions: waiting.has(message.id) ? decisionsOn(message) : [],
     }));

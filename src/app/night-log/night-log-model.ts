@@ -206,6 +206,8 @@ export class NightLogModel {
     if (before?.state !== 'importing' || log.state === 'importing') return;
     this.imports.update((count) => count + 1);
     if (log.id === this.openId()) {
+      // The rows are known from now on, and say which call they went into.
+      void this.look(this.roles());
       this.announce.say(log.state === 'imported' ? resultWords(log) : (log.trouble ?? ''));
     }
   }

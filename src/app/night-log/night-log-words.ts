@@ -10,7 +10,7 @@ export const OUTCOMES: Readonly<
   Record<NightLogRowView['outcome'], { readonly icon: IconName; readonly words: string }>
 > = {
   call: { icon: 'call', words: 'A call' },
-  folded: { icon: 'layers', words: 'Goes with another' },
+  folded: { icon: 'layers', words: 'Joins another' },
   aside: { icon: 'person', words: 'For a person' },
   empty: { icon: 'radio-button-unchecked', words: 'Empty' },
   known: { icon: 'check', words: 'Known already' },
@@ -68,7 +68,7 @@ export function countWords(
     {
       key: 'folded',
       icon: OUTCOMES.folded.icon,
-      words: counted(counts.folded, 'row that goes with another', 'rows that go with another'),
+      words: counted(counts.folded, 'row joins another', 'rows join another'),
     },
     {
       key: 'aside',
@@ -103,9 +103,7 @@ export function resultWords({ counts, rowCount }: NightLogDto): string {
   }
   const calls = counted(counts.calls, 'call was taken', 'calls were taken');
   const folded =
-    counts.folded > 0
-      ? `, ${counted(counts.folded, 'row went', 'rows went')} with calls that are there`
-      : '';
+    counts.folded > 0 ? `, ${counted(counts.folded, 'row', 'rows')} joined another` : '';
   const aside =
     counts.aside > 0
       ? ` ${counted(counts.aside, 'row waits', 'rows wait')} for a person.`
