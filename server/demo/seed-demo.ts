@@ -111,7 +111,8 @@ async function seedStorm(
   const wentOut = now - 13 * HOUR_MS;
   const stormId = chance.uuid();
   const give = async (at: Instant, type: string, work: (job: Job) => Promise<void>) => {
-    const then: Context = { ...context, clock: () => Math.min(at, now) };
+    // A clock counts whole milliseconds; a moment drawn by chance need not.
+    const then: Context = { ...context, clock: () => Math.floor(Math.min(at, now)) };
     await runCommand(
       then,
       { actor: machine('Demo'), type, commandId: chance.uuid(), asked: null },
