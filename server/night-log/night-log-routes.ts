@@ -6,7 +6,7 @@ import { CallRecord } from '../calls/call-record';
 import { orderFrom, runCommand } from '../commands/run-command';
 import type { Context } from '../context';
 import type { SomeHandlers } from '../http/bind-routes';
-import { findStorm } from '../storms/storm-queries';
+import { findOpenStorm } from '../storms/storm-queries';
 import { importLog, knownRows } from './import-log';
 import { logToRead } from './log-context';
 import { NightLogRecord, NightLogRowRecord } from './night-log-record';
@@ -42,7 +42,7 @@ export function nightLogRoutes(context: Context): SomeHandlers<Names> {
     },
 
     uploadNightLog: async ({ params, query, body, person }): Promise<NightLogPreview> => {
-      await findStorm(params.stormId);
+      await findOpenStorm(params.stormId);
       const order = await logToRead(context, params.stormId, body, null);
       const read = await context.logReader.run(order);
       if (read.reading.counts.empty === read.reading.rows.length)
@@ -96,6 +96,7 @@ export function nightLogRoutes(context: Context): SomeHandlers<Names> {
             lock: job.tx.LOCK.UPDATE,
           });
           if (!log) throw new Refusal('not-found', 'There is no such log.');
+          await findOpenStorm(log.stormId, job.tx);
           if (log.state === 'importing')
             throw new Refusal('log-busy', 'The log is being imported already.');
           job.inStorm(log.stormId);

@@ -1,11 +1,20 @@
 import type { Logger } from 'pino';
 import type { Sequelize } from 'sequelize';
+import { HOUR_MS } from '@shared/domain/instant';
 import { select } from '../db/sql';
 import { changesAfter } from './feed-reader';
 
 /** How often to look for changes that another process committed, in milliseconds. */
 const LOOK_MS = 1000;
+/** How long the streams of a storm that is no longer open are still looked at. */
+const LINGER_MS = HOUR_MS;
 
+interface StreamEnd {
+  storm_id: string;
+  stream: string;
+  n: number;
+  state: 'open' | 'closed';
+}
 type Emit = (stormId: string, stream: string, n: number, change: unknown) => void;
 
 /**
@@ -16,6 +25,8 @@ type Emit = (stormId: string, stream: string, n: number, change: unknown) => voi
 export class FeedPump {
   /** The newest change handed on, by stream. */
   private readonly told = new Map<string, number>();
+  /** Storms that were open or rung for lately, and when, by this process's own clock. */
+  private readonly lately = new Map<string, number>();
   private running: Promise<void> | null = null;
   private again = false;
   private timer: NodeJS.Timeout | null = null;
@@ -28,13 +39,14 @@ export class FeedPump {
 
   /** Starts from the ends of all streams: clients fetch what came before by themselves. */
   async start(): Promise<void> {
-    for (const { storm_id, stream, n } of await this.ends())
+    for (const { storm_id, stream, n } of await this.ends('all'))
       this.told.set(key(storm_id, stream), Number(n));
     this.timer = setInterval(() => this.ring(), LOOK_MS);
     this.timer.unref();
   }
 
-  ring(): void {
+  ring(stormId?: string): void {
+    if (stormId !== undefined) this.lately.set(stormId, performance.now());
     this.again = true;
     this.running ??= this.run().finally(() => (this.running = null));
   }
@@ -57,7 +69,7 @@ export class FeedPump {
   }
 
   private async pump(): Promise<void> {
-    for (const { storm_id, stream, n } of await this.ends()) {
+    for (const { storm_id, stream, n } of await this.ends('lately')) {
       const known = this.told.get(key(storm_id, stream)) ?? 0;
       if (Number(n) <= known) continue;
       for (const one of await changesAfter<unknown>(this.sequelize, storm_id, stream, known)) {
@@ -69,13 +81,18 @@ export class FeedPump {
     }
   }
 
-  private ends(): Promise<{ storm_id: string; stream: string; n: number }[]> {
-    return select(
+  private async ends(which: 'all' | 'lately'): Promise<StreamEnd[]> {
+    const now = performance.now();
+    for (const [stormId, at] of this.lately) if (now - at > LINGER_MS) this.lately.delete(stormId);
+    const rows = await select<StreamEnd>(
       this.sequelize,
-      `SELECT f.storm_id, f.stream, f.n FROM feeds f
-         JOIN storms s ON s.id = f.storm_id WHERE s.state = 'open'
-            OR s.closed_at > UTC_TIMESTAMP(3) - INTERVAL 1 HOUR`,
+      `SELECT f.storm_id, f.stream, f.n, s.state FROM feeds f JOIN storms s ON s.id = f.storm_id
+        ${which === 'all' ? '' : "WHERE s.state = 'open' OR s.id IN (?)"}`,
+      which === 'all' ? [] : [[...this.lately.keys(), '']],
     );
+    // The change that closes a storm has to go out too, and so do those that come after it.
+    for (const { storm_id, state } of rows) if (state === 'open') this.lately.set(storm_id, now);
+    return rows;
   }
 }
 

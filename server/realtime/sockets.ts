@@ -109,7 +109,7 @@ export async function serveSockets(door: SocketDoor): Promise<Live> {
   await pump.start();
 
   return {
-    ring: () => pump.ring(),
+    ring: (stormId) => pump.ring(stormId),
     technicianMoved: (id, position) => {
       io.to(DESK_ROOM).volatile.emit('technician:moved', id, position);
     },

@@ -2,7 +2,7 @@ import type { StopCard } from '@shared/contract/routes';
 import { Refusal } from '@shared/domain/errors';
 import type { CallRecord } from '../calls/call-record';
 import type { Job } from '../commands/run-command';
-import { findStorm, lockOpenStorm } from '../storms/storm-queries';
+import { findOpenStorm, lockOpenStorm } from '../storms/storm-queries';
 import type { StormRecord } from '../storms/storm-record';
 import { callOf, lockRoutes, routeOf, type ActiveStop, type Routes } from './lock-routes';
 import { stopCards } from './stop-cards';
@@ -56,9 +56,7 @@ export async function openOwnStop(job: Job, { stopId, version }: Seen): Promise<
   const seen = await StopRecord.findByPk(stopId, { transaction: job.tx });
   if (!seen || technicianId === null || seen.technicianId !== technicianId)
     throw new Refusal('not-found', 'This stop is not on your route.');
-  const storm = await findStorm(seen.stormId, job.tx);
-  if (storm.state !== 'open')
-    throw new Refusal('storm-closed', `The storm "${storm.name}" is closed.`);
+  const storm = await findOpenStorm(seen.stormId, job.tx);
   const routes = await lockRoutes(job, seen.stormId, [technicianId], [seen.callId]);
   const stop = routeOf(routes, technicianId).find(({ id }) => id === stopId);
   if (!stop || stop.version !== version) {

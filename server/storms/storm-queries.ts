@@ -21,10 +21,24 @@ export async function findStorm(id: string, tx?: Transaction): Promise<StormReco
   return record;
 }
 
-/** The storm, locked against other commands that count on it. @throws Refusal when it is closed */
+/** The storm, if its calls and routes may still change. @throws Refusal `not-found`, `storm-closed` */
+export async function findOpenStorm(id: string, tx?: Transaction): Promise<StormRecord> {
+  return refuseIfClosed(await findStorm(id, tx));
+}
+
+/** As `findOpenStorm`, and locked against other commands that count on it. */
 export async function lockOpenStorm(id: string, tx: Transaction): Promise<StormRecord> {
+  return refuseIfClosed(await lockStorm(id, tx));
+}
+
+/** @throws Refusal `not-found` */
+export async function lockStorm(id: string, tx: Transaction): Promise<StormRecord> {
   const record = await StormRecord.findByPk(id, { transaction: tx, lock: tx.LOCK.UPDATE });
   if (!record) throw new Refusal('not-found', 'There is no such storm.');
+  return record;
+}
+
+function refuseIfClosed(record: StormRecord): StormRecord {
   if (record.state !== 'open')
     throw new Refusal('storm-closed', `The storm "${record.name}" is closed.`);
   return record;

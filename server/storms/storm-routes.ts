@@ -12,6 +12,7 @@ import type { SomeHandlers } from '../http/bind-routes';
 import { proposedPlan } from '../routes/plan-rows';
 import { stopDtos } from '../routes/stop-rows';
 import { technicianDtos } from '../technicians/technician-rows';
+import { closeStorm } from './close-storm';
 import { findStorm, listStorms, toStormDto } from './storm-queries';
 import { StormRecord } from './storm-record';
 
@@ -44,26 +45,8 @@ export function stormRoutes(context: Context): SomeHandlers<Names> {
       }),
 
     closeStorm: ({ params, body, person }) =>
-      runCommand(
-        context,
-        orderFrom('closeStorm', person, { ...body, ...params }),
-        async (job): Promise<StormDto> => {
-          const storm = await StormRecord.findByPk(params.stormId, {
-            transaction: job.tx,
-            lock: job.tx.LOCK.UPDATE,
-          });
-          if (!storm) throw new Refusal('not-found', 'There is no such storm.');
-          if (storm.version !== body.version)
-            throw new Refusal('stale-version', 'The storm has changed.', toStormDto(storm));
-          if (storm.state === 'closed')
-            throw new Refusal('storm-closed', 'The storm is closed already.');
-          storm.set({ state: 'closed', closedAt: job.at, version: storm.version + 1 });
-          await storm.save({ transaction: job.tx });
-          job.inStorm(storm.id);
-          job.touched.storm = true;
-          job.note('storm', storm.id, 'closed the storm');
-          return toStormDto(storm);
-        },
+      runCommand(context, orderFrom('closeStorm', person, { ...body, ...params }), (job) =>
+        closeStorm(job, { ...body, ...params }),
       ),
 
     boardPicture: ({ params }) => boardPicture(context, params.stormId),

@@ -2,7 +2,7 @@ import type { MessageDto } from '@shared/contract/messages';
 import { Refusal } from '@shared/domain/errors';
 import { textLength } from '@shared/domain/texts/segments';
 import { callDetail } from '../calls/call-detail';
-import { lockCall } from '../calls/change-call';
+import { lockCall, lockCallOfAnyStorm } from '../calls/change-call';
 import { orderFrom, runCommand, type Job } from '../commands/run-command';
 import type { Context } from '../context';
 import type { SomeHandlers } from '../http/bind-routes';
@@ -78,7 +78,7 @@ async function sendMessage(job: Job, callId: string, body: string): Promise<Mess
 }
 
 async function readMessages(job: Job, callId: string): Promise<void> {
-  const call = await lockCall(job, callId);
+  const call = await lockCallOfAnyStorm(job, callId);
   const unread = await MessageRecord.findAll({
     where: { callId, direction: 'in', readAt: null },
     order: [['id', 'ASC']],
