@@ -3,6 +3,7 @@ import { Refusal } from '@shared/domain/errors';
 import { addMinutes } from '@shared/domain/instant';
 import type { Job } from '../commands/run-command';
 import { insert, select } from '../db/sql';
+import { findOpenStorm } from '../storms/storm-queries';
 import { callRows } from './call-rows';
 import { CallRecord } from './call-record';
 
@@ -11,12 +12,11 @@ import { CallRecord } from './call-record';
  * that, when a command needs them too: one order of locking for all.
  *
  * @param version what the writer saw; leave it out where any version will do
- * @throws Refusal `not-found`, or `stale-version` with the row as it is now
+ * @throws Refusal `not-found`, `storm-closed`, or `stale-version` with the row as it is now
  */
 export async function lockCall(job: Job, callId: string, version?: number): Promise<CallRecord> {
-  const call = await CallRecord.findByPk(callId, { transaction: job.tx, lock: job.tx.LOCK.UPDATE });
-  if (!call) throw new Refusal('not-found', 'There is no such call.');
-  job.inStorm(call.stormId);
+  const call = await lockCallOfAnyStorm(job, callId);
+  await findOpenStorm(call.stormId, job.tx);
   if (version !== undefined && call.version !== version) {
     const [current] = await callRows(job.sequelize, { ids: [call.id] }, job.now, job.tx);
     throw new Refusal(
@@ -25,6 +25,14 @@ export async function lockCall(job: Job, callId: string, version?: number): Prom
       current,
     );
   }
+  return call;
+}
+
+/** As `lockCall`, for the little that is still done for a call whose storm is closed. */
+export async function lockCallOfAnyStorm(job: Job, callId: string): Promise<CallRecord> {
+  const call = await CallRecord.findByPk(callId, { transaction: job.tx, lock: job.tx.LOCK.UPDATE });
+  if (!call) throw new Refusal('not-found', 'There is no such call.');
+  job.inStorm(call.stormId);
   return call;
 }
 
@@ -81,6 +89,14 @@ export async function moveCall(
 /** Saves the call under its next version and has it told. */
 export async function saveCall(job: Job, call: CallRecord): Promise<void> {
   call.version += 1;
+  await saveClaim(job, call);
+}
+
+/**
+ * Saves a call of which nothing but the claim has changed, and has it told under the version that it
+ * has: what whoever holds it has read is still so, and their next answer must not be refused as stale.
+ */
+export async function saveClaim(job: Job, call: CallRecord): Promise<void> {
   await call.save({ transaction: job.tx });
   job.touched.call(call.id);
 }

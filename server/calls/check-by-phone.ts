@@ -15,6 +15,7 @@ import {
   refuseIfClaimedByAnother,
   releaseClaim,
   saveCall,
+  saveClaim,
 } from './change-call';
 import { unitsOf } from './store-units';
 
@@ -25,8 +26,10 @@ export async function claimCall(job: Job, callId: string): Promise<CallRecord> {
   refuseIfSettled(call);
   const { claimMinutes } = await readSettings(job.sequelize, job.tx);
   claim(job, call, claimMinutes);
-  if (call.state === 'new') await moveCall(job, call, 'checking', 'claimed');
-  await saveCall(job, call);
+  if (call.state === 'new') {
+    await moveCall(job, call, 'checking', 'claimed');
+    await saveCall(job, call);
+  } else await saveClaim(job, call);
   job.note('call', call.id, 'claimed the call');
   return call;
 }
@@ -36,8 +39,10 @@ export async function releaseCall(job: Job, callId: string): Promise<CallRecord>
   const call = await lockCall(job, callId);
   refuseIfClaimedByAnother(job, call);
   releaseClaim(call);
-  if (call.state === 'checking') await moveCall(job, call, 'new', 'claim given back');
-  await saveCall(job, call);
+  if (call.state === 'checking') {
+    await moveCall(job, call, 'new', 'claim given back');
+    await saveCall(job, call);
+  } else await saveClaim(job, call);
   job.note('call', call.id, 'gave the claim back');
   return call;
 }

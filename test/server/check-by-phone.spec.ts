@@ -3,6 +3,7 @@ import type { CallDetail } from '@shared/contract/calls';
 import { nextQuestion } from '@shared/domain/phone-check/phone-check';
 import { HOUR_MS, MINUTE_MS } from '@shared/domain/instant';
 import { aCall, aUnit } from '../support/calls';
+import { until } from '../support/routes';
 import { NIGHT, startServer, type TestPerson, type TestServer } from '../support/server';
 
 let server: TestServer;
@@ -52,6 +53,31 @@ describe('the claim on a call', () => {
       state: 'checking',
       claim: { name: 'Jonas Fenwick' },
     });
+  });
+
+  it('kept or given back leaves the version alone, and is told to the boards all the same', async () => {
+    const { row } = await taken();
+    await on(mara, 'claimCall', { row })();
+    const checking = (await mara.call('readCall', { params: { callId: row.id } }))
+      .body as CallDetail;
+    const board = await jonas.socket();
+    const heard: { version: number; until: number | undefined }[] = [];
+    board.on('board:changed', ({ change }) => {
+      if (change.kind === 'calls')
+        for (const call of change.calls)
+          heard.push({ version: call.version, until: call.claim?.until });
+    });
+    server.setNow(NIGHT + 6 * MINUTE_MS);
+    const [kept, answered] = await Promise.all([
+      on(mara, 'claimCall', checking)(),
+      on(mara, 'answerPhoneCheck', checking)({ version: checking.row.version, answers: {} }),
+    ]);
+    // Whichever came first, the answers were given to what had been read.
+    expect([kept.status, answered.status]).toEqual([200, 200]);
+    expect((answered.body as CallDetail).row.version).toBe(checking.row.version + 1);
+    await until(() => heard.length === 2, 'the board to hear of both');
+    expect(heard.map((one) => one.until)).toEqual([NIGHT + 16 * MINUTE_MS, NIGHT + 16 * MINUTE_MS]);
+    board.close();
   });
 
   it('goes to one of two who reach for it at once', async () => {
