@@ -35,13 +35,11 @@ export interface CallToTake extends Omit<TakeCall, 'commandId' | 'phone'> {
  * @throws Refusal `household-has-open-call` with that call's row: the same household is one call
  */
 export async function takeCall(job: Job, stormId: string, told: CallToTake): Promise<CallRecord> {
-  const [call] = await takeCalls(job, stormId, [told]);
+  const { claimMinutes } = await readSettings(job.sequelize, job.tx);
+  const [call] = await takeCalls(job, stormId, [told], (made) => {
+    if (job.actor.userId !== null) claim(job, made, claimMinutes);
+  });
   if (!call) throw new Error('a call was told and none was taken');
-  if (job.actor.userId !== null) {
-    const { claimMinutes } = await readSettings(job.sequelize, job.tx);
-    claim(job, call, claimMinutes);
-    await call.save({ transaction: job.tx });
-  }
   if (call.mayText) await tellCallReceived(job, call);
   return call;
 }
@@ -56,6 +54,7 @@ export async function takeCalls(
   job: Job,
   stormId: string,
   told: readonly CallToTake[],
+  beforeStoring: (call: CallRecord) => void = () => undefined,
 ): Promise<CallRecord[]> {
   for (const one of told) refuseImpossibleTimes(one, job.now);
   const storm = await lockOpenStorm(stormId, job.tx);
@@ -73,7 +72,9 @@ export async function takeCalls(
     storm.callsTaken += 1;
     const householdId =
       one.isHousehold === false ? null : (households.get(one.phone ?? '') ?? null);
-    return CallRecord.build(callFacts(one, storm, area, householdId));
+    const call = CallRecord.build(callFacts(one, storm, area, householdId));
+    beforeStoring(call);
+    return call;
   });
   await storm.save({ transaction: job.tx });
   await insertCalls(job, calls);

@@ -59,21 +59,7 @@ export async function appendAudit(
   tx: Transaction,
 ): Promise<void> {
   const chain = done.stormId ?? OFFICE;
-  await insert(
-    sequelize,
-    'INSERT INTO audit_chains (chain, n, hash) VALUES (?, 0, ?) ON DUPLICATE KEY UPDATE n = n',
-    [chain, FIRST_HASH],
-    tx,
-  );
-  const [end] = await select<{ n: number; hash: string }>(
-    sequelize,
-    'SELECT n, hash FROM audit_chains WHERE chain = ? FOR UPDATE',
-    [chain],
-    tx,
-  );
-  if (!end) throw new Error(`audit chain ${chain} is missing`);
-
-  let { n, hash } = end;
+  let { n, hash } = await lockChain(sequelize, chain, tx);
   const rows: unknown[][] = [];
   for (const note of done.notes) {
     n += 1;
@@ -117,4 +103,25 @@ export async function appendAudit(
     [n, hash, chain],
     tx,
   );
+}
+
+/** The end of a chain, locked until the command ends. The first entry of all makes it. */
+async function lockChain(
+  sequelize: Sequelize,
+  chain: string,
+  tx: Transaction,
+): Promise<{ n: number; hash: string }> {
+  const ends = (): Promise<{ n: number; hash: string }[]> =>
+    select(sequelize, 'SELECT n, hash FROM audit_chains WHERE chain = ? FOR UPDATE', [chain], tx);
+  const [end] = await ends();
+  if (end) return end;
+  await insert(
+    sequelize,
+    'INSERT IGNORE INTO audit_chains (chain, n, hash) VALUES (?, 0, ?)',
+    [chain, FIRST_HASH],
+    tx,
+  );
+  const [made] = await ends();
+  if (!made) throw new Error(`audit chain ${chain} is missing`);
+  return made;
 }

@@ -64,31 +64,36 @@ async function append(
   now: Instant,
   tx: Transaction,
 ): Promise<void> {
+  const count = (): Promise<number> =>
+    change(
+      sequelize,
+      'UPDATE feeds SET n = LAST_INSERT_ID(n + ?) WHERE storm_id = ? AND stream = ?',
+      [changes.length, stormId, stream],
+      tx,
+    );
+  // Not "INSERT … ON DUPLICATE KEY UPDATE": an insert locks the storm's row for its foreign key, and
+  // by now others may hold that row and wait for one of ours.
+  if ((await count()) === 0) {
+    await insert(
+      sequelize,
+      'INSERT IGNORE INTO feeds (storm_id, stream, n) VALUES (?, ?, 0)',
+      [stormId, stream],
+      tx,
+    );
+    await count();
+  }
+  // LAST_INSERT_ID is this connection's own: the number that the counter has just reached.
   await insert(
     sequelize,
-    'INSERT INTO feeds (storm_id, stream, n) VALUES (?, ?, ?) ON DUPLICATE KEY UPDATE n = n + ?',
-    [stormId, stream, changes.length, changes.length],
-    tx,
-  );
-  const [feed] = await select<{ n: number }>(
-    sequelize,
-    'SELECT n FROM feeds WHERE storm_id = ? AND stream = ?',
-    [stormId, stream],
-    tx,
-  );
-  const first = Number(feed?.n) - changes.length + 1;
-  await insert(
-    sequelize,
-    'INSERT INTO feed_changes (storm_id, stream, n, at, `change`) VALUES ?',
-    [
-      changes.map((one, i) => [
-        stormId,
-        stream,
-        first + i,
-        new Date(now),
-        JSON.stringify(one.change),
-      ]),
-    ],
+    `INSERT INTO feed_changes (storm_id, stream, n, at, \`change\`)
+     VALUES ${changes.map(() => '(?, ?, LAST_INSERT_ID() - ?, ?, ?)').join(', ')}`,
+    changes.flatMap((one, i) => [
+      stormId,
+      stream,
+      changes.length - 1 - i,
+      new Date(now),
+      JSON.stringify(one.change),
+    ]),
     tx,
   );
 }

@@ -11,7 +11,7 @@ const WORTH_ANOTHER_TRY = new Set([1213, 1205, 1020]);
  * for another's sake. Retrying single statements inside a dead transaction would lose the earlier
  * ones.
  *
- * READ COMMITTED: commands lock the rows that they decide about and then want them as they are.
+ * READ COMMITTED, as connect.ts sets it for every connection.
  */
 export async function inTransaction<T>(
   sequelize: Sequelize,
@@ -19,10 +19,7 @@ export async function inTransaction<T>(
 ): Promise<T> {
   for (let attempt = 1; ; attempt++) {
     try {
-      return await sequelize.transaction(
-        { isolationLevel: Transaction.ISOLATION_LEVELS.READ_COMMITTED },
-        work,
-      );
+      return await sequelize.transaction(work);
     } catch (error) {
       if (!isWorthAnotherTry(error) || attempt === MAX_ATTEMPTS) throw error;
       await pause(Math.random() * 20 * attempt);
