@@ -4,13 +4,10 @@ import { TestBed } from '@angular/core/testing';
 import { provideRouter } from '@angular/router';
 import type { DayChange } from '@shared/contract/realtime';
 import type { StopCard, StopDto, TechnicianDay } from '@shared/contract/routes';
-import { Announce } from './announce';
 import { DayStore } from './day-store';
 import { LIVE_SOCKET } from './live';
 import { aCallRow, aMe, aStop, aTechnician, FakeSocket, idOf, settled, STORM_ID } from './testing';
 import { Session } from './session';
-
-const notice = jest.fn();
 
 function aCard(n: number, stop: Partial<StopDto> = {}): StopCard {
   const call = aCallRow(n);
@@ -44,7 +41,6 @@ describe('DayStore', () => {
   let day: DayStore;
 
   beforeEach(async () => {
-    notice.mockReset();
     socket = new FakeSocket();
     TestBed.configureTestingModule({
       providers: [
@@ -52,7 +48,6 @@ describe('DayStore', () => {
         provideHttpClientTesting(),
         provideRouter([]),
         { provide: LIVE_SOCKET, useFactory: () => socket.asSocket() },
-        { provide: Announce, useValue: { notice } },
       ],
     });
     http = TestBed.inject(HttpTestingController);
@@ -105,9 +100,9 @@ describe('DayStore', () => {
     await open(aDay(aCard(1)));
     await announce(5, { kind: 'gone', stopId: idOf(3001), reason: 'It runs again.' });
     expect(day.cards()).toEqual([]);
-    expect(notice).toHaveBeenCalledWith(
-      'Household 1, 1 Tern Lane: taken off your route. It runs again.',
-    );
+    expect(day.taken()).toMatchObject([
+      { card: { name: 'Household 1' }, reason: 'It runs again.' },
+    ]);
   });
 
   it('keeps what was taken until it is acknowledged, but not what was only planned', async () => {
@@ -140,7 +135,6 @@ describe('DayStore', () => {
     day.endsByMe(idOf(3002));
     day.takeReply(aCard(2, { state: 'done', version: 2 }));
     await announce(6, { kind: 'gone', stopId: idOf(3002), reason: 'Finished: cooling restored' });
-    expect(notice).not.toHaveBeenCalled();
     expect(day.taken()).toEqual([]);
     expect(day.ahead()).toEqual([]);
   });

@@ -1,7 +1,6 @@
 import { computed, DestroyRef, inject, Injectable, signal } from '@angular/core';
 import type { DayChange, Numbered } from '@shared/contract/realtime';
 import type { StopCard, TechnicianDay } from '@shared/contract/routes';
-import { Announce } from './announce';
 import { Api } from './api';
 import { Live, type LinkState } from './live';
 import { type FeedPlace, OrderedFeed } from './ordered-feed';
@@ -19,7 +18,6 @@ export interface TakenStop {
 export class DayStore {
   private readonly api = inject(Api);
   private readonly live = inject(Live);
-  private readonly announce = inject(Announce);
   private readonly session = inject(Session);
 
   private readonly day = signal<TechnicianDay | null>(null);
@@ -153,10 +151,7 @@ export class DayStore {
   private without(day: TechnicianDay, stopId: string, reason: string): TechnicianDay {
     const gone = day.stops.find((card) => card.stop.id === stopId);
     if (!gone || gone.stop.state === 'done') return day;
-    if (!this.ownEnds.has(stopId)) {
-      this.tellTaken(gone, reason);
-      this.announce.notice(`${gone.name}, ${gone.address.text}: taken off your route. ${reason}`);
-    }
+    if (!this.ownEnds.has(stopId)) this.tellTaken(gone, reason);
     return { ...day, stops: day.stops.filter((card) => card !== gone) };
   }
 }

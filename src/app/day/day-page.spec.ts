@@ -161,7 +161,7 @@ async function aPage(...stops: StopCard[]): Promise<DayHarness> {
       },
       {
         provide: Announce,
-        useValue: { say: (w: string) => said.push(w), notice: (w: string) => said.push(w) },
+        useValue: { say: (w: string) => said.push(w) },
       },
     ],
   });
@@ -279,6 +279,7 @@ describe('DayPage', () => {
     await page.tap('Give it back');
     const body = await page.answer('decline', aCard(1, { state: 'declined', version: 2 }));
     expect(body).toMatchObject({ reason: 'other', note: 'Flat tyre' });
+    expect(page.text('.done')).toBe('Call 1 is given back.');
     expect(page.text()).toContain('Nothing for you yet');
   });
 

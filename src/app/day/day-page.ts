@@ -6,6 +6,7 @@ import {
   ElementRef,
   inject,
   linkedSignal,
+  signal,
   untracked,
 } from '@angular/core';
 import { MatIcon } from '@angular/material/icon';
@@ -64,6 +65,9 @@ export class DayPage {
     computation: () => 'stop',
   });
 
+  /** What was just ended; a notice at the foot would lie over the button. */
+  protected readonly done = signal('');
+
   protected readonly later = computed(() => {
     const next = this.day.next();
     return this.day.ahead().filter((card) => card !== next);
@@ -93,6 +97,7 @@ export class DayPage {
   }
 
   protected async accept(card: StopCard): Promise<void> {
+    this.done.set('');
     if (await this.model.accept(card)) this.announce.say('Accepted. It stays yours.');
   }
 
@@ -131,13 +136,13 @@ export class DayPage {
 
   protected async decline(card: StopCard, answer: DeclineAnswer): Promise<void> {
     if (await this.model.decline(card, answer)) {
-      this.announce.notice(`Call ${card.callNumber} is given back.`);
+      this.done.set(`Call ${card.callNumber} is given back.`);
     } else this.backToTop();
   }
 
   protected async finish(card: StopCard, answer: FinishAnswer): Promise<void> {
     if (await this.model.finish(card, answer)) {
-      this.announce.notice(`Call ${card.callNumber} is finished.`);
+      this.done.set(`Call ${card.callNumber} is finished.`);
     } else this.backToTop();
   }
 

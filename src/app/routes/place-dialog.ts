@@ -140,10 +140,13 @@ export class PlaceDialog {
 
   protected readonly matching = computed(() => {
     const text = this.typed().trim().toLowerCase();
-    // A name that is already chosen lists everybody, so that another can be taken.
-    if (text === '' || this.row()?.technician.name.toLowerCase() === text) {
-      return this.question.rows;
+    // A name that is already chosen lists everybody, so that another can be taken; but itself
+    // first, since Enter takes the first.
+    const chosen = this.row();
+    if (chosen?.technician.name.toLowerCase() === text) {
+      return [chosen, ...this.question.rows.filter((row) => row !== chosen)];
     }
+    if (text === '') return this.question.rows;
     return this.question.rows.filter(({ technician }) =>
       technician.name
         .toLowerCase()

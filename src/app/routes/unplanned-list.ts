@@ -41,40 +41,45 @@ const ROW_PX = 98;
     } @else {
       <cdk-virtual-scroll-viewport
         [itemSize]="rowPx"
-        role="listbox"
+        role="grid"
         tabindex="0"
         aria-labelledby="unplanned-title"
         aria-describedby="unplanned-keys"
+        aria-colcount="1"
+        [attr.aria-rowcount]="calls().length"
         [attr.aria-activedescendant]="activeId()"
         (keydown)="press($event)"
         (focus)="arrive()"
       >
         <div
           *cdkVirtualFor="let one of calls(); trackBy: trackId; let i = index"
-          role="option"
-          class="one"
+          role="row"
           [id]="'unplanned-' + one.call.id"
-          [class.chosen]="one.call.id === selected()"
+          [attr.aria-rowindex]="i + 1"
           [attr.aria-selected]="one.call.id === selected()"
-          [attr.aria-setsize]="calls().length"
-          [attr.aria-posinset]="i + 1"
-          tabindex="-1"
-          (click)="chosen.emit(one.call.id)"
-          (keydown.enter)="added.emit(one.call)"
-          (dblclick)="added.emit(one.call)"
         >
-          <span class="top">
-            <strong>{{ one.call.number }}</strong>
-            <span class="where">{{ one.call.name }}, {{ one.call.address.text }}</span>
-            <span class="save-by">{{ saveByWords(one.call) }}</span>
-          </span>
-          <thaw-cold-strip [facts]="facts(one.call)" [now]="now()" />
-          <span class="why" [class.blocked]="one.why.reason !== 'not-proposed'">
-            @if (one.why.reason !== 'not-proposed') {
-              <mat-icon svgIcon="info" aria-hidden="true" />
-            }
-            {{ one.why.words }}
-          </span>
+          <div
+            role="gridcell"
+            class="one"
+            tabindex="-1"
+            [class.chosen]="one.call.id === selected()"
+            (click)="chosen.emit(one.call.id)"
+            (keydown.enter)="added.emit(one.call)"
+            (dblclick)="added.emit(one.call)"
+          >
+            <span class="top">
+              <strong>{{ one.call.number }}</strong>
+              <span class="where">{{ one.call.name }}, {{ one.call.address.text }}</span>
+              <span class="save-by">{{ saveByWords(one.call) }}</span>
+            </span>
+            <thaw-cold-strip [facts]="facts(one.call)" [now]="now()" />
+            <span class="why" [class.blocked]="one.why.reason !== 'not-proposed'">
+              @if (one.why.reason !== 'not-proposed') {
+                <mat-icon svgIcon="info" aria-hidden="true" />
+              }
+              {{ one.why.words }}
+            </span>
+          </div>
         </div>
       </cdk-virtual-scroll-viewport>
       <p class="keys" id="unplanned-keys">
