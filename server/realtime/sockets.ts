@@ -15,9 +15,11 @@ import type {
 } from '@shared/contract/realtime';
 import { BOARD, dayStream } from '../commands/feed';
 import type { SignedIn } from '../staff/signed-in';
+import { stillSignedIn } from '../staff/still-signed-in';
 import { FeedPump } from './feed-pump';
 import { missedSince } from './feed-reader';
 import type { Live } from './live';
+import { VoidSockets } from './void-sockets';
 
 interface SocketData {
   person: SignedIn;
@@ -67,6 +69,8 @@ export async function serveSockets(door: SocketDoor): Promise<Live> {
     door.personOf(socket.request).then(
       (person) => {
         if (!person) return next(new Error('not-signed-in'));
+        // Nothing is shown by HTTP before that either.
+        if (person.mustChangePassword) return next(new Error('password-change-needed'));
         socket.data.person = person;
         next();
       },
@@ -107,6 +111,11 @@ export async function serveSockets(door: SocketDoor): Promise<Live> {
     } else io.to(stream).emit('day:changed', { stormId, n, change } as Numbered<DayChange>);
   });
   await pump.start();
+  const voidSockets = new VoidSockets(
+    () => io.sockets.sockets.values(),
+    (people) => stillSignedIn(door.sequelize, people),
+    door.log,
+  );
 
   return {
     ring: (stormId) => pump.ring(stormId),
@@ -125,6 +134,7 @@ export async function serveSockets(door: SocketDoor): Promise<Live> {
       io.in(room).disconnectSockets(true);
     },
     close: async () => {
+      voidSockets.stop();
       await pump.stop();
       await io.close();
     },

@@ -83,5 +83,6 @@ export async function personOf(
     technicianId: user.technicianId,
     mustChangePassword: user.mustChangePassword,
     sessionId: request.sessionID,
+    epoch: user.sessionEpoch,
   };
 }

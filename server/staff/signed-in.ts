@@ -7,4 +7,6 @@ export interface SignedIn extends Actor {
   readonly role: Role;
   readonly mustChangePassword: boolean;
   readonly sessionId: string;
+  /** The account's session epoch; a later one voids the session. */
+  readonly epoch: number;
 }

@@ -85,6 +85,20 @@ describe('a session', () => {
     expect((await mara.call('listStorms')).status).toBe(401);
   });
 
+  it('takes its sockets with it when it expires', async () => {
+    const mara = await server.signIn('dispatcher');
+    const socket = await mara.socket();
+    const closed = new Promise<string>((resolve) => socket.once('disconnect', resolve));
+    await change(server.sequelize, 'UPDATE sessions SET expires = ?', [new Date(0)]);
+    expect(await closed).toBe('io server disconnect');
+  });
+
+  it('shows nothing live before a given passphrase was replaced', async () => {
+    const mara = await server.signIn('dispatcher');
+    await UserRecord.update({ mustChangePassword: true }, { where: { id: mara.userId } });
+    await expect(mara.socket()).rejects.toThrow('password-change-needed');
+  });
+
   it('is not prolonged by being used', async () => {
     const mara = await server.signIn('dispatcher');
     const soon = new Date(Date.now() + HOUR_MS);
