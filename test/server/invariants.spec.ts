@@ -11,7 +11,10 @@ beforeEach(async () => {
   await server.reset();
   const mara = await server.signIn('dispatcher');
   for (let i = 0; i < 3; i++)
-    await mara.call('takeCall', { params: { stormId: server.stormId }, body: aCall(NIGHT, { mayText: false }) });
+    await mara.call('takeCall', {
+      params: { stormId: server.stormId },
+      body: aCall(NIGHT, { mayText: false }),
+    });
 });
 
 const broken = async (): Promise<string[]> =>

@@ -1,6 +1,5 @@
 import { randomUUID } from 'node:crypto';
 import type { AddressInfo } from 'node:net';
-import os from 'node:os';
 import { pino } from 'pino';
 import type { Sequelize } from 'sequelize';
 import { io, type Socket } from 'socket.io-client';
@@ -16,6 +15,7 @@ import { hashPassword } from '../../server/staff/passwords';
 import { UserRecord } from '../../server/staff/user-record';
 import { StormRecord } from '../../server/storms/storm-record';
 import { TechnicianRecord } from '../../server/technicians/technician-record';
+import { ORIGIN, testConfig } from './config';
 import { emptyAll, freshDatabase, testDatabase } from './database';
 import { TEST_REGION } from './region';
 
@@ -71,26 +71,7 @@ export async function startServer(
   const sequelize = await freshDatabase(options.suffix);
   let now = NIGHT;
   let stormId = '';
-  const config: Config = {
-    environment: 'test',
-    logLevel: 'silent',
-    http: { host: '127.0.0.1', port: 0, publicUrl: 'http://localhost:4310', trustProxyHops: 0 },
-    database: testDatabase(options.suffix),
-    sessionSecret: 'a session secret that is long enough for a test 0123456789',
-    texts: {
-      account: `AC${'0'.repeat(32)}`,
-      token: 'a token for the fake text service',
-      baseUrl: null,
-      from: '+12525550100',
-    },
-    dataFolder: os.tmpdir(),
-    tilesFolder: os.tmpdir(),
-    clientFolder: os.tmpdir(),
-    regionZone: 'America/New_York',
-    defaultAreaCode: '252',
-    isDemo: false,
-    ...options.config,
-  };
+  const config: Config = { ...testConfig(testDatabase(options.suffix)), ...options.config };
   const unused = { run: () => Promise.reject(new Error('this test has no such worker')) };
   const app = await createApp({
     config,
@@ -145,37 +126,7 @@ export async function startServer(
     if (entered.status !== 200) throw new Error(`sign-in failed: ${entered.text}`);
     const set = entered.get('Set-Cookie') ?? [];
     const cookies = set.map((cookie) => cookie.split(';')[0]).join('; ');
-    const token = /XSRF-TOKEN=([^;]+)/.exec(cookies)?.[1] ?? '';
-
-    return {
-      userId,
-      technicianId,
-      cookies,
-      call: (route, { params = {}, query = {}, body, bytes } = {}) => {
-        const [method, pattern] = PATHS[route];
-        const path = pattern.replace(/:(\w+)/g, (_, key: string) => params[key] ?? '');
-        const verb = method.toLowerCase() as 'get' | 'post' | 'patch' | 'delete';
-        const asked = request(url)
-          [verb](path)
-          .query(query)
-          .set('Cookie', cookies)
-          .set('Origin', origin)
-          .set('X-XSRF-TOKEN', token);
-        if (bytes) return asked.type('application/octet-stream').send(bytes);
-        return body === undefined ? asked : asked.send(body);
-      },
-      socket: () =>
-        new Promise((resolve, reject) => {
-          const socket: Socket<ServerEvents, ClientEvents> = io(url, {
-            transports: ['websocket'],
-            extraHeaders: { Cookie: cookies, Origin: origin },
-            reconnection: false,
-            forceNew: true,
-          });
-          socket.once('connect', () => resolve(socket));
-          socket.once('connect_error', reject);
-        }),
-    };
+    return { userId, technicianId, cookies, ...browser(url, cookies, origin) };
   };
 
   return {
@@ -194,6 +145,41 @@ export async function startServer(
       await app.close();
       await sequelize.close();
     },
+  };
+}
+
+/** What somebody with these cookies can do at the server of that address. */
+export function browser(
+  url: string,
+  cookies: string,
+  origin = ORIGIN,
+): Pick<TestPerson, 'call' | 'socket'> {
+  const token = /XSRF-TOKEN=([^;]+)/.exec(cookies)?.[1] ?? '';
+  return {
+    call: (route, { params = {}, query = {}, body, bytes } = {}) => {
+      const [method, pattern] = PATHS[route];
+      const path = pattern.replace(/:(\w+)/g, (_, key: string) => params[key] ?? '');
+      const verb = method.toLowerCase() as 'get' | 'post' | 'patch' | 'delete';
+      const asked = request(url)
+        [verb](path)
+        .query(query)
+        .set('Cookie', cookies)
+        .set('Origin', origin)
+        .set('X-XSRF-TOKEN', token);
+      if (bytes) return asked.type('application/octet-stream').send(bytes);
+      return body === undefined ? asked : asked.send(body);
+    },
+    socket: () =>
+      new Promise((resolve, reject) => {
+        const socket: Socket<ServerEvents, ClientEvents> = io(url, {
+          transports: ['websocket'],
+          extraHeaders: { Cookie: cookies, Origin: origin },
+          reconnection: false,
+          forceNew: true,
+        });
+        socket.once('connect', () => resolve(socket));
+        socket.once('connect_error', reject);
+      }),
   };
 }
 
