@@ -127,10 +127,9 @@ export class DayModel {
       this.day.endsByMe(order.stopId);
     }
     try {
-      const { card } = await this.api.call(order.route as 'finishStop', {
+      const { card } = await this.api.call(order.route, {
         params: { stopId: order.stopId },
-        // An order's body is that of its route; the compiler cannot follow the pair.
-        body: order.body as SentBodyOf<'finishStop'>,
+        body: order.body,
       });
       this.keep(null);
       this.day.takeReply(card);

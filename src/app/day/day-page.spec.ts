@@ -109,7 +109,8 @@ class DayHarness {
   async tap(words: string): Promise<void> {
     const all = [...this.host.querySelectorAll<HTMLElement>('button, label.choice')];
     const found = all.find((one) => one.textContent?.trim().startsWith(words));
-    if (!found) throw new Error(`nothing to tap that reads ${words}; there is: ${this.buttons()}`);
+    if (!found)
+      throw new Error(`nothing to tap that reads ${words}; there is: ${this.buttons().join()}`);
     (found.querySelector('input') ?? found).click();
     await this.settle();
   }

@@ -104,9 +104,10 @@ export class UnplannedList {
 
   protected readonly rowPx = ROW_PX;
   private readonly viewport = viewChild(CdkVirtualScrollViewport);
-  private readonly element = viewChild(CdkVirtualScrollViewport, {
-    read: ElementRef<HTMLElement>,
-  });
+  private readonly element = viewChild<CdkVirtualScrollViewport, ElementRef<HTMLElement>>(
+    CdkVirtualScrollViewport,
+    { read: ElementRef },
+  );
 
   private readonly at = computed(() =>
     this.calls().findIndex(({ call }) => call.id === this.selected()),
