@@ -1,0 +1,63 @@
+import { readFileSync } from 'node:fs';
+import path from 'node:path';
+import { expect, type Browser, type BrowserContextOptions, type Page } from '@playwright/test';
+
+interface SignIn {
+  readonly role: string;
+  readonly name: string;
+  readonly email: string;
+  readonly password: string;
+}
+
+/** The demo's sign-ins, as the server wrote them for whoever owns its data folder. */
+export function signIns(): readonly SignIn[] {
+  const folder = process.env['THAWLINE_BROWSER_DATA'] ?? '';
+  return JSON.parse(
+    readFileSync(path.join(folder, 'demo-sign-ins.json'), 'utf8'),
+  ) as readonly SignIn[];
+}
+
+/** A phone held upright, with a finger for a mouse. */
+export const PHONE: BrowserContextOptions = {
+  viewport: { width: 390, height: 844 },
+  hasTouch: true,
+  isMobile: true,
+};
+
+/** Opens a browser of its own for one person and signs them in. */
+export async function enter(
+  browser: Browser,
+  who: (one: SignIn) => boolean,
+  options: BrowserContextOptions = {},
+): Promise<Page> {
+  const person = signIns().find(who);
+  if (!person) throw new Error('nobody has that sign-in');
+  const context = await browser.newContext(options);
+  const page = await context.newPage();
+  await page.goto('/sign-in');
+  await page.getByLabel('E-mail address').fill(person.email);
+  await page.getByLabel('Password', { exact: true }).fill(person.password);
+  await page.keyboard.press('Enter');
+  await expect(page).not.toHaveURL(/sign-in/);
+  await expect(page.getByText('Live', { exact: true }).first()).toBeVisible();
+  return page;
+}
+
+/** Asks the server as whoever is signed in on the page, for what a story needs but does not tell. */
+export async function ask<T>(
+  page: Page,
+  method: 'GET' | 'POST' | 'PATCH',
+  path: string,
+  body?: object,
+): Promise<T> {
+  const cookies = await page.context().cookies();
+  const token = cookies.find(({ name }) => name === 'XSRF-TOKEN')?.value ?? '';
+  const origin = new URL(page.url()).origin;
+  const reply = await page.request.fetch(path, {
+    method,
+    headers: { Origin: origin, 'X-XSRF-TOKEN': token },
+    ...(body ? { data: body } : {}),
+  });
+  if (!reply.ok()) throw new Error(`${path}: ${String(reply.status())} ${await reply.text()}`);
+  return (await reply.json()) as T;
+}
