@@ -7,6 +7,7 @@ import * as calls from './migrations/0003-calls';
 import * as routes from './migrations/0004-routes';
 import * as texts from './migrations/0005-texts';
 import * as nightLogs from './migrations/0006-night-logs';
+import * as locksInOrder from './migrations/0007-locks-in-order';
 
 /** Runs one statement of a migration. */
 export type Run = (statement: string) => Promise<void>;
@@ -23,6 +24,7 @@ const MIGRATIONS: Readonly<Record<string, Migration>> = {
   '0004-routes': routes,
   '0005-texts': texts,
   '0006-night-logs': nightLogs,
+  '0007-locks-in-order': locksInOrder,
 };
 
 /** Brings the schema up to date; safe when two processes start at once. @returns names newly applied */

@@ -2,6 +2,8 @@ import { setTimeout as pause } from 'node:timers/promises';
 import { Transaction, type Sequelize } from 'sequelize';
 
 const MAX_ATTEMPTS = 5;
+/** Whoever waits at a screen is told to try again after this long, in milliseconds. */
+const GIVE_UP_AFTER_MS = 8000;
 
 /** Deadlock, lock wait timeout, and "row changed since read" under snapshot isolation. */
 const WORTH_ANOTHER_TRY = new Set([1213, 1205, 1020]);
@@ -17,11 +19,13 @@ export async function inTransaction<T>(
   sequelize: Sequelize,
   work: (tx: Transaction) => Promise<T>,
 ): Promise<T> {
+  const began = performance.now();
   for (let attempt = 1; ; attempt++) {
     try {
       return await sequelize.transaction(work);
     } catch (error) {
-      if (!isWorthAnotherTry(error) || attempt === MAX_ATTEMPTS) throw error;
+      const isLast = attempt === MAX_ATTEMPTS || performance.now() - began > GIVE_UP_AFTER_MS;
+      if (!isWorthAnotherTry(error) || isLast) throw error;
       await pause(Math.random() * 20 * attempt);
     }
   }
@@ -38,7 +42,8 @@ export function asOfOneMoment<T>(
   );
 }
 
-function isWorthAnotherTry(error: unknown): boolean {
+/** Whether the database gave a transaction up for another's sake: the same again may work. */
+export function isWorthAnotherTry(error: unknown): boolean {
   return WORTH_ANOTHER_TRY.has(errorNumber(error) ?? 0);
 }
 
