@@ -9,6 +9,7 @@ import type { Logger } from 'pino';
 import type { z } from 'zod';
 import { problemType, type Problem } from '@shared/contract/problem';
 import { Refusal, type ProblemCode } from '@shared/domain/errors';
+import { isWorthAnotherTry } from '../db/transaction';
 
 /** A request that does not fit the contract. Every fault is named, not only the first. */
 export class InvalidRequest extends Error {
@@ -70,7 +71,7 @@ export function toProblem(error: unknown): Problem {
         detail: issue.message,
       })),
     };
-  if (isDatabaseAway(error)) return { type: problemType('busy'), ...PROBLEMS.busy };
+  if (isDatabaseAway(error) || isWorthAnotherTry(error)) return { type: problemType('busy'), ...PROBLEMS.busy };
   const status = statusOfExpress(error);
   if (status !== null)
     return {

@@ -19,7 +19,12 @@ export interface OtherServer {
 
 /** Servers in processes of their own, on the database of the test. */
 export interface OtherServers {
-  start(told: { readonly now: Instant; readonly dieAfter?: number }): Promise<OtherServer>;
+  start(told: {
+    readonly now: Instant;
+    readonly dieAfter?: number;
+    /** Hides what the database library says of each connection that it lost. */
+    readonly isQuiet?: true;
+  }): Promise<OtherServer>;
   /** Kills what still runs and clears up. */
   close(): Promise<void>;
 }
@@ -41,9 +46,9 @@ export async function otherServers(suffix: string): Promise<OtherServers> {
   const running = new Set<OtherServer>();
 
   return {
-    start: async ({ now, dieAfter = null }) => {
+    start: async ({ now, dieAfter = null, isQuiet = false }) => {
       const child = spawn(process.execPath, [program], {
-        stdio: ['ignore', 'pipe', 'inherit'],
+        stdio: ['ignore', 'pipe', isQuiet ? 'ignore' : 'inherit'],
         env: {
           ...process.env,
           SERVER_PROGRAM: JSON.stringify({ database: testDatabase(suffix), now, dieAfter }),
