@@ -17,6 +17,8 @@ import { ReplyBox } from './reply-box';
 import { aMessage } from './testing';
 import { ThreadView } from './thread-view';
 
+// It takes the place of another's component.
+// eslint-disable-next-line @angular-eslint/component-selector
 @Component({ selector: 'mat-icon', template: '' })
 class NoIcon {
   readonly svgIcon = input<string>();

@@ -4,7 +4,7 @@ import {
   ChangeDetectionStrategy,
   Component,
   computed,
-  ElementRef,
+  type ElementRef,
   inject,
   Injector,
   output,
@@ -40,6 +40,7 @@ const NEAR_END_PX = 80;
   templateUrl: './thread-view.html',
   styleUrls: ['../intake/fields.scss', './thread-view.scss'],
   changeDetection: ChangeDetectionStrategy.OnPush,
+  host: { '(pointerdown)': 'seen()', '(keydown)': 'seen()' },
 })
 export class ThreadView {
   protected readonly model = inject(MessagesModel);

@@ -21,6 +21,8 @@ import { LogPreview } from './log-preview';
 import { LogView } from './log-view';
 import { NightLogPage } from './night-log-page';
 
+// It takes the place of another's component.
+// eslint-disable-next-line @angular-eslint/component-selector
 @Component({ selector: 'mat-icon', template: '' })
 class NoIcon {
   readonly svgIcon = input<string>();
