@@ -14,6 +14,7 @@ import { openApi } from './http/openapi';
 import { problemHandler } from './http/problem';
 import { ownOrigins, refuseForeignChanges, securityHeaders } from './http/security';
 import { sessions } from './http/sessions';
+import { safeError } from './log/safe-error';
 import { nightLogRoutes } from './night-log/night-log-routes';
 import { officeRoutes } from './office/office-routes';
 import { regionRoutes } from './region/region-routes';
@@ -149,13 +150,15 @@ function requestLog(context: Context): RequestHandler {
     autoLogging: {
       ignore: (request) => /^\/(tiles|healthz|readyz|metrics)/.test(request.url ?? ''),
     },
+    wrapSerializers: false,
     serializers: {
-      req: (request: { id: unknown; method: string; url: string }) => ({
+      req: (request: Request) => ({
         id: request.id,
         method: request.method,
-        path: request.url.split('?')[0],
+        path: request.originalUrl.split('?')[0],
       }),
       res: (response: { statusCode: number }) => ({ status: response.statusCode }),
+      err: safeError,
     },
     customLogLevel: (_request, response, error) =>
       error || response.statusCode >= 500 ? 'error' : 'debug',

@@ -1,10 +1,10 @@
 import path from 'node:path';
-import { pino } from 'pino';
 import { createApp } from './app';
 import { EXIT_CONFIG, InvalidConfig, readConfig, type Config } from './config';
 import { connect } from './db/connect';
 import { migrate } from './db/migrate';
 import { seedDemo } from './demo/seed-demo';
+import { makeLog } from './log/make-log';
 import { createLogReader } from './night-log/log-reader';
 import { resumeImports } from './night-log/import-log';
 import { machine } from './commands/actor';
@@ -22,7 +22,7 @@ void main();
 
 async function main(): Promise<void> {
   const config = configOrExit();
-  const log = pino({ level: config.logLevel });
+  const log = makeLog(config.logLevel);
   process.on('unhandledRejection', (error) => {
     log.fatal({ err: error }, 'a failure that nobody handled');
     process.exit(1);
