@@ -17,13 +17,14 @@ import { MINUTE_MS } from '@shared/domain/instant';
 import { CompartmentGlyph } from '../board/compartment-glyph';
 import { SKILL_WORDS } from '../board/queue-words';
 import { whenWords } from '../board/time-words';
-import { ago, clockTime, duration, Zone } from '../core/zone';
+import { ago, clockTime, dayTime, duration, Zone } from '../core/zone';
 import type { PlaceAnswer } from './place-dialog';
 import { heldCursor, isCursorMove, movedCursor, type RouteCursor } from './route-cursor';
 import type { ProposedView, RouteRow, StopView } from './route-rows';
 import {
   blockOf,
   type BlockPlace,
+  type HourTick,
   placeAt,
   type RulerSpan,
   ticksOf,
@@ -145,6 +146,11 @@ export class RouteBoard {
 
   protected hourWords(at: Instant): string {
     return clockTime(at, this.zone.name());
+  }
+
+  /** Midnight is called by the day that begins. */
+  protected tickWords({ at, isMidnight }: HourTick): string {
+    return isMidnight ? (dayTime(at, this.zone.name()).split(' ')[0] ?? '') : this.hourWords(at);
   }
 
   protected short(view: StopView | ProposedView): string {

@@ -13,8 +13,8 @@ export const FIRST_ZOOM = 2;
 
 /** So much of what has been stays in sight, for stops that are under way. */
 const BEFORE_NOW_MS = HOUR_MS;
-/** Nobody publishes routes further ahead; a shift two days off would make the ruler endless. */
-const MOST_MS = 40 * HOUR_MS;
+/** A backlog of several shifts is planned ahead; beyond four days the ruler would be endless. */
+const MOST_MS = 96 * HOUR_MS;
 /** A shift that begins later than this is not shown while no stop lies in it. */
 const SOON_MS = 12 * HOUR_MS;
 
