@@ -42,7 +42,7 @@ export function decodeLog(bytes: Uint8Array): DecodedLog {
   }
   const mended = mendTwiceEncoded(text);
   if (mended !== text) notes.push('accented letters that had been encoded twice were mended');
-  return { text: mended.replace(/\u0000/g, ''), encoding, notes };
+  return { text: mended.replaceAll('\0', ''), encoding, notes };
 }
 
 /** Line by line, because a service's own form and a pasted message may differ within one file. */
@@ -97,7 +97,7 @@ const TO_BYTE = new Map(
 /** "JosÃ©" back to "José". */
 function mendTwiceEncoded(text: string): string {
   if (!/[\u00c2\u00c3\u00e2]/.test(text)) return text;
-  return text.replace(/[\u00c2\u00c3][^\u0000-\u007f]|\u00e2[^\u0000-\u007f]{2}/g, (garbled) => {
+  return text.replace(/[\u00c2\u00c3][\u0080-\uffff]|\u00e2[\u0080-\uffff]{2}/g, (garbled) => {
     const bytes = [...garbled].map((letter) => TO_BYTE.get(letter));
     if (bytes.some((byte) => byte === undefined)) return garbled;
     return tryUtf8(Uint8Array.from(bytes.filter((byte) => byte !== undefined))) ?? garbled;

@@ -2,6 +2,7 @@ import type { IncomingMessage } from 'node:http';
 import type { RequestHandler } from 'express';
 import passport from 'passport';
 import { Strategy } from 'passport-local';
+import { byCallback } from '../http/by-callback';
 import { hashPassword, isOutdated, isPassword, pretendToCheck } from './passwords';
 import type { SignedIn } from './signed-in';
 import { UserRecord } from './user-record';
@@ -39,17 +40,14 @@ export function signInDesk(): SignInDesk {
   return {
     middlewares: [desk.initialize() as RequestHandler, desk.session() as RequestHandler],
     check: (signInName, password) =>
-      new Promise((resolve, reject) => {
+      byCallback<Express.User | null>((done) => {
         const authenticate = desk.authenticate(
           'local',
           { session: false },
-          (error: unknown, user: Express.User | false | null) =>
-            error ? reject(error as Error) : resolve(user || null),
+          (error: unknown, user: Express.User | false | null) => done(error, user || null),
         ) as (request: unknown, response: unknown, next: (error?: unknown) => void) => void;
         // Passport's strategies read a request; ours needs the two fields only.
-        authenticate({ body: { signInName, password } }, {}, (error) =>
-          error ? reject(error as Error) : resolve(null),
-        );
+        authenticate({ body: { signInName, password } }, {}, (error) => done(error, null));
       }),
   };
 }

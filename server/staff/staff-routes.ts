@@ -3,6 +3,7 @@ import type { MaybeMe } from '@shared/contract/office';
 import { Refusal } from '@shared/domain/errors';
 import type { Context } from '../context';
 import type { SomeHandlers } from '../http/bind-routes';
+import { byCallback } from '../http/by-callback';
 import { giveToken, takeTokenBack } from '../http/security';
 import { cookieName } from '../http/sessions';
 import { readSettings } from '../office/settings';
@@ -57,9 +58,7 @@ export function staffRoutes(context: Context, desk: SignInDesk): SomeHandlers<Na
     signOut: async ({ maybePerson, http: { request, response } }) => {
       if (maybePerson) {
         context.live.endSockets({ sessionId: maybePerson.sessionId }, 'Signed out.');
-        await new Promise<void>((resolve, reject) =>
-          request.session.destroy((error: unknown) => (error ? reject(error as Error) : resolve())),
-        );
+        await byCallback((done) => request.session.destroy(done));
         context.log.info({ userId: maybePerson.userId }, 'signed out');
       }
       response.clearCookie(cookieName(context.config), { path: '/' });
@@ -95,8 +94,5 @@ async function meOf(context: Context, person: SignedIn): Promise<NonNullable<May
   };
 }
 
-function logIn(request: Request, user: Express.User): Promise<void> {
-  return new Promise((resolve, reject) =>
-    request.logIn(user, (error: unknown) => (error ? reject(error as Error) : resolve())),
-  );
-}
+const logIn = (request: Request, user: Express.User): Promise<void> =>
+  byCallback((done) => request.logIn(user, done));

@@ -160,7 +160,7 @@ describe('conservation', () => {
           ...call,
           settledAt: settled?.[0] ?? null,
           settledHow: settled?.[1] ?? null,
-        }) as DrainCall,
+        }),
     );
   const night = fc.array(someCall, { maxLength: 25 });
 

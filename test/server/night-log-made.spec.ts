@@ -1,5 +1,4 @@
 import type { Instant } from '@shared/domain/instant';
-import { addressKey, readAddress } from '@shared/domain/night-log/address-text';
 import { guessColumns } from '@shared/domain/night-log/guess-columns';
 import type { NightCall } from '@shared/domain/night-log/night-call';
 import { understandLog } from '@shared/domain/night-log/understand-log';
@@ -63,11 +62,6 @@ function read(
   return { ...reading, offset, reader };
 }
 
-const EMPTY = { whole: '', number: '', street: '', unit: '', city: '', state: '', postcode: '' };
-const meantPlace = (address: LogAddress): string | null => {
-  const cut = readAddress({ ...EMPTY, number: address.number, street: address.street });
-  return cut && addressKey(cut);
-};
 const kindsOf = (kinds: readonly string[]): string => [...kinds].sort().join(' + ');
 
 interface Tally {

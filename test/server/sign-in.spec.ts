@@ -1,6 +1,6 @@
 import request from 'supertest';
 import { MINUTE_MS, HOUR_MS } from '@shared/domain/instant';
-import { change } from '../../server/db/sql';
+import { change, select } from '../../server/db/sql';
 import { UserRecord } from '../../server/staff/user-record';
 import { NIGHT, PASSWORD, startServer, type TestServer } from '../support/server';
 
@@ -105,10 +105,8 @@ describe('a session', () => {
     await change(server.sequelize, 'UPDATE sessions SET expires = ?', [soon]);
     await mara.call('listStorms');
     await mara.call('me');
-    const [rows] = await server.sequelize.query('SELECT expires FROM sessions');
-    expect((rows as { expires: Date }[])[0]?.expires.getTime()).toBeLessThanOrEqual(
-      soon.getTime() + 1,
-    );
+    const [row] = await select<{ expires: Date }>(server.sequelize, 'SELECT expires FROM sessions');
+    expect(row?.expires.getTime()).toBeLessThanOrEqual(soon.getTime() + 1);
   });
 
   it('loses its rights at once when the account is disabled, on HTTP and on the socket', async () => {

@@ -97,7 +97,7 @@ const PLACE_AFTER = new RegExp(
   `^ ?\\(?(?:is |are )?(?:in|on|at|out in|down in|en)? ?(?:the |my |his |her |el |la )?${PLACE}\\b`,
 );
 const RUNS =
-  /^\s*(?:(?!not|no|isn|ain|won|never|keeps?|stopped)\w+ )?(?:is |are |seems? |was |both |=|:|-|esta |funciona )?\s*(?:still |now |all |also |doing |keeping |bien )*(?:(?:ok|okay|fine|good|alright|bien)\b(?! for)|(?:works|working|running|cold|cooling|holding|on)(?: (?:again|now|ok|fine|though|tho))*\s*(?:$|[.,;)\/]|\band (?!(?:warm|hot|not))|\bbut (?:the|freezer|frzr|fridge)))/;
+  /^\s*(?:(?!not|no|isn|ain|won|never|keeps?|stopped)\w+ )?(?:is |are |seems? |was |both |=|:|-|esta |funciona )?\s*(?:still |now |all |also |doing |keeping |bien )*(?:(?:ok|okay|fine|good|alright|bien)\b(?! for)|(?:works|working|running|cold|cooling|holding|on)(?: (?:again|now|ok|fine|though|tho))*\s*(?:$|[.,;)/]|\band (?!(?:warm|hot|not))|\bbut (?:the|freezer|frzr|fridge)))/;
 const FURTHER =
   /\b(?:also|too|plus|another|second|2nd|other|extra|as well|additional|tambien|otra|otro|both|and|&|\+|y)\b|[+&]/;
 

@@ -101,7 +101,7 @@ export class BoardStore {
     const routes = new Map([...this.technicians().keys()].map((id) => [id, [] as Stop[]]));
     for (const stop of this.stops().values()) routes.get(stop.technicianId)?.push(stop);
     for (const route of routes.values()) route.sort((a, b) => a.position - b.position);
-    return routes as ReadonlyMap<string, readonly Stop[]>;
+    return routes;
   });
   readonly stopOfCall = computed(
     () => new Map([...this.stops().values()].map((stop) => [stop.callId, stop])),

@@ -82,8 +82,8 @@ export class Live {
   on<E extends keyof ServerEvents>(event: E, heard: ServerEvents[E]): () => void {
     // The library's listener type is a conditional one that cannot be resolved for an open `E`.
     const socket = this.socket as unknown as Emitter;
-    socket.on(event, heard as (...args: never[]) => void);
-    return () => socket.off(event, heard as (...args: never[]) => void);
+    socket.on(event, heard);
+    return () => socket.off(event, heard);
   }
 
   /** Calls `connected` at every connection, and now if there is one; returns how to stop. */

@@ -64,7 +64,10 @@ export class AccountMenu {
     try {
       if (!this.drafts.hasAny()) return await this.session.signOut();
       const { SignOutDialog } = await import('./sign-out-dialog');
-      const decision = await firstValueFrom(this.dialogs.open(SignOutDialog).afterClosed());
+      const asked = this.dialogs.open<object, undefined, 'clear-drafts' | 'keep-drafts'>(
+        SignOutDialog,
+      );
+      const decision = await firstValueFrom(asked.afterClosed());
       if (decision) await this.session.signOut(decision);
     } catch (error) {
       this.announce.notice(problemWords(error));
