@@ -14,6 +14,7 @@ import { Refusal } from '@shared/domain/errors';
 import type { Context } from '../context';
 import type { SignedIn } from '../staff/signed-in';
 import { InvalidRequest } from './problem';
+import { MOST_PER_MINUTE, RateLimit } from './rate-limit';
 
 /** What a handler gets: everything checked, everything typed. */
 export interface Asked<K extends RouteName> {
@@ -46,6 +47,7 @@ export function bindRoutes(
 ): Router {
   const router = Router();
   const parseJson = express.json({ limit: MOST_JSON, strict: true });
+  const limit = new RateLimit();
   const parseBytes = express.raw({ limit: MOST_BYTES, type: 'application/octet-stream' });
 
   for (const name of Object.keys(PATHS) as RouteName[]) {
@@ -53,7 +55,10 @@ export function bindRoutes(
     const spec: RouteSpec = HTTP[name];
     const verb = method.toLowerCase() as 'get' | 'post' | 'patch' | 'delete';
     const parse = spec.body === 'bytes' ? parseBytes : parseJson;
-    const chain: RequestHandler[] = [guard(spec, personOf), ...(spec.body ? [parse] : [])];
+    const chain: RequestHandler[] = [
+      guard(name, spec, personOf, limit),
+      ...(spec.body ? [parse] : []),
+    ];
     router[verb](path, ...chain, async (request, response) => {
       const person = personFrom(response);
       const asked = {
@@ -77,8 +82,10 @@ export function bindRoutes(
 
 /** Rights are checked in one place, before the request is read any further. */
 function guard(
+  name: RouteName,
   spec: RouteSpec,
   personOf: (request: Request) => Promise<SignedIn | null>,
+  limit: RateLimit,
 ): RequestHandler {
   return async (request, response, next) => {
     const person = await personOf(request);
@@ -93,6 +100,8 @@ function guard(
         'password-change-needed',
         'Replace the passphrase that you were given by a password of your own.',
       );
+    const most = MOST_PER_MINUTE[name];
+    if (person && most !== undefined) limit.count(`${name} ${person.userId}`, most);
     next();
   };
 }
