@@ -1,8 +1,10 @@
 import path from 'node:path';
+import { HOUR_MS } from '@shared/domain/instant';
 import { createApp } from './app';
 import { EXIT_CONFIG, InvalidConfig, readConfig, type Config } from './config';
 import { connect } from './db/connect';
 import { migrate } from './db/migrate';
+import { tidy } from './db/tidy';
 import { seedDemo } from './demo/seed-demo';
 import { makeLog } from './log/make-log';
 import { createLogReader } from './night-log/log-reader';
@@ -14,6 +16,7 @@ import { readAddressBook } from './region/region-data';
 import { createPlannerWorker } from './workers/planner-client';
 import { createPocketsWorker } from './workers/pockets-client';
 import { startOutbox } from './texts/outbox';
+import { poll } from './texts/poll';
 
 /** How long open requests may take to end once the process is told to stop, in milliseconds. */
 const DRAIN_MS = 10_000;
@@ -66,6 +69,15 @@ async function main(): Promise<void> {
   const worker = startOutbox(app.context);
   outbox.wake = () => worker.wake();
 
+  const tidying = poll(
+    async () => {
+      const gone = await tidy(sequelize, Date.now());
+      if (gone > 0) log.info({ gone }, 'let go of old rows');
+    },
+    HOUR_MS,
+    (error) => log.warn({ err: error }, 'could not tidy up'),
+  );
+
   void resumeImports(app.context, machine('Night log'));
 
   app.http.on('error', (error: NodeJS.ErrnoException) => {
@@ -85,7 +97,7 @@ async function main(): Promise<void> {
     if (isStopping) return;
     isStopping = true;
     setTimeout(() => process.exit(1), DRAIN_MS).unref();
-    await worker.stop();
+    await Promise.all([worker.stop(), tidying.stop()]);
     await app.close();
     await Promise.all([planner.close(), pockets.close(), logReader.close()]);
     await sequelize.close();

@@ -140,6 +140,11 @@ async function firstReply<R>(
     [commandId],
     tx,
   );
+  if (first?.fingerprint === fingerprint && first.reply === null)
+    throw new Refusal(
+      'command-id-reused',
+      'This was carried out long ago. Look at how things are now before you ask for more.',
+    );
   if (!first || first.fingerprint !== fingerprint || first.reply === null)
     throw new Refusal(
       'command-id-reused',

@@ -83,11 +83,13 @@ export const INVARIANTS: readonly Invariant[] = [
   },
   {
     id: 'feeds-have-no-gap',
-    says: 'The changes of a stream are numbered from 1 without a gap.',
+    says: 'The changes of a stream are numbered from 1 without a gap; only the oldest may be let go.',
     breaches: none(
-      `SELECT f.storm_id, f.stream, f.n, COUNT(c.n) AS changes, MAX(c.n) AS last
+      `SELECT f.storm_id, f.stream, f.n, COUNT(c.n) AS changes, MIN(c.n) AS first, MAX(c.n) AS last
          FROM feeds f LEFT JOIN feed_changes c ON c.storm_id = f.storm_id AND c.stream = f.stream
-        GROUP BY f.storm_id, f.stream HAVING f.n <> changes OR f.n <> last`,
+        GROUP BY f.storm_id, f.stream
+       HAVING f.n <> COALESCE(last, 0) OR (changes > 0 AND changes <> last - first + 1)
+           OR (f.n < 1000 AND changes <> f.n)`,
     ),
   },
   {

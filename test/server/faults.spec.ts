@@ -12,7 +12,7 @@ import { PlanRecord, StopRecord } from '../../server/routes/stop-record';
 import { aCall, aPhone } from '../support/calls';
 import { testDatabase } from '../support/database';
 import { type OtherServer, type OtherServers, otherServers } from '../support/other-servers';
-import { act, aStop, aTechnician, aWaitingCall, done, put } from '../support/routes';
+import { act, aStop, aTechnician, aWaitingCall, put } from '../support/routes';
 import { browser, NIGHT, startServer, type TestPerson, type TestServer } from '../support/server';
 
 const SUFFIX = '_faults';
