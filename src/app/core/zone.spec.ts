@@ -20,6 +20,7 @@ describe('duration', () => {
     [HOUR_MS, '1 h 00'],
     [3 * HOUR_MS + 10 * MINUTE_MS, '3 h 10'],
     [50 * HOUR_MS, '50 h'],
+    [658 * HOUR_MS, '27 days'],
     [-5, '0 min'],
   ])('says %d ms as %s', (ms, words) => {
     expect(duration(ms)).toBe(words);

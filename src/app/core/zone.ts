@@ -20,13 +20,15 @@ export const dateTime = (at: Instant, timeZone: string): string =>
     minute: '2-digit',
   }).format(at);
 
-/** `45 min`, `3 h 10`, `52 h`: a length of time, rounded down to the minute. */
+/** `45 min`, `3 h 10`, `52 h`, `27 days`: a length of time, rounded down. */
 export function duration(lengthMs: number): string {
   const minutes = Math.max(0, Math.floor(lengthMs / MINUTE_MS));
   if (minutes < 60) return `${minutes} min`;
   const hours = Math.floor(minutes / 60);
   // Beyond two days nobody acts on minutes.
-  return hours < 48 ? `${hours} h ${String(minutes % 60).padStart(2, '0')}` : `${hours} h`;
+  if (hours < 48) return `${hours} h ${String(minutes % 60).padStart(2, '0')}`;
+  // Nor beyond a week on hours.
+  return hours < 168 ? `${hours} h` : `${Math.floor(hours / 24)} days`;
 }
 
 /** `just now`, `5 min ago`, `3 h 10 ago`. */
