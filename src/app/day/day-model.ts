@@ -116,7 +116,7 @@ export class DayModel {
       label,
       at: this.clock.exact(),
     };
-    return this.send(order as unknown as DayOrder);
+    return this.send(order);
   }
 
   private async send(order: DayOrder): Promise<boolean> {
