@@ -47,5 +47,6 @@ function placeOf(hours: number): string {
   if (hours === 0) return 'now';
   if (hours === LAST_HOURS) return 'last';
   if (hours === -4) return 'past';
+  if (hours === 2) return 'near';
   return hours === 4 || hours === 24 ? 'crowded' : '';
 }

@@ -22,7 +22,8 @@ import { Keys } from '../core/keys';
   ],
   template: `
     <h2 mat-dialog-title>Keys on this screen</h2>
-    <mat-dialog-content>
+    <!-- The arrow keys scroll it where it is taller than the window. -->
+    <mat-dialog-content tabindex="0" role="region" aria-label="List of keys">
       <div class="scopes">
         @for (group of keys.byScope(); track group.scope) {
           <section>
