@@ -1,4 +1,4 @@
-import type { ErrorRequestHandler } from 'express';
+import type { ErrorRequestHandler, Request, Response } from 'express';
 import {
   ConnectionAcquireTimeoutError,
   ConnectionError,
@@ -71,7 +71,8 @@ export function toProblem(error: unknown): Problem {
         detail: issue.message,
       })),
     };
-  if (isDatabaseAway(error) || isWorthAnotherTry(error)) return { type: problemType('busy'), ...PROBLEMS.busy };
+  if (isDatabaseAway(error) || isWorthAnotherTry(error))
+    return { type: problemType('busy'), ...PROBLEMS.busy };
   const status = statusOfExpress(error);
   if (status !== null)
     return {
@@ -89,14 +90,32 @@ export function problemHandler(log: Logger): ErrorRequestHandler {
     const problem = toProblem(error);
     if (problem.status >= 500) log.error({ err: error as unknown }, 'a request failed');
     if (problem.status === 503) response.set('Retry-After', '2');
+    if (error instanceof Refusal && OF_SECURITY.has(error.code))
+      log.warn(
+        { code: error.code, path: pathOf(request), userId: userIdOf(response) },
+        'a request was refused',
+      );
     const wait = (error as { retryAfterSeconds?: unknown }).retryAfterSeconds;
     if (typeof wait === 'number') response.set('Retry-After', String(wait));
     response
       .status(problem.status)
       .type('application/problem+json')
-      .send(JSON.stringify({ ...problem, instance: request.originalUrl.split('?')[0] }));
+      .send(JSON.stringify({ ...problem, instance: pathOf(request) }));
   };
 }
+
+/** Refusals that somebody who looks for an attack wants to find: who, where, when (ASVS 5.0, 16.3). */
+const OF_SECURITY: ReadonlySet<ProblemCode> = new Set([
+  'not-allowed',
+  'foreign-origin',
+  'sign-in-failed',
+  'too-many-attempts',
+]);
+
+const pathOf = (request: Request): string => request.originalUrl.split('?')[0] ?? '';
+
+const userIdOf = (response: Response): string | null =>
+  (response.locals['person'] as { userId: string } | null | undefined)?.userId ?? null;
 
 /** RFC 6901, section 3. */
 const escaped = (part: string): string => part.replace(/~/g, '~0').replace(/\//g, '~1');

@@ -35,6 +35,7 @@ const sessionRoom = (id: string): string => `session:${id}`;
 const MOST_SOCKETS_PER_USER = 8;
 /** Asking again and again is a client gone wrong. */
 const MOST_ASKS_PER_MINUTE = 60;
+const MOST_EVENTS_PER_MINUTE = 300;
 
 const ResumeFrom = z.strictObject({ stormId: Id, after: z.int().nonnegative() });
 
@@ -90,6 +91,14 @@ export async function serveSockets(door: SocketDoor): Promise<Live> {
     if (person.role === 'technician') {
       if (person.technicianId) void socket.join(technicianRoom(person.technicianId));
     } else void socket.join(DESK_ROOM);
+
+    // Also of events that mean nothing here: reading them costs, too.
+    const events = new Allowance(MOST_EVENTS_PER_MINUTE);
+    socket.onAny(() => {
+      if (events.take()) return;
+      door.log.warn({ userId: person.userId }, 'a socket sent too much and was closed');
+      socket.disconnect(true);
+    });
 
     const asks = new Allowance(MOST_ASKS_PER_MINUTE);
     socket.on('board:resume', (from, answer) =>

@@ -56,10 +56,8 @@ describe('the claim on a call', () => {
   });
 
   it('kept or given back leaves the version alone, and is told to the boards all the same', async () => {
-    const { row } = await taken();
-    await on(mara, 'claimCall', { row })();
-    const checking = (await mara.call('readCall', { params: { callId: row.id } }))
-      .body as CallDetail;
+    const call = await taken();
+    const checking = (await on(mara, 'claimCall', call)()).body as CallDetail;
     const board = await jonas.socket();
     const heard: { version: number; until: number | undefined }[] = [];
     board.on('board:changed', ({ change }) => {

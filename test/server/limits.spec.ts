@@ -1,4 +1,5 @@
 import { randomUUID } from 'node:crypto';
+import request from 'supertest';
 import { HOUR_MS } from '@shared/domain/instant';
 import { BOARD } from '../../server/commands/feed';
 import { change, insert, select } from '../../server/db/sql';
@@ -6,6 +7,7 @@ import { tidy } from '../../server/db/tidy';
 import { MOST_PER_MINUTE, RateLimit } from '../../server/http/rate-limit';
 import { brokenInvariants } from '../../server/invariants/checks';
 import { aCall } from '../support/calls';
+import { until } from '../support/routes';
 import { NIGHT, startServer, type TestPerson, type TestServer } from '../support/server';
 
 let server: TestServer;
@@ -106,4 +108,65 @@ describe('tidying up', () => {
     });
     expect(again.status).toBe(201);
   });
+});
+
+describe('a socket', () => {
+  const raw = (socket: Awaited<ReturnType<TestPerson['socket']>>) =>
+    socket as unknown as { emit(event: string, ...rest: unknown[]): void };
+
+  it('is closed when it floods the server with whatever events', async () => {
+    const socket = await mara.socket();
+    const closed = new Promise<string>((resolve) => socket.once('disconnect', resolve));
+    for (let i = 0; i < 301; i++) raw(socket).emit('nothing', i);
+    expect(await closed).toBe('io server disconnect');
+  });
+
+  it('is closed when it sends more than 16 kB at once', async () => {
+    const socket = await mara.socket();
+    const closed = new Promise<string>((resolve) => socket.once('disconnect', resolve));
+    raw(socket).emit('board:resume', 'x'.repeat(20_000), () => undefined);
+    expect(await closed).toMatch(/transport/);
+  });
+
+  it.each([
+    ['nothing', []],
+    ['no way to answer', [{ stormId: 7 }]],
+    ['an answer that is none', [{ stormId: 7 }, 'answer']],
+    ['null', [null, () => undefined]],
+    ['a prototype', [JSON.parse('{"__proto__":{"a":1}}'), () => undefined]],
+    ['a list', [[[[]]], () => undefined]],
+  ])('that sends %s cannot end the server', async (_what, sent) => {
+    const socket = await mara.socket();
+    for (const event of ['board:resume', 'day:resume', 'connection', 'error', 'disconnecting'])
+      try {
+        raw(socket).emit(event, ...sent);
+      } catch {
+        // The client's own library refuses reserved names.
+      }
+    const fine = await socket.emitWithAck('board:resume', { stormId: server.stormId, after: 0 });
+    expect(fine).toEqual({ kind: 'changes', changes: [] });
+    socket.close();
+  });
+
+  it('opens eight times for one person, and not once more', async () => {
+    const open = await Promise.all(Array.from({ length: 8 }, () => mara.socket()));
+    const ninth = await mara.socket();
+    await until(() => ninth.disconnected, 'the ninth to be closed');
+    expect(open.map((socket) => socket.connected)).toEqual(open.map(() => true));
+    for (const socket of [...open, ninth]) socket.close();
+  });
+});
+
+it('an address is the one that connects, whatever a header says', async () => {
+  const failed = (headers: Record<string, string>) =>
+    request(server.url)
+      .post('/api/session')
+      .set({ Origin: 'http://localhost:4310', ...headers })
+      .send({ signInName: 'nobody@example.com', password: 'a wrong password' });
+  expect((await failed({ 'X-Forwarded-For': '203.0.113.6' })).status).toBe(401);
+  const counted = await select<{ who: string }>(
+    server.sequelize,
+    "SELECT who FROM sign_in_attempts WHERE who LIKE 'address%'",
+  );
+  expect(counted.map(({ who }) => who)).toEqual(['address 127.0.0.1']);
 });

@@ -51,6 +51,16 @@ describe('the log', () => {
     expect(lines.join('')).not.toMatch(/5550101|thawline=|XSRF/);
   });
 
+  it('tells whoever looks for an attack what was refused, to whom and where', async () => {
+    const theo = await server.signIn('technician');
+    await theo.call('listUsers');
+    expect(entries().find(({ msg }) => msg === 'a request was refused')).toMatchObject({
+      code: 'not-allowed',
+      path: '/api/users',
+      userId: theo.userId,
+    });
+  });
+
   it('keeps what our own errors say', () => {
     const error = new Error('the planner crashed', { cause: new RangeError('too deep') });
     expect(safeError(error)).toMatchObject({
