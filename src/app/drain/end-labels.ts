@@ -57,7 +57,14 @@ function labelsOf(chart: Chart): Label[] {
     if (!endLabel || !end || meta.hidden) return [];
     const below = index > 0 ? chart.getDatasetMeta(index - 1).data.at(-1)?.y : undefined;
     const y = endLabelAt === 'band' ? (end.y + (below ?? chart.chartArea.bottom)) / 2 : end.y;
-    return [{ text: endLabel, color: endLabelColor ?? String(borderColor), x: end.x + GAP_PX, y }];
+    return [
+      {
+        text: endLabel,
+        color: endLabelColor ?? (typeof borderColor === 'string' ? borderColor : 'gray'),
+        x: end.x + GAP_PX,
+        y,
+      },
+    ];
   });
 }
 

@@ -1,0 +1,12 @@
+import type { Role } from '@shared/contract/common';
+
+export const ROLE_WORDS: Readonly<Record<Role, { readonly name: string; readonly does: string }>> =
+  {
+    dispatcher: {
+      name: 'Dispatcher',
+      does: 'takes calls, settles them by phone, keeps the routes',
+    },
+    technician: { name: 'Technician', does: 'sees their own stops on their phone, nothing else' },
+    manager: { name: 'Manager', does: 'as a dispatcher, and the drain and the office' },
+    owner: { name: 'Owner', does: 'as a manager, and the accounts' },
+  };

@@ -1,0 +1,236 @@
+import type { Settings } from '@shared/contract/office';
+import { readPhone } from '@shared/domain/phone-number';
+
+export type SettingKey = Exclude<keyof Settings, 'version'>;
+
+export interface SettingField {
+  readonly key: SettingKey;
+  readonly label: string;
+  readonly kind: 'text' | 'phone' | 'number' | 'time';
+  readonly unit: string;
+  readonly least?: number;
+  readonly most?: number;
+  readonly isWhole?: boolean;
+  readonly meaning: string;
+  /** Where the value that it starts with comes from. */
+  readonly source: string;
+}
+
+const OUR_ESTIMATE = 'Our estimate, no source.';
+const FCC =
+  '47 CFR 64.1200(c)(1) (FCC) allows solicitations by telephone from 8 a.m. to 9 p.m. where the ' +
+  'called party is. These texts are no solicitations; the same hours are kept out of courtesy.';
+
+/** Every setting in plain words. The ranges are the contract's; a test holds them to it. */
+export const SETTING_GROUPS: readonly {
+  readonly title: string;
+  readonly fields: readonly SettingField[];
+}[] = [
+  {
+    title: 'The company',
+    fields: [
+      {
+        key: 'companyName',
+        label: 'Name of the company',
+        kind: 'text',
+        unit: '',
+        meaning: 'Texts to customers begin with it.',
+        source: '',
+      },
+      {
+        key: 'companyPhone',
+        label: 'Number to ring',
+        kind: 'phone',
+        unit: '',
+        meaning: 'Customers are told to ring it.',
+        source: '',
+      },
+    ],
+  },
+  {
+    title: 'Texts to customers',
+    fields: [
+      {
+        key: 'etaMovedMinutes',
+        label: 'Tell of an arrival that moves by more than',
+        kind: 'number',
+        unit: 'min',
+        least: 5,
+        most: 180,
+        isWhole: true,
+        meaning: 'Fewer minutes mean more texts.',
+        source: OUR_ESTIMATE,
+      },
+      {
+        key: 'quietFromMinute',
+        label: 'Quiet hours from',
+        kind: 'time',
+        unit: '',
+        meaning: 'No text from here on, unless a visit is on its way.',
+        source: FCC,
+      },
+      {
+        key: 'quietUntilMinute',
+        label: 'Quiet hours until',
+        kind: 'time',
+        unit: '',
+        meaning: 'What waited is sent then.',
+        source: 'The same rule as for their beginning.',
+      },
+    ],
+  },
+  {
+    title: 'The desk',
+    fields: [
+      {
+        key: 'claimMinutes',
+        label: 'A claim on a call ends after',
+        kind: 'number',
+        unit: 'min',
+        least: 2,
+        most: 60,
+        isWhole: true,
+        meaning: 'Without a further step; then another dispatcher may take the call.',
+        source: OUR_ESTIMATE,
+      },
+      {
+        key: 'medicineWeight',
+        label: 'A medicine counts',
+        kind: 'number',
+        unit: 'times its value',
+        least: 1,
+        most: 100,
+        meaning: 'Moves calls with medicine up in the queue and on the routes.',
+        source: OUR_ESTIMATE,
+      },
+    ],
+  },
+  {
+    title: 'Driving and visits',
+    fields: [
+      {
+        key: 'speedMph',
+        label: 'Driving speed',
+        kind: 'number',
+        unit: 'mph',
+        least: 5,
+        most: 80,
+        meaning: 'On average, from door to door.',
+        source: 'Our estimate for town and country roads after a storm; your own times replace it.',
+      },
+      {
+        key: 'circuity',
+        label: 'Road distance',
+        kind: 'number',
+        unit: '× straight line',
+        least: 1,
+        most: 3,
+        meaning: 'How much longer the road is than the straight line.',
+        source:
+          'Ballou, Rahardja and Sakai, Transportation Research Part A 36(9), 2002, give 1.20 for ' +
+          'the US (from memory). Coasts run higher, and the cautious side promises less.',
+      },
+      {
+        key: 'serviceMinutes',
+        label: 'Time at a stop',
+        kind: 'number',
+        unit: 'min',
+        least: 5,
+        most: 480,
+        isWhole: true,
+        meaning: 'From arrival to departure, on average.',
+        source: 'Our estimate, no source; your own times replace it.',
+      },
+    ],
+  },
+  {
+    title: 'Pockets on the map',
+    fields: [
+      {
+        key: 'pocketKm',
+        label: 'Calls are neighbours within',
+        kind: 'number',
+        unit: 'km',
+        least: 0.1,
+        most: 10,
+        meaning: 'Neighbours of neighbours belong to the same pocket.',
+        source: OUR_ESTIMATE,
+      },
+      {
+        key: 'pocketCalls',
+        label: 'A pocket begins with',
+        kind: 'number',
+        unit: 'calls',
+        least: 2,
+        most: 50,
+        isWhole: true,
+        meaning: 'Fewer calls stay single dots.',
+        source: OUR_ESTIMATE,
+      },
+    ],
+  },
+];
+
+export const SETTING_FIELDS: readonly SettingField[] = SETTING_GROUPS.flatMap(
+  ({ fields }) => fields,
+);
+
+/** How a setting stands in its field. */
+export function settingText(field: SettingField, settings: Settings): string {
+  const value = settings[field.key];
+  return field.kind === 'time' && typeof value === 'number' ? timeText(value) : String(value);
+}
+
+/** What is wrong with a field's text, in words; `null` when nothing is. */
+export function settingFault(field: SettingField, text: string): string | null {
+  switch (field.kind) {
+    case 'text':
+      if (text.trim() === '') return 'A name is needed.';
+      return text.trim().length > 80 ? 'At most 80 characters.' : null;
+    case 'phone':
+      return phoneOf(text) === null ? 'Ten digits are needed, as in 252 555 0142.' : null;
+    case 'time':
+      return minutesOf(text) === null ? 'A time is needed, as in 21:00.' : null;
+    case 'number': {
+      const value = numberOf(text);
+      const { least = 0, most = Infinity } = field;
+      if (value === null || value < least || value > most)
+        return `A number from ${least} to ${most} is needed.`;
+      return field.isWhole && !Number.isInteger(value) ? 'Whole numbers only.' : null;
+    }
+  }
+}
+
+/** The value that a field's text means; only for texts without a fault. */
+export function settingValue(field: SettingField, text: string): string | number {
+  switch (field.kind) {
+    case 'text':
+      return text.trim();
+    case 'phone':
+      return phoneOf(text) ?? text;
+    case 'time':
+      return minutesOf(text) ?? 0;
+    case 'number':
+      return numberOf(text) ?? 0;
+  }
+}
+
+export function phoneOf(text: string): string | null {
+  const reading = readPhone(text);
+  return reading.kind === 'number' ? reading.number.e164 : null;
+}
+
+function numberOf(text: string): number | null {
+  const value = Number(text.trim().replace(',', '.'));
+  return text.trim() === '' || !Number.isFinite(value) ? null : value;
+}
+
+function minutesOf(text: string): number | null {
+  const [, hours, minutes] = /^(\d{1,2}):(\d{2})$/.exec(text.trim()) ?? [];
+  if (hours === undefined || minutes === undefined) return null;
+  const at = Number(hours) * 60 + Number(minutes);
+  return Number(hours) < 24 && Number(minutes) < 60 ? at : null;
+}
+
+const timeText = (minutes: number): string =>
+  `${String(Math.floor(minutes / 60)).padStart(2, '0')}:${String(minutes % 60).padStart(2, '0')}`;
