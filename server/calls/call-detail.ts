@@ -16,10 +16,21 @@ export async function callDetail(
   now: Instant,
   tx?: Transaction,
 ): Promise<CallDetail> {
-  const transaction = tx ? { transaction: tx } : {};
-  const call = await CallRecord.findByPk(callId, transaction);
+  const call = await CallRecord.findByPk(callId, tx ? { transaction: tx } : {});
+  if (!call) throw new Refusal('not-found', 'There is no such call.');
+  return detailOf(sequelize, call, now, tx);
+}
+
+/** As `callDetail`, of a call that a command has just stored. */
+export async function detailOf(
+  sequelize: Sequelize,
+  call: CallRecord,
+  now: Instant,
+  tx?: Transaction,
+): Promise<CallDetail> {
+  const callId = call.id;
   const [row] = await callRows(sequelize, { ids: [callId] }, now, tx);
-  if (!call || !row) throw new Refusal('not-found', 'There is no such call.');
+  if (!row) throw new Refusal('not-found', 'There is no such call.');
   const { units, reasons } = await unitsWithReasons(callId, tx);
   return {
     row,

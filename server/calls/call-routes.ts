@@ -5,7 +5,8 @@ import type { Context } from '../context';
 import type { SomeHandlers } from '../http/bind-routes';
 import type { SignedIn } from '../staff/signed-in';
 import { amendCall } from './amend-call';
-import { callDetail } from './call-detail';
+import { callDetail, detailOf } from './call-detail';
+import type { CallRecord } from './call-record';
 import { lockCall, saveCall, writeRemark } from './change-call';
 import {
   answerPhoneCheck,
@@ -43,11 +44,11 @@ export function callRoutes(context: Context): SomeHandlers<Names> {
       readonly body: { readonly commandId: string };
       readonly params: Readonly<Record<string, string>>;
     },
-    work: (job: Job) => Promise<{ readonly id: string }>,
+    work: (job: Job) => Promise<CallRecord>,
   ): Promise<CallDetail> =>
     runCommand(context, orderFrom(name, person, { ...body, ...params }), async (job) => {
-      const { id } = await work(job);
-      return callDetail(context.sequelize, id, job.now, job.tx);
+      const call = await work(job);
+      return detailOf(context.sequelize, call, job.now, job.tx);
     });
 
   return {
