@@ -20,6 +20,11 @@ export class LabelBoxes {
     return true;
   }
 
+  /** Keeps a place free of labels, whatever else stands there. */
+  reserve(box: Box): void {
+    this.taken.push(box);
+  }
+
   /** The first of some places that is free, if any. */
   takeFirst(boxes: readonly Box[]): Box | null {
     return boxes.find((box) => this.take(box)) ?? null;

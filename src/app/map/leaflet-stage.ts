@@ -117,11 +117,12 @@ export class LeafletStage {
     this.map.setZoom(this.map.getZoom() + steps);
   }
 
-  /** Shows all of these places, or the whole region when there are none. */
-  showAll(places: readonly LonLat[], closest = CALL_ZOOM): void {
+  /** Shows all of these places, or the whole region when there are none, beside or above what a panel covers. */
+  showAll(places: readonly LonLat[], { closest = CALL_ZOOM, left = 0, below = 0 } = {}): void {
     const bounds = L.latLngBounds(places.map(([lon, lat]) => L.latLng(lat, lon)));
     this.map.fitBounds(bounds.isValid() ? bounds : this.home, {
-      padding: [EDGE_PX, EDGE_PX],
+      paddingTopLeft: [EDGE_PX + left, EDGE_PX],
+      paddingBottomRight: [EDGE_PX, EDGE_PX + below],
       maxZoom: closest,
     });
   }

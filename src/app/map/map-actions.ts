@@ -11,6 +11,12 @@ import { MapPopover } from './map-popover';
 import { MapScenes } from './map-scenes';
 import type { MapSight } from './map-wish';
 
+/** As in the styles: below this the panel takes the lower part of the map, else its left. */
+const NARROW_PX = 560;
+const PANEL_PX = 320;
+/** A small outline is not blown up beyond this, unless the person is closer already. */
+const MOST_OUTLINE_ZOOM = 15;
+
 /** What can be done on the map, whether by button, key or click. */
 @Injectable()
 export class MapActions {
@@ -55,7 +61,17 @@ export class MapActions {
     this.panel.set('none');
     this.popover.close();
     this.editor.change(area);
-    this.stage()?.showAll(area.ring);
+    this.showOutline();
+  }
+
+  /** The form must not lie on what it is about. */
+  showOutline(): void {
+    const stage = this.stage();
+    if (!stage) return;
+    const { x, y } = stage.map.getSize();
+    const covered = x < NARROW_PX ? { below: y * 0.55 } : { left: PANEL_PX };
+    const closest = Math.max(stage.map.getZoom(), MOST_OUTLINE_ZOOM);
+    stage.showAll(this.editor.outline().corners, { ...covered, closest });
   }
 
   cancelArea(): void {

@@ -62,6 +62,8 @@ export function placeMarks(marks: readonly CallMark[], zoom: number): PlacedMark
   return placed;
 }
 
+const EMPTY_CELL: readonly CallMark[] = [];
+
 function hasRoom(
   mark: CallMark,
   grid: ReadonlyMap<number, readonly CallMark[]>,
@@ -72,7 +74,7 @@ function hasRoom(
 ): boolean {
   for (let dx = -1; dx <= 1; dx++) {
     for (let dy = -1; dy <= 1; dy++) {
-      for (const other of grid.get(cellKey(column + dx, row + dy)) ?? []) {
+      for (const other of grid.get(cellKey(column + dx, row + dy)) ?? EMPTY_CELL) {
         const reach = (MARK_RADIUS[mark.press] + MARK_RADIUS[other.press]) * spacing;
         const x = (mark.x - other.x) * scale;
         const y = (mark.y - other.y) * scale;
@@ -86,11 +88,11 @@ function hasRoom(
 /** Cells reach to 2^26 at the closest zoom, so a pair of them is one exact whole number. */
 const cellKey = (column: number, row: number): number => column * 2 ** 26 + row;
 
-const houseKey = ({ x, y }: CallMark): string =>
-  `${Math.round(x / SAME_PLACE)} ${Math.round(y / SAME_PLACE)}`;
+const houseKey = ({ x, y }: CallMark): number =>
+  Math.round(x / SAME_PLACE) * 2 ** 26 + Math.round(y / SAME_PLACE);
 
-function countHouses(marks: readonly CallMark[]): ReadonlyMap<string, number> {
-  const counts = new Map<string, number>();
+function countHouses(marks: readonly CallMark[]): ReadonlyMap<number, number> {
+  const counts = new Map<number, number>();
   for (const mark of marks) {
     const key = houseKey(mark);
     counts.set(key, (counts.get(key) ?? 0) + 1);

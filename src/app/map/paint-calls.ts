@@ -1,4 +1,5 @@
 import type { Press } from './call-mark';
+import { LabelBoxes } from './label-boxes';
 import { font, inkText, type MapInk } from './map-ink';
 import { dotRadius, MARK_RADIUS, type PlacedMark } from './mark-places';
 import type { MarkSprites } from './mark-sprites';
@@ -19,14 +20,24 @@ export function paintCalls(
   ink: MapInk,
 ): void {
   paintDots(ctx, view, placed, ink);
-  for (let i = placed.length - 1; i >= 0; i--) {
-    const one = placed[i];
-    if (!one?.isFull) continue;
+  const inSight: { readonly one: PlacedMark; readonly x: number; readonly y: number }[] = [];
+  for (const one of placed) {
+    if (!one.isFull) continue;
     const { x, y } = onScreen(view, one.mark);
-    if (!isInView(view, { x, y }, OUT_OF_SIGHT_PX)) continue;
+    if (isInView(view, { x, y }, OUT_OF_SIGHT_PX)) inSight.push({ one, x, y });
+  }
+  for (const { one, x, y } of inSight.toReversed()) {
     sprites.stamp(ctx, lookOf(one), x, y);
     if (one.count > 1 && view.zoom >= COUNTS_FROM_ZOOM) paintCount(ctx, one, x, y, ink);
-    else if (view.zoom >= NUMBERS_FROM_ZOOM) paintNumber(ctx, one, x, y, ink);
+  }
+  if (view.zoom < NUMBERS_FROM_ZOOM) return;
+  const boxes = new LabelBoxes();
+  for (const { one, x, y } of inSight) {
+    const radius = MARK_RADIUS[one.mark.press];
+    boxes.reserve({ x: x - radius, y: y - radius, width: 2 * radius, height: 2 * radius });
+  }
+  for (const { one, x, y } of inSight) {
+    if (one.count === 1) paintNumber(ctx, one, x, y, boxes, ink);
   }
 }
 
@@ -72,17 +83,25 @@ function paintDots(
   }
 }
 
+/** Right of the mark or left of it, and nowhere when others stand on both sides. */
 function paintNumber(
   ctx: CanvasRenderingContext2D,
   { mark }: PlacedMark,
   x: number,
   y: number,
+  boxes: LabelBoxes,
   ink: MapInk,
 ): void {
+  const text = String(mark.call.number);
+  const beside = MARK_RADIUS[mark.press] + 5;
   ctx.font = font(12, 500);
   ctx.textAlign = 'left';
   ctx.textBaseline = 'middle';
-  inkText(ctx, String(mark.call.number), x + MARK_RADIUS[mark.press] + 5, y, ink.ink, ink.ground);
+  const { width } = ctx.measureText(text);
+  const box = boxes.takeFirst(
+    [x + beside, x - beside - width].map((left) => ({ x: left, y: y - 7, width, height: 14 })),
+  );
+  if (box) inkText(ctx, text, box.x, y, ink.ink, ink.ground);
 }
 
 /** How many calls stand in this place, on a tab at the mark's lower right. */
@@ -142,7 +161,7 @@ export function paintRing(
       ctx.lineWidth = 2.5;
       ctx.stroke();
     }
-    paintTag(ctx, String(one.mark.call.number), x + radius + 14, y, ink);
+    paintTag(ctx, String(one.mark.call.number), x + radius + 8, y, ink);
   }
 }
 

@@ -91,6 +91,7 @@ export class StormMap {
     this.startWhenSized();
     this.showScene();
     this.showTop();
+    this.showFinishedOutline();
     this.followTheme();
     this.followSelection();
     this.followPinRequest();
@@ -170,6 +171,17 @@ export class StormMap {
         pin: this.pin.placed(),
       };
       stage?.refreshTop();
+    });
+  }
+
+  /** With its last corner the outline gets a larger form beside it. */
+  private showFinishedOutline(): void {
+    let wasDrawing = false;
+    effect(() => {
+      const isDrawing = this.editor.isDrawing();
+      const isFinished = wasDrawing && !isDrawing && this.editor.isOpen();
+      wasDrawing = isDrawing;
+      if (isFinished) untracked(() => this.actions.showOutline());
     });
   }
 
