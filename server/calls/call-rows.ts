@@ -1,8 +1,8 @@
 import type { Sequelize, Transaction } from 'sequelize';
-import type { CallRow, CompartmentRow } from '@shared/contract/calls';
-import type { UnitKind } from '@shared/domain/cold-unit';
+import type { CallRow } from '@shared/contract/calls';
 import type { Instant } from '@shared/domain/instant';
 import { json, select } from '../db/sql';
+import { unitRows, type UnitRow } from './unit-rows';
 
 type Which = { readonly ids: readonly string[] } | { readonly stormId: string };
 
@@ -36,16 +36,6 @@ interface StoredCall {
   unread: number;
 }
 
-interface StoredCompartment {
-  call_id: string;
-  unit_id: string;
-  unit_kind: UnitKind;
-  kind: CompartmentRow['kind'];
-  value_cents: number;
-  at_risk_at: Date;
-  save_by_at: Date | null;
-}
-
 /**
  * Calls as boards show them, by number. A claim that has run out is no claim, so the rows depend
  * on the moment.
@@ -76,44 +66,11 @@ export async function callRows(
     [value],
     tx,
   );
-  const compartments = await select<StoredCompartment>(
-    sequelize,
-    `SELECT u.call_id, u.id AS unit_id, u.kind AS unit_kind, k.kind, k.value_cents, k.at_risk_at,
-            k.save_by_at
-       FROM calls c
-       JOIN cold_units u ON u.call_id = c.id
-       JOIN compartments k ON k.unit_id = u.id
-      WHERE ${condition}
-      ORDER BY u.call_id, u.place_no, k.place_no`,
-    [value],
-    tx,
-  );
-
-  const units = unitsByCall(compartments);
+  const units = await unitRows(sequelize, 'ids' in which ? { callIds: which.ids } : which, tx);
   return calls.map((call) => toRow(call, units.get(call.id) ?? [], now));
 }
 
-function unitsByCall(rows: readonly StoredCompartment[]): Map<string, CallRow['units']> {
-  const byCall = new Map<string, CallRow['units']>();
-  for (const row of rows) {
-    const units = byCall.get(row.call_id) ?? [];
-    byCall.set(row.call_id, units);
-    let unit = units.at(-1);
-    if (unit?.id !== row.unit_id) {
-      unit = { id: row.unit_id, kind: row.unit_kind, compartments: [] };
-      units.push(unit);
-    }
-    unit.compartments.push({
-      kind: row.kind,
-      valueCents: row.value_cents,
-      atRiskAt: row.at_risk_at.getTime(),
-      saveByAt: row.save_by_at?.getTime() ?? null,
-    });
-  }
-  return byCall;
-}
-
-function toRow(call: StoredCall, units: CallRow['units'], now: Instant): CallRow {
+function toRow(call: StoredCall, units: readonly UnitRow[], now: Instant): CallRow {
   const claimUntil = call.claim_until?.getTime() ?? 0;
   return {
     id: call.id,
@@ -134,7 +91,7 @@ function toRow(call: StoredCall, units: CallRow['units'], now: Instant): CallRow
     areaId: call.area_id,
     lostAt: call.power_out_at.getTime(),
     restoredAt: call.restored_at?.getTime() ?? null,
-    units,
+    units: units.map(({ id, kind, compartments }) => ({ id, kind, compartments })),
     skills: json(call.skills),
     parts: json(call.parts),
     claim:

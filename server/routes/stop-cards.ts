@@ -1,8 +1,8 @@
 import type { Sequelize, Transaction } from 'sequelize';
-import type { CallRow, CompartmentRow } from '@shared/contract/calls';
+import type { CallRow } from '@shared/contract/calls';
 import type { StopCard } from '@shared/contract/routes';
 import type { CallState } from '@shared/domain/call-state';
-import type { UnitKind } from '@shared/domain/cold-unit';
+import { unitRows } from '../calls/unit-rows';
 import { json, select } from '../db/sql';
 import { isActive, stopDtos } from './stop-rows';
 
@@ -78,7 +78,7 @@ export async function stopCards(
       )
     ).map((call) => [call.id, call]),
   );
-  const units = await unitsOf(sequelize, callIds, tx);
+  const units = await unitRows(sequelize, { callIds }, tx);
   const remarks = await remarksOf(sequelize, callIds, tx);
   const endings = await endingsOf(sequelize, [...ids], tx);
 
@@ -117,48 +117,6 @@ export async function stopCards(
     });
   }
   return { cards, ended };
-}
-
-async function unitsOf(
-  sequelize: Sequelize,
-  callIds: readonly string[],
-  tx?: Transaction,
-): Promise<Map<string, StopCard['units']>> {
-  const rows = await select<{
-    call_id: string;
-    unit_id: string;
-    unit_kind: UnitKind;
-    place: string;
-    kind: CompartmentRow['kind'];
-    value_cents: number;
-    at_risk_at: Date;
-    save_by_at: Date | null;
-  }>(
-    sequelize,
-    `SELECT u.call_id, u.id AS unit_id, u.kind AS unit_kind, u.place, k.kind, k.value_cents,
-            k.at_risk_at, k.save_by_at
-       FROM cold_units u JOIN compartments k ON k.unit_id = u.id
-      WHERE u.call_id IN (?) ORDER BY u.call_id, u.place_no, k.place_no`,
-    [[...callIds]],
-    tx,
-  );
-  const byCall = new Map<string, StopCard['units']>();
-  for (const row of rows) {
-    const units = byCall.get(row.call_id) ?? [];
-    byCall.set(row.call_id, units);
-    let unit = units.at(-1);
-    if (unit?.id !== row.unit_id) {
-      unit = { id: row.unit_id, kind: row.unit_kind, place: row.place, compartments: [] };
-      units.push(unit);
-    }
-    unit.compartments.push({
-      kind: row.kind,
-      valueCents: row.value_cents,
-      atRiskAt: row.at_risk_at.getTime(),
-      saveByAt: row.save_by_at?.getTime() ?? null,
-    });
-  }
-  return byCall;
 }
 
 async function remarksOf(
