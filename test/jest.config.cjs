@@ -16,6 +16,8 @@ const swc = [
     module: { type: 'commonjs' },
   },
 ];
+/** What the build and the set-up leave behind is no part of the program. */
+const modulePathIgnorePatterns = ['<rootDir>/.data/', '<rootDir>/dist/'];
 const shared = { '^@shared/(.*)$': '<rootDir>/shared/$1' };
 
 module.exports = {
@@ -25,6 +27,7 @@ module.exports = {
     {
       displayName: 'domain',
       rootDir: root,
+      modulePathIgnorePatterns,
       testEnvironment: 'node',
       testMatch: ['<rootDir>/test/domain/**/*.spec.ts'],
       transform: { '^.+\\.[jt]s$': swc },
@@ -33,6 +36,7 @@ module.exports = {
     {
       displayName: 'server',
       rootDir: root,
+      modulePathIgnorePatterns,
       testEnvironment: 'node',
       testMatch: ['<rootDir>/test/server/**/*.spec.ts'],
       transform: { '^.+\\.[jt]s$': swc },
@@ -45,6 +49,7 @@ module.exports = {
     {
       displayName: 'client',
       rootDir: root,
+      modulePathIgnorePatterns,
       preset: 'jest-preset-angular',
       testEnvironment: 'jsdom',
       testMatch: ['<rootDir>/src/**/*.spec.ts'],
