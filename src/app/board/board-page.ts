@@ -78,6 +78,11 @@ export class BoardPage {
     this.board.selectedCallId.set(callId);
     this.wantsMap.set(false);
     this.show(callId);
+    // The intake is gone, and on a small screen the queue makes room: the cursor goes to the call.
+    this.afterRender(() => {
+      const active = document.activeElement;
+      if (active === document.body || active?.checkVisibility?.() === false) this.panel()?.focus();
+    });
   }
 
   protected take(): void {

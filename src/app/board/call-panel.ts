@@ -4,6 +4,7 @@ import {
   computed,
   DestroyRef,
   effect,
+  type ElementRef,
   inject,
   input,
   output,
@@ -57,6 +58,7 @@ export class CallPanel {
   protected readonly keepShut = CAUTIONS['keep-shut'].words;
   protected readonly neverTaste = CAUTIONS['never-taste'].words;
 
+  private readonly panel = viewChild.required<ElementRef<HTMLElement>>('panel');
   private readonly check = viewChild(PhoneCheckPanel);
   private readonly conclusion = viewChild(ConcludeForm);
   protected readonly checkResult = computed(() => this.check()?.result() ?? null);
@@ -154,6 +156,10 @@ export class CallPanel {
       ],
       inject(DestroyRef),
     );
+  }
+
+  focus(): void {
+    this.panel().nativeElement.focus();
   }
 
   /** Starts the phone check or goes on with it. */
