@@ -17,8 +17,10 @@ const misfits = (page: Page): Promise<readonly string[]> =>
   page.evaluate(() => {
     const found: string[] = [];
     const root = document.scrollingElement ?? document.documentElement;
-    if (root.scrollWidth > innerWidth)
-      found.push(`the page is ${String(root.scrollWidth)} px wide`);
+    // Where the part below the header scrolls, it is the page to whoever looks at it.
+    for (const page of [root, document.querySelector('main') ?? root])
+      if (page.scrollWidth > innerWidth)
+        found.push(`the page is ${String(page.scrollWidth)} px wide`);
 
     const named = (element: Element): string =>
       `${element.tagName.toLowerCase()}.${element.classList[0] ?? ''} "${(element.textContent ?? '').trim().slice(0, 40)}"`;
@@ -46,9 +48,22 @@ const misfits = (page: Page): Promise<readonly string[]> =>
       return { left, top, right, bottom };
     };
 
+    /** What is drawn over the middle of a control and is no part of it. */
+    const liesUnder = (element: Element): Element | null => {
+      const seen = inSight(element);
+      const [x, y] = [(seen.left + seen.right) / 2, (seen.top + seen.bottom) / 2];
+      const top = document.elementFromPoint(x, y);
+      const drawnBy = [element, element.closest('label'), element.closest(MATERIAL)];
+      return top === null || top.contains(element) || drawnBy.some((one) => one?.contains(top))
+        ? null
+        : top;
+    };
+    const MATERIAL = '.mat-mdc-form-field, .mdc-switch, .mdc-checkbox';
+
     for (const element of Array.from(document.querySelectorAll('body *'))) {
       if (element.closest('.visually-hidden, .skip, svg, canvas, .leaflet-pane, option')) continue;
       if (element.closest('.cdk-live-announcer-element, .cdk-visually-hidden')) continue;
+      if (getComputedStyle(element).clipPath === 'inset(50%)') continue;
       if (!element.checkVisibility({ checkVisibilityCSS: true, checkOpacity: true })) continue;
       const box = element.getBoundingClientRect();
       if (box.width === 0 || box.height === 0) continue;
@@ -80,15 +95,13 @@ const misfits = (page: Page): Promise<readonly string[]> =>
       if (getComputedStyle(element).pointerEvents === 'none') continue;
       const seen = inSight(element);
       if (seen.right - seen.left < 8 || seen.bottom - seen.top < 8) continue;
-      const [x, y] = [(seen.left + seen.right) / 2, (seen.top + seen.bottom) / 2];
-      const top = document.elementFromPoint(x, y);
-      const isOwn =
-        top === null ||
-        element.contains(top) ||
-        top.contains(element) ||
-        element.closest('label')?.contains(top) ||
-        element.closest('.mat-mdc-form-field, .mdc-switch, .mdc-checkbox')?.contains(top);
-      if (!isOwn) found.push(`${named(element)} lies under ${named(top)}`);
+      let above = liesUnder(element);
+      // Under a bar that stays at the foot it is only on its way past.
+      if (above && around.some((one) => scrolls(one, 'Y'))) {
+        element.scrollIntoView({ block: 'center' });
+        above = liesUnder(element);
+      }
+      if (above) found.push(`${named(element)} lies under ${named(above)}`);
     }
     return [...new Set(found)];
   });
@@ -130,13 +143,7 @@ test('the measure finds what does not fit', async ({ page }) => {
     wide.textContent = 'Far out';
     wide.style.marginInlineStart = '500px';
     const lid = document.createElement('div');
-    const button = document.querySelector('button[type=submit]')?.getBoundingClientRect();
-    Object.assign(lid.style, {
-      position: 'fixed',
-      inset: `${String(button?.top)}px auto auto ${String(button?.left)}px`,
-      inlineSize: `${String(button?.width)}px`,
-      blockSize: `${String(button?.height)}px`,
-    });
+    Object.assign(lid.style, { position: 'fixed', inset: '0', zIndex: '9' });
     document.body.append(lid);
     document.querySelector('main')?.append(cut, wide);
   });

@@ -1,4 +1,5 @@
 import {
+  afterNextRender,
   ChangeDetectionStrategy,
   Component,
   computed,
@@ -6,6 +7,7 @@ import {
   effect,
   type ElementRef,
   inject,
+  Injector,
   input,
   output,
   signal,
@@ -142,6 +144,15 @@ export class CallPanel {
       if (!check || !this.wantsCheck()) return;
       this.wantsCheck.set(false);
       check.focus();
+    });
+    // The form that ended the check goes away with the focus in it; the call keeps the cursor.
+    const injector = inject(Injector);
+    let mightConclude = false;
+    effect(() => {
+      const isOver = mightConclude && !this.mayConclude();
+      mightConclude = this.mayConclude();
+      if (!isOver) return;
+      afterNextRender(() => document.activeElement === document.body && this.focus(), { injector });
     });
     const scope = 'Open call';
     inject(Keys).register(
