@@ -29,6 +29,7 @@ export class MapHands {
   private outline: OutlineHands | null = null;
   private hoverTimer: ReturnType<typeof setTimeout> | undefined;
   private pointerType = 'mouse';
+  private isMapDragged = false;
 
   /** The keys were used last. */
   readonly isByKeys = signal(false);
@@ -54,6 +55,8 @@ export class MapHands {
     map.on('dblclick', (event) => this.clickTwice(stage, event, opened));
     map.on('mousemove', (event) => this.hover(stage, event));
     map.on('mouseout', () => this.leave());
+    map.on('dragstart', () => (this.isMapDragged = true));
+    map.on('dragend', () => (this.isMapDragged = false));
   }
 
   detach(): void {
@@ -150,7 +153,7 @@ export class MapHands {
   }
 
   private hover(stage: LeafletStage, event: LeafletMouseEvent): void {
-    if (this.pointerType === 'touch' || this.outline?.isDragging) return;
+    if (this.pointerType === 'touch' || this.isMapDragged || this.outline?.isDragging) return;
     const at = lonLatOf(event);
     this.isByKeys.set(false);
     this.pointerAt.set(at);

@@ -37,17 +37,49 @@ export class MarkSprites {
     ctx.drawImage(sprite, x - size / 2, y - size / 2, size, size);
   }
 
+  /** A call that has no room for its shape: filled while something can be saved, else a ring. */
+  dot(ctx: CanvasRenderingContext2D, press: Press, radius: number, x: number, y: number): void {
+    const key = `${press} ${radius}`;
+    let sprite = this.made.get(key);
+    if (!sprite) {
+      sprite = this.canvas(Math.ceil(radius) + 2, (pen) => drawDot(pen, press, radius, this.ink));
+      this.made.set(key, sprite);
+    }
+    const size = sprite.width / this.pixelRatio;
+    ctx.drawImage(sprite, x - size / 2, y - size / 2, size, size);
+  }
+
   private draw(look: MarkLook): HTMLCanvasElement {
     const half = Math.ceil(MARK_RADIUS[look.press] + MARGIN_PX);
+    return this.canvas(half, (pen) => drawMark(pen, look, this.ink));
+  }
+
+  /** @param half half the side of the picture; its middle is the origin of what is drawn */
+  private canvas(half: number, draw: (pen: CanvasRenderingContext2D) => void): HTMLCanvasElement {
     const canvas = document.createElement('canvas');
     canvas.width = canvas.height = Math.ceil(2 * half * this.pixelRatio);
     const ctx = canvas.getContext('2d');
     if (!ctx) return canvas;
     ctx.scale(canvas.width / (2 * half), canvas.height / (2 * half));
     ctx.translate(half, half);
-    drawMark(ctx, look, this.ink);
+    draw(ctx);
     return canvas;
   }
+}
+
+function drawDot(ctx: CanvasRenderingContext2D, press: Press, radius: number, ink: MapInk): void {
+  ctx.beginPath();
+  ctx.arc(0, 0, radius, 0, 2 * Math.PI);
+  ctx.strokeStyle = ink.ground;
+  ctx.lineWidth = 2.5;
+  ctx.stroke();
+  const { fill, line } = pressInk(press, ink);
+  ctx.fillStyle = fill;
+  ctx.fill();
+  if (press !== 'none') return;
+  ctx.strokeStyle = line;
+  ctx.lineWidth = 1.2;
+  ctx.stroke();
 }
 
 /**

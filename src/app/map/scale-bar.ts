@@ -19,6 +19,6 @@ export function scaleBar(metresPerPx: number): ScaleBar {
   const length = tens * (STEPS.findLast((step) => step * tens <= most) ?? 1);
   return {
     words: `${length} ${unit}`,
-    widthPx: (length * feet) / FEET_PER_METRE / metresPerPx,
+    widthPx: Math.round((length * feet) / FEET_PER_METRE / metresPerPx),
   };
 }

@@ -8,8 +8,12 @@ import {
 } from 'leaflet';
 import { scaleAt, type View } from './world';
 
-/** Drawn beyond the window's edges, so that a moving map shows no bare strip before the next frame. */
-const MARGIN_PX = 80;
+/**
+ * Drawn beyond the window's edges. The canvas moves with the map, so that moving costs nothing until
+ * most of the margin is used up.
+ */
+const MARGIN_PX = 128;
+const REDRAW_AFTER_PX = 96;
 
 /** Draws what is in view; the context counts in CSS pixels from the canvas's top left corner. */
 export type Paint = (ctx: CanvasRenderingContext2D, view: View, pixelRatio: number) => void;
@@ -49,7 +53,8 @@ export class SceneLayer extends Layer {
 
   override getEvents(): Record<string, LeafletEventHandlerFn> {
     return {
-      move: () => this.refresh(),
+      move: () => this.moved(),
+      moveend: () => this.refresh(),
       zoomend: () => {
         this.isZooming = false;
         this.refresh();
@@ -71,6 +76,17 @@ export class SceneLayer extends Layer {
   /** What the canvas shows now, or `null` before it has been drawn. */
   get view(): View | null {
     return this.shown;
+  }
+
+  private moved(): void {
+    const { map, shown } = this;
+    if (!map || !shown) return;
+    const origin = map.getPixelBounds().min ?? new Point(0, 0);
+    const away = Math.max(
+      Math.abs(origin.x - MARGIN_PX - shown.left),
+      Math.abs(origin.y - MARGIN_PX - shown.top),
+    );
+    if (map.getZoom() !== shown.zoom || away > REDRAW_AFTER_PX) this.refresh();
   }
 
   private draw(): void {

@@ -4,7 +4,7 @@ import {
   computed,
   DestroyRef,
   effect,
-  ElementRef,
+  type ElementRef,
   inject,
   output,
   signal,
@@ -73,10 +73,13 @@ export class StormMap {
   protected readonly panel = this.actions.panel;
   /** Moves with the map. */
   private readonly sight = signal<{ readonly lat: number; readonly zoom: number } | null>(null);
-  protected readonly scale = computed(() => {
-    const sight = this.sight();
-    return sight ? scaleBar(metresPerPixel(sight.lat, sight.zoom)) : null;
-  });
+  protected readonly scale = computed(
+    () => {
+      const sight = this.sight();
+      return sight ? scaleBar(metresPerPixel(sight.lat, sight.zoom)) : null;
+    },
+    { equal: (a, b) => a?.words === b?.words && a?.widthPx === b?.widthPx },
+  );
   protected readonly hasLegs = computed(
     () => this.layers.isShown('routes') && this.board.stops().size > 0,
   );
