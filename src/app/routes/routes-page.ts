@@ -1,4 +1,5 @@
 import {
+  afterNextRender,
   ChangeDetectionStrategy,
   Component,
   computed,
@@ -6,6 +7,7 @@ import {
   effect,
   type ElementRef,
   inject,
+  Injector,
   input,
   signal,
   untracked,
@@ -149,6 +151,27 @@ export class RoutesPage {
     });
     effect(() => {
       if (this.model.setback()) untracked(() => this.setbackBox()?.nativeElement.focus());
+    });
+    // A proposal takes room above the list: whoever stands in the list still sees where.
+    const injector = inject(Injector);
+    effect(() => {
+      if (this.board.plan() === null) return;
+      afterNextRender(
+        () => document.activeElement?.closest('aside') && this.list()?.keepInSight(),
+        { injector },
+      );
+    });
+    // What is published leaves the panel and the list, and the focus may go with them.
+    let wasBeside = false;
+    effect(() => {
+      const isBeside = this.board.plan() !== null;
+      const hasLeft = wasBeside && !isBeside;
+      wasBeside = isBeside;
+      if (!hasLeft) return;
+      afterNextRender(
+        () => document.activeElement === document.body && this.routeBoard()?.focus(),
+        { injector },
+      );
     });
     const open = (): StopView | null => this.selected()?.view ?? null;
     inject(Keys).register(

@@ -127,6 +127,12 @@ export class UnplannedList {
     this.element()?.nativeElement.focus();
   }
 
+  /** The list got another height: measures it again and shows the chosen call. */
+  keepInSight(): void {
+    this.viewport()?.checkViewportSize();
+    if (this.at() >= 0) this.bringIntoSight(this.at());
+  }
+
   protected readonly trackId = (_: number, one: UnplannedCall): string => one.call.id;
   protected readonly facts = stripFactsOf;
 
