@@ -57,6 +57,8 @@ export function drawBacklog({ drain, zone, isNarrow, isOver }: DrainView): Draw 
         borderDash: [2, 5],
         pointRadius: forecast.isCut ? 0 : [0, 6],
         pointBorderWidth: 2,
+        // The end stands on the axis; its mark would be cut in half.
+        clip: 10,
         data: [...forecast.line],
         label: 'forecast',
         endLabel: forecastLabel(drain, zone),
@@ -71,7 +73,7 @@ export function drawBacklog({ drain, zone, isNarrow, isOver }: DrainView): Draw 
         from: drain.series[0]?.at ?? drain.at,
         to: far,
         isNarrow,
-        roomRight: forecast.line.length > 0 ? 96 : 104,
+        roomRight: forecast.kind === 'empties' ? 126 : 104,
         value: (amount) => String(Math.round(amount)),
         tick: (amount) => String(amount),
       }),

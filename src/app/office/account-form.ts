@@ -32,6 +32,7 @@ import { ROLE_WORDS } from './role-words';
   imports: [MatButton, MatFormFieldModule, MatIcon, MatInput, MatSelectModule, ReactiveFormsModule],
   templateUrl: './account-form.html',
   styleUrl: './parts.scss',
+  styles: ':host { padding-block: 0; }',
   changeDetection: ChangeDetectionStrategy.OnPush,
 })
 export class AccountForm {
@@ -73,6 +74,7 @@ export class AccountForm {
   protected readonly role = toSignal(this.form.controls.role.valueChanges, {
     initialValue: this.form.controls.role.value,
   });
+  protected readonly roleWords = computed(() => ROLE_WORDS[this.role()]);
   protected readonly choices = computed(() =>
     this.technicians().filter(
       ({ id, active }) => id === this.base()?.technicianId || (active && !this.taken().has(id)),

@@ -18,6 +18,7 @@ import { ProblemError, problemWords } from '../core/problem-error';
 import { Session } from '../core/session';
 import { AccountForm } from './account-form';
 import { type Confirmation, ConfirmDialog } from './confirm-dialog';
+import { focusFirst } from './focus-first';
 import { OrderId } from './order-id';
 import { type NewPassphrase, PassphraseDialog } from './passphrase-dialog';
 import { ROLE_WORDS } from './role-words';
@@ -68,12 +69,12 @@ export class AccountsPart {
 
   protected edit(id: string): void {
     this.edited.set(id);
-    this.focusSoon('input');
+    focusFirst(this.host.nativeElement, 'input');
   }
 
   protected close(id: string | null): void {
     this.edited.set(null);
-    this.focusSoon(`[data-of="${id ?? 'new'}"]`);
+    focusFirst(this.host.nativeElement, `[data-of="${id ?? 'new'}"]`);
   }
 
   protected made({ user, passphrase }: ReplyOf<'addUser'>): void {
@@ -151,7 +152,7 @@ export class AccountsPart {
         maxWidth: '60ch',
       })
       .afterClosed()
-      .subscribe(() => this.focusSoon(`[data-of="${id}"]`));
+      .subscribe(() => focusFirst(this.host.nativeElement, `[data-of="${id}"]`));
   }
 
   private take(user: UserDto): void {
@@ -168,10 +169,6 @@ export class AccountsPart {
       maxWidth: '52ch',
     });
     return (await firstValueFrom(dialog.afterClosed(), { defaultValue: undefined })) === true;
-  }
-
-  private focusSoon(selector: string): void {
-    setTimeout(() => this.host.nativeElement.querySelector<HTMLElement>(selector)?.focus());
   }
 
   private async fetch(): Promise<void> {

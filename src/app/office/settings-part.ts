@@ -3,6 +3,7 @@ import {
   Component,
   computed,
   effect,
+  ElementRef,
   inject,
   signal,
   untracked,
@@ -17,6 +18,7 @@ import { Announce } from '../core/announce';
 import { Api } from '../core/api';
 import { ProblemError, problemWords } from '../core/problem-error';
 import { Session } from '../core/session';
+import { FAULTY, focusFirst, OVERTAKEN } from './focus-first';
 import { inWords, showFaults } from './form-words';
 import { type Overtaken, overtaken } from './merge';
 import { OrderId } from './order-id';
@@ -42,6 +44,7 @@ export class SettingsPart {
   private readonly api = inject(Api);
   private readonly session = inject(Session);
   private readonly announce = inject(Announce);
+  private readonly host = inject<ElementRef<HTMLElement>>(ElementRef);
   private readonly order = new OrderId();
 
   protected readonly groups = SETTING_GROUPS;
@@ -85,6 +88,7 @@ export class SettingsPart {
     this.form.markAllAsTouched();
     if (this.form.invalid) {
       this.trouble.set('Some fields need another look.');
+      focusFirst(this.host.nativeElement, FAULTY);
       return;
     }
     const changes = Object.fromEntries(
@@ -142,6 +146,7 @@ export class SettingsPart {
     for (const [key, text] of mine) this.form.controls[key].setValue(text);
     this.session.takeSettings(theirs);
     this.trouble.set(null);
+    focusFirst(this.host.nativeElement, OVERTAKEN);
   }
 
   private fill(settings: Settings): void {

@@ -24,6 +24,7 @@ import { Api, newId } from '../core/api';
 import { Clock } from '../core/clock';
 import { ProblemError, problemWords } from '../core/problem-error';
 import { Zone } from '../core/zone';
+import { FAULTY, focusFirst, OVERTAKEN } from './focus-first';
 import { filled, inWords, showFaults } from './form-words';
 import { OrderId } from './order-id';
 import { phoneOf } from './settings-fields';
@@ -157,7 +158,7 @@ export class TechnicianForm {
     const told = this.read();
     if (!told) {
       this.trouble.set('Some fields need another look.');
-      this.focusFirstFault();
+      focusFirst(this.host.nativeElement, FAULTY);
       return;
     }
     this.isBusy.set(true);
@@ -216,6 +217,7 @@ export class TechnicianForm {
     const kept = { ...toldOf(theirs) };
     this.fill(theirs);
     this.write({ ...kept, ...pick(told, mine) });
+    focusFirst(this.host.nativeElement, OVERTAKEN);
   }
 
   private fill(technician: TechnicianDto): void {
@@ -281,14 +283,6 @@ export class TechnicianForm {
       ),
     );
     return null;
-  }
-
-  private focusFirstFault(): void {
-    setTimeout(() =>
-      this.host.nativeElement
-        .querySelector<HTMLElement>('input[aria-invalid=true], input.ng-invalid')
-        ?.focus(),
-    );
   }
 }
 

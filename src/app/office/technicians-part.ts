@@ -13,6 +13,7 @@ import { Api } from '../core/api';
 import { Clock } from '../core/clock';
 import { problemWords } from '../core/problem-error';
 import { Zone } from '../core/zone';
+import { focusFirst } from './focus-first';
 import { SKILL_WORDS } from './skill-words';
 import { partsOnVan } from './technician-changes';
 import { TechnicianForm } from './technician-form';
@@ -68,7 +69,7 @@ export class TechniciansPart {
 
   protected edit(id: string): void {
     this.edited.set(id);
-    this.focusSoon('input');
+    focusFirst(this.host.nativeElement, 'input');
   }
 
   protected saved(technician: TechnicianDto): void {
@@ -82,7 +83,7 @@ export class TechniciansPart {
   /** Back to the list, with the focus where it came from. */
   protected close(id: string | null): void {
     this.edited.set(null);
-    this.focusSoon(id === null ? '[data-of=new]' : `[data-of="${id}"]`);
+    focusFirst(this.host.nativeElement, id === null ? '[data-of=new]' : `[data-of="${id}"]`);
   }
 
   private shiftWords({ shifts }: TechnicianDto): string {
@@ -95,10 +96,6 @@ export class TechniciansPart {
     return next.startsAt <= now
       ? `now, until ${until}`
       : `${this.zone.dayTime(next.startsAt)} to ${until}`;
-  }
-
-  private focusSoon(selector: string): void {
-    setTimeout(() => this.host.nativeElement.querySelector<HTMLElement>(selector)?.focus());
   }
 
   private async fetch(): Promise<void> {
