@@ -154,14 +154,11 @@ describe('conservation', () => {
         { maxLength: 3 },
       ),
     })
-    .map(
-      ({ settled, ...call }) =>
-        ({
-          ...call,
-          settledAt: settled?.[0] ?? null,
-          settledHow: settled?.[1] ?? null,
-        }),
-    );
+    .map(({ settled, ...call }) => ({
+      ...call,
+      settledAt: settled?.[0] ?? null,
+      settledHow: settled?.[1] ?? null,
+    }));
   const night = fc.array(someCall, { maxLength: 25 });
 
   it('holds at every point: arrivals are open or settled, value is at risk, saved or lost', () => {
