@@ -14,7 +14,8 @@ export async function runBrowserStories({ env, pattern }) {
   await mkdir(reports, { recursive: true });
   const reportFile = path.join(reports, 'browser.json');
   await rm(reportFile, { force: true });
-  const port = await nextFreePort(FIRST_PORT);
+  // The stand-in of the text service answers one port above the product.
+  const port = await nextFreePort(FIRST_PORT, '127.0.0.1', 2);
 
   const { code, output } = await run(
     process.execPath,
