@@ -25,11 +25,18 @@ export async function boardOf(page: Page): Promise<BoardPicture> {
   return (await board.json()) as BoardPicture;
 }
 
-/** Takes every stop that nobody has begun off its route, the last of each first. */
+/**
+ * Takes every stop that nobody has begun off its route, the last of each first. A call that another
+ * dispatcher is working on is theirs to take off; it stays.
+ */
 export async function emptyRoutes(page: Page): Promise<void> {
-  const { stops } = await boardOf(page);
+  const { stops, calls } = await boardOf(page);
+  const { me } = (await (await page.request.get('/api/me')).json()) as ReplyOf<'me'>;
+  const held = new Set(
+    calls.filter(({ claim }) => claim && claim.userId !== me?.user.id).map(({ id }) => id),
+  );
   const free = stops
-    .filter(({ state }) => state === 'planned' || state === 'offered')
+    .filter(({ state, callId }) => ['planned', 'offered'].includes(state) && !held.has(callId))
     .sort((a, b) => b.position - a.position);
   for (const { id } of free) {
     const now = (await boardOf(page)).stops.find((stop) => stop.id === id);
