@@ -128,15 +128,13 @@ export class MapPicture {
   };
 
   /**
-   * What lies under the pointer: calls before plates before labels.
+   * What lies under the pointer, in the order in which it was drawn: the topmost first.
    *
    * @param at pixels of the whole world
    */
   hit(at: WorldPoint, slackPx: number): MapHit | null {
     const { view } = this;
     if (!view) return null;
-    const near = marksAt(this.placedAt(view.zoom), view.zoom, at, slackPx);
-    if (near.length > 0) return { kind: 'calls', marks: meant(near) };
     const x = at.x - view.left;
     const y = at.y - view.top;
     const inBox = ({ box }: { readonly box: Box }): boolean => isInBox(box, x, y);
@@ -144,6 +142,8 @@ export class MapPicture {
     if (plate) return { kind: 'technician', technicianId: plate.technicianId };
     const pocket = this.pocketLabels.find(inBox);
     if (pocket) return { kind: 'pocket', pocket: pocket.pocket };
+    const near = marksAt(this.placedAt(view.zoom), view.zoom, at, slackPx);
+    if (near.length > 0) return { kind: 'calls', marks: meant(near) };
     const area = this.areaLabels.find(inBox);
     return area ? { kind: 'area', area: area.area } : null;
   }
