@@ -30,17 +30,21 @@ export async function boardOf(page: Page): Promise<BoardPicture> {
  * dispatcher is working on is theirs to take off; it stays.
  */
 export async function emptyRoutes(page: Page): Promise<void> {
-  const { stops, calls } = await boardOf(page);
   const { me } = (await (await page.request.get('/api/me')).json()) as ReplyOf<'me'>;
-  const held = new Set(
-    calls.filter(({ claim }) => claim && claim.userId !== me?.user.id).map(({ id }) => id),
-  );
-  const free = stops
-    .filter(({ state, callId }) => ['planned', 'offered'].includes(state) && !held.has(callId))
-    .sort((a, b) => b.position - a.position);
-  for (const { id } of free) {
-    const now = (await boardOf(page)).stops.find((stop) => stop.id === id);
-    if (now) await give(page, `/api/stops/${id}/pull`, { version: now.version, reason: 'cleared' });
+  for (;;) {
+    const { stops, calls } = await boardOf(page);
+    const held = new Set(
+      calls.filter(({ claim }) => claim && claim.userId !== me?.user.id).map(({ id }) => id),
+    );
+    // One of each route at a time: taking a stop off may change the others of its route.
+    const last = new Map<string, (typeof stops)[number]>();
+    for (const stop of stops)
+      if (['planned', 'offered'].includes(stop.state) && !held.has(stop.callId))
+        if (stop.position >= (last.get(stop.technicianId)?.position ?? 0))
+          last.set(stop.technicianId, stop);
+    if (last.size === 0) return;
+    for (const { id, version } of last.values())
+      await give(page, `/api/stops/${id}/pull`, { version, reason: 'cleared' });
   }
 }
 
