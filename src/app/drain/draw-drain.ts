@@ -57,8 +57,6 @@ export function drawBacklog({ drain, zone, isNarrow, isOver }: DrainView): Draw 
         borderDash: [2, 5],
         pointRadius: forecast.isCut ? 0 : [0, 6],
         pointBorderWidth: 2,
-        // The end stands on the axis; its mark would be cut in half.
-        clip: 10,
         data: [...forecast.line],
         label: 'forecast',
         endLabel: forecastLabel(drain, zone),
@@ -153,6 +151,8 @@ function thin(color: string, shape: 'triangle' | 'rect' | 'circle' | 'crossRot',
     borderColor: color,
     backgroundColor: color,
     borderWidth: 1.75,
+    // A mark that stands on the picture's edge would be cut in half.
+    clip: 10,
     pointStyle: shape,
     pointHitRadius: 12,
     pointRadius: ({ dataIndex }: { dataIndex: number }) =>

@@ -180,7 +180,7 @@ describe('the settings', () => {
     const { loader, text } = await show(SettingsPart);
     await (await field(loader, /A claim on a call ends/)).setValue('15');
     await press(loader, /Save settings/);
-    expect(text()).toContain('A claim on a call ends after: was 10, now 20 ; you wrote 15');
+    expect(text()).toContain('A claim on a call ends after: was 10, now 20 (you wrote 15)');
     expect(text()).toContain('A pocket begins with: was 3, now 9');
     expect(await (await field(loader, /A pocket begins/)).getValue()).toBe('9');
     expect(await (await field(loader, /A claim on a call ends/)).getValue()).toBe('15');

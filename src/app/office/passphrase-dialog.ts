@@ -72,6 +72,7 @@ export interface NewPassphrase {
       font:
         500 var(--thaw-text-xl) / 1.3 'IBM Plex Sans',
         sans-serif;
+      color: var(--thaw-ink);
       user-select: all;
     }
 
