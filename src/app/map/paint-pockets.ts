@@ -2,7 +2,7 @@ import type { PocketDto } from '@shared/contract/areas';
 import type { Box, LabelBoxes } from './label-boxes';
 import { font, type MapInk } from './map-ink';
 import { boundsOf, tracePath } from './paint-areas';
-import { toWorld, type View, type WorldPoint } from './world';
+import { onScreen, toWorld, type View, type WorldPoint } from './world';
 
 /** A pocket, projected once, with what its label says. */
 export interface PocketShape {
@@ -48,7 +48,7 @@ export function paintPockets(
 }
 
 const isWorthDrawing = (view: View, { points }: PocketShape): boolean => {
-  const { left, top, right, bottom } = boundsOf(view, points);
+  const { left, top, right, bottom } = boundsOf(points.map((point) => onScreen(view, point)));
   if (right < 0 || bottom < 0 || left > view.width || top > view.height) return false;
   return Math.max(right - left, bottom - top) >= LEAST_SIZE_PX;
 };
@@ -68,7 +68,7 @@ export function paintPocketLabels(
   ctx.textBaseline = 'middle';
   for (const shape of shapes) {
     if (!isWorthDrawing(view, shape)) continue;
-    const bounds = boundsOf(view, shape.points);
+    const bounds = boundsOf(shape.points.map((point) => onScreen(view, point)));
     const middle = (bounds.left + bounds.right) / 2;
     const isChosen = shape.pocket.key === chosenKey;
     const isSmall = bounds.right - bounds.left < WHOLE_LABEL_FROM_PX && !isChosen;

@@ -13,12 +13,13 @@ import {
   ViewEncapsulation,
 } from '@angular/core';
 import type { LonLat } from '@shared/contract/common';
+import type { StopDto } from '@shared/contract/routes';
 import { BoardStore } from '../core/board-store';
 import { Clock } from '../core/clock';
 import { Keys } from '../core/keys';
 import { Session } from '../core/session';
 import { Theme } from '../core/theme';
-import { AgoPipe, ClockTimePipe } from '../core/zone';
+import { AgoPipe, ClockTimePipe, Zone } from '../core/zone';
 import { AreaEditor } from './area-editor';
 import { AreaForm } from './area-form';
 import { CallPopover } from './call-popover';
@@ -61,6 +62,7 @@ export class StormMap {
   private readonly scenes = inject(MapScenes);
   private readonly theme = inject(Theme);
   private readonly wish = inject(MapWish);
+  private readonly zone = inject(Zone);
 
   /** A call is to be opened, not only selected. */
   readonly opened = output<string>();
@@ -105,6 +107,10 @@ export class StormMap {
   protected open(callId: string): void {
     this.popover.close();
     this.opened.emit(callId);
+  }
+
+  protected clockOf({ etaAt, arriveAt }: StopDto): string {
+    return this.zone.clockTime(etaAt ?? arriveAt);
   }
 
   protected takePin(): void {
