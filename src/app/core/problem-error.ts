@@ -9,7 +9,7 @@ export class ProblemError extends Error {
   readonly code: ClientProblemCode;
   /** The row as it is now, for whoever acted on an older one; else `undefined`. */
   readonly current: unknown;
-  /** What was wrong, by JSON pointer into the body (RFC 6901), such as `#/address/text`. */
+  /** What was wrong, by JSON pointer into the body (RFC 6901), such as `/address/text`. */
   readonly fieldErrors: ReadonlyMap<string, string>;
 
   constructor(

@@ -377,6 +377,14 @@ describe('DayPage', () => {
     });
   });
 
+  it('keeps a form open when the same stop is announced once more', async () => {
+    const page = await aPage(aCard(1, { state: 'on-site', version: 5 }));
+    await page.tap('Finish the visit');
+    await page.hear({ kind: 'stop', card: aCard(1, { state: 'on-site', version: 5 }) });
+    await page.tap('Cooling again');
+    expect(page.buttons()).toContain('Finish: cooling again');
+  });
+
   it('says what happened when a stop was taken back, and moves on', async () => {
     const page = await aPage(aCard(1), aCard(2, { state: 'planned' }));
     await page.tap('Accept this stop');

@@ -58,10 +58,11 @@ export class DayPage {
 
   /** Back to the stop whenever it is another one, or its state has changed. */
   protected readonly mode = linkedSignal<string, Mode>({
-    source: () => {
+    // Computed, so that news of the same stop in the same state do not close a form half filled in.
+    source: computed(() => {
       const stop = this.day.next()?.stop;
       return stop ? `${stop.id} ${stop.state}` : '';
-    },
+    }),
     computation: () => 'stop',
   });
 

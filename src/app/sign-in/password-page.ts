@@ -60,7 +60,7 @@ export class PasswordPage {
   }
 
   private show(error: unknown): void {
-    const words = error instanceof ProblemError ? error.fieldErrors.get('#/next') : undefined;
+    const words = error instanceof ProblemError ? error.fieldErrors.get('/next') : undefined;
     if (words) {
       this.form.controls.next.setErrors({ words });
       this.form.controls.next.markAsTouched();
