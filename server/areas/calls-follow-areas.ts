@@ -1,9 +1,8 @@
 import { thawClock } from '@shared/domain/thaw/thaw-clock';
-import { isInRing } from '@shared/domain/point-in-ring';
 import type { CompartmentFacts } from '@shared/domain/cold-unit';
 import type { Job } from '../commands/run-command';
 import { change, insert, json, select } from '../db/sql';
-import { lastBack } from './area-of';
+import { areaAmong, spanOf } from './area-of';
 import { AreaRecord } from './area-record';
 
 interface PlacedCall {
@@ -27,7 +26,7 @@ const BATCH = 500;
  */
 export async function callsFollowAreas(job: Job, stormId: string): Promise<number> {
   const areas = await AreaRecord.findAll({ where: { stormId }, transaction: job.tx });
-  const outlines = areas.map((area) => ({ area, ring: area.outline() }));
+  const outlines = areas.map(spanOf);
   const calls = await select<PlacedCall>(
     job.sequelize,
     `SELECT id, lon, lat, area_id, times_from, power_out_at, power_back_at
@@ -39,10 +38,7 @@ export async function callsFollowAreas(job: Job, stormId: string): Promise<numbe
 
   const byArea = new Map<AreaRecord | null, { move: string[]; wind: string[] }>();
   for (const call of calls) {
-    const point: [number, number] = [call.lon, call.lat];
-    const area = lastBack(
-      outlines.filter(({ ring }) => isInRing(point, ring)).map((one) => one.area),
-    );
+    const area = areaAmong(outlines, [call.lon, call.lat]);
     const winds = area !== null && call.times_from === 'area' && !hasTimesOf(call, area);
     if (call.area_id === (area?.id ?? null) && !winds) continue;
     const group = byArea.get(area) ?? { move: [], wind: [] };

@@ -1,8 +1,7 @@
 import type { TakeCall } from '@shared/contract/calls';
 import { Refusal } from '@shared/domain/errors';
 import { HOUR_MS, type Instant } from '@shared/domain/instant';
-import { isInRing } from '@shared/domain/point-in-ring';
-import { lastBack } from '../areas/area-of';
+import { areaAmong, spanOf } from '../areas/area-of';
 import { AreaRecord } from '../areas/area-record';
 import { insert, isDuplicateOf } from '../db/sql';
 import type { Job } from '../commands/run-command';
@@ -59,16 +58,12 @@ export async function takeCalls(
   for (const one of told) refuseImpossibleTimes(one, job.now);
   const storm = await lockOpenStorm(stormId, job.tx);
   job.inStorm(storm.id);
-  const areas = (await AreaRecord.findAll({ where: { stormId }, transaction: job.tx })).map(
-    (area) => ({ area, ring: area.outline() }),
-  );
+  const areas = (await AreaRecord.findAll({ where: { stormId }, transaction: job.tx })).map(spanOf);
   const households = await householdsOf(job, told);
 
   const calls = told.map((one) => {
     const { lonLat } = one.address;
-    const area =
-      lonLat &&
-      lastBack(areas.filter(({ ring }) => isInRing(lonLat, ring)).map((inside) => inside.area));
+    const area = lonLat && areaAmong(areas, lonLat);
     storm.callsTaken += 1;
     const householdId =
       one.isHousehold === false ? null : (households.get(one.phone ?? '') ?? null);

@@ -59,7 +59,16 @@ describe('areaAt', () => {
     expect(areaAt([3, 1], areas)).toBeNull();
   });
 
-  it('takes the earliest loss of power where areas overlap', () => {
+  it('takes the area whose power comes back last where areas overlap', () => {
+    const back = { ...anArea('back', 50, square(0, 0, 2)), backAt: 300 };
+    const later = { ...anArea('later', 100, square(0, 0, 2)), backAt: 400 };
+    expect(areaAt([1, 1], [later, back])?.name).toBe('later');
+    expect(areaAt([1, 1], [later, anArea('still out', 200, square(0, 0, 2))])?.name).toBe(
+      'still out',
+    );
+  });
+
+  it('takes the earliest loss of power of areas that come back together', () => {
     const areas = [anArea('late', 200, square(0, 0, 2)), anArea('early', 100, square(0, 0, 2))];
     expect(areaAt([1, 1], areas)?.name).toBe('early');
   });
