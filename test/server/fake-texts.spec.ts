@@ -374,7 +374,10 @@ describe('the journal', () => {
     expect(accepted().map((entry) => 'body' in entry && entry.body)).toEqual(['before', 'after']);
     const numbers = fake.journal().map(({ n }) => n);
     expect(numbers).toEqual(numbers.map((_, i) => i + 1));
-    expect(await (await fetch(`${fake.url}/_control/journal`)).json()).toEqual(fake.journal());
+    const shown = (await (await fetch(`${fake.url}/_control/journal`)).json()) as unknown[];
+    expect(shown.length).toBeGreaterThanOrEqual(numbers.length);
+    // A delivery may be reported between the two looks: what was shown is the journal's beginning.
+    expect(fake.journal().slice(0, shown.length)).toEqual(shown);
   });
 
   it('lets a fake that was killed go on: the text is listed and its delivery is reported', async () => {
