@@ -279,7 +279,8 @@ test('the sheet of keys lists what the keys do, and each listed key does it', as
   await expect(sheet).toBeHidden();
 
   await page.keyboard.press('w');
-  await expect(page.getByRole('region', { name: 'Queue as a list' })).toBeVisible();
+  await page.keyboard.press('q');
+  await expect(page.getByRole('region', { name: 'Queue as a list' })).toBeFocused();
   await page.keyboard.press('w');
   await page.keyboard.press('q');
   await expect(queueOf(page)).toBeFocused();

@@ -56,6 +56,10 @@ export class QueueList {
       }),
   );
 
+  focus(): void {
+    this.element.nativeElement.querySelector<HTMLElement>('.scroll')?.focus();
+  }
+
   protected turn(to: number): void {
     this.page.set(Math.min(Math.max(to, 0), this.pages() - 1));
     this.element.nativeElement.querySelector('table')?.focus();

@@ -73,6 +73,7 @@ export class Queue {
   protected readonly bufferRows = BUFFER_ROWS;
 
   private readonly viewport = viewChild(CdkVirtualScrollViewport);
+  private readonly list = viewChild(QueueList);
   protected readonly filters = viewChild.required(QueueFilters);
 
   private readonly hasPointer = signal(false);
@@ -128,8 +129,15 @@ export class Queue {
     this.registerKeys();
   }
 
+  /** Goes to the rows or to the list, whichever is shown; a key may come before that is drawn. */
   focus(): void {
-    this.viewport()?.elementRef.nativeElement.focus();
+    afterNextRender(
+      () => {
+        this.viewport()?.elementRef.nativeElement.focus();
+        this.list()?.focus();
+      },
+      { injector: this.injector },
+    );
   }
 
   protected readonly trackId = (_: number, id: string): string => id;
