@@ -224,6 +224,8 @@ export class Queue {
     const viewport = this.viewport();
     const index = this.ids().indexOf(id);
     if (!viewport || index < 0) return;
+    // The viewport remembers its height, and what stands above it may have grown since.
+    viewport.checkViewportSize();
     const top = viewport.measureScrollOffset('top');
     const height = viewport.getViewportSize();
     if (index * this.rowPx() < top) viewport.scrollToOffset(index * this.rowPx());
