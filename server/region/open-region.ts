@@ -3,6 +3,7 @@ import type { AddressSuggestion } from '@shared/contract/calls';
 import type { AddressSuggestion as Found } from '@shared/domain/address/address-suggestion';
 import { ACCEPT_CONFIDENCE } from '@shared/domain/address/address-suggestion';
 import { AddressIndex } from './address-index';
+import { readFeeders } from './feeders-file';
 import { readAddressBook } from './region-data';
 import type { ImportedRegion } from './import-region';
 import type { RegionInUse } from './region-in-use';
@@ -10,6 +11,7 @@ import type { RegionInUse } from './region-in-use';
 /** Loads an imported region's address book, and says where its tiles are. */
 export async function openRegion({ manifest, folder }: ImportedRegion): Promise<RegionInUse> {
   const book = await readAddressBook(folder);
+  const power = await readFeeders(folder);
   const index = new AddressIndex(book);
   const tiles = `/tiles/${manifest.id}-${manifest.hash}`;
   const dto: RegionDto = {
@@ -26,6 +28,7 @@ export async function openRegion({ manifest, folder }: ImportedRegion): Promise<
   };
   return {
     dto,
+    power,
     cities: [...new Set(book.addresses.map(({ city }) => city))],
     suggest: (text, near) =>
       index.suggest(text, { ...(near ? { near } : {}), limit: 8 }).map(toSuggestion),

@@ -3,6 +3,7 @@ import * as areas from './areas';
 import { BoardPicture } from './board';
 import * as calls from './calls';
 import { Command, Id, PhoneNumber, ROLES, type Role } from './common';
+import { FeederMap } from './feeders';
 import * as messages from './messages';
 import * as nightLogs from './night-logs';
 import * as office from './office';
@@ -151,6 +152,7 @@ export const HTTP = {
   },
 
   region: { summary: 'The region in use', who: EVERYONE, reply: areas.RegionDto },
+  feeders: { summary: 'The feeders and substations of the region', who: DESK, reply: FeederMap },
   suggestAddresses: {
     summary: 'Addresses that match what was typed',
     who: DESK,

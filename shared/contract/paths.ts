@@ -27,6 +27,7 @@ export const PATHS = {
   readMessages: ['POST', '/api/calls/:callId/messages/reading'],
 
   region: ['GET', '/api/region'],
+  feeders: ['GET', '/api/region/feeders'],
   suggestAddresses: ['GET', '/api/addresses'],
   nearestAddress: ['GET', '/api/addresses/nearest'],
 

@@ -21,6 +21,7 @@ const ADDRESSES: readonly AddressSuggestion[] = [
 /** A hamlet of two addresses; the real region has tests of its own. */
 export const TEST_REGION: RegionInUse = {
   cities: ['Pell Harbor'],
+  power: { feeders: [], substations: [] },
   dto: {
     id: 'hamlet',
     name: 'Hamlet',
