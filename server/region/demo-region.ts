@@ -1,7 +1,8 @@
 import { readdir } from 'node:fs/promises';
 import { join } from 'node:path';
 import { writeCounty } from './county/write-county';
-import { importRegion, type ImportedRegion, type ImportStep } from './import-region';
+import { importRegion, IMPORTER_VERSION, type ImportedRegion } from './import-region';
+import type { ImportStep } from './region-making';
 import { readManifest } from './region-data';
 
 export const DEMO_SEED = 1;
@@ -22,7 +23,10 @@ export async function ensureDemoRegion(
   onProgress?: (step: ImportStep) => void,
 ): Promise<ImportedRegion> {
   const origin = `county ${DEMO_SEED} ${DEMO_DATA}`;
-  const existing = await findRegion(tilesFolder, (region) => region.manifest.origin === origin);
+  const existing = await findRegion(
+    tilesFolder,
+    ({ manifest }) => manifest.origin === origin && manifest.importer === IMPORTER_VERSION,
+  );
   if (existing) return existing;
   return importRegion({
     pbf: writeCounty({ seed: DEMO_SEED }),

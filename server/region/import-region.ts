@@ -1,22 +1,64 @@
-import { createHash, randomUUID } from 'node:crypto';
+import { createHash, type Hash } from 'node:crypto';
 import { createReadStream } from 'node:fs';
-import { mkdir, readdir, rename, rm, stat, writeFile } from 'node:fs/promises';
+import { rm, writeFile } from 'node:fs/promises';
 import { join } from 'node:path';
 import { addressBookOf } from './address-points';
 import { MAX_ZOOM, mapLayers, MIN_ZOOM } from './map-layers';
 import { readExtract } from './osm-extract';
-import { MANIFEST_FILE, readManifest, writeAddressBook, type RegionManifest } from './region-data';
+import {
+  MANIFEST_FILE,
+  readManifest,
+  REPORT_FILE,
+  writeAddressBook,
+  type LeftOut,
+  type RegionCounts,
+  type RegionManifest,
+  type RegionReport,
+} from './region-data';
+import type { AddressFile, ImportStep, MakingStep, RegionMaking } from './region-making';
+import { roadKilometres } from './road-kilometres';
 import { UnreadableRegion } from './unreadable-region';
+import { dropAbandoned, openWorkshop, settleWorkshop } from './workshop';
 import { ADDRESS_ZOOM, writeAddressTiles, writeTiles } from './write-tiles';
 
-/** Part of every region's hash: raise it when the same file would give other tiles or addresses. */
-const IMPORTER_VERSION = 2;
+/** Part of every region's hash: raise it when the same file would give other files. */
+export const IMPORTER_VERSION = 3;
 
-export interface ImportStep {
-  readonly step: 'reading' | 'sorting' | 'tiles' | 'addresses' | 'done';
-  /** Share of the whole import that is done, 0 to 1. */
-  readonly share: number;
-}
+const READING_WEIGHT = 15;
+
+/** In this order: a step may use what those before it have left in the making. */
+const STEPS: readonly MakingStep[] = [
+  {
+    name: 'addresses',
+    weight: 15,
+    run: async (making) => {
+      const book = addressBookOf(making.extract);
+      making.book = book;
+      await writeAddressBook(making.folder, book);
+      return {
+        addresses: book.addresses.length,
+        streets: book.streets.length,
+        corners: book.corners.length,
+        places: book.places.length,
+        roadKm: roadKilometres(making.extract),
+      };
+    },
+  },
+  {
+    name: 'map',
+    weight: 60,
+    run: (making, tell) => {
+      const layers = mapLayers(making.extract);
+      making.hasCoastline = layers.hasCoastline;
+      return writeTiles(layers, making.extract.bbox, making.folder, tell);
+    },
+  },
+  {
+    name: 'house numbers',
+    weight: 10,
+    run: ({ book, folder }) => writeAddressTiles(book.addresses, join(folder, 'addr')),
+  },
+];
 
 export interface RegionImport {
   /** An `.osm.pbf` file's path, or its bytes. */
@@ -26,6 +68,7 @@ export interface RegionImport {
   readonly name: string;
   readonly timeZone: string;
   readonly attribution: string;
+  readonly addressFile?: AddressFile | null;
   readonly origin?: string;
   readonly onProgress?: (step: ImportStep) => void;
 }
@@ -39,64 +82,45 @@ export interface ImportedRegion {
 export const OSM_ATTRIBUTION = '© OpenStreetMap contributors';
 
 /**
- * Makes tiles and an address book from OpenStreetMap data. The work is done in a folder of its own
- * that takes its final name when all is complete, so a region is there wholly or not at all; a
- * region that is there already is used as it is.
+ * Makes a region from OpenStreetMap data. The work is done in a folder of its own that takes its
+ * final name when all is complete, so a region is there wholly or not at all; a region that is there
+ * already is used as it is.
  *
  * @throws UnreadableRegion when the file cannot be used
  */
 export async function importRegion(order: RegionImport): Promise<ImportedRegion> {
-  const { outFolder, name, timeZone, attribution, onProgress } = order;
+  const { outFolder, name } = order;
   const id = idOf(name);
   const hash = await hashOf(order);
   const folder = join(outFolder, `${id}-${hash}`);
   const existing = await readManifest(folder);
   if (existing) return { manifest: existing, folder };
 
-  await mkdir(outFolder, { recursive: true });
   await dropAbandoned(outFolder);
-  const workshop = join(outFolder, `.making-${id}-${randomUUID()}`);
-  await mkdir(workshop);
+  const workshop = await openWorkshop(outFolder);
   try {
-    const extract = await readExtract(order.pbf, (share) =>
-      onProgress?.({ step: 'reading', share: share * 0.2 }),
-    );
-    if (extract.ways.size === 0) throw new UnreadableRegion('The file holds no streets.');
-    onProgress?.({ step: 'sorting', share: 0.2 });
-    const layers = mapLayers(extract);
-    const book = addressBookOf(extract);
-    const base = await writeTiles(layers, extract.bbox, workshop, (share) =>
-      onProgress?.({ step: 'tiles', share: 0.3 + share * 0.5 }),
-    );
-    onProgress?.({ step: 'addresses', share: 0.85 });
-    const numbers = await writeAddressTiles(book.addresses, join(workshop, 'addr'));
-    await writeAddressBook(workshop, book);
-    const [west, south, east, north] = extract.bbox;
+    const { making, counts, report } = await runSteps(order, workshop);
+    const [west, south, east, north] = making.extract.bbox;
     const manifest: RegionManifest = {
       id,
       name,
       hash,
+      importer: IMPORTER_VERSION,
       origin: order.origin ?? null,
-      bbox: extract.bbox,
+      bbox: making.extract.bbox,
       centre: [(west + east) / 2, (south + north) / 2],
-      timeZone,
-      attribution,
-      hasCoastline: layers.hasCoastline,
+      timeZone: order.timeZone,
+      attribution: attributionOf(order),
+      hasCoastline: making.hasCoastline,
       minZoom: MIN_ZOOM,
       maxZoom: MAX_ZOOM,
       addressZoom: ADDRESS_ZOOM,
-      counts: {
-        addresses: book.addresses.length,
-        streets: book.streets.length,
-        corners: book.corners.length,
-        places: book.places.length,
-        tiles: base.tiles + numbers.tiles,
-        bytes: base.bytes + numbers.bytes,
-      },
+      counts,
     };
+    await writeFile(join(workshop, REPORT_FILE), `${JSON.stringify(report)}\n`);
     await writeFile(join(workshop, MANIFEST_FILE), `${JSON.stringify(manifest, null, 2)}\n`);
-    await settle(workshop, folder);
-    onProgress?.({ step: 'done', share: 1 });
+    await settleWorkshop(workshop, folder);
+    order.onProgress?.({ step: 'done', share: 1 });
     return { manifest, folder };
   } catch (error) {
     await rm(workshop, { recursive: true, force: true });
@@ -104,26 +128,64 @@ export async function importRegion(order: RegionImport): Promise<ImportedRegion>
   }
 }
 
-/** Gives the finished folder its name; when another import was quicker, its folder stays. */
-async function settle(workshop: string, folder: string): Promise<void> {
-  try {
-    await rename(workshop, folder);
-  } catch (error) {
-    if (!(await readManifest(folder))) throw error;
-    await rm(workshop, { recursive: true, force: true });
+async function runSteps(
+  order: RegionImport,
+  workshop: string,
+): Promise<{ making: RegionMaking; counts: RegionCounts; report: RegionReport }> {
+  const began = performance.now();
+  const total = STEPS.reduce((sum, { weight }) => sum + weight, READING_WEIGHT);
+  const tell = (step: ImportStep['step'], weightDone: number): void =>
+    order.onProgress?.({ step, share: weightDone / total });
+  const timed: { step: string; seconds: number }[] = [];
+  const leftOut: LeftOut[] = [];
+
+  tell('reading', 0);
+  const extract = await readExtract(order.pbf, (share) => tell('reading', share * READING_WEIGHT));
+  if (extract.ways.size === 0) throw new UnreadableRegion('The file holds no streets.');
+  timed.push({ step: 'reading', seconds: secondsSince(began) });
+
+  const making: RegionMaking = {
+    folder: workshop,
+    extract,
+    addressFile: order.addressFile ?? null,
+    book: { addresses: [], streets: [], corners: [], places: [] },
+    hasCoastline: false,
+    leaveOut: (one) => void leftOut.push(one),
+  };
+  const counts = { ...NO_COUNTS };
+  let done = READING_WEIGHT;
+  for (const { name, weight, run } of STEPS) {
+    const start = performance.now();
+    tell(name, done);
+    const counted = await run(making, (share) => tell(name, done + share * weight));
+    for (const [key, count] of Object.entries(counted)) counts[key as keyof RegionCounts] += count;
+    done += weight;
+    timed.push({ step: name, seconds: secondsSince(start) });
   }
+  const report: RegionReport = {
+    seconds: secondsSince(began),
+    peakMegabytes: Math.round((process.resourceUsage().maxRSS * 1024) / 1e6),
+    steps: timed,
+    leftOut,
+    addressFile: null,
+  };
+  return { making, counts, report };
 }
 
-/** Folders that killed imports left behind. An import takes minutes, so an hour is safe. */
-async function dropAbandoned(outFolder: string): Promise<void> {
-  const hourAgo = Date.now() - 3_600_000;
-  for (const entry of await readdir(outFolder)) {
-    if (!entry.startsWith('.making-')) continue;
-    const path = join(outFolder, entry);
-    const { mtimeMs } = await stat(path);
-    if (mtimeMs < hourAgo) await rm(path, { recursive: true, force: true });
-  }
-}
+const NO_COUNTS: RegionCounts = {
+  addresses: 0,
+  streets: 0,
+  corners: 0,
+  places: 0,
+  roadKm: 0,
+  tiles: 0,
+  bytes: 0,
+};
+
+const secondsSince = (start: number): number => Math.round((performance.now() - start) / 10) / 100;
+
+const attributionOf = ({ attribution, addressFile }: RegionImport): string =>
+  [attribution, addressFile?.attribution ?? ''].filter((text) => text !== '').join('; ');
 
 export function idOf(name: string): string {
   const id = name
@@ -134,17 +196,24 @@ export function idOf(name: string): string {
   return id === '' ? 'region' : id;
 }
 
-async function hashOf({ pbf, timeZone, attribution }: RegionImport): Promise<string> {
+/** Names what a region is made from: the files' bytes and all that the importer is told with them. */
+async function hashOf(order: RegionImport): Promise<string> {
+  const { pbf, timeZone, addressFile } = order;
   const hash = createHash('sha256').update(
-    JSON.stringify([IMPORTER_VERSION, timeZone, attribution]),
+    JSON.stringify([IMPORTER_VERSION, timeZone, attributionOf(order)]),
   );
-  if (typeof pbf !== 'string') return hash.update(pbf).digest('hex').slice(0, 12);
+  if (typeof pbf === 'string') await hashFile(hash, pbf);
+  else hash.update(pbf);
+  if (addressFile) await hashFile(hash, addressFile.path);
+  return hash.digest('hex').slice(0, 12);
+}
+
+async function hashFile(hash: Hash, path: string): Promise<void> {
   try {
-    for await (const chunk of createReadStream(pbf)) hash.update(chunk as Buffer);
+    for await (const chunk of createReadStream(path)) hash.update(chunk as Buffer);
   } catch (error) {
     throw new UnreadableRegion(
-      `The file ${pbf} cannot be read (${error instanceof Error ? error.message : String(error)}).`,
+      `The file ${path} cannot be read (${error instanceof Error ? error.message : String(error)}).`,
     );
   }
-  return hash.digest('hex').slice(0, 12);
 }

@@ -1,12 +1,8 @@
 import { basename, resolve } from 'node:path';
 import { parseArgs } from 'node:util';
 import { ensureDemoRegion } from './demo-region';
-import {
-  importRegion,
-  OSM_ATTRIBUTION,
-  type ImportedRegion,
-  type ImportStep,
-} from './import-region';
+import { importRegion, OSM_ATTRIBUTION, type ImportedRegion } from './import-region';
+import type { ImportStep } from './region-making';
 import { UnreadableRegion } from './unreadable-region';
 
 const HELP = `Makes a region's tiles and address book from OpenStreetMap data.

@@ -29,17 +29,57 @@ export interface RegionManifest {
   readonly maxZoom: number;
   /** Zoom of the house-number tiles under `addr/`. */
   readonly addressZoom: number;
-  readonly counts: {
-    readonly addresses: number;
-    readonly streets: number;
-    readonly corners: number;
-    readonly places: number;
-    readonly tiles: number;
-    readonly bytes: number;
-  };
+  /** Version of the importer that made it; another version's files may not be readable. */
+  readonly importer: number;
+  readonly counts: RegionCounts;
+}
+
+export interface RegionCounts {
+  readonly addresses: number;
+  readonly streets: number;
+  readonly corners: number;
+  readonly places: number;
+  /** Length of all roads that are drawn, each carriageway once, in kilometres. */
+  readonly roadKm: number;
+  readonly tiles: number;
+  /** Size of the tiles, packed. */
+  readonly bytes: number;
+}
+
+/** What an import did not take over. */
+export interface LeftOut {
+  readonly what: string;
+  readonly count: number;
+  readonly why: string;
+}
+
+/** How an import went; kept beside the manifest for the result page. */
+export interface RegionReport {
+  readonly seconds: number;
+  /** Largest memory that the importing process held, in megabytes (10^6 bytes). */
+  readonly peakMegabytes: number;
+  readonly steps: readonly { readonly step: string; readonly seconds: number }[];
+  readonly leftOut: readonly LeftOut[];
+  readonly addressFile: AddressFileReport | null;
+}
+
+export interface AddressFileReport {
+  readonly rows: number;
+  /** Points that the extract did not have. */
+  readonly added: number;
+  /** Rows for a point that the extract or an earlier row had. */
+  readonly merged: number;
+  /** Rows of a flat that were folded into their building's point. */
+  readonly unitRows: number;
+  /** Points whose missing city was filled in. */
+  readonly citiesFilled: number;
+  readonly rejectedCount: number;
+  /** The first of them. */
+  readonly rejected: readonly { readonly line: number; readonly reason: string }[];
 }
 
 export const MANIFEST_FILE = 'region.json';
+export const REPORT_FILE = 'report.json';
 const ADDRESS_FILE = 'addresses.json.gz';
 
 /** Column by column: half the size of row by row, and quicker to read. */
@@ -158,4 +198,9 @@ export async function readManifest(folder: string): Promise<RegionManifest | nul
   // No manifest means no complete region here: an import that was cut short, or another folder.
   const text = await readFile(join(folder, MANIFEST_FILE), 'utf8').catch(() => null);
   return text === null ? null : (JSON.parse(text) as RegionManifest);
+}
+
+export async function readReport(folder: string): Promise<RegionReport | null> {
+  const text = await readFile(join(folder, REPORT_FILE), 'utf8').catch(() => null);
+  return text === null ? null : (JSON.parse(text) as RegionReport);
 }
