@@ -18,6 +18,9 @@ import {
 import { createPocketsWorker, type PocketsWorker } from '../../server/workers/pockets-client';
 import { WorkerClient, type WorkerClientOptions } from '../../server/workers/worker-client';
 
+/** Longer than any test may last. */
+const ENDLESS_MS = 600_000;
+
 const root = path.resolve(__dirname, '../..');
 const folder = mkdtempSync(path.join(tmpdir(), 'thawline-workers-'));
 
@@ -196,8 +199,8 @@ function stormMorning(calls: number, technicians: number): PlannerRequest {
 }
 
 describe('the planner worker', () => {
-  const planner = (): PlannerWorker =>
-    opened(createPlannerWorker(path.join(folder, 'planner-worker.js')));
+  const planner = (options: Partial<WorkerClientOptions> = {}): PlannerWorker =>
+    opened(createPlannerWorker(path.join(folder, 'planner-worker.js'), options));
 
   it('gives the same plan as the planner in this thread, with its summary and reasons', async () => {
     const request = stormMorning(40, 4);
@@ -229,38 +232,34 @@ describe('the planner worker', () => {
     expect(again.plan.cost).toBeLessThanOrEqual(again.before!.plan.cost);
   });
 
-  it('keeps to its budget of time and leaves the event loop free', async () => {
+  it('uses its budget of time, ends by it, and leaves the event loop free', async () => {
     const client = planner();
     await client.run({ ...stormMorning(20, 2), iterations: 10 });
-    let longest = 0;
-    let last = performance.now();
-    const ticker = setInterval(() => {
-      longest = Math.max(longest, performance.now() - last);
-      last = performance.now();
-    }, 5);
+    let turns = 0;
+    const turning = setInterval(() => (turns += 1), 1);
+    // No rounds are given: without the budget this search would not end.
     const answer = await client.run({ ...stormMorning(200, 12), budgetMs: 600 });
-    clearInterval(ticker);
+    clearInterval(turning);
     expect(answer.plan.iterations).toBeGreaterThan(0);
     expect(answer.elapsedMs).toBeGreaterThanOrEqual(600);
-    expect(answer.elapsedMs).toBeLessThan(1500);
-    // Planning on this thread would show as a gap of the whole budget.
-    expect(longest).toBeLessThan(300);
+    // Planning on this thread would leave it no turn in between.
+    expect(turns).toBeGreaterThan(2);
   });
 
-  it('stops soon when nobody waits any more', async () => {
-    const client = planner();
+  it('stops by itself when nobody waits any more, and answers the next', async () => {
+    // Neither its budget nor being ended by force may be what makes room for the next.
+    const client = planner({ graceMs: ENDLESS_MS });
     await client.run({ ...stormMorning(20, 2), iterations: 10 });
     const nobody = new AbortController();
     const endless = client.run(
-      { ...stormMorning(200, 12), budgetMs: 25_000 },
-      { signal: nobody.signal },
+      { ...stormMorning(200, 12), budgetMs: ENDLESS_MS },
+      { signal: nobody.signal, timeoutMs: ENDLESS_MS },
     );
     setTimeout(() => nobody.abort(), 100);
     await expect(endless).rejects.toMatchObject({ failure: 'cancelled' });
-    const began = performance.now();
-    await client.run({ ...stormMorning(20, 2), iterations: 10 });
-    expect(performance.now() - began).toBeLessThan(2000);
-  });
+    const next = await client.run({ ...stormMorning(20, 2), iterations: 10 });
+    expect(next.plan.iterations).toBe(10);
+  }, 30_000);
 
   it('refuses a problem that contradicts itself and a plan without any budget', async () => {
     const client = planner();
