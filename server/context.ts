@@ -5,7 +5,7 @@ import type { Config } from './config';
 import type { LogReaderPort } from './night-log/log-reader';
 import type { Live } from './realtime/live';
 import type { RegionInUse } from './region/region-in-use';
-import type { PlannerPort, PocketsPort } from './workers/ports';
+import type { PlannerPort, PocketsPort, RoadsPort } from './workers/ports';
 
 /** What every command and query may reach. Made once, in main.ts or by a test. */
 export interface Context {
@@ -18,6 +18,8 @@ export interface Context {
   readonly region: RegionInUse;
   readonly planner: PlannerPort;
   readonly pockets: PocketsPort;
+  /** Null for a region without roads; then drives are straight lines, and say so. */
+  readonly roads: RoadsPort | null;
   readonly logReader: LogReaderPort;
   /** Tells the outbox worker that a text is waiting, so that it need not poll fast. */
   readonly wakeOutbox: () => void;

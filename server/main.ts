@@ -61,6 +61,7 @@ async function main(): Promise<void> {
     region: await openRegion(imported),
     planner,
     pockets,
+    roads: null,
     logReader,
     wakeOutbox: () => outbox.wake(),
   });
