@@ -1,8 +1,8 @@
 import { createHash } from 'node:crypto';
 import type { UnitFacts } from '@shared/contract/calls';
 import { COMPARTMENTS_OF, type MedicineKind, type UnitKind } from '@shared/domain/cold-unit';
-import { defaultValueCents } from '@shared/domain/food-value';
 import { HOUR_MS, MINUTE_MS, type Instant } from '@shared/domain/instant';
+import { unknownCompartment } from '@shared/domain/unknown-compartment';
 import type { CallToTake } from '../calls/take-call';
 import type { AddressPoint } from '../region/address-points';
 import { FAMILY_NAMES, GIVEN_NAMES } from './demo-people';
@@ -133,28 +133,19 @@ function compartmentOf(
   kind: UnitKind,
   compartment: UnitFacts['compartments'][number]['kind'],
 ): UnitFacts['compartments'][number] {
+  // Drawn in this order, so that the demo storm stays the same.
+  const fill = compartment === 'freezer' ? chance.pick([0.25, 0.5, 0.5, 0.75, 1, 1, null]) : null;
+  const door = chance.pick(['shut', 'shut', 'few', 'few', 'many', 'unknown'] as const);
+  const roomF = chance.pick([68, 70, 72, 74, 78, 84, null]);
+  const medicine = compartment === 'medicine' ? chance.pick(MEDICINES) : 'label-not-read';
+  const unknown = unknownCompartment(kind, compartment, medicine);
   return {
-    kind: compartment,
-    fill: compartment === 'freezer' ? chance.pick([0.25, 0.5, 0.5, 0.75, 1, 1, null]) : null,
-    door: chance.pick(['shut', 'shut', 'few', 'few', 'many', 'unknown'] as const),
-    standingOpenSince: null,
-    roomF: chance.pick([68, 70, 72, 74, 78, 84, null]),
-    beforeF: null,
-    readings: [],
-    inspections: [],
-    dryIce: [],
-    medicine:
-      compartment === 'medicine'
-        ? {
-            kind: chance.pick(MEDICINES),
-            labelHours: null,
-            labelMaxF: null,
-            frozen: false,
-            hoursAlreadyUnrefrigerated: 0,
-          }
-        : null,
+    ...unknown,
+    fill,
+    door,
+    roomF,
     coldAtLoss: compartment === 'commercial-stock' ? true : null,
-    valueCents: Math.round(defaultValueCents(kind, compartment) * (0.6 + chance.next() * 0.8)),
+    valueCents: Math.round(unknown.valueCents * (0.6 + chance.next() * 0.8)),
   };
 }
 

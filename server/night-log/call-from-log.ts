@@ -1,10 +1,10 @@
 import { randomUUID } from 'node:crypto';
 import type { UnitFacts } from '@shared/contract/calls';
 import type { MedicineKind } from '@shared/domain/cold-unit';
-import { defaultValueCents } from '@shared/domain/food-value';
 import { MINUTE_MS, type Instant } from '@shared/domain/instant';
 import type { NightCall, NightUnit } from '@shared/domain/night-log/night-call';
 import { formatPhone } from '@shared/domain/phone-number';
+import { unknownCompartment } from '@shared/domain/unknown-compartment';
 import type { CallToTake } from '../calls/take-call';
 import type { RegionInUse } from '../region/region-in-use';
 
@@ -113,35 +113,11 @@ function unitOf(unit: NightUnit): UnitFacts {
   };
 }
 
-function compartmentOf(
+const compartmentOf = (
   unit: UnitFacts['kind'],
   kind: UnitFacts['compartments'][number]['kind'],
   medicine: MedicineKind = 'label-not-read',
-): UnitFacts['compartments'][number] {
-  return {
-    kind,
-    fill: null,
-    door: 'unknown',
-    standingOpenSince: null,
-    roomF: null,
-    beforeF: null,
-    readings: [],
-    inspections: [],
-    dryIce: [],
-    medicine:
-      kind === 'medicine'
-        ? {
-            kind: medicine,
-            labelHours: null,
-            labelMaxF: null,
-            frozen: false,
-            hoursAlreadyUnrefrigerated: 0,
-          }
-        : null,
-    coldAtLoss: null,
-    valueCents: defaultValueCents(unit, kind),
-  };
-}
+): UnitFacts['compartments'][number] => unknownCompartment(unit, kind, medicine);
 
 /** Everything that has no field of its own, so that nothing is lost. */
 export function remarkOf(call: NightCall): string {

@@ -5,6 +5,7 @@ import { SeededRandom } from '@shared/domain/planner/random';
 import { pockets } from '@shared/domain/pockets/pockets';
 import { thawClock } from '@shared/domain/thaw/thaw-clock';
 import type { LonLat } from '@shared/domain/travel/great-circle';
+import { unknownCompartment } from '@shared/domain/unknown-compartment';
 import { byUrgency, urgency } from '@shared/domain/urgency';
 import { ensureDemoRegion } from '../../server/region/demo-region';
 import { holdOrder } from '../../src/app/board/held-order';
@@ -46,17 +47,10 @@ function urgencyTimes() {
 }
 
 const food = (kind: 'fresh-food' | 'freezer', valueCents: number): CompartmentFacts => ({
-  kind,
+  ...unknownCompartment('fridge-freezer', kind, 'label-not-read'),
   fill: 1,
   door: 'shut',
-  standingOpenSince: null,
   roomF: 72,
-  beforeF: null,
-  readings: [],
-  inspections: [],
-  dryIce: [],
-  medicine: null,
-  coldAtLoss: null,
   valueCents,
 });
 

@@ -2,7 +2,7 @@ import type { AreaDto } from '@shared/contract/areas';
 import type { Address, CompartmentFacts, UnitFacts } from '@shared/contract/calls';
 import { COMPARTMENTS_OF, type CompartmentKind, type UnitKind } from '@shared/domain/cold-unit';
 import type { Instant } from '@shared/domain/instant';
-import { defaultValueCents } from '@shared/domain/food-value';
+import { unknownCompartment } from '@shared/domain/unknown-compartment';
 
 /** A call as far as it has been taken. It survives JSON, so that a reload loses nothing. */
 export interface IntakeDraft {
@@ -81,31 +81,8 @@ export function newUnit(kind: UnitKind, id: string): UnitFacts {
   };
 }
 
-export function newCompartment(kind: CompartmentKind, unit: UnitKind): CompartmentFacts {
-  return {
-    kind,
-    fill: null,
-    door: 'unknown',
-    standingOpenSince: null,
-    roomF: null,
-    beforeF: null,
-    readings: [],
-    inspections: [],
-    dryIce: [],
-    medicine:
-      kind === 'medicine'
-        ? {
-            kind: 'rather-not-say',
-            labelHours: null,
-            labelMaxF: null,
-            frozen: false,
-            hoursAlreadyUnrefrigerated: 0,
-          }
-        : null,
-    coldAtLoss: null,
-    valueCents: defaultValueCents(unit, kind),
-  };
-}
+export const newCompartment = (kind: CompartmentKind, unit: UnitKind): CompartmentFacts =>
+  unknownCompartment(unit, kind, 'rather-not-say');
 
 /** Medicine kept in an ordinary refrigerator has a clock of its own beside the food's. */
 export function withMedicine(unit: UnitFacts, kept: boolean): UnitFacts {
