@@ -1,13 +1,13 @@
 import type { Sequelize, Transaction } from 'sequelize';
-import type { CallDetail, UnitFacts } from '@shared/contract/calls';
+import type { CallDetail } from '@shared/contract/calls';
 import type { CallState } from '@shared/domain/call-state';
 import { Refusal } from '@shared/domain/errors';
 import type { Instant } from '@shared/domain/instant';
-import { json, select } from '../db/sql';
+import { select } from '../db/sql';
 import { messageDtos } from '../texts/message-rows';
 import { CallRecord } from './call-record';
 import { callRows } from './call-rows';
-import { ColdUnitRecord, CompartmentRecord } from './cold-unit-record';
+import { readUnits } from './read-units';
 
 /** Everything about one call. @throws Refusal `not-found` */
 export async function callDetail(
@@ -31,7 +31,7 @@ export async function detailOf(
   const callId = call.id;
   const [row] = await callRows(sequelize, { ids: [callId] }, now, tx);
   if (!row) throw new Refusal('not-found', 'There is no such call.');
-  const { units, reasons } = await unitsWithReasons(callId, tx);
+  const units = await readUnits(callId, tx);
   return {
     row,
     language: call.language,
@@ -39,42 +39,12 @@ export async function detailOf(
     powerOutAt: call.powerOutAt.getTime(),
     powerBackAt: call.powerBackAt?.getTime() ?? null,
     timesFrom: call.timesFrom,
-    units,
-    clockReasons: reasons,
+    units: units.map(({ facts }) => facts),
+    clockReasons: units.map(({ reasons }) => reasons),
     phoneCheck: call.phoneCheck,
     remarks: await remarksOf(sequelize, callId, tx),
     history: await historyOf(sequelize, callId, tx),
     messages: await messageDtos(sequelize, { callId }, tx),
-  };
-}
-
-async function unitsWithReasons(
-  callId: string,
-  tx?: Transaction,
-): Promise<{ units: UnitFacts[]; reasons: string[][][] }> {
-  const transaction = tx ? { transaction: tx } : {};
-  const units = await ColdUnitRecord.findAll({
-    where: { callId },
-    order: [['placeNo', 'ASC']],
-    ...transaction,
-  });
-  const compartments = await CompartmentRecord.findAll({
-    where: { unitId: units.map((unit) => unit.id) },
-    order: [['placeNo', 'ASC']],
-    ...transaction,
-  });
-  const inUnit = (unitId: string) => compartments.filter((one) => one.unitId === unitId);
-  return {
-    units: units.map((unit) => ({
-      id: unit.id,
-      kind: unit.kind,
-      compressorStart: unit.compressorStart,
-      ageYears: unit.ageYears,
-      cubicFeet: unit.cubicFeet,
-      place: unit.place,
-      compartments: inUnit(unit.id).map((one) => one.facts as UnitFacts['compartments'][number]),
-    })),
-    reasons: units.map((unit) => inUnit(unit.id).map((one) => json<string[]>(one.reasons))),
   };
 }
 

@@ -17,7 +17,7 @@ import {
   saveCall,
   saveClaim,
 } from './change-call';
-import { unitsOf } from './store-units';
+import { readUnits } from './read-units';
 
 /** Takes or keeps the claim. A call that nobody has checked yet is then being checked. */
 export async function claimCall(job: Job, callId: string): Promise<CallRecord> {
@@ -126,9 +126,9 @@ const OUTCOME_REASONS: Readonly<Record<ConcludeCall['outcome'], string>> = {
 
 /** What the answers point to: danger, likely causes, the parts and skills of a visit. */
 async function drawConclusions(job: Job, call: CallRecord): Promise<void> {
-  const [unit] = await unitsOf(job, call.id);
+  const [unit] = await readUnits(call.id, job.tx);
   if (!unit) return;
-  const found = conclude(call.phoneCheck.answers, unit);
+  const found = conclude(call.phoneCheck.answers, unit.facts);
   call.danger = call.danger || found.danger !== null;
   call.skills = [...found.skills];
   call.parts = [...found.parts];

@@ -52,32 +52,6 @@ export async function storeNewUnits(
   );
 }
 
-/** The units of a call as they were told. */
-export async function unitsOf(job: Pick<Job, 'tx'>, callId: string): Promise<UnitFacts[]> {
-  const transaction = { transaction: job.tx };
-  const units = await ColdUnitRecord.findAll({
-    where: { callId },
-    order: [['placeNo', 'ASC']],
-    ...transaction,
-  });
-  const compartments = await CompartmentRecord.findAll({
-    where: { unitId: units.map((unit) => unit.id) },
-    order: [['placeNo', 'ASC']],
-    ...transaction,
-  });
-  return units.map((unit) => ({
-    id: unit.id,
-    kind: unit.kind,
-    compressorStart: unit.compressorStart,
-    ageYears: unit.ageYears,
-    cubicFeet: unit.cubicFeet,
-    place: unit.place,
-    compartments: compartments
-      .filter((one) => one.unitId === unit.id)
-      .map((one) => one.facts as UnitFacts['compartments'][number]),
-  }));
-}
-
 /** Works the clocks out again after the times of a call have moved. */
 export async function windClocks(job: Job, call: CallRecord): Promise<void> {
   const units = await ColdUnitRecord.findAll({
