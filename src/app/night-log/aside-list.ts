@@ -27,7 +27,7 @@ import { RowsBeingTaken } from './rows-being-taken';
   selector: 'thaw-aside-list',
   imports: [AsideActions, MatIcon],
   templateUrl: './aside-list.html',
-  styleUrls: ['../intake/fields.scss', './aside-list.scss'],
+  styleUrls: ['../intake/fields.scss', './panel.scss', './aside-list.scss'],
   changeDetection: ChangeDetectionStrategy.OnPush,
 })
 export class AsideList {

@@ -27,7 +27,7 @@ import {
   selector: 'thaw-log-view',
   imports: [ColumnMapping, LogPreview, MatIcon],
   templateUrl: './log-view.html',
-  styleUrls: ['../intake/fields.scss', './log-view.scss'],
+  styleUrls: ['../intake/fields.scss', './panel.scss', './log-view.scss'],
   changeDetection: ChangeDetectionStrategy.OnPush,
 })
 export class LogView {
