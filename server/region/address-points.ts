@@ -1,4 +1,5 @@
 import Flatbush from 'flatbush';
+import { fillCities, townAround } from './fill-cities';
 import { linesOf, type LonLat, type OsmExtract } from './osm-extract';
 import type { Tags } from './osm-model';
 import { placeOf, roadClassOf } from './map-layers';
@@ -46,13 +47,28 @@ export interface AddressBook {
 /** Place kinds whose name serves as the city of an address that has none. */
 const CITY_KINDS = ['city', 'town', 'village', 'suburb', 'borough', 'hamlet', 'neighbourhood'];
 
-/** Takes addresses, streets, corners and named places out of an extract. */
-export function addressBookOf(extract: OsmExtract): AddressBook {
+/** The town of a place: the municipality around it, or the nearest place with a name. */
+export function townFinder(extract: OsmExtract): (at: LonLat) => string {
+  const around = townAround(extract);
   const towns = extract.namedNodes.filter(
     ({ tags }) => tags['name'] && CITY_KINDS.includes(tags['place'] ?? ''),
   );
-  const townAt = nearestName(towns.map(({ at, tags }) => ({ at, name: tags['name']! })));
-  const addresses = withoutRepeats(rawAddresses(extract, townAt));
+  const nearest = nearestName(towns.map(({ at, tags }) => ({ at, name: tags['name']! })));
+  return (at) => around(at) || nearest(at);
+}
+
+/** The address points of an extract, each with its town. */
+export const ownAddresses = (
+  extract: OsmExtract,
+  townAt: (at: LonLat) => string = townFinder(extract),
+): AddressPoint[] => withoutRepeats(fillCities(rawAddresses(extract), townAt));
+
+/** The streets, corners and named places of an extract, with these addresses. */
+export function bookOf(
+  extract: OsmExtract,
+  addresses: readonly AddressPoint[],
+  townAt: (at: LonLat) => string = townFinder(extract),
+): AddressBook {
   const addressCity = nearestName(addresses.map(({ at, city }) => ({ at, name: city })));
   // Most addresses name their city; a road between them belongs where its houses do.
   const cityAt = (at: LonLat): string => addressCity(at) || townAt(at);
@@ -85,7 +101,8 @@ function nearestName(
   return ([lon, lat]) => points[index.neighbors(lon * squeeze, lat, 1)[0] ?? 0]?.name ?? '';
 }
 
-function rawAddresses(extract: OsmExtract, townAt: (at: LonLat) => string): AddressPoint[] {
+/** As the extract has them; some name no town. */
+function rawAddresses(extract: OsmExtract): AddressPoint[] {
   const found: AddressPoint[] = [];
   const add = (at: LonLat, tags: Tags): void => {
     const street = tags['addr:street'] ?? tags['addr:place'];
@@ -98,7 +115,7 @@ function rawAddresses(extract: OsmExtract, townAt: (at: LonLat) => string): Addr
         at,
         number,
         street: street.trim(),
-        city: (tags['addr:city'] ?? townAt(at)).trim(),
+        city: (tags['addr:city'] ?? '').trim(),
         postcode: (tags['addr:postcode'] ?? '').trim(),
         flats: flatsIn(tags['addr:flats']),
       });

@@ -2,7 +2,9 @@ import { createHash, type Hash } from 'node:crypto';
 import { createReadStream } from 'node:fs';
 import { rm, writeFile } from 'node:fs/promises';
 import { join } from 'node:path';
-import { addressBookOf } from './address-points';
+import { takeAddressFile } from './address-file/take-address-file';
+import { bookOf, ownAddresses, townFinder, type AddressPoint } from './address-points';
+import { leftOutOf } from './left-out';
 import { MAX_ZOOM, mapLayers, MIN_ZOOM } from './map-layers';
 import { readExtract } from './osm-extract';
 import {
@@ -32,8 +34,17 @@ const STEPS: readonly MakingStep[] = [
     name: 'addresses',
     weight: 15,
     run: async (making) => {
-      const book = addressBookOf(making.extract);
+      const { extract, addressFile } = making;
+      const townAt = townFinder(extract);
+      let addresses: readonly AddressPoint[] = ownAddresses(extract, townAt);
+      if (addressFile) {
+        const taken = await takeAddressFile(addressFile.path, addresses, extract.bbox, townAt);
+        addresses = taken.addresses;
+        making.addressFileReport = taken.report;
+      }
+      const book = bookOf(extract, addresses, townAt);
       making.book = book;
+      for (const one of leftOutOf(extract)) making.leaveOut(one);
       await writeAddressBook(making.folder, book);
       return {
         addresses: book.addresses.length,
@@ -150,6 +161,7 @@ async function runSteps(
     addressFile: order.addressFile ?? null,
     book: { addresses: [], streets: [], corners: [], places: [] },
     hasCoastline: false,
+    addressFileReport: null,
     leaveOut: (one) => void leftOut.push(one),
   };
   const counts = { ...NO_COUNTS };
@@ -167,7 +179,7 @@ async function runSteps(
     peakMegabytes: Math.round((process.resourceUsage().maxRSS * 1024) / 1e6),
     steps: timed,
     leftOut,
-    addressFile: null,
+    addressFile: making.addressFileReport,
   };
   return { making, counts, report };
 }

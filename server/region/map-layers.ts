@@ -15,6 +15,7 @@ export const LAYERS = [
   'waterways',
   'buildings',
   'roads',
+  'power',
   'places',
 ] as const;
 export type LayerName = (typeof LAYERS)[number];
@@ -79,6 +80,7 @@ export function mapLayers(extract: OsmExtract): MapLayers {
     waterways: [],
     buildings: [],
     roads: [],
+    power: [],
     places: [],
   };
   const land = landOf(extract);
@@ -109,6 +111,10 @@ export function mapLayers(extract: OsmExtract): MapLayers {
       const ring = ringOf(extract, way.refs);
       return ring ? [[ring]] : [];
     });
+    const power = powerLineOf(way.tags);
+    if (power)
+      for (const line of linesOf(extract, way))
+        features.power.push(lineFeature(line, { kind: power.kind }, power.minzoom, MAX_ZOOM));
     if (
       way.tags['waterway'] === 'river' ||
       way.tags['waterway'] === 'stream' ||
@@ -132,6 +138,8 @@ export function mapLayers(extract: OsmExtract): MapLayers {
   }
   features.roads.push(...roadFeatures(extract));
   for (const { at, tags } of extract.namedNodes) {
+    if (tags['power'] === 'substation')
+      features.power.push(pointFeature(at, { kind: 'substation' }, SUBSTATION_MINZOOM));
     const place = placeOf(tags);
     if (place) {
       features.places.push(
@@ -140,6 +148,21 @@ export function mapLayers(extract: OsmExtract): MapLayers {
     }
   }
   return { features, hasCoastline: land.length > 0 };
+}
+
+const SUBSTATION_MINZOOM = 10;
+
+/** Lines that carry power, whether between substations or along the streets. */
+function powerLineOf(tags: Tags): { kind: string; minzoom: number } | null {
+  switch (tags['power']) {
+    case 'line':
+      return { kind: 'line', minzoom: 10 };
+    case 'minor_line':
+    case 'cable':
+      return { kind: tags['power'], minzoom: 12 };
+    default:
+      return null;
+  }
 }
 
 const kindAndName = (kind: string, tags: Tags): Record<string, string> =>

@@ -74,7 +74,9 @@ export interface AddressFileReport {
   /** Points whose missing city was filled in. */
   readonly citiesFilled: number;
   readonly rejectedCount: number;
-  /** The first of them. */
+  /** How many were rejected for each reason. */
+  readonly reasons: Readonly<Record<string, number>>;
+  /** The first of them, with the line of the file on which each begins or ends. */
   readonly rejected: readonly { readonly line: number; readonly reason: string }[];
 }
 

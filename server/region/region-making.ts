@@ -1,6 +1,6 @@
 import type { AddressBook } from './address-points';
 import type { OsmExtract } from './osm-extract';
-import type { LeftOut, RegionCounts } from './region-data';
+import type { AddressFileReport, LeftOut, RegionCounts } from './region-data';
 
 /** The parts of an import, in the words that progress is told in. */
 export type StepName = 'reading' | 'addresses' | 'map' | 'house numbers' | 'done';
@@ -19,6 +19,7 @@ export interface RegionMaking {
   readonly addressFile: AddressFile | null;
   /** Empty until the step `addresses` is done. */
   book: AddressBook;
+  addressFileReport: AddressFileReport | null;
   /** Whether the map's ground is sea with land drawn on it; known once the step `map` is done. */
   hasCoastline: boolean;
   /** Says on the result page what was not taken over, and why. */

@@ -1,9 +1,12 @@
 import { chanceOf } from './chance';
+import type { FerryCrossing } from './ferry';
 import { between, distance, type Point } from './plane';
 import type { StreetClass, StreetPart } from './street-line';
 import { HALF_HEIGHT, HALF_WIDTH, type Terrain } from './terrain';
 import type { TownPlan } from './town-grid';
 import type { Town } from './towns';
+
+const FORD_NORTHING = 6_300;
 
 /** A road that is wanted; the ground decides where it runs. */
 export interface Wish {
@@ -17,6 +20,8 @@ export interface Wish {
   readonly street: string;
   /** How many times dearer a metre over water is. */
   readonly waterCost: number;
+  /** Whether it lies so low by the shore that a storm floods it. */
+  readonly floods?: boolean;
 }
 
 /** Pairs of towns with no third town inside the circle over them (Gabriel's graph), the barrier apart. */
@@ -54,9 +59,10 @@ export function townLinks(towns: readonly Town[], plans: readonly TownPlan[]): W
     streetClass: StreetClass,
     part: StreetPart,
     waterCost: number,
+    { mayStartOnShore = false, floods = false } = {},
   ): void => {
-    const [fromGate, from] = gateToward(plans[a.index]!, a, b.at);
-    const [toGate, to] = gateToward(plans[b.index]!, b, a.at);
+    const [fromGate, from] = gateToward(plans[a.index]!, a, b.at, mayStartOnShore);
+    const [toGate, to] = gateToward(plans[b.index]!, b, a.at, mayStartOnShore);
     wishes.push({
       from,
       to,
@@ -66,6 +72,7 @@ export function townLinks(towns: readonly Town[], plans: readonly TownPlan[]): W
       part,
       street: `c/${a.index}-${b.index}`,
       waterCost,
+      floods,
     });
   };
   for (const pair of pairs.filter(({ a }) => !a.isOnBarrier)) {
@@ -83,16 +90,28 @@ export function townLinks(towns: readonly Town[], plans: readonly TownPlan[]): W
     const nearest = [...mainland].sort(
       (a, b) => distance(a.at, village.at) - distance(b.at, village.at),
     )[0]!;
-    link(nearest, village, 'primary', 'highway', 5);
+    // The northern causeway is the city's main street, carried on over the sound; the southern one
+    // is older and lies low.
+    link(nearest, village, 'primary', 'highway', 5, {
+      mayStartOnShore: village === northern,
+      floods: village === southern,
+    });
   }
   return wishes;
 }
 
 /** The gate of a town that faces a place best, with the point outside it. */
-function gateToward(plan: TownPlan, town: Town, goal: Point): [Point, Point] {
-  let best = plan.gates[0]!;
+function gateToward(
+  plan: TownPlan,
+  town: Town,
+  goal: Point,
+  mayBeOnShore: boolean,
+): [Point, Point] {
+  const dry = plan.gates.filter(({ isDry }) => isDry);
+  const gates = mayBeOnShore || dry.length === 0 ? plan.gates : dry;
+  let best = gates[0]!;
   let bestScore = -Infinity;
-  for (const gate of plan.gates) {
+  for (const gate of gates) {
     const gx = gate.outside[0] - town.at[0];
     const gy = gate.outside[1] - town.at[1];
     const score =
@@ -103,6 +122,39 @@ function gateToward(plan: TownPlan, town: Town, goal: Point): [Point, Point] {
     }
   }
   return [best.at, best.outside];
+}
+
+/** Roads from the nearest towns to the landings of the ferry. */
+export function ferryLinks(
+  towns: readonly Town[],
+  plans: readonly TownPlan[],
+  { west, east }: FerryCrossing,
+): Wish[] {
+  return [west, east].map((landing, k) => {
+    const isOwnSide = (town: Town): boolean => town.at[0] > west[0] === (landing === east);
+    const town = towns
+      .filter((candidate) => !candidate.isOnBarrier && isOwnSide(candidate))
+      .sort((a, b) => distance(a.at, landing) - distance(b.at, landing))[0]!;
+    const [fromGate, from] = gateToward(plans[town.index]!, town, landing, false);
+    return {
+      from,
+      // The lattice's nearest place to the landing itself may lie in the water.
+      to: [landing[0] + (landing === east ? 300 : -300), landing[1]],
+      fromGate,
+      toGate: landing,
+      streetClass: 'tertiary',
+      part: 'rural',
+      street: `r/f${k}`,
+      waterCost: 60,
+    };
+  });
+}
+
+/** A back road through the river where it is a brook. */
+export function fordLink(terrain: Terrain): Wish {
+  const brook = terrain.river.find(([, y]) => y > FORD_NORTHING) ?? terrain.river.at(-1)!;
+  const bank = (off: number): Point => [brook[0] + off, brook[1]];
+  return { ...ruralWish(bank(-1_500), bank(1_500), 'r/ford', 'unclassified'), waterCost: 3 };
 }
 
 /** A loose lattice of crossings in open country, each joined to a few neighbours. */

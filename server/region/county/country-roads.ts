@@ -1,7 +1,8 @@
 import { mix, noise2, seedOf } from './chance';
-import { ruralLinks, townLinks, type Wish } from './country-links';
+import { ferryLinks, fordLink, ruralLinks, townLinks, type Wish } from './country-links';
+import type { FerryCrossing } from './ferry';
 import { CheapestFirst } from './least-cost';
-import { between, distance, rounded, simplified, type Point } from './plane';
+import { between, distance, lengthOf, rounded, simplified, type Point } from './plane';
 import { numbersAlong, type StreetLine } from './street-line';
 import { HALF_HEIGHT, HALF_WIDTH, type Terrain } from './terrain';
 import type { TownPlan } from './town-grid';
@@ -16,6 +17,11 @@ const COLUMNS = Math.floor((2 * HALF_WIDTH) / CELL);
 const ROWS = Math.floor((2 * HALF_HEIGHT) / CELL);
 /** Nearer to water than this a road counts as a bridge, in metres. */
 const BRIDGE_CLEARANCE = 88;
+/** Nearer to water than this a road that lies low is under it in a storm, in metres. */
+const LOW_CLEARANCE = 230;
+const FINE_STEP = 20;
+const LONGEST_FORD = 240;
+type Ground = 'wet' | 'low' | 'dry';
 /** One rural house number per so many metres. */
 const METRES_PER_NUMBER = 4;
 
@@ -28,9 +34,12 @@ export function layOutCountry(
   towns: readonly Town[],
   plans: readonly TownPlan[],
   terrain: Terrain,
+  ferry: FerryCrossing | null,
 ): StreetLine[] {
   const network = new RoadNetwork(seed, towns, terrain);
   for (const wish of townLinks(towns, plans)) network.build(wish);
+  if (ferry) for (const wish of ferryLinks(towns, plans, ferry)) network.build(wish);
+  network.build(fordLink(terrain));
   const rural = ruralLinks(seed, towns, terrain, (p) => network.isOpenCountry(p));
   for (const wish of rural) network.build(wish);
   return network.lines();
@@ -169,22 +178,31 @@ class RoadNetwork {
     points: readonly Point[],
     numbers: readonly number[],
   ): StreetLine[] {
-    const fine = densified(points, numbers, 20);
-    const isWet = fine.map(({ p }) => this.terrain.clearance(p) < BRIDGE_CLEARANCE);
+    const fine = densified(points, numbers, FINE_STEP);
+    const clear = fine.map(({ p }) => this.terrain.clearance(p));
+    // A span between two points is a bridge when either end is over water.
+    const isByBridge = (i: number): boolean =>
+      clear.slice(max(0, i - 25), i + 25).some((metres) => metres === 0);
+    const groundOf = (i: number): Ground => {
+      const least = min(clear[i - 1]!, clear[i]!);
+      if (least < BRIDGE_CLEARANCE) return 'wet';
+      return wish.floods && least < LOW_CLEARANCE && isByBridge(i) ? 'low' : 'dry';
+    };
     const lines: StreetLine[] = [];
     let from = 0;
     for (let i = 1; i < fine.length; i++) {
-      const isLast = i === fine.length - 1;
-      // A span between two points is a bridge when either end is over water.
-      const isBridge = isWet[i - 1]! || isWet[i]!;
-      const nextIsBridge = !isLast && (isWet[i]! || isWet[i + 1]!);
-      if (!isLast && isBridge === nextIsBridge) continue;
+      const ground = groundOf(i);
+      if (i < fine.length - 1 && ground === groundOf(i + 1)) continue;
       const part = fine.slice(from, i + 1);
       const kept = simplified(
         part.map(({ p }) => p),
         1.2,
       );
       const numberAt = new Map(part.map(({ p, number }) => [p, number]));
+      // Back roads go through a brook; whatever is longer than its flood plain needs a bridge.
+      const isFord =
+        ground === 'wet' && wish.streetClass === 'unclassified' && lengthOf(kept) < LONGEST_FORD;
+      const isBridge = ground === 'wet' && !isFord;
       lines.push({
         points: kept,
         streetClass: wish.streetClass,
@@ -192,8 +210,15 @@ class RoadNetwork {
         part: wish.part,
         town: null,
         numbers:
-          isBridge || wish.part === 'highway' ? null : kept.map((p) => numberAt.get(p) ?? 100),
+          ground === 'wet' || wish.part === 'highway'
+            ? null
+            : kept.map((p) => numberAt.get(p) ?? 100),
         isBridge,
+        ...(isFord
+          ? { water: 'ford' as const }
+          : ground === 'low'
+            ? { water: 'floods' as const }
+            : {}),
       });
       from = i;
     }

@@ -1,15 +1,18 @@
 import { houseAddresses, type HouseAddress } from './addresses';
 import { layOutCountry } from './country-roads';
 import { contours } from './contours';
+import { ferryCrossing, type FerryCrossing } from './ferry';
 import { findJunctions, type StreetGraph } from './junctions';
 import { nameStreets, type StreetName } from './names';
 import { makePlaces, type CountyPlaces } from './places';
 import type { Point } from './plane';
 import { StreetSpace, type StreetLine } from './street-line';
+import { layOutDrives } from './suburb-drives';
 import { layOutLanes, layOutSuburbs } from './suburbs';
 import { HALF_HEIGHT, HALF_WIDTH, makeTerrain, type Terrain } from './terrain';
 import { layOutTown, waterfront } from './town-grid';
 import { placeTowns, type Town } from './towns';
+import { trafficOf, type Traffic } from './traffic';
 
 /** The invented county as the generator knows it, before it is written as OpenStreetMap data. */
 export interface County {
@@ -18,6 +21,8 @@ export interface County {
   readonly towns: readonly Town[];
   readonly lines: readonly StreetLine[];
   readonly graph: StreetGraph;
+  readonly traffic: Traffic;
+  readonly ferry: FerryCrossing | null;
   readonly streetNames: ReadonlyMap<string, StreetName>;
   readonly addresses: readonly HouseAddress[];
   readonly parks: readonly Point[][];
@@ -35,12 +40,16 @@ export function makeCounty(seed: number): County {
   const shore = shoreLines(terrain);
   const lines: StreetLine[] = plans.flatMap((plan) => [...plan.lines]);
   for (const town of towns) if (!town.isOnBarrier) lines.push(...waterfront(town, shore));
-  const country = layOutCountry(seed, towns, plans, terrain);
+  const ferry = ferryCrossing(terrain);
+  const country = layOutCountry(seed, towns, plans, terrain, ferry);
   lines.push(...country);
 
   const space = new StreetSpace();
   for (const line of lines) space.add(line.points, line.street);
-  for (const town of towns) lines.push(...layOutSuburbs(seed, town, terrain, space));
+  for (const town of towns) {
+    lines.push(...layOutSuburbs(seed, town, terrain, space));
+    lines.push(...layOutDrives(seed, town, terrain, space));
+  }
   lines.push(...layOutLanes(seed, country, terrain, space));
 
   const graph = findJunctions(lines);
@@ -65,10 +74,12 @@ export function makeCounty(seed: number): County {
     towns,
     lines,
     graph,
+    traffic: trafficOf(seed, towns, lines, graph),
+    ferry,
     streetNames,
     addresses,
     parks,
-    places: makePlaces(seed, terrain, towns, lines, graph, addresses),
+    places: makePlaces(seed, terrain, towns, lines, graph, addresses, ferry),
   };
 }
 

@@ -1,8 +1,10 @@
 import type { HouseAddress } from './addresses';
 import { chanceOf, noise2, seedOf } from './chance';
+import type { FerryCrossing } from './ferry';
 import type { StreetGraph } from './junctions';
 import { nameStock } from './names';
 import { circle, distance, rounded, type Point } from './plane';
+import { services, type Building } from './services';
 import type { StreetLine } from './street-line';
 import type { Terrain } from './terrain';
 import type { Town } from './towns';
@@ -15,27 +17,12 @@ export interface NamedPlace {
 
 export interface CountyPlaces {
   readonly points: readonly NamedPlace[];
+  readonly buildings: readonly Building[];
   readonly woods: readonly Point[][];
   readonly reserve: readonly Point[];
   readonly lakeNames: readonly string[];
   readonly parkName: (number: number) => string;
 }
-
-const SERVICES: readonly {
-  readonly key: 'amenity' | 'shop';
-  readonly value: string;
-  readonly word: string;
-  readonly in: readonly Town['size'][];
-}[] = [
-  { key: 'amenity', value: 'clinic', word: 'Clinic', in: ['city', 'town', 'village'] },
-  { key: 'amenity', value: 'school', word: 'School', in: ['city', 'town', 'village'] },
-  { key: 'shop', value: 'supermarket', word: 'Grocery', in: ['city', 'town', 'village'] },
-  { key: 'amenity', value: 'fire_station', word: 'Fire House', in: ['city', 'town'] },
-  { key: 'amenity', value: 'pharmacy', word: 'Pharmacy', in: ['city', 'town'] },
-  { key: 'amenity', value: 'townhall', word: 'Town Hall', in: ['city', 'town'] },
-  { key: 'amenity', value: 'hospital', word: 'General Hospital', in: ['city'] },
-  { key: 'amenity', value: 'library', word: 'Library', in: ['city'] },
-];
 
 export function makePlaces(
   seed: number,
@@ -44,7 +31,9 @@ export function makePlaces(
   lines: readonly StreetLine[],
   graph: StreetGraph,
   addresses: readonly HouseAddress[],
+  ferry: FerryCrossing | null,
 ): CountyPlaces {
+  const serving = towns.map((town) => services(seed, town, lines, addresses));
   const lakeName = nameStock(seed, 'lake-names');
   const parkName = nameStock(seed, 'park-names');
   const points: NamedPlace[] = [
@@ -59,15 +48,29 @@ export function makePlaces(
       tags: { place: town.size, name: town.name, postal_code: town.postcodes.join(';') },
     })),
     ...hamlets(seed, towns, lines, graph),
-    ...towns.flatMap((town) => services(seed, town, lines, addresses)),
+    ...farms(seed, lines, new Set(graph.stretches.map(({ line }) => line))),
+    ...serving.flatMap(({ places }) => places),
+    ...ferryTerminals(ferry),
   ];
   return {
     points,
+    buildings: serving.flatMap(({ buildings }) => buildings),
     woods: woods(seed, terrain, towns),
     reserve: reserveOn(terrain),
     lakeNames: terrain.lakes.map(() => lakeName('Lake')),
     parkName: memo(() => parkName('Park')),
   };
+}
+
+function ferryTerminals(ferry: FerryCrossing | null): NamedPlace[] {
+  if (!ferry) return [];
+  return (['west', 'east'] as const).map((side) => ({
+    at: [ferry[side][0], ferry[side][1] + 15],
+    tags: {
+      amenity: 'ferry_terminal',
+      name: `${side === 'west' ? 'West' : 'East'} Estuary Ferry Landing`,
+    },
+  }));
 }
 
 const memo = (make: () => string): ((number: number) => string) => {
@@ -102,42 +105,19 @@ function hamlets(
   return found;
 }
 
-/** What every town has: a school, a clinic, a grocery; a marina where it reaches the shore. */
-function services(
+/** Farms at the ends of the lanes, each with the name of its own. */
+function farms(
   seed: number,
-  town: Town,
   lines: readonly StreetLine[],
-  addresses: readonly HouseAddress[],
+  isBuilt: ReadonlySet<number>,
 ): NamedPlace[] {
-  const chance = chanceOf(seed, 'services', town.index);
-  const near = addresses.filter(
-    (address) => address.town === town.index && distance(address.at, town.at) < town.radius * 0.8,
-  );
-  const places: NamedPlace[] = [];
-  for (const service of SERVICES) {
-    if (!service.in.includes(town.size)) continue;
-    const house = chance.pick(near);
-    places.push({
-      at: [house.at[0] + 4, house.at[1] + 4],
-      tags: {
-        [service.key]: service.value,
-        name: `${town.name} ${service.word}`,
-        'addr:housenumber': String(house.number),
-        'addr:street': house.streetName,
-        'addr:city': town.name,
-        'addr:postcode': house.postcode,
-      },
-    });
-  }
-  const shore = lines.find((line) => line.part === 'waterfront' && line.town === town.index);
-  if (shore) {
-    const at = shore.points[shore.points.length >> 1]!;
-    places.push({
-      at: [at[0] + 20, at[1] + 5],
-      tags: { leisure: 'marina', name: `${town.name} Marina` },
-    });
-  }
-  return places;
+  const chance = chanceOf(seed, 'farms');
+  const name = nameStock(seed, 'farm-names');
+  return lines.flatMap((line, index): NamedPlace[] => {
+    const end = line.points[line.points.length - 1];
+    if (line.part !== 'lane' || !isBuilt.has(index) || !end || !chance.happens(0.35)) return [];
+    return [{ at: [end[0] + 18, end[1] + 12], tags: { place: 'farm', name: name('Farm') } }];
+  });
 }
 
 function woods(seed: number, terrain: Terrain, towns: readonly Town[]): Point[][] {

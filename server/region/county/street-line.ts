@@ -19,6 +19,8 @@ export interface StreetLine {
   /** House number at each point, not yet made odd or even; null where nobody lives along it. */
   readonly numbers: readonly number[] | null;
   readonly isBridge: boolean;
+  /** What water does to it, if anything: it is driven through, or it rises over the road in a storm. */
+  readonly water?: 'ford' | 'floods';
 }
 
 export type StreetPart =

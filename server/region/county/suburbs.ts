@@ -19,7 +19,7 @@ export function layOutSuburbs(
   space: StreetSpace,
 ): StreetLine[] {
   const chance = chanceOf(seed, 'suburbs', town.index);
-  const wanted = town.isOnBarrier ? 0 : town.size === 'city' ? 24 : town.size === 'town' ? 9 : 4;
+  const wanted = town.isOnBarrier ? 0 : town.size === 'city' ? 7 : town.size === 'town' ? 3 : 1;
   const lines: StreetLine[] = [];
   let built = 0;
   for (let tries = 0; tries < wanted * 30 && built < wanted; tries++) {

@@ -4,11 +4,18 @@ import { numbersAlong, type StreetClass, type StreetLine } from './street-line';
 import type { Terrain } from './terrain';
 import type { Town } from './towns';
 
+/** An end of a main street, with a point further out that may lie in the water. */
+export interface Gate {
+  readonly at: Point;
+  readonly outside: Point;
+  readonly isDry: boolean;
+}
+
 export interface TownPlan {
   readonly lines: readonly StreetLine[];
   readonly parks: readonly Point[][];
   /** Where roads from outside meet the town's streets, each with a point further out. */
-  readonly gates: readonly { readonly at: Point; readonly outside: Point }[];
+  readonly gates: readonly Gate[];
 }
 
 /** Streets keep this far from water, in metres; the terrain's distances are good to about 40 m. */
@@ -61,13 +68,13 @@ export function layOutTown(seed: number, town: Town, terrain: Terrain): TownPlan
   const across: { u: number; k: number }[] = [];
   let offset = 0;
   for (let k = -bands; k < bands; k++) {
-    if (chance.happens(0.42)) offset = chance.pick([0, 0.35, 0.5, 0.65]) * town.blockLength;
+    if (chance.happens(0.24)) offset = chance.pick([0, 0.24, 0.35, 0.5, 0.65]) * town.blockLength;
     const count = Math.ceil(reach / town.blockLength);
     const places = [0];
     for (let m = -count; m <= count; m++) {
       const u = Math.round(m * town.blockLength + offset);
       // The middle street (u = 0) crosses every band; others keep clear of it.
-      if (Math.abs(u) < 60 || chance.happens(0.13)) continue;
+      if (Math.abs(u) < 60 || chance.happens(0.11)) continue;
       places.push(u);
     }
     for (const park of parks) if (k >= park.low && k < park.high) places.push(park.from, park.to);
@@ -81,14 +88,23 @@ export function layOutTown(seed: number, town: Town, terrain: Terrain): TownPlan
     );
   }
 
+  for (const [k, places] of crossings) {
+    for (const u of places) if (isBuilt(u, k) && isBuilt(u, k + 1)) across.push({ u, k });
+  }
+
   for (let k = -bands; k <= bands; k++) {
+    const met = new Set(across.flatMap((own) => (own.k === k || own.k === k - 1 ? [own.u] : [])));
     const stops = new Set<number>([...(crossings.get(k) ?? []), ...(crossings.get(k - 1) ?? [])]);
     for (let u = -Math.ceil(reach / STEP) * STEP; u <= reach; u += STEP) stops.add(u);
-    const run: number[] = [];
+    let run: number[] = [];
     const flush = (): void => {
+      // Most streets end at a corner, a few run on into the fields.
+      if (k !== 0 && chance.happens(0.75)) while (run.length > 0 && !met.has(run[0]!)) run.shift();
+      if (k !== 0 && chance.happens(0.75))
+        while (run.length > 0 && !met.has(run.at(-1)!)) run.pop();
       const length = run.length > 1 ? run[run.length - 1]! - run[0]! : 0;
       if (length > 150) lines.push(...longStreet(town, k, run, place));
-      run.length = 0;
+      run = [];
     };
     for (const u of [...stops].sort((a, b) => a - b)) {
       if (isBuilt(u, k) && !inPark(u, k)) run.push(u);
@@ -97,9 +113,6 @@ export function layOutTown(seed: number, town: Town, terrain: Terrain): TownPlan
     flush();
   }
 
-  for (const [k, places] of crossings) {
-    for (const u of places) if (isBuilt(u, k) && isBuilt(u, k + 1)) across.push({ u, k });
-  }
   lines.push(...crossStreets(town, across, place));
 
   return {
@@ -107,7 +120,7 @@ export function layOutTown(seed: number, town: Town, terrain: Terrain): TownPlan
     parks: parks
       .map((park) => parkRing(park, town, place))
       .filter((ring) => !ring.some((p) => terrain.clearance(p) < 60)),
-    gates: gatesOf(town, lines, place),
+    gates: gatesOf(town, lines, place, terrain),
   };
 }
 
@@ -173,6 +186,10 @@ function dropCrowded(places: readonly number[], fixed: readonly number[]): numbe
   );
 }
 
+/** Whether a long street is one of the pairs beside the city's main street that run one way each. */
+export const isOneWay = (town: Town, k: number): boolean =>
+  town.size === 'city' && k !== 0 && Math.abs(k) <= 2;
+
 /** One long street, cut at the town's middle where names carry a direction. */
 function longStreet(
   town: Town,
@@ -185,7 +202,7 @@ function longStreet(
       ? town.size === 'city'
         ? 'secondary'
         : 'tertiary'
-      : k % 6 === 0 && town.size !== 'village'
+      : (k % 6 === 0 && town.size !== 'village') || isOneWay(town, k)
         ? 'tertiary'
         : 'residential';
   const v = k * town.blockDepth;
@@ -260,7 +277,8 @@ function gatesOf(
   town: Town,
   lines: readonly StreetLine[],
   place: (u: number, v: number) => Point,
-): { at: Point; outside: Point }[] {
+  terrain: Terrain,
+): Gate[] {
   const ends: Point[] = [];
   for (const kind of [`${town.index}/a0`, `${town.index}/x0`]) {
     const points = lines
@@ -286,7 +304,8 @@ function gatesOf(
     const dx = at[0] - middle[0];
     const dy = at[1] - middle[1];
     const length = Math.max(1, Math.sqrt(dx * dx + dy * dy));
-    return { at, outside: [at[0] + (dx / length) * 330, at[1] + (dy / length) * 330] as Point };
+    const outside: Point = [at[0] + (dx / length) * 330, at[1] + (dy / length) * 330];
+    return { at, outside, isDry: terrain.clearance(outside) > 190 };
   });
 }
 

@@ -74,9 +74,11 @@ export function placeTowns(seed: number, terrain: Terrain): Town[] {
 
   const [cityName, ...townNames] = NAMES;
   for (let tries = 0; towns.length === 0 && tries < 5_000; tries++) {
-    const at: Point = [chance.between(1_000, 9_500), chance.between(-5_000, 5_000)];
+    const at: Point = [chance.between(6_000, 12_000), chance.between(-4_500, 4_500)];
     const dry = terrain.clearance(at);
-    if (dry > 1_500 && dry < 2_600) add(cityName!, 'city', at, 2_500, false);
+    // By the sound, and by no lake: what is near is the water to the east.
+    const east = terrain.clearance([at[0] + dry + 60, at[1]]);
+    if (dry > 1_150 && dry < 1_700 && east < 160) add(cityName!, 'city', at, 2_750, false);
   }
   for (const [k, name] of townNames.entries()) {
     const radius =

@@ -1,7 +1,9 @@
-import type { OsmMember, OsmNode, OsmRelation, OsmWay, Tags } from '../osm-model';
+import type { OsmData, OsmMember } from '../osm-model';
 import { writeOsmPbf } from '../osm-pbf-writer';
 import { makeCounty, type County } from './county';
-import { toLonLat, type Point } from './plane';
+import { OsmBook } from './osm-book';
+import { writeStreets } from './write-streets';
+import type { Point } from './plane';
 
 /** A way may hold at most 2,000 nodes (OpenStreetMap's own limit); long shores are cut well below. */
 const LONGEST_WAY = 900;
@@ -14,15 +16,13 @@ export function countyToPbf(county: County): Uint8Array {
   return writeOsmPbf(countyToOsm(county), 'thawline-county');
 }
 
-export function countyToOsm(county: County): {
-  nodes: OsmNode[];
-  ways: OsmWay[];
-  relations: OsmRelation[];
-} {
+export function countyToOsm(county: County): OsmData {
   const book = new OsmBook();
   writeStreets(county, book);
   writeShores(county, book);
   for (const { at, tags } of county.places.points) book.node(at, tags);
+  for (const { ring, kind } of county.places.buildings)
+    book.way(book.ring(ring), { building: kind });
   for (const address of county.addresses) {
     book.node(address.at, {
       'addr:housenumber': String(address.number),
@@ -33,69 +33,6 @@ export function countyToOsm(county: County): {
     });
   }
   return book;
-}
-
-class OsmBook {
-  readonly nodes: OsmNode[] = [];
-  readonly ways: OsmWay[] = [];
-  readonly relations: OsmRelation[] = [];
-
-  node(at: Point, tags: Tags = {}): number {
-    const [lon, lat] = toLonLat(at);
-    const id = this.nodes.length + 1;
-    this.nodes.push({ id, lon, lat, tags });
-    return id;
-  }
-
-  way(refs: readonly number[], tags: Tags): number {
-    const id = this.ways.length + 1;
-    this.ways.push({ id, refs, tags });
-    return id;
-  }
-
-  relation(members: readonly OsmMember[], tags: Tags): void {
-    this.relations.push({ id: this.relations.length + 1, members, tags });
-  }
-
-  /** A closed ring's nodes; the last is the first. */
-  ring(points: readonly Point[]): number[] {
-    const refs = points.slice(0, -1).map((p) => this.node(p));
-    return [...refs, refs[0]!];
-  }
-}
-
-/** Stretches that follow each other along one street become one way. */
-function writeStreets(county: County, book: OsmBook): void {
-  const junctions = county.graph.nodes.map((at) => book.node(at));
-  let refs: number[] = [];
-  let line = -1;
-  let end = -1;
-  const flush = (): void => {
-    if (refs.length > 1) book.way(refs, streetTags(county, line));
-    refs = [];
-  };
-  for (const stretch of county.graph.stretches) {
-    if (stretch.line !== line || stretch.from !== end) {
-      flush();
-      line = stretch.line;
-      refs = [junctions[stretch.from]!];
-    }
-    for (const p of stretch.points.slice(1, -1)) refs.push(book.node(p));
-    refs.push(junctions[stretch.to]!);
-    end = stretch.to;
-  }
-  flush();
-}
-
-function streetTags(county: County, index: number): Tags {
-  const line = county.lines[index]!;
-  const name = county.streetNames.get(line.street);
-  return {
-    highway: line.streetClass,
-    ...(name ? { name: name.name } : {}),
-    ...(name?.ref ? { ref: name.ref } : {}),
-    ...(line.isBridge ? { bridge: 'yes', layer: '1' } : {}),
-  };
 }
 
 function writeShores({ terrain, parks, places }: County, book: OsmBook): void {

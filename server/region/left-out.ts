@@ -1,0 +1,35 @@
+import { roadClassOf } from './map-layers';
+import type { OsmExtract } from './osm-extract';
+import type { Tags } from './osm-model';
+import type { LeftOut } from './region-data';
+
+/** What of an extract cannot be used, for the result page. */
+export function leftOutOf(extract: OsmExtract): LeftOut[] {
+  let streetless = 0;
+  let cut = 0;
+  let gone = 0;
+  const look = (tags: Tags): void => {
+    if (tags['addr:housenumber'] && !tags['addr:street'] && !tags['addr:place']) streetless++;
+  };
+  for (const { tags } of extract.namedNodes) look(tags);
+  for (const { tags, refs } of extract.ways.values()) {
+    look(tags);
+    if (roadClassOf(tags) === null) continue;
+    const missing = refs.filter((ref) => extract.at(ref) === null).length;
+    if (missing > refs.length - 2) gone++;
+    else if (missing > 0) cut++;
+  }
+  return [
+    {
+      what: 'House numbers',
+      count: streetless,
+      why: 'they name no street',
+    },
+    {
+      what: 'Ends of roads',
+      count: cut,
+      why: 'the extract was cut there and lacks their points',
+    },
+    { what: 'Roads', count: gone, why: 'the extract lacks all but one of their points' },
+  ].filter(({ count }) => count > 0);
+}
