@@ -25,6 +25,7 @@ import { serveSockets } from './realtime/sockets';
 import type { Live } from './realtime/live';
 import { personOf, signInDesk } from './staff/person';
 import { staffRoutes } from './staff/staff-routes';
+import { stormRoadRoutes } from './storm-roads/storm-road-routes';
 import { stormRoutes } from './storms/storm-routes';
 import { technicianRoutes } from './technicians/technician-routes';
 import { messageRoutes } from './texts/message-routes';
@@ -87,6 +88,7 @@ export async function createApp(given: Omit<Context, 'live'>): Promise<App> {
     ...callRoutes(context),
     ...regionRoutes(context),
     ...areaRoutes(context),
+    ...stormRoadRoutes(context),
     ...technicianRoutes(context),
     ...planRoutes(context),
     ...stopRoutes(context),

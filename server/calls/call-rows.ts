@@ -28,6 +28,7 @@ interface StoredCall {
   claim_until: Date | null;
   claim_name: string | null;
   danger: number;
+  cut_off: number;
   source: CallRow['source'];
   skills: unknown;
   parts: unknown;
@@ -55,7 +56,7 @@ export async function callRows(
     `SELECT c.id, c.storm_id, c.number, c.state, c.version, c.received_at, c.settled_at, c.name,
             c.phone, c.address_text, c.unit_no, c.lon, c.lat, c.address_kind, c.area_id,
             c.power_out_at, c.restored_at, c.claim_user_id, c.claim_until, u.name AS claim_name,
-            c.danger, c.source, c.skills, c.parts, s.technician_id, s.eta_at,
+            c.danger, c.cut_off, c.source, c.skills, c.parts, s.technician_id, s.eta_at,
             (SELECT COUNT(*) FROM messages m
               WHERE m.call_id = c.id AND m.direction = 'in' AND m.read_at IS NULL) AS unread
        FROM calls c
@@ -101,6 +102,7 @@ function toRow(call: StoredCall, units: readonly UnitRow[], now: Instant): CallR
     technicianId: call.technician_id,
     etaAt: call.eta_at?.getTime() ?? null,
     danger: Boolean(call.danger),
+    cutOff: Boolean(call.cut_off),
     unreadTexts: Number(call.unread),
     source: call.source,
   };

@@ -8,6 +8,7 @@ import { readSettings } from '../office/settings';
 import { planDtos } from '../routes/plan-rows';
 import { stopCards } from '../routes/stop-cards';
 import { stopDtos } from '../routes/stop-rows';
+import { stormRoadDtos } from '../storm-roads/storm-road-rows';
 import { stormDto } from '../storms/storm-queries';
 import { technicianDtos } from '../technicians/technician-rows';
 import { messageDtos } from '../texts/message-rows';
@@ -119,6 +120,12 @@ async function boardChanges(
       kind: 'areas',
       areas: await areaDtos(sequelize, { ids: [...touched.areas] }, tx),
       gone: [...touched.areasGone],
+    });
+  if (touched.stormRoads.size + touched.stormRoadsGone.size > 0)
+    changes.push({
+      kind: 'storm-roads',
+      roads: await stormRoadDtos({ ids: [...touched.stormRoads] }, tx),
+      gone: [...touched.stormRoadsGone],
     });
   if (touched.technicians.size > 0)
     changes.push({

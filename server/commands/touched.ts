@@ -5,6 +5,8 @@ export class Touched {
   readonly technicians = new Set<string>();
   readonly areas = new Set<string>();
   readonly areasGone = new Set<string>();
+  readonly stormRoads = new Set<string>();
+  readonly stormRoadsGone = new Set<string>();
   readonly plans = new Set<string>();
   readonly messages = new Set<string>();
   storm = false;

@@ -8,6 +8,7 @@ import * as routes from './migrations/0004-routes';
 import * as texts from './migrations/0005-texts';
 import * as nightLogs from './migrations/0006-night-logs';
 import * as locksInOrder from './migrations/0007-locks-in-order';
+import * as stormRoads from './migrations/0008-storm-roads';
 
 /** Runs one statement of a migration. */
 export type Run = (statement: string) => Promise<void>;
@@ -25,6 +26,7 @@ const MIGRATIONS: Readonly<Record<string, Migration>> = {
   '0005-texts': texts,
   '0006-night-logs': nightLogs,
   '0007-locks-in-order': locksInOrder,
+  '0008-storm-roads': stormRoads,
 };
 
 /** Brings the schema up to date; safe when two processes start at once. @returns names newly applied */

@@ -6,6 +6,7 @@ import { HouseholdRecord } from '../calls/household-record';
 import { NightLogRecord, NightLogRowRecord } from '../night-log/night-log-record';
 import { PlanRecord, StopRecord } from '../routes/stop-record';
 import { UserRecord } from '../staff/user-record';
+import { StormRoadRecord } from '../storm-roads/storm-road-record';
 import { StormRecord } from '../storms/storm-record';
 import { ShiftRecord, TechnicianRecord } from '../technicians/technician-record';
 import { MessageRecord } from '../texts/message-record';
@@ -18,6 +19,7 @@ export function registerRecords(sequelize: Sequelize): void {
     TechnicianRecord,
     ShiftRecord,
     AreaRecord,
+    StormRoadRecord,
     HouseholdRecord,
     CallRecord,
     ColdUnitRecord,

@@ -45,6 +45,8 @@ const PROBLEMS: Readonly<Record<ProblemCode, { status: number; title: string }>>
   'storm-already-open': { status: 409, title: 'A storm is open already' },
   'times-disagree': { status: 422, title: 'The times do not fit together' },
   'outline-crosses-itself': { status: 422, title: 'The outline crosses itself' },
+  'storm-road-unfit': { status: 422, title: 'That storm road does not fit' },
+  'nothing-to-undo': { status: 409, title: 'Nothing is left to take back' },
   'no-phone': { status: 409, title: 'The call has no phone number' },
   'opted-out': { status: 409, title: 'This number wants no texts' },
   'log-not-readable': { status: 422, title: 'The log cannot be read' },

@@ -3,6 +3,7 @@ import { orderFrom, runCommand } from '../commands/run-command';
 import type { Context } from '../context';
 import type { SomeHandlers } from '../http/bind-routes';
 import { findStorm } from '../storms/storm-queries';
+import { measuredSpeeds } from '../storm-roads/measured-speeds';
 import { technicianDtos } from '../technicians/technician-rows';
 import { auditTrail } from './audit-trail';
 import { changeSettings } from './change-settings';
@@ -10,7 +11,15 @@ import { drainOf } from './drain';
 import { drainCsv } from './drain-csv';
 import { readSettings } from './settings';
 
-type Names = 'drain' | 'settings' | 'changeSettings' | 'audit' | 'officeAudit' | 'listTechnicians';
+type Names =
+  | 'drain'
+  | 'settings'
+  | 'changeSettings'
+  | 'measuredSpeeds'
+  | 'resetMeasuredSpeeds'
+  | 'audit'
+  | 'officeAudit'
+  | 'listTechnicians';
 
 const DEFAULT_BUCKET_MINUTES = 30;
 
@@ -37,6 +46,13 @@ export function officeRoutes(context: Context): SomeHandlers<Names> {
     changeSettings: ({ body, person }) =>
       runCommand(context, orderFrom('changeSettings', person, body), (job) =>
         changeSettings(job, body),
+      ),
+
+    measuredSpeeds: () => measuredSpeeds(context.sequelize),
+
+    resetMeasuredSpeeds: ({ body, person }) =>
+      runCommand(context, orderFrom('resetMeasuredSpeeds', person, body), (job) =>
+        changeSettings(job, { ...body, measuredFrom: job.now }),
       ),
 
     audit: async ({ params, query }) => {

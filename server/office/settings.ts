@@ -18,6 +18,16 @@ export const DEFAULT_SETTINGS: Omit<Settings, 'version'> = {
   circuity: 1.35,
   // Our estimate for mixed town and country roads after a storm.
   speedMph: 25,
+  // Our estimates, no source: what is left of a road's usual speed at each time of day, and in a storm
+  // with wet roads, branches and lights out on top of it.
+  morningPercent: 85,
+  dayPercent: 95,
+  eveningPercent: 85,
+  nightPercent: 100,
+  stormPercent: 85,
+  // Off until a manager has looked at what the drives say.
+  usesMeasuredSpeeds: false,
+  measuredFrom: null,
   // Our estimate; the company's own times replace it.
   serviceMinutes: 45,
   medicineWeight: 5,

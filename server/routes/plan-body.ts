@@ -110,6 +110,14 @@ function unplanned(facts: PlanFacts, plan: Pick<Plan, 'unassigned'>): PlanDto['u
         return [
           { callId: call.id, reason: 'unlocated', words: 'Its place is not on the map yet.' },
         ];
+      if (call.cutOff)
+        return [
+          {
+            callId: call.id,
+            reason: 'cut-off',
+            words: 'Cut off: every road there is closed or flooded now.',
+          },
+        ];
       if (!hasTechnicians)
         return [
           {

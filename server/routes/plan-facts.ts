@@ -28,6 +28,8 @@ export interface CallToPlan {
   readonly state: CallState;
   readonly receivedAt: Instant;
   readonly lonLat: LonLat | null;
+  /** No technician can drive there now. */
+  readonly cutOff: boolean;
   readonly skills: readonly Skill[];
   readonly parts: readonly Part[];
   readonly compartments: readonly CompartmentAtStake[];
@@ -170,11 +172,12 @@ async function callsToPlan(
     received_at: Date;
     lon: number | null;
     lat: number | null;
+    cut_off: number;
     skills: unknown;
     parts: unknown;
   }>(
     sequelize,
-    `SELECT id, state, received_at, lon, lat, skills, parts FROM calls
+    `SELECT id, state, received_at, lon, lat, cut_off, skills, parts FROM calls
       WHERE storm_id = ? AND state IN ${toVisit} ORDER BY number`,
     [stormId],
     tx,
@@ -208,6 +211,7 @@ async function callsToPlan(
         state: call.state,
         receivedAt: call.received_at.getTime(),
         lonLat: call.lon === null || call.lat === null ? null : [call.lon, call.lat],
+        cutOff: Boolean(call.cut_off),
         skills: json<Skill[]>(call.skills),
         parts: json<Part[]>(call.parts),
         compartments: (atStake.get(call.id) ?? []).map((one) => ({

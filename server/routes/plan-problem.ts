@@ -57,7 +57,7 @@ export function planProblem(facts: PlanFacts): Problem {
     }
   }
   for (const call of facts.calls.values())
-    if (!kept.has(call.id) && isPlannable(call.state) && call.lonLat)
+    if (!kept.has(call.id) && isPlannable(call.state) && call.lonLat && !call.cutOff)
       jobs.set(call.id, jobOf(call, place(call.lonLat), facts));
 
   return {

@@ -52,6 +52,7 @@ function timesOf(job: Job, routes: Routes, technicianId: string): StopTimes[] {
         lonLat: lon == null || lat == null ? null : [lon, lat],
         arriveAt: stop.arriveAt.getTime(),
         driveMinutes: stop.driveMinutes,
+        isUnreachable: stop.unreachable ?? false,
       };
     }),
     straightLineTravel(travelBySettings(routes.settings)),
@@ -61,6 +62,8 @@ function timesOf(job: Job, routes: Routes, technicianId: string): StopTimes[] {
 
 function setTimes(stop: StopRecord, times: StopTimes | undefined): void {
   if (!times) return;
+  // Assigned only when it differs: an equal value would still count as a change of the row.
+  if ((stop.unreachable ?? false) === times.isReachable) stop.unreachable = !times.isReachable;
   const isNews =
     Math.abs(times.arriveAt - stop.arriveAt.getTime()) >= SAME_TIME_MS ||
     Math.abs(times.finishAt - stop.finishAt.getTime()) >= SAME_TIME_MS ||

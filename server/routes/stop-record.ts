@@ -26,6 +26,11 @@ export class StopRecord extends Model<
   /** The arrival time that the customer was last told. */
   declare toldEtaAt: CreationOptional<Date | null>;
   declare driveMinutes: number;
+  /** No open road leads there from the place before it. */
+  declare unreachable: CreationOptional<boolean>;
+  /** Where the van was known to be when it set off. */
+  declare travelFromLon: CreationOptional<number | null>;
+  declare travelFromLat: CreationOptional<number | null>;
   declare because: string;
   declare endedBecause: CreationOptional<string | null>;
   declare acceptedAt: CreationOptional<Date | null>;
@@ -49,6 +54,9 @@ export class StopRecord extends Model<
         etaAt: DataTypes.DATE(3),
         toldEtaAt: DataTypes.DATE(3),
         driveMinutes: { type: DataTypes.DOUBLE, allowNull: false },
+        unreachable: { type: DataTypes.BOOLEAN, allowNull: false, defaultValue: false },
+        travelFromLon: DataTypes.DOUBLE,
+        travelFromLat: DataTypes.DOUBLE,
         because: { type: DataTypes.STRING(300), allowNull: false },
         endedBecause: DataTypes.STRING(300),
         acceptedAt: DataTypes.DATE(3),

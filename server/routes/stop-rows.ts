@@ -47,6 +47,7 @@ export function toStopDto(stop: StopRecord): StopDto {
     finishAt: stop.finishAt.getTime(),
     etaAt: stop.etaAt?.getTime() ?? null,
     driveMinutes: stop.driveMinutes,
+    isUnreachable: stop.unreachable,
     because: stop.because,
     version: stop.version,
   };

@@ -20,6 +20,8 @@ export class StormRecord extends Model<
   /** How many calls the storm has had; the next call's number is one more. */
   declare callsTaken: CreationOptional<number>;
   declare planEpoch: CreationOptional<number>;
+  /** Names the road conditions that the routes in force are timed by; empty until any were. */
+  declare roadsKey: CreationOptional<string>;
   declare version: CreationOptional<number>;
 
   static register(sequelize: Sequelize): void {
@@ -32,6 +34,7 @@ export class StormRecord extends Model<
         closedAt: DataTypes.DATE(3),
         callsTaken: { type: DataTypes.INTEGER, allowNull: false, defaultValue: 0 },
         planEpoch: { type: DataTypes.INTEGER, allowNull: false, defaultValue: 0 },
+        roadsKey: { type: DataTypes.STRING(64), allowNull: false, defaultValue: '' },
         version: { type: DataTypes.INTEGER, allowNull: false, defaultValue: 0 },
       },
       { sequelize, tableName: 'storms' },

@@ -11,6 +11,7 @@ import { asOfOneMoment } from '../db/transaction';
 import type { SomeHandlers } from '../http/bind-routes';
 import { proposedPlan } from '../routes/plan-rows';
 import { stopDtos } from '../routes/stop-rows';
+import { stormRoadDtos } from '../storm-roads/storm-road-rows';
 import { technicianDtos } from '../technicians/technician-rows';
 import { closeStorm } from './close-storm';
 import { findStorm, listStorms, toStormDto } from './storm-queries';
@@ -73,6 +74,7 @@ export function boardPicture(context: Context, stormId: string): Promise<BoardPi
       technicians: await technicianDtos(context.sequelize, 'all', tx),
       stops: await stopDtos(context.sequelize, { stormId }, tx),
       areas: await areaDtos(context.sequelize, { stormId }, tx),
+      stormRoads: await stormRoadDtos({ stormId, now }, tx),
       plan: await proposedPlan(stormId, tx),
     };
   });

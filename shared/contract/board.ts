@@ -4,6 +4,7 @@ import { CallRow } from './calls';
 import { Moment } from './common';
 import { StormDto } from './office';
 import { PlanDto, StopDto, TechnicianDto } from './routes';
+import { StormRoadDto } from './storm-roads';
 
 /** The whole picture of a storm as of change `n` of its board's stream. */
 export const BoardPicture = z.strictObject({
@@ -15,6 +16,8 @@ export const BoardPicture = z.strictObject({
   /** Stops that are still to be done. */
   stops: z.array(StopDto),
   areas: z.array(AreaDto),
+  /** Also those that were lifted lately, so that a lifting can be taken back. */
+  stormRoads: z.array(StormRoadDto),
   /** The newest proposal that nobody has published or discarded. */
   plan: PlanDto.nullable(),
 });

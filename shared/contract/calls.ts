@@ -134,6 +134,8 @@ export const CallRow = z.strictObject({
   danger: z.boolean(),
   /** Texts from the customer that nobody has read. */
   unreadTexts: z.int().nonnegative(),
+  /** No technician can drive there now: every road is closed or flooded. */
+  cutOff: z.boolean(),
   source: z.enum(['phone', 'night-log', 'customer']),
 });
 export type CallRow = z.infer<typeof CallRow>;

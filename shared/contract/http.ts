@@ -9,6 +9,7 @@ import * as nightLogs from './night-logs';
 import * as office from './office';
 import type { PATHS, RouteName } from './paths';
 import * as routes from './routes';
+import * as stormRoads from './storm-roads';
 
 /** Who may use a route. The server checks it in one place, before anything else is read. */
 export type Audience = 'anyone' | readonly Role[];
@@ -191,6 +192,45 @@ export const HTTP = {
     reply: z.strictObject({ pockets: z.array(areas.PocketDto) }),
   },
 
+  addStormRoad: {
+    summary: 'Close a road, or say that it is flooded or slow',
+    who: DESK,
+    body: stormRoads.AddStormRoad,
+    reply: stormRoads.StormRoadDto,
+    status: 201,
+  },
+  reportStormRoad: {
+    summary: 'Report a road that nobody passes, from where I am',
+    who: TECHNICIAN,
+    body: stormRoads.ReportStormRoad,
+    reply: Done,
+    status: 201,
+  },
+  changeStormRoad: {
+    summary: 'Change a storm road; routes and arrival times follow',
+    who: DESK,
+    body: stormRoads.ChangeStormRoad,
+    reply: stormRoads.StormRoadDto,
+  },
+  confirmStormRoad: {
+    summary: 'Confirm a road that a technician reported',
+    who: DESK,
+    body: stormRoads.ConfirmStormRoad,
+    reply: stormRoads.StormRoadDto,
+  },
+  liftStormRoad: {
+    summary: 'Open the road again, or dismiss a report',
+    who: DESK,
+    body: stormRoads.LiftStormRoad,
+    reply: stormRoads.StormRoadDto,
+  },
+  undoStormRoad: {
+    summary: 'Take the latest change of a storm road back',
+    who: DESK,
+    body: stormRoads.UndoStormRoad,
+    reply: stormRoads.StormRoadUndone,
+  },
+
   listTechnicians: {
     summary: 'All technicians, also while no storm is open',
     who: DESK,
@@ -362,6 +402,17 @@ export const HTTP = {
     summary: 'Change settings',
     who: OFFICE,
     body: office.ChangeSettings,
+    reply: office.Settings,
+  },
+  measuredSpeeds: {
+    summary: 'What measured drives say of the speeds of roads',
+    who: OFFICE,
+    reply: office.MeasuredSpeedsDto,
+  },
+  resetMeasuredSpeeds: {
+    summary: 'Forget the drives measured so far; speeds are learned anew',
+    who: OFFICE,
+    body: office.ResetMeasuredSpeeds,
     reply: office.Settings,
   },
   listUsers: {

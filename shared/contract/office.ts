@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import { ROAD_CLASSES } from '../domain/roads/road-class';
 import {
   Command,
   filledLine,
@@ -49,6 +50,8 @@ export type StormDto = z.infer<typeof StormDto>;
 export const OpenStorm = Command.extend({ stormId: Id, name: filledLine(80) });
 export const CloseStorm = VersionedCommand;
 
+const SpeedPercent = z.int().min(40).max(130);
+
 export const Settings = z.strictObject({
   companyName: z.string(),
   companyPhone: z.string(),
@@ -61,6 +64,15 @@ export const Settings = z.strictObject({
   /** Road distance over straight-line distance. */
   circuity: z.number().min(1).max(3),
   speedMph: z.number().min(5).max(80),
+  /** How fast roads are driven at each time of day and in a storm, of their usual speed. */
+  morningPercent: SpeedPercent,
+  dayPercent: SpeedPercent,
+  eveningPercent: SpeedPercent,
+  nightPercent: SpeedPercent,
+  stormPercent: z.int().min(30).max(100),
+  /** Whether measured drives correct the speeds of the road classes, and from when on they count. */
+  usesMeasuredSpeeds: z.boolean(),
+  measuredFrom: Moment.nullable(),
   serviceMinutes: z.int().min(5).max(480),
   /** How much more a medicine counts than its money value. */
   medicineWeight: z.number().min(1).max(100),
@@ -74,6 +86,28 @@ export const ChangeSettings = VersionedCommand.extend({
   companyName: filledLine(80).optional(),
   companyPhone: PhoneNumber.optional(),
 });
+
+/** What measured drives say of each class of road. */
+export const MeasuredSpeedsDto = z.strictObject({
+  /** `null`: all drives count that were ever measured. */
+  since: Moment.nullable(),
+  isUsed: z.boolean(),
+  drives: z.int(),
+  /** Drives that tell nothing, and why, most frequent first. */
+  leftOut: z.array(z.strictObject({ why: z.string(), drives: z.int() })),
+  classes: z.array(
+    z.strictObject({
+      roadClass: z.enum(ROAD_CLASSES),
+      /** Weighed by what share of each drive was on this class. */
+      drives: z.number(),
+      /** Multiplies the class's speed. */
+      factor: z.number(),
+      usualKmh: z.number(),
+    }),
+  ),
+});
+export type MeasuredSpeedsDto = z.infer<typeof MeasuredSpeedsDto>;
+export const ResetMeasuredSpeeds = VersionedCommand;
 
 /** Who is signed in and what every screen needs to know first. */
 export const Me = z.strictObject({

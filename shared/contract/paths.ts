@@ -36,6 +36,13 @@ export const PATHS = {
   removeArea: ['POST', '/api/areas/:areaId/removal'],
   pockets: ['GET', '/api/storms/:stormId/pockets'],
 
+  addStormRoad: ['POST', '/api/storms/:stormId/storm-roads'],
+  reportStormRoad: ['POST', '/api/day/storm-roads'],
+  changeStormRoad: ['PATCH', '/api/storm-roads/:stormRoadId'],
+  confirmStormRoad: ['POST', '/api/storm-roads/:stormRoadId/confirmation'],
+  liftStormRoad: ['POST', '/api/storm-roads/:stormRoadId/lifting'],
+  undoStormRoad: ['POST', '/api/storm-roads/:stormRoadId/undoing'],
+
   listTechnicians: ['GET', '/api/technicians'],
   addTechnician: ['POST', '/api/technicians'],
   changeTechnician: ['PATCH', '/api/technicians/:technicianId'],
@@ -71,6 +78,8 @@ export const PATHS = {
   drain: ['GET', '/api/storms/:stormId/drain'],
   settings: ['GET', '/api/settings'],
   changeSettings: ['PATCH', '/api/settings'],
+  measuredSpeeds: ['GET', '/api/measured-speeds'],
+  resetMeasuredSpeeds: ['POST', '/api/measured-speeds/reset'],
   listUsers: ['GET', '/api/users'],
   addUser: ['POST', '/api/users'],
   changeUser: ['PATCH', '/api/users/:userId'],

@@ -4,6 +4,7 @@ import type { MessageDto } from './messages';
 import type { NightLogDto } from './night-logs';
 import type { Settings, StormDto } from './office';
 import type { PlanDto, Position, StopCard, StopDto, TechnicianDto } from './routes';
+import type { StormRoadDto } from './storm-roads';
 
 /**
  * One change to the picture that dispatchers, managers and owners share. It carries whole rows,
@@ -13,6 +14,11 @@ export type BoardChange =
   | { readonly kind: 'calls'; readonly calls: readonly CallRow[] }
   | { readonly kind: 'stops'; readonly stops: readonly StopDto[] }
   | { readonly kind: 'areas'; readonly areas: readonly AreaDto[]; readonly gone: readonly string[] }
+  | {
+      readonly kind: 'storm-roads';
+      readonly roads: readonly StormRoadDto[];
+      readonly gone: readonly string[];
+    }
   | { readonly kind: 'technicians'; readonly technicians: readonly TechnicianDto[] }
   | { readonly kind: 'plan'; readonly plan: PlanDto }
   | { readonly kind: 'messages'; readonly messages: readonly MessageDto[] }

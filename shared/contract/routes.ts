@@ -84,6 +84,8 @@ export const StopDto = z.strictObject({
   finishAt: Moment,
   etaAt: Moment.nullable(),
   driveMinutes: z.number().nonnegative(),
+  /** No open road leads from the stop before to this one; its times are those of before. */
+  isUnreachable: z.boolean(),
   /** Why it has this place, in words. */
   because: z.string(),
   version: Version,
@@ -161,7 +163,7 @@ export const PlanDto = z.strictObject({
   unplanned: z.array(
     z.strictObject({
       callId: Id,
-      reason: z.enum(['skill', 'part', 'no-shift', 'capacity', 'unlocated']),
+      reason: z.enum(['skill', 'part', 'no-shift', 'capacity', 'unlocated', 'cut-off']),
       words: z.string(),
     }),
   ),

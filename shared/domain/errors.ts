@@ -23,6 +23,8 @@ export type ProblemCode =
   | 'storm-already-open'
   | 'times-disagree'
   | 'outline-crosses-itself'
+  | 'storm-road-unfit'
+  | 'nothing-to-undo'
   | 'opted-out'
   | 'no-phone'
   | 'log-not-readable'

@@ -84,12 +84,16 @@ export interface TimedStop extends RouteStop {
   readonly lonLat: LonLat | null;
   readonly arriveAt: Instant;
   readonly driveMinutes: number;
+  /** As it was found last. */
+  readonly isUnreachable?: boolean;
 }
 
 export interface StopTimes {
   readonly arriveAt: Instant;
   readonly finishAt: Instant;
   readonly driveMinutes: number;
+  /** False where no open road leads there from the place before; the drive is then the one of before. */
+  readonly isReachable: boolean;
 }
 
 export interface RouteStart {
@@ -120,7 +124,14 @@ export function routeTimes(
     if (isUnderWay(stop.state)) {
       place = stop.lonLat ?? place;
       free = Math.max(now, stop.arriveAt + service);
-      return { arriveAt: stop.arriveAt, finishAt: free, driveMinutes: stop.driveMinutes };
+      // Whoever is there has reached it; for one on the way the command that moved it knows better.
+      const isReachable = stop.state === 'on-site' || !stop.isUnreachable;
+      return {
+        arriveAt: stop.arriveAt,
+        finishAt: free,
+        driveMinutes: stop.driveMinutes,
+        isReachable,
+      };
     }
     const promised = Math.max(shift, shiftOf(shifts, stop.arriveAt));
     const begins = shifts[promised]?.startsAt ?? -Infinity;
@@ -128,14 +139,17 @@ export function routeTimes(
     if (promised > shift && begins > free) place = home;
     shift = promised;
     free = Math.max(free, begins);
-    const driveMs = stop.lonLat ? drive(travel, place, stop.lonLat) : 0;
+    const found = stop.lonLat ? drive(travel, place, stop.lonLat) : 0;
+    const isReachable = Number.isFinite(found);
+    // A stop stays where it is and shows some time; a warning says that it cannot be kept.
+    const driveMs = isReachable ? found : stop.driveMinutes * MINUTE_MS;
     const arriveAt = free + driveMs;
     place = stop.lonLat ?? place;
     free = arriveAt + service;
-    return { arriveAt, finishAt: free, driveMinutes: driveMs / MINUTE_MS };
+    return { arriveAt, finishAt: free, driveMinutes: driveMs / MINUTE_MS, isReachable };
   });
 }
 
-/** Milliseconds from door to door. */
+/** Milliseconds from door to door; Infinity where no open road leads. */
 export const drive = (travel: TravelTimes, from: LonLat, to: LonLat): number =>
   (travel.matrix([from, to])[1] ?? 0) * 1000;

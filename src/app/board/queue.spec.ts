@@ -55,6 +55,7 @@ const aCall = (number: number, part: Partial<CallRow> = {}): CallRow => ({
   etaAt: null,
   danger: false,
   unreadTexts: 0,
+  cutOff: false,
   source: 'phone',
   ...part,
 });

@@ -4,6 +4,7 @@ import type { CallRow } from '@shared/contract/calls';
 import type { Settings, StormDto } from '@shared/contract/office';
 import type { BoardChange } from '@shared/contract/realtime';
 import type { PlanDto, StopDto, TechnicianDto } from '@shared/contract/routes';
+import type { StormRoadDto } from '@shared/contract/storm-roads';
 
 /** The board's rows by id. Immutable: a change makes a new one that shares what did not change. */
 export interface Picture {
@@ -13,6 +14,7 @@ export interface Picture {
   /** Stops that are still to be done. */
   readonly stops: ReadonlyMap<string, StopDto>;
   readonly areas: ReadonlyMap<string, AreaDto>;
+  readonly stormRoads: ReadonlyMap<string, StormRoadDto>;
   /** A proposal that nobody has published or discarded. */
   readonly plan: PlanDto | null;
   /** Newer than the sign-in's, when they were changed since. */
@@ -27,6 +29,7 @@ export const pictureOf = (sent: BoardPicture): Picture => ({
   technicians: byId(sent.technicians),
   stops: byId(sent.stops),
   areas: byId(sent.areas),
+  stormRoads: byId(sent.stormRoads),
   plan: sent.plan,
   settings: null,
   messagesTick: 0,
@@ -65,6 +68,10 @@ class PictureDraft {
       case 'areas':
         this.write('areas', this.next.areas, change.areas);
         this.remove('areas', change.gone);
+        break;
+      case 'storm-roads':
+        this.write('stormRoads', this.next.stormRoads, change.roads);
+        this.remove('stormRoads', change.gone);
         break;
       case 'plan':
         this.writePlan(change.plan);
@@ -127,7 +134,7 @@ class PictureDraft {
     return known && known.at > (row.position?.at ?? 0) ? { ...row, position: known } : row;
   }
 
-  private remove(name: 'stops' | 'areas', ids: readonly string[]): void {
+  private remove(name: 'stops' | 'areas' | 'stormRoads', ids: readonly string[]): void {
     const gone = ids.filter((id) => this.next[name].has(id));
     if (gone.length === 0) return;
     const map = this.own<unknown>(name);
@@ -143,7 +150,7 @@ class PictureDraft {
   }
 }
 
-type RowsName = 'calls' | 'technicians' | 'stops' | 'areas';
+type RowsName = 'calls' | 'technicians' | 'stops' | 'areas' | 'stormRoads';
 
 interface Row {
   readonly id: string;

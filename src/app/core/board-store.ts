@@ -62,6 +62,7 @@ export class BoardStore {
   /** Stops that are still to be done, by id. */
   readonly stops = computed(() => this.picture()?.stops ?? NONE);
   readonly areas = computed(() => this.picture()?.areas ?? NONE);
+  readonly stormRoads = computed(() => this.picture()?.stormRoads ?? NONE);
   /** The newest proposal that nobody has published or discarded. */
   readonly plan = computed(() => this.picture()?.plan ?? null);
   readonly pockets = this.pocketsNow.asReadonly();
@@ -267,6 +268,8 @@ function onlyNewer(picture: Picture, change: BoardChange): BoardChange {
       return { ...change, stops: change.stops.filter(isNewer(picture.stops)) };
     case 'areas':
       return { ...change, areas: change.areas.filter(isNewer(picture.areas)) };
+    case 'storm-roads':
+      return { ...change, roads: change.roads.filter(isNewer(picture.stormRoads)) };
     case 'technicians':
       return { ...change, technicians: change.technicians.filter(isNewer(picture.technicians)) };
     default:

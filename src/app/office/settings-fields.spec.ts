@@ -1,12 +1,21 @@
 import { ChangeSettings, Settings } from '@shared/contract/office';
 import { aMe } from '../core/testing';
-import { SETTING_FIELDS, settingFault, settingText, settingValue } from './settings-fields';
+import { DRIVING_HOURS } from '@shared/domain/roads/driving-hours';
+import {
+  NOT_IN_FIELDS,
+  SETTING_FIELDS,
+  settingFault,
+  settingText,
+  settingValue,
+} from './settings-fields';
 
 const settings = aMe().settings;
 
 describe('the settings form', () => {
   it('has a field for every setting of the contract', () => {
-    const keys = Object.keys(Settings.shape).filter((key) => key !== 'version');
+    const keys = Object.keys(Settings.shape).filter(
+      (key) => !(NOT_IN_FIELDS as readonly string[]).includes(key),
+    );
     expect(SETTING_FIELDS.map(({ key }) => key).sort()).toEqual(keys.sort());
   });
 
@@ -41,6 +50,13 @@ describe('the settings form', () => {
     expect(settingValue(field('quietUntilMinute'), '07:30')).toBe(450);
     expect(settingValue(field('companyPhone'), '(252) 555-0142')).toBe('+12525550142');
     expect(settingValue(field('circuity'), '1,35')).toBe(1.35);
+  });
+
+  it('says the hours of each time of day as the rules have them', () => {
+    for (const { key, fromHour, untilHour } of DRIVING_HOURS) {
+      const { label } = SETTING_FIELDS.find((one) => one.key === `${key}Percent`)!;
+      expect(label).toContain(`${fromHour}:00 to ${untilHour}:00`);
+    }
   });
 
   it('names a source, or says that there is none, for every figure', () => {

@@ -1,7 +1,9 @@
 import type { Settings } from '@shared/contract/office';
 import { readPhone } from '@shared/domain/phone-number';
 
-export type SettingKey = Exclude<keyof Settings, 'version'>;
+/** Measured speeds are switched where they are shown, not in a field. */
+export const NOT_IN_FIELDS = ['version', 'usesMeasuredSpeeds', 'measuredFrom'] as const;
+export type SettingKey = Exclude<keyof Settings, (typeof NOT_IN_FIELDS)[number]>;
 
 export interface SettingField {
   readonly key: SettingKey;
@@ -20,6 +22,30 @@ const OUR_ESTIMATE = 'Our estimate, no source.';
 const FCC =
   '47 CFR 64.1200(c)(1) (FCC) allows solicitations by telephone from 8 a.m. to 9 p.m. where the ' +
   'called party is. These texts are no solicitations; the same hours are kept out of courtesy.';
+
+/** Hours are those of the road graph; a test holds the words to them. */
+function percentField(
+  key: SettingKey,
+  label: string,
+  least: number,
+  most: number,
+  what: string,
+): SettingField {
+  return {
+    key,
+    label,
+    kind: 'number',
+    unit: `% ${what}`,
+    least,
+    most,
+    isWhole: true,
+    meaning:
+      key === 'stormPercent'
+        ? 'Wet roads, branches and traffic lights without power, on every road that is open.'
+        : 'The usual speed is that of the road’s class, or the posted limit where that is lower.',
+    source: OUR_ESTIMATE,
+  };
+}
 
 /** Every setting in plain words. The ranges are the contract's; a test holds them to it. */
 export const SETTING_GROUPS: readonly {
@@ -141,6 +167,16 @@ export const SETTING_GROUPS: readonly {
         meaning: 'From arrival to departure, on average.',
         source: 'Our estimate, no source; your own times replace it.',
       },
+    ],
+  },
+  {
+    title: 'Speeds on the road',
+    fields: [
+      percentField('morningPercent', 'Morning, 6:00 to 9:00', 40, 130, 'of the usual speed'),
+      percentField('dayPercent', 'Day, 9:00 to 16:00', 40, 130, 'of the usual speed'),
+      percentField('eveningPercent', 'Evening, 16:00 to 19:00', 40, 130, 'of the usual speed'),
+      percentField('nightPercent', 'Night, 19:00 to 6:00', 40, 130, 'of the usual speed'),
+      percentField('stormPercent', 'In a storm, at any hour', 30, 100, 'of that again'),
     ],
   },
   {
