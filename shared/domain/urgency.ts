@@ -33,6 +33,7 @@ export interface Urgency {
   readonly atRiskAt: Instant | null;
   /** What can still be saved, US cents, medicine unweighted. */
   readonly valueAtRiskCents: number;
+  /** In words, what decides the call's place first. */
   readonly reasons: readonly string[];
 }
 
@@ -71,7 +72,7 @@ export function urgency(
   let saveByAt = Infinity;
   let atRiskAt = Infinity;
   let valueAtRiskCents = 0;
-  const reasons: string[] = [];
+  const reasons: Reason[] = [];
 
   for (const compartment of compartments) {
     if (!isLive(compartment, loss, now)) continue;
@@ -79,15 +80,18 @@ export function urgency(
     const leftMinutes = clock.saveByAt === null ? null : (clock.saveByAt - now) / MINUTE_MS;
     const spreadMinutes = Math.max(LEAST_MINUTES, leftMinutes ?? UNDATED_MINUTES);
     const weight = facts.kind === 'medicine' ? weights.medicine : 1;
+    const ownLane = laneOf(compartment, now);
+    const ownLoss = (weight * facts.valueCents) / spreadMinutes;
 
-    lane = Math.min(lane, laneOf(compartment, now)) as Lane;
-    lossPerMinuteCents += (weight * facts.valueCents) / spreadMinutes;
+    lane = Math.min(lane, ownLane) as Lane;
+    lossPerMinuteCents += ownLoss;
     valueAtRiskCents += facts.valueCents;
     saveByAt = Math.min(saveByAt, clock.saveByAt ?? Infinity);
     atRiskAt = Math.min(atRiskAt, clock.atRiskAt);
-    reasons.push(reasonOf(facts, leftMinutes, now >= clock.atRiskAt));
+    const words = reasonOf(facts, leftMinutes, now >= clock.atRiskAt);
+    reasons.push({ lane: ownLane, lossPerMinuteCents: ownLoss, words });
   }
-  if (reasons.length === 0) reasons.push('Nothing left to save: an ordinary repair');
+  reasons.sort((a, b) => a.lane - b.lane || b.lossPerMinuteCents - a.lossPerMinuteCents);
 
   return {
     lane,
@@ -96,8 +100,18 @@ export function urgency(
     saveByAt: saveByAt === Infinity ? null : saveByAt,
     atRiskAt: atRiskAt === Infinity ? null : atRiskAt,
     valueAtRiskCents,
-    reasons,
+    reasons:
+      reasons.length > 0
+        ? reasons.map(({ words }) => words)
+        : ['Nothing left to save: an ordinary repair'],
   };
+}
+
+/** What one compartment adds, in the order in which it is told. */
+interface Reason {
+  readonly lane: Lane;
+  readonly lossPerMinuteCents: number;
+  readonly words: string;
 }
 
 /** The order of the queue: lane, then what is lost per minute, then what comes due first. */

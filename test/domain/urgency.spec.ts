@@ -44,6 +44,14 @@ describe('urgency', () => {
     });
   });
 
+  it('tells first what decides the place of the call, in whatever order the units were named', () => {
+    const facts = [freezer(), insulin(95), food()];
+    const told = urgencyAfter(1, ...facts).reasons.map((reason) => reason.split(/ at risk|:/)[0]);
+    expect(told).toEqual(['Medicine', 'Fresh food', 'Freezer']);
+    expect(urgencyAfter(1, ...facts.reverse()).reasons).toHaveLength(3);
+    expect(urgencyAfter(1, ...facts).reasons[0]).toMatch(/^Medicine at risk/);
+  });
+
   it('gives a compartment at or past its save-by no urgency at all', () => {
     expect(urgencyAfter(4, food(), freezer())).toEqual(urgencyAfter(4, freezer()));
     expect(urgencyAfter(48, food(), freezer())).toEqual({
