@@ -50,9 +50,11 @@ describe('readConfig', () => {
       },
       dataFolder: path.resolve('.data'),
       tilesFolder: path.resolve('tiles'),
+      regionFilesFolder: path.resolve('.data/region-files'),
+      mostRegionUploadBytes: 2_000_000_000,
       clientFolder: path.resolve('dist/client'),
       regionZone: 'America/New_York',
-      defaultAreaCode: '201',
+      defaultAreaCode: '252',
       isDemo: false,
     });
   });
