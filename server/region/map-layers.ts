@@ -210,6 +210,7 @@ const PLACE_MINZOOM: Readonly<Record<string, number>> = {
   hamlet: 12,
   neighbourhood: 13,
   locality: 13,
+  farm: 14,
 };
 
 /** Which places have a name on the map, and from which zoom. */
@@ -235,6 +236,8 @@ const AMENITIES = new Set([
   'townhall',
   'library',
   'police',
+  'place_of_worship',
+  'ferry_terminal',
 ]);
 
 /** Names are set on straight stretches only; points that do not matter to the eye would break them. */

@@ -1,20 +1,16 @@
 import path from 'node:path';
 import { pino } from 'pino';
-import { chromium, type Page } from '@playwright/test';
+import type { Page } from '@playwright/test';
 import { randomUUID } from 'node:crypto';
-import type { AddressInfo } from 'node:net';
 import { machine } from '../../server/commands/actor';
 import { runCommand } from '../../server/commands/run-command';
-import { takeCalls } from '../../server/calls/take-call';
 import { change, select } from '../../server/db/sql';
-import { Chance, demoCall } from '../../server/demo/demo-calls';
 import { ensureDemoRegion } from '../../server/region/demo-region';
 import { openRegion } from '../../server/region/open-region';
 import { readAddressBook } from '../../server/region/region-data';
 import { createPocketsWorker } from '../../server/workers/pockets-client';
-import { HOUR_MS } from '@shared/domain/instant';
-import { UserRecord } from '../../server/staff/user-record';
-import { PASSWORD, startServer, type TestServer } from '../support/server';
+import { startServer, type TestServer } from '../support/server';
+import { addressOf, launchBrowser, signedInPage, takeMany, withClient } from './full-board';
 import { quantile, spread } from './quantiles';
 
 const CALLS = 3000;
@@ -32,52 +28,18 @@ async function main(): Promise<void> {
   const server = await startServer({
     suffix: '_bench_board',
     port,
-    config: {
-      http: {
-        host: '127.0.0.1',
-        port,
-        publicUrl: `http://localhost:${String(port)}`,
-        trustProxyHops: 0,
-      },
-      environment: 'production',
-      clientFolder: path.resolve('dist/client'),
-      tilesFolder: path.resolve('tiles'),
-    },
+    config: withClient(port),
     context: { region, pockets, log: pino({ level: 'error' }), clock: () => Date.now() },
   });
-  await takeMany(server, addresses);
-  const user = await server.signIn('dispatcher');
-  const name = (await UserRecord.findByPk(user.userId))?.signInName ?? '';
-
-  const browser = await chromium.launch({
-    executablePath: process.env['THAWLINE_CHROMIUM'] ?? '/usr/bin/chromium',
-    args: [
-      '--no-sandbox',
-      '--disable-gpu',
-      '--disable-quic',
-      '--no-first-run',
-      '--disable-background-networking',
-      '--disable-component-update',
-      '--disable-sync',
-      '--disable-dev-shm-usage',
-    ],
-  });
-  const page = await browser.newPage({ viewport: { width: 1920, height: 1080 } });
-  await page.goto(
-    `http://127.0.0.1:${String((server.app.http.address() as AddressInfo).port)}/sign-in`,
-  );
-  await page.getByLabel('E-mail address').fill(name);
-  await page.getByLabel('Password', { exact: true }).fill(PASSWORD);
-  await page.keyboard.press('Enter');
-  await page.waitForURL(/board/);
+  await takeMany(server, addresses, CALLS);
+  const browser = await launchBrowser();
+  const page = await signedInPage(browser, server);
 
   const paints: number[] = [];
   for (let i = 0; i < LOADS; i++) {
     await page.goto('about:blank');
     const began = performance.now();
-    await page.goto(
-      `http://127.0.0.1:${String((server.app.http.address() as AddressInfo).port)}/board`,
-    );
+    await page.goto(`${addressOf(server)}/board`);
     await page.locator('thaw-queue-row').nth(8).waitFor();
     paints.push(performance.now() - began);
   }
@@ -99,30 +61,6 @@ async function main(): Promise<void> {
   await browser.close();
   await server.close();
   await pockets.close();
-}
-
-async function takeMany(
-  server: TestServer,
-  addresses: readonly Parameters<typeof demoCall>[1][],
-): Promise<void> {
-  const chance = new Chance('bench');
-  const now = Date.now();
-  for (let i = 0; i < CALLS; i += 100)
-    await runCommand(
-      server.context,
-      { actor: machine('Bench'), type: 'takeCall', commandId: randomUUID(), asked: i },
-      async (job) => {
-        const told = Array.from({ length: 100 }, (_, k) =>
-          demoCall(chance, chance.pick(addresses), i + k, {
-            receivedAt: now - chance.below(600) * 60_000,
-            outAt: now - 3 * HOUR_MS,
-            backAt: now - HOUR_MS,
-          }),
-        );
-        await takeCalls(job, server.stormId, told);
-        return null;
-      },
-    );
 }
 
 /** Times between frames while the queue scrolls and rows change. */

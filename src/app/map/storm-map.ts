@@ -82,6 +82,10 @@ export class StormMap {
     },
     { equal: (a, b) => a?.words === b?.words && a?.widthPx === b?.widthPx },
   );
+  private readonly look = computed(() => ({
+    theme: this.theme.scheme(),
+    hasFeeders: this.layers.isShown('feeders'),
+  }));
   protected readonly hasLegs = computed(
     () => this.layers.isShown('routes') && this.board.stops().size > 0,
   );
@@ -97,7 +101,7 @@ export class StormMap {
     this.showScene();
     this.showTop();
     this.showFinishedOutline();
-    this.followTheme();
+    this.followLook();
     this.followSelection();
     this.followPinRequest();
     this.grantWishes();
@@ -146,7 +150,7 @@ export class StormMap {
     if (!region) return;
     const { picture } = this.actions;
     const stage = new LeafletStage(host, region, {
-      theme: this.theme.scheme(),
+      look: this.look(),
       paint: picture.paint,
       paintTop: picture.paintTop,
     });
@@ -203,14 +207,14 @@ export class StormMap {
     return stage.centre();
   }
 
-  private followTheme(): void {
+  private followLook(): void {
     effect(() => {
-      const scheme = this.theme.scheme();
+      const look = this.look();
       this.theme.hasMoreContrast();
       const stage = this.stage();
       // The page takes its new colours in the same turn; they are read when the next frame is drawn.
       this.actions.picture.forgetInk();
-      stage?.setTheme(scheme);
+      stage?.setLook(look);
       stage?.refresh();
     });
   }

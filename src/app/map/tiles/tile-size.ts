@@ -1,0 +1,2 @@
+/** Side of a tile in CSS pixels. */
+export const TILE_PX = 256;
