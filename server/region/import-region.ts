@@ -19,12 +19,13 @@ import {
 } from './region-data';
 import type { AddressFile, ImportStep, MakingStep, RegionMaking } from './region-making';
 import { roadKilometres } from './road-kilometres';
+import { ROADS_STEP } from './road-step';
 import { UnreadableRegion } from './unreadable-region';
 import { dropAbandoned, openWorkshop, settleWorkshop } from './workshop';
 import { ADDRESS_ZOOM, writeAddressTiles, writeTiles } from './write-tiles';
 
 /** Part of every region's hash: raise it when the same file would give other files. */
-export const IMPORTER_VERSION = 3;
+export const IMPORTER_VERSION = 4;
 
 const READING_WEIGHT = 15;
 
@@ -55,6 +56,7 @@ const STEPS: readonly MakingStep[] = [
       };
     },
   },
+  ROADS_STEP,
   {
     name: 'map',
     weight: 60,
@@ -190,6 +192,8 @@ const NO_COUNTS: RegionCounts = {
   corners: 0,
   places: 0,
   roadKm: 0,
+  roadNodes: 0,
+  roadEdges: 0,
   tiles: 0,
   bytes: 0,
 };

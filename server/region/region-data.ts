@@ -41,6 +41,10 @@ export interface RegionCounts {
   readonly places: number;
   /** Length of all roads that are drawn, each carriageway once, in kilometres. */
   readonly roadKm: number;
+  /** Junctions of the road graph, those with turn restrictions once for each way in. */
+  readonly roadNodes: number;
+  /** Stretches from junction to junction, each direction and each way in counted. */
+  readonly roadEdges: number;
   readonly tiles: number;
   /** Size of the tiles, packed. */
   readonly bytes: number;

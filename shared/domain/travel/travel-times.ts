@@ -24,7 +24,7 @@ export interface TravelSettings {
  */
 export const DEFAULT_TRAVEL: TravelSettings = { circuity: 1.35, speedKmh: 40, stopSeconds: 120 };
 
-/** Travel between places. A road graph answers the same questions later. */
+/** Travel between places; Infinity where no way leads. */
 export interface TravelTimes {
   /** Where the figures come from, in words for the screen. */
   readonly source: string;
