@@ -1,6 +1,5 @@
 import { mkdir, writeFile } from 'node:fs/promises';
 import path from 'node:path';
-import { isInRing } from '@shared/domain/point-in-ring';
 import { HOUR_MS, MINUTE_MS, type Instant } from '@shared/domain/instant';
 import type { Role } from '@shared/contract/common';
 import { AreaRecord } from '../areas/area-record';
@@ -13,12 +12,12 @@ import type { Context } from '../context';
 import { change } from '../db/sql';
 import type { AddressPoint } from '../region/address-points';
 import { DEMO_SEED } from '../region/demo-region';
-import { demoOutageAreas } from '../region/county/outage-areas';
 import { hashPassword, makePassphrase } from '../staff/passwords';
 import { UserRecord } from '../staff/user-record';
 import { StormRecord } from '../storms/storm-record';
 import { ShiftRecord, TechnicianRecord } from '../technicians/technician-record';
 import { Chance, demoCall, ringsAfter } from './demo-calls';
+import { demoOutages, outageAt } from './demo-outages';
 import { DESK, TECHNICIANS, type DemoPerson } from './demo-people';
 
 const CALLS = 240;
@@ -133,25 +132,20 @@ async function seedStorm(
     job.note('storm', stormId, 'opened the storm');
   });
 
-  const areas = demoOutageAreas(DEMO_SEED).map((plan, wave) => ({
+  const areas = demoOutages(context.region.power, chance, wentOut, now).map((outage) => ({
+    ...outage,
     id: chance.uuid(),
-    name: plan.name,
-    ring: plan.polygon.coordinates[0] ?? [],
-    outAt: wentOut + chance.below(50) * MINUTE_MS,
-    // Restored in waves; the last of them is still out.
-    backAt: now - (9.5 - wave * 1.15) * HOUR_MS,
   }));
-  for (const [index, area] of areas.entries())
+  for (const area of areas)
     await give(wentOut + HOUR_MS, 'drawArea', async (job) => {
-      const isStillOut = index === areas.length - 1;
       await AreaRecord.create(
         {
           id: area.id,
           stormId,
           name: area.name,
-          ring: JSON.stringify(area.ring),
+          shape: JSON.stringify([[area.ring]]),
           outAt: new Date(area.outAt),
-          backAt: isStillOut ? null : new Date(Math.min(area.backAt, now - HOUR_MS / 2)),
+          backAt: area.backAt === null ? null : new Date(area.backAt),
         },
         { transaction: job.tx },
       );
@@ -160,25 +154,17 @@ async function seedStorm(
       job.note('area', area.id, 'drew an outage area');
     });
 
-  const inside = areas.map((area) =>
-    addresses.filter(({ at }) => isInRing([at[0], at[1]], area.ring)),
-  );
-  const calls = Array.from({ length: CALLS }, (_, number) => {
-    const index = chance.below(areas.length - 1);
-    const area = areas[index];
-    const doors = inside[index];
-    if (!area || !doors || doors.length === 0) return null;
-    const receivedAt = Math.min(
-      area.backAt + ringsAfter(chance),
-      now - chance.below(20) * MINUTE_MS,
-    );
-    return demoCall(chance, chance.pick(doors), number, {
-      receivedAt,
-      outAt: area.outAt,
-      backAt: area.backAt,
-    });
-  })
-    .filter((call) => call !== null)
+  // Households ring once their power is back and the refrigerator is not.
+  const doors = addresses.flatMap((address) => {
+    const outage = outageAt(areas, [address.at[0], address.at[1]]);
+    return outage?.backAt ? [{ address, outAt: outage.outAt, backAt: outage.backAt }] : [];
+  });
+  const calls = (doors.length === 0 ? [] : Array.from({ length: CALLS }))
+    .map((_, number) => {
+      const { address, outAt, backAt } = chance.pick(doors);
+      const receivedAt = Math.min(backAt + ringsAfter(chance), now - chance.below(20) * MINUTE_MS);
+      return demoCall(chance, address, number, { receivedAt, outAt, backAt });
+    })
     .sort((a, b) => a.receivedAt - b.receivedAt);
 
   for (const call of calls) {

@@ -2,6 +2,7 @@ import { randomUUID } from 'node:crypto';
 import path from 'node:path';
 import type { AreaDto } from '@shared/contract/areas';
 import type { BoardPicture } from '@shared/contract/board';
+import type { FeederMap } from '@shared/contract/feeders';
 import type { CallDetail, CallRow } from '@shared/contract/calls';
 import type { NightLogDto, NightLogPreview } from '@shared/contract/night-logs';
 import type { DrainDto } from '@shared/contract/office';
@@ -11,8 +12,9 @@ import { HOUR_MS } from '@shared/domain/instant';
 import { brokenInvariants } from '../../server/invariants/checks';
 import { makeNightLog } from '../../server/night-log/make-night-log';
 import { readLog } from '../../server/night-log/read-log';
-import { demoOutageAreas } from '../../server/region/county/outage-areas';
-import { DEMO_SEED, ensureDemoRegion } from '../../server/region/demo-region';
+import { Chance } from '../../server/demo/demo-calls';
+import { demoOutages } from '../../server/demo/demo-outages';
+import { ensureDemoRegion } from '../../server/region/demo-region';
 import { openRegion } from '../../server/region/open-region';
 import { readAddressBook } from '../../server/region/region-data';
 import { startPlanner } from '../support/planner';
@@ -27,10 +29,12 @@ const VISITS_EACH = 3;
 let lab: TextLab;
 let planner: Awaited<ReturnType<typeof startPlanner>>;
 let log: ReturnType<typeof makeNightLog>;
+let power: FeederMap;
 
 beforeAll(async () => {
   const imported = await ensureDemoRegion(path.resolve(__dirname, '../../tiles'));
   const region = await openRegion(imported);
+  power = region.power;
   const { addresses } = await readAddressBook(imported.folder);
   planner = await startPlanner();
   lab = await startTextLab('_main_job', {
@@ -85,7 +89,8 @@ it('runs from a night log of 600 rows to a drained backlog, and every invariant 
   lab.work();
 
   // The areas, with the times the power went and came back.
-  for (const { name, polygon } of demoOutageAreas(DEMO_SEED))
+  const outAt = AFTERNOON - 13 * HOUR_MS;
+  for (const { name, ring } of demoOutages(power, new Chance('main job'), outAt, AFTERNOON))
     await expected<AreaDto>(
       mara.call('drawArea', {
         params: inStorm(),
@@ -93,8 +98,8 @@ it('runs from a night log of 600 rows to a drained backlog, and every invariant 
           commandId: randomUUID(),
           areaId: randomUUID(),
           name,
-          ring: polygon.coordinates[0],
-          outAt: AFTERNOON - 13 * HOUR_MS,
+          shape: [[ring]],
+          outAt,
           backAt: AFTERNOON - 8 * HOUR_MS,
         },
       }),

@@ -5,6 +5,7 @@ import { ferryCrossing, type FerryCrossing } from './ferry';
 import { findJunctions, type StreetGraph } from './junctions';
 import { nameStreets, type StreetName } from './names';
 import { makePlaces, type CountyPlaces } from './places';
+import { layOutPower, type CountyPower } from './power';
 import type { Point } from './plane';
 import { StreetSpace, type StreetLine } from './street-line';
 import { layOutDrives } from './suburb-drives';
@@ -27,6 +28,7 @@ export interface County {
   readonly addresses: readonly HouseAddress[];
   readonly parks: readonly Point[][];
   readonly places: CountyPlaces;
+  readonly power: CountyPower;
 }
 
 /** Metres from water at which a street runs along the shore of a town. */
@@ -68,6 +70,7 @@ export function makeCounty(seed: number): County {
     built,
     parks,
   );
+  const places = makePlaces(seed, terrain, towns, lines, graph, addresses, ferry);
   return {
     seed,
     terrain,
@@ -79,7 +82,8 @@ export function makeCounty(seed: number): County {
     streetNames,
     addresses,
     parks,
-    places: makePlaces(seed, terrain, towns, lines, graph, addresses, ferry),
+    places,
+    power: layOutPower(seed, terrain, towns, graph, addresses, places.points),
   };
 }
 

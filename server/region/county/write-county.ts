@@ -2,6 +2,7 @@ import type { OsmData, OsmMember } from '../osm-model';
 import { writeOsmPbf } from '../osm-pbf-writer';
 import { makeCounty, type County } from './county';
 import { OsmBook } from './osm-book';
+import { writePower } from './write-power';
 import { writeStreets } from './write-streets';
 import type { Point } from './plane';
 
@@ -32,6 +33,7 @@ export function countyToOsm(county: County): OsmData {
       ...(address.flats > 1 ? { 'addr:flats': `1-${address.flats}` } : {}),
     });
   }
+  writePower(county, book);
   return book;
 }
 
