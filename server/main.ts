@@ -15,6 +15,7 @@ import { openRegion } from './region/open-region';
 import { readAddressBook } from './region/region-data';
 import { createPlannerWorker } from './workers/planner-client';
 import { createPocketsWorker } from './workers/pockets-client';
+import { createRoadsWorker, RoadsClient } from './workers/roads-client';
 import { startOutbox } from './texts/outbox';
 import { poll } from './texts/poll';
 
@@ -49,6 +50,11 @@ async function main(): Promise<void> {
   const pockets = createPocketsWorker(path.join(__dirname, 'pockets-worker.js'), {
     onCrash: (error) => log.error({ err: error }, 'the pocket maker crashed'),
   });
+  const roadsThread = createRoadsWorker(path.join(__dirname, 'roads-worker.js'), {
+    onCrash: (error) => log.error({ err: error }, 'the thread of the roads crashed'),
+  });
+  const roads = new RoadsClient(roadsThread);
+  await roads.switchTo({ folder: imported.folder, name: imported.manifest.name });
   const logReader = createLogReader(path.join(__dirname, 'import-worker.js'), {
     onCrash: (error) => log.error({ err: error }, 'the log reader crashed'),
   });
@@ -61,7 +67,7 @@ async function main(): Promise<void> {
     region: await openRegion(imported),
     planner,
     pockets,
-    roads: null,
+    roads,
     logReader,
     wakeOutbox: () => outbox.wake(),
   });
@@ -100,7 +106,7 @@ async function main(): Promise<void> {
     setTimeout(() => process.exit(1), DRAIN_MS).unref();
     await Promise.all([worker.stop(), tidying.stop()]);
     await app.close();
-    await Promise.all([planner.close(), pockets.close(), logReader.close()]);
+    await Promise.all([planner.close(), pockets.close(), roadsThread.close(), logReader.close()]);
     await sequelize.close();
     process.exit(0);
   };

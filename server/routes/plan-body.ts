@@ -1,7 +1,7 @@
 import type { PlanDto, PlanFigures } from '@shared/contract/routes';
 import { isPlannable } from '@shared/domain/call-state';
 import type { Instant } from '@shared/domain/instant';
-import type { Plan, PlanRoute } from '@shared/domain/planner/problem';
+import type { Plan, PlanRoute, UnassignedReason } from '@shared/domain/planner/problem';
 import type { PlanSummary, StopReason } from '@shared/domain/planner/plan-summary';
 import { heldCount, isUnderWay } from '@shared/domain/route-rules';
 import { minutesInWords } from '@shared/domain/urgency';
@@ -16,6 +16,7 @@ export function planBody(facts: PlanFacts, answer: PlannerResponse | null): Plan
   const plan = answer?.plan ?? NOTHING;
   const before = answer?.before?.plan ?? NOTHING;
   return {
+    ...(answer ? { drivesFrom: answer.source } : {}),
     routes: facts.technicians.flatMap((technician) => {
       const stops = stopsOf(technician, plan, facts, answer);
       return stops.length === 0 ? [] : [{ technicianId: technician.id, stops }];
@@ -128,10 +129,18 @@ function unplanned(facts: PlanFacts, plan: Pick<Plan, 'unassigned'>): PlanDto['u
         ];
       const left = planners.get(call.id);
       if (!left) return [];
-      const reason = left.reason === 'no_shift' ? 'no-shift' : left.reason;
-      return [{ callId: call.id, reason, words: left.because }];
+      return [{ callId: call.id, reason: REASONS[left.reason], words: left.because }];
     });
 }
+
+/** The planner's reasons in the words of the wire. */
+const REASONS: Readonly<Record<UnassignedReason, PlanDto['unplanned'][number]['reason']>> = {
+  skill: 'skill',
+  part: 'part',
+  unreachable: 'cut-off',
+  no_shift: 'no-shift',
+  capacity: 'capacity',
+};
 
 /**
  * What a plan saves and costs. Contents count as saved when the visit is done before their save-by,

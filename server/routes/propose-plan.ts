@@ -67,7 +67,7 @@ export async function proposePlan(
 }
 
 async function askPlanner(
-  { planner, log }: Context,
+  { planner, roads, log }: Context,
   facts: PlanFacts,
   searchSeconds: number,
 ): Promise<PlannerResponse | null> {
@@ -78,6 +78,7 @@ async function askPlanner(
       problem,
       points,
       travel: travelBySettings(facts.settings),
+      ...(roads ? { roads: { ...(await roads.matrix(points)), source: roads.source } } : {}),
       // Any number will do; this one makes the same routes of the same storm.
       seed: facts.epoch + 1,
       budgetMs: searchSeconds * 1000,

@@ -2,14 +2,17 @@ import type { PlanSummary, StopReason } from '@shared/domain/planner/plan-summar
 import type { Plan, PlanProblem } from '@shared/domain/planner/problem';
 import type { LonLat } from '@shared/domain/travel/great-circle';
 import type { TravelSettings } from '@shared/domain/travel/travel-times';
+import type { RoadMatrix } from './ports';
 import { WorkerClient, type WorkerClientOptions } from './worker-client';
 
-/** A planning problem whose places are points; the worker works out the drives between them. */
+/** A planning problem whose places are points. */
 export interface PlannerRequest {
   readonly problem: Omit<PlanProblem, 'matrix' | 'locations'>;
   /** Places by the numbers that the problem uses for them. */
   readonly points: readonly LonLat[];
   readonly travel?: Partial<TravelSettings>;
+  /** Drives along roads between the points; left out, the worker takes straight lines. */
+  readonly roads?: RoadMatrix & { readonly source: string };
   readonly seed: number;
   /** Milliseconds to search for; left out, only `iterations` count and the plan is repeatable. */
   readonly budgetMs?: number;
@@ -24,6 +27,8 @@ export interface PlannerResponse {
   readonly before: { readonly plan: Plan; readonly summary: PlanSummary } | null;
   /** Why each stop stands where it stands. */
   readonly reasons: readonly ({ readonly job: string } & StopReason)[];
+  /** Where the drives come from, in words for the screen. */
+  readonly source: string;
   readonly elapsedMs: number;
 }
 

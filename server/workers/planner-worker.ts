@@ -1,8 +1,8 @@
 import { carriedOver, plan } from '@shared/domain/planner/plan';
 import { stopReasons, summarisePlan } from '@shared/domain/planner/plan-summary';
 import type { PlanProblem } from '@shared/domain/planner/problem';
-import { straightLineTravel } from '@shared/domain/travel/travel-times';
 import type { PlannerRequest, PlannerResponse } from './planner-client';
+import { plannerDrives } from './planner-drives';
 import { serveRequests, type Running } from './serve-requests';
 
 /** Rounds that no budget of time reaches. */
@@ -14,14 +14,8 @@ function answer(request: PlannerRequest, { shouldStop }: Running): PlannerRespon
   if (budgetMs === undefined && request.iterations === undefined) {
     throw new RangeError('Planning needs a budget of time or of rounds.');
   }
-  const travel = straightLineTravel(request.travel);
-  const problem: PlanProblem = {
-    ...request.problem,
-    locations: points.length,
-    matrix: travel.matrix(points),
-  };
-  const distanceKm = (from: number, to: number): number =>
-    travel.distanceKm(points[from]!, points[to]!);
+  const { matrix, distanceKm, source } = plannerDrives(request);
+  const problem: PlanProblem = { ...request.problem, locations: points.length, matrix };
   const progress =
     budgetMs === undefined ? undefined : () => (performance.now() - began) / budgetMs;
   const result = plan(problem, {
@@ -36,6 +30,7 @@ function answer(request: PlannerRequest, { shouldStop }: Running): PlannerRespon
     summary: summarisePlan(problem, result, { distanceKm }),
     before: before && { plan: before, summary: summarisePlan(problem, before, { distanceKm }) },
     reasons: [...stopReasons(problem, result)].map(([job, reason]) => ({ job, ...reason })),
+    source,
     elapsedMs: performance.now() - began,
   };
 }

@@ -57,11 +57,13 @@ export interface NearestRoad {
  *
  * Every question may bring conditions of its own, and is answered under exactly those; without them it
  * is answered under the ones that are followed, and while new ones are worked into the times, under
- * the ones before.
+ * the ones before. A region without a single road is answered by straight lines, and `source` says so.
  */
 export interface RoadsPort {
   /** Where the times come from, in words for the screen: "Roads of Skerry County". */
   readonly source: string;
+  /** Takes over the roads of another region; until it resolves answers are of the one before. */
+  switchTo(region: { readonly folder: string; readonly name: string }): Promise<void>;
   /** The conditions that answers follow now. */
   readonly followed: RoadConditions;
   /** Works conditions into the times; once it resolves every answer follows them. The latest wins. */

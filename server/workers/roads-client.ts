@@ -1,3 +1,4 @@
+import { basename } from 'node:path';
 import {
   conditionsKey,
   USUAL_CONDITIONS,
@@ -9,9 +10,11 @@ import { SEGMENT_FLAGS } from '@shared/domain/roads/road-graph';
 import { lineOf } from '@shared/domain/roads/storm-cover';
 import type { LonLat } from '@shared/domain/travel/great-circle';
 import { roadTravel } from '@shared/domain/travel/road-travel';
-import type { TravelTimes } from '@shared/domain/travel/travel-times';
+import { straightLineTravel, type TravelTimes } from '@shared/domain/travel/travel-times';
+import { readRoadFile } from '../region/road-file';
 import type { NearestRoad, RoadFan, RoadLeg, RoadMatrix, RoadsPort } from './ports';
 import { RoadsEngine, type RoadTimes } from './roads-engine';
+import { NO_ROADS, straightFan, straightLegs, straightMatrix } from './roads-straight';
 import { WorkerClient, type WorkerClientOptions } from './worker-client';
 
 export type RoadsQuestion =
@@ -50,12 +53,12 @@ export function createRoadsWorker(
   });
 }
 
-/** The roads of one region. */
-export interface RegionRoadsFile {
+interface Opened {
   /** The region's folder, without its path. */
   readonly key: string;
-  readonly regionName: string;
+  readonly name: string;
   readonly file: SharedArrayBuffer;
+  readonly engine: RoadsEngine;
 }
 
 /**
@@ -63,103 +66,110 @@ export interface RegionRoadsFile {
  * in this one, on the same memory.
  */
 export class RoadsClient implements RoadsPort {
-  private constructor(
-    private readonly region: RegionRoadsFile,
-    private readonly worker: RoadsWorker,
-    private readonly engine: RoadsEngine,
-    private inForce: { readonly conditions: RoadConditions; readonly roads: TimedRoads },
-  ) {}
+  private opened: Opened | null = null;
+  private timed: TimedRoads | null = null;
+  private conditions = USUAL_CONDITIONS;
+  /** What was asked for last, and is in force once its times are worked out. */
+  private wanted: { readonly opened: Opened | null; readonly conditions: RoadConditions } = {
+    opened: null,
+    conditions: USUAL_CONDITIONS,
+  };
 
-  private asked = 0;
-  private answered = 0;
-
-  /** Opens a region's roads under the usual conditions. */
-  static async open(region: RegionRoadsFile, worker: RoadsWorker): Promise<RoadsClient> {
-    const engine = new RoadsEngine(region.file);
-    const times = await timesFrom(worker, region, USUAL_CONDITIONS);
-    return new RoadsClient(region, worker, engine, {
-      conditions: USUAL_CONDITIONS,
-      roads: engine.withTimes(times),
-    });
-  }
+  constructor(private readonly worker: RoadsWorker) {}
 
   get source(): string {
-    return `Roads of ${this.region.regionName}`;
+    return this.opened ? `Roads of ${this.opened.name}` : NO_ROADS.source;
   }
 
   get followed(): RoadConditions {
-    return this.inForce.conditions;
+    return this.conditions;
+  }
+
+  async switchTo(region: { readonly folder: string; readonly name: string }): Promise<void> {
+    const file = await readRoadFile(region.folder);
+    const opened = file && {
+      key: basename(region.folder),
+      name: region.name,
+      file,
+      engine: new RoadsEngine(file),
+    };
+    await this.become({ opened, conditions: this.wanted.conditions });
   }
 
   async follow(conditions: RoadConditions): Promise<void> {
-    const order = ++this.asked;
-    if (conditionsKey(conditions) === conditionsKey(this.followed)) {
-      this.answered = order;
-      return;
-    }
-    const times = await timesFrom(this.worker, this.region, conditions);
-    // Conditions that were asked for later count, whatever is answered first.
-    if (order < this.answered) return;
-    this.answered = order;
-    this.inForce = { conditions, roads: this.engine.withTimes(times) };
+    const isInForce =
+      this.wanted.opened === this.opened && this.wanted.conditions === this.conditions;
+    if (isInForce && conditionsKey(conditions) === conditionsKey(this.conditions)) return;
+    await this.become({ opened: this.wanted.opened, conditions });
   }
 
-  async matrix(points: readonly LonLat[], conditions = this.followed): Promise<RoadMatrix> {
-    const answer = await this.ask({ kind: 'matrix', points }, conditions);
+  private async become(wanted: RoadsClient['wanted']): Promise<void> {
+    this.wanted = wanted;
+    const { opened, conditions } = wanted;
+    const answer = opened && (await this.ask(opened, { kind: 'times' }, conditions));
+    // Something else has been asked for meanwhile.
+    if (this.wanted !== wanted) return;
+    this.opened = opened;
+    this.conditions = conditions;
+    this.timed =
+      opened && opened.engine.withTimes(answer?.kind === 'times' ? answer.times : wrongAnswer());
+  }
+
+  async matrix(points: readonly LonLat[], conditions = this.conditions): Promise<RoadMatrix> {
+    if (!this.opened) return straightMatrix(points);
+    const answer = await this.ask(this.opened, { kind: 'matrix', points }, conditions);
     return answer.kind === 'matrix' ? answer.matrix : wrongAnswer();
   }
 
   async oneToMany(
     point: LonLat,
     others: readonly LonLat[],
-    conditions = this.followed,
+    conditions = this.conditions,
   ): Promise<RoadFan> {
-    const answer = await this.ask({ kind: 'fan', point, others }, conditions);
+    if (!this.opened) return straightFan(point, others);
+    const answer = await this.ask(this.opened, { kind: 'fan', point, others }, conditions);
     return answer.kind === 'fan' ? answer.fan : wrongAnswer();
   }
 
   async path(
     stops: readonly LonLat[],
-    conditions = this.followed,
+    conditions = this.conditions,
   ): Promise<readonly (RoadLeg | null)[]> {
-    const answer = await this.ask({ kind: 'path', stops }, conditions);
+    if (!this.opened) return straightLegs(stops);
+    const answer = await this.ask(this.opened, { kind: 'path', stops }, conditions);
     return answer.kind === 'path' ? answer.legs : wrongAnswer();
   }
 
-  nearest(point: LonLat): NearestRoad {
-    const { graph, names } = this.engine.roads;
-    const { segment, at, metres } = this.engine.snap.nearest(point);
-    const flags = graph.segmentFlags[segment]!;
-    const name = names[graph.segmentName[segment]!] ?? '';
+  nearest(point: LonLat): NearestRoad | null {
+    if (!this.opened) return null;
+    const { roads, snap } = this.opened.engine;
+    const { segment, at, metres } = snap.nearest(point);
+    const flags = roads.graph.segmentFlags[segment]!;
+    const name = roads.names[roads.graph.segmentName[segment]!] ?? '';
     return {
       at,
       metres,
       name: name === '' ? null : name,
-      roadClass: ROAD_CLASSES[graph.segmentClass[segment]!]!,
+      roadClass: ROAD_CLASSES[roads.graph.segmentClass[segment]!]!,
       isBridge: (flags & SEGMENT_FLAGS.bridge) !== 0,
       isFord: (flags & SEGMENT_FLAGS.ford) !== 0,
-      line: lineOf(graph, segment),
+      line: lineOf(roads.graph, segment),
     };
   }
 
   travel(stopSeconds: number): TravelTimes {
-    const { roads } = this.inForce;
-    return roadTravel(this.source, stopSeconds, (from, to) => this.engine.drive(roads, from, to));
+    const { opened, timed } = this;
+    if (!opened || !timed) return straightLineTravel({ stopSeconds });
+    return roadTravel(this.source, stopSeconds, (from, to) => opened.engine.drive(timed, from, to));
   }
 
-  private ask(question: RoadsQuestion, conditions: RoadConditions): Promise<RoadsResponse> {
-    const { key, file } = this.region;
+  private ask(
+    { key, file }: Opened,
+    question: RoadsQuestion,
+    conditions: RoadConditions,
+  ): Promise<RoadsResponse> {
     return this.worker.run({ name: key, file, conditions, question });
   }
-}
-
-async function timesFrom(
-  worker: RoadsWorker,
-  { key, file }: RegionRoadsFile,
-  conditions: RoadConditions,
-): Promise<RoadTimes> {
-  const answer = await worker.run({ name: key, file, conditions, question: { kind: 'times' } });
-  return answer.kind === 'times' ? answer.times : wrongAnswer();
 }
 
 function wrongAnswer(): never {

@@ -170,6 +170,8 @@ export const PlanDto = z.strictObject({
   figures: PlanFigures,
   /** The same figures for the routes in force, to compare. */
   inForce: PlanFigures,
+  /** Where its drives come from, in words; plans of an earlier version do not say it. */
+  drivesFrom: z.string().optional(),
   version: Version,
 });
 export type PlanDto = z.infer<typeof PlanDto>;

@@ -1,5 +1,5 @@
 import { compile, type CompiledProblem } from './compiled-problem';
-import type { Plan, PlanProblem, PlanRoute } from './problem';
+import { NO_WAY_SECONDS, type Plan, type PlanProblem, type PlanRoute } from './problem';
 import { SeededRandom } from './random';
 import type { Route } from './route';
 import { Search } from './search';
@@ -89,7 +89,9 @@ function temperatures(c: CompiledProblem): readonly [hot: number, cold: number] 
   let count = 0;
   for (let from = 0; from < c.locations; from++) {
     for (let to = from + 1; to < c.locations; to += 1 + Math.floor(c.locations / 50)) {
-      seconds += c.travel[from * c.locations + to]!;
+      const drive = c.travel[from * c.locations + to]!;
+      if (drive >= NO_WAY_SECONDS) continue;
+      seconds += drive;
       count++;
     }
   }

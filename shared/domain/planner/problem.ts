@@ -19,7 +19,10 @@ export interface PlanProblem {
   readonly now: number;
   /** Number of places that `matrix` knows. */
   readonly locations: number;
-  /** Travel seconds: flat and row-major (from × locations + to), or one array per row. */
+  /**
+   * Travel seconds: flat and row-major (from × locations + to), or one array per row. `NO_WAY_SECONDS`
+   * where no way leads.
+   */
   readonly matrix: ArrayLike<number> | readonly ArrayLike<number>[];
   readonly jobs: readonly PlanJob[];
   readonly technicians: readonly PlanTechnician[];
@@ -152,10 +155,16 @@ export interface PlanStop {
   readonly finish: number;
 }
 
-export const UNASSIGNED_REASONS = ['skill', 'part', 'no_shift', 'capacity'] as const;
 /**
- * Why a call is on no route: nobody who may go has the skill; no van has the part left; no shift is
- * long enough for this visit; or the time goes to visits that save more.
+ * Stands for a drive that nobody can make: longer than any shift, and short enough to be added and
+ * priced like any other.
+ */
+export const NO_WAY_SECONDS = 30 * 24 * 3600;
+
+export const UNASSIGNED_REASONS = ['skill', 'part', 'unreachable', 'no_shift', 'capacity'] as const;
+/**
+ * Why a call is on no route: nobody who may go has the skill; no van has the part left; no open road
+ * leads there and back from where anybody who may go starts; no shift is long enough for this visit; or the time goes to visits that save more.
  */
 export type UnassignedReason = (typeof UNASSIGNED_REASONS)[number];
 

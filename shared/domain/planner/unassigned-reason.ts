@@ -1,5 +1,5 @@
 import type { CompiledProblem, ShiftStart } from './compiled-problem';
-import type { UnassignedJob } from './problem';
+import { NO_WAY_SECONDS, type UnassignedJob } from './problem';
 import { Route } from './route';
 import type { Search } from './search';
 
@@ -18,7 +18,14 @@ export function unassignedReason(job: number, search: Search, c: CompiledProblem
     return { reason: 'part', because: `No van of those who may go carries: ${name}.` };
   }
   const withPartLeft = withPart.filter((t) => part < 0 || search.partsLeft(t, part) > 0);
-  if (!c.shifts.some((shift) => withPart.includes(shift.technician) && hasTime(job, shift, c))) {
+  const shifts = c.shifts.filter((shift) => withPart.includes(shift.technician));
+  if (shifts.length > 0 && !shifts.some((shift) => canDriveTo(job, shift, c))) {
+    return {
+      reason: 'unreachable',
+      because: 'No open road leads there and back for those who may go.',
+    };
+  }
+  if (!shifts.some((shift) => hasTime(job, shift, c))) {
     return {
       reason: 'no_shift',
       because: 'No shift of those who may go is long enough for this visit.',
@@ -36,6 +43,15 @@ function noSkill(job: number, c: CompiledProblem): Reason {
   return onlyTechnicians
     ? { reason: 'skill', because: `None of the technicians it is limited to has ${needed}.` }
     : { reason: 'skill', because: `No technician has ${needed}.` };
+}
+
+/** Whether roads lead from where the shift begins to the job, and on to where it ends. */
+function canDriveTo(job: number, { startLoc, endLoc }: ShiftStart, c: CompiledProblem): boolean {
+  const place = c.loc[job]!;
+  return (
+    c.travel[startLoc * c.locations + place]! < NO_WAY_SECONDS &&
+    c.travel[place * c.locations + endLoc]! < NO_WAY_SECONDS
+  );
 }
 
 /** Whether the shift could hold this visit if it held nothing but its accepted stops. */

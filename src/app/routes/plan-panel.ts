@@ -48,6 +48,9 @@ import { Zone } from '../core/zone';
         }
       </tbody>
     </table>
+    @if (plan().drivesFrom; as source) {
+      <p class="soft source">Drives: {{ source }}</p>
+    }
     <div class="acts">
       <button type="button" class="plain main" [disabled]="isBusy()" (click)="published.emit()">
         Publish <kbd>Ctrl Enter</kbd>
