@@ -17,6 +17,9 @@ import { sessions } from './http/sessions';
 import { safeError } from './log/safe-error';
 import { nightLogRoutes } from './night-log/night-log-routes';
 import { officeRoutes } from './office/office-routes';
+import { RegionHolder, type RegionInUse } from './region/region-in-use';
+import { createRegionImporter, type RegionImporterPort } from './region/region-importer';
+import { Regions } from './region/regions';
 import { regionRoutes } from './region/region-routes';
 import { tileRoutes } from './region/serve-tiles';
 import { planRoutes } from './routes/plan-routes';
@@ -35,11 +38,19 @@ export interface App {
   readonly http: Server;
   /** The context with its live door open. */
   readonly context: Context;
+  readonly regions: Regions;
   close(): Promise<void>;
 }
 
+/** The context before its live door is open, with the region that is in use at the start. */
+export interface GivenContext extends Omit<Context, 'live' | 'region' | 'regionImporter'> {
+  readonly region: RegionInUse;
+  /** Left out: imports run in a process of their own. */
+  readonly regionImporter?: RegionImporterPort;
+}
+
 /** Puts the whole server together. Nothing listens yet. */
-export async function createApp(given: Omit<Context, 'live'>): Promise<App> {
+export async function createApp(given: GivenContext): Promise<App> {
   const app = express();
   const http = createServer(app);
   const session = sessions(given.config, given.sequelize);
@@ -60,8 +71,15 @@ export async function createApp(given: Omit<Context, 'live'>): Promise<App> {
       if (change.kind === 'calls') watch.callsChanged(stormId);
     },
   });
-  const context: Context = { ...given, live };
+  const context: Context = {
+    ...given,
+    live,
+    region: new RegionHolder(given.region),
+    regionImporter:
+      given.regionImporter ?? createRegionImporter(path.join(__dirname, 'import-program.js')),
+  };
   const watch = new PocketWatch(context);
+  const regions = new Regions(context);
 
   app.set('trust proxy', given.config.http.trustProxyHops);
   app.disable('x-powered-by');
@@ -86,7 +104,7 @@ export async function createApp(given: Omit<Context, 'live'>): Promise<App> {
     ...staffRoutes(context, desk),
     ...stormRoutes(context),
     ...callRoutes(context),
-    ...regionRoutes(context),
+    ...regionRoutes(context, regions),
     ...areaRoutes(context),
     ...stormRoadRoutes(context),
     ...technicianRoutes(context),
@@ -109,8 +127,10 @@ export async function createApp(given: Omit<Context, 'live'>): Promise<App> {
   return {
     http,
     context,
-    close: () => {
+    regions,
+    close: async () => {
       watch.stop();
+      await regions.stop();
       return closeAll(http, live, session);
     },
   };

@@ -35,6 +35,10 @@ export interface Config {
   readonly dataFolder: string;
   /** Absolute folder of the region's map tiles. */
   readonly tilesFolder: string;
+  /** Absolute folder where a person may lay files for the import of a region. */
+  readonly regionFilesFolder: string;
+  /** Largest file that an owner may send for the import of a region, in bytes. */
+  readonly mostRegionUploadBytes: number;
   /** Absolute folder of the built client. */
   readonly clientFolder: string;
   /** IANA name of the zone in which the region's people read times. */
@@ -94,6 +98,10 @@ export function readConfig(env: Readonly<Record<string, string | undefined>>): C
     },
     dataFolder: path.resolve(read.THAWLINE_DATA_FOLDER),
     tilesFolder: path.resolve(read.THAWLINE_TILES_FOLDER),
+    regionFilesFolder: path.resolve(
+      read.THAWLINE_REGION_FILES_FOLDER ?? path.join(read.THAWLINE_DATA_FOLDER, 'region-files'),
+    ),
+    mostRegionUploadBytes: read.THAWLINE_REGION_UPLOAD_MB * 1e6,
     clientFolder: path.resolve(read.THAWLINE_CLIENT_FOLDER),
     regionZone: read.THAWLINE_REGION_ZONE,
     defaultAreaCode: read.THAWLINE_AREA_CODE,
@@ -154,6 +162,8 @@ const Variables = z
       .regex(/^\+[1-9]\d{6,14}$/, 'must be a phone number in E.164 form, such as +12015550100'),
     THAWLINE_DATA_FOLDER: z.string().default('.data'),
     THAWLINE_TILES_FOLDER: z.string().default('tiles'),
+    THAWLINE_REGION_FILES_FOLDER: z.string().optional(),
+    THAWLINE_REGION_UPLOAD_MB: wholeNumber(1, 100_000).default(2000),
     THAWLINE_CLIENT_FOLDER: z.string().default('dist/client'),
     THAWLINE_REGION_ZONE: z
       .string()
@@ -162,7 +172,7 @@ const Variables = z
     THAWLINE_AREA_CODE: z
       .string()
       .regex(/^[2-9]\d{2}$/, 'must be three digits, the first from 2 to 9')
-      .default('201'),
+      .default('252'),
     THAWLINE_DEMO: z.enum(['on', 'off'], { error: oneOf(['on', 'off']) }).default('off'),
   })
   .superRefine((read, context) => {

@@ -4,7 +4,8 @@ import type { Instant } from '@shared/domain/instant';
 import type { Config } from './config';
 import type { LogReaderPort } from './night-log/log-reader';
 import type { Live } from './realtime/live';
-import type { RegionInUse } from './region/region-in-use';
+import type { RegionHolder } from './region/region-in-use';
+import type { RegionImporterPort } from './region/region-importer';
 import type { PlannerPort, PocketsPort, RoadsPort } from './workers/ports';
 
 /** What every command and query may reach. Made once, in main.ts or by a test. */
@@ -15,7 +16,9 @@ export interface Context {
   /** The only clock; tests set it. */
   readonly clock: () => Instant;
   readonly live: Live;
-  readonly region: RegionInUse;
+  /** May become another region at any moment. */
+  readonly region: RegionHolder;
+  readonly regionImporter: RegionImporterPort;
   readonly planner: PlannerPort;
   readonly pockets: PocketsPort;
   /** Null for a region without roads; then drives are straight lines, and say so. */

@@ -10,9 +10,9 @@ import { makeLog } from './log/make-log';
 import { createLogReader } from './night-log/log-reader';
 import { resumeImports } from './night-log/import-log';
 import { machine } from './commands/actor';
-import { ensureDemoRegion, listRegions } from './region/demo-region';
 import { openRegion } from './region/open-region';
 import { readAddressBook } from './region/region-data';
+import { regionToStart } from './region/region-to-start';
 import { createPlannerWorker } from './workers/planner-client';
 import { createPocketsWorker } from './workers/pockets-client';
 import { createRoadsWorker, RoadsClient } from './workers/roads-client';
@@ -36,11 +36,9 @@ async function main(): Promise<void> {
   const applied = await migrate(sequelize);
   if (applied.length > 0) log.info({ applied }, 'migrated');
 
-  const imported = config.isDemo
-    ? await ensureDemoRegion(config.tilesFolder, (step) => log.info(step, 'importing the region'))
-    : (await listRegions(config.tilesFolder))[0];
+  const imported = await regionToStart(config, sequelize, log);
   if (!imported) {
-    log.fatal('There is no region. Import one: node dist/server/region-cli.js import FILE.osm.pbf');
+    log.fatal('There is no region. Import one: npm run region -- import FILE.osm.pbf');
     process.exit(EXIT_CONFIG);
   }
 

@@ -5,6 +5,7 @@ import type { Instant } from '@shared/domain/instant';
 import type { Context } from '../context';
 import { insert, isDuplicateOf, select, change } from '../db/sql';
 import { inTransaction } from '../db/transaction';
+import type { RoadsPort } from '../workers/ports';
 import type { Actor } from './actor';
 import { appendAudit, type AuditNote } from './audit';
 import { appendChanges } from './feed';
@@ -36,6 +37,8 @@ export interface Job {
   readonly actor: Actor;
   /** IANA name of the region's time zone, for quiet hours and times in texts. */
   readonly zone: string;
+  /** Travel along the region's roads; `null` where there are none. */
+  readonly roads: RoadsPort | null;
   /** Which rows changed. Boards and phones are told of them once the command is certain. */
   readonly touched: Touched;
   /** Which storm it concerns; its board is told and its audit chain grows. */
@@ -46,6 +49,13 @@ export interface Job {
   afterCommit(act: () => void): void;
 }
 
+/** What a command needs of the server; the command line has no more than this. */
+export type CommandContext = Pick<
+  Context,
+  'sequelize' | 'clock' | 'region' | 'live' | 'wakeOutbox'
+> &
+  Partial<Pick<Context, 'roads'>>;
+
 /**
  * Runs one change: in one transaction with its audit entry, its numbered announcements and its
  * outgoing texts. A repeat of the same command id gets the first reply and changes nothing.
@@ -53,7 +63,7 @@ export interface Job {
  * @throws Refusal when a rule says no; then nothing has changed
  */
 export async function runCommand<R>(
-  context: Context,
+  context: CommandContext,
   order: Order,
   work: (job: Job) => Promise<R>,
 ): Promise<R> {
@@ -79,6 +89,7 @@ export async function runCommand<R>(
       at: new Date(now),
       actor: order.actor,
       zone: context.region.dto.timeZone,
+      roads: context.roads ?? null,
       touched,
       inStorm: (stormId) => (storm = stormId),
       note: (entity, entityId, summary) => notes.push({ entity, entityId, summary }),
@@ -107,7 +118,7 @@ export async function runCommand<R>(
 }
 
 async function isFirst(
-  { sequelize }: Context,
+  { sequelize }: CommandContext,
   { commandId, actor, type }: Order,
   fingerprint: string,
   now: Instant,
@@ -129,7 +140,7 @@ async function isFirst(
 }
 
 async function firstReply<R>(
-  { sequelize }: Context,
+  { sequelize }: CommandContext,
   { commandId }: Order,
   fingerprint: string,
   tx: Transaction,

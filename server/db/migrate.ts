@@ -9,6 +9,8 @@ import * as texts from './migrations/0005-texts';
 import * as nightLogs from './migrations/0006-night-logs';
 import * as locksInOrder from './migrations/0007-locks-in-order';
 import * as stormRoads from './migrations/0008-storm-roads';
+import * as regions from './migrations/0009-regions';
+import * as areaShapes from './migrations/0010-area-shapes';
 
 /** Runs one statement of a migration. */
 export type Run = (statement: string) => Promise<void>;
@@ -27,6 +29,8 @@ const MIGRATIONS: Readonly<Record<string, Migration>> = {
   '0006-night-logs': nightLogs,
   '0007-locks-in-order': locksInOrder,
   '0008-storm-roads': stormRoads,
+  '0009-regions': regions,
+  '0010-area-shapes': areaShapes,
 };
 
 /** Brings the schema up to date; safe when two processes start at once. @returns names newly applied */

@@ -57,7 +57,8 @@ export function bindRoutes(
     const parse = spec.body === 'bytes' ? parseBytes : parseJson;
     const chain: RequestHandler[] = [
       guard(name, spec, personOf, limit),
-      ...(spec.body ? [parse] : []),
+      // A stream is the handler's own: no parser may hold it.
+      ...(spec.body && spec.body !== 'stream' ? [parse] : []),
     ];
     router[verb](path, ...chain, async (request, response) => {
       const person = personFrom(response);
@@ -110,7 +111,7 @@ const personFrom = (response: Response): SignedIn | null =>
   response.locals['person'] as SignedIn | null;
 
 function bodyOf(spec: RouteSpec, request: Request): unknown {
-  if (spec.body === undefined) return undefined;
+  if (spec.body === undefined || spec.body === 'stream') return undefined;
   if (spec.body === 'bytes') {
     const bytes: unknown = request.body;
     if (!Buffer.isBuffer(bytes) || bytes.length === 0)

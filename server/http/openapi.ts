@@ -60,11 +60,11 @@ function operation(name: string, path: string, spec: RouteSpec): object {
   };
 }
 
-function requestBody(body: z.ZodType | 'bytes'): object {
+function requestBody(body: z.ZodType | 'bytes' | 'stream'): object {
   return {
     required: true,
     content:
-      body === 'bytes'
+      body === 'bytes' || body === 'stream'
         ? { 'application/octet-stream': { schema: { type: 'string', format: 'binary' } } }
         : { 'application/json': { schema: schemaOf(body, 'input') } },
   };

@@ -51,6 +51,9 @@ const PROBLEMS: Readonly<Record<ProblemCode, { status: number; title: string }>>
   'opted-out': { status: 409, title: 'This number wants no texts' },
   'log-not-readable': { status: 422, title: 'The log cannot be read' },
   'log-busy': { status: 409, title: 'The log is being imported' },
+  'region-file-refused': { status: 422, title: 'The file cannot be taken' },
+  'region-busy': { status: 409, title: 'A region is being imported or located' },
+  'no-room': { status: 507, title: 'The disk is full' },
   'already-used': { status: 409, title: 'It is in use already' },
   busy: { status: 503, title: 'Busy; try again in a moment' },
 };

@@ -19,6 +19,9 @@ export const MOST_PER_MINUTE: Readonly<Partial<Record<RouteName, number>>> = {
   uploadNightLog: 30,
   previewNightLog: 60,
   importNightLog: 30,
+  uploadRegionFile: 30,
+  importRegion: 30,
+  useRegion: 30,
   addUser: 60,
   resetPassword: 60,
 };

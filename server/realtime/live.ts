@@ -1,5 +1,6 @@
-import type { PocketDto } from '@shared/contract/areas';
+import type { PocketDto, RegionDto } from '@shared/contract/areas';
 import type { NightLogDto } from '@shared/contract/night-logs';
+import type { RegionImportDto, RegionSwitchDto } from '@shared/contract/regions';
 import type { Position } from '@shared/contract/routes';
 
 /** What commands may announce. Nothing else in the server emits. */
@@ -9,6 +10,9 @@ export interface Live {
   technicianMoved(technicianId: string, position: Position): void;
   pocketsChanged(stormId: string, pockets: readonly PocketDto[]): void;
   nightLogProgressed(log: NightLogDto): void;
+  regionChanged(region: RegionDto): void;
+  regionImportProgressed(progress: RegionImportDto): void;
+  regionSwitchProgressed(progress: RegionSwitchDto): void;
   /** Closes the sockets of a user whose rights have changed, or of one session that is over. */
   endSockets(
     whose: { readonly userId: string } | { readonly sessionId: string },
@@ -23,6 +27,9 @@ export const SILENT: Live = {
   technicianMoved: () => undefined,
   pocketsChanged: () => undefined,
   nightLogProgressed: () => undefined,
+  regionChanged: () => undefined,
+  regionImportProgressed: () => undefined,
+  regionSwitchProgressed: () => undefined,
   endSockets: () => undefined,
   close: () => Promise.resolve(),
 };

@@ -28,6 +28,7 @@ type Io = Server<ClientEvents, ServerEvents, Record<string, never>, SocketData>;
 type LiveSocket = Socket<ClientEvents, ServerEvents, Record<string, never>, SocketData>;
 
 const DESK_ROOM = 'desk';
+const OWNERS_ROOM = 'owners';
 const technicianRoom = (id: string): string => `technician:${id}`;
 const userRoom = (id: string): string => `user:${id}`;
 const sessionRoom = (id: string): string => `session:${id}`;
@@ -90,7 +91,7 @@ export async function serveSockets(door: SocketDoor): Promise<Live> {
     void socket.join([userRoom(person.userId), sessionRoom(person.sessionId)]);
     if (person.role === 'technician') {
       if (person.technicianId) void socket.join(technicianRoom(person.technicianId));
-    } else void socket.join(DESK_ROOM);
+    } else void socket.join(person.role === 'owner' ? [DESK_ROOM, OWNERS_ROOM] : DESK_ROOM);
 
     // Also of events that mean nothing here: reading them costs, too.
     const events = new Allowance(MOST_EVENTS_PER_MINUTE);
@@ -136,6 +137,15 @@ export async function serveSockets(door: SocketDoor): Promise<Live> {
     },
     nightLogProgressed: (log) => {
       io.to(DESK_ROOM).emit('night-log:progressed', log);
+    },
+    regionChanged: (region) => {
+      io.emit('region:changed', region);
+    },
+    regionImportProgressed: (progress) => {
+      io.to(OWNERS_ROOM).emit('region:import-progressed', progress);
+    },
+    regionSwitchProgressed: (progress) => {
+      io.to(OWNERS_ROOM).emit('region:switch-progressed', progress);
     },
     endSockets: (whose, why) => {
       const room = 'userId' in whose ? userRoom(whose.userId) : sessionRoom(whose.sessionId);

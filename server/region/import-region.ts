@@ -4,8 +4,11 @@ import { rm, writeFile } from 'node:fs/promises';
 import { join } from 'node:path';
 import { takeAddressFile } from './address-file/take-address-file';
 import { bookOf, ownAddresses, townFinder, type AddressPoint } from './address-points';
+import { inWords } from './disk-trouble';
 import { leftOutOf } from './left-out';
-import { MAX_ZOOM, mapLayers, MIN_ZOOM } from './map-layers';
+import { feedersOf } from './feeders';
+import { writeFeeders } from './feeders-file';
+import { MAX_ZOOM, mapLayers, MIN_ZOOM, roadClassOf } from './map-layers';
 import { readExtract } from './osm-extract';
 import {
   MANIFEST_FILE,
@@ -54,6 +57,15 @@ const STEPS: readonly MakingStep[] = [
         places: book.places.length,
         roadKm: roadKilometres(making.extract),
       };
+    },
+  },
+  {
+    name: 'feeders',
+    weight: 1,
+    run: async ({ extract, book, folder }) => {
+      const power = feedersOf(extract, book.addresses);
+      await writeFeeders(folder, power);
+      return { feeders: power.feeders.length };
     },
   },
   ROADS_STEP,
@@ -137,7 +149,7 @@ export async function importRegion(order: RegionImport): Promise<ImportedRegion>
     return { manifest, folder };
   } catch (error) {
     await rm(workshop, { recursive: true, force: true });
-    throw error;
+    throw inWords(error);
   }
 }
 
@@ -154,7 +166,10 @@ async function runSteps(
 
   tell('reading', 0);
   const extract = await readExtract(order.pbf, (share) => tell('reading', share * READING_WEIGHT));
-  if (extract.ways.size === 0) throw new UnreadableRegion('The file holds no streets.');
+  if (![...extract.ways.values()].some(({ tags }) => roadClassOf(tags) !== null))
+    throw new UnreadableRegion(
+      'The extract holds no roads. Take one that holds all of a county, not only its addresses or buildings.',
+    );
   timed.push({ step: 'reading', seconds: secondsSince(began) });
 
   const making: RegionMaking = {
@@ -194,6 +209,7 @@ const NO_COUNTS: RegionCounts = {
   roadKm: 0,
   roadNodes: 0,
   roadEdges: 0,
+  feeders: 0,
   tiles: 0,
   bytes: 0,
 };

@@ -1,3 +1,4 @@
+import { basename } from 'node:path';
 import type { RegionDto } from '@shared/contract/areas';
 import type { AddressSuggestion } from '@shared/contract/calls';
 import type { AddressSuggestion as Found } from '@shared/domain/address/address-suggestion';
@@ -27,6 +28,7 @@ export async function openRegion({ manifest, folder }: ImportedRegion): Promise<
     addressCount: manifest.counts.addresses,
   };
   return {
+    key: basename(folder),
     dto,
     power,
     cities: [...new Set(book.addresses.map(({ city }) => city))],

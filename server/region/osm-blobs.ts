@@ -50,11 +50,11 @@ async function readHeader(
   const prefix = await whole(source, offset, 4, offset);
   const length = new DataView(prefix.buffer, prefix.byteOffset, 4).getUint32(0);
   if (length === 0 || length > LARGEST_HEADER) {
-    throw new UnreadableRegion(
-      offset === 0
-        ? 'This is no .osm.pbf file. Give an OpenStreetMap extract in the PBF format.'
-        : `The file is damaged at byte ${offset}: a block header of ${length} bytes is not allowed.`,
-    );
+    throw offset === 0
+      ? await notPbf(source)
+      : new UnreadableRegion(
+          `The file is damaged at byte ${offset}: a block header of ${length} bytes is not allowed. Fetch it again.`,
+        );
   }
   const header = { type: '', size: -1 };
   const bytes = await whole(source, offset + 4, length, offset);
@@ -65,11 +65,11 @@ async function readHeader(
     }, header),
   );
   if (header.type === '' || header.size < 0) {
-    throw new UnreadableRegion(
-      offset === 0
-        ? 'This is no .osm.pbf file. Give an OpenStreetMap extract in the PBF format.'
-        : `The file is damaged at byte ${offset}: a block has no type or no size.`,
-    );
+    throw offset === 0
+      ? await notPbf(source)
+      : new UnreadableRegion(
+          `The file is damaged at byte ${offset}: a block has no type or no size. Fetch it again.`,
+        );
   }
   if (header.size > LARGEST_BLOB) {
     throw new UnreadableRegion(
@@ -77,6 +77,32 @@ async function readHeader(
     );
   }
   return { ...header, start: offset + 4 + length };
+}
+
+/** What a file that is no extract in this format may be, and what to do with it. */
+async function notPbf(source: ByteSource): Promise<UnreadableRegion> {
+  const head = Buffer.from(await source.read(0, Math.min(256, source.total)));
+  const text = head.toString('latin1').trimStart();
+  const begins = (...bytes: number[]): boolean => bytes.every((byte, i) => head[i] === byte);
+  if (/^(\u00ef\u00bb\u00bf)?</.test(text))
+    return new UnreadableRegion(
+      'This is XML and no .osm.pbf file. Turn it into one, for example with: osmium cat in.osm -o out.osm.pbf',
+    );
+  if (begins(0x1f, 0x8b))
+    return new UnreadableRegion(
+      'This is packed by gzip and no .osm.pbf file. Unpack it, and if it is XML then turn it into one with: osmium cat in.osm -o out.osm.pbf',
+    );
+  if (begins(0x42, 0x5a, 0x68) || begins(0x50, 0x4b) || begins(0xfd, 0x37) || begins(0x28, 0xb5))
+    return new UnreadableRegion(
+      'This is a packed file (.bz2, .zip, .xz or .zst) and no .osm.pbf file. Unpack it first.',
+    );
+  if (/^[{[]/.test(text))
+    return new UnreadableRegion(
+      'This is JSON and no .osm.pbf file. Streets come from an OpenStreetMap extract; GeoJSON can be given as the address file beside it.',
+    );
+  return new UnreadableRegion(
+    'This is no .osm.pbf file. Give an OpenStreetMap extract in the PBF format; its name ends in .osm.pbf.',
+  );
 }
 
 function unpack(body: Uint8Array, offset: number): Uint8Array {

@@ -45,6 +45,8 @@ export interface RegionCounts {
   readonly roadNodes: number;
   /** Stretches from junction to junction, each direction and each way in counted. */
   readonly roadEdges: number;
+  /** Circuits of the power company, as far as the data tells of them. */
+  readonly feeders: number;
   readonly tiles: number;
   /** Size of the tiles, packed. */
   readonly bytes: number;

@@ -3,7 +3,8 @@ import type { OsmExtract } from './osm-extract';
 import type { AddressFileReport, LeftOut, RegionCounts } from './region-data';
 
 /** The parts of an import, in the words that progress is told in. */
-export type StepName = 'reading' | 'addresses' | 'roads' | 'map' | 'house numbers' | 'done';
+export type StepName =
+  'reading' | 'addresses' | 'feeders' | 'roads' | 'map' | 'house numbers' | 'done';
 
 export interface ImportStep {
   readonly step: StepName;

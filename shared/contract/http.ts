@@ -8,6 +8,7 @@ import * as messages from './messages';
 import * as nightLogs from './night-logs';
 import * as office from './office';
 import type { PATHS, RouteName } from './paths';
+import * as regions from './regions';
 import * as routes from './routes';
 import * as stormRoads from './storm-roads';
 
@@ -18,8 +19,8 @@ export interface RouteSpec {
   readonly summary: string;
   readonly who: Audience;
   readonly query?: z.ZodType;
-  /** `'bytes'`: the body is a file, sent as it is. */
-  readonly body?: z.ZodType | 'bytes';
+  /** `'bytes'`: the body is a file, sent as it is. `'stream'`: as large as the handler allows, and not held. */
+  readonly body?: z.ZodType | 'bytes' | 'stream';
   readonly reply: z.ZodType;
   /** What a success answers with; 200 unless said. */
   readonly status?: 200 | 201;
@@ -154,6 +155,60 @@ export const HTTP = {
 
   region: { summary: 'The region in use', who: EVERYONE, reply: areas.RegionDto },
   feeders: { summary: 'The feeders and substations of the region', who: DESK, reply: FeederMap },
+  feederShape: {
+    summary: 'The ground that some feeders serve together',
+    who: DESK,
+    query: areas.FeederShapeQuery,
+    reply: areas.FeederShape,
+  },
+  listRegions: {
+    summary: 'The regions that are kept, and how imports and switches stand',
+    who: OWNER,
+    reply: regions.Regions,
+  },
+  uploadRegionFile: {
+    summary: 'Send an extract or an address file; nothing is imported yet',
+    who: OWNER,
+    query: z.strictObject({ fileName: z.string().min(1).max(200) }),
+    body: 'stream',
+    reply: regions.RegionFile,
+    status: 201,
+  },
+  importRegion: {
+    summary: 'Make a region of these files, aside; the one in use stays in use',
+    who: OWNER,
+    body: regions.ImportRegion,
+    reply: regions.RegionImportDto,
+    status: 201,
+  },
+  readRegionImport: {
+    summary: 'How far an import is',
+    who: OWNER,
+    reply: regions.RegionImportDto,
+  },
+  cancelRegionImport: {
+    summary: 'Stop an import; nothing of it stays',
+    who: OWNER,
+    body: Command,
+    reply: regions.RegionImportDto,
+  },
+  useRegion: {
+    summary: 'Switch to a region; the open storm’s calls are located in it',
+    who: OWNER,
+    body: regions.UseRegion,
+    reply: regions.RegionSwitchDto,
+  },
+  removeRegion: {
+    summary: 'Remove a region that is not in use',
+    who: OWNER,
+    body: regions.RemoveRegion,
+    reply: Done,
+  },
+  unlocatedCalls: {
+    summary: 'Calls that a switch could not locate by their address',
+    who: OWNER,
+    reply: regions.UnlocatedCalls,
+  },
   suggestAddresses: {
     summary: 'Addresses that match what was typed',
     who: DESK,
@@ -475,7 +530,9 @@ export type SentBodyOf<K extends RouteName> = Http[K] extends { body: infer B ex
   ? z.input<B>
   : Http[K] extends { body: 'bytes' }
     ? ArrayBuffer
-    : undefined;
+    : Http[K] extends { body: 'stream' }
+      ? Blob
+      : undefined;
 export type QueryOf<K extends RouteName> = Http[K] extends { query: infer Q extends z.ZodType }
   ? z.output<Q>
   : undefined;

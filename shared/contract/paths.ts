@@ -27,7 +27,16 @@ export const PATHS = {
   readMessages: ['POST', '/api/calls/:callId/messages/reading'],
 
   region: ['GET', '/api/region'],
+  listRegions: ['GET', '/api/regions'],
+  uploadRegionFile: ['POST', '/api/regions/files'],
+  importRegion: ['POST', '/api/regions/imports'],
+  readRegionImport: ['GET', '/api/regions/imports/:importId'],
+  cancelRegionImport: ['POST', '/api/regions/imports/:importId/cancellation'],
+  useRegion: ['POST', '/api/regions/use'],
+  removeRegion: ['POST', '/api/regions/removal'],
+  unlocatedCalls: ['GET', '/api/regions/switches/:switchId'],
   feeders: ['GET', '/api/region/feeders'],
+  feederShape: ['GET', '/api/region/feeder-shape'],
   suggestAddresses: ['GET', '/api/addresses'],
   nearestAddress: ['GET', '/api/addresses/nearest'],
 

@@ -1,8 +1,9 @@
-import type { AreaDto, PocketDto } from './areas';
+import type { AreaDto, PocketDto, RegionDto } from './areas';
 import type { CallRow } from './calls';
 import type { MessageDto } from './messages';
 import type { NightLogDto } from './night-logs';
 import type { Settings, StormDto } from './office';
+import type { RegionImportDto, RegionSwitchDto } from './regions';
 import type { PlanDto, Position, StopCard, StopDto, TechnicianDto } from './routes';
 import type { StormRoadDto } from './storm-roads';
 
@@ -52,6 +53,11 @@ export interface ServerEvents {
   /** Worked out again from the calls; the newest set replaces the one before. */
   'pockets:changed': (stormId: string, pockets: readonly PocketDto[]) => void;
   'night-log:progressed': (log: NightLogDto) => void;
+  /** Another region is in use: its map, its zone, its addresses. */
+  'region:changed': (region: RegionDto) => void;
+  /** To owners, who alone import regions and switch between them. */
+  'region:import-progressed': (progress: RegionImportDto) => void;
+  'region:switch-progressed': (progress: RegionSwitchDto) => void;
   /** The session is over or the rights have changed; the socket closes next. */
   'session:ended': (reason: string) => void;
 }

@@ -29,6 +29,9 @@ export type ProblemCode =
   | 'no-phone'
   | 'log-not-readable'
   | 'log-busy'
+  | 'region-file-refused'
+  | 'region-busy'
+  | 'no-room'
   | 'already-used'
   | 'busy';
 

@@ -1,3 +1,5 @@
+import { readdirSync } from 'node:fs';
+import path from 'node:path';
 import type { Sequelize } from 'sequelize';
 import { migrate, unmigrate } from '../../server/db/migrate';
 import { select } from '../../server/db/sql';
@@ -27,6 +29,9 @@ describe('the migrations', () => {
   it('run once when two processes start at the same moment', async () => {
     await unmigrate(sequelize);
     const applied = await Promise.all([migrate(sequelize), migrate(sequelize)]);
-    expect(applied.map((names) => names.length).sort((a, b) => a - b)).toEqual([0, 8]);
+    expect(applied.map((names) => names.length).sort((a, b) => a - b)).toEqual([
+      0,
+      readdirSync(path.resolve('server/db/migrations')).length,
+    ]);
   });
 });

@@ -19,6 +19,8 @@ export const testConfig = (database: Config['database']): Config => ({
   },
   dataFolder: os.tmpdir(),
   tilesFolder: os.tmpdir(),
+  regionFilesFolder: os.tmpdir(),
+  mostRegionUploadBytes: 5_000_000,
   clientFolder: os.tmpdir(),
   regionZone: 'America/New_York',
   defaultAreaCode: '252',

@@ -20,6 +20,7 @@ const ADDRESSES: readonly AddressSuggestion[] = [
 
 /** A hamlet of two addresses; the real region has tests of its own. */
 export const TEST_REGION: RegionInUse = {
+  key: 'hamlet-0',
   cities: ['Pell Harbor'],
   power: { feeders: [], substations: [] },
   dto: {

@@ -8,7 +8,7 @@ import type { Role } from '@shared/contract/common';
 import { PATHS, type RouteName } from '@shared/contract/paths';
 import type { ClientEvents, ServerEvents } from '@shared/contract/realtime';
 import type { Instant } from '@shared/domain/instant';
-import { createApp, type App } from '../../server/app';
+import { createApp, type App, type GivenContext } from '../../server/app';
 import type { Config } from '../../server/config';
 import type { Context } from '../../server/context';
 import { hashPassword } from '../../server/staff/passwords';
@@ -65,7 +65,7 @@ export async function startServer(
     suffix?: string;
     port?: number;
     config?: Partial<Config>;
-    context?: Partial<Context>;
+    context?: Partial<GivenContext>;
   } = {},
 ): Promise<TestServer> {
   const sequelize = await freshDatabase(options.suffix);

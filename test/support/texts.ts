@@ -7,7 +7,7 @@ import os from 'node:os';
 import path from 'node:path';
 import type { CallDetail } from '@shared/contract/calls';
 import { MINUTE_MS, type Instant } from '@shared/domain/instant';
-import type { Context } from '../../server/context';
+import type { GivenContext } from '../../server/app';
 import type { JournalEntry } from '../../server/fakes/fake-journal';
 import { type FakeTexts, startFakeTexts } from '../../server/fakes/text-service';
 import { webhookSignature } from '../../server/fakes/fake-webhooks';
@@ -47,7 +47,7 @@ export interface TextLab {
 /** The product, the stand-in of the text service, and a proxy between the two. */
 export async function startTextLab(
   suffix: string,
-  context: Partial<Context> = {},
+  context: Partial<GivenContext> = {},
   /** How long each step of a text takes at the service, and so how late its callbacks come. */
   stepMs = 20,
 ): Promise<TextLab> {
