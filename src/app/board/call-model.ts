@@ -50,6 +50,7 @@ export class CallModel {
   readonly problem = this.trouble.asReadonly();
   readonly setback = this.stopped.asReadonly();
   readonly isBusy = computed(() => this.pending() > 0);
+  private readonly underWay = new Set<Promise<boolean>>();
 
   /**
    * The newest row that anybody has told us of. A claim changes no version, so the row that came
@@ -117,6 +118,14 @@ export class CallModel {
       if (!(error instanceof ProblemError)) throw error;
       if (read === this.reads) this.trouble.set(error);
     }
+  }
+
+  /**
+   * Once nothing is under way any more, nor what follows from it: for an order that has to find
+   * there what was sent just before.
+   */
+  async whenIdle(): Promise<void> {
+    while (this.underWay.size > 0) await Promise.allSettled(this.underWay);
   }
 
   dismissSetback(): void {
@@ -197,7 +206,15 @@ export class CallModel {
   }
 
   /** Sends a change. A retry after a lost answer sends the very same command. */
-  private async run(send: (callId: string) => Promise<CallDetail>): Promise<boolean> {
+  private run(send: (callId: string) => Promise<CallDetail>): Promise<boolean> {
+    const sending = this.sendNow(send);
+    this.underWay.add(sending);
+    const over = (): boolean => this.underWay.delete(sending);
+    sending.then(over, over);
+    return sending;
+  }
+
+  private async sendNow(send: (callId: string) => Promise<CallDetail>): Promise<boolean> {
     const callId = this.id();
     if (callId === null) return false;
     this.pending.update((count) => count + 1);

@@ -51,6 +51,7 @@ export class ConcludeForm {
   protected readonly reason = linkedSignal<string>(() => proposedReason(this.check()));
   protected readonly duplicateOf = signal('');
   protected readonly tried = signal(false);
+  protected readonly isEnding = signal(false);
 
   private readonly reasonField = viewChild.required<ElementRef<HTMLInputElement>>('reasonField');
 
@@ -74,14 +75,31 @@ export class ConcludeForm {
   protected async submit(): Promise<void> {
     this.tried.set(true);
     const outcome = this.outcome();
+    const reason = this.reason().trim();
     const duplicateOfId = outcome === 'duplicate' ? this.original()?.id : undefined;
     if (outcome === 'duplicate' && duplicateOfId === undefined) return;
-    const isDone = await this.call.conclude({
-      outcome,
-      reason: this.reason().trim(),
-      ...(duplicateOfId === undefined ? {} : { duplicateOfId }),
-    });
-    if (isDone) this.announce.notice(`Call ${this.call.row()?.number ?? ''}: ${labelOf(outcome)}.`);
+    if (this.isEnding()) return;
+    this.isEnding.set(true);
+    try {
+      await this.end({
+        outcome,
+        reason,
+        ...(duplicateOfId === undefined ? {} : { duplicateOfId }),
+      });
+    } finally {
+      this.isEnding.set(false);
+    }
+  }
+
+  /** The last answer may still be on its way when Enter ends the check; the end comes after it. */
+  private async end(conclusion: Parameters<CallModel['conclude']>[0]): Promise<void> {
+    const call = this.call.row();
+    await this.call.whenIdle();
+    if (this.call.row()?.id !== call?.id) {
+      this.announce.notice(`Call ${call?.number ?? ''} was left before its check had ended.`);
+    } else if (await this.call.conclude(conclusion)) {
+      this.announce.notice(`Call ${call?.number ?? ''}: ${labelOf(conclusion.outcome)}.`);
+    }
   }
 }
 
