@@ -12,18 +12,15 @@ import { MoneyPipe } from '../core/zone';
         <dt>came in</dt>
         <dd>{{ totals().arrivals }}</dd>
       </div>
-      <span class="sign" aria-hidden="true">−</span>
-      <div>
+      <div data-sign="−">
         <dt>settled by phone</dt>
         <dd>{{ totals().settledByPhone }}</dd>
       </div>
-      <span class="sign" aria-hidden="true">−</span>
-      <div>
+      <div data-sign="−">
         <dt>settled by visit</dt>
         <dd>{{ totals().settledByVisit }}</dd>
       </div>
-      <span class="sign" aria-hidden="true">=</span>
-      <div class="main">
+      <div class="main" data-sign="=">
         <dt>open</dt>
         <dd>{{ totals().open }}</dd>
       </div>
@@ -33,18 +30,15 @@ import { MoneyPipe } from '../core/zone';
         <dt>told of</dt>
         <dd>{{ whole() | money }}</dd>
       </div>
-      <span class="sign" aria-hidden="true">=</span>
-      <div class="main">
+      <div class="main" data-sign="=">
         <dt><span class="ground risk" aria-hidden="true"></span>at risk</dt>
         <dd>{{ totals().valueAtRiskCents | money }}</dd>
       </div>
-      <span class="sign" aria-hidden="true">+</span>
-      <div>
+      <div data-sign="+">
         <dt><span class="ground safe" aria-hidden="true"></span>saved</dt>
         <dd>{{ totals().savedCents | money }}</dd>
       </div>
-      <span class="sign" aria-hidden="true">+</span>
-      <div>
+      <div data-sign="+">
         <dt><span class="ground lost" aria-hidden="true"></span>lost</dt>
         <dd>{{ totals().lostCents | money }}</dd>
       </div>

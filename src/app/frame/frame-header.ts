@@ -27,6 +27,14 @@ export class FrameHeader {
     return DESTINATIONS.filter((destination) => destination.who.includes(user.role));
   });
 
+  /** On a small screen the row of screens scrolls; where one is must not be what is cut off. */
+  protected inSight(link: HTMLElement): void {
+    const nav = link.parentElement;
+    if (!nav) return;
+    const [row, one] = [nav.getBoundingClientRect(), link.getBoundingClientRect()];
+    nav.scrollLeft += one.left - row.left - (row.width - one.width) / 2;
+  }
+
   constructor() {
     inject(Keys).register(
       DESTINATIONS.map(({ path, name, key }) => ({

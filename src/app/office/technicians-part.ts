@@ -8,6 +8,7 @@ import {
 } from '@angular/core';
 import { MatButton } from '@angular/material/button';
 import type { TechnicianDto } from '@shared/contract/routes';
+import { formatPhone } from '@shared/domain/phone-number';
 import { BoardStore } from '../core/board-store';
 import { Api } from '../core/api';
 import { Clock } from '../core/clock';
@@ -54,6 +55,7 @@ export class TechniciansPart {
   protected readonly rows = computed(() =>
     this.technicians()?.map((technician) => ({
       technician,
+      phone: formatPhone(technician.phone),
       skills: technician.skills.map((skill) => SKILL_WORDS[skill].name).join(', ') || 'none',
       parts: partsOnVan(technician),
       shift: this.shiftWords(technician),
