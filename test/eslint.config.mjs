@@ -30,6 +30,18 @@ const NODE_GLOBALS = {
   clearTimeout: 'readonly',
 };
 
+const TEST_WORDS = [
+  'afterAll',
+  'afterEach',
+  'beforeAll',
+  'beforeEach',
+  'describe',
+  'expect',
+  'it',
+  'jest',
+  'test',
+];
+
 /** A focused test hides all others from the run. */
 const FOCUSED_TESTS = [
   {
@@ -102,13 +114,8 @@ export default tseslint.config(
     languageOptions: {
       parserOptions: {
         tsconfigRootDir: path.resolve(import.meta.dirname, '..'),
-        project: [
-          'shared/tsconfig.json',
-          'server/tsconfig.json',
-          'test/tsconfig.json',
-          'src/tsconfig.app.json',
-          'src/tsconfig.spec.json',
-        ],
+        // One program that holds everything: several would read the same files again and again.
+        project: ['test/tsconfig.json'],
       },
     },
     rules: {
@@ -159,6 +166,12 @@ export default tseslint.config(
         },
       ],
     },
+  },
+
+  {
+    // The one program of types knows the words of tests everywhere.
+    files: [...SERVER, 'shared/**/*.ts'],
+    rules: { 'no-restricted-globals': ['error', ...TEST_WORDS] },
   },
 
   {
