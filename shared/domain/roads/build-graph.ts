@@ -29,6 +29,8 @@ export interface SegmentsAndTurns {
 export interface BuiltRoads {
   readonly graph: RoadGraph;
   readonly stored: StoredHierarchy;
+  /** The numbers that the graph's segments had on the map; those that are missing were left out. */
+  readonly kept: Int32Array;
   /** Segments that are not joined to the rest in both directions, and so were left out. */
   readonly leftOut: number;
 }
@@ -40,16 +42,16 @@ export interface BuiltRoads {
 export function buildRoads(map: SegmentsAndTurns): BuiltRoads {
   const raw = withTurns(map);
   const inside = largestStrongPart(...outward(raw));
-  const kept = raw.arcs.filter(({ tail, head }) => inside[tail]! && inside[head]!);
+  const joined = raw.arcs.filter(({ tail, head }) => inside[tail]! && inside[head]!);
   const segmentNumber = numbered(
     map.segments.length,
-    kept.map(({ lane }) => lane >> 1),
+    joined.map(({ lane }) => lane >> 1),
   );
   const nodeNumber = numbered(
     raw.nodes,
-    kept.flatMap(({ tail, head }) => [tail, head]),
+    joined.flatMap(({ tail, head }) => [tail, head]),
   );
-  const arcs = kept.map(({ tail, head, lane }): Arc => ({
+  const arcs = joined.map(({ tail, head, lane }): Arc => ({
     tail: nodeNumber.of[tail]!,
     head: nodeNumber.of[head]!,
     lane: segmentNumber.of[lane >> 1]! * 2 + (lane & 1),
@@ -60,10 +62,12 @@ export function buildRoads(map: SegmentsAndTurns): BuiltRoads {
   const ranked = arcs
     .map(({ tail, head, lane }): Arc => ({ tail: rank[tail]!, head: rank[head]!, lane }))
     .sort((a, b) => a.tail - b.tail || a.head - b.head || a.lane - b.lane);
-  const segments = map.segments.filter((_, i) => segmentNumber.of[i]! >= 0);
+  const kept = Int32Array.from(map.segments.keys()).filter((i) => segmentNumber.of[i]! >= 0);
+  const segments = Array.from(kept, (i) => map.segments[i]!);
   return {
     graph: flat(segments, ranked, nodeNumber.count),
     stored: stackUp(elimination),
+    kept,
     leftOut: map.segments.length - segments.length,
   };
 }
