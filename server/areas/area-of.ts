@@ -1,29 +1,30 @@
 import type { Transaction } from 'sequelize';
 import type { LonLat } from '@shared/contract/common';
 import { lastBack } from '@shared/domain/outage-area';
-import { isInRing } from '@shared/domain/point-in-ring';
+import { shapeFinder } from '@shared/domain/outage-shape';
 import { AreaRecord } from './area-record';
 
-/** An area with its outline read and its times as moments. */
-export const spanOf = (area: AreaRecord) => ({
+/** An area with its ground read and its times as moments. */
+const spanOf = (area: AreaRecord) => ({
   area,
-  ring: area.outline(),
+  shape: area.ground(),
   outAt: area.outAt.getTime(),
   backAt: area.backAt?.getTime() ?? null,
 });
 
-/** The outage area that counts around a point. */
-export async function areaAround(
+/** Answers for points of a storm which outage area counts there. */
+export async function areasOf(
+  tx: Transaction,
+  stormId: string,
+): Promise<(point: LonLat) => AreaRecord | null> {
+  const areas = await AreaRecord.findAll({ where: { stormId }, transaction: tx });
+  const around = shapeFinder(areas.map(spanOf));
+  return (point) => lastBack(around(point))?.area ?? null;
+}
+
+/** As `areasOf`, for one point. */
+export const areaAround = async (
   tx: Transaction,
   stormId: string,
   point: LonLat,
-): Promise<AreaRecord | null> {
-  const areas = await AreaRecord.findAll({ where: { stormId }, transaction: tx });
-  return areaAmong(areas.map(spanOf), point);
-}
-
-/** As `areaAround`, for many points among the same areas. */
-export const areaAmong = (
-  spans: readonly ReturnType<typeof spanOf>[],
-  point: LonLat,
-): AreaRecord | null => lastBack(spans.filter(({ ring }) => isInRing(point, ring)))?.area ?? null;
+): Promise<AreaRecord | null> => (await areasOf(tx, stormId))(point);

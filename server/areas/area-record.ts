@@ -6,7 +6,7 @@ import {
   type InferCreationAttributes,
   type Sequelize,
 } from 'sequelize';
-import type { LonLat } from '@shared/contract/common';
+import type { AreaShape } from '@shared/contract/areas';
 
 /** One row of `areas`. */
 export class AreaRecord extends Model<
@@ -16,14 +16,14 @@ export class AreaRecord extends Model<
   declare id: string;
   declare stormId: string;
   declare name: string;
-  /** A closed ring, as JSON text. */
-  declare ring: string;
+  /** The coordinates of a MultiPolygon, as JSON text. */
+  declare shape: string;
   declare outAt: Date;
   declare backAt: CreationOptional<Date | null>;
   declare version: CreationOptional<number>;
 
-  outline(): LonLat[] {
-    return JSON.parse(this.ring) as LonLat[];
+  ground(): AreaShape {
+    return JSON.parse(this.shape) as AreaShape;
   }
 
   static register(sequelize: Sequelize): void {
@@ -32,7 +32,7 @@ export class AreaRecord extends Model<
         id: { type: DataTypes.UUID, primaryKey: true },
         stormId: { type: DataTypes.UUID, allowNull: false },
         name: { type: DataTypes.STRING(80), allowNull: false },
-        ring: { type: DataTypes.TEXT('medium'), allowNull: false },
+        shape: { type: DataTypes.TEXT('medium'), allowNull: false },
         outAt: { type: DataTypes.DATE(3), allowNull: false },
         backAt: DataTypes.DATE(3),
         version: { type: DataTypes.INTEGER, allowNull: false, defaultValue: 0 },

@@ -1,7 +1,6 @@
-import { kinks, polygon } from '@turf/turf';
-import type { AreaDto } from '@shared/contract/areas';
-import type { LonLat } from '@shared/contract/common';
+import type { AreaDto, AreaShape } from '@shared/contract/areas';
 import { Refusal } from '@shared/domain/errors';
+import { crossesItself } from '@shared/domain/outage-shape';
 import { orderFrom, runCommand, type Job } from '../commands/run-command';
 import type { Context } from '../context';
 import type { SomeHandlers } from '../http/bind-routes';
@@ -10,9 +9,10 @@ import { lockOpenStorm } from '../storms/storm-queries';
 import { AreaRecord } from './area-record';
 import { toAreaDto } from './area-rows';
 import { callsFollowAreas } from './calls-follow-areas';
+import { shapeOfFeeders } from './feeder-shape';
 import { pocketsOf } from './pockets';
 
-type Names = 'drawArea' | 'changeArea' | 'removeArea' | 'pockets';
+type Names = 'drawArea' | 'changeArea' | 'removeArea' | 'feederShape' | 'pockets';
 
 /** Outage areas, and the pockets that open calls form. */
 export function areaRoutes(context: Context): SomeHandlers<Names> {
@@ -22,7 +22,7 @@ export function areaRoutes(context: Context): SomeHandlers<Names> {
         context,
         orderFrom('drawArea', person, { ...body, ...params }),
         async (job): Promise<AreaDto> => {
-          refuseCrossing(body.ring);
+          refuseCrossing(body.shape);
           refuseTimes(job, body.outAt, body.backAt);
           await lockOpenStorm(params.stormId, job.tx);
           job.inStorm(params.stormId);
@@ -31,7 +31,7 @@ export function areaRoutes(context: Context): SomeHandlers<Names> {
               id: body.areaId,
               stormId: params.stormId,
               name: body.name,
-              ring: JSON.stringify(body.ring),
+              shape: JSON.stringify(body.shape),
               outAt: new Date(body.outAt),
               backAt: body.backAt === null ? null : new Date(body.backAt),
             },
@@ -39,7 +39,7 @@ export function areaRoutes(context: Context): SomeHandlers<Names> {
           );
           const moved = await callsFollowAreas(job, params.stormId);
           job.touched.areas.add(area.id);
-          job.note('area', area.id, `drew an outage area; ${String(moved)} calls follow`);
+          job.note('area', area.id, `drew an outage area; ${followWords(moved)}`);
           return toAreaDto(area);
         },
       ),
@@ -50,10 +50,10 @@ export function areaRoutes(context: Context): SomeHandlers<Names> {
         orderFrom('changeArea', person, { ...body, ...params }),
         async (job): Promise<AreaDto> => {
           const area = await lockArea(job, params.areaId, body.version);
-          if (body.ring) refuseCrossing(body.ring);
+          if (body.shape) refuseCrossing(body.shape);
           area.set({
             ...(body.name === undefined ? {} : { name: body.name }),
-            ...(body.ring === undefined ? {} : { ring: JSON.stringify(body.ring) }),
+            ...(body.shape === undefined ? {} : { shape: JSON.stringify(body.shape) }),
             ...(body.outAt === undefined ? {} : { outAt: new Date(body.outAt) }),
             ...(body.backAt === undefined
               ? {}
@@ -64,7 +64,7 @@ export function areaRoutes(context: Context): SomeHandlers<Names> {
           await area.save({ transaction: job.tx });
           const moved = await callsFollowAreas(job, area.stormId);
           job.touched.areas.add(area.id);
-          job.note('area', area.id, `changed an outage area; ${String(moved)} calls follow`);
+          job.note('area', area.id, `changed an outage area; ${followWords(moved)}`);
           return toAreaDto(area);
         },
       ),
@@ -79,14 +79,25 @@ export function areaRoutes(context: Context): SomeHandlers<Names> {
           await area.destroy({ transaction: job.tx });
           const moved = await callsFollowAreas(job, stormId);
           job.touched.areasGone.add(params.areaId);
-          job.note('area', params.areaId, `removed an outage area; ${String(moved)} calls change`);
+          job.note(
+            'area',
+            params.areaId,
+            `removed an outage area; ${moved === 1 ? '1 call changes' : `${String(moved)} calls change`}`,
+          );
           return { done: true };
         },
       ),
 
+    feederShape: async ({ query }) => ({
+      shape: shapeOfFeeders(context.region.power, query.ids.split(',')),
+    }),
+
     pockets: async ({ params }) => ({ pockets: await pocketsOf(context, params.stormId) }),
   };
 }
+
+const followWords = (calls: number): string =>
+  calls === 1 ? '1 call follows' : `${String(calls)} calls follow`;
 
 /** The area, with its storm locked first: areas of a storm change one after the other. */
 async function lockArea(job: Job, areaId: string, version: number): Promise<AreaRecord> {
@@ -105,7 +116,7 @@ function refuseTimes(job: Job, outAt: number, backAt: number | null): void {
   refuseImpossibleTimes({ powerOutAt: outAt, powerBackAt: backAt }, job.now);
 }
 
-function refuseCrossing(ring: readonly LonLat[]): void {
-  if (kinks(polygon([ring.map((point) => [...point])])).features.length > 0)
+function refuseCrossing(shape: AreaShape): void {
+  if (shape.some((rings) => crossesItself(rings)))
     throw new Refusal('outline-crosses-itself', 'The outline crosses itself. Draw it again.');
 }

@@ -22,7 +22,7 @@ export function toAreaDto(record: AreaRecord): AreaDto {
     id: record.id,
     stormId: record.stormId,
     name: record.name,
-    ring: record.outline(),
+    shape: record.ground(),
     outAt: record.outAt.getTime(),
     backAt: record.backAt?.getTime() ?? null,
     version: record.version,

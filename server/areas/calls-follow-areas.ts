@@ -2,8 +2,8 @@ import { thawClock } from '@shared/domain/thaw/thaw-clock';
 import type { CompartmentFacts } from '@shared/domain/cold-unit';
 import type { Job } from '../commands/run-command';
 import { change, insert, json, select } from '../db/sql';
-import { areaAmong, spanOf } from './area-of';
-import { AreaRecord } from './area-record';
+import { areasOf } from './area-of';
+import type { AreaRecord } from './area-record';
 
 interface PlacedCall {
   id: string;
@@ -25,8 +25,7 @@ const BATCH = 500;
  * @returns how many calls changed
  */
 export async function callsFollowAreas(job: Job, stormId: string): Promise<number> {
-  const areas = await AreaRecord.findAll({ where: { stormId }, transaction: job.tx });
-  const outlines = areas.map(spanOf);
+  const areaAt = await areasOf(job.tx, stormId);
   const calls = await select<PlacedCall>(
     job.sequelize,
     `SELECT id, lon, lat, area_id, times_from, power_out_at, power_back_at
@@ -38,7 +37,7 @@ export async function callsFollowAreas(job: Job, stormId: string): Promise<numbe
 
   const byArea = new Map<AreaRecord | null, { move: string[]; wind: string[] }>();
   for (const call of calls) {
-    const area = areaAmong(outlines, [call.lon, call.lat]);
+    const area = areaAt([call.lon, call.lat]);
     const winds = area !== null && call.times_from === 'area' && !hasTimesOf(call, area);
     if (call.area_id === (area?.id ?? null) && !winds) continue;
     const group = byArea.get(area) ?? { move: [], wind: [] };

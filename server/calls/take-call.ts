@@ -1,8 +1,8 @@
 import type { TakeCall } from '@shared/contract/calls';
 import { Refusal } from '@shared/domain/errors';
 import { HOUR_MS, type Instant } from '@shared/domain/instant';
-import { areaAmong, spanOf } from '../areas/area-of';
-import { AreaRecord } from '../areas/area-record';
+import { areasOf } from '../areas/area-of';
+import type { AreaRecord } from '../areas/area-record';
 import { insert, isDuplicateOf } from '../db/sql';
 import type { Job } from '../commands/run-command';
 import { readSettings } from '../office/settings';
@@ -58,12 +58,12 @@ export async function takeCalls(
   for (const one of told) refuseImpossibleTimes(one, job.now);
   const storm = await lockOpenStorm(stormId, job.tx);
   job.inStorm(storm.id);
-  const areas = (await AreaRecord.findAll({ where: { stormId }, transaction: job.tx })).map(spanOf);
+  const areaAt = await areasOf(job.tx, stormId);
   const households = await householdsOf(job, told);
 
   const calls = told.map((one) => {
     const { lonLat } = one.address;
-    const area = lonLat && areaAmong(areas, lonLat);
+    const area = lonLat && areaAt(lonLat);
     storm.callsTaken += 1;
     const householdId =
       one.isHousehold === false ? null : (households.get(one.phone ?? '') ?? null);

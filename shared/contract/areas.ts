@@ -1,21 +1,35 @@
 import { z } from 'zod';
 import { Command, filledLine, Id, LonLat, Moment, Version, VersionedCommand } from './common';
 
+/** Points of all rings together. An area along a county's shore needs some hundreds. */
+export const MOST_SHAPE_POINTS = 4000;
+
 /** A closed ring in GeoJSON's order; the last point repeats the first. */
 export const Ring = z
   .array(LonLat)
   .min(4)
-  .max(500)
+  .max(MOST_SHAPE_POINTS)
   .refine((ring) => {
     const [first, last] = [ring[0], ring.at(-1)];
     return first?.[0] === last?.[0] && first?.[1] === last?.[1];
   }, 'The outline is not closed.');
 
+/** The coordinates of a GeoJSON MultiPolygon: parts, each of an outer ring and the holes in it. */
+export const AreaShape = z
+  .array(z.array(Ring).min(1).max(200))
+  .min(1)
+  .max(200)
+  .refine(
+    (shape) => shape.flat().reduce((sum, ring) => sum + ring.length, 0) <= MOST_SHAPE_POINTS,
+    `The outline has more than ${String(MOST_SHAPE_POINTS)} points.`,
+  );
+export type AreaShape = z.infer<typeof AreaShape>;
+
 export const AreaDto = z.strictObject({
   id: Id,
   stormId: Id,
   name: z.string(),
-  ring: Ring,
+  shape: AreaShape,
   outAt: Moment,
   /** `null`: still out. */
   backAt: Moment.nullable(),
@@ -26,17 +40,21 @@ export type AreaDto = z.infer<typeof AreaDto>;
 export const DrawArea = Command.extend({
   areaId: Id,
   name: filledLine(80),
-  ring: Ring,
+  shape: AreaShape,
   outAt: Moment,
   backAt: Moment.nullable(),
 });
 export const ChangeArea = VersionedCommand.extend({
   name: filledLine(80).optional(),
-  ring: Ring.optional(),
+  shape: AreaShape.optional(),
   outAt: Moment.optional(),
   backAt: Moment.nullable().optional(),
 });
 export const RemoveArea = VersionedCommand;
+
+/** The ground of some feeders, their ids parted by commas. */
+export const FeederShapeQuery = z.strictObject({ ids: z.string().min(1).max(4000) });
+export const FeederShape = z.strictObject({ shape: AreaShape });
 
 export const PocketDto = z.strictObject({
   key: z.string(),

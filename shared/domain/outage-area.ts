@@ -12,9 +12,15 @@ export interface OutageSpan {
  * together the one that went first counts, which is the cautious reading.
  */
 export function lastBack<A extends OutageSpan>(areas: readonly A[]): A | null {
-  const back = ({ backAt }: A): number => backAt ?? Infinity;
-  return areas.reduce<A | null>((chosen, area) => {
-    if (chosen === null || back(area) > back(chosen)) return area;
-    return back(area) === back(chosen) && area.outAt < chosen.outAt ? area : chosen;
-  }, null);
+  return areas.reduce<A | null>(
+    (chosen, area) => (chosen === null || outranks(area, chosen) ? area : chosen),
+    null,
+  );
+}
+
+/** Whether a place inside both areas follows the first of them. */
+export function outranks(area: OutageSpan, other: OutageSpan): boolean {
+  const back = ({ backAt }: OutageSpan): number => backAt ?? Infinity;
+  if (back(area) !== back(other)) return back(area) > back(other);
+  return area.outAt < other.outAt;
 }

@@ -28,7 +28,7 @@ const draw = (told: object = {}) =>
       commandId: randomUUID(),
       areaId: randomUUID(),
       name: 'Heron 2',
-      ring: around(-47.7, 36.4, 0.05),
+      shape: [[around(-47.7, 36.4, 0.05)]],
       outAt: NIGHT - 5 * HOUR_MS,
       backAt: NIGHT - HOUR_MS,
       ...told,
@@ -79,6 +79,49 @@ describe('outage areas', () => {
     });
   });
 
+  it('may have several parts and holes, which rules and changes follow', async () => {
+    const call = await take();
+    const hole = around(-47.7, 36.4, 0.01);
+    const shape = [[around(-47.7, 36.4, 0.05), hole], [around(-47, 36, 0.02)]];
+    const area = (await draw({ shape })).body as AreaDto;
+    expect(area.shape).toEqual(shape);
+    expect((await read(call)).row).toMatchObject({ areaId: null });
+    const filled = await mara.call('changeArea', {
+      params: { areaId: area.id },
+      body: { commandId: randomUUID(), version: 0, shape: [[around(-47.7, 36.4, 0.05)]] },
+    });
+    expect(filled.status).toBe(200);
+    expect((await read(call)).row).toMatchObject({ areaId: area.id });
+  });
+
+  it('that nest give way to the later restoration, and come back when it is removed', async () => {
+    const call = await take();
+    const outer = (await draw({ name: 'outer', backAt: NIGHT - HOUR_MS })).body as AreaDto;
+    const inner = (
+      await draw({
+        name: 'inner',
+        shape: [[around(-47.7, 36.4, 0.01)]],
+        backAt: NIGHT - HOUR_MS / 2,
+      })
+    ).body as AreaDto;
+    expect((await read(call)).row).toMatchObject({ areaId: inner.id });
+    await mara.call('removeArea', {
+      params: { areaId: inner.id },
+      body: { commandId: randomUUID(), version: 0 },
+    });
+    expect((await read(call)).row).toMatchObject({ areaId: outer.id });
+  });
+
+  it('are refused with more points than anybody can use', async () => {
+    const ring = Array.from({ length: 4001 }, (_, i) => {
+      const angle = (2 * Math.PI * (i % 4000)) / 4000;
+      return [-47.7 + Math.cos(angle) / 10, 36.4 + Math.sin(angle) / 10];
+    });
+    const reply = await draw({ shape: [[ring]] });
+    expect(reply.status).toBe(422);
+    expect(reply.body).toMatchObject({ type: '/problems/invalid-request' });
+  });
+
   it('are refused when the outline crosses itself or the times are backwards', async () => {
     const bow = [
       [0, 0],
@@ -87,7 +130,7 @@ describe('outage areas', () => {
       [0, 1],
       [0, 0],
     ];
-    expect((await draw({ ring: bow })).body).toMatchObject({
+    expect((await draw({ shape: [[bow]] })).body).toMatchObject({
       type: '/problems/outline-crosses-itself',
     });
     expect((await draw({ backAt: NIGHT - 9 * HOUR_MS })).body).toMatchObject({

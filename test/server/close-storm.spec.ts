@@ -212,11 +212,15 @@ const AREA = () => ({
   commandId: randomUUID(),
   areaId: randomUUID(),
   name: 'Pell Harbor',
-  ring: [
-    [-47.8, 36.3],
-    [-47.6, 36.3],
-    [-47.6, 36.5],
-    [-47.8, 36.3],
+  shape: [
+    [
+      [
+        [-47.8, 36.3],
+        [-47.6, 36.3],
+        [-47.6, 36.5],
+        [-47.8, 36.3],
+      ],
+    ],
   ],
   outAt: server.now() - 3_600_000,
   backAt: null,

@@ -137,12 +137,16 @@ describe('the drain of a storm', () => {
         commandId: randomUUID(),
         areaId: area,
         name: 'Larch 1',
-        ring: [
-          [-47.71, 36.39],
-          [-47.69, 36.39],
-          [-47.69, 36.41],
-          [-47.71, 36.41],
-          [-47.71, 36.39],
+        shape: [
+          [
+            [
+              [-47.71, 36.39],
+              [-47.69, 36.39],
+              [-47.69, 36.41],
+              [-47.71, 36.41],
+              [-47.71, 36.39],
+            ],
+          ],
         ],
         outAt: NIGHT - 2 * HOUR_MS,
         backAt: null,
@@ -325,12 +329,16 @@ describe('the drain as CSV', () => {
         commandId: randomUUID(),
         areaId: randomUUID(),
         name: '=HYPERLINK("http://example.com","x")',
-        ring: [
-          [-47.71, 36.39],
-          [-47.69, 36.39],
-          [-47.69, 36.41],
-          [-47.71, 36.41],
-          [-47.71, 36.39],
+        shape: [
+          [
+            [
+              [-47.71, 36.39],
+              [-47.69, 36.39],
+              [-47.69, 36.41],
+              [-47.71, 36.41],
+              [-47.71, 36.39],
+            ],
+          ],
         ],
         outAt: NIGHT - 2 * HOUR_MS,
         backAt: null,

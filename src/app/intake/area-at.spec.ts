@@ -6,7 +6,7 @@ const anArea = (name: string, outAt: number, ring: LonLat[]): AreaDto => ({
   id: name,
   stormId: 'storm',
   name,
-  ring,
+  shape: [[ring]],
   outAt,
   backAt: null,
   version: 0,

@@ -110,7 +110,7 @@ describe('timesInForce', () => {
     id: newId(),
     stormId: newId(),
     name: 'Northshore',
-    ring: [],
+    shape: [],
     outAt: NOW - 9 * HOUR_MS,
     backAt: null,
     version: 1,

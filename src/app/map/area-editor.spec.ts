@@ -27,7 +27,7 @@ const anArea = (change: Partial<AreaDto> = {}): AreaDto => ({
   id: idOf(77),
   stormId: STORM_ID,
   name: 'Heron 1',
-  ring: RING,
+  shape: [[RING]],
   outAt: NOW - 5 * HOUR_MS,
   backAt: null,
   version: 3,
@@ -114,7 +114,7 @@ describe('drawing an outage area', () => {
       params: { stormId: STORM_ID },
       body: expect.objectContaining({
         name: 'Heron 1',
-        ring: RING,
+        shape: [[RING]],
         outAt: NOW - 5 * HOUR_MS,
         backAt: null,
       }) as unknown,
@@ -236,7 +236,7 @@ describe('changing an outage area', () => {
   it('keeps an own outline while the other one changed theirs', () => {
     const { editor, board } = changing();
     editor.shape((outline) => removeCorner(outline, 0));
-    const theirs = anArea({ ring: [[-41, 34], ...RING.slice(1, 4), [-41, 34]], version: 4 });
+    const theirs = anArea({ shape: [[[[-41, 34], ...RING.slice(1, 4), [-41, 34]]]], version: 4 });
     board.takeReply({ kind: 'areas', areas: [theirs], gone: [] });
     expect(editor.theirChanges()).toEqual(['The outline was changed']);
     editor.keepMine();

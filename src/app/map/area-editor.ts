@@ -1,13 +1,15 @@
 import { computed, inject, Injectable, signal } from '@angular/core';
-import type { AreaDto } from '@shared/contract/areas';
+import type { AreaDto, AreaShape } from '@shared/contract/areas';
 import type { LonLat } from '@shared/contract/common';
-import { isInRing } from '@shared/domain/point-in-ring';
+import { isInShape } from '@shared/domain/outage-shape';
 import { Announce } from '../core/announce';
 import { Api, newId } from '../core/api';
 import { BoardStore } from '../core/board-store';
 import { Clock } from '../core/clock';
 import { ProblemError, problemWords } from '../core/problem-error';
 import { Zone } from '../core/zone';
+import { type AreaGround, groundOf, isSameShape, NO_GROUND, shapeOf } from './area-ground';
+import { type AreaOverlap, overlapsWith } from './area-overlaps';
 import {
   areaChanges,
   type AreaTimes,
@@ -18,17 +20,7 @@ import {
   typeBack,
   typeOut,
 } from './area-times';
-import {
-  addCorner,
-  canClose,
-  closed,
-  crossesItself,
-  EMPTY_OUTLINE,
-  type Outline,
-  outlineOf,
-  ringOf,
-  select,
-} from './outline';
+import { addCorner, canClose, closed, crossesItself, type Outline, select } from './outline';
 
 /**
  * An outage area while it is drawn or changed: its outline, its times, what went wrong with saving
@@ -45,9 +37,9 @@ export class AreaEditor {
   private readonly isOpenNow = signal(false);
   /** The area as the person saw it when the change began; `null` for a new one. */
   private readonly baseNow = signal<AreaDto | null>(null);
-  private readonly outlineNow = signal<Outline>(EMPTY_OUTLINE);
+  private readonly groundNow = signal<AreaGround>(NO_GROUND);
   private readonly timesNow = signal<AreaTimes>(BLANK_TIMES);
-  private readonly earlier = signal<readonly Outline[]>([]);
+  private readonly earlier = signal<readonly AreaGround[]>([]);
   private readonly pending = signal(false);
   private readonly trouble = signal('');
   private readonly isGoneNow = signal(false);
@@ -57,13 +49,19 @@ export class AreaEditor {
 
   readonly isOpen = this.isOpenNow.asReadonly();
   readonly base = this.baseNow.asReadonly();
-  readonly outline = this.outlineNow.asReadonly();
+  readonly outline = computed(() => this.groundNow().outline);
+  /** The ground as feeders or a file gave it, where no corners are moved; `null` while it is an outline. */
+  readonly whole = computed(() => this.groundNow().whole);
+  /** As it would be saved; `null` as long as it encloses nothing. */
+  readonly ground = computed<AreaShape | null>(() => shapeOf(this.groundNow()));
   readonly times = this.timesNow.asReadonly();
   readonly isBusy = this.pending.asReadonly();
   /** Why saving did not work. */
   readonly problem = this.trouble.asReadonly();
   readonly canUndo = computed(() => this.earlier().length > 0);
-  readonly isDrawing = computed(() => this.isOpen() && !this.outline().isClosed);
+  readonly isDrawing = computed(
+    () => this.isOpen() && this.whole() === null && !this.outline().isClosed,
+  );
   readonly crosses = computed(() => crossesItself(this.outline()));
 
   /** The area as somebody else has saved it since; `null` while nobody has. */
@@ -85,27 +83,48 @@ export class AreaEditor {
 
   /** Open calls inside the outline as it is now. */
   readonly callsInside = computed(() => {
-    const ring = ringOf(this.outline());
-    if (!ring || !this.isOpen()) return 0;
+    const shape = this.ground();
+    if (!shape || !this.isOpen()) return 0;
     return this.board.openCalls().filter(({ address }) => {
       const { lonLat } = address;
-      return lonLat !== null && isInRing(lonLat, ring);
+      return lonLat !== null && isInShape(lonLat, shape);
     }).length;
   });
 
+  /** Other areas that cover part of this one; while the times are not known, nobody can say who wins. */
+  readonly overlaps = computed<readonly AreaOverlap[]>(() => {
+    const shape = this.ground();
+    const { outAt, backAt, isStillOut } = this.times();
+    if (!shape || !this.isOpen() || this.isDrawing() || outAt === null) return [];
+    const times = { outAt, backAt: isStillOut ? null : backAt };
+    return overlapsWith(shape, times, this.board.areas().values(), this.base()?.id ?? null);
+  });
+
   draw(): void {
-    this.start(null, EMPTY_OUTLINE, BLANK_TIMES);
+    this.start(null, NO_GROUND, BLANK_TIMES);
   }
 
   change(area: AreaDto): void {
-    this.start(area, outlineOf(area.ring), timesOf(area, this.words));
+    this.start(area, groundOf(area.shape), timesOf(area, this.words));
+  }
+
+  /** A new area whose ground is known already, from a file. */
+  begin(shape: AreaShape, times: Partial<AreaTimes>): void {
+    this.start(null, groundOf(shape), { ...BLANK_TIMES, ...times });
+  }
+
+  /** The ground as a whole, from feeders; `null` takes it away again. */
+  setGround(shape: AreaShape | null): void {
+    const ground = shape === null ? NO_GROUND : groundOf(shape);
+    this.earlier.update((steps) => [...steps, this.groundNow()]);
+    this.groundNow.set(ground);
   }
 
   /** Stops without saving. For a few seconds it can be taken up again where it was. */
   cancel(): void {
     const left = {
       base: this.base(),
-      outline: this.outline(),
+      ground: this.groundNow(),
       times: this.times(),
       areaId: this.areaId,
     };
@@ -115,7 +134,7 @@ export class AreaEditor {
     this.announce.notice('The outage area was not saved.', {
       label: 'Go on',
       run: () => {
-        this.start(left.base, left.outline, left.times);
+        this.start(left.base, left.ground, left.times);
         this.areaId = left.areaId;
       },
     });
@@ -124,33 +143,33 @@ export class AreaEditor {
   private close(): void {
     this.isOpenNow.set(false);
     this.baseNow.set(null);
-    this.outlineNow.set(EMPTY_OUTLINE);
+    this.groundNow.set(NO_GROUND);
     this.earlier.set([]);
   }
 
   /** Takes a step with the outline that can be undone. */
   shape(step: (outline: Outline) => Outline): void {
-    const before = this.outline();
-    const after = step(before);
-    if (after === before) return;
+    const before = this.groundNow();
+    const outline = step(before.outline);
+    if (outline === before.outline) return;
     this.earlier.update((steps) => [...steps, before]);
-    this.outlineNow.set(after);
+    this.groundNow.set({ ...before, outline });
   }
 
   /** The middle of a drag: shown, and undone together with its beginning. */
   drag(step: (outline: Outline) => Outline): void {
-    this.outlineNow.update(step);
+    this.groundNow.update((ground) => ({ ...ground, outline: step(ground.outline) }));
   }
 
   select(index: number | null): void {
-    this.outlineNow.update((outline) => select(outline, index));
+    this.groundNow.update((ground) => ({ ...ground, outline: select(ground.outline, index) }));
   }
 
   undo(): void {
     const last = this.earlier().at(-1);
     if (!last) return;
     this.earlier.update((steps) => steps.slice(0, -1));
-    this.outlineNow.set(last);
+    this.groundNow.set(last);
   }
 
   addCorner(corner: LonLat): void {
@@ -192,7 +211,7 @@ export class AreaEditor {
         ? { backAt: other.backAt, backText: other.backText, isStillOut: other.isStillOut }
         : {}),
     }));
-    if (isSameRing(ringOf(this.outline()), base.ring)) this.outlineNow.set(outlineOf(theirs.ring));
+    if (isSameShape(this.ground(), base.shape)) this.groundNow.set(groundOf(theirs.shape));
     this.baseNow.set(theirs);
     this.trouble.set('');
   }
@@ -212,18 +231,18 @@ export class AreaEditor {
   }
 
   async save(): Promise<void> {
-    const ring = ringOf(this.outline());
+    const shape = this.ground();
     const times = this.times();
-    const problem = !ring || !this.outline().isClosed ? OPEN_OUTLINE : problemIn(times);
+    const problem = !shape || this.isDrawing() ? OPEN_OUTLINE : problemIn(times);
     this.trouble.set(this.crosses() ? CROSSING_OUTLINE : problem);
-    if (this.problem() !== '' || !ring || times.outAt === null || this.pending()) return;
+    if (this.problem() !== '' || !shape || times.outAt === null || this.pending()) return;
     if (this.theirs()) {
       this.trouble.set('Somebody else changed this area. Decide first whose version stays.');
       return;
     }
     const content = {
       name: times.name.trim(),
-      ring,
+      shape,
       outAt: times.outAt,
       backAt: times.isStillOut ? null : times.backAt,
     };
@@ -252,7 +271,7 @@ export class AreaEditor {
     });
   }
 
-  private send(content: Pick<AreaDto, 'name' | 'ring' | 'outAt' | 'backAt'>): Promise<AreaDto> {
+  private send(content: AreaContent): Promise<AreaDto> {
     const base = this.base();
     if (!base) {
       const body = { areaId: this.areaId, ...content };
@@ -291,10 +310,10 @@ export class AreaEditor {
     return this.sent.id;
   }
 
-  private start(base: AreaDto | null, outline: Outline, times: AreaTimes): void {
+  private start(base: AreaDto | null, ground: AreaGround, times: AreaTimes): void {
     this.areaId = base?.id ?? newId();
     this.baseNow.set(base);
-    this.outlineNow.set(outline);
+    this.groundNow.set(ground);
     this.timesNow.set(times);
     this.earlier.set([]);
     this.trouble.set('');
@@ -311,26 +330,21 @@ const CROSSING_OUTLINE = 'The outline crosses itself. Move a corner until it doe
 function savedWords(area: AreaDto, inside: number): string {
   const calls = inside === 1 ? '1 open call lies' : `${inside} open calls lie`;
   if (inside === 0) return `${area.name} is saved. No open call lies inside.`;
-  return `${area.name} is saved. ${calls} inside; those without times of their own follow it now.`;
+  const follow =
+    inside === 1
+      ? 'unless it has times of its own, it follows it now'
+      : 'those without times of their own follow it now';
+  return `${area.name} is saved. ${calls} inside; ${follow}.`;
 }
 
-type AreaContent = Pick<AreaDto, 'name' | 'ring' | 'outAt' | 'backAt'>;
+type AreaContent = Pick<AreaDto, 'name' | 'shape' | 'outAt' | 'backAt'>;
 
 /** Only what the person changed, so that nothing else is written over. */
 function changedOnly(base: AreaDto, content: AreaContent): Partial<AreaContent> {
   return {
     ...(content.name === base.name ? {} : { name: content.name }),
-    ...(isSameRing(content.ring, base.ring) ? {} : { ring: content.ring }),
+    ...(isSameShape(content.shape, base.shape) ? {} : { shape: content.shape }),
     ...(content.outAt === base.outAt ? {} : { outAt: content.outAt }),
     ...(content.backAt === base.backAt ? {} : { backAt: content.backAt }),
   };
 }
-
-/** Rounding moves a corner by less than a hand's breadth. */
-const isSameRing = (a: readonly LonLat[] | null, b: readonly LonLat[]): boolean =>
-  a !== null &&
-  a.length === b.length &&
-  a.every(([lon, lat], i) => {
-    const [otherLon = NaN, otherLat = NaN] = b[i] ?? [];
-    return Math.abs(lon - otherLon) < 2e-6 && Math.abs(lat - otherLat) < 2e-6;
-  });

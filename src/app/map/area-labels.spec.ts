@@ -22,19 +22,25 @@ describe('widestSpan', () => {
       [300, 250],
       [10, 250],
     ].map(([x = 0, y = 0]) => ({ x, y }));
-    expect(widestSpan(shape, 100, WINDOW)).toEqual({ left: 100, right: 300 });
-    expect(widestSpan(shape, 220, WINDOW)).toEqual({ left: 10, right: 300 });
+    expect(widestSpan([shape], 100, WINDOW)).toEqual({ left: 100, right: 300 });
+    expect(widestSpan([shape], 220, WINDOW)).toEqual({ left: 10, right: 300 });
+  });
+
+  it('leaves out a hole', () => {
+    const ring = [box(10, 10, 310, 210), box(40, 40, 140, 180)];
+    expect(widestSpan(ring, 100, WINDOW)).toEqual({ left: 140, right: 310 });
+    expect(widestSpan(ring, 20, WINDOW)).toEqual({ left: 10, right: 310 });
   });
 
   it('ends at the window and is none beside the outline', () => {
-    expect(widestSpan(box(-500, 0, 900, 300), 50, WINDOW)).toEqual({ left: 6, right: 394 });
-    expect(widestSpan(box(10, 10, 50, 50), 60, WINDOW)).toBeNull();
+    expect(widestSpan([box(-500, 0, 900, 300)], 50, WINDOW)).toEqual({ left: 6, right: 394 });
+    expect(widestSpan([box(10, 10, 50, 50)], 60, WINDOW)).toBeNull();
   });
 });
 
 describe('placeLabel', () => {
   it('stands inside the area with its times when they fit', () => {
-    const label = placeLabel(box(50, 40, 350, 200), WINDOW, 60, 140, new LabelBoxes());
+    const label = placeLabel([box(50, 40, 350, 200)], WINDOW, 60, 140, new LabelBoxes());
     expect(label).toMatchObject({ hasTimes: true, box: { x: 130, y: 46, width: 140 } });
   });
 
@@ -44,21 +50,21 @@ describe('placeLabel', () => {
       { x: 390, y: 280 },
       { x: 10, y: 280 },
     ];
-    const label = placeLabel(peak, WINDOW, 60, 140, new LabelBoxes());
+    const label = placeLabel([peak], WINDOW, 60, 140, new LabelBoxes());
     expect(label?.hasTimes).toBe(true);
     const { box: at } = label!;
-    const span = widestSpan(peak, at.y + at.height / 2, WINDOW)!;
+    const span = widestSpan([peak], at.y + at.height / 2, WINDOW)!;
     expect(span.right - span.left).toBeGreaterThanOrEqual(at.width);
   });
 
   it('leaves out the times, then stands above a small area', () => {
-    const narrow = placeLabel(box(50, 40, 150, 200), WINDOW, 60, 140, new LabelBoxes());
+    const narrow = placeLabel([box(50, 40, 150, 200)], WINDOW, 60, 140, new LabelBoxes());
     expect(narrow).toMatchObject({ hasTimes: false, box: { width: 60, y: 46 } });
-    const small = placeLabel(box(50, 40, 80, 60), WINDOW, 60, 140, new LabelBoxes());
+    const small = placeLabel([box(50, 40, 80, 60)], WINDOW, 60, 140, new LabelBoxes());
     expect(small).toMatchObject({ hasTimes: false, box: { y: 21 } });
   });
 
   it('is none for an area out of the window', () => {
-    expect(placeLabel(box(500, 40, 700, 60), WINDOW, 60, 140, new LabelBoxes())).toBeNull();
+    expect(placeLabel([box(500, 40, 700, 60)], WINDOW, 60, 140, new LabelBoxes())).toBeNull();
   });
 });

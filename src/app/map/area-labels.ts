@@ -15,13 +15,13 @@ export function paintAreaLabels(
   const labels: { readonly area: AreaDto; readonly box: Box }[] = [];
   ctx.textAlign = 'left';
   ctx.textBaseline = 'top';
-  for (const { area, points, times } of shapes) {
+  for (const { area, rings, times } of shapes) {
     ctx.font = font(12, 600);
     const nameWidth = ctx.measureText(area.name).width + 4;
     ctx.font = font(11);
     const bothWidth = Math.max(nameWidth, ctx.measureText(times).width + 4);
-    const outline = points.map((point) => onScreen(view, point));
-    const label = placeLabel(outline, windowOf(view), nameWidth, bothWidth, boxes);
+    const outlines = rings.map((ring) => ring.map((point) => onScreen(view, point)));
+    const label = placeLabel(outlines, windowOf(view), nameWidth, bothWidth, boxes);
     if (!label) continue;
     const { box, hasTimes } = label;
     ctx.font = font(12, 600);
@@ -43,13 +43,13 @@ const STEP_PX = 22;
  * no room stands above or below it.
  */
 export function placeLabel(
-  outline: readonly WorldPoint[],
+  outlines: readonly (readonly WorldPoint[])[],
   window: ScreenBounds,
   nameWidth: number,
   bothWidth: number,
   boxes: LabelBoxes,
 ): { readonly box: Box; readonly hasTimes: boolean } | null {
-  const bounds = boundsOf(outline);
+  const bounds = boundsOf(outlines.flat());
   const isOut = bounds.right < window.left || bounds.left > window.right;
   if (isOut || bounds.bottom < window.top || bounds.top > window.bottom) return null;
   for (const hasTimes of [true, false]) {
@@ -57,7 +57,7 @@ export function placeLabel(
     const height = hasTimes ? BOTH_HEIGHT_PX : NAME_HEIGHT_PX;
     const lowest = Math.min(bounds.bottom, window.bottom) - height - 6;
     for (let y = Math.max(bounds.top, window.top) + 6; y <= lowest; y += STEP_PX) {
-      const span = widestSpan(outline, y + height / 2, window);
+      const span = widestSpan(outlines, y + height / 2, window);
       if (!span || span.right - span.left < width) continue;
       const x = (span.left + span.right - width) / 2;
       const box = { x, y, width, height };
@@ -76,18 +76,20 @@ export function placeLabel(
   return box && { box, hasTimes: false };
 }
 
-/** The widest stretch of the height `y` that lies inside the outline and the window. */
+/** The widest stretch of the height `y` that lies inside the outlines, in no hole, and in the window. */
 export function widestSpan(
-  outline: readonly WorldPoint[],
+  outlines: readonly (readonly WorldPoint[])[],
   y: number,
   window: Pick<ScreenBounds, 'left' | 'right'>,
 ): { readonly left: number; readonly right: number } | null {
   const crossings: number[] = [];
-  outline.forEach((from, i) => {
-    const to = outline[(i + 1) % outline.length] ?? from;
-    if (from.y > y === to.y > y) return;
-    crossings.push(from.x + ((y - from.y) / (to.y - from.y)) * (to.x - from.x));
-  });
+  for (const outline of outlines) {
+    outline.forEach((from, i) => {
+      const to = outline[(i + 1) % outline.length] ?? from;
+      if (from.y > y === to.y > y) return;
+      crossings.push(from.x + ((y - from.y) / (to.y - from.y)) * (to.x - from.x));
+    });
+  }
   crossings.sort((a, b) => a - b);
   let widest: { left: number; right: number } | null = null;
   for (let i = 0; i + 1 < crossings.length; i += 2) {

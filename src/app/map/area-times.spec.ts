@@ -18,11 +18,15 @@ const anArea = (change: Partial<AreaDto> = {}): AreaDto => ({
   id: '00000000-0000-4000-8000-000000000001',
   stormId: STORM_ID,
   name: 'Heron 1',
-  ring: [
-    [-40, 34],
-    [-39.9, 34],
-    [-39.9, 34.1],
-    [-40, 34],
+  shape: [
+    [
+      [
+        [-40, 34],
+        [-39.9, 34],
+        [-39.9, 34.1],
+        [-40, 34],
+      ],
+    ],
   ],
   outAt: NOW - 5 * HOUR_MS,
   backAt: NOW - HOUR_MS,
@@ -69,7 +73,11 @@ describe('areaChanges', () => {
   });
 
   it('names each difference', () => {
-    const after = anArea({ name: 'Heron', backAt: null, ring: [...anArea().ring].reverse() });
+    const after = anArea({
+      name: 'Heron',
+      backAt: null,
+      shape: [...anArea().shape, ...anArea().shape],
+    });
     expect(areaChanges(anArea(), after, words)).toEqual([
       'Name: Heron 1, now Heron',
       `Came back: ${words(NOW - HOUR_MS)}, now still out`,

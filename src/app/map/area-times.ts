@@ -90,7 +90,7 @@ export function areaChanges(
   }
   if (before.backAt !== after.backAt)
     changes.push(`Came back: ${back(before)}, now ${back(after)}`);
-  if (JSON.stringify(before.ring) !== JSON.stringify(after.ring)) {
+  if (JSON.stringify(before.shape) !== JSON.stringify(after.shape)) {
     changes.push('The outline was changed');
   }
   return changes;

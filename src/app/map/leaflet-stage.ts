@@ -56,6 +56,11 @@ export class LeafletStage {
     this.map.fitBounds(this.home, { animate: false });
   }
 
+  /** Whether it shows this region, made of the same data. */
+  isOf(region: RegionDto): boolean {
+    return region.tilesUrl === this.region.tilesUrl;
+  }
+
   /** Draws anew what has been fetched already. */
   setLook(look: StageLook): void {
     this.tiles.setLook({ ...look, hasCoast: this.region.hasCoast });

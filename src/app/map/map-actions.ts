@@ -36,7 +36,7 @@ export class MapActions {
     const stage = this.stage();
     if (!stage) return;
     if (typeof what === 'object') {
-      stage.showAll('ring' in what ? what.ring : what.hull);
+      stage.showAll('shape' in what ? what.shape.flat(2) : what.hull);
     } else if (what === 'all') {
       stage.showAll(this.scenes.callPlaces());
     } else if (what === 'pocket') {
@@ -71,7 +71,7 @@ export class MapActions {
     const { x, y } = stage.map.getSize();
     const covered = x < NARROW_PX ? { below: y * 0.55 } : { left: PANEL_PX };
     const closest = Math.max(stage.map.getZoom(), MOST_OUTLINE_ZOOM);
-    stage.showAll(this.editor.outline().corners, { ...covered, closest });
+    stage.showAll(this.editor.ground()?.flat(2) ?? [], { ...covered, closest });
   }
 
   cancelArea(): void {

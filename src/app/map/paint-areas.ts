@@ -5,13 +5,14 @@ import { onScreen, toWorld, type View, type WorldPoint } from './world';
 /** An outage area, projected once. */
 export interface AreaShape {
   readonly area: AreaDto;
-  readonly points: readonly WorldPoint[];
+  /** Outer rings and holes alike. */
+  readonly rings: readonly (readonly WorldPoint[])[];
   readonly times: string;
 }
 
 export const areaShape = (area: AreaDto, times: string): AreaShape => ({
   area,
-  points: area.ring.map(toWorld),
+  rings: area.shape.flat().map((ring) => ring.map(toWorld)),
   times,
 });
 
@@ -25,14 +26,14 @@ export function paintAreas(
   hatch: CanvasPattern | null,
   ink: MapInk,
 ): void {
-  for (const { area, points } of shapes) {
-    tracePath(ctx, view, points);
+  for (const { area, rings } of shapes) {
+    traceRings(ctx, view, rings);
     if (area.backAt === null && hatch) {
       // The pattern holds on to the ground, not to the window.
       const phase = { x: -(view.left % HATCH_PX), y: -(view.top % HATCH_PX) };
       hatch.setTransform(new DOMMatrix([1, 0, 0, 1, phase.x, phase.y]));
       ctx.fillStyle = hatch;
-      ctx.fill();
+      ctx.fill('evenodd');
     }
     ctx.lineJoin = 'round';
     ctx.strokeStyle = ink.ground;
@@ -65,18 +66,26 @@ export function makeHatch(ctx: CanvasRenderingContext2D, ink: MapInk): CanvasPat
   return ctx.createPattern(tile, 'repeat');
 }
 
-export function tracePath(
+export const tracePath = (
   ctx: CanvasRenderingContext2D,
   view: View,
   points: readonly WorldPoint[],
+): void => traceRings(ctx, view, [points]);
+
+export function traceRings(
+  ctx: CanvasRenderingContext2D,
+  view: View,
+  rings: readonly (readonly WorldPoint[])[],
 ): void {
   ctx.beginPath();
-  points.forEach((point, i) => {
-    const { x, y } = onScreen(view, point);
-    if (i === 0) ctx.moveTo(x, y);
-    else ctx.lineTo(x, y);
-  });
-  ctx.closePath();
+  for (const ring of rings) {
+    ring.forEach((point, i) => {
+      const { x, y } = onScreen(view, point);
+      if (i === 0) ctx.moveTo(x, y);
+      else ctx.lineTo(x, y);
+    });
+    ctx.closePath();
+  }
 }
 
 export interface ScreenBounds {

@@ -12,6 +12,7 @@ import {
   viewChild,
   ViewEncapsulation,
 } from '@angular/core';
+import type { RegionDto } from '@shared/contract/areas';
 import type { LonLat } from '@shared/contract/common';
 import type { StopDto } from '@shared/contract/routes';
 import { BoardStore } from '../core/board-store';
@@ -133,7 +134,9 @@ export class StormMap {
     });
     effect((onCleanup) => {
       const host = this.host().nativeElement;
-      if (!this.session.region()) return;
+      const region = this.session.region();
+      if (!region) return;
+      untracked(() => this.startAnew(host, region));
       sizes.observe(host);
       onCleanup(() => sizes.unobserve(host));
     });
@@ -143,6 +146,18 @@ export class StormMap {
       this.pin.reset();
       this.stage()?.remove();
     });
+  }
+
+  /** Another region is in use: the map of the one before is taken away whole. */
+  private startAnew(host: HTMLElement, region: RegionDto): void {
+    const stage = this.stage();
+    if (!stage || stage.isOf(region)) return;
+    this.popover.close();
+    this.hands.detach();
+    this.pin.reset();
+    stage.remove();
+    this.stage.set(null);
+    this.start(host);
   }
 
   private start(host: HTMLElement): void {
