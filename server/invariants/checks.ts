@@ -146,6 +146,15 @@ export const INVARIANTS: readonly Invariant[] = [
     ),
   },
   {
+    id: 'storm-roads-fit',
+    says: 'A storm road ends after it begins, has a speed just when it is slow, and a time when it was lifted.',
+    breaches: none(
+      `SELECT id, kind, state FROM storm_roads
+        WHERE ends_at <= starts_at OR (kind = 'slow') <> (speed_share IS NOT NULL)
+           OR speed_share NOT BETWEEN 0.1 AND 0.9 OR (state = 'lifted') <> (lifted_at IS NOT NULL)`,
+    ),
+  },
+  {
     id: 'night-log-rows-are-accounted-for',
     says: 'An imported log accounts for every one of its rows.',
     breaches: none(

@@ -1,4 +1,5 @@
 import { randomUUID } from 'node:crypto';
+import type { Sequelize, Transaction } from 'sequelize';
 import type { Position } from '@shared/contract/routes';
 import { Refusal } from '@shared/domain/errors';
 import { MINUTE_MS, type Instant } from '@shared/domain/instant';
@@ -45,20 +46,30 @@ export async function followPosition(
   );
   if (!driving) return;
   const settings = await readSettings(context.sequelize);
-  const arrival = arrivalFrom({ now: context.clock() }, { settings }, lonLat, driving);
+  const arrival = arrivalFrom(
+    { now: context.clock(), roads: context.roads },
+    { settings },
+    lonLat,
+    driving,
+  );
   if (!arrival) return;
   const laterBy = arrival.at - driving.eta_at.getTime();
   if (Math.abs(laterBy) <= settings.etaMovedMinutes * MINUTE_MS) return;
-  if (laterBy < 0 && (await wasToldByTechnician(context, driving))) return;
+  if (laterBy < 0 && (await wasToldByTechnician(context.sequelize, driving))) return;
   await correctEta(context, technicianId, driving, arrival.at);
 }
 
-/** A straight line knows nothing of a flooded road: it never promises less than the driver did. */
-async function wasToldByTechnician(context: Context, driving: Driving): Promise<boolean> {
+/** Who drives knows more than any map: it never promises less than the driver did. */
+export async function wasToldByTechnician(
+  sequelize: Sequelize,
+  driving: Pick<Driving, 'id' | 'travel_at'>,
+  tx?: Transaction,
+): Promise<boolean> {
   const told = await select(
-    context.sequelize,
+    sequelize,
     "SELECT n FROM audit_entries WHERE entity_id = ? AND at >= ? AND command = 'tellEta' LIMIT 1",
     [driving.id, driving.travel_at],
+    tx,
   );
   return told.length > 0;
 }

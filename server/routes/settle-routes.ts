@@ -1,14 +1,13 @@
 import { Refusal } from '@shared/domain/errors';
 import { MINUTE_MS } from '@shared/domain/instant';
 import { routeTimes, type StopTimes } from '@shared/domain/route-rules';
-import { straightLineTravel } from '@shared/domain/travel/travel-times';
 import { saveCall } from '../calls/change-call';
 import type { Job } from '../commands/run-command';
 import { isDuplicateOf } from '../db/sql';
 import { callOf, routeOf, technicianOf, type Routes } from './lock-routes';
 import { offerNext } from './offer-next';
 import type { StopRecord } from './stop-record';
-import { travelBySettings } from './travel-by-settings';
+import { travelNow } from './travel-by-settings';
 import { whereIs } from './where-technicians-are';
 
 /** A time that moves by less is no news, and every board would have to hear of it. */
@@ -55,7 +54,7 @@ function timesOf(job: Job, routes: Routes, technicianId: string): StopTimes[] {
         isUnreachable: stop.unreachable ?? false,
       };
     }),
-    straightLineTravel(travelBySettings(routes.settings)),
+    travelNow(job.roads, routes.settings),
     routes.settings.serviceMinutes,
   );
 }

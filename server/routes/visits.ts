@@ -6,7 +6,6 @@ import { addMinutes, HOUR_MS, MINUTE_MS, type Instant } from '@shared/domain/ins
 import { drive, isUnderWay, type RouteStopState } from '@shared/domain/route-rules';
 import type { Part } from '@shared/domain/skills';
 import type { LonLat } from '@shared/domain/travel/great-circle';
-import { straightLineTravel } from '@shared/domain/travel/travel-times';
 import type { CallRecord } from '../calls/call-record';
 import { writeRemark } from '../calls/change-call';
 import { windClocks } from '../calls/store-units';
@@ -23,8 +22,8 @@ import {
 } from './lock-routes';
 import { openOwnStop } from './open-stop';
 import { settleRoutes } from './settle-routes';
-import { travelBySettings } from './travel-by-settings';
-import { whereIs } from './where-technicians-are';
+import { travelNow } from './travel-by-settings';
+import { newestSighting, whereIs } from './where-technicians-are';
 
 interface OwnStop {
   readonly stopId: string;
@@ -75,7 +74,16 @@ export async function startTravel(job: Job, told: Own<typeof StartTravel>): Prom
     throw new Refusal('technician-busy', 'Finish the stop that you are at before you drive on.');
   const from = told.from ?? placeOf(job, routes, stop.technicianId);
   const arrival = arrivalFrom(job, routes, from, call);
-  stop.set({ state: 'travelling', travelAt: job.at });
+  // A drive that is measured needs to have begun where somebody saw it begin.
+  const start = told.from ?? seenJustNow(job, routes, stop.technicianId);
+  stop.set({
+    state: 'travelling',
+    travelAt: job.at,
+    travelFromLon: start?.[0] ?? null,
+    travelFromLat: start?.[1] ?? null,
+  });
+  const isUnreachable = arrival === null && call.lon != null;
+  if ((stop.unreachable ?? false) !== isUnreachable) stop.unreachable = isUnreachable;
   await stepCall(job, routes, call, 'travelling', 'on the way');
   if (arrival === null) stop.arriveAt = latest(stop.arriveAt, job.at);
   else {
@@ -151,16 +159,27 @@ function placeOf(job: Job, routes: Routes, technicianId: string): LonLat {
   );
 }
 
-/** Null where nobody knows the place: an arrival would be made up. */
+/** A van moves on within minutes: an older sighting does not say where a drive begins. Our estimate. */
+const FRESH_MS = 5 * MINUTE_MS;
+
+function seenJustNow({ now }: Job, routes: Routes, technicianId: string): LonLat | null {
+  const seen = newestSighting(
+    technicianOf(routes, technicianId),
+    routes.lastDoors.get(technicianId),
+  );
+  return seen && now - seen.seenAt <= FRESH_MS ? seen.at : null;
+}
+
+/** Null where nobody knows the place or no open road leads there: an arrival would be made up. */
 export function arrivalFrom(
-  job: Pick<Job, 'now'>,
+  job: Pick<Job, 'now' | 'roads'>,
   { settings }: Pick<Routes, 'settings'>,
   from: LonLat,
   { lon, lat }: Pick<CallRecord, 'lon' | 'lat'>,
 ): { readonly at: Instant; readonly driveMinutes: number } | null {
   if (lon == null || lat == null) return null;
-  const minutes =
-    drive(straightLineTravel(travelBySettings(settings)), from, [lon, lat]) / MINUTE_MS;
+  const minutes = drive(travelNow(job.roads, settings), from, [lon, lat]) / MINUTE_MS;
+  if (!Number.isFinite(minutes)) return null;
   return { at: addMinutes(job.now, minutes), driveMinutes: Math.round(minutes * 10) / 10 };
 }
 

@@ -46,12 +46,37 @@ export function whereIs(
   now: Instant,
 ): LonLat {
   const home: LonLat = [technician.startLon, technician.startLat];
+  return lastSeen(home, sightingsOf(technician, lastDoor, shifts, now));
+}
+
+/** Positions and doors; a shift's start only says where the van ought to have been. */
+function seenAt(technician: Whereabouts, lastDoor: Sighting | undefined): Sighting[] {
   const { positionLon, positionLat, positionAt } = technician;
-  const sightings: Sighting[] = shifts
-    .filter((shift) => shift.startsAt <= now)
-    .map((shift) => ({ at: home, seenAt: shift.startsAt }));
-  if (lastDoor) sightings.push(lastDoor);
+  const sightings = lastDoor ? [lastDoor] : [];
   if (positionLon != null && positionLat != null && positionAt)
     sightings.push({ at: [positionLon, positionLat], seenAt: positionAt.getTime() });
-  return lastSeen(home, sightings);
+  return sightings;
 }
+
+function sightingsOf(
+  technician: Whereabouts,
+  lastDoor: Sighting | undefined,
+  shifts: readonly WorkShift[],
+  now: Instant,
+): Sighting[] {
+  const home: LonLat = [technician.startLon, technician.startLat];
+  const begun = shifts
+    .filter((shift) => shift.startsAt <= now)
+    .map((shift) => ({ at: home, seenAt: shift.startsAt }));
+  return [...begun, ...seenAt(technician, lastDoor)];
+}
+
+/** The newest sighting of a van; `null` when nobody has seen it. */
+export const newestSighting = (
+  technician: Whereabouts,
+  lastDoor: Sighting | undefined,
+): Sighting | null =>
+  seenAt(technician, lastDoor).reduce<Sighting | null>(
+    (newest, one) => (newest === null || one.seenAt >= newest.seenAt ? one : newest),
+    null,
+  );

@@ -1,0 +1,134 @@
+import { randomUUID } from 'node:crypto';
+import { Refusal } from '@shared/domain/errors';
+import { MINUTE_MS } from '@shared/domain/instant';
+import { conditionsAt, conditionsKey, type RoadConditions } from '@shared/domain/roads/conditions';
+import { drive } from '@shared/domain/route-rules';
+import { forTheGraph } from '@shared/domain/storm-roads';
+import { machine } from '../commands/actor';
+import { runCommand, type Job } from '../commands/run-command';
+import type { Context } from '../context';
+import { readSettings } from '../office/settings';
+import { wasToldByTechnician } from '../routes/follow-position';
+import {
+  callOf,
+  lockRoutes,
+  routeOf,
+  technicianOf,
+  type ActiveStop,
+  type Routes,
+} from '../routes/lock-routes';
+import { overtakePlans } from '../routes/overtake-plans';
+import { settleRoutes } from '../routes/settle-routes';
+import { travelNow } from '../routes/travel-by-settings';
+import { setEta } from '../routes/visits';
+import { newestSighting } from '../routes/where-technicians-are';
+import { lockOpenStorm } from '../storms/storm-queries';
+import { StormRecord } from '../storms/storm-record';
+import { tellEtaIfMoved } from '../texts/tell-customer';
+import { findCutOff } from './find-cut-off';
+import { corrections } from './measured-speeds';
+import { confirmedRoads, factorsAt, shortKey } from './road-conditions';
+
+/**
+ * Brings travel times, routes and arrivals up to the roads of this moment: after a change of a storm road or
+ * of the settings, and when a span begins or ends, or the hour changes. It only compares what holds with
+ * what was followed last, so it may be called as often as one likes, by any number of processes.
+ */
+export async function followRoads(context: Context): Promise<void> {
+  const { roads } = context;
+  if (!roads) return;
+  const storm = await StormRecord.findOne({ where: { state: 'open' } });
+  if (!storm) return;
+  const conditions = await conditionsNow(context, storm.id);
+  if (conditionsKey(roads.followed) !== conditionsKey(conditions)) await roads.follow(conditions);
+  const key = shortKey(conditions);
+  if (storm.roadsKey !== key) await timeRoutesAgain(context, storm.id, conditions, key);
+  await findCutOff(context, storm.id, conditions, key);
+}
+
+async function conditionsNow(context: Context, stormId: string): Promise<RoadConditions> {
+  const { sequelize, region } = context;
+  const now = context.clock();
+  const settings = await readSettings(sequelize);
+  const factors = factorsAt(
+    settings,
+    await corrections(sequelize, settings),
+    now,
+    region.dto.timeZone,
+  );
+  return conditionsAt((await confirmedRoads(stormId)).map(forTheGraph), factors, now);
+}
+
+/** One command for all routes of the storm, so that every board sees them change together. */
+async function timeRoutesAgain(
+  context: Context,
+  stormId: string,
+  conditions: RoadConditions,
+  key: string,
+): Promise<void> {
+  const order = {
+    actor: machine('road conditions'),
+    type: 'followRoads',
+    commandId: randomUUID(),
+    asked: { stormId, key },
+  };
+  try {
+    await runCommand(context, order, async (job) => {
+      const storm = await lockOpenStorm(stormId, job.tx);
+      if (storm.roadsKey === key)
+        throw new Refusal('stale-version', 'Another process has timed the routes already.');
+      const isFirst = storm.roadsKey === '';
+      storm.roadsKey = key;
+      await storm.save({ transaction: job.tx });
+      const routes = await lockRoutes(job, stormId, 'all');
+      for (const technicianId of routes.stops.keys()) await moveArrival(job, routes, technicianId);
+      await settleRoutes(job, routes);
+      // What was proposed before counted on other drives.
+      if (!isFirst) await overtakePlans(job, storm);
+      job.note('storm', stormId, wordsFor(conditions, job.touched.stops.size));
+      return null;
+    });
+  } catch (error) {
+    // Closed meanwhile, or done by another process.
+    if (!(error instanceof Refusal)) throw error;
+  }
+}
+
+const wordsFor = ({ roads, factors }: RoadConditions, moved: number): string =>
+  `routes follow the roads: ${String(roads.length)} storm roads in force, ` +
+  `${String(Math.round(factors.timeOfDay * factors.storm * 100))} % of the usual speed; ` +
+  `${String(moved)} stops have new times`;
+
+/** The arrival of whoever is driving now, from where the van was seen last; the customer is told of a large move. */
+async function moveArrival(job: Job, routes: Routes, technicianId: string): Promise<void> {
+  const stop = routeOf(routes, technicianId).find(({ state }) => state === 'travelling');
+  if (!stop) return;
+  const call = callOf(routes, stop);
+  const arrival = arrivalOf(job, routes, stop);
+  if (arrival === null) return;
+  const isUnreachable = !Number.isFinite(arrival);
+  if ((stop.unreachable ?? false) !== isUnreachable) stop.unreachable = isUnreachable;
+  if (isUnreachable) return;
+  const laterBy = arrival - (stop.etaAt ?? stop.arriveAt).getTime();
+  if (Math.abs(laterBy) < MINUTE_MS) return;
+  const { travelAt } = stop;
+  if (laterBy < 0 && travelAt) {
+    const driving = { id: stop.id, travel_at: travelAt };
+    if (await wasToldByTechnician(job.sequelize, driving, job.tx)) return;
+  }
+  setEta(stop, arrival);
+  await tellEtaIfMoved(job, call, stop);
+}
+
+/** Infinity where no open road leads there; `null` where nobody knows from where to count. */
+function arrivalOf(job: Job, routes: Routes, stop: ActiveStop): number | null {
+  const { lon, lat } = callOf(routes, stop);
+  const seen = newestSighting(
+    technicianOf(routes, stop.technicianId),
+    routes.lastDoors.get(stop.technicianId),
+  );
+  if (lon == null || lat == null || !seen || !stop.travelAt) return null;
+  const driveMs = drive(travelNow(job.roads, routes.settings), seen.at, [lon, lat]);
+  // A van that was seen before it set off stood there until then.
+  return Math.max(job.now, Math.max(seen.seenAt, stop.travelAt.getTime()) + driveMs);
+}
