@@ -11,7 +11,8 @@ import { StreetSpace, type StreetLine } from './street-line';
 import { layOutDrives } from './suburb-drives';
 import { layOutLanes, layOutSuburbs } from './suburbs';
 import { HALF_HEIGHT, HALF_WIDTH, makeTerrain, type Terrain } from './terrain';
-import { layOutTown, waterfront } from './town-grid';
+import { waterfront } from './town-edge';
+import { layOutTown } from './town-grid';
 import { placeTowns, type Town } from './towns';
 import { trafficOf, type Traffic } from './traffic';
 

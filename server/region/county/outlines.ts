@@ -1,4 +1,4 @@
-import { simplified, type Point } from './plane';
+import { rounded, simplified, type Point } from './plane';
 import { CELL, COLUMNS, ROWS, type Territory } from './territory';
 import { HALF_HEIGHT, HALF_WIDTH } from './terrain';
 
@@ -86,7 +86,7 @@ function drawn(corners: readonly number[]): Point[] {
   const [last, beforeLast] = [corners[corners.length - 1]!, corners[corners.length - 2]!];
   const isTurned = last < first || (last === first && beforeLast < second);
   const line = (isTurned ? [...corners].reverse() : corners).map(place);
-  const points = simplified(line, TOLERANCE);
+  const points = rounded(simplified(line, TOLERANCE), 1, false);
   return isTurned ? points.reverse() : points;
 }
 

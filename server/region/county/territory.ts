@@ -7,6 +7,7 @@ import { HALF_HEIGHT, HALF_WIDTH } from './terrain';
 const { floor, ceil, max, min, round } = Math;
 
 export const CELL = 50;
+const SMOOTHING_PASSES = 4;
 export const COLUMNS = round((2 * HALF_WIDTH) / CELL);
 export const ROWS = round((2 * HALF_HEIGHT) / CELL);
 
@@ -35,6 +36,7 @@ export function territoryOf(
   }
   spreadOut(cells);
   for (let k = 0; k < cells.length; k++) if (!isLand[k]) cells[k] = -1;
+  for (let pass = 0; pass < SMOOTHING_PASSES; pass++) smoothBorders(cells);
   joinParts(cells, isStreet);
   mendCorners(cells);
   return cells;
@@ -118,6 +120,32 @@ function spreadOut(cells: Territory): void {
   };
   for (let j = 0; j < ROWS; j++) sweep(j, -1);
   for (let j = ROWS - 1; j >= 0; j--) sweep(j, 1);
+}
+
+/** Borders run straight where many land cells agree; a power company's map shows no cogs. */
+function smoothBorders(cells: Territory): void {
+  const before = cells.slice();
+  const votes = new Uint8Array(256);
+  for (let j = 2; j < ROWS - 2; j++) {
+    for (let i = 2; i < COLUMNS - 2; i++) {
+      const k = j * COLUMNS + i;
+      const own = before[k]!;
+      if (own < 0) continue;
+      const isInner = [k - 1, k + 1, k - COLUMNS, k + COLUMNS].every(
+        (near) => before[near] === own,
+      );
+      if (isInner) continue;
+      let best = own;
+      votes.fill(0);
+      for (let dj = -2; dj <= 2; dj++) {
+        for (let di = -2; di <= 2; di++) {
+          const label = before[k + dj * COLUMNS + di]!;
+          if (label >= 0 && ++votes[label]! > votes[best]!) best = label;
+        }
+      }
+      cells[k] = best;
+    }
+  }
 }
 
 const around = (k: number): number[] => {

@@ -1,15 +1,10 @@
 import { chanceOf, noise2, seedOf } from './chance';
-import { simplified, type Point } from './plane';
-import { numbersAlong, type StreetClass, type StreetLine } from './street-line';
+import type { Point } from './plane';
+import type { StreetClass, StreetLine } from './street-line';
 import type { Terrain } from './terrain';
+import { gatesOf, type Gate } from './town-edge';
+import { chooseParks, parkRing } from './town-parks';
 import type { Town } from './towns';
-
-/** An end of a main street, with a point further out that may lie in the water. */
-export interface Gate {
-  readonly at: Point;
-  readonly outside: Point;
-  readonly isDry: boolean;
-}
 
 export interface TownPlan {
   readonly lines: readonly StreetLine[];
@@ -21,6 +16,8 @@ export interface TownPlan {
 /** Streets keep this far from water, in metres; the terrain's distances are good to about 40 m. */
 const SHORE_MARGIN = 95;
 const STEP = 24;
+/** Metres; a river with its margins on both sides, but no lake. */
+const LONGEST_TOWN_BRIDGE = 330;
 
 /**
  * Lays out a town: long streets side by side, cross streets between them. Cross streets of
@@ -97,11 +94,18 @@ export function layOutTown(seed: number, town: Town, terrain: Terrain): TownPlan
     const stops = new Set<number>([...(crossings.get(k) ?? []), ...(crossings.get(k - 1) ?? [])]);
     for (let u = -Math.ceil(reach / STEP) * STEP; u <= reach; u += STEP) stops.add(u);
     let run: number[] = [];
+    let reachedTo: number | null = null;
     const flush = (): void => {
       // Most streets end at a corner, a few run on into the fields.
       if (k !== 0 && chance.happens(0.75)) while (run.length > 0 && !met.has(run[0]!)) run.shift();
       if (k !== 0 && chance.happens(0.75))
         while (run.length > 0 && !met.has(run.at(-1)!)) run.pop();
+      const [from, to] = [run[0], run.at(-1)];
+      if (k === 0 && from !== undefined && to !== undefined) {
+        if (reachedTo !== null && from - reachedTo < LONGEST_TOWN_BRIDGE)
+          lines.push(townBridge(town, reachedTo, from, place));
+        reachedTo = to;
+      }
       const length = run.length > 1 ? run[run.length - 1]! - run[0]! : 0;
       if (length > 150) lines.push(...longStreet(town, k, run, place));
       run = [];
@@ -123,59 +127,6 @@ export function layOutTown(seed: number, town: Town, terrain: Terrain): TownPlan
     gates: gatesOf(town, lines, place, terrain),
   };
 }
-
-interface Park {
-  readonly from: number;
-  readonly to: number;
-  /** The long streets that bound it. */
-  readonly low: number;
-  readonly high: number;
-}
-
-function chooseParks(town: Town, number: number, seed: number): Park[] {
-  const chance = chanceOf(seed, 'parks', town.index * 1_000 + number);
-  const count = town.isOnBarrier ? 0 : town.size === 'city' ? 4 : town.size === 'town' ? 2 : 1;
-  const parks: Park[] = [];
-  for (let tries = 0; tries < 60 && parks.length < count; tries++) {
-    const length = Math.round(chance.between(0.8, 1.5) * town.blockLength);
-    const from = Math.round(chance.between(-0.55, 0.55) * town.radius);
-    const low = Math.round((chance.between(-0.55, 0.55) * town.radius) / town.blockDepth);
-    const park: Park = { from, to: from + length, low, high: low + 2 };
-    // The main streets through the middle stay whole.
-    if (park.from < 70 && park.to > -70) continue;
-    if (park.low < 0 && park.high > 0) continue;
-    if (
-      parks.some(
-        (other) =>
-          other.from - 250 < park.to &&
-          park.from - 250 < other.to &&
-          other.low - 2 < park.high &&
-          park.low - 2 < other.high,
-      )
-    )
-      continue;
-    parks.push(park);
-  }
-  return parks;
-}
-
-const parkRing = (park: Park, town: Town, place: (u: number, v: number) => Point): Point[] => {
-  const inset = 14;
-  const low = park.low * town.blockDepth + inset;
-  const high = park.high * town.blockDepth - inset;
-  const from = park.from + inset;
-  const to = park.to - inset;
-  const ring: Point[] = [];
-  const side = (u0: number, v0: number, u1: number, v1: number): void => {
-    for (let i = 0; i < 6; i++)
-      ring.push(place(u0 + ((u1 - u0) * i) / 6, v0 + ((v1 - v0) * i) / 6));
-  };
-  side(from, low, to, low);
-  side(to, low, to, high);
-  side(to, high, from, high);
-  side(from, high, from, low);
-  return [...ring, ring[0]!];
-};
 
 /** Leaves out cross streets closer than 45 m to one that must stay. */
 function dropCrowded(places: readonly number[], fixed: readonly number[]): number[] {
@@ -222,6 +173,25 @@ function longStreet(
   if (low.length > 1) parts.push(line(low, '-'));
   if (high.length > 1) parts.push(line(high, '+'));
   return parts;
+}
+
+/** The main street goes on over the river that a town was built at. */
+function townBridge(
+  town: Town,
+  from: number,
+  to: number,
+  place: (u: number, v: number) => Point,
+): StreetLine {
+  const side = town.hasDirections ? (from + to < 0 ? '-' : '+') : '';
+  return {
+    points: [place(from, 0), place((from + to) / 2, 0), place(to, 0)],
+    streetClass: town.size === 'city' ? 'secondary' : 'tertiary',
+    street: `${town.index}/a0${side}`,
+    part: 'along',
+    town: town.index,
+    numbers: null,
+    isBridge: true,
+  };
 }
 
 /** Joins cross streets of bands that line up into one street. */
@@ -272,71 +242,3 @@ const gridNumber = (town: Town, way: number, block: number): number =>
   town.hasDirections
     ? 100 + (Math.abs(way) / block) * 100
     : 100 + ((way + town.radius * 1.35) / block) * 100;
-
-function gatesOf(
-  town: Town,
-  lines: readonly StreetLine[],
-  place: (u: number, v: number) => Point,
-  terrain: Terrain,
-): Gate[] {
-  const ends: Point[] = [];
-  for (const kind of [`${town.index}/a0`, `${town.index}/x0`]) {
-    const points = lines
-      .filter(
-        (line) => line.street.startsWith(kind) && /^[+\-/]|^$/.test(line.street.slice(kind.length)),
-      )
-      .flatMap((line) => line.points);
-    const isAlong = kind.includes('a');
-    const far = (p: Point): number => {
-      const dx = p[0] - town.at[0];
-      const dy = p[1] - town.at[1];
-      return isAlong
-        ? dx * town.along[0] + dy * town.along[1]
-        : dy * town.along[0] - dx * town.along[1];
-    };
-    const sorted = [...points].sort((a, b) => far(a) - far(b));
-    const first = sorted[0];
-    const last = sorted[sorted.length - 1];
-    if (first && last) ends.push(first, last);
-  }
-  const middle = place(0, 0);
-  return ends.map((at) => {
-    const dx = at[0] - middle[0];
-    const dy = at[1] - middle[1];
-    const length = Math.max(1, Math.sqrt(dx * dx + dy * dy));
-    const outside: Point = [at[0] + (dx / length) * 330, at[1] + (dy / length) * 330];
-    return { at, outside, isDry: terrain.clearance(outside) > 190 };
-  });
-}
-
-/** The street along the shore, where the town reaches it: pieces of the line of equal distance to water. */
-export function waterfront(town: Town, shoreLines: readonly Point[][]): StreetLine[] {
-  const lines: StreetLine[] = [];
-  let piece: Point[] = [];
-  const flush = (): void => {
-    if (piece.length > 8) {
-      const points = simplified(piece, 2);
-      const number = lines.length;
-      lines.push({
-        points,
-        streetClass: 'tertiary',
-        street: `${town.index}/w${number}`,
-        part: 'waterfront',
-        town: town.index,
-        numbers: numbersAlong(points, 100, 2.2),
-        isBridge: false,
-      });
-    }
-    piece = [];
-  };
-  for (const ring of shoreLines) {
-    for (const p of ring) {
-      const dx = p[0] - town.at[0];
-      const dy = p[1] - town.at[1];
-      if (dx * dx + dy * dy < town.radius * town.radius * 0.95) piece.push(p);
-      else flush();
-    }
-    flush();
-  }
-  return lines;
-}

@@ -4,7 +4,6 @@ import { makeCounty, type County } from './county';
 import { OsmBook } from './osm-book';
 import { writePower } from './write-power';
 import { writeStreets } from './write-streets';
-import type { Point } from './plane';
 
 /** A way may hold at most 2,000 nodes (OpenStreetMap's own limit); long shores are cut well below. */
 const LONGEST_WAY = 900;
