@@ -1,8 +1,9 @@
 import Flatbush from 'flatbush';
 import { fillCities, townAround } from './fill-cities';
 import { linesOf, type LonLat, type OsmExtract } from './osm-extract';
-import type { Tags } from './osm-model';
 import { placeOf, roadClassOf } from './map-layers';
+import { numberRangesOf } from './number-ranges';
+import type { Tags } from './osm-model';
 
 export interface AddressPoint {
   readonly at: LonLat;
@@ -30,10 +31,31 @@ export interface StreetCorner {
   readonly at: LonLat;
 }
 
+/** House numbers that lie evenly along a line between two known houses. */
+export interface NumberRange {
+  readonly street: string;
+  readonly city: string;
+  readonly postcode: string;
+  readonly from: string;
+  readonly to: string;
+  /** Of the numbers between: each, or each second. */
+  readonly step: 1 | 2;
+  /** From the first number's place to the last one's; two points or more. */
+  readonly line: readonly LonLat[];
+}
+
+/** The number by which people call a road that has a name as well. */
+export interface RouteNumber {
+  readonly number: string;
+  readonly street: string;
+}
+
 export interface PlaceName {
   readonly name: string;
   readonly kind: string;
   readonly city: string;
+  /** The street beside it, when there is one. */
+  readonly street?: string;
   readonly at: LonLat;
 }
 
@@ -42,6 +64,8 @@ export interface AddressBook {
   readonly streets: readonly NamedStreet[];
   readonly corners: readonly StreetCorner[];
   readonly places: readonly PlaceName[];
+  readonly ranges?: readonly NumberRange[];
+  readonly routes?: readonly RouteNumber[];
 }
 
 /** Place kinds whose name serves as the city of an address that has none. */
@@ -53,8 +77,8 @@ export function townFinder(extract: OsmExtract): (at: LonLat) => string {
   const towns = extract.namedNodes.filter(
     ({ tags }) => tags['name'] && CITY_KINDS.includes(tags['place'] ?? ''),
   );
-  const nearest = nearestName(towns.map(({ at, tags }) => ({ at, name: tags['name']! })));
-  return (at) => around(at) || nearest(at);
+  const nearest = nearestOf(towns);
+  return (at) => around(at) || (nearest(at)?.tags['name'] ?? '');
 }
 
 /** The address points of an extract, each with its town. */
@@ -69,36 +93,65 @@ export function bookOf(
   addresses: readonly AddressPoint[],
   townAt: (at: LonLat) => string = townFinder(extract),
 ): AddressBook {
-  const addressCity = nearestName(addresses.map(({ at, city }) => ({ at, name: city })));
+  const nearest = nearestOf(addresses);
   // Most addresses name their city; a road between them belongs where its houses do.
-  const cityAt = (at: LonLat): string => addressCity(at) || townAt(at);
+  const cityAt = (at: LonLat): string => nearest(at)?.city || townAt(at);
   const { streets, corners } = streetsOf(extract, addresses, cityAt);
   const places = extract.namedNodes.flatMap(({ at, tags }): PlaceName[] => {
     const place = placeOf(tags);
-    return place
-      ? [
-          {
-            name: tags['name']!,
-            kind: place.kind,
-            city: tags['addr:city'] ?? (tags['place'] ? '' : cityAt(at)),
-            at,
-          },
-        ]
-      : [];
+    if (!place) return [];
+    const isTown = Boolean(tags['place']);
+    return [
+      {
+        name: tags['name']!,
+        kind: place.kind,
+        city: tags['addr:city'] ?? (isTown ? '' : cityAt(at)),
+        street: tags['addr:street'] ?? (isTown ? '' : (nearest(at, BESIDE_METRES)?.street ?? '')),
+        at,
+      },
+    ];
   });
-  return { addresses, streets, corners, places };
+  return {
+    addresses,
+    streets,
+    corners,
+    places,
+    ranges: numberRangesOf(extract, cityAt),
+    routes: routeNumbersOf(extract),
+  };
 }
 
-/** The name of the nearest of a set of points; empty when there is none. */
-function nearestName(
-  points: readonly { readonly at: LonLat; readonly name: string }[],
-): (at: LonLat) => string {
-  if (points.length === 0) return () => '';
+/** A place this near to a house stands on the same street. Our estimate. */
+const BESIDE_METRES = 120;
+const METRES_PER_DEGREE = 111_195;
+
+/** Finds the nearest of a set of points, no farther than a limit. */
+function nearestOf<T extends { readonly at: LonLat }>(
+  points: readonly T[],
+): (at: LonLat, metres?: number) => T | undefined {
+  if (points.length === 0) return () => undefined;
   const squeeze = Math.cos((points[0]!.at[1] * Math.PI) / 180);
   const index = new Flatbush(points.length);
   for (const { at } of points) index.add(at[0] * squeeze, at[1]);
   index.finish();
-  return ([lon, lat]) => points[index.neighbors(lon * squeeze, lat, 1)[0] ?? 0]?.name ?? '';
+  return ([lon, lat], metres = Infinity) => {
+    const found = index.neighbors(lon * squeeze, lat, 1, metres / METRES_PER_DEGREE)[0];
+    return found === undefined ? undefined : points[found];
+  };
+}
+
+/** The numbers of named roads: a caller on Heron Highway may say "highway 30". */
+function routeNumbersOf(extract: OsmExtract): RouteNumber[] {
+  const found = new Map<string, RouteNumber>();
+  for (const { tags } of extract.ways.values()) {
+    const street = tags['name'];
+    if (!street || !tags['ref'] || roadClassOf(tags) === null) continue;
+    for (const ref of tags['ref'].split(';')) {
+      const number = /\d+[A-Za-z]?\s*$/.exec(ref)?.[0].trim();
+      if (number) found.set(`${number}|${street}`, { number, street });
+    }
+  }
+  return [...found.values()];
 }
 
 /** As the extract has them; some name no town. */

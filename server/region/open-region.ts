@@ -4,16 +4,16 @@ import type { AddressSuggestion } from '@shared/contract/calls';
 import type { AddressSuggestion as Found } from '@shared/domain/address/address-suggestion';
 import { ACCEPT_CONFIDENCE } from '@shared/domain/address/address-suggestion';
 import { AddressIndex } from './address-index';
+import { readAddressTable } from './address-store';
 import { readFeeders } from './feeders-file';
-import { readAddressBook } from './region-data';
 import type { ImportedRegion } from './import-region';
 import type { RegionInUse } from './region-in-use';
 
 /** Loads an imported region's address book, and says where its tiles are. */
 export async function openRegion({ manifest, folder }: ImportedRegion): Promise<RegionInUse> {
-  const book = await readAddressBook(folder);
+  const table = await readAddressTable(folder);
   const power = await readFeeders(folder);
-  const index = new AddressIndex(book);
+  const index = new AddressIndex(table);
   const tiles = `/tiles/${manifest.id}-${manifest.hash}`;
   const dto: RegionDto = {
     id: manifest.id,
@@ -31,9 +31,8 @@ export async function openRegion({ manifest, folder }: ImportedRegion): Promise<
     key: basename(folder),
     dto,
     power,
-    cities: [...new Set(book.addresses.map(({ city }) => city))],
-    suggest: (text, near) =>
-      index.suggest(text, { ...(near ? { near } : {}), limit: 8 }).map(toSuggestion),
+    cities: index.cities,
+    suggest: (text, near) => index.suggest(text, { near }).map(toSuggestion),
     locate: (text) => {
       const found = index.locate(text);
       return found && found.confidence >= ACCEPT_CONFIDENCE ? toSuggestion(found) : null;
@@ -43,8 +42,7 @@ export async function openRegion({ manifest, folder }: ImportedRegion): Promise<
 }
 
 const toSuggestion = (found: Found): AddressSuggestion => ({
-  // The apartment stays with the call, not with the point.
-  label: found.unit === null ? found.label : found.label.replace(` ${found.unit}`, ''),
+  label: found.label,
   unitNo: found.unit ?? '',
   lonLat: [found.lon, found.lat],
   kind: found.kind,

@@ -1,14 +1,8 @@
-import { readFile, writeFile } from 'node:fs/promises';
+import { readFile } from 'node:fs/promises';
 import { join } from 'node:path';
-import { gunzipSync, gzipSync } from 'node:zlib';
-import type {
-  AddressBook,
-  AddressPoint,
-  NamedStreet,
-  PlaceName,
-  StreetCorner,
-} from './address-points';
 import type { LonLat } from './osm-extract';
+
+export { readAddressBook, writeAddressBook } from './address-store';
 
 /** What a region's folder says about itself, in `region.json`. */
 export interface RegionManifest {
@@ -88,119 +82,6 @@ export interface AddressFileReport {
 
 export const MANIFEST_FILE = 'region.json';
 export const REPORT_FILE = 'report.json';
-const ADDRESS_FILE = 'addresses.json.gz';
-
-/** Column by column: half the size of row by row, and quicker to read. */
-interface PackedBook {
-  readonly strings: string[];
-  readonly addresses: {
-    number: string[];
-    street: number[];
-    city: number[];
-    postcode: number[];
-    flats: number[];
-    lon: number[];
-    lat: number[];
-  };
-  readonly streets: { name: number[]; city: number[]; lon: number[]; lat: number[] };
-  readonly corners: {
-    first: number[];
-    second: number[];
-    city: number[];
-    lon: number[];
-    lat: number[];
-  };
-  readonly places: { name: number[]; kind: number[]; city: number[]; lon: number[]; lat: number[] };
-}
-
-const packed = (degrees: number): number => Math.round(degrees * 1e7);
-
-export async function writeAddressBook(folder: string, book: AddressBook): Promise<void> {
-  const strings: string[] = [];
-  const known = new Map<string, number>();
-  const number = (text: string): number => {
-    const found = known.get(text);
-    if (found !== undefined) return found;
-    known.set(text, strings.length);
-    return strings.push(text) - 1;
-  };
-  const places = <T extends { readonly at: LonLat }>(
-    items: readonly T[],
-  ): { lon: number[]; lat: number[] } => ({
-    lon: items.map(({ at }) => packed(at[0])),
-    lat: items.map(({ at }) => packed(at[1])),
-  });
-  const { addresses, streets, corners } = book;
-  const content: PackedBook = {
-    addresses: {
-      number: addresses.map((a) => a.number),
-      street: addresses.map((a) => number(a.street)),
-      city: addresses.map((a) => number(a.city)),
-      postcode: addresses.map((a) => number(a.postcode)),
-      flats: addresses.map((a) => a.flats),
-      ...places(addresses),
-    },
-    streets: {
-      name: streets.map((s) => number(s.name)),
-      city: streets.map((s) => number(s.city)),
-      ...places(streets),
-    },
-    corners: {
-      first: corners.map((c) => number(c.first)),
-      second: corners.map((c) => number(c.second)),
-      city: corners.map((c) => number(c.city)),
-      ...places(corners),
-    },
-    places: {
-      name: book.places.map((p) => number(p.name)),
-      kind: book.places.map((p) => number(p.kind)),
-      city: book.places.map((p) => number(p.city)),
-      ...places(book.places),
-    },
-    strings,
-  };
-  await writeFile(join(folder, ADDRESS_FILE), gzipSync(JSON.stringify(content)));
-}
-
-/** The addresses, streets, corners and places of an imported region. */
-export async function readAddressBook(folder: string): Promise<AddressBook> {
-  const file = await readFile(join(folder, ADDRESS_FILE));
-  const content = JSON.parse(gunzipSync(file).toString('utf8')) as PackedBook;
-  const text = (numbers: readonly number[], i: number): string =>
-    content.strings[numbers[i]!] ?? '';
-  const at = ({ lon, lat }: { lon: number[]; lat: number[] }, i: number): LonLat => [
-    lon[i]! / 1e7,
-    lat[i]! / 1e7,
-  ];
-  const { addresses, streets, corners, places } = content;
-  return {
-    addresses: addresses.number.map((number, i): AddressPoint => ({
-      at: at(addresses, i),
-      number,
-      street: text(addresses.street, i),
-      city: text(addresses.city, i),
-      postcode: text(addresses.postcode, i),
-      flats: addresses.flats[i] ?? 1,
-    })),
-    streets: streets.name.map((_, i): NamedStreet => ({
-      name: text(streets.name, i),
-      city: text(streets.city, i),
-      at: at(streets, i),
-    })),
-    corners: corners.first.map((_, i): StreetCorner => ({
-      first: text(corners.first, i),
-      second: text(corners.second, i),
-      city: text(corners.city, i),
-      at: at(corners, i),
-    })),
-    places: places.name.map((_, i): PlaceName => ({
-      name: text(places.name, i),
-      kind: text(places.kind, i),
-      city: text(places.city, i),
-      at: at(places, i),
-    })),
-  };
-}
 
 export async function readManifest(folder: string): Promise<RegionManifest | null> {
   // No manifest means no complete region here: an import that was cut short, or another folder.

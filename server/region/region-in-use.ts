@@ -2,6 +2,7 @@ import type { RegionDto } from '@shared/contract/areas';
 import type { AddressSuggestion } from '@shared/contract/calls';
 import type { LonLat } from '@shared/contract/common';
 import type { FeederMap } from '@shared/contract/feeders';
+import type { Nearness } from './nearness';
 
 /** The region that the application works in: its map, its zone and its addresses. */
 export interface RegionInUse {
@@ -12,8 +13,12 @@ export interface RegionInUse {
   readonly cities: readonly string[];
   /** The circuits that its power comes by; empty lists when its data knows of none. */
   readonly power: FeederMap;
-  /** Suggestions for what a call taker has typed so far, likeliest first. */
-  suggest(text: string, near: LonLat | null): AddressSuggestion[];
+  /**
+   * Suggestions for what a call taker has typed so far, likeliest first.
+   *
+   * @param near where callers are expected: comes first among equals
+   */
+  suggest(text: string, near: Nearness | null): AddressSuggestion[];
   /** The one address that a written line means, or `null` when that is not sure enough. */
   locate(text: string): AddressSuggestion | null;
   nearest(lonLat: LonLat): AddressSuggestion | null;
@@ -51,7 +56,7 @@ export class RegionHolder implements RegionInUse {
     this.current = next;
   }
 
-  suggest(text: string, near: LonLat | null): AddressSuggestion[] {
+  suggest(text: string, near: Nearness | null): AddressSuggestion[] {
     return this.current.suggest(text, near);
   }
 

@@ -1,4 +1,5 @@
 import { Refusal } from '@shared/domain/errors';
+import { OpenAreas } from '../areas/open-areas';
 import type { Context } from '../context';
 import type { SomeHandlers } from '../http/bind-routes';
 import type { Regions } from './regions';
@@ -18,11 +19,17 @@ type Names =
   | 'unlocatedCalls';
 
 /** The region in use and its addresses; for the owner, the other regions too. */
-export function regionRoutes({ region }: Context, regions: Regions): SomeHandlers<Names> {
+export function regionRoutes(
+  { region, sequelize }: Context,
+  regions: Regions,
+): SomeHandlers<Names> {
+  const areas = new OpenAreas(sequelize);
   return {
     region: async () => region.dto,
     feeders: async () => region.power,
-    suggestAddresses: async ({ query }) => ({ suggestions: region.suggest(query.text, null) }),
+    suggestAddresses: async ({ query }) => ({
+      suggestions: region.suggest(query.text, await areas.nearness()),
+    }),
     nearestAddress: async ({ query }) => ({ suggestion: region.nearest([query.lon, query.lat]) }),
 
     listRegions: () => regions.list(),

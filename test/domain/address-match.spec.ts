@@ -1,18 +1,19 @@
 import fc from 'fast-check';
 import { editDistance } from '../../shared/domain/address/edit-distance';
+import { cityWordCost, matchCity } from '../../shared/domain/address/city-cost';
+import { confidenceOf } from '../../shared/domain/address/confidence';
+import { ACCEPT_CONFIDENCE } from '../../shared/domain/address/address-suggestion';
 import {
   canonicalNumber,
   houseNumberOrder,
+  hyphenatedForms,
   isEvenNumber,
 } from '../../shared/domain/address/house-number';
 import { NameGrams } from '../../shared/domain/address/name-grams';
-import {
-  streetCost,
-  wordCost,
-  type Candidate,
-  type Query,
-} from '../../shared/domain/address/street-score';
+import { soundKey } from '../../shared/domain/address/sounds-alike';
+import { streetCost, type Candidate, type Query } from '../../shared/domain/address/street-score';
 import { canonical, wordsOfStreet } from '../../shared/domain/address/street-words';
+import { wordCost, WordCosts } from '../../shared/domain/address/word-cost';
 
 /** The textbook recurrence over the whole table, without limits or shortcuts. */
 function slowDistance(a: string, b: string): number {
@@ -89,6 +90,15 @@ describe('canonicalNumber', () => {
   });
 });
 
+describe('hyphenatedForms', () => {
+  it('puts back a hyphen that was left out, first where such numbers have it', () => {
+    expect(hyphenatedForms('21809')[0]).toBe('218-09');
+    expect(hyphenatedForms('824')).toContain('82-4');
+    expect(hyphenatedForms('12')).toEqual([]);
+    expect(hyphenatedForms('218-09')).toEqual([]);
+  });
+});
+
 const street = (name: string, city = 'Ternhaven'): Candidate => ({
   words: wordsOfStreet(name.toLowerCase().split(' ').map(canonical)),
   city: [city.toLowerCase()],
@@ -140,6 +150,86 @@ describe('streetCost', () => {
     expect(wordCost('94', '93', false)).toBeNull();
     expect(wordCost('94', '194', false)).toBeNull();
   });
+});
+
+describe('soundKey', () => {
+  // Pairs that differ in spelling only; the words are in any English dictionary.
+  it.each([
+    ['wigeon', 'widgen'],
+    ['quartz', 'kwarts'],
+    ['pheasant', 'fesant'],
+    ['knoll', 'noll'],
+    ['gneiss', 'nise'],
+    ['osprey', 'ospry'],
+  ])('hears %p and %p alike', (a, b) => expect(soundKey(a)).toBe(soundKey(b)));
+
+  it.each([
+    ['heron', 'herring'],
+    ['larch', 'lark'],
+    ['tern', 'fern'],
+  ])('tells %p from %p', (a, b) => expect(soundKey(a)).not.toBe(soundKey(b)));
+});
+
+describe('WordCosts', () => {
+  it('says what wordCost says, and the same again', () => {
+    const costs = new WordCosts(new Map([['heron', soundKey('heron')]]));
+    const word = fc.string({
+      unit: fc.constantFrom('h', 'e', 'r', 'o', 'n'),
+      minLength: 1,
+      maxLength: 7,
+    });
+    fc.assert(
+      fc.property(word, word, fc.boolean(), (said, known, mayBePrefix) => {
+        const expected = wordCost(said, known, mayBePrefix);
+        expect(costs.of(said, known, mayBePrefix)).toBe(expected);
+        expect(costs.of(said, known, mayBePrefix)).toBe(expected);
+      }),
+      { seed: 7, numRuns: 1_000 },
+    );
+  });
+});
+
+describe('a town among the words', () => {
+  const cove = ['larchmere', 'cv'];
+  const used = (text: string): number[] => [...matchCity(text.split(' '), cove, () => false).used];
+
+  it.each(['larchmere cove', 'larchmere', 'larch', 'lrchmr cv', 'lc', 'larchmer'])(
+    'is known by %p',
+    (text) => expect(used(text).length).toBeGreaterThan(0),
+  );
+
+  it.each(['heron', 'st', 'lane', 'la', 'mere'])('is not known by %p', (text) =>
+    expect(used(text)).toEqual([]),
+  );
+
+  it('takes the post’s short words for the long ones', () => {
+    expect(cityWordCost('hbr', 'hbr', false)).toBe(0);
+    expect(cityWordCost('harbor', 'hbr', false)).toBe(0);
+  });
+});
+
+describe('confidenceOf', () => {
+  const sure = {
+    kind: 'rooftop',
+    cost: 0,
+    isPlaced: true,
+    isAgainst: false,
+    isDisputed: false,
+  } as const;
+
+  it('takes a house that fits word for word', () =>
+    expect(confidenceOf(sure)).toBeGreaterThanOrEqual(ACCEPT_CONFIDENCE));
+
+  it.each([
+    { isAgainst: true },
+    { isDisputed: true },
+    { kind: 'street' as const },
+    { kind: 'place' as const },
+    { cost: 0.6 },
+    { kind: 'interpolated' as const, isPlaced: false },
+  ])('leaves to a person what is %p', (doubt) =>
+    expect(confidenceOf({ ...sure, ...doubt })).toBeLessThan(ACCEPT_CONFIDENCE),
+  );
 });
 
 describe('NameGrams', () => {

@@ -1,5 +1,7 @@
 import fc from 'fast-check';
-import { parseAddress } from '../../shared/domain/address/parse-address';
+import { ordinalOf, tokensOf } from '../../shared/domain/address/address-tokens';
+import { parseAddress, waysToRead } from '../../shared/domain/address/parse-address';
+import { isOnlyPostBox } from '../../shared/domain/address/post-box';
 import { canonical, postalStreet, wordsOfStreet } from '../../shared/domain/address/street-words';
 
 describe('parseAddress', () => {
@@ -18,6 +20,17 @@ describe('parseAddress', () => {
     ['12 1/2 larch ct', '12 1/2', 'larch ct'],
     ['third street 14', '14', '3 st'],
     ['1210 Hérön St', '1210', 'heron st'],
+    ['12½ larch ct', '12 1/2', 'larch ct'],
+    ['1210heron st', '1210', 'heron st'],
+    ['heron st no. 12', '12', 'heron st'],
+    ['12 no 3rd st', '12', 'n 3 st'],
+    ["it's 1210 heron st", '1210', 'heron st'],
+    ['my address is number 1210 heron st', '1210', 'heron st'],
+    ['12 twenty-first st', '12', '21 st'],
+    ['12 eighty third st', '12', '83 st'],
+    ['12 21 st st', '12', '21 st'],
+    ['1210 cr 7', '1210', 'county rd 7'],
+    ['1210 heron ternhaven 00012', '1210', 'heron ternhaven'],
     ['1210 heron st near the old mill', '1210', 'heron st'],
   ])('reads %p as number %p on %p', (text, number, street) => {
     const parsed = parseAddress(text);
@@ -37,6 +50,9 @@ describe('parseAddress', () => {
     ['1210 n heron suite 200', 'Ste 200'],
     ['1210 n heron 2nd floor', 'Fl 2'],
     ['1210 n heron st basement', 'Bsmt'],
+    ['1210 n heron apt no. 4', 'Apt 4'],
+    ['#4 1210 n heron', 'Unit 4'],
+    ['apartment 4, 1210 n heron', 'Apt 4'],
   ])('takes the unit off %p', (text, unit) => {
     const parsed = parseAddress(text);
     expect(parsed.unit).toBe(unit);
@@ -77,6 +93,38 @@ describe('parseAddress', () => {
     expect(parsed.cross?.[0]).toBe('larch');
   });
 
+  it('leaves other readings open, the plain one first', () => {
+    const readings = (text: string): string[] =>
+      waysToRead(text).map(({ number, street, unit }) =>
+        [number ?? '-', street.join(' '), unit ?? ''].join('|'),
+      );
+    expect(readings('1210n heron')).toContain('1210|n heron|');
+    expect(readings('218 09 94 road')).toContain('218-09|94 rd|');
+    expect(readings('94 road 218-09')).toContain('218-09|94 rd|');
+    expect(readings('heron 1210 ternhaven')).toContain('1210|heron ternhaven|');
+    expect(readings('1210 heron at gullwick')).toContain('1210|heron gullwick|');
+    expect(readings('12 a larch ct')).toContain('12a|larch ct|');
+  });
+
+  it('takes a part of a postcode, with its town', () => {
+    expect(parseAddress('1210 heron st, ternhaven 0001')).toMatchObject({
+      number: '1210',
+      postcode: '0001',
+      tail: ['ternhaven'],
+    });
+  });
+
+  it('keeps the house beside a post box, and refuses the box alone', () => {
+    expect(parseAddress('PO Box 12, 1210 Heron St')).toMatchObject({
+      number: '1210',
+      street: ['heron', 'st'],
+      isPostBox: false,
+    });
+    for (const text of ['po box 12', 'P. O. Box 12, Ternhaven 00010', 'post office box 7', 'POB 3'])
+      expect(isOnlyPostBox(text)).toBe(true);
+    expect(isOnlyPostBox('12 Boxwood Ln')).toBe(false);
+  });
+
   it('knows a post box, which nobody can visit', () => {
     expect(parseAddress('P.O. Box 12, Ternhaven').isPostBox).toBe(true);
     expect(parseAddress('12 Boxwood Ln').isPostBox).toBe(false);
@@ -91,6 +139,18 @@ describe('parseAddress', () => {
       { seed: 11, numRuns: 500 },
     );
   });
+});
+
+describe('ordinalOf', () => {
+  it('reads all ordinals up to ninety-ninth, as English writes them', () => {
+    expect(
+      ['first', 'twelfth', 'thirteenth', 'twentieth', 'fortyfourth', 'ninetyninth'].map(ordinalOf),
+    ).toEqual([1, 12, 13, 20, 44, 99]);
+    expect(['twenty', 'heron', 'fortyheron', ''].map(ordinalOf)).toEqual([null, null, null, null]);
+  });
+
+  it('joins what is written in two words', () =>
+    expect(tokensOf('Twenty-First and forty second')).toEqual(['21th', 'and', '42th']));
 });
 
 describe('canonical', () => {

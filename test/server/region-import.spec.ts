@@ -2,10 +2,8 @@ import { existsSync, readdirSync, readFileSync, statSync } from 'node:fs';
 import { join } from 'node:path';
 import express from 'express';
 import request from 'supertest';
-import { ACCEPT_CONFIDENCE } from '../../shared/domain/address/address-suggestion';
 import { AddressIndex } from '../../server/region/address-index';
-import type { AddressBook, AddressPoint } from '../../server/region/address-points';
-import { chanceOf } from '../../server/region/county/chance';
+import type { AddressBook } from '../../server/region/address-points';
 import { ensureDemoRegion, listRegions } from '../../server/region/demo-region';
 import { importRegion, type ImportedRegion } from '../../server/region/import-region';
 import type { ImportStep } from '../../server/region/region-making';
@@ -20,12 +18,10 @@ const tiles = temporaryFolder();
 const steps: ImportStep[] = [];
 let demo: ImportedRegion;
 let book: AddressBook;
-let index: AddressIndex;
 
 beforeAll(async () => {
   demo = await ensureDemoRegion(tiles.path, (step) => steps.push(step));
   book = await readAddressBook(demo.folder);
-  index = new AddressIndex(book);
 });
 afterAll(() => tiles.remove());
 
@@ -145,7 +141,7 @@ describe('tileRoutes', () => {
 
   it.each([
     'region.json',
-    'addresses.json.gz',
+    'addresses.bin',
     '..%2f..%2fpackage.json',
     '14/x/1.pbf',
     '../../../etc/passwd',
@@ -156,185 +152,6 @@ describe('tileRoutes', () => {
   it('takes no other method', async () => {
     expect((await request(app).post(url('14/0/0.pbf'))).status).toBe(405);
   });
-});
-
-/** Draws addresses evenly, and spoils what is typed of them, the same way each time. */
-const chance = chanceOf(17, 'address-test');
-const samples = (count: number): AddressPoint[] =>
-  Array.from({ length: count }, () => chance.pick(book.addresses));
-
-function slip(word: string): string {
-  const i = 1 + chance.below(Math.max(1, word.length - 2));
-  const letter = chance.pick([...'abcdefghijklmnopqrstuvwxyz']);
-  switch (chance.below(4)) {
-    case 0:
-      return word.slice(0, i) + word.slice(i + 1);
-    case 1:
-      return word.slice(0, i) + letter + word.slice(i);
-    case 2:
-      return word.slice(0, i) + letter + word.slice(i + 1);
-    default:
-      return word.slice(0, i) + word.charAt(i + 1) + word.charAt(i) + word.slice(i + 2);
-  }
-}
-
-/** Spoils the longest word of a street, when it is long enough to be known again. */
-function misspelt(street: string): string {
-  const words = street.split(' ');
-  const longest = words.reduce(
-    (best, word, i) => (word.length > words[best]!.length ? i : best),
-    0,
-  );
-  if (/^\d/.test(words[longest]!) || words[longest]!.length < 5) return street;
-  words[longest] = slip(words[longest]!);
-  return words.join(' ');
-}
-
-describe('AddressIndex', () => {
-  const isAt = (
-    point: AddressPoint,
-    found: { lon: number; lat: number } | null | undefined,
-  ): boolean => found?.lon === point.at[0] && found.lat === point.at[1];
-
-  it.each<[string, (a: AddressPoint) => string, number]>([
-    ['as they stand', (a) => `${a.number} ${a.street}, ${a.city}`, 1],
-    ['in capitals without a comma', (a) => `${a.number} ${a.street} ${a.city}`.toUpperCase(), 0.99],
-    ['number last', (a) => `${a.street} ${a.number}, ${a.city}`, 0.99],
-    [
-      'with unit and postcode',
-      (a) => `${a.number} ${a.street} apt ${1 + chance.below(30)}, ${a.city} ${a.postcode}`,
-      0.99,
-    ],
-    ['with a slip in the street', (a) => `${a.number} ${misspelt(a.street)}, ${a.city}`, 0.95],
-    [
-      'without the street type',
-      (a) => `${a.number} ${a.street.split(' ').slice(0, -1).join(' ')}, ${a.city}`,
-      0.95,
-    ],
-    [
-      'without the direction',
-      (a) => `${a.number} ${a.street.replace(/^(North|South|East|West) /, '')}, ${a.city}`,
-      0.95,
-    ],
-  ])('finds addresses first that are written %s', (_, write, share) => {
-    const points = samples(250);
-    const right = points.filter((point) => isAt(point, index.suggest(write(point))[0]));
-    expect(right.length / points.length).toBeGreaterThanOrEqual(share);
-  });
-
-  it('never accepts another house than the one that was meant', () => {
-    const forms: ((a: AddressPoint) => string)[] = [
-      (a) => `${a.number} ${a.street}`,
-      (a) => `${a.number} ${misspelt(a.street)}`,
-      (a) => `${a.street.split(' ').slice(0, -1).join(' ')} ${a.number}, ${a.city}`,
-    ];
-    const wrong: string[] = [];
-    let accepted = 0;
-    for (const point of samples(400)) {
-      for (const form of forms) {
-        const text = form(point);
-        const found = index.locate(text);
-        if (!found || found.confidence < ACCEPT_CONFIDENCE) continue;
-        accepted++;
-        if (!isAt(point, found)) wrong.push(`${text} -> ${found.label}`);
-      }
-    }
-    // One slip may turn one street's name into another's; that happens to people too.
-    expect(wrong.length).toBeLessThanOrEqual(3);
-    expect(accepted).toBeGreaterThan(600);
-  });
-
-  it('finds a house while its street is still being typed', () => {
-    const points = samples(150);
-    const right = points.filter((point) => {
-      const street = point.street.split(' ').slice(0, 2).join(' ');
-      const typed = `${point.number} ${street.slice(0, Math.max(4, street.length - 2))}`;
-      return index.suggest(typed, { near: point.at }).some((found) => isAt(point, found));
-    });
-    expect(right.length / points.length).toBeGreaterThan(0.9);
-  });
-
-  it('keeps the unit, for the technician at the door', () => {
-    const [point] = samples(1);
-    const found = index.suggest(`${point!.number} ${point!.street} apt 4b, ${point!.city}`)[0];
-    expect(found).toMatchObject({ unit: 'Apt 4B', kind: 'rooftop', number: point!.number });
-    expect(found?.label).toContain('Apt 4B');
-  });
-
-  it('offers every town that has the house when none is named, and accepts none', () => {
-    const doors = new Map<string, AddressPoint[]>();
-    for (const point of book.addresses) {
-      const key = `${point.number} ${point.street}`;
-      doors.set(key, [...(doors.get(key) ?? []), point]);
-    }
-    const [text, points] = [...doors].find(([, own]) => own.length === 2)!;
-    const found = index.suggest(text).filter(({ kind }) => kind === 'rooftop');
-    expect(
-      found
-        .slice(0, 2)
-        .map(({ city }) => city)
-        .sort(),
-    ).toEqual(points.map(({ city }) => city).sort());
-    expect(index.locate(text)!.confidence).toBeLessThan(ACCEPT_CONFIDENCE);
-  });
-
-  it('puts a missing house between its neighbours', () => {
-    const point = book.addresses.find(
-      (a) =>
-        index.suggest(`${Number(a.number) + 2} ${a.street}, ${a.city}`)[0]?.kind === 'interpolated',
-    )!;
-    const found = index.suggest(`${Number(point.number) + 2} ${point.street}, ${point.city}`)[0]!;
-    expect(
-      Math.hypot((found.lon - point.at[0]) * 89_701, (found.lat - point.at[1]) * 110_972),
-    ).toBeLessThan(150);
-  });
-
-  it('finds a corner by its two streets, in either order', () => {
-    const corner = book.corners.find(({ city }) => city === 'Gullwick')!;
-    for (const text of [
-      `${corner.first} & ${corner.second}, Gullwick`,
-      `corner of ${corner.second} and ${corner.first}, gullwick`,
-    ]) {
-      const found = index.suggest(text)[0];
-      expect(found).toMatchObject({ kind: 'corner', city: 'Gullwick' });
-      expect(book.corners.some(({ at }) => at[0] === found!.lon && at[1] === found!.lat)).toBe(
-        true,
-      );
-    }
-  });
-
-  it('finds places by name', () => {
-    expect(index.suggest('ternhaven clinic')[0]).toMatchObject({
-      kind: 'place',
-      street: 'Ternhaven Clinic',
-    });
-    expect(index.suggest('gullwick')[0]).toMatchObject({ kind: 'place', label: 'Gullwick' });
-  });
-
-  it('names a pin by the house beside it, and leaves it where it was set', () => {
-    const [point] = samples(1);
-    const [lon, lat] = [point!.at[0] + 0.00005, point!.at[1]];
-    expect(index.nearest(lon, lat)).toMatchObject({
-      kind: 'pin',
-      lon,
-      lat,
-      number: point!.number,
-      city: point!.city,
-    });
-    expect(index.nearest(-47.36, 36.2)).toMatchObject({
-      kind: 'pin',
-      number: null,
-      label: 'Pin at 36.20000, -47.36000',
-    });
-  });
-
-  it.each(['', '   ', '12', 'PO Box 12', 'zzzzqqqq', ',,,', '&'])(
-    'has nothing to offer for %p',
-    (text) => {
-      expect(index.suggest(text)).toEqual([]);
-      expect(index.locate(text)).toBeNull();
-    },
-  );
 });
 
 /** Two crossing streets and a house, enough for an import. */

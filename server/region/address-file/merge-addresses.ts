@@ -1,7 +1,7 @@
 import { canonicalNumber } from '@shared/domain/address/house-number';
 import { greatCircleKm } from '@shared/domain/travel/great-circle';
 import type { AddressPoint } from '../address-points';
-import { wordsOf } from '../street-book';
+import { wordsOf } from '../address-table';
 import type { FileAddress } from './check-row';
 
 /** Two points of one number and street that are no farther apart are one door. Our estimate. */

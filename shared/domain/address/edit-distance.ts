@@ -12,27 +12,36 @@ export function editDistance(a: string, b: string, limit: number): number {
   const lettersB = lettersIn(b);
   if (bitsIn(lettersA & ~lettersB) > limit || bitsIn(lettersB & ~lettersA) > limit)
     return limit + 1;
-  let beforeLast: number[] = [];
-  let last = Array.from({ length: b.length + 1 }, (_, j) => j);
+  return slowDistance(a, b, limit);
+}
+
+/** Rows of the table that are in use; kept, since words are compared by the ten thousand. */
+const ROWS = [new Uint8Array(64), new Uint8Array(64), new Uint8Array(64)];
+
+function slowDistance(a: string, b: string, limit: number): number {
+  const width = b.length + 1;
+  // Longer words than any name; a row of its own size serves as well.
+  const rows = width <= 64 ? ROWS : ROWS.map(() => new Uint8Array(width));
+  let [beforeLast, last, row] = rows as [Uint8Array, Uint8Array, Uint8Array];
+  for (let j = 0; j < width; j++) last[j] = j;
+  let leastBefore = 0;
   for (let i = 1; i <= a.length; i++) {
-    const row = [i];
+    row[0] = i;
     let least = i;
-    for (let j = 1; j <= b.length; j++) {
-      const isSame = a.charCodeAt(i - 1) === b.charCodeAt(j - 1);
-      let cost = Math.min(last[j]! + 1, row[j - 1]! + 1, last[j - 1]! + (isSame ? 0 : 1));
+    const letter = a.charCodeAt(i - 1);
+    for (let j = 1; j < width; j++) {
+      const other = b.charCodeAt(j - 1);
+      let cost = Math.min(last[j]! + 1, row[j - 1]! + 1, last[j - 1]! + (letter === other ? 0 : 1));
       const isSwap =
-        i > 1 &&
-        j > 1 &&
-        a.charCodeAt(i - 1) === b.charCodeAt(j - 2) &&
-        a.charCodeAt(i - 2) === b.charCodeAt(j - 1);
+        i > 1 && j > 1 && letter === b.charCodeAt(j - 2) && a.charCodeAt(i - 2) === other;
       if (isSwap) cost = Math.min(cost, beforeLast[j - 2]! + 1);
-      row.push(cost);
+      row[j] = cost;
       if (cost < least) least = cost;
     }
     // A swap looks one row further back, so both rows must be out of reach.
-    if (least > limit && Math.min(...last) > limit) return limit + 1;
-    beforeLast = last;
-    last = row;
+    if (least > limit && leastBefore > limit) return limit + 1;
+    leastBefore = least;
+    [beforeLast, last, row] = [last, row, beforeLast];
   }
   return Math.min(last[b.length]!, limit + 1);
 }

@@ -25,6 +25,17 @@ export function canonicalNumber(number: string): string {
     .trim();
 }
 
+/**
+ * Other ways to write a number that people write without its hyphen: "21809" may be 218-09. The
+ * part after the hyphen has two figures, as such numbers are given out, or one or three.
+ */
+export function hyphenatedForms(number: string): string[] {
+  if (!/^\d{3,6}$/.test(number)) return [];
+  return [2, 1, 3]
+    .filter((figures) => figures < number.length)
+    .map((figures) => `${number.slice(0, -figures)}-${number.slice(-figures)}`);
+}
+
 /** Whether the number belongs to the even side; for "218-09" the part after the hyphen decides. */
 export function isEvenNumber(order: number): boolean {
   return Math.floor(order) % 2 === 0;

@@ -1,3 +1,9 @@
+import { soundKey } from './sounds-alike';
+import { longType } from './street-words';
+
+/** Names that share less than this with a search, measured by the most similar one, are left out. */
+const LEAST_SHARE = 0.25;
+
 /**
  * Finds the names that share most two- and three-letter pieces with a search, misspelt or
  * unfinished words included; the exact cost is worked out for those few only.
@@ -6,6 +12,7 @@ export class NameGrams {
   private readonly postings = new Map<string, number[]>();
   private readonly sizes: number[] = [];
   private readonly hits: Uint16Array;
+  private readonly scores: Float64Array;
 
   /** @param names each a list of canonical words */
   constructor(names: readonly (readonly string[])[]) {
@@ -19,6 +26,7 @@ export class NameGrams {
       }
     });
     this.hits = new Uint16Array(names.length);
+    this.scores = new Float64Array(names.length);
   }
 
   /** Numbers of the most similar names, best first. */
@@ -31,23 +39,32 @@ export class NameGrams {
         this.hits[number] = this.hits[number]! + 1;
       }
     }
-    const scored = touched.map((number) => {
+    let best = 0;
+    for (const number of touched) {
       const hits = this.hits[number]!;
       this.hits[number] = 0;
-      return { number, score: hits / this.sizes[number]! + hits / grams.size };
-    });
-    return scored
-      .sort((a, b) => b.score - a.score || a.number - b.number)
-      .slice(0, limit)
-      .map(({ number }) => number);
+      const score = hits / this.sizes[number]! + hits / grams.size;
+      this.scores[number] = score;
+      if (score > best) best = score;
+    }
+    return touched
+      .filter((number) => this.scores[number]! >= best * LEAST_SHARE)
+      .sort((a, b) => this.scores[b]! - this.scores[a]! || a - b)
+      .slice(0, limit);
   }
 }
 
-/** Pieces of a word, its beginning marked; a number is one piece, for 12 and 21 share nothing. */
-function gramsOf(word: string): string[] {
-  if (/^\d/.test(word)) return [`#${word}`];
+/**
+ * Pieces of a word, its beginning marked, and how it sounds; a number is one piece, for 12 and 21
+ * share nothing.
+ */
+function gramsOf(short: string): string[] {
+  if (/^\d/.test(short)) return [`#${short}`];
+  const word = longType(short);
   const marked = `^${word}`;
-  const grams: string[] = [];
+  const grams: string[] = word.length > 2 ? [`~${soundKey(word)}`] : [];
+  // Two letters that change places leave a short word without any piece of its own.
+  if (word.length > 2 && word.length < 7) grams.push(`=${[...word].sort().join('')}`);
   for (let i = 0; i < marked.length - 1; i++) {
     grams.push(marked.slice(i, i + 2));
     if (i < marked.length - 2) grams.push(marked.slice(i, i + 3));

@@ -1,5 +1,7 @@
 import { editDistance } from './edit-distance';
-import { isDirection, isType, longType, type StreetWords } from './street-words';
+import { matchCity } from './city-cost';
+import { isDirection, isType, longDirection, longType, type StreetWords } from './street-words';
+import { wordCost, type WordCost } from './word-cost';
 
 /**
  * What it costs to take a caller's words for a street. 0 is word for word; above about 1.2 the two
@@ -8,16 +10,29 @@ import { isDirection, isType, longType, type StreetWords } from './street-words'
  */
 const COST = {
   missingName: 1,
+  missingNextName: 0.5,
+  apart: 0.1,
   missingDirection: 0.15,
+  almostDirection: 0.1,
   wrongDirection: 0.8,
   needlessDirection: 0.4,
   missingType: 0.1,
-  wrongType: 0.45,
+  almostType: 0.05,
+  wrongType: 0.4,
   needlessType: 0.3,
   extraWord: 0.4,
   extraTail: 0.08,
+  filler: 0.02,
   wrongCity: 0.8,
 } as const;
+
+/** Words that say nothing about where a place is. */
+const FILLERS = new Set(
+  'the a an of in on at by to and its is it that my our please house home number no up down over out just there'.split(
+    ' ',
+  ),
+);
+export const isFiller = (word: string): boolean => FILLERS.has(word);
 
 /** The words of a search, and what may be said about them in advance. */
 export interface Query {
@@ -27,6 +42,15 @@ export interface Query {
   readonly isTyping: boolean;
   /** Words of the tail that are part of some city's name in this region. */
   readonly namesACity: boolean;
+  /** Whether a word is a street's name of its own somewhere in the region, so that it is no slip. */
+  readonly isKnown?: (word: string) => boolean;
+  /** `wordCost`, or a stand-in that remembers. */
+  readonly wordCost?: WordCost;
+}
+
+/** How the words name a town. */
+export interface CityFit extends Fit {
+  readonly isNamed: boolean;
 }
 
 export interface Candidate {
@@ -34,154 +58,230 @@ export interface Candidate {
   readonly city: readonly string[];
 }
 
-/** Cost of reading one word for another; null when they are too different. */
-export function wordCost(said: string, known: string, mayBePrefix: boolean): number | null {
-  if (said === known) return 0;
-  if (/^\d/.test(said) || /^\d/.test(known))
-    return mayBePrefix && known.startsWith(said) ? 0.3 : null;
-  let best: number | null = null;
-  if (mayBePrefix && said.length >= 1 && known.startsWith(said))
-    best = 0.1 + 0.02 * (known.length - said.length);
-  const limit = known.length <= 3 ? (said.length >= 3 ? 1 : 0) : known.length <= 8 ? 2 : 3;
-  const off = editDistance(said, known, limit);
-  if (off <= limit) {
-    const cost = (off * 2.1) / Math.max(known.length, said.length, 4);
-    if (best === null || cost < best) best = cost;
-  }
-  // A word whose end is missing and that has one slip besides: "hearo" for "heronwood".
-  if (mayBePrefix && said.length >= 4 && known.length > said.length + 1) {
-    const start = editDistance(said, known.slice(0, said.length), 1);
-    if (start <= 1 && (best === null || best > 0.5)) best = 0.5;
-  }
-  return best !== null && best < 0.95 ? best : null;
+/** How a street fits what was said. */
+export interface Fit {
+  readonly cost: number;
+  /** Something that was said speaks against it: another type, direction, town or name. */
+  readonly isAgainst: boolean;
+}
+
+/** A street's own words matched; the rest is for the town. */
+export interface StreetFit extends Fit {
+  /** Words that the street does not explain, with their place in the query. */
+  readonly left: readonly Word[];
+}
+
+interface Word {
+  readonly said: string;
+  readonly mayBePrefix: boolean;
 }
 
 /** Cost of reading a search as this street in this city. */
 export function streetCost(query: Query, { words, city }: Candidate): number {
-  const left = [...query.street];
-  const mayBePrefix = (i: number): boolean =>
-    query.isTyping && query.tail.length === 0 && i === left.length - 1;
-  let cost = nameCost(words.names, left, mayBePrefix);
-  cost += directionCost(words.directions, left);
-  cost += typeCost(words.types, left, query.isTyping);
-  return cost + cityCost(query, city, left);
+  const street = fitStreet(query, words);
+  return street.cost + fitCity(query, street.left, city).cost;
 }
 
 /** The part of the cost that the street's name alone causes; no street of that name costs less. */
 export function namesCost(query: Query, names: readonly string[]): number {
-  const left = [...query.street];
-  return nameCost(
-    names,
+  return takeNames(query, names, wordsOf(query)).cost;
+}
+
+/** How well the words name this street, whatever its town. */
+export function fitStreet(query: Query, words: StreetWords): StreetFit {
+  const left = wordsOf(query);
+  const names = takeNames(query, words.names, left);
+  const directions = takeDirections(words.directions, left);
+  const types = takeTypes(words.types, left);
+  return {
+    cost: names.cost + directions.cost + types.cost,
+    isAgainst: names.isAgainst || directions.isAgainst || types.isAgainst,
     left,
-    (i) => query.isTyping && query.tail.length === 0 && i === left.length - 1,
+  };
+}
+
+/** How well what the street left unexplained names this town. */
+export function fitCity(query: Query, left: readonly Word[], city: readonly string[]): CityFit {
+  const said = [
+    ...left,
+    ...query.tail.map((word, i) => ({
+      said: word,
+      mayBePrefix: query.isTyping && i === query.tail.length - 1,
+    })),
+  ];
+  if (said.length === 0) return { cost: 0, isAgainst: false, isNamed: false };
+  const { cost: named, used } = matchCity(
+    said.map((word) => word.said),
+    city,
+    (i) => said[i]!.mayBePrefix,
+    query.wordCost,
   );
+  let cost = named;
+  let isAgainst = false;
+  said.forEach((word, i) => {
+    if (used.has(i)) return;
+    if (FILLERS.has(word.said)) cost += COST.filler;
+    else if (i < left.length) {
+      cost += COST.extraWord;
+      isAgainst = true;
+    } else {
+      cost += COST.extraTail;
+      // Two letters are a state; a longer word beside no known town may be a town that is not here.
+      if (used.size === 0 && word.said.length > 2) isAgainst = true;
+    }
+  });
+  if (query.namesACity && used.size === 0) {
+    cost += COST.wrongCity;
+    isAgainst = true;
+  }
+  return { cost, isAgainst, isNamed: used.size > 0 };
+}
+
+function wordsOf({ street, tail, isTyping }: Query): Word[] {
+  return street.map((said, i) => ({
+    said,
+    mayBePrefix: isTyping && tail.length === 0 && i === street.length - 1,
+  }));
 }
 
 /** Matches the street's own words, the longest first, and takes them out of what is left. */
-function nameCost(
-  names: readonly string[],
-  left: string[],
-  mayBePrefix: (i: number) => boolean,
-): number {
+function takeNames(query: Query, names: readonly string[], left: Word[]): Fit {
+  const costOf = query.wordCost ?? wordCost;
+  const together = names.length > 1 ? takeTogether(names, left, costOf) : null;
+  if (together) return together;
   let cost = 0;
-  const open = [...names].sort((a, b) => b.length - a.length);
+  let isAgainst = false;
+  const open = names.length > 1 ? [...names].sort((a, b) => b.length - a.length) : names;
   for (const name of open) {
-    let best = -1;
-    let least: number = COST.missingName;
-    left.forEach((said, i) => {
-      const found = wordCost(said, name, mayBePrefix(i));
-      if (found !== null && found < least) {
-        least = found;
-        best = i;
-      }
-    });
-    // "blue bell" for "bluebell"
-    for (let i = 0; i + 1 < left.length && least > 0.3; i++) {
-      const found = wordCost(left[i]! + left[i + 1]!, name, false);
-      if (found !== null && found + 0.1 < least) {
-        least = found + 0.1;
-        left.splice(i, 2, name);
-        best = i;
-      }
+    const one = cheapest(left, name, costOf);
+    const two = one && one.cost <= COST.apart ? null : cheapestPair(left, name, costOf);
+    const best = two && (!one || two.cost < one.cost) ? two : one;
+    if (!best || best.cost >= COST.missingName) {
+      // "Cedar Rd" for Cedar Pond Road: the first word is the one that people keep.
+      cost += name === names[0] ? COST.missingName : COST.missingNextName;
+      isAgainst = true;
+      continue;
     }
-    cost += least;
-    if (best >= 0) left.splice(best, 1);
+    cost += best.cost;
+    const [taken] = left.splice(best.at, best === two ? 2 : 1);
+    const isSlip = best.cost > 0 && best === one && !taken!.mayBePrefix;
+    if (isSlip && query.isKnown?.(taken!.said) === true) isAgainst = true;
   }
-  return cost / Math.sqrt(Math.max(1, names.length));
+  return { cost: cost / Math.sqrt(Math.max(1, names.length)), isAgainst };
 }
 
-function directionCost(directions: readonly string[], left: string[]): number {
-  const said = left.filter((word, i) => isDirection(word) && (i === 0 || left.length > 0));
+/** "halyardferry" for "halyard ferry" */
+function takeTogether(names: readonly string[], left: Word[], costOf: WordCost): Fit | null {
+  const name = names.map(longType).join('');
+  const long = left.map((word) => (word.said.length + 1 < name.length ? NO_WORD : word));
+  const found = cheapest(long, name, costOf);
+  if (!found || found.cost >= 0.5) return null;
+  left.splice(found.at, 1);
+  return { cost: found.cost + COST.apart, isAgainst: false };
+}
+
+const NO_WORD: Word = { said: '', mayBePrefix: false };
+
+interface Found {
+  readonly at: number;
+  readonly cost: number;
+}
+
+function cheapest(left: readonly Word[], name: string, costOf: WordCost): Found | null {
+  let best: Found | null = null;
+  for (let at = 0; at < left.length; at++) {
+    const cost = costOf(left[at]!.said, name, left[at]!.mayBePrefix);
+    if (cost !== null && (best === null || cost < best.cost)) best = { at, cost };
+  }
+  return best;
+}
+
+/** "blue bell" for "bluebell" */
+function cheapestPair(left: readonly Word[], name: string, costOf: WordCost): Found | null {
+  let best: Found | null = null;
+  for (let at = 0; at + 1 < left.length; at++) {
+    const [one, two] = [left[at]!, left[at + 1]!];
+    if (Math.abs(one.said.length + two.said.length - name.length) > 2) continue;
+    const found = costOf(one.said + two.said, name, two.mayBePrefix);
+    if (found === null) continue;
+    const cost = found + COST.apart;
+    if (best === null || cost < best.cost) best = { at, cost };
+  }
+  return best;
+}
+
+function takeDirections(directions: readonly string[], left: Word[]): Fit {
   let cost = 0;
+  let isAgainst = false;
+  const hasOther = left.some(({ said }) => isDirection(said));
   for (const direction of directions) {
-    const at = left.indexOf(direction);
-    if (at >= 0) left.splice(at, 1);
-    else cost += said.length > 0 ? COST.wrongDirection : COST.missingDirection;
+    const at = left.findIndex(({ said }) => said === direction);
+    const almost = at >= 0 ? at : left.findIndex((word) => isAlmostDirection(word, direction));
+    if (almost >= 0) {
+      left.splice(almost, 1);
+      if (at < 0) cost += COST.almostDirection;
+    } else if (hasOther) {
+      cost += COST.wrongDirection;
+      isAgainst = true;
+    } else cost += COST.missingDirection;
   }
-  const rest = left.filter(isDirection);
-  if (rest.length > 0) {
+  for (let i = left.length - 1; i >= 0; i--) {
+    const { said, mayBePrefix } = left[i]!;
+    if (!isDirection(said)) continue;
+    // A lone letter at the end may become any word.
+    if (mayBePrefix && said.length === 1) cost += COST.filler;
     // A wrong direction has been paid for above.
-    if (directions.length === 0) cost += COST.needlessDirection * rest.length;
-    for (const word of rest) left.splice(left.indexOf(word), 1);
+    else if (directions.length === 0) {
+      cost += COST.needlessDirection;
+      isAgainst = true;
+    }
+    left.splice(i, 1);
   }
-  return cost;
+  return { cost, isAgainst };
 }
 
-function typeCost(types: readonly string[], left: string[], isTyping: boolean): number {
+/** "nroth" for north, or "nor" while it is being typed. */
+function isAlmostDirection({ said, mayBePrefix }: Word, direction: string): boolean {
+  const long = longDirection(direction);
+  if (mayBePrefix && said.length >= 1 && long.startsWith(said)) return true;
+  return said.length >= 4 && editDistance(said, long, 1) <= 1;
+}
+
+function takeTypes(types: readonly string[], left: Word[]): Fit {
   let cost = 0;
+  let isAgainst = false;
   for (const type of types) {
-    const at = left.findIndex(
-      (word, i) => word === type || isAlmostType(word, type, isTyping && i === left.length - 1),
-    );
+    const exact = left.findIndex(({ said }) => isSameType(said, type));
+    const at = exact >= 0 ? exact : left.findIndex((word) => isAlmostType(word, type));
     if (at >= 0) {
-      cost += left[at] === type ? 0 : 0.05;
+      if (exact < 0) cost += COST.almostType;
       left.splice(at, 1);
       continue;
     }
-    const other = left.findIndex(isType);
+    const other = left.findIndex(({ said, mayBePrefix }) => isType(said) && !mayBePrefix);
     if (other >= 0) {
       left.splice(other, 1);
       cost += COST.wrongType;
+      isAgainst = true;
     } else cost += COST.missingType;
   }
-  const needless = left.findIndex(isType);
-  if (types.length === 0 && needless >= 0) {
-    left.splice(needless, 1);
-    cost += COST.needlessType;
-  }
-  return cost;
+  if (types.length > 0) return { cost, isAgainst };
+  const needless = left.findIndex(({ said }) => isType(said));
+  if (needless < 0) return { cost, isAgainst };
+  left.splice(needless, 1);
+  return { cost: cost + COST.needlessType, isAgainst: true };
 }
+
+/** Numbered roads are called highway or route as people please. */
+const isSameType = (said: string, type: string): boolean =>
+  said === type || (NUMBERED.has(said) && NUMBERED.has(type));
+const NUMBERED = new Set(['hwy', 'rte']);
 
 /** "stret" for street, or "stre" while it is being typed. */
-function isAlmostType(word: string, type: string, mayBePrefix: boolean): boolean {
+function isAlmostType({ said, mayBePrefix }: Word, type: string): boolean {
   const long = longType(type);
-  if (mayBePrefix && word.length >= 2 && long.startsWith(word)) return true;
+  if (mayBePrefix && (long.startsWith(said) || type.startsWith(said))) return true;
   return (
-    word.length >= 4 && long.length >= 4 && editDistance(word, long, 2) <= (long.length > 5 ? 2 : 1)
+    said.length >= 4 && long.length >= 4 && editDistance(said, long, 2) <= (long.length > 5 ? 2 : 1)
   );
-}
-
-function cityCost(query: Query, city: readonly string[], left: string[]): number {
-  let cost = 0;
-  const spare = [...city];
-  const isCityWord = (word: string, mayBePrefix: boolean): boolean => {
-    const at = spare.findIndex((known) => {
-      const found = wordCost(word, known, mayBePrefix);
-      return found !== null && found < 0.6;
-    });
-    if (at < 0) return false;
-    spare.splice(at, 1);
-    return true;
-  };
-  left.forEach((word, i) => {
-    if (!isCityWord(word, query.isTyping && query.tail.length === 0 && i === left.length - 1))
-      cost += COST.extraWord;
-  });
-  let isNamed = false;
-  query.tail.forEach((word, i) => {
-    if (isCityWord(word, query.isTyping && i === query.tail.length - 1)) isNamed = true;
-    else cost += COST.extraTail;
-  });
-  if (query.namesACity && !isNamed) cost += COST.wrongCity;
-  return cost;
 }

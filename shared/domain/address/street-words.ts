@@ -1,9 +1,11 @@
+import { ordinalOf } from './address-tokens';
+
 /**
  * Words of street names and how they are shortened.
  *
  * Source: USPS Publication 28, "Postal Addressing Standards", appendices B (directions) and C1
- * (street suffixes) and section 213 (secondary units); the choice of words and the further spellings
- * that callers use are from memory and common practice.
+ * (street suffixes); the choice of words and the further spellings that callers use are from memory
+ * and common practice.
  */
 export type WordKind = 'direction' | 'type' | 'name';
 
@@ -77,32 +79,32 @@ export const isType = (canonical: string): boolean => LONG_TYPE.has(canonical);
 export const isDirection = (canonical: string): boolean =>
   SHORT_DIRECTION.get(canonical) === canonical;
 
+const LONG_DIRECTION: ReadonlyMap<string, string> = new Map(
+  DIRECTIONS.map((words) => [words[0]!, words[1]!]),
+);
+/** 'n' gives 'north'. */
+export const longDirection = (short: string): string => LONG_DIRECTION.get(short) ?? short;
+
 /** The long form of a type's short form: 'st' gives 'street'. */
 export const longType = (short: string): string => LONG_TYPE.get(short) ?? short;
-
-const ORDINAL_WORDS: ReadonlyMap<string, string> = new Map(
-  [
-    'first',
-    'second',
-    'third',
-    'fourth',
-    'fifth',
-    'sixth',
-    'seventh',
-    'eighth',
-    'ninth',
-    'tenth',
-    'eleventh',
-    'twelfth',
-  ].map((word, i): [string, string] => [word, String(i + 1)]),
-);
 
 /** One spelling for all spellings of a word: 'Street' and 'str' give 'st', '94th' gives '94'. */
 export function canonical(word: string): string {
   const ordinal = /^(\d+)(st|nd|rd|th)$/.exec(word);
   if (ordinal) return ordinal[1]!;
-  return ORDINAL_WORDS.get(word) ?? SHORT_DIRECTION.get(word) ?? SHORT_TYPE.get(word) ?? word;
+  const spoken = ordinalOf(word);
+  if (spoken !== null) return String(spoken);
+  return SHORT_DIRECTION.get(word) ?? SHORT_TYPE.get(word) ?? word;
 }
+
+/** The words of a street or place in one spelling: "Cty Rd 7" and "CR 7" give county, rd, 7. */
+export const canonicalWords = (tokens: readonly string[]): string[] =>
+  tokens.flatMap((token, i) => {
+    const next = tokens[i + 1];
+    if (token === 'cr' && next !== undefined && /^\d/.test(next)) return ['county', 'rd'];
+    const isCounty = (token === 'co' || token === 'cty') && canonical(next ?? '') === 'rd';
+    return [isCounty ? 'county' : canonical(token)];
+  });
 
 /** A street's words, told apart by the part that they play. */
 export interface StreetWords {
@@ -147,35 +149,3 @@ export function postalStreet(name: string): string {
 }
 
 const LONG_FORMS: ReadonlySet<string> = new Set(TYPES.map((words) => words[1]!));
-
-/** Words that begin a unit, and how the unit is written. Source: USPS Publication 28, section 213.1. */
-export const UNIT_WORDS: ReadonlyMap<string, string> = new Map([
-  ['apt', 'Apt'],
-  ['apartment', 'Apt'],
-  ['appt', 'Apt'],
-  ['unit', 'Unit'],
-  ['ste', 'Ste'],
-  ['suite', 'Ste'],
-  ['lot', 'Lot'],
-  ['rm', 'Rm'],
-  ['room', 'Rm'],
-  ['trlr', 'Trlr'],
-  ['trailer', 'Trlr'],
-  ['bldg', 'Bldg'],
-  ['building', 'Bldg'],
-  ['fl', 'Fl'],
-  ['floor', 'Fl'],
-  ['spc', 'Spc'],
-  ['space', 'Spc'],
-  ['slip', 'Slip'],
-]);
-
-/** Units that need no number. Source: USPS Publication 28, section 213.2. */
-export const BARE_UNITS: ReadonlyMap<string, string> = new Map([
-  ['bsmt', 'Bsmt'],
-  ['basement', 'Bsmt'],
-  ['rear', 'Rear'],
-  ['upstairs', 'Uppr'],
-  ['upper', 'Uppr'],
-  ['downstairs', 'Lowr'],
-]);
