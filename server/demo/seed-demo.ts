@@ -17,7 +17,8 @@ import { UserRecord } from '../staff/user-record';
 import { StormRecord } from '../storms/storm-record';
 import { ShiftRecord, TechnicianRecord } from '../technicians/technician-record';
 import { Chance, demoCall, ringsAfter } from './demo-calls';
-import { demoOutages, outageAt } from './demo-outages';
+import { demoCallers } from './demo-callers';
+import { demoOutages } from './demo-outages';
 import { DESK, TECHNICIANS, type DemoPerson } from './demo-people';
 
 const CALLS = 240;
@@ -143,7 +144,7 @@ async function seedStorm(
           id: area.id,
           stormId,
           name: area.name,
-          shape: JSON.stringify([[area.ring]]),
+          shape: JSON.stringify(area.shape),
           outAt: new Date(area.outAt),
           backAt: area.backAt === null ? null : new Date(area.backAt),
         },
@@ -154,14 +155,8 @@ async function seedStorm(
       job.note('area', area.id, 'drew an outage area');
     });
 
-  // Households ring once their power is back and the refrigerator is not.
-  const doors = addresses.flatMap((address) => {
-    const outage = outageAt(areas, [address.at[0], address.at[1]]);
-    return outage?.backAt ? [{ address, outAt: outage.outAt, backAt: outage.backAt }] : [];
-  });
-  const calls = (doors.length === 0 ? [] : Array.from({ length: CALLS }))
-    .map((_, number) => {
-      const { address, outAt, backAt } = chance.pick(doors);
+  const calls = demoCallers(areas, addresses, chance, CALLS)
+    .map(({ address, outAt, backAt }, number) => {
       const receivedAt = Math.min(backAt + ringsAfter(chance), now - chance.below(20) * MINUTE_MS);
       return demoCall(chance, address, number, { receivedAt, outAt, backAt });
     })

@@ -90,7 +90,7 @@ it('runs from a night log of 600 rows to a drained backlog, and every invariant 
 
   // The areas, with the times the power went and came back.
   const outAt = AFTERNOON - 13 * HOUR_MS;
-  for (const { name, ring } of demoOutages(power, new Chance('main job'), outAt, AFTERNOON))
+  for (const { name, shape } of demoOutages(power, new Chance('main job'), outAt, AFTERNOON))
     await expected<AreaDto>(
       mara.call('drawArea', {
         params: inStorm(),
@@ -98,7 +98,7 @@ it('runs from a night log of 600 rows to a drained backlog, and every invariant 
           commandId: randomUUID(),
           areaId: randomUUID(),
           name,
-          shape: [[ring]],
+          shape,
           outAt,
           backAt: AFTERNOON - 8 * HOUR_MS,
         },

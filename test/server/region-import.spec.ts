@@ -6,6 +6,8 @@ import { AddressIndex } from '../../server/region/address-index';
 import type { AddressBook } from '../../server/region/address-points';
 import { ensureDemoRegion, listRegions } from '../../server/region/demo-region';
 import { importRegion, type ImportedRegion } from '../../server/region/import-region';
+import { readFeeders } from '../../server/region/feeders-file';
+import { openRegion } from '../../server/region/open-region';
 import type { ImportStep } from '../../server/region/region-making';
 import { writeOsmPbf } from '../../server/region/osm-pbf-writer';
 import { readAddressBook } from '../../server/region/region-data';
@@ -49,9 +51,11 @@ describe('the demo region', () => {
     }
     expect([...names].sort()).toEqual([
       'addresses',
+      'buildings',
       'green',
       'land',
       'places',
+      'power',
       'roads',
       'water',
       'waterways',
@@ -84,6 +88,15 @@ describe('the demo region', () => {
 
   it('stays small enough to be fetched whole', () =>
     expect(demo.manifest.counts.bytes).toBeLessThan(4_000_000));
+
+  it('knows its feeders, whose customers are its addresses', async () => {
+    const { feeders, substations } = await readFeeders(demo.folder);
+    expect(feeders.length).toBe(60);
+    expect(substations.length).toBeGreaterThan(5);
+    expect(demo.manifest.counts.feeders).toBe(feeders.length);
+    expect(feeders.reduce((sum, { customers }) => sum + customers, 0)).toBe(book.addresses.length);
+    expect((await openRegion(demo)).power.feeders).toEqual(feeders);
+  });
 
   it('says what it is', () => {
     expect(demo.manifest).toMatchObject({
