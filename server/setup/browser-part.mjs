@@ -14,8 +14,8 @@ export async function runBrowserStories({ env, pattern }) {
   await mkdir(reports, { recursive: true });
   const reportFile = path.join(reports, 'browser.json');
   await rm(reportFile, { force: true });
-  // The stand-in of the text service answers one port above the product.
-  const port = await nextFreePort(FIRST_PORT, '127.0.0.1', 2);
+  // For each of two workers a product, and the stand-in of the text service one port above it.
+  const port = await nextFreePort(FIRST_PORT, '127.0.0.1', 4);
 
   const { code, output } = await run(
     process.execPath,

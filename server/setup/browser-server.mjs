@@ -1,6 +1,8 @@
 /**
- * The product as the browser stories need it: built, on an empty database of its own, with the demo
- * county and the fake text service. Runs until it is told to stop.
+ * The product as one worker of the browser stories needs it: built, on an empty database of its own,
+ * with the demo county and the fake text service. Runs until it is told to stop.
+ *
+ *   node server/setup/browser-server.mjs <worker, from 0> <port>
  */
 import { mkdir } from 'node:fs/promises';
 import path from 'node:path';
@@ -13,8 +15,10 @@ import { startAndWait, stopLeftovers, stopProcess } from './processes.mjs';
 import { readSecrets } from './secrets.mjs';
 import { recreateDatabase, testDatabase } from './test-database.mjs';
 
-const DATABASE = 'thawline_test_browser';
 const START_SECONDS = 180;
+
+const [worker, port] = process.argv.slice(2).map(Number);
+const purpose = `browser-${worker}`;
 
 const pids = [];
 const stop = async () => {
@@ -33,19 +37,19 @@ await runMain(async () => {
 });
 
 async function serve() {
-  const port = Number(process.env.THAWLINE_BROWSER_PORT);
-  await stopLeftovers('browser');
+  await stopLeftovers(purpose);
   await ensureBuild();
   const database = await testDatabase();
-  await recreateDatabase(database, DATABASE);
-  const data = path.join(dataFolder, 'browser');
+  const name = `thawline_test_browser_${worker}`;
+  await recreateDatabase(database, name);
+  const data = path.join(dataFolder, purpose);
   await mkdir(data, { recursive: true });
 
   const env = {
     ...serverEnvironment({
       port,
       fakesPort: port + 1,
-      database: { ...database, name: DATABASE },
+      database: { ...database, name },
       secrets: await readSecrets(),
     }),
     THAWLINE_ENVIRONMENT: 'test',
@@ -53,7 +57,7 @@ async function serve() {
     THAWLINE_TILES_FOLDER: process.env.THAWLINE_TILES_FOLDER || path.join(root, 'tiles'),
   };
   const start = (name, at, answers) =>
-    startAndWait(name, 'browser', env, `http://127.0.0.1:${at}${answers}`, START_SECONDS, (pid) =>
+    startAndWait(name, purpose, env, `http://127.0.0.1:${at}${answers}`, START_SECONDS, (pid) =>
       pids.push(pid),
     );
   const fakes = await start('fakes-main', port + 1, '/');

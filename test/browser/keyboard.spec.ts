@@ -60,15 +60,17 @@ const focusNow = (page: Page): Promise<Focus> =>
     };
   });
 
-/** Fails where the focus is lost, hidden, covered or without a mark. */
+/** Fails where the focus stays lost, hidden, covered or without a mark; it may be on its way. */
 async function seesFocus(page: Page, after: string): Promise<void> {
-  const focus = await focusNow(page);
-  const { isHeld, isSeen, isShown } = focus;
-  expect({ isHeld, isSeen, isShown }, `focus after ${after}: on ${focus.on}`).toEqual({
-    isHeld: true,
-    isSeen: true,
-    isShown: true,
-  });
+  await expect(async () => {
+    const focus = await focusNow(page);
+    const { isHeld, isSeen, isShown } = focus;
+    expect({ isHeld, isSeen, isShown }, `focus after ${after}: on ${focus.on}`).toEqual({
+      isHeld: true,
+      isSeen: true,
+      isShown: true,
+    });
+  }).toPass({ timeout: 10_000 });
 }
 
 async function press(page: Page, ...keys: readonly string[]): Promise<void> {

@@ -1,6 +1,12 @@
 import { readFileSync } from 'node:fs';
 import path from 'node:path';
-import { expect, type Browser, type BrowserContextOptions, type Page } from '@playwright/test';
+import {
+  expect,
+  type Browser,
+  type BrowserContext,
+  type BrowserContextOptions,
+  type Page,
+} from '@playwright/test';
 
 interface SignIn {
   readonly role: string;
@@ -24,7 +30,10 @@ export const PHONE: BrowserContextOptions = {
   isMobile: true,
 };
 
-/** Opens a browser of its own for one person and signs them in. */
+/** By e-mail address, the session of whoever has signed in: the next window opens in it. */
+const sessions = new Map<string, Awaited<ReturnType<BrowserContext['cookies']>>>();
+
+/** Opens a browser of its own for one person, signed in. */
 export async function enter(
   browser: Browser,
   who: (one: SignIn) => boolean,
@@ -33,13 +42,18 @@ export async function enter(
   const person = signIns().find(who);
   if (!person) throw new Error('nobody has that sign-in');
   const context = await browser.newContext(options);
+  await context.addCookies(sessions.get(person.email) ?? []);
   const page = await context.newPage();
-  await page.goto('/sign-in');
-  await page.getByLabel('E-mail address').fill(person.email);
-  await page.getByLabel('Password', { exact: true }).fill(person.password);
-  await page.keyboard.press('Enter');
-  await expect(page).not.toHaveURL(/sign-in/);
+  await page.goto('/');
+  await page.waitForURL(({ pathname }) => pathname !== '/');
+  if (new URL(page.url()).pathname === '/sign-in') {
+    await page.getByLabel('E-mail address').fill(person.email);
+    await page.getByLabel('Password', { exact: true }).fill(person.password);
+    await page.keyboard.press('Enter');
+    await expect(page).not.toHaveURL(/sign-in/);
+  }
   await expect(page.getByText('Live', { exact: true }).first()).toBeVisible();
+  sessions.set(person.email, await context.cookies());
   return page;
 }
 
