@@ -1,6 +1,7 @@
 import {
   HttpClient,
   HttpErrorResponse,
+  HttpEventType,
   HttpHeaders,
   type HttpResponse,
 } from '@angular/common/http';
@@ -8,7 +9,16 @@ import { inject, Injectable } from '@angular/core';
 import type { ParamsOf, ReplyOf, SentBodyOf, SentQueryOf } from '@shared/contract/http';
 import { PATHS, type RouteName } from '@shared/contract/paths';
 import type { Problem } from '@shared/contract/problem';
-import { firstValueFrom, Subject, timeout, TimeoutError } from 'rxjs';
+import {
+  filter,
+  firstValueFrom,
+  fromEvent,
+  Subject,
+  takeUntil,
+  tap,
+  timeout,
+  TimeoutError,
+} from 'rxjs';
 import { ProblemError } from './problem-error';
 
 type Part<Name extends string, T> = undefined extends T
@@ -60,10 +70,50 @@ export class Api {
       );
       return bodyOf(reply);
     } catch (error) {
-      const problem = toProblemError(error);
-      if (problem.code === 'not-signed-in') this.sessionLost.next();
-      throw problem;
+      throw this.problemOf(error);
     }
+  }
+
+  /**
+   * Sends a large file, however long that takes.
+   *
+   * @param onProgress is told the share that has been sent, 0 to 1
+   * @param stop ends it; the promise then rejects with a `DOMException`
+   */
+  async upload(
+    name: 'uploadRegionFile',
+    args: CallArgs<'uploadRegionFile'>,
+    onProgress: (share: number) => void,
+    stop: AbortSignal,
+  ): Promise<ReplyOf<'uploadRegionFile'>> {
+    const [method, path] = PATHS[name];
+    const sending = this.http
+      .request<ReplyOf<'uploadRegionFile'>>(method, urlOf(path, {}, args.query), {
+        body: args.body,
+        headers: headersFor(args.body),
+        observe: 'events',
+        reportProgress: true,
+      })
+      .pipe(
+        tap((event) => {
+          if (event.type === HttpEventType.UploadProgress && event.total)
+            onProgress(event.loaded / event.total);
+        }),
+        filter((event) => event.type === HttpEventType.Response),
+        takeUntil(fromEvent(stop, 'abort')),
+      );
+    try {
+      return bodyOf(await firstValueFrom(sending));
+    } catch (error) {
+      if (stop.aborted) throw new DOMException('The sending was stopped.', 'AbortError');
+      throw this.problemOf(error);
+    }
+  }
+
+  private problemOf(error: unknown): ProblemError {
+    const problem = toProblemError(error);
+    if (problem.code === 'not-signed-in') this.sessionLost.next();
+    return problem;
   }
 }
 
@@ -89,7 +139,7 @@ export function urlOf(
 }
 
 function headersFor(body: unknown): HttpHeaders {
-  return body instanceof ArrayBuffer
+  return body instanceof ArrayBuffer || body instanceof Blob
     ? new HttpHeaders({ 'Content-Type': 'application/octet-stream' })
     : new HttpHeaders();
 }

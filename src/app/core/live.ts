@@ -43,6 +43,8 @@ export class Live {
     const heard = (): void => this.contactAt.set(this.clock.exact());
     this.socket.on('connect', () => {
       heard();
+      // It may have changed while nothing was heard.
+      if (this.linkNow() === 'lost') void this.session.refreshRegion();
       this.linkNow.set('live');
     });
     this.socket.onAny(heard);
@@ -57,6 +59,7 @@ export class Live {
       // The browser does not say whether the server is away or has refused; the session knows.
       void this.session.refresh().then(() => this.reopen());
     });
+    this.socket.on('region:changed', (region) => this.session.takeRegion(region));
     this.socket.on('session:ended', (reason) => this.session.end(reason));
     this.watchNetwork();
     inject(DestroyRef).onDestroy(() => {

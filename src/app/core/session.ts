@@ -109,6 +109,24 @@ export class Session {
     );
   }
 
+  /** Another region is in use: its map, its zone, its addresses. */
+  takeRegion(region: Me['region']): void {
+    this.known.update((me) =>
+      me && me.region.tilesUrl !== region.tilesUrl ? { ...me, region } : me,
+    );
+  }
+
+  /** Asks which region is in use, after a time in which nobody could tell. Never rejects. */
+  async refreshRegion(): Promise<void> {
+    if (!this.known()) return;
+    try {
+      this.takeRegion(await this.api.call('region'));
+    } catch (error) {
+      // The next connection asks again.
+      if (!(error instanceof ProblemError)) throw error;
+    }
+  }
+
   passwordChanged(): void {
     this.known.update((me) =>
       me ? { ...me, user: { ...me.user, mustChangePassword: false } } : me,

@@ -23,7 +23,10 @@ import { Theme } from '../core/theme';
 import { AgoPipe, ClockTimePipe, Zone } from '../core/zone';
 import { AreaEditor } from './area-editor';
 import { AreaForm } from './area-form';
+import { AreaImport } from './area-import';
 import { CallPopover } from './call-popover';
+import { FeederPick } from './feeder-pick';
+import { FileImport } from './file-import';
 import { LeafletStage } from './leaflet-stage';
 import { MapActions } from './map-actions';
 import { MapHands } from './map-hands';
@@ -35,6 +38,8 @@ import { MapScenes } from './map-scenes';
 import { MapWish } from './map-wish';
 import { PinTool } from './pin-tool';
 import { scaleBar } from './scale-bar';
+import { StormRoadEditor } from './storm-road-editor';
+import { StormRoadForm } from './storm-road-form';
 import { metresPerPixel } from './world';
 
 /**
@@ -43,12 +48,31 @@ import { metresPerPixel } from './world';
  */
 @Component({
   selector: 'thaw-storm-map',
-  imports: [AgoPipe, AreaForm, CallPopover, ClockTimePipe, MapLegend, MapLists],
+  imports: [
+    AgoPipe,
+    AreaForm,
+    AreaImport,
+    CallPopover,
+    ClockTimePipe,
+    MapLegend,
+    MapLists,
+    StormRoadForm,
+  ],
   templateUrl: './storm-map.html',
   styleUrls: ['./storm-map.scss', './leaflet-base.scss'],
   encapsulation: ViewEncapsulation.None,
   changeDetection: ChangeDetectionStrategy.OnPush,
-  providers: [AreaEditor, MapActions, MapHands, MapPopover, MapScenes, PinTool],
+  providers: [
+    AreaEditor,
+    FeederPick,
+    FileImport,
+    MapActions,
+    MapHands,
+    MapPopover,
+    MapScenes,
+    PinTool,
+    StormRoadEditor,
+  ],
 })
 export class StormMap {
   protected readonly board = inject(BoardStore);
@@ -58,6 +82,7 @@ export class StormMap {
   protected readonly actions = inject(MapActions);
   protected readonly hands = inject(MapHands);
   protected readonly editor = inject(AreaEditor);
+  protected readonly roadEditor = inject(StormRoadEditor);
   protected readonly pin = inject(PinTool);
   protected readonly popover = inject(MapPopover);
   private readonly scenes = inject(MapScenes);
@@ -194,12 +219,27 @@ export class StormMap {
       this.actions.picture.top = {
         selected: this.scenes.selectedMark(),
         hovered: this.scenes.hoveredMark(),
-        outline: this.editor.isOpen() ? this.editor.outline() : null,
+        outline: this.outlineUnderChange(),
+        grounds: this.scenes.grounds(),
+        feeders: this.scenes.feeders(),
         nextCorner: this.nextCorner(),
         pin: this.pin.placed(),
+        stretch: this.stretchUnderChange(),
       };
       stage?.refreshTop();
     });
+  }
+
+  private outlineUnderChange() {
+    if (this.editor.isOpen()) return this.editor.outline();
+    const { roadEditor } = this;
+    return roadEditor.isOpen() && roadEditor.drawsArea() ? roadEditor.outline() : null;
+  }
+
+  private stretchUnderChange() {
+    const { roadEditor } = this;
+    if (!roadEditor.isOpen() || roadEditor.drawsArea()) return null;
+    return { line: roadEditor.line() ?? [], picks: roadEditor.picks() };
   }
 
   /** With its last corner the outline gets a larger form beside it. */
@@ -215,7 +255,7 @@ export class StormMap {
 
   private nextCorner(): LonLat | null {
     const stage = this.stage();
-    if (!this.editor.isDrawing() || !stage) return null;
+    if (!(this.editor.isDrawing() || this.roadEditor.isDrawing()) || !stage) return null;
     const pointer = this.hands.pointerAt();
     if (pointer) return pointer;
     this.sight();
@@ -301,6 +341,9 @@ export class StormMap {
     inject(Keys).register(
       [
         action('a', 'Draw an outage area', () => actions.draw()),
+        action('z f', 'Make an outage area of feeders', () => actions.pickFeeders()),
+        action('z i', 'Take outage areas from a file', () => actions.importFile()),
+        action('b', 'Close a road, or say that it is flooded or slow', () => actions.closeRoad()),
         action('z a', 'Show all calls', () => actions.show('all')),
         action('z s', 'Show the selected call', () => actions.show('selected-call')),
         action('z p', 'Show the pocket of the selected call', () => actions.show('pocket')),
@@ -324,7 +367,9 @@ export class StormMap {
   private stepBack(): void {
     if (this.pin.isOn()) this.pin.cancel();
     else if (this.editor.isOpen()) this.actions.cancelArea();
+    else if (this.roadEditor.isOpen()) this.actions.cancelRoad();
     else if (this.popover.at() !== null) this.popover.close();
+    else if (this.panel() === 'file') this.actions.closeFile();
     else this.panel.set('none');
   }
 }

@@ -13,6 +13,7 @@ import { MatTabsModule } from '@angular/material/tabs';
 import { Session } from '../core/session';
 import { AccountsPart } from './accounts-part';
 import { AuditPart } from './audit-part';
+import { RegionPart } from './region-part';
 import { SettingsPart } from './settings-part';
 import { StormsPart } from './storms-part';
 import { TechniciansPart } from './technicians-part';
@@ -22,15 +23,25 @@ const PARTS = [
   { key: 'settings', name: 'Settings' },
   { key: 'technicians', name: 'Technicians' },
   { key: 'accounts', name: 'Accounts' },
+  { key: 'region', name: 'Region' },
   { key: 'trail', name: 'Audit trail' },
 ] as const;
 
 type PartKey = (typeof PARTS)[number]['key'];
+const OWNERS: readonly PartKey[] = ['accounts', 'region'];
 
-/** Where the manager keeps the storms, the settings and the technicians, and the owner the accounts. */
+/** Where the manager keeps the storms, the settings and the technicians, and the owner the accounts and the region. */
 @Component({
   selector: 'thaw-office-page',
-  imports: [AccountsPart, AuditPart, MatTabsModule, SettingsPart, StormsPart, TechniciansPart],
+  imports: [
+    AccountsPart,
+    AuditPart,
+    MatTabsModule,
+    RegionPart,
+    SettingsPart,
+    StormsPart,
+    TechniciansPart,
+  ],
   templateUrl: './office-page.html',
   styleUrl: './office-page.scss',
   changeDetection: ChangeDetectionStrategy.OnPush,
@@ -43,7 +54,7 @@ export class OfficePage {
   readonly part = input<string>();
 
   protected readonly parts = computed(() =>
-    PARTS.filter(({ key }) => key !== 'accounts' || this.session.role() === 'owner'),
+    PARTS.filter(({ key }) => !OWNERS.includes(key) || this.session.role() === 'owner'),
   );
   protected readonly shown = linkedSignal<PartKey>(
     () => this.parts().find(({ key }) => key === this.part())?.key ?? 'storms',
