@@ -11,7 +11,7 @@ import type { Town } from './towns';
 export type Flow = 0 | 1 | -1;
 
 export interface TurnRule {
-  readonly kind: 'no_left_turn' | 'only_straight_on' | 'no_u_turn';
+  readonly kind: 'no_left_turn';
   /** The stretch that one comes by, the junction, and the stretch that the rule speaks of. */
   readonly from: number;
   readonly via: number;
