@@ -32,6 +32,13 @@ export function ensureBuild(tell = () => {}) {
   });
 }
 
+/** Builds the server alone: what the command line needs. */
+export function ensureServerBuild() {
+  return withLock('build', async () =>
+    (await buildWhenChanged('server', buildServer)) ? 'built server' : 'up to date',
+  );
+}
+
 async function buildWhenChanged(half, build) {
   const stampFile = path.join(root, 'dist', `.${half}-sources`);
   const wanted = await hashOf(INPUTS[half]);
