@@ -47,6 +47,11 @@ describe('guessColumns', () => {
     );
   });
 
+  it('takes the only clock of a log without titles for when calls came in, newest first too', () => {
+    const map = guessColumns(null, [...ROWS].reverse());
+    expect(map.columns.map(({ role }) => role)).toEqual(roles);
+  });
+
   it('knows them by their titles alone', () => {
     expect(guessColumns(HEADER, []).columns.map(({ role }) => role)).toEqual(roles);
   });

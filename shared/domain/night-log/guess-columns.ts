@@ -207,12 +207,17 @@ function questionState(chosen: Map<number, Candidate>): void {
 
 /** A log whose only clock column was taken for something else still came in at some time. */
 function promoteTime(chosen: Map<number, Candidate>, candidates: readonly Candidate[]): void {
-  const roles = new Set([...chosen.values()].map(({ role }) => role));
+  const all = [...chosen.values()];
+  const roles = new Set(all.map(({ role }) => role));
   if (roles.has('receivedAt') || roles.has('receivedTime')) return;
+  const power = all.filter(({ role }) => role === 'powerOutAt' || role === 'powerBackAt');
+  // Nobody asks when the power went and leaves out when the call came in.
+  const lone = power.length === 1 && !power[0]?.why.startsWith('titled') ? power[0] : undefined;
   const best = candidates.find(
     ({ role, index }) =>
       (role === 'receivedAt' || role === 'receivedTime') &&
-      ['ignore', 'detail', 'callId', undefined].includes(chosen.get(index)?.role),
+      (index === lone?.index ||
+        ['ignore', 'detail', 'callId', undefined].includes(chosen.get(index)?.role)),
   );
   if (best) chosen.set(best.index, best);
 }
