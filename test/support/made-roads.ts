@@ -7,19 +7,30 @@ import { SeededRandom } from '@shared/domain/planner/random';
  * blocks a junction as real counties have. Harder than a county of the same size, for nothing in it is a
  * bottleneck that a hierarchy could use.
  */
-export function madeGrid(side: number, seed = 1): SegmentsAndTurns {
+export const madeGrid = (side: number, seed = 1): SegmentsAndTurns =>
+  grid(side, seed, { missing: 0.19, oneWay: 0.05, longer: 0.2 });
+
+/** The same with every block there, open both ways and as long as it looks. */
+export const wholeGrid = (side: number): SegmentsAndTurns =>
+  grid(side, 1, { missing: 0, oneWay: 0, longer: 0 });
+
+function grid(
+  side: number,
+  seed: number,
+  share: { readonly missing: number; readonly oneWay: number; readonly longer: number },
+): SegmentsAndTurns {
   const random = new SeededRandom(seed);
   const segments: Segment[] = [];
   const lon = (x: number): number => -477_000_000 + x * 12_000;
   const lat = (y: number): number => 364_000_000 + y * 9_000;
   const street = (x: number, y: number, dx: number, dy: number, line: number): void => {
-    if (random.unit() < 0.19 && line % 12 !== 0) return;
+    if (random.unit() < share.missing && line % 12 !== 0) return;
     const roadClass = ROAD_CLASSES.indexOf(
       line % 48 === 0 ? 'primary' : line % 12 === 0 ? 'secondary' : 'residential',
     );
-    const metres = (dx === 1 ? 107 : 100) * (1 + random.unit() * 0.2);
+    const metres = (dx === 1 ? 107 : 100) * (1 + random.unit() * share.longer);
     const ms = Math.round((metres * 3600) / CLASS_SPEED_KMH[ROAD_CLASSES[roadClass]!]);
-    const isOneWay = random.unit() < 0.05;
+    const isOneWay = random.unit() < share.oneWay;
     segments.push({
       from: y * side + x,
       to: (y + dy) * side + x + dx,

@@ -21,6 +21,8 @@ const ALONG_METRES = 12;
 const ALONG_COSINE = Math.cos((30 * Math.PI) / 180);
 /** A line that ends or bends at a junction touches the side roads there; those it does not close. */
 const JUNCTION_METRES = 15;
+/** A shorter line is a stroke across a road, wherever it lies: our estimate. */
+const STROKE_METRES = 40;
 
 /**
  * Finds the roads that storm roads take. Two slow areas over one road do not add up: the slower counts.
@@ -63,36 +65,37 @@ function stretchesOf(graph: RoadGraph, boxes: Float64Array, road: StormRoad): St
   const plane = new Plane(points[0]!);
   const box = boxAround(points, plane);
   const test =
-    shape.type === 'line' ? lineTest(points.map((p) => plane.at(p))) : areaTest(points, plane);
-  const taken: Stretch[] = [];
-  const atJunctions: Stretch[] = [];
-  for (let segment = 0; segment < graph.segmentCount; segment++) {
-    if (!overlaps(boxes, segment, box)) continue;
-    const { sure, atJunction } = lookAt(graph, segment, plane, test);
-    if (sure) taken.push(sure);
-    else if (atJunction) atJunctions.push(atJunction);
-  }
-  // A short stroke across a road close to its end means that road after all.
-  return taken.length > 0 ? taken : atJunctions;
+    shape.type === 'line'
+      ? lineTest(points.map((p) => plane.at(p)))
+      : areaTest(points, plane, road.kind === 'slow');
+  const found: Found[] = [];
+  for (let segment = 0; segment < graph.segmentCount; segment++)
+    if (overlaps(boxes, segment, box)) found.push(lookAt(graph, segment, plane, test));
+  const all = (stretch: (one: Found) => Stretch | null): Stretch[] =>
+    found.flatMap((one) => stretch(one) ?? []);
+  const isStroke =
+    shape.type === 'line' && lengthOf(points.map((p) => plane.at(p))) < STROKE_METRES;
+  const likeliest = all(isStroke ? ({ across }) => across : ({ sure }) => sure);
+  // Where nothing is, the other reading is meant: a short stretch, or a stroke close to a junction.
+  return likeliest.length > 0 ? likeliest : all(({ sure, across }) => sure ?? across);
+}
+
+interface Found {
+  /** What runs along a line or lies in an area, or crosses a line away from junctions. */
+  readonly sure: Stretch | null;
+  /** What crosses a line anywhere. */
+  readonly across: Stretch | null;
 }
 
 type Metres = readonly [x: number, y: number];
 type PieceTest = (a: Metres, b: Metres) => 'in' | 'across' | 'out';
 
-function lookAt(
-  graph: RoadGraph,
-  segment: number,
-  plane: Plane,
-  test: PieceTest,
-): { readonly sure: Stretch | null; readonly atJunction: Stretch | null } {
+function lookAt(graph: RoadGraph, segment: number, plane: Plane, test: PieceTest): Found {
   const line = lineOf(graph, segment).map((point) => plane.at(point));
-  const lengths = line.slice(1).map((p, i) => Math.hypot(p[0] - line[i]![0], p[1] - line[i]![1]));
-  const total = Math.max(
-    1e-6,
-    lengths.reduce((sum, one) => sum + one, 0),
-  );
+  const lengths = lengthsOf(line);
+  const total = Math.max(1e-6, lengthOf(line));
   const sure = new Gathered(segment, total);
-  const doubtful = new Gathered(segment, total);
+  const across = new Gathered(segment, total);
   let gone = 0;
   lengths.forEach((length, i) => {
     const count = Math.max(1, Math.ceil(length / PIECE_METRES));
@@ -104,12 +107,17 @@ function lookAt(
       const found = test(a, b);
       const isAtEnd = from < JUNCTION_METRES || to > total - JUNCTION_METRES;
       if (found === 'in' || (found === 'across' && !isAtEnd)) sure.add(from, to);
-      else if (found === 'across') doubtful.add(from, to);
+      if (found === 'across') across.add(from, to);
     }
     gone += length;
   });
-  return { sure: sure.stretch(), atJunction: doubtful.stretch() };
+  return { sure: sure.stretch(), across: across.stretch() };
 }
+
+const lengthsOf = (line: readonly Metres[]): number[] =>
+  line.slice(1).map((p, i) => Math.hypot(p[0] - line[i]![0], p[1] - line[i]![1]));
+const lengthOf = (line: readonly Metres[]): number =>
+  lengthsOf(line).reduce((sum, one) => sum + one, 0);
 
 class Gathered {
   private first = Infinity;
@@ -134,10 +142,12 @@ class Gathered {
   }
 }
 
-function areaTest(ring: readonly LonLat[], plane: Plane): PieceTest {
+/** @param isExact false for what must not be missed, however small the area is */
+function areaTest(ring: readonly LonLat[], plane: Plane, isExact: boolean): PieceTest {
   const corners = ring.map((point) => plane.at(point));
   return (a, b) => {
     if (isInRing([(a[0] + b[0]) / 2, (a[1] + b[1]) / 2], corners)) return 'in';
+    if (isExact) return 'out';
     return corners.some((c, i) => crosses(a, b, c, corners[(i + 1) % corners.length]!))
       ? 'in'
       : 'out';
@@ -180,7 +190,10 @@ function distance(p: Metres, c: Metres, d: Metres, isFirst: boolean, isLast: boo
 function crosses(a: Metres, b: Metres, c: Metres, d: Metres): boolean {
   const side = (p: Metres, q: Metres, r: Metres): number =>
     Math.sign((q[0] - p[0]) * (r[1] - p[1]) - (q[1] - p[1]) * (r[0] - p[0]));
-  return side(a, b, c) * side(a, b, d) <= 0 && side(c, d, a) * side(c, d, b) < 0;
+  const [fromA, fromB] = [side(c, d, a), side(c, d, b)];
+  // Two pieces of one line do not cross each other.
+  if (fromA === 0 && fromB === 0) return false;
+  return fromA * fromB <= 0 && side(a, b, c) * side(a, b, d) <= 0;
 }
 
 const between = (a: Metres, b: Metres, share: number): Metres => [
