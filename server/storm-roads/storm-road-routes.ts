@@ -9,8 +9,10 @@ import {
   undoStormRoad,
 } from './change-storm-roads';
 import { reportStormRoad } from './report-storm-road';
+import { roadStretch } from './road-stretch';
 
 type Names =
+  | 'roadStretch'
   | 'addStormRoad'
   | 'reportStormRoad'
   | 'changeStormRoad'
@@ -21,6 +23,14 @@ type Names =
 /** Roads as the storm has left them. The routes follow once a change is certain: see `follow-roads.ts`. */
 export function stormRoadRoutes(context: Context): SomeHandlers<Names> {
   return {
+    roadStretch: async ({ query: { lon, lat, toLon, toLat } }) => ({
+      stretch: await roadStretch(
+        context,
+        [lon, lat],
+        toLon === undefined || toLat === undefined ? null : [toLon, toLat],
+      ),
+    }),
+
     addStormRoad: ({ params, body, person }) =>
       runCommand(context, orderFrom('addStormRoad', person, { ...body, ...params }), (job) =>
         addStormRoad(job, params.stormId, body),

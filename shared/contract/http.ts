@@ -247,6 +247,17 @@ export const HTTP = {
     reply: z.strictObject({ pockets: z.array(areas.PocketDto) }),
   },
 
+  roadStretch: {
+    summary: 'The road beside a point, or the way between two points',
+    who: DESK,
+    query: z.strictObject({
+      lon: numberText(-180, 180),
+      lat: numberText(-85, 85),
+      toLon: numberText(-180, 180).optional(),
+      toLat: numberText(-85, 85).optional(),
+    }),
+    reply: stormRoads.RoadStretch,
+  },
   addStormRoad: {
     summary: 'Close a road, or say that it is flooded or slow',
     who: DESK,

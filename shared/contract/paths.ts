@@ -45,6 +45,7 @@ export const PATHS = {
   removeArea: ['POST', '/api/areas/:areaId/removal'],
   pockets: ['GET', '/api/storms/:stormId/pockets'],
 
+  roadStretch: ['GET', '/api/roads/stretch'],
   addStormRoad: ['POST', '/api/storms/:stormId/storm-roads'],
   reportStormRoad: ['POST', '/api/day/storm-roads'],
   changeStormRoad: ['PATCH', '/api/storm-roads/:stormRoadId'],

@@ -63,6 +63,18 @@ export type ChangeStormRoad = z.infer<typeof ChangeStormRoad>;
 export const ConfirmStormRoad = VersionedCommand;
 export const LiftStormRoad = VersionedCommand;
 export const UndoStormRoad = VersionedCommand;
+/** A piece of road as it runs. `null`: there is none near, or no way leads between the points. */
+export const RoadStretch = z.strictObject({
+  stretch: z
+    .strictObject({
+      points: z.array(LonLat),
+      /** `null` for a road without a name. */
+      name: z.string().nullable(),
+      metres: z.number(),
+    })
+    .nullable(),
+});
+export type RoadStretch = z.infer<typeof RoadStretch>;
 /** What an undo leaves: the road as it was before, or nothing when it was new. */
 export const StormRoadUndone = z.strictObject({ road: StormRoadDto.nullable() });
 

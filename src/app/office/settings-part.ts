@@ -21,6 +21,7 @@ import { Session } from '../core/session';
 import { FAULTY, focusFirst, OVERTAKEN } from './focus-first';
 import { inWords, showFaults } from './form-words';
 import { type Overtaken, overtaken } from './merge';
+import { MeasuredSpeeds } from './measured-speeds';
 import { OrderId } from './order-id';
 import {
   SETTING_FIELDS,
@@ -35,7 +36,7 @@ import {
 /** Everything that the office may set, with what it means and where its first value comes from. */
 @Component({
   selector: 'thaw-settings-part',
-  imports: [MatButton, MatFormFieldModule, MatIcon, MatInput, ReactiveFormsModule],
+  imports: [MatButton, MatFormFieldModule, MatIcon, MatInput, MeasuredSpeeds, ReactiveFormsModule],
   templateUrl: './settings-part.html',
   styleUrls: ['./parts.scss', './settings-part.scss'],
   changeDetection: ChangeDetectionStrategy.OnPush,

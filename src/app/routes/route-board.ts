@@ -188,7 +188,9 @@ export class RouteBoard {
       `Call ${view.number}`,
       STOP_STATE_WORDS[stop.state].word + (stop.locked ? ', locked' : ''),
       `arrives ${whenWords(view.arriveAt, this.now(), zone)}, done ${clockTime(view.finishAt, zone)}`,
-      `${Math.round(view.driveMinutes)} minutes of driving`,
+      stop.isUnreachable
+        ? 'no open road leads there'
+        : `${Math.round(view.driveMinutes)} minutes of driving`,
       call?.address.text ?? '',
       view.verdict ? verdictWords(view.verdict) : '',
     ];

@@ -31,6 +31,12 @@ import { isFirmStop, isUnderWay, STOP_STATE_WORDS } from './stop-words';
         @if (one.call?.danger) {
           <span class="danger"><mat-icon svgIcon="warning" aria-hidden="true" /> Danger</span>
         }
+        @if (one.stop.isUnreachable) {
+          <span class="danger">
+            <mat-icon svgIcon="warning" aria-hidden="true" /> No open road; these times cannot be
+            kept
+          </span>
+        }
         <span class="name">{{ one.call?.name }}, {{ one.call?.address?.text }}</span>
       </p>
       <p class="because">{{ technicianName() }}: {{ one.stop.because }}</p>

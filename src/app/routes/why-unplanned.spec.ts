@@ -14,6 +14,14 @@ describe('whyUnplanned', () => {
     expect(whyUnplanned(nowhere, [plain], NOW, found).reason).toBe('unlocated');
   });
 
+  it('says that no open road leads there before it looks for anybody to drive', () => {
+    const island = aCallRow(5, { cutOff: true, skills: ['sealed-system'] });
+    expect(whyUnplanned(island, [plain], NOW, found)).toMatchObject({
+      reason: 'cut-off',
+      words: expect.stringContaining('closed or flooded') as string,
+    });
+  });
+
   it('names the skill that nobody at work has', () => {
     const needs = aCallRow(3, { skills: ['sealed-system'] });
     const away = { ...sealed, active: false };

@@ -22,13 +22,19 @@ export interface WhyUnplanned {
  * @param found the call's line in the newest proposal
  */
 export function whyUnplanned(
-  call: Pick<CallRow, 'address' | 'skills' | 'parts'>,
+  call: Pick<CallRow, 'address' | 'cutOff' | 'skills' | 'parts'>,
   technicians: Iterable<TechnicianDto>,
   now: Instant,
   found: Unplanned | undefined,
 ): WhyUnplanned {
   if (call.address.lonLat === null) {
     return { reason: 'unlocated', words: 'Nobody knows where it is: set a point on the map.' };
+  }
+  if (call.cutOff) {
+    return {
+      reason: 'cut-off',
+      words: 'Cut off: every road there is closed or flooded. Settle it by phone, or wait.',
+    };
   }
   const working = [...technicians].filter((technician) => technician.active);
   const skilled = working.filter(({ skills }) => call.skills.every((s) => skills.includes(s)));
