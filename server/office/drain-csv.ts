@@ -1,5 +1,6 @@
 import { stringify } from 'csv-stringify/sync';
 import { DateTime } from 'luxon';
+import type { RegionDto } from '@shared/contract/areas';
 import type { DrainDto } from '@shared/contract/office';
 import { safeCell } from './safe-cell';
 
@@ -7,7 +8,10 @@ import { safeCell } from './safe-cell';
  * The drain as a table for a spreadsheet (RFC 4180), times in the region's zone. Three tables
  * below each other: over time, by area, by technician.
  */
-export function drainCsv(drain: DrainDto, zone: string): string {
+export function drainCsv(
+  drain: DrainDto,
+  { timeZone: zone, attribution }: Pick<RegionDto, 'timeZone' | 'attribution'>,
+): string {
   const time = (at: number): string =>
     DateTime.fromMillis(at, { zone }).toFormat('yyyy-LL-dd HH:mm');
   const figures = [
@@ -40,6 +44,8 @@ export function drainCsv(drain: DrainDto, zone: string): string {
     [],
     ['Forecast', drain.forecast.emptyAt === null ? 'never' : time(drain.forecast.emptyAt)],
     ['Assumption', safeCell(drain.forecast.assumption)],
+    // Areas and drives come from the map: its licence asks to be named (ODbL 1.0, section 4.3).
+    ['Map data', safeCell(attribution)],
   ]);
 }
 

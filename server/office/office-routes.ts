@@ -37,7 +37,7 @@ export function officeRoutes(context: Context): SomeHandlers<Names> {
         .type('text/csv; charset=utf-8')
         .attachment('backlog-drain.csv')
         // The mark tells spreadsheets that this is UTF-8.
-        .send(`\uFEFF${drainCsv(drain, context.region.dto.timeZone)}`);
+        .send(`\uFEFF${drainCsv(drain, context.region.dto)}`);
       return undefined;
     },
 

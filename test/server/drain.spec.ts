@@ -320,6 +320,7 @@ describe('the drain as CSV', () => {
     ]);
     expect(times).toHaveLength(seen.series.length);
     expect(rows.find(([first]) => first === 'Assumption')?.[1]).toBe(seen.forecast.assumption);
+    expect(rows.at(-1)).toEqual(['Map data', server.context.region.dto.attribution]);
   });
 
   it('makes no formula of a name that begins like one', async () => {

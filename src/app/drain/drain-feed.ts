@@ -25,6 +25,9 @@ export class DrainFeed {
   private readonly clock = inject(Clock);
   private readonly session = inject(Session);
 
+  /** Whom the map's licence asks to name wherever something follows from it. */
+  readonly attribution = computed(() => this.session.region()?.attribution ?? '');
+
   private readonly known = signal<DrainDto | null>(null);
   private readonly list = signal<readonly StormDto[] | null>(null);
   private readonly chosen = signal<string | null>(null);

@@ -70,6 +70,7 @@ describe('DrainPage', () => {
           useValue: {
             storm,
             zone: signal('America/New_York'),
+            region: signal(aMe().region),
             settings: signal(aMe().settings),
           },
         },
@@ -84,6 +85,11 @@ describe('DrainPage', () => {
         },
       ],
     });
+  });
+
+  it('names the source of the map, as its licence asks', async () => {
+    const { root } = await show();
+    expect(root.textContent).toContain('Map data: Invented');
   });
 
   it('shows two sums that add up', async () => {
