@@ -1,8 +1,9 @@
 import { featureCollection, multiPolygon, polygon, simplify, union } from '@turf/turf';
-import { type AreaShape, MOST_SHAPE_POINTS } from '@shared/contract/areas';
+import type { AreaShape } from '@shared/contract/areas';
 import type { LonLat } from '@shared/contract/common';
 import type { FeederMap } from '@shared/contract/feeders';
 import { Refusal } from '@shared/domain/errors';
+import { MOST_SHAPE_POINTS } from '@shared/domain/outage-shape';
 
 /** Slivers between neighbours that were mapped a hand's breadth apart are no ground of their own. */
 const LEAST_RING_DEGREES_2 = 1e-9;

@@ -1,11 +1,11 @@
 import type { Feature, Position } from 'geojson';
 import { postalStreet } from '@shared/domain/address/street-words';
+import { thinned } from '@shared/domain/thin-line';
 import { landOf } from './coastline';
 import { joinLines } from './join-lines';
 import { linesOf, type LonLat, type OsmExtract } from './osm-extract';
 import type { OsmWay, Tags } from './osm-model';
 import { innerPoint, polygonsOf, ringOf, signedArea, type PolygonRings } from './rings';
-import { thinned } from './thin-line';
 
 /** The layers of a tile; the map's style names them. */
 export const LAYERS = [

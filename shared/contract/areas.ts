@@ -1,8 +1,6 @@
 import { z } from 'zod';
+import { MOST_SHAPE_POINTS } from '@shared/domain/outage-shape';
 import { Command, filledLine, Id, LonLat, Moment, Version, VersionedCommand } from './common';
-
-/** Points of all rings together. An area along a county's shore needs some hundreds. */
-export const MOST_SHAPE_POINTS = 4000;
 
 /** A closed ring in GeoJSON's order; the last point repeats the first. */
 export const Ring = z

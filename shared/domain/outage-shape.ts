@@ -7,6 +7,9 @@ export type OutageRing = readonly Place[];
 /** The ground of an outage area as the coordinates of a GeoJSON MultiPolygon: parts of an outer ring and holes. */
 export type OutageShape = readonly (readonly OutageRing[])[];
 
+/** Points of all rings together. An area along a county's shore needs some hundreds. */
+export const MOST_SHAPE_POINTS = 4000;
+
 interface Box {
   readonly west: number;
   readonly south: number;

@@ -1,6 +1,5 @@
 import type { FeederDto, FeederMap } from '@shared/contract/feeders';
-import { crossesItself, isInShape } from '@shared/domain/outage-shape';
-import { MOST_SHAPE_POINTS } from '@shared/contract/areas';
+import { crossesItself, isInShape, MOST_SHAPE_POINTS } from '@shared/domain/outage-shape';
 import { shapeOfFeeders } from '../../server/areas/feeder-shape';
 
 const square = (west: number, south: number, size: number): [number, number][] => [

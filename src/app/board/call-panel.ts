@@ -24,6 +24,7 @@ import { Clock } from '../core/clock';
 import { Keys } from '../core/keys';
 import { DayTimePipe, Zone } from '../core/zone';
 import { ADDRESS_KIND_WORDS } from '../intake/address-words';
+import { manyAreasWords } from '../map/area-overlaps';
 import { AmendForm } from './amend-form';
 import { CallModel } from './call-model';
 import { CallThread } from './call-thread';
@@ -127,6 +128,14 @@ export class CallPanel {
     const back =
       detail.powerBackAt === null ? 'still out' : `back ${this.when(detail.powerBackAt)}`;
     return `${out}, ${back}; ${detail.timesFrom === 'area' ? 'as the outage area says' : 'as the caller says'}`;
+  });
+
+  /** Of a call in several outage areas: which of them counts, and why. */
+  protected readonly areasWords = computed(() => {
+    const call = this.board.calls().get(this.callId());
+    const place = call?.address.lonLat;
+    if (!place) return '';
+    return manyAreasWords(place, call.areaId, this.board.areas().values(), (at) => this.when(at));
   });
 
   constructor() {

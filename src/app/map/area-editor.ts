@@ -58,6 +58,10 @@ export class AreaEditor {
   readonly isBusy = this.pending.asReadonly();
   /** Why saving did not work. */
   readonly problem = this.trouble.asReadonly();
+  readonly canMoveCorners = computed(() => {
+    const whole = this.whole();
+    return whole !== null && groundOf(whole).whole === null;
+  });
   readonly canUndo = computed(() => this.earlier().length > 0);
   readonly isDrawing = computed(
     () => this.isOpen() && this.whole() === null && !this.outline().isClosed,
@@ -114,10 +118,17 @@ export class AreaEditor {
   }
 
   /** The ground as a whole, from feeders; `null` takes it away again. */
-  setGround(shape: AreaShape | null): void {
-    const ground = shape === null ? NO_GROUND : groundOf(shape);
+  setGround(whole: AreaShape | null): void {
     this.earlier.update((steps) => [...steps, this.groundNow()]);
-    this.groundNow.set(ground);
+    this.groundNow.set({ ...NO_GROUND, whole });
+  }
+
+  /** From now on the ground is an outline whose corners are moved. */
+  moveCorners(): void {
+    const whole = this.whole();
+    if (!whole || !this.canMoveCorners()) return;
+    this.earlier.update((steps) => [...steps, this.groundNow()]);
+    this.groundNow.set(groundOf(whole));
   }
 
   /** Stops without saving. For a few seconds it can be taken up again where it was. */

@@ -14,17 +14,23 @@ import { fromNowWords } from '../board/time-words';
 import { Clock } from '../core/clock';
 import { Zone } from '../core/zone';
 import { AreaEditor } from './area-editor';
+import { AreaOverlaps } from './area-overlap-list';
+import { shapeWords } from './area-ground';
+import { FeederList } from './feeder-list';
+import { FeederPick } from './feeder-pick';
 import { canClose, LEAST_CORNERS, removeCorner, selectNext } from './outline';
 
 /** Beside the map while an outage area is drawn or changed: what to do next, its times, saving. */
 @Component({
   selector: 'thaw-area-form',
+  imports: [AreaOverlaps, FeederList],
   templateUrl: './area-form.html',
   styleUrl: './map-panel.scss',
   changeDetection: ChangeDetectionStrategy.OnPush,
 })
 export class AreaForm {
   protected readonly editor = inject(AreaEditor);
+  protected readonly feeders = inject(FeederPick);
   private readonly clock = inject(Clock);
   private readonly zone = inject(Zone);
 
@@ -32,6 +38,8 @@ export class AreaForm {
   readonly cornerChosen = output<number>();
   readonly cornerAtCentre = output();
   readonly cancelled = output();
+  /** The ground is to be drawn, picked from feeders, or taken from a file instead. */
+  readonly otherWay = output<'draw' | 'feeders' | 'file'>();
 
   private readonly nameField = viewChild<ElementRef<HTMLInputElement>>('name');
   protected readonly isRemoving = signal(false);
@@ -39,6 +47,11 @@ export class AreaForm {
 
   protected readonly title = computed(() => this.editor.base()?.name ?? 'New outage area');
   protected readonly canFinish = computed(() => canClose(this.editor.outline()));
+  protected readonly isNew = computed(() => !this.editor.base() && !this.editor.isGone());
+  protected readonly wholeWords = computed(() => {
+    const whole = this.editor.whole();
+    return whole ? shapeWords(whole) : '';
+  });
   protected readonly corners = computed(() => this.editor.outline().corners.length);
   protected readonly selectedCorner = computed(() => this.editor.outline().selected);
   protected readonly outWords = computed(() => this.meaning(this.editor.times().outAt));
@@ -55,7 +68,8 @@ export class AreaForm {
     // The hand goes from the last corner to the name.
     effect(() => {
       const name = this.nameField()?.nativeElement;
-      if (name && untracked(() => this.editor.base()) === null) name.focus();
+      const isTyping = untracked(() => this.editor.base() !== null || this.feeders.isOn());
+      if (name && !isTyping) name.focus();
     });
   }
 
@@ -68,6 +82,11 @@ export class AreaForm {
   protected removeChosen(): void {
     const { selected } = this.editor.outline();
     if (selected !== null) this.editor.shape((outline) => removeCorner(outline, selected));
+  }
+
+  protected moveCorners(): void {
+    this.feeders.stop();
+    this.editor.moveCorners();
   }
 
   private meaning(at: number | null): string {

@@ -48,9 +48,15 @@ export function manyAreasWords(
     .sort((a, b) => a.name.localeCompare(b.name))
     .map((area) => `${area.name} (${back(area)})`)
     .join(', ');
-  const why =
-    chosen.backAt === null
-      ? 'counts, since it is still out'
-      : `counts, since its power came back last (${backWords(chosen.backAt)})`;
-  return `Also inside ${rest}. ${chosen.name} ${why}.`;
+  const why = whyWords(chosen, others, backWords);
+  return `Also inside ${rest}. ${chosen.name} counts, since ${why}.`;
+}
+
+function whyWords(
+  { backAt }: AreaDto,
+  others: readonly AreaDto[],
+  backWords: (at: Instant) => string,
+): string {
+  if (others.some((other) => other.backAt === backAt)) return 'its power went first';
+  return backAt === null ? 'it is still out' : `its power came back last (${backWords(backAt)})`;
 }

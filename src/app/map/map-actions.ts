@@ -1,15 +1,20 @@
 import { inject, Injectable, signal } from '@angular/core';
 import type { AreaDto, PocketDto } from '@shared/contract/areas';
+import type { StormRoadDto } from '@shared/contract/storm-roads';
+import type { LonLat } from '@shared/contract/common';
 import { Announce } from '../core/announce';
 import { BoardStore } from '../core/board-store';
 import { Theme } from '../core/theme';
 import { AreaEditor } from './area-editor';
+import { FeederPick } from './feeder-pick';
+import { FileImport } from './file-import';
 import type { LeafletStage } from './leaflet-stage';
 import { readInk } from './map-ink';
 import { MapPicture } from './map-picture';
 import { MapPopover } from './map-popover';
 import { MapScenes } from './map-scenes';
 import type { MapSight } from './map-wish';
+import { StormRoadEditor } from './storm-road-editor';
 
 /** As in the styles: below this the panel takes the lower part of the map, else its left. */
 const NARROW_PX = 560;
@@ -23,6 +28,9 @@ export class MapActions {
   private readonly board = inject(BoardStore);
   private readonly announce = inject(Announce);
   private readonly editor = inject(AreaEditor);
+  private readonly feeders = inject(FeederPick);
+  private readonly files = inject(FileImport);
+  private readonly roadEditor = inject(StormRoadEditor);
   private readonly popover = inject(MapPopover);
   private readonly scenes = inject(MapScenes);
   private readonly theme = inject(Theme);
@@ -30,7 +38,11 @@ export class MapActions {
   /** `null` until the map has a size to stand in. */
   readonly stage = signal<LeafletStage | null>(null);
   readonly picture = new MapPicture(() => readInk(this.theme));
-  readonly panel = signal<'none' | 'lists' | 'legend'>('none');
+  readonly panel = signal<'none' | 'lists' | 'legend' | 'file'>('none');
+
+  showRoad({ shape }: StormRoadDto): void {
+    this.stage()?.showAll(shape.type === 'line' ? shape.points : shape.ring);
+  }
 
   show(what: MapSight | AreaDto | PocketDto): void {
     const stage = this.stage();
@@ -53,25 +65,96 @@ export class MapActions {
   draw(): void {
     this.panel.set('none');
     this.popover.close();
+    this.roadEditor.cancel();
+    this.feeders.stop();
     this.editor.draw();
     this.focus();
+  }
+
+  takeWay(way: 'draw' | 'feeders' | 'file'): void {
+    if (way === 'draw') this.draw();
+    else if (way === 'feeders') this.pickFeeders();
+    else this.importFile();
+  }
+
+  pickFeeders(): void {
+    this.panel.set('none');
+    this.popover.close();
+    this.roadEditor.cancel();
+    this.feeders.start();
+  }
+
+  importFile(): void {
+    this.popover.close();
+    this.feeders.stop();
+    if (this.editor.isOpen()) this.editor.cancel();
+    this.roadEditor.cancel();
+    this.files.clear();
+    this.panel.set('file');
+  }
+
+  /** The panel stays beside what was read. */
+  showFile(): void {
+    this.showBeside(this.files.rows().flatMap(({ area }) => area.shape.flat(2)));
+  }
+
+  closeFile(): void {
+    this.files.clear();
+    this.panel.set('none');
+    this.focus();
+  }
+
+  closeRoad(): void {
+    this.panel.set('none');
+    this.popover.close();
+    if (this.editor.isOpen()) this.editor.cancel();
+    this.feeders.stop();
+    this.roadEditor.draw();
+    this.focus();
+  }
+
+  changeRoad(road: StormRoadDto): void {
+    this.panel.set('none');
+    this.popover.close();
+    if (this.editor.isOpen()) this.editor.cancel();
+    this.feeders.stop();
+    this.roadEditor.change(road);
+    this.showRoad(road);
+  }
+
+  cancelRoad(): void {
+    this.roadEditor.cancel();
+    this.focus();
+  }
+
+  pickAtCentre(): void {
+    const stage = this.stage();
+    if (!stage) return;
+    if (this.roadEditor.drawsArea()) this.roadEditor.addCorner(stage.centre());
+    else void this.roadEditor.pick(stage.centre());
   }
 
   change(area: AreaDto): void {
     this.panel.set('none');
     this.popover.close();
+    this.roadEditor.cancel();
+    this.feeders.stop();
     this.editor.change(area);
     this.showOutline();
   }
 
   /** The form must not lie on what it is about. */
   showOutline(): void {
+    this.showBeside(this.editor.ground()?.flat(2) ?? []);
+  }
+
+  private showBeside(places: readonly LonLat[]): void {
     const stage = this.stage();
     if (!stage) return;
     const { x, y } = stage.map.getSize();
     const covered = x < NARROW_PX ? { below: y * 0.55 } : { left: PANEL_PX };
     const closest = Math.max(stage.map.getZoom(), MOST_OUTLINE_ZOOM);
-    stage.showAll(this.editor.ground()?.flat(2) ?? [], { ...covered, closest });
+    stage.showAll(places, { ...covered, closest });
   }
 
   cancelArea(): void {

@@ -3,12 +3,14 @@ import type { LeafletMouseEvent } from 'leaflet';
 import type { LonLat } from '@shared/contract/common';
 import { BoardStore } from '../core/board-store';
 import { AreaEditor } from './area-editor';
+import { FeederPick } from './feeder-pick';
 import type { LeafletStage } from './leaflet-stage';
 import { MapActions } from './map-actions';
 import type { MapHit } from './map-picture';
 import { MapPopover } from './map-popover';
 import { ARROWS, lonLatOf, OutlineHands, reachOf } from './outline-hands';
 import { PinTool } from './pin-tool';
+import { StormRoadEditor } from './storm-road-editor';
 
 const PAN_PX = 80;
 const FINE_PAN_PX = 10;
@@ -23,10 +25,13 @@ export class MapHands {
   private readonly board = inject(BoardStore);
   private readonly actions = inject(MapActions);
   private readonly editor = inject(AreaEditor);
+  private readonly feeders = inject(FeederPick);
+  private readonly roadEditor = inject(StormRoadEditor);
   private readonly popover = inject(MapPopover);
   private readonly pin = inject(PinTool);
 
   private outline: OutlineHands | null = null;
+  private roadOutline: OutlineHands | null = null;
   private hoverTimer: ReturnType<typeof setTimeout> | undefined;
   private pointerType = 'mouse';
   private isMapDragged = false;
@@ -35,10 +40,16 @@ export class MapHands {
   readonly isByKeys = signal(false);
   /** Where the pointer is; `null` when it is not on the map. */
   readonly pointerAt = signal<LonLat | null>(null);
-  readonly hasTool = computed(() => this.pin.isOn() || this.editor.isOpen());
+  readonly hasTool = computed(
+    () => this.pin.isOn() || this.editor.isOpen() || this.roadEditor.isOpen(),
+  );
   readonly hasCrossHair = computed(
     () =>
-      this.pointerAt() === null && (this.isByKeys() || this.pin.isOn() || this.editor.isDrawing()),
+      this.pointerAt() === null &&
+      (this.isByKeys() ||
+        this.pin.isOn() ||
+        this.editor.isDrawing() ||
+        (this.roadEditor.isOpen() && !this.roadEditor.outline().isClosed)),
   );
 
   /** @param opened a call was clicked twice */
@@ -48,6 +59,19 @@ export class MapHands {
       capture: true,
     });
     this.outline = new OutlineHands(stage, this.editor);
+    const roads = this.roadEditor;
+    this.roadOutline = new OutlineHands(stage, {
+      isOpen: () => roads.isOpen() && roads.drawsArea(),
+      isDrawing: () => roads.isDrawing(),
+      outline: () => roads.outline(),
+      addCorner: (corner) => roads.addCorner(corner),
+      finish: () => roads.finish(),
+      select: (index) => roads.select(index),
+      shape: (step) => roads.shape(step),
+      drag: (step) => roads.drag(step),
+      undo: () => roads.undo(),
+      whole: () => null,
+    });
     map.on('click', (event) => {
       host.focus({ preventScroll: true });
       this.act(stage, lonLatOf(event), this.pointerType);
@@ -74,7 +98,9 @@ export class MapHands {
   }
 
   private pressed(stage: LeafletStage, event: KeyboardEvent): boolean {
-    if (this.editor.isOpen() && this.outline?.press(event)) return true;
+    const isOutline = this.editor.isOpen() && !this.feeders.isOn();
+    if (isOutline && this.outline?.press(event)) return true;
+    if (this.roadEditor.isOpen() && this.roadOutline?.press(event)) return true;
     if (event.ctrlKey || event.metaKey) return false;
     const step = ARROWS[event.key];
     if (step) {
@@ -107,8 +133,14 @@ export class MapHands {
     if (this.pin.isOn()) {
       if (pointerType === 'touch') this.pin.put(at);
       else this.pin.take(at);
+    } else if (this.feeders.isOn()) {
+      const feeder = this.feeders.at(at);
+      if (feeder) this.feeders.toggle(feeder);
     } else if (this.editor.isOpen()) {
       this.outline?.click(at, reachOf(pointerType));
+    } else if (this.roadEditor.isOpen()) {
+      if (this.roadEditor.drawsArea()) this.roadOutline?.click(at, reachOf(pointerType));
+      else void this.roadEditor.pick(at);
     } else {
       const slack = pointerType === 'touch' ? TOUCH_SLACK_PX : MOUSE_SLACK_PX;
       const point = stage.worldPixel(stage.windowPoint(at));
@@ -134,6 +166,9 @@ export class MapHands {
       case 'area':
         this.actions.change(hit.area);
         return;
+      case 'storm-road':
+        this.actions.changeRoad(hit.road);
+        return;
       default:
         this.actions.chooseTechnician(null);
     }
@@ -153,7 +188,13 @@ export class MapHands {
   }
 
   private hover(stage: LeafletStage, event: LeafletMouseEvent): void {
-    if (this.pointerType === 'touch' || this.isMapDragged || this.outline?.isDragging) return;
+    if (
+      this.pointerType === 'touch' ||
+      this.isMapDragged ||
+      this.outline?.isDragging ||
+      this.roadOutline?.isDragging
+    )
+      return;
     const at = lonLatOf(event);
     this.isByKeys.set(false);
     this.pointerAt.set(at);

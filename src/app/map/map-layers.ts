@@ -8,6 +8,7 @@ export const MAP_LAYERS = [
   { layer: 'areas', name: 'Areas', key: 'a' },
   { layer: 'routes', name: 'Routes', key: 'r' },
   { layer: 'technicians', name: 'Technicians', key: 't' },
+  { layer: 'storm-roads', name: 'Storm roads', key: 'o' },
   { layer: 'feeders', name: 'Feeders', key: 'f' },
 ] as const;
 export type MapLayerName = (typeof MAP_LAYERS)[number]['layer'];

@@ -12,12 +12,14 @@ import {
 import { Theme } from '../core/theme';
 import { readInk } from './map-ink';
 import { drawMark, type MarkLook } from './mark-sprites';
+import { StormRoadLegend } from './storm-road-legend';
 
 const SIZE_PX = 34;
 
 /** What the marks mean, drawn by the very code that draws them on the map. */
 @Component({
   selector: 'thaw-map-legend',
+  imports: [StormRoadLegend],
   templateUrl: './map-legend.html',
   styleUrls: ['./map-panel.scss', './map-legend.scss'],
   changeDetection: ChangeDetectionStrategy.OnPush,

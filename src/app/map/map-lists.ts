@@ -1,15 +1,17 @@
 import { ChangeDetectionStrategy, Component, computed, inject, output } from '@angular/core';
 import type { AreaDto, PocketDto } from '@shared/contract/areas';
+import type { StormRoadDto } from '@shared/contract/storm-roads';
 import { BoardStore } from '../core/board-store';
 import { Clock } from '../core/clock';
 import { InHoursPipe, MoneyPipe, Zone } from '../core/zone';
 import { whenWords } from '../board/time-words';
 import { areaTimesWords } from './area-words';
+import { StormRoadList } from './storm-road-list';
 
 /** Areas and pockets as lists, for whoever would rather read than look, or cannot look. */
 @Component({
   selector: 'thaw-map-lists',
-  imports: [InHoursPipe, MoneyPipe],
+  imports: [InHoursPipe, MoneyPipe, StormRoadList],
   templateUrl: './map-lists.html',
   styleUrl: './map-panel.scss',
   changeDetection: ChangeDetectionStrategy.OnPush,
@@ -20,9 +22,14 @@ export class MapLists {
   private readonly zone = inject(Zone);
 
   readonly drawn = output();
+  readonly picked = output();
+  readonly imported = output();
   readonly changed = output<AreaDto>();
   readonly shown = output<AreaDto | PocketDto>();
   readonly chosen = output<PocketDto>();
+  readonly roadClosed = output();
+  readonly roadShown = output<StormRoadDto>();
+  readonly roadChanged = output<StormRoadDto>();
   readonly closed = output();
 
   protected readonly areas = computed(() => {

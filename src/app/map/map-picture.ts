@@ -1,5 +1,6 @@
 import type { AreaDto, PocketDto } from '@shared/contract/areas';
 import type { LonLat } from '@shared/contract/common';
+import type { StormRoadDto } from '@shared/contract/storm-roads';
 import type { CallMark } from './call-mark';
 import { type Box, isInBox, LabelBoxes } from './label-boxes';
 import { type MapInk } from './map-ink';
@@ -9,9 +10,18 @@ import type { Outline } from './outline';
 import { paintAreaLabels } from './area-labels';
 import { type AreaShape, makeHatch, paintAreas } from './paint-areas';
 import { paintCalls, paintRing } from './paint-calls';
+import { type FeederShape, type GroundRings, paintFeeders, paintGround } from './paint-ground';
 import { paintOutline } from './paint-outline';
 import { paintPocketLabels, paintPockets, type PocketShape } from './paint-pockets';
 import { paintRoutes, paintStopNumbers, paintTechnicians, type RouteShape } from './paint-routes';
+import {
+  makeStormRoadPatterns,
+  paintPickedStretch,
+  paintStormRoads,
+  paintStormRoadSigns,
+  type StormRoadMark,
+  type StormRoadPatterns,
+} from './paint-storm-roads';
 import { onScreen, toWorld, type View, type WorldPoint } from './world';
 
 /** What the map shows, but for what moves with the pointer. A layer that is left out is empty. */
@@ -19,6 +29,7 @@ export interface MapScene {
   /** In the order of the queue. */
   readonly marks: readonly CallMark[];
   readonly areas: readonly AreaShape[];
+  readonly stormRoads: readonly StormRoadMark[];
   readonly pockets: readonly PocketShape[];
   readonly routes: readonly RouteShape[];
   readonly hasRoutes: boolean;
@@ -32,13 +43,20 @@ export interface MapTop {
   readonly selected: CallMark | null;
   readonly hovered: CallMark | null;
   readonly outline: Outline | null;
+  /** Ground that is about to become outage areas, from feeders or a file. */
+  readonly grounds: readonly GroundRings[];
+  /** To pick from; empty while none are picked. */
+  readonly feeders: readonly FeederShape[];
   readonly nextCorner: LonLat | null;
   readonly pin: LonLat | null;
+  /** The stretch of road that is being picked, and the places picked. */
+  readonly stretch: { readonly line: readonly LonLat[]; readonly picks: readonly LonLat[] } | null;
 }
 
 const EMPTY_SCENE: MapScene = {
   marks: [],
   areas: [],
+  stormRoads: [],
   pockets: [],
   routes: [],
   hasRoutes: false,
@@ -50,15 +68,19 @@ const EMPTY_TOP: MapTop = {
   selected: null,
   hovered: null,
   outline: null,
+  grounds: [],
+  feeders: [],
   nextCorner: null,
   pin: null,
+  stretch: null,
 };
 
 export type MapHit =
   | { readonly kind: 'calls'; readonly marks: readonly CallMark[] }
   | { readonly kind: 'technician'; readonly technicianId: string }
   | { readonly kind: 'pocket'; readonly pocket: PocketDto }
-  | { readonly kind: 'area'; readonly area: AreaDto };
+  | { readonly kind: 'area'; readonly area: AreaDto }
+  | { readonly kind: 'storm-road'; readonly road: StormRoadDto };
 
 /** Draws the scene, and knows afterwards what lies where. */
 export class MapPicture {
@@ -69,10 +91,12 @@ export class MapPicture {
   private sprites: MarkSprites | null = null;
   private spritesFor = '';
   private hatch: CanvasPattern | null = null;
+  private roadPatterns: StormRoadPatterns | null = null;
   private placed: readonly PlacedMark[] = [];
   private placedFor: { readonly marks: readonly CallMark[]; readonly zoom: number } | null = null;
   private view: View | null = null;
   private plates: ReturnType<typeof paintTechnicians> = [];
+  private roadSigns: ReturnType<typeof paintStormRoadSigns> = [];
   private areaLabels: ReturnType<typeof paintAreaLabels> = [];
   private pocketLabels: ReturnType<typeof paintPocketLabels> = [];
 
@@ -83,6 +107,7 @@ export class MapPicture {
     this.ink = null;
     this.sprites = null;
     this.hatch = null;
+    this.roadPatterns = null;
   }
 
   readonly paint = (ctx: CanvasRenderingContext2D, view: View, pixelRatio: number): void => {
@@ -90,16 +115,19 @@ export class MapPicture {
     const ink = this.inkNow();
     const sprites = this.spritesNow(ink, pixelRatio);
     this.hatch ??= makeHatch(ctx, ink);
+    this.roadPatterns ??= makeStormRoadPatterns(ctx, ink);
     this.view = view;
     const boxes = new LabelBoxes();
 
     paintPockets(ctx, view, scene.pockets, scene.chosenPocketKey, ink);
     paintAreas(ctx, view, scene.areas, this.hatch, ink);
     if (scene.hasRoutes) paintRoutes(ctx, view, scene.routes, scene.chosenTechnicianId, ink);
+    paintStormRoads(ctx, view, scene.stormRoads, this.roadPatterns, ink);
     paintCalls(ctx, view, this.placedAt(view.zoom), sprites, ink);
     this.plates = scene.hasTechnicians
       ? paintTechnicians(ctx, view, scene.routes, scene.chosenTechnicianId, boxes, ink)
       : [];
+    this.roadSigns = paintStormRoadSigns(ctx, view, scene.stormRoads, boxes, ink);
     this.pocketLabels = paintPocketLabels(
       ctx,
       view,
@@ -117,6 +145,8 @@ export class MapPicture {
     const sprites = this.spritesNow(ink, pixelRatio);
     const chosen = scene.routes.find((one) => one.technician.id === scene.chosenTechnicianId);
     if (chosen && scene.hasRoutes) paintStopNumbers(ctx, view, chosen, ink);
+    for (const ground of top.grounds) paintGround(ctx, view, ground, ink);
+    paintFeeders(ctx, view, top.feeders, new LabelBoxes(), ink);
     for (const kind of ['hovered', 'selected'] as const) {
       const mark = top[kind];
       if (mark) paintRing(ctx, view, this.placedOf(mark, view.zoom), kind, sprites, ink);
@@ -125,6 +155,7 @@ export class MapPicture {
       const next = top.nextCorner ? toWorld(top.nextCorner) : null;
       paintOutline(ctx, view, top.outline, next, ink);
     }
+    if (top.stretch) paintPickedStretch(ctx, view, top.stretch.line, top.stretch.picks, ink);
     if (top.pin) paintPin(ctx, onScreen(view, toWorld(top.pin)), ink);
   };
 
@@ -141,6 +172,8 @@ export class MapPicture {
     const inBox = ({ box }: { readonly box: Box }): boolean => isInBox(box, x, y);
     const plate = this.plates.findLast(inBox);
     if (plate) return { kind: 'technician', technicianId: plate.technicianId };
+    const sign = this.roadSigns.findLast(inBox);
+    if (sign) return { kind: 'storm-road', road: sign.road };
     const pocket = this.pocketLabels.find(inBox);
     if (pocket) return { kind: 'pocket', pocket: pocket.pocket };
     const near = marksAt(this.placedAt(view.zoom), view.zoom, at, slackPx);

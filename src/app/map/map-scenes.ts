@@ -8,13 +8,19 @@ import { rankedCall } from '../core/ranking';
 import { Session } from '../core/session';
 import { duration, Zone } from '../core/zone';
 import { AreaEditor } from './area-editor';
+import { FeederPick } from './feeder-pick';
+import { FileImport } from './file-import';
 import { areaTimesWords, pocketWords } from './area-words';
 import { type CallMark, callMark, CallMarks } from './call-mark';
 import { MapLayers } from './map-layers';
 import type { MapScene } from './map-picture';
 import { areaShape } from './paint-areas';
+import { feederShape, groundRings } from './paint-ground';
 import { pocketShape } from './paint-pockets';
+import { stormRoadMark } from './paint-storm-roads';
 import { routeShape } from './paint-routes';
+import { StormRoadEditor } from './storm-road-editor';
+import { spanWords, tenseOf } from './storm-road-words';
 import { toWorld, type WorldPoint } from './world';
 
 /** Makes what the map draws from what the board knows; each part anew only when it has changed. */
@@ -26,6 +32,9 @@ export class MapScenes {
   private readonly zone = inject(Zone);
   private readonly layers = inject(MapLayers);
   private readonly editor = inject(AreaEditor);
+  private readonly roadEditor = inject(StormRoadEditor);
+  private readonly feederPick = inject(FeederPick);
+  private readonly files = inject(FileImport);
 
   /** Whose route is drawn strongest, unless a call on another route is selected. */
   readonly chosenTechnicianId = signal<string | null>(null);
@@ -43,6 +52,18 @@ export class MapScenes {
     return [...this.board.areas().values()]
       .filter(({ id }) => id !== edited)
       .map((area) => areaShape(area, areaTimesWords(area, this.minute(), this.zone.name())));
+  });
+
+  /** What is over stays in the list, not on the map. */
+  private readonly stormRoads = computed(() => {
+    if (!this.layers.isShown('storm-roads')) return [];
+    const edited = this.roadEditor.isOpen() ? this.roadEditor.base()?.id : undefined;
+    const now = this.minute();
+    return [...this.board.stormRoads().values()]
+      .filter((road) => road.id !== edited && tenseOf(road, now) !== 'over')
+      .map((road) =>
+        stormRoadMark(road, tenseOf(road, now), spanWords(road, now, this.zone.name())),
+      );
   });
 
   private readonly pockets = computed(() =>
@@ -78,6 +99,7 @@ export class MapScenes {
   readonly scene = computed<MapScene>(() => ({
     marks: this.marks(),
     areas: this.areas(),
+    stormRoads: this.stormRoads(),
     pockets: this.pockets(),
     routes: this.routes(),
     hasRoutes: this.layers.isShown('routes'),
@@ -85,6 +107,18 @@ export class MapScenes {
     chosenPocketKey: this.board.filter().pocketKey,
     chosenTechnicianId: this.board.selectedCall()?.technicianId ?? this.chosenTechnicianId(),
   }));
+
+  /** What is about to become outage areas. */
+  readonly grounds = computed(() => {
+    const whole = this.editor.isOpen() ? this.editor.whole() : null;
+    const shapes = this.files.chosen().map(({ area }) => area.shape);
+    return (whole ? [whole, ...shapes] : shapes).map(groundRings);
+  });
+  readonly feeders = computed(() => {
+    if (!this.feederPick.isOn()) return [];
+    const chosen = this.feederPick.chosenIds();
+    return (this.feederPick.feeders() ?? []).map((one) => feederShape(one, chosen.has(one.id)));
+  });
 
   readonly selectedMark = computed(() => this.markOf(this.board.selectedCallId()));
   readonly hoveredMark = computed(() => this.markOf(this.board.hoveredCallId()));

@@ -1,8 +1,7 @@
 import type { LeafletMouseEvent, Point } from 'leaflet';
 import type { LonLat } from '@shared/contract/common';
-import type { AreaEditor } from './area-editor';
 import type { LeafletStage } from './leaflet-stage';
-import { insertCorner, moveCorner, removeCorner, selectNext } from './outline';
+import { insertCorner, moveCorner, type Outline, removeCorner, selectNext } from './outline';
 import { type OutlineHit, outlineHit } from './paint-outline';
 import type { WorldPoint } from './world';
 
@@ -18,14 +17,29 @@ export const reachOf = (pointerType: string): number =>
 
 export const lonLatOf = ({ latlng }: LeafletMouseEvent): LonLat => [latlng.lng, latlng.lat];
 
-/** What hands and keys do to the outline of an outage area on the map. */
+/** Whatever has an outline under change. */
+export interface OutlineEditor {
+  isOpen(): boolean;
+  isDrawing(): boolean;
+  outline(): Outline;
+  addCorner(corner: LonLat): void;
+  finish(): void;
+  select(index: number | null): void;
+  shape(step: (outline: Outline) => Outline): void;
+  drag(step: (outline: Outline) => Outline): void;
+  undo(): void;
+  /** What is not changed by its corners, such as an area of several parts; `null` when there is none. */
+  whole(): unknown;
+}
+
+/** What hands and keys do to an outline on the map. */
 export class OutlineHands {
   private grip: { index: number; moved: boolean } | null = null;
   private ignoresClick = false;
 
   constructor(
     private readonly stage: LeafletStage,
-    private readonly editor: AreaEditor,
+    private readonly editor: OutlineEditor,
   ) {
     const container = stage.map.getContainer();
     // Before Leaflet hears of it, which would otherwise move the map.
@@ -51,6 +65,7 @@ export class OutlineHands {
       this.draw(at, reachPx);
       return;
     }
+    if (editor.whole()) return;
     const hit = this.hit(this.stage.windowPoint(at), reachPx);
     const { selected } = editor.outline();
     if (hit?.kind === 'corner') editor.select(hit.index === selected ? null : hit.index);
@@ -66,7 +81,7 @@ export class OutlineHands {
       editor.undo();
       return true;
     }
-    if (!isClosed) return false;
+    if (!isClosed || editor.whole()) return false;
     if (event.key === 'PageDown' || event.key === 'PageUp') {
       this.selectNext(event.key === 'PageDown' ? 1 : -1);
       return true;
@@ -120,7 +135,7 @@ export class OutlineHands {
   private down(event: PointerEvent): void {
     this.ignoresClick = false;
     const { editor } = this;
-    if (!editor.isOpen() || editor.isDrawing() || event.button !== 0) return;
+    if (!editor.isOpen() || editor.isDrawing() || editor.whole() || event.button !== 0) return;
     const at = this.stage.pointOf(event);
     const hit = this.hit(at, reachOf(event.pointerType));
     if (!hit) return;
