@@ -8,6 +8,7 @@ const LENGTH = new RegExp(
     String.raw`(?:(?<hours>\d{1,3}(?:[.,]\d{1,2})?) ?(?:h|hrs?|hours?)(?: ?(?<minutes>\d{1,2}) ?(?:m|min|mins|minutes?))?|` +
     String.raw`(?<onlyMinutes>\d{1,4}) ?(?:m|min|mins|minutes?)|(?<days>\d{1,2}) ?(?:d|days?))$`,
 );
+const OVER: TimeEntry = { kind: 'unreadable', why: 'That is over already.' };
 const WHY = 'Write it as in 3 h, 18:00 or Fri 6:00.';
 
 /**
@@ -24,9 +25,10 @@ export function readTimeAhead(raw: string, now: Instant, zone: string): TimeEntr
   const isTomorrow = /^tomorrow\b/.test(text);
   const said = readWhen(text.replace(/^(tomorrow|tonight|today)[, ]*/, ''));
   if (said.rest !== '' || said.clock === null) return { kind: 'unreadable', why: WHY };
+  if (said.date?.kind === 'relative' && said.date.days > 0) return OVER;
   const at = nextSuchMoment(said, now, zone, isTomorrow);
   if (at === null) return { kind: 'unreadable', why: WHY };
-  return at > now ? { kind: 'moment', at } : { kind: 'unreadable', why: 'That is over already.' };
+  return at > now ? { kind: 'moment', at } : OVER;
 }
 
 /**
