@@ -93,6 +93,8 @@ export class RoadsClient implements RoadsPort {
       file,
       engine: new RoadsEngine(file),
     };
+    // Made now, or the first command that asks for a drive would wait for it.
+    void opened?.engine.snap;
     await this.become({ opened, conditions: this.wanted.conditions });
   }
 

@@ -33,8 +33,8 @@ const routino = hasRoutino()
 
 /**
  * The same extracts and the same speeds in a router that shares nothing with this one. What is left:
- * it counts each piece between two nodes in whole metres and tenths of a second, rounded down, which is
- * done to our times here as well; it forbids turning round on the road; and it closes roads with
+ * it counts each piece between two nodes in whole metres, tenths of a second and km/h, rounded down, which
+ * is done to our times here as well; it forbids turning round on the road; and it closes roads with
  * `access=destination`, which are open to a visit.
  */
 routino('drives beside those of routino (needs routino-router)', () => {
@@ -112,15 +112,20 @@ const twoWayEnds = (graph: RoadGraph): number[] =>
  */
 const THEIR_EARTH = 6378.137 / EARTH_RADIUS_KM;
 
-/** Lane times as the sum of pieces in whole metres and whole tenths of a second, rounded down. */
+/**
+ * Lane times as the sum of pieces in whole metres and whole tenths of a second, at whole km/h, all rounded
+ * down: 30 mph are 48 km/h to it.
+ */
 function truncated({ graph }: BuiltRoads): RoadGraph {
   const laneMs = graph.laneMs.map((ms, lane) => {
     const line: LonLat[] = lineOf(graph, lane >> 1);
-    const metresPerMs = graph.segmentDm[lane >> 1]! / 10 / Math.max(1, ms);
+    const kmh = (graph.segmentDm[lane >> 1]! * 360) / Math.max(1, ms);
+    // Our own times are whole milliseconds, so 40 km/h may come back as 39.99.
+    const metresPerTenth = Math.floor(kmh + 0.1) / 36;
     let tenths = 0;
     for (let i = 1; i < line.length; i++) {
       const metres = Math.trunc(greatCircleKm(line[i - 1]!, line[i]!) * 1000 * THEIR_EARTH);
-      tenths += Math.trunc(metres / metresPerMs / 100);
+      tenths += Math.trunc(metres / metresPerTenth);
     }
     return tenths * 100;
   });

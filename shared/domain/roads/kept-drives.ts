@@ -39,16 +39,7 @@ export class KeptDrives {
     const { ms, dm, capacity } = this;
     const isNew = ({ slot }: { readonly slot: number }): boolean =>
       ms[slot * capacity + slot] === UNKNOWN;
-    const known = wanted.filter((one) => !isNew(one));
-    // Two points that were both known may never have been asked for together.
-    const strangers = known.filter(({ slot }, i) =>
-      known.some(
-        (other, j) =>
-          j > i &&
-          (ms[slot * capacity + other.slot] === UNKNOWN ||
-            ms[other.slot * capacity + slot] === UNKNOWN),
-      ),
-    );
+    const strangers = this.strangers(wanted.filter((one) => !isNew(one)));
     const rows = [...wanted.filter(isNew), ...strangers];
     if (rows.length === 0) return;
     const [from, to] = [rows.map(({ point }) => point), wanted.map(({ point }) => point)];
@@ -64,6 +55,17 @@ export class KeptDrives {
         ms[other.slot * capacity + slot] = back.ms[cell]!;
         dm[other.slot * capacity + slot] = back.dm[cell]!;
       });
+    });
+  }
+
+  /** Points that are known, each, and were never asked for together with another one of them. */
+  private strangers<Kept extends { readonly slot: number }>(known: readonly Kept[]): Kept[] {
+    const { ms, capacity } = this;
+    const slots = Int32Array.from(known, ({ slot }) => slot);
+    return known.filter(({ slot }, i) => {
+      const row = slot * capacity;
+      for (let j = i + 1; j < slots.length; j++) if (ms[row + slots[j]!] === UNKNOWN) return true;
+      return false;
     });
   }
 
