@@ -2,7 +2,8 @@ import { mix, noise2, seedOf } from './chance';
 import { ferryLinks, fordLink, ruralLinks, townLinks, type Wish } from './country-links';
 import type { FerryCrossing } from './ferry';
 import { CheapestFirst } from './least-cost';
-import { between, distance, lengthOf, rounded, simplified, type Point } from './plane';
+import { BRIDGE_CLEARANCE, linesByGround } from './road-ground';
+import { between, distance, rounded, type Point } from './plane';
 import { numbersAlong, type StreetLine } from './street-line';
 import { HALF_HEIGHT, HALF_WIDTH, type Terrain } from './terrain';
 import type { TownPlan } from './town-grid';
@@ -15,13 +16,6 @@ const { min, max, round } = Math;
 const CELL = 260;
 const COLUMNS = Math.floor((2 * HALF_WIDTH) / CELL);
 const ROWS = Math.floor((2 * HALF_HEIGHT) / CELL);
-/** Nearer to water than this a road counts as a bridge, in metres. */
-const BRIDGE_CLEARANCE = 88;
-/** Nearer to water than this a road that lies low is under it in a storm, in metres. */
-const LOW_CLEARANCE = 230;
-const FINE_STEP = 20;
-const LONGEST_FORD = 240;
-type Ground = 'wet' | 'low' | 'dry';
 /** One rural house number per so many metres. */
 const METRES_PER_NUMBER = 4;
 
@@ -152,7 +146,7 @@ class RoadNetwork {
         const first = measured.get(wish.street) ?? 100;
         const numbers = numbersAlong(smooth, first, METRES_PER_NUMBER);
         measured.set(wish.street, Math.ceil(numbers[numbers.length - 1]! / 2) * 2 + 10);
-        result.push(...this.withBridges(wish, smooth, numbers));
+        result.push(...linesByGround(wish, smooth, numbers, this.terrain));
       }
     }
     return result;
@@ -171,58 +165,6 @@ class RoadNetwork {
         }
       }
     }
-  }
-
-  private withBridges(
-    wish: Wish,
-    points: readonly Point[],
-    numbers: readonly number[],
-  ): StreetLine[] {
-    const fine = densified(points, numbers, FINE_STEP);
-    const clear = fine.map(({ p }) => this.terrain.clearance(p));
-    // A span between two points is a bridge when either end is over water.
-    const isByBridge = (i: number): boolean =>
-      clear.slice(max(0, i - 25), i + 25).some((metres) => metres === 0);
-    const groundOf = (i: number): Ground => {
-      const least = min(clear[i - 1]!, clear[i]!);
-      if (least < BRIDGE_CLEARANCE) return 'wet';
-      return wish.floods && least < LOW_CLEARANCE && isByBridge(i) ? 'low' : 'dry';
-    };
-    const lines: StreetLine[] = [];
-    let from = 0;
-    for (let i = 1; i < fine.length; i++) {
-      const ground = groundOf(i);
-      if (i < fine.length - 1 && ground === groundOf(i + 1)) continue;
-      const part = fine.slice(from, i + 1);
-      const kept = simplified(
-        part.map(({ p }) => p),
-        1.2,
-      );
-      const numberAt = new Map(part.map(({ p, number }) => [p, number]));
-      // Back roads go through a brook; whatever is longer than its flood plain needs a bridge.
-      const isFord =
-        ground === 'wet' && wish.streetClass === 'unclassified' && lengthOf(kept) < LONGEST_FORD;
-      const isBridge = ground === 'wet' && !isFord;
-      lines.push({
-        points: kept,
-        streetClass: wish.streetClass,
-        street: wish.street,
-        part: wish.part,
-        town: null,
-        numbers:
-          ground === 'wet' || wish.part === 'highway'
-            ? null
-            : kept.map((p) => numberAt.get(p) ?? 100),
-        isBridge,
-        ...(isFord
-          ? { water: 'ford' as const }
-          : ground === 'low'
-            ? { water: 'floods' as const }
-            : {}),
-      });
-      from = i;
-    }
-    return lines;
   }
 
   private cheapest(start: number, goal: number, waterCost: number): number[] | null {
@@ -282,24 +224,3 @@ class RoadNetwork {
 }
 
 const edgeKey = (a: number, b: number): number => min(a, b) * (COLUMNS * ROWS) + max(a, b);
-
-function densified(
-  points: readonly Point[],
-  numbers: readonly number[],
-  step: number,
-): { p: Point; number: number }[] {
-  const result: { p: Point; number: number }[] = [{ p: points[0]!, number: numbers[0]! }];
-  for (let i = 1; i < points.length; i++) {
-    const a = points[i - 1]!;
-    const b = points[i]!;
-    const pieces = max(1, Math.ceil(distance(a, b) / step));
-    for (let s = 1; s <= pieces; s++) {
-      const share = s / pieces;
-      result.push({
-        p: s === pieces ? b : between(a, b, share),
-        number: numbers[i - 1]! + (numbers[i]! - numbers[i - 1]!) * share,
-      });
-    }
-  }
-  return result;
-}

@@ -3,7 +3,7 @@ import type { County } from './county';
 import type { OsmBook } from './osm-book';
 import { distance, type Point } from './plane';
 
-/** Knots are no use to a ferry's timetable; cars cross at this speed, loading included (common practice, no source). */
+/** How fast cars cross by ferry, loading included (common practice, no source). */
 const FERRY_METRES_PER_MINUTE = 130;
 
 /**
