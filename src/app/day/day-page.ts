@@ -26,9 +26,10 @@ import { type FinishAnswer, FinishForm } from './finish-form';
 import { NextStop } from './next-stop';
 import { phoneWords } from './day-words';
 import { PositionReports } from './position-reports';
+import { RoadReport } from './road-report';
 
 /** What fills the page: the stop, or a form about it. */
-type Mode = 'stop' | 'decline' | 'finish' | 'sharing';
+type Mode = 'stop' | 'decline' | 'finish' | 'report' | 'sharing';
 
 /** Long enough to be felt in a pocket, in milliseconds on and off. */
 const NEW_OFFER_BUZZ = [200, 120, 200];
@@ -36,7 +37,7 @@ const NEW_OFFER_BUZZ = [200, 120, 200];
 /** The technician's phone: the next stop and why, one thing to do about it, and what comes later. */
 @Component({
   selector: 'thaw-day-page',
-  imports: [DeclineForm, FinishForm, MatIcon, NextStop],
+  imports: [DeclineForm, FinishForm, MatIcon, NextStop, RoadReport],
   templateUrl: './day-page.html',
   styleUrl: './day-page.scss',
   providers: [DayModel, PositionReports],
@@ -145,6 +146,14 @@ export class DayPage {
     if (await this.model.finish(card, answer)) {
       this.done.set(`Call ${card.callNumber} is finished.`);
     } else this.backToTop();
+  }
+
+  /** Where this phone is, for a report; the answer to sharing while driving stays as it is. */
+  protected readonly here = () => this.positions.once();
+
+  protected roadReported(): void {
+    this.mode.set('stop');
+    this.done.set('The road is reported. The desk looks at it.');
   }
 
   protected async sendAgain(): Promise<void> {

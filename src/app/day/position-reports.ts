@@ -85,8 +85,13 @@ export class PositionReports {
 
   /** Where the phone is now; `null` when it does not say so within seconds. */
   here(): Promise<LonLat | null> {
+    return this.choice() === 'yes' ? this.once() : Promise.resolve(null);
+  }
+
+  /** As `here`, for something that the person asks for now, whatever they said of sharing while driving. */
+  once(): Promise<LonLat | null> {
     const { geolocation } = this;
-    if (!geolocation || this.choice() !== 'yes') return Promise.resolve(null);
+    if (!geolocation) return Promise.resolve(null);
     return new Promise((resolve) => {
       // Browsers leave the question to the person open; the drive does not wait for it.
       const late = setTimeout(() => resolve(null), FIRST_FIX_WITHIN_MS + 1_000);

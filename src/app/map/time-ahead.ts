@@ -25,7 +25,7 @@ export function readTimeAhead(raw: string, now: Instant, zone: string): TimeEntr
   const isTomorrow = /^tomorrow\b/.test(text);
   const said = readWhen(text.replace(/^(tomorrow|tonight|today)[, ]*/, ''));
   if (said.rest !== '' || said.clock === null) return { kind: 'unreadable', why: WHY };
-  if (said.date?.kind === 'relative' && said.date.days > 0) return OVER;
+  if (said.date?.kind === 'relative' && said.date.days < 0) return OVER;
   const at = nextSuchMoment(said, now, zone, isTomorrow);
   if (at === null) return { kind: 'unreadable', why: WHY };
   return at > now ? { kind: 'moment', at } : OVER;
