@@ -88,6 +88,10 @@ describe('drives along roads', () => {
         const scratch = new Scratch(roads.hierarchy);
         const table = driveTable(roads, points, points, scratch);
         expect(Array.from(table.ms, finite)).toEqual(expected);
+        // Few rows are swept in another way.
+        const few = driveTable(roads, points.slice(2, 4), points, scratch);
+        expect(Array.from(few.ms)).toEqual(Array.from(table.ms.subarray(16, 32)));
+        const fewBack = driveTableBack(roads, points.slice(2, 4), points, scratch);
         const back = driveTableBack(roads, points, points, scratch);
         const finder = new WayFinder(roads.hierarchy);
         const faults: string[] = [];
@@ -95,6 +99,8 @@ describe('drives along roads', () => {
           points.forEach((to, column) => {
             const ms = expected[row * 8 + column]!;
             const way = finder.way(roads, from, to);
+            if (column === 2 || column === 3)
+              if (finite(fewBack.ms[(column - 2) * 8 + row]!) !== ms) faults.push('few rows back');
             const found = [
               finite(back.ms[column * 8 + row]!),
               way?.ms ?? Infinity,

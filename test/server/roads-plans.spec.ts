@@ -39,7 +39,7 @@ const at = (x: number, y: number): LonLat => [-47.7 + x * 0.0012, 36.4 + y * 0.0
 const address = (place: LonLat) => ({
   text: 'a door',
   unitNo: '',
-  lonLat: place,
+  lonLat: [...place] as [number, number],
   kind: 'pin' as const,
 });
 const aCallAt = (place: LonLat) => aWaitingCall(server, mara, { address: address(place) });

@@ -155,8 +155,8 @@ function flat(segments: readonly Segment[], arcs: readonly Arc[], nodeCount: num
   const lineLon = new Int32Array(lineFirst.at(-1)!);
   const lineLat = new Int32Array(lineFirst.at(-1)!);
   segments.forEach(({ lons, lats }, i) => {
-    lineLon.set(lons, lineFirst[i]!);
-    lineLat.set(lats, lineFirst[i]!);
+    lineLon.set(lons, lineFirst[i]);
+    lineLat.set(lats, lineFirst[i]);
   });
   return {
     nodeCount,

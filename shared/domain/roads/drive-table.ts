@@ -3,7 +3,7 @@ import type { Hierarchy } from './hierarchy';
 import type { TimedRoads } from './quickest-way';
 import { arrivals, departures, withinSegment, type RoadEnd, type RoadPoint } from './road-ends';
 import type { SearchArcs } from './search-arcs';
-import { ABREAST, Sweep } from './sweep';
+import { ABREAST, quickest, Sweep, sweepAll } from './sweep';
 
 /** Milliseconds and decimetres, row-major: from × number of goals + to; `NO_WAY` where none leads. */
 export interface DriveTable {
@@ -57,6 +57,9 @@ export function driveTableBack(
   return table;
 }
 
+/** With fewer rows it is quicker to sweep through everything than to lay out a part of it. */
+const FEW_ROWS = 4;
+
 function swept(
   { hierarchy }: TimedRoads,
   climbArcs: SearchArcs,
@@ -69,6 +72,17 @@ function swept(
     ms: new Int32Array(rows.length * columns.length),
     dm: new Int32Array(rows.length * columns.length),
   };
+  if (rows.length < FEW_ROWS) {
+    rows.forEach((ends, row) => {
+      scratch.climb.from(ends, climbArcs);
+      sweepAll(sweepArcs, scratch.climb, scratch.all);
+      columns.forEach((points, column) => {
+        const cell = row * columns.length + column;
+        [table.ms[cell], table.dm[cell]] = quickest(points, scratch.all);
+      });
+    });
+    return table;
+  }
   const sweep = new Sweep(hierarchy, sweepArcs, columns, scratch.placeOf);
   for (let row = 0; row < rows.length; row += ABREAST) {
     sweep.clear();
@@ -89,10 +103,16 @@ export class Scratch {
   readonly climb: Climb;
   /** Place of a node in the small graph, -1 for one outside it; cleared after use. */
   readonly placeOf: Int32Array;
+  /** Milliseconds and decimetres of every node. */
+  readonly all: DriveTable;
 
   constructor(hierarchy: Hierarchy) {
     this.climb = new Climb(hierarchy);
     this.placeOf = new Int32Array(hierarchy.nodeCount).fill(-1);
+    this.all = {
+      ms: new Int32Array(hierarchy.nodeCount),
+      dm: new Int32Array(hierarchy.nodeCount),
+    };
   }
 }
 

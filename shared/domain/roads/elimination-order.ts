@@ -21,7 +21,7 @@ export interface Elimination {
 export function eliminate({ first, to }: Neighbours): Elimination {
   const count = first.length - 1;
   const above: Int32Array[] = Array.from({ length: count }, (_, v) =>
-    withoutTwins(to.slice(first[v]!, first[v + 1]!).sort(), v),
+    withoutTwins(to.slice(first[v], first[v + 1]).sort(), v),
   );
   const height = new Int32Array(count);
   const queue = new LeastFirst(count);

@@ -30,7 +30,7 @@ export function stackUp({ order, above }: Elimination): StoredHierarchy {
   for (let v = 0; v < count; v++) upFirst[v + 1] = upFirst[v]! + above[order[v]!]!.length;
   const upHead = new Int32Array(upFirst[count]!);
   for (let v = 0; v < count; v++)
-    upHead.set(above[order[v]!]!.map((x) => rank[x]!).sort(), upFirst[v]!);
+    upHead.set(above[order[v]!]!.map((x) => rank[x]!).sort(), upFirst[v]);
   return { upFirst, upHead };
 }
 

@@ -155,6 +155,49 @@ export class Sweep {
   }
 }
 
+/**
+ * Spreads the times of a climb down to every node there is.
+ *
+ * @param all is filled, by node
+ */
+export function sweepAll(
+  arcs: SearchArcs,
+  climb: Climb,
+  all: { readonly ms: Int32Array; readonly dm: Int32Array },
+): void {
+  const { ms, dm } = all;
+  const { first, head, ms: arcMs, dm: arcDm } = arcs;
+  for (let v = ms.length - 1; v >= 0; v--) {
+    let best = climb.ms[v]!;
+    let over = -1;
+    const end = first[v + 1]!;
+    for (let arc = first[v]!; arc < end; arc++) {
+      const reached = ms[head[arc]!]! + arcMs[arc]!;
+      if (reached >= best) continue;
+      best = reached;
+      over = arc;
+    }
+    ms[v] = best;
+    dm[v] = over < 0 ? climb.dm[v]! : dm[head[over]!]! + arcDm[over]!;
+  }
+}
+
+/** The quickest drive through one of the ends; `NO_WAY` when there is none. */
+export function quickest(
+  ends: readonly RoadEnd[],
+  all: { readonly ms: Int32Array; readonly dm: Int32Array },
+): readonly [ms: number, dm: number] {
+  let best = NO_WAY;
+  let length = NO_WAY;
+  for (const end of ends) {
+    const reached = all.ms[end.node]! + end.ms;
+    if (reached >= best) continue;
+    best = reached;
+    length = all.dm[end.node]! + end.dm;
+  }
+  return [best, length];
+}
+
 function nodesAbove(
   h: Hierarchy,
   points: readonly (readonly RoadEnd[])[],
