@@ -53,7 +53,11 @@ async function main(): Promise<void> {
     onCrash: (error) => log.error({ err: error }, 'the thread of the roads crashed'),
   });
   const roads = new RoadsClient(roadsThread);
-  await roads.switchTo({ folder: imported.folder, name: imported.manifest.name });
+  await roads
+    .switchTo({ folder: imported.folder, name: imported.manifest.name })
+    .catch((error: unknown) =>
+      log.error({ err: error }, 'the roads cannot be used; drives are straight lines'),
+    );
   const logReader = createLogReader(path.join(__dirname, 'import-worker.js'), {
     onCrash: (error) => log.error({ err: error }, 'the log reader crashed'),
   });
