@@ -120,8 +120,11 @@ export class PhoneCheckPanel {
     inject(DestroyRef).onDestroy(() => clearInterval(ticking));
   }
 
+  /** Brings its top into sight as well: the answers stand below the question. */
   focus(): void {
-    this.element.nativeElement.focus();
+    const { nativeElement } = this.element;
+    nativeElement.focus({ preventScroll: true });
+    nativeElement.scrollIntoView?.({ block: 'start' });
   }
 
   /** What the conclusion form starts from, once the check has ended. */
