@@ -1,6 +1,7 @@
 import { randomUUID } from 'node:crypto';
 import type { UnitFacts } from '@shared/contract/calls';
 import type { MedicineKind } from '@shared/domain/cold-unit';
+import { isOnlyPostBox } from '@shared/domain/address/post-box';
 import { MINUTE_MS, type Instant } from '@shared/domain/instant';
 import type { NightCall, NightUnit } from '@shared/domain/night-log/night-call';
 import { formatPhone } from '@shared/domain/phone-number';
@@ -59,8 +60,9 @@ function plausibleBack(call: NightCall, powerOutAt: Instant | null): Instant | n
 
 function addressOf(call: NightCall, region: RegionInUse): CallToTake['address'] {
   const said = call.address;
-  const unitNo = (said?.unitNo ?? '').slice(0, 24);
   const found = said && region.locate(said.text);
+  // The apartment that the line itself still names is the call's as well.
+  const unitNo = (said?.unitNo ?? found?.unitNo ?? '').slice(0, 24);
   if (found)
     return { text: found.label.slice(0, 160), unitNo, lonLat: found.lonLat, kind: found.kind };
   return {
@@ -126,6 +128,7 @@ export function remarkOf(call: NightCall): string {
     call.contents && `Contents: ${call.contents}`,
     call.business && call.name ? `Business: ${call.business}` : '',
     call.address?.note ?? '',
+    isOnlyPostBox(call.address?.text ?? '') ? 'Only a post box was given: ask for the street.' : '',
     call.otherPhones.length > 0
       ? `Also: ${call.otherPhones.map(({ e164 }) => formatPhone(e164)).join(', ')}`
       : '',

@@ -6,6 +6,7 @@ import { DEAREST, type NameFit } from './street-names';
 
 /** A house comes before the corner near which it is said to be, unless nobody knows the house. */
 const BESIDE_A_NUMBER = 0.25;
+const OTHER_TOWN = 0.35;
 
 /** A pair of streets that meet, with what it costs to take the words for them. */
 interface Meeting {
@@ -53,10 +54,15 @@ export class CornerSearch {
   /** Which streets of which town meet one that may be the second street. */
   meeting(search: Search, way: ParsedAddress): { has(name: string, city: number): boolean } {
     const { corners } = this.table;
+    const query = search.queryOf(way.street, way.tail);
     const found = new Set(
-      this.meetings(search, way).map(
-        ({ corner, first }) => `${first.name.text}|${String(corners.city[corner]!)}`,
-      ),
+      this.meetings(search, way)
+        // The town is said after the second street as a rule, and counts for both.
+        .filter(
+          ({ corner, second }) =>
+            search.cityFit(query, second.fit.left, corners.city[corner]!).cost < OTHER_TOWN,
+        )
+        .map(({ corner, first }) => `${first.name.text}|${String(corners.city[corner]!)}`),
     );
     return { has: (name, city) => found.has(`${name}|${String(city)}`) };
   }

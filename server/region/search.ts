@@ -95,7 +95,7 @@ export class Search {
   cityFit(query: Query, left: StreetFit['left'], city: number): CityFit {
     const key = `${left.map(({ said }) => said).join(' ')}|${query.tail.join(' ')}`;
     let fits = this.cityFits.get(key);
-    if (!fits) this.cityFits.set(key, (fits = new Map()));
+    if (!fits) this.cityFits.set(key, (fits = new Map<number, CityFit>()));
     const known = fits.get(city);
     if (known) return known;
     const fit = fitCity(query, left, this.cities.wordsOf(city));

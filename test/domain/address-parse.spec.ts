@@ -122,7 +122,8 @@ describe('parseAddress', () => {
     });
     for (const text of ['po box 12', 'P. O. Box 12, Ternhaven 00010', 'post office box 7', 'POB 3'])
       expect(isOnlyPostBox(text)).toBe(true);
-    expect(isOnlyPostBox('12 Boxwood Ln')).toBe(false);
+    for (const text of ['12 Boxwood Ln', 'heron st 1210, po box 3'])
+      expect(isOnlyPostBox(text)).toBe(false);
   });
 
   it('knows a post box, which nobody can visit', () => {

@@ -1,17 +1,10 @@
 import { randomUUID } from 'node:crypto';
-import { readFileSync, writeFileSync } from 'node:fs';
-import { join } from 'node:path';
 import { ACCEPT_CONFIDENCE } from '../../shared/domain/address/address-suggestion';
 import type { AddressSuggestion } from '../../shared/contract/calls';
 import { AddressIndex } from '../../server/region/address-index';
-import { bookOf, ownAddresses, type AddressBook } from '../../server/region/address-points';
-import { readAddressTable } from '../../server/region/address-store';
+import type { AddressBook } from '../../server/region/address-points';
 import { nearAreas } from '../../server/region/nearness';
-import { readExtract } from '../../server/region/osm-extract';
-import { writeOsmPbf } from '../../server/region/osm-pbf-writer';
-import { readAddressBook, writeAddressBook } from '../../server/region/region-data';
 import { TEST_REGION } from '../support/region';
-import { temporaryFolder } from '../support/region-files';
 import { NIGHT, startServer, type TestServer } from '../support/server';
 
 type At = readonly [number, number];
@@ -141,6 +134,7 @@ describe('what call takers type', () => {
     '1210 n heron st, gullwick',
     '1210 n heron st, springfield',
     '1210 n heron st 00024',
+    '1210 heron st, pell harbor',
     '1210 larch st, pell harbor',
   ])('leaves to a person what is contradicted: %p', (text) =>
     expect(index.locate(text)?.confidence ?? 0).toBeLessThan(ACCEPT_CONFIDENCE),
@@ -181,103 +175,6 @@ describe('near the outage areas', () => {
   it('the nearer of two that lie outside comes first', () => {
     const near = nearAreas([shape([-47.45, 36.2])]);
     expect(index.suggest('7 plover ct', { near })[0]?.city).toBe('Gullwick');
-  });
-});
-
-describe('house numbers along a line of the extract', () => {
-  const at = (id: number, lon: number, lat: number, tags: Record<string, string> = {}) => ({
-    id,
-    lon,
-    lat,
-    tags,
-  });
-  const pbf = (kind: string, tags: Record<string, string> = {}) =>
-    writeOsmPbf(
-      {
-        nodes: [
-          at(1, -47.7, 36.4, { 'addr:housenumber': '200' }),
-          at(2, -47.698, 36.4),
-          at(3, -47.698, 36.402, { 'addr:housenumber': '400' }),
-          at(4, -47.6, 36.3, { place: 'town', name: 'Gullwick' }),
-          at(5, -47.71, 36.4),
-        ],
-        ways: [
-          {
-            id: 1,
-            refs: [1, 2, 3],
-            tags: { 'addr:interpolation': kind, 'addr:street': 'Sedge Lane', ...tags },
-          },
-          {
-            id: 2,
-            refs: [5, 1],
-            tags: { highway: 'residential', name: 'Sedge Lane', ref: 'GC 7' },
-          },
-        ],
-        relations: [],
-      },
-      'test',
-    );
-  const find = async (kind: string, text: string) => {
-    const extract = await readExtract(pbf(kind));
-    return AddressIndex.of(bookOf(extract, ownAddresses(extract))).suggest(text)[0];
-  };
-
-  it('follow its bend', async () => {
-    // 300 is half of the way: the second leg is a little longer than the first, since a degree of longitude is shorter.
-    const found = await find('even', '300 sedge ln');
-    expect(found).toMatchObject({ kind: 'interpolated', city: 'Gullwick', lon: -47.698 });
-    expect(found!.lat).toBeGreaterThan(36.4);
-    expect(found!.lat).toBeLessThan(36.4005);
-  });
-
-  it('are known at its ends', async () =>
-    expect(await find('even', '400 sedge ln')).toMatchObject({ kind: 'rooftop', lat: 36.402 }));
-
-  it('lie on one side, unless the line counts every number', async () => {
-    expect(await find('even', '301 sedge ln')).toMatchObject({ kind: 'street' });
-    expect(await find('all', '301 sedge ln')).toMatchObject({ kind: 'interpolated' });
-  });
-
-  it('are not made up from a line that counts by letters', async () =>
-    expect(await find('alphabetic', '300 sedge ln')).toMatchObject({ kind: 'street' }));
-
-  it('leave the road findable by its number', async () =>
-    expect(await find('even', 'route 7')).toMatchObject({ label: 'Sedge Ln, Gullwick' }));
-});
-
-describe('the address file', () => {
-  const folder = temporaryFolder();
-  afterAll(() => folder.remove());
-
-  it('gives back what was written', async () => {
-    const range = {
-      street: 'Sedge Lane',
-      city: 'Gullwick',
-      postcode: '00024',
-      from: '2',
-      to: '40',
-      step: 2 as const,
-      line: [GULLWICK, PELL],
-    };
-    await writeAddressBook(folder.path, { ...BOOK, ranges: [range] });
-    const book = await readAddressBook(folder.path);
-    const sorted = (list: readonly unknown[]): string[] =>
-      list.map((one) => JSON.stringify(one, Object.keys(one as object).sort())).sort();
-    expect(sorted(book.addresses)).toEqual(
-      sorted(BOOK.addresses.map((a) => ({ ...a, at: a.at.map((d) => Math.round(d * 1e7) / 1e7) }))),
-    );
-    expect(book.ranges).toEqual([range]);
-    expect(book.routes).toEqual(BOOK.routes);
-    expect(book.corners).toEqual(BOOK.corners);
-    expect(book.places.map(({ name }) => name)).toEqual(BOOK.places.map(({ name }) => name));
-  });
-
-  it.each([0, 5, 11, 200, -9])('that is cut at %d bytes is refused in words', async (length) => {
-    await writeAddressBook(folder.path, BOOK);
-    const path = join(folder.path, 'addresses.bin');
-    const whole = readFileSync(path);
-    writeFileSync(path, whole.subarray(0, length < 0 ? whole.length + length : length));
-    await expect(readAddressTable(folder.path)).rejects.toThrow(/address file/i);
   });
 });
 

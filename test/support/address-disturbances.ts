@@ -1,6 +1,7 @@
 import type { Chance } from '../../server/region/county/chance';
 import type { Said } from './said-address';
 import { byEar, slipOfFinger } from './slips';
+import { ordinalWords, shortTown, unitWords } from './spoken-parts';
 
 /** One way in which what is typed differs from what the post would write. */
 export interface Disturbance {
@@ -18,62 +19,6 @@ const unsaid = (said: Said, part: 'direction' | 'type' | 'city'): Said => ({
   [part]: '',
   facts: { ...said.facts, [part]: null },
 });
-
-/** Unit, as people put it. */
-function unitWords(chance: Chance): string {
-  const n = 1 + chance.below(30);
-  const letter = chance.pick([...'abcdefgh']);
-  return chance.pick([
-    `apt ${n}`,
-    `apt. ${n}${letter}`,
-    `#${n}`,
-    `# ${n}${letter}`,
-    `unit ${letter}`,
-    `unit ${n}`,
-    `apartment ${n}`,
-    `apt #${n}`,
-    `lot ${n}`,
-    `apt ${letter}`,
-    `trailer ${n}`,
-    `2nd floor`,
-    `upstairs`,
-    `basement`,
-    `rear`,
-    `ste ${100 + n}`,
-  ]);
-}
-
-const ORDINALS = [
-  '',
-  'first',
-  'second',
-  'third',
-  'fourth',
-  'fifth',
-  'sixth',
-  'seventh',
-  'eighth',
-  'ninth',
-  'tenth',
-  'eleventh',
-  'twelfth',
-  'thirteenth',
-  'fourteenth',
-  'fifteenth',
-  'sixteenth',
-  'seventeenth',
-  'eighteenth',
-  'nineteenth',
-];
-const TENS = ['', '', 'twenty', 'thirty', 'forty', 'fifty', 'sixty', 'seventy', 'eighty', 'ninety'];
-
-function ordinalWords(figure: number, chance: Chance): string {
-  if (figure < 20) return ORDINALS[figure]!;
-  const ten = TENS[Math.floor(figure / 10)]!;
-  return figure % 10 === 0
-    ? `${ten.slice(0, -1)}ieth`
-    : ten + chance.pick([' ', '-']) + ORDINALS[figure % 10]!;
-}
 
 const ORDINAL = /^(\d{1,2})(st|nd|rd|th)$/i;
 const figureOf = (said: Said): number => Number(ORDINAL.exec(said.name)?.[1] ?? 0);
@@ -331,19 +276,4 @@ export function disturbances(
       }),
     },
   ];
-}
-
-function shortTown(town: string, chance: Chance): string {
-  const words = town.split(' ');
-  const options = [
-    `${words[0]!.slice(0, 4 + chance.below(2))}${chance.pick(['', '.'])}`,
-    town[0]! + town.slice(1).replace(/[aeiou]/g, ''),
-  ];
-  if (words.length > 1)
-    options.push(
-      words[0]!,
-      words.map((word) => word[0]).join(''),
-      words.map((word) => word[0]).join('.') + '.',
-    );
-  return chance.pick(options);
 }

@@ -62,7 +62,9 @@ const SHORT_TYPES: Readonly<Record<string, readonly string[]>> = {
 
 /** Data writes "94th Rd" and "94th Road" for the same street. */
 const longType = (type: string): string =>
-  Object.keys(SHORT_TYPES).find((long) => SHORT_TYPES[long]!.includes(type.toLowerCase())) ?? type;
+  Object.keys(SHORT_TYPES).find((long) =>
+    SHORT_TYPES[long]!.includes(type.toLowerCase().replace(/\W/g, '')),
+  ) ?? type;
 
 /** An address as its owner would say it in full; with chances, in a call taker's short hand. */
 export function saidOf(address: AddressPoint, chance?: Chance): Said {

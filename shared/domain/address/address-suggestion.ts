@@ -14,7 +14,7 @@ export const ADDRESS_KINDS = [
 export type AddressKind = (typeof ADDRESS_KINDS)[number];
 
 export interface AddressSuggestion {
-  /** One line for a list. */
+  /** One line for a list, without the unit: that is the call's, not the point's. */
   readonly label: string;
   readonly number: string | null;
   /** As the post writes it: "N Heron St". Of a corner both streets; of a place its name. */

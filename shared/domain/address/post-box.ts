@@ -10,5 +10,5 @@ export function withoutPostBox(plain: string): { rest: string; hadBox: boolean }
 /** Whether the text names a post box and no house that could be visited. */
 export function isOnlyPostBox(text: string): boolean {
   const { rest, hadBox } = withoutPostBox(text.toLowerCase());
-  return hadBox && !/\b\d{1,6}[a-z]?\s+\S/.test(rest.replace(/\b\d{5}(-\d{4})?\s*$/, ''));
+  return hadBox && !/\d/.test(rest.replace(/\b\d{5}(-\d{4})?\s*$/, ''));
 }

@@ -61,7 +61,10 @@ export interface Candidate {
 /** How a street fits what was said. */
 export interface Fit {
   readonly cost: number;
-  /** Something that was said speaks against it: another type, direction, town or name. */
+  /**
+   * Something that was said speaks against it: another type, direction, town or name; or the
+   * direction was not said by which two streets are told apart.
+   */
   readonly isAgainst: boolean;
 }
 
@@ -223,7 +226,11 @@ function takeDirections(directions: readonly string[], left: Word[]): Fit {
     } else if (hasOther) {
       cost += COST.wrongDirection;
       isAgainst = true;
-    } else cost += COST.missingDirection;
+    } else {
+      // The street's other half may have the same number, and need not be known.
+      cost += COST.missingDirection;
+      isAgainst = true;
+    }
   }
   for (let i = left.length - 1; i >= 0; i--) {
     const { said, mayBePrefix } = left[i]!;

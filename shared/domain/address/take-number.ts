@@ -17,7 +17,15 @@ export interface NumberReading {
 }
 
 /** How far-fetched it is to take a figure for this. Our estimates; a match weighs far more. */
-const DOUBT = { last: 0.02, middle: 0.06, none: 0.15, part: 0.08, unsaidUnit: 0.12, joined: 0.05, onlyType: 0.1 };
+const DOUBT = {
+  last: 0.02,
+  middle: 0.06,
+  none: 0.15,
+  part: 0.08,
+  unsaidUnit: 0.12,
+  joined: 0.05,
+  onlyType: 0.1,
+};
 
 /**
  * All ways to take a house number and a postcode out of an address's words: "heron 1210 00012",

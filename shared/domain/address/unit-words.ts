@@ -36,5 +36,4 @@ export const BARE_UNITS: ReadonlyMap<string, string> = new Map([
   ['upper', 'Uppr'],
   ['downstairs', 'Lowr'],
   ['lower', 'Lowr'],
-  ['front', 'Frnt'],
 ]);

@@ -4,6 +4,7 @@ import { STATE_WORDS } from '@shared/domain/call-state';
 import type { Instant } from '@shared/domain/instant';
 import type { Urgency } from '@shared/domain/urgency';
 import { Zone } from '../core/zone';
+import { placeDoubt } from '../intake/address-words';
 import { ColdStrip } from './cold-strip';
 import { stripFactsOf } from './cold-strip-scale';
 import { isSettledRow, LANE_WORDS, lossWords } from './queue-words';
@@ -41,12 +42,13 @@ export class QueueRow {
   });
   protected readonly reasons = computed(() => this.urgency()?.reasons ?? []);
 
-  /** The street above, the name and the town below it. */
+  /** The street above; below it how well it is known, if not to the house, the name and the town. */
   protected readonly place = computed(() => {
     const { address, name } = this.call();
     const [street = '', ...rest] = address.text.split(', ');
     return {
       street: address.unitNo ? `${street}, ${address.unitNo}` : street,
+      doubt: placeDoubt(address.kind),
       rest: [name, ...rest].join(', '),
     };
   });

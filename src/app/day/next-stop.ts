@@ -9,6 +9,7 @@ import { PART_WORDS } from '../board/part-words';
 import { SKILL_WORDS } from '../board/queue-words';
 import { fromNowWords, whenWords } from '../board/time-words';
 import { Zone } from '../core/zone';
+import { placeDoubt } from '../intake/address-words';
 import { saveVerdict, valuedFactsOf, verdictWords } from '../routes/save-verdict';
 import { STOP_STATE_WORDS } from '../routes/stop-words';
 import { cautionsFor, geoLink, partsToBring, phoneWords } from './day-words';
@@ -37,6 +38,11 @@ export class NextStop {
   protected readonly skillWords = SKILL_WORDS;
 
   protected readonly geo = computed(() => geoLink(this.card()));
+  /** Where the point on the map is, when it is not the house's own. */
+  protected readonly doubt = computed(() => {
+    const { kind } = this.card().address;
+    return kind === 'pin' ? 'where somebody pointed' : placeDoubt(kind);
+  });
   protected readonly cautions = computed(() => cautionsFor(this.card()));
   protected readonly isOnSite = computed(() => this.card().stop.state === 'on-site');
   protected readonly strip = computed(() => stripFactsOf({ ...this.card(), restoredAt: null }));

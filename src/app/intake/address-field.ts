@@ -12,6 +12,7 @@ import {
 } from '@angular/core';
 import type { Address, AddressSuggestion } from '@shared/contract/calls';
 import type { LonLat } from '@shared/contract/common';
+import { isOnlyPostBox } from '@shared/domain/address/post-box';
 import { Api } from '../core/api';
 import { ProblemError } from '../core/problem-error';
 import { ADDRESS_KIND_WORDS } from './address-words';
@@ -21,6 +22,9 @@ import { PinRequest } from './pin-request';
 
 /** Long enough to type the next letter, short enough not to be waited for. */
 const DEBOUNCE_MS = 120;
+const POST_BOX =
+  'Nobody can drive to a post box. Ask for the street, or where on the map the house is.';
+const UNKNOWN = 'Nothing like it in this region. It is kept as typed; a point on the map helps.';
 let fields = 0;
 
 /** An address with suggestions from the region's address points, or a point shown on the map. */
@@ -67,13 +71,14 @@ export class AddressField {
     this.close();
     clearTimeout(this.timer);
     this.asked++;
+    this.trouble.set(isOnlyPostBox(text) ? POST_BOX : '');
     if (point) {
       this.changed.emit({ ...this.address(), text, lonLat: point, kind: 'pin' });
       return;
     }
     // What was found before belongs to what was typed before.
     this.changed.emit({ ...NO_ADDRESS, unitNo: this.address().unitNo, text });
-    if (text.trim().length >= 3)
+    if (text.trim().length >= 3 && !isOnlyPostBox(text))
       this.timer = setTimeout(() => void this.suggest(text), DEBOUNCE_MS);
   }
 
@@ -89,6 +94,7 @@ export class AddressField {
       kind,
       unitNo: unitNo === '' ? this.address().unitNo : unitNo,
     });
+    this.trouble.set('');
     this.close();
   }
 
@@ -125,6 +131,7 @@ export class AddressField {
     });
     this.isAskingMap.set(false);
     if (!point) return;
+    this.trouble.set('');
     this.changed.emit({
       ...typed,
       text: typed.text || pointText(point),
@@ -155,7 +162,7 @@ export class AddressField {
       const { suggestions } = await this.api.call('suggestAddresses', { query: { text } });
       // Answers may overtake each other; only the one to the newest question counts.
       if (asked !== this.asked) return;
-      this.trouble.set('');
+      this.trouble.set(suggestions.length === 0 ? UNKNOWN : '');
       this.suggestions.set(suggestions.slice(0, 8));
       this.active.set(suggestions.length > 0 ? 0 : -1);
     } catch (error) {
