@@ -53,6 +53,9 @@ export function createRoadsWorker(
   });
 }
 
+/** Single drives that are kept: all those of a storm's routes many times over. */
+const MOST_DRIVES = 20_000;
+
 interface Opened {
   /** The region's folder, without its path. */
   readonly key: string;
@@ -69,6 +72,8 @@ export class RoadsClient implements RoadsPort {
   private opened: Opened | null = null;
   private timed: TimedRoads | null = null;
   private conditions = USUAL_CONDITIONS;
+  /** Single drives under these conditions: every change of a route asks for most of them again. */
+  private drives = new Map<string, { readonly ms: number; readonly dm: number }>();
   /** What was asked for last, and is in force once its times are worked out. */
   private wanted: { readonly opened: Opened | null; readonly conditions: RoadConditions } = {
     opened: null,
@@ -113,6 +118,7 @@ export class RoadsClient implements RoadsPort {
     if (this.wanted !== wanted) return;
     this.opened = opened;
     this.conditions = conditions;
+    this.drives = new Map();
     this.timed =
       opened && opened.engine.withTimes(answer?.kind === 'times' ? answer.times : wrongAnswer());
   }
@@ -160,9 +166,17 @@ export class RoadsClient implements RoadsPort {
   }
 
   travel(stopSeconds: number): TravelTimes {
-    const { opened, timed } = this;
+    const { opened, timed, drives } = this;
     if (!opened || !timed) return straightLineTravel({ stopSeconds });
-    return roadTravel(this.source, stopSeconds, (from, to) => opened.engine.drive(timed, from, to));
+    return roadTravel(this.source, stopSeconds, (from, to) => {
+      const key = `${from[0]} ${from[1]} ${to[0]} ${to[1]}`;
+      const known = drives.get(key);
+      if (known) return known;
+      if (drives.size >= MOST_DRIVES) drives.clear();
+      const drive = opened.engine.drive(timed, from, to);
+      drives.set(key, drive);
+      return drive;
+    });
   }
 
   private ask(

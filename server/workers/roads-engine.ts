@@ -16,8 +16,9 @@ import { searchArcs } from '@shared/domain/roads/search-arcs';
 import { stormCover } from '@shared/domain/roads/storm-cover';
 import type { LonLat } from '@shared/domain/travel/great-circle';
 import { roadsIn, type RegionRoads } from '../region/road-file';
-import { RoadSnap, type SnappedPoint } from '../region/road-snap';
+import { RoadSnap } from '../region/road-snap';
 import type { RoadFan, RoadLeg, RoadMatrix } from './ports';
+import { addApproaches, withApproach, type PlacedPoint } from './roads-approach';
 
 /** What conditions make of the roads; its arrays lie in memory that threads share. */
 export type RoadTimes = Pick<TimedRoads, 'lanes' | 'times' | 'search'>;
@@ -43,7 +44,7 @@ export class RoadsEngine {
   private ownSnap: RoadSnap | null = null;
   private ownScratch: Scratch | null = null;
   private readonly timed = new Map<string, Timed>();
-  private readonly beside = new Map<string, SnappedPoint>();
+  private readonly beside = new Map<string, PlacedPoint>();
 
   constructor(file: SharedArrayBuffer) {
     this.roads = roadsIn(file);
@@ -72,47 +73,46 @@ export class RoadsEngine {
 
   matrix(points: readonly LonLat[], conditions: RoadConditions): RoadMatrix {
     const { kept } = this.under(conditions);
-    return inSeconds(kept.table(points.map((point) => this.snapped(point))));
+    const placed = points.map((point) => this.placed(point));
+    return inSeconds(addApproaches(kept.table(placed), placed, placed));
   }
 
   fan(point: LonLat, others: readonly LonLat[], conditions: RoadConditions): RoadFan {
     const { roads } = this.under(conditions);
-    const from = [this.snapped(point)];
-    const to = others.map((other) => this.snapped(other));
+    const from = [this.placed(point)];
+    const to = others.map((other) => this.placed(other));
     return {
-      there: inSeconds(driveTable(roads, from, to, this.scratch)),
-      back: inSeconds(driveTableBack(roads, from, to, this.scratch)),
+      there: inSeconds(addApproaches(driveTable(roads, from, to, this.scratch), from, to)),
+      back: inSeconds(addApproaches(driveTableBack(roads, from, to, this.scratch), from, to, true)),
     };
   }
 
   path(stops: readonly LonLat[], conditions: RoadConditions): (RoadLeg | null)[] {
     const { roads } = this.under(conditions);
-    const points = stops.map((stop) => this.snapped(stop));
+    const points = stops.map((stop) => this.placed(stop));
     return points.slice(1).map((to, i) => {
       const from = points[i]!;
       const way = this.finder.way(roads, from, to);
-      return (
-        way && {
-          line: lineOfWay(roads.graph, way.lanes, from, to),
-          seconds: way.ms / 1000,
-          metres: way.dm / 10,
-        }
-      );
+      if (!way) return null;
+      const { ms, dm } = withApproach(from, to, way);
+      const line = lineOfWay(roads.graph, way.lanes, from, to);
+      return { line, seconds: ms / 1000, metres: dm / 10 };
     });
   }
 
   /** One drive under times taken over; `NO_WAY` where none leads. */
   drive(roads: TimedRoads, from: LonLat, to: LonLat): { readonly ms: number; readonly dm: number } {
-    return this.finder.length(roads, this.snapped(from), this.snapped(to));
+    const [start, end] = [this.placed(from), this.placed(to)];
+    return withApproach(start, end, this.finder.length(roads, start, end));
   }
 
   /** Calls stay where they are, and finding the road beside one takes longer than a drive. */
-  private snapped(point: LonLat): SnappedPoint {
+  private placed(point: LonLat): PlacedPoint {
     const key = `${point[0]} ${point[1]}`;
     const known = this.beside.get(key);
     if (known) return known;
     if (this.beside.size >= MOST_BESIDE) this.beside.clear();
-    const found = this.snap.nearest(point);
+    const found = { ...this.snap.nearest(point), asked: point };
     this.beside.set(key, found);
     return found;
   }

@@ -99,6 +99,23 @@ describe('the roads of a region', () => {
     expect(drawn * 1000 * 1.02).toBeGreaterThan(metres);
   });
 
+  it('count the way to the road from a place that is far from any', async () => {
+    const roads = await opened();
+    // 40 km south of the city's edge, and a second place a kilometre from there.
+    const [far, farther] = [door(4, -400), door(4, -410)];
+    const { seconds, metres } = await roads.matrix([far, door(4, 0), farther]);
+    const km = greatCircleKm(far, door(4, 0));
+    expect(metres[1]).toBeCloseTo((km * 1000 - 200) * 1.35, 0);
+    expect(seconds[1]).toBeCloseTo(((km - 0.2) * 1.35 * 3600) / 40, 1);
+    expect(metres[2]).toBeCloseTo(greatCircleKm(far, farther) * 1350, 0);
+    expect([seconds[0], seconds[4]]).toEqual([0, 0]);
+    const [leg] = await roads.path([far, door(4, 0)]);
+    expect(leg!.seconds).toBe(seconds[1]);
+    expect(roads.travel(0).matrix([far, door(4, 0)])[1]).toBe(Math.ceil(seconds[1]!));
+    const fan = await roads.oneToMany(door(4, 0), [far]);
+    expect([fan.back.seconds[0], fan.there.seconds[0]]).toEqual([seconds[1], seconds[3]]);
+  });
+
   it('name the nearest road', async () => {
     const roads = await opened();
     const near = roads.nearest(door(3.5, 2.02))!;
