@@ -34,8 +34,9 @@ const routino = hasRoutino()
 /**
  * The same extracts and the same speeds in a router that shares nothing with this one. What is left:
  * it counts each piece between two nodes in whole metres, tenths of a second and km/h, rounded down, which
- * is done to our times here as well; it forbids turning round on the road; and it closes roads with
- * `access=destination`, which are open to a visit.
+ * is done to our times here as well; it forbids turning round on the road;
+ * it drives through gates whatever their access; and it closes roads with `access=destination`, which are
+ * open to a visit.
  */
 routino('drives beside those of routino (needs routino-router)', () => {
   const folders: ReturnType<typeof temporaryFolder>[] = [];
