@@ -184,6 +184,23 @@ describe('drives that are kept', () => {
     }
   });
 
+  it('are worked out once: of a known table only what is new', () => {
+    const kept = new KeptDrives(roads, scratch, 24);
+    const climbs = jest.spyOn(scratch.climb, 'from');
+    const worked = (points: readonly RoadPoint[]): number => {
+      climbs.mockClear();
+      kept.table(points);
+      return climbs.mock.calls.length;
+    };
+    const points = Array.from({ length: 13 }, (_, i) => ({ segment: i * 7, share: 0.5 }));
+    expect(worked(points.slice(0, 12))).toBe(12);
+    expect(worked(points.slice(0, 12))).toBe(0);
+    // One that is new: from it to all, and from all to it.
+    expect(worked(points)).toBe(2);
+    expect(worked([...points].reverse())).toBe(0);
+    climbs.mockRestore();
+  });
+
   it('are handed out as they are: a later question does not change them', () => {
     const kept = new KeptDrives(roads, scratch, 24);
     const [a, b, c] = pointsOf(roads, 3, 4);
