@@ -4,7 +4,7 @@ import { STATE_WORDS } from '@shared/domain/call-state';
 import type { Instant } from '@shared/domain/instant';
 import type { Urgency } from '@shared/domain/urgency';
 import { Zone } from '../core/zone';
-import { placeDoubt } from '../intake/address-words';
+import { shortPlaceDoubt } from '../intake/address-words';
 import { ColdStrip } from './cold-strip';
 import { stripFactsOf } from './cold-strip-scale';
 import { isSettledRow, LANE_WORDS, lossWords } from './queue-words';
@@ -48,7 +48,7 @@ export class QueueRow {
     const [street = '', ...rest] = address.text.split(', ');
     return {
       street: address.unitNo ? `${street}, ${address.unitNo}` : street,
-      doubt: placeDoubt(address.kind),
+      doubt: shortPlaceDoubt(address.kind),
       rest: [name, ...rest].join(', '),
     };
   });

@@ -22,8 +22,7 @@ import { PinRequest } from './pin-request';
 
 /** Long enough to type the next letter, short enough not to be waited for. */
 const DEBOUNCE_MS = 120;
-const POST_BOX =
-  'Nobody can drive to a post box. Ask for the street, or where on the map the house is.';
+const POST_BOX = 'Nobody can drive to a post box: please ask for the street.';
 const UNKNOWN = 'Nothing like it in this region. It is kept as typed; a point on the map helps.';
 let fields = 0;
 
