@@ -1,4 +1,5 @@
 import {
+  afterNextRender,
   ChangeDetectionStrategy,
   Component,
   computed,
@@ -6,6 +7,7 @@ import {
   effect,
   ElementRef,
   inject,
+  Injector,
   output,
   signal,
   untracked,
@@ -48,6 +50,7 @@ export class PhoneCheckPanel {
   private readonly clock = inject(Clock);
   private readonly drafts = inject(Drafts);
   private readonly announce = inject(Announce);
+  private readonly injector = inject(Injector);
   private readonly element = inject<ElementRef<HTMLElement>>(ElementRef);
 
   /** The check has come to its end and the dispatcher goes on to write it down. */
@@ -124,7 +127,10 @@ export class PhoneCheckPanel {
   focus(): void {
     const { nativeElement } = this.element;
     nativeElement.focus({ preventScroll: true });
-    nativeElement.scrollIntoView?.({ block: 'start' });
+    // Only with its question drawn is it tall enough to come up.
+    afterNextRender(() => nativeElement.scrollIntoView?.({ block: 'start' }), {
+      injector: this.injector,
+    });
   }
 
   /** What the conclusion form starts from, once the check has ended. */
