@@ -18,7 +18,7 @@ export interface DemoOutage {
 
 /** Shares of the feeders that fail, on the storm's side of the county and behind it. */
 const FAILS_IN_THE_EAST = 0.5;
-const FAILS_IN_THE_WEST = 0.2;
+const FAILS_IN_THE_WEST = 0.32;
 /** The substation that tripped as a whole is back in service after so many hours. */
 const TRIPPED_FOR = 4.5;
 

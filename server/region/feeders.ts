@@ -1,10 +1,11 @@
 import Flatbush from 'flatbush';
 import type { FeederDto, FeederMap, SubstationDto } from '@shared/contract/feeders';
 import type { LonLat as LonLatDto } from '@shared/contract/common';
+import { isInShape } from '@shared/domain/outage-shape';
 import type { AddressPoint } from './address-points';
 import { linesOf, type LonLat, type OsmExtract } from './osm-extract';
 import type { OsmWay, Tags } from './osm-model';
-import { innerPoint, isInsideRing, polygonsOf, ringOf, type PolygonRings } from './rings';
+import { innerPoint, polygonsOf, ringOf, type PolygonRings } from './rings';
 
 /**
  * How a feeder is written in OpenStreetMap data. The map's community has no tag for the area that a
@@ -106,14 +107,10 @@ function addressesIn(
   for (const rings of polygons) {
     const [west, south, east, north] = boxOf(rings[0]!);
     for (const i of index.search(west, south, east, north))
-      if (isInPolygon(addresses[i]!.at, rings)) count++;
+      if (isInShape(addresses[i]!.at, [rings])) count++;
   }
   return count;
 }
-
-/** Inside the outer ring and in none of its holes. */
-export const isInPolygon = (at: LonLat, [outer, ...holes]: readonly LonLat[][]): boolean =>
-  outer !== undefined && isInsideRing(at, outer) && !holes.some((hole) => isInsideRing(at, hole));
 
 function boxOf(ring: readonly LonLat[]): [number, number, number, number] {
   let [west, south, east, north] = [Infinity, Infinity, -Infinity, -Infinity];

@@ -3,12 +3,13 @@ import type { FeederMap } from '@shared/contract/feeders';
 import { FeederMap as FeederMapSchema } from '@shared/contract/feeders';
 import { AreaShape } from '@shared/contract/areas';
 import { Chance } from '../../server/demo/demo-calls';
-import { isInShape } from '@shared/domain/outage-shape';
+import { isInShape, shapeFinder } from '@shared/domain/outage-shape';
+import { demoCallers } from '../../server/demo/demo-callers';
 import { demoOutages, outageFinder, type DemoOutage } from '../../server/demo/demo-outages';
 import { ownAddresses, type AddressPoint } from '../../server/region/address-points';
 import { writeCounty } from '../../server/region/county/write-county';
 import { DEMO_SEED } from '../../server/region/demo-region';
-import { feedersOf, isInPolygon } from '../../server/region/feeders';
+import { feedersOf } from '../../server/region/feeders';
 import { readExtract } from '../../server/region/osm-extract';
 
 jest.setTimeout(180_000);
@@ -40,11 +41,8 @@ describe("the county's feeders", () => {
   });
 
   it('take every address exactly once', () => {
-    const counts = addresses.map(
-      ({ at }) =>
-        power.feeders.filter(({ polygons }) => polygons.some((rings) => isInPolygon(at, rings)))
-          .length,
-    );
+    const around = shapeFinder(power.feeders.map(({ polygons }) => ({ shape: polygons })));
+    const counts = addresses.map(({ at }) => around(at).length);
     expect(counts.filter((count) => count !== 1)).toEqual([]);
     const sum = power.feeders.reduce((total, { customers }) => total + customers, 0);
     expect(sum).toBe(addresses.length);
@@ -133,6 +131,16 @@ describe('the outages of the demo storm', () => {
     expect(inside).toContain(whole);
     expect(inside.some((own) => own !== whole)).toBe(true);
     expect(inside).not.toContain(null);
+  });
+
+  it('make houses ring where power is back, by the outage that counts there', () => {
+    const callers = demoCallers(outages, addresses, new Chance('callers'), 240);
+    const outageAt = outageFinder(outages);
+    expect(callers).toHaveLength(240);
+    for (const { address, outAt, backAt } of callers)
+      expect(outageAt([address.at[0], address.at[1]])).toMatchObject({ outAt, backAt });
+    expect(callers.some(({ backAt }) => backAt === null)).toBe(false);
+    expect(demoCallers([], addresses, new Chance('callers'), 240)).toEqual([]);
   });
 
   it('are the same for the same chance', () =>
