@@ -11,10 +11,11 @@ import { toAreaDto } from './area-rows';
 import { callsFollowAreas } from './calls-follow-areas';
 import { shapeOfFeeders } from './feeder-shape';
 import { pocketsOf } from './pockets';
+import { roadLines } from './road-lines';
 
-type Names = 'drawArea' | 'changeArea' | 'removeArea' | 'feederShape' | 'pockets';
+type Names = 'drawArea' | 'changeArea' | 'removeArea' | 'feederShape' | 'roadLines' | 'pockets';
 
-/** Outage areas, and the pockets that open calls form. */
+/** Outage areas, the pockets that open calls form, and the ways between them. */
 export function areaRoutes(context: Context): SomeHandlers<Names> {
   return {
     drawArea: ({ params, body, person }) =>
@@ -91,6 +92,8 @@ export function areaRoutes(context: Context): SomeHandlers<Names> {
     feederShape: async ({ query }) => ({
       shape: shapeOfFeeders(context.region.power, query.ids.split(',')),
     }),
+
+    roadLines: async ({ query }) => ({ lines: await roadLines(context.roads, query.drives) }),
 
     pockets: async ({ params }) => ({ pockets: await pocketsOf(context, params.stormId) }),
   };

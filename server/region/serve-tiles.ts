@@ -24,6 +24,8 @@ export function tileRoutes(folder: string): Router {
       maxAge: '1y',
       index: false,
       redirect: false,
+      // One whole answer for each tile, which a service worker can keep.
+      acceptRanges: false,
       setHeaders: (res) => {
         res.setHeader('Content-Encoding', 'gzip');
         res.setHeader('Content-Type', 'application/x-protobuf');

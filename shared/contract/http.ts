@@ -9,6 +9,7 @@ import * as nightLogs from './night-logs';
 import * as office from './office';
 import type { PATHS, RouteName } from './paths';
 import * as regions from './regions';
+import { RoadLines, RoadLinesQuery } from './road-lines';
 import * as routes from './routes';
 import * as stormRoads from './storm-roads';
 
@@ -155,6 +156,12 @@ export const HTTP = {
 
   region: { summary: 'The region in use', who: EVERYONE, reply: areas.RegionDto },
   feeders: { summary: 'The feeders and substations of the region', who: DESK, reply: FeederMap },
+  roadLines: {
+    summary: 'The way along the roads for some drives; null where none is known',
+    who: DESK,
+    query: RoadLinesQuery,
+    reply: RoadLines,
+  },
   feederShape: {
     summary: 'The ground that some feeders serve together',
     who: DESK,

@@ -37,6 +37,7 @@ export const PATHS = {
   unlocatedCalls: ['GET', '/api/regions/switches/:switchId'],
   feeders: ['GET', '/api/region/feeders'],
   feederShape: ['GET', '/api/region/feeder-shape'],
+  roadLines: ['GET', '/api/region/road-lines'],
   suggestAddresses: ['GET', '/api/addresses'],
   nearestAddress: ['GET', '/api/addresses/nearest'],
 

@@ -5,6 +5,7 @@ import { ensureDemoRegion } from '../../server/region/demo-region';
 import { openRegion } from '../../server/region/open-region';
 import { readAddressBook } from '../../server/region/region-data';
 import { createPocketsWorker } from '../../server/workers/pockets-client';
+import { createRoadsWorker, RoadsClient } from '../../server/workers/roads-client';
 import { startServer } from '../support/server';
 import { launchBrowser, sendOut, signedInPage, takeMany, withClient } from './full-board';
 import { quantile } from './quantiles';
@@ -29,11 +30,14 @@ async function main(): Promise<void> {
   const region = await openRegion(imported);
   const { addresses } = await readAddressBook(imported.folder);
   const pockets = createPocketsWorker(path.resolve('dist/server/pockets-worker.js'));
+  const roadsThread = createRoadsWorker(path.resolve('dist/server/roads-worker.js'));
+  const roads = new RoadsClient(roadsThread);
+  await roads.switchTo({ folder: imported.folder, name: imported.manifest.name });
   const server = await startServer({
     suffix: '_bench_map',
     port: PORT,
     config: withClient(PORT),
-    context: { region, pockets, log: pino({ level: 'error' }), clock: () => Date.now() },
+    context: { region, pockets, roads, log: pino({ level: 'error' }), clock: () => Date.now() },
   });
   await takeMany(server, addresses, CALLS);
   await sendOut(server, addresses, TECHNICIANS, STOPS_EACH);
@@ -76,7 +80,7 @@ async function main(): Promise<void> {
   );
   await browser.close();
   await server.close();
-  await pockets.close();
+  await Promise.all([pockets.close(), roadsThread.close()]);
 }
 
 const summary = ({ times, longTasks }: Frames) => ({

@@ -188,6 +188,16 @@ test('the map is accessible, with each of its panels', async ({ browser }) => {
     .click();
   await expect(page.getByRole('button', { name: 'Save area' })).toBeVisible();
   await judge(page, 'map, an area being changed', QUEUE_ROWS);
+
+  const form = page.getByRole('region', { name: 'Outage area' });
+  await page.getByRole('button', { name: 'Draw area', exact: true }).click();
+  await form.getByRole('button', { name: 'Feeders' }).click();
+  await form.getByRole('checkbox').first().check();
+  await expect(form.getByRole('button', { name: 'Save area' })).toBeVisible();
+  await judge(page, 'map, an area of feeders', QUEUE_ROWS);
+  await form.getByRole('button', { name: 'File…' }).click();
+  await expect(page.getByRole('region', { name: 'Outage areas from a file' })).toBeVisible();
+  await judge(page, 'map, areas from a file', QUEUE_ROWS);
 });
 
 test('routes are accessible, with a proposal and without', async ({ browser }) => {

@@ -4,6 +4,8 @@ import { MatSnackBar } from '@angular/material/snack-bar';
 
 /** WCAG 2.2, 4.1.3: a status may be told, and must not chatter; our own bound is 12 a minute. */
 const QUIET_MS = 5_000;
+/** A phone held upright. */
+const NARROW_PX = 600;
 const NOTICE_MS = 6_000;
 /** Undo needs longer than reading does. */
 const NOTICE_WITH_ACTION_MS = 10_000;
@@ -36,6 +38,8 @@ export class Announce {
   notice(words: string, action?: { readonly label: string; readonly run: () => void }): void {
     const shown = this.bar.open(words, action?.label, {
       duration: action ? NOTICE_WITH_ACTION_MS : NOTICE_MS,
+      // On a narrow screen the buttons of a form are at the bottom, and must stay in reach.
+      verticalPosition: window.innerWidth < NARROW_PX ? 'top' : 'bottom',
     });
     if (action) shown.onAction().subscribe(action.run);
   }

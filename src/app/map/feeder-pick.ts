@@ -6,6 +6,7 @@ import { isInShape } from '@shared/domain/outage-shape';
 import { Announce } from '../core/announce';
 import { Api } from '../core/api';
 import { ProblemError, problemWords } from '../core/problem-error';
+import { Session } from '../core/session';
 import { AreaEditor } from './area-editor';
 
 /** An outage area made of the feeders that failed: picked on the map or from the list. */
@@ -14,12 +15,15 @@ export class FeederPick {
   private readonly api = inject(Api);
   private readonly announce = inject(Announce);
   private readonly editor = inject(AreaEditor);
+  private readonly session = inject(Session);
 
   private readonly wanted = signal(false);
   private readonly known = signal<readonly FeederDto[] | null>(null);
   private readonly chosenNow = signal<ReadonlySet<string>>(new Set());
   private readonly trouble = signal('');
   private asked = 0;
+  /** Which region the known feeders are of. */
+  private knownOf: string | undefined;
   /** The name that was put in for the person; one of their own stays. */
   private suggested = '';
 
@@ -63,9 +67,12 @@ export class FeederPick {
   }
 
   private async load(): Promise<void> {
-    if (this.known()) return;
+    const region = this.session.region()?.tilesUrl;
+    if (this.known() && this.knownOf === region) return;
+    this.known.set(null);
     try {
       this.known.set((await this.api.call('feeders')).feeders);
+      this.knownOf = region;
     } catch (error) {
       this.failed(error);
     }

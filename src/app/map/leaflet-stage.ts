@@ -10,6 +10,8 @@ import type { WorldPoint } from './world';
 /** How close the map comes for one call. */
 const CALL_ZOOM = 16;
 const EDGE_PX = 36;
+/** How far the map goes beyond the region, as a share of its size. */
+const BEYOND = 0.35;
 
 export interface StageLook {
   readonly theme: MapTheme;
@@ -19,18 +21,17 @@ export interface StageLook {
 /** Leaflet, the tiles and two canvases: one for the picture, one for what changes with the pointer. */
 export class LeafletStage {
   readonly map: L.Map;
-  private readonly tiles: PaintedTiles;
+  private tiles: PaintedTiles;
   private readonly scene: SceneLayer;
   private readonly top: SceneLayer;
-  private readonly home: L.LatLngBounds;
+  private home: L.LatLngBounds;
 
   constructor(
     host: HTMLElement,
-    private readonly region: RegionDto,
+    private region: RegionDto,
     { look, paint, paintTop }: { look: StageLook; paint: Paint; paintTop: Paint },
   ) {
-    const [west, south, east, north] = region.bbox;
-    this.home = L.latLngBounds([south, west], [north, east]);
+    this.home = boundsOf(region);
     this.map = L.map(host, {
       attributionControl: false,
       zoomControl: false,
@@ -43,13 +44,10 @@ export class LeafletStage {
       wheelPxPerZoomLevel: 120,
       minZoom: MAP_MIN_ZOOM,
       maxZoom: MAP_MAX_ZOOM,
-      maxBounds: this.home.pad(0.35),
+      maxBounds: this.home.pad(BEYOND),
       maxBoundsViscosity: 0.8,
     });
-    this.tiles = new PaintedTiles(
-      { ground: region.tilesUrl, numbers: region.houseNumbersUrl },
-      { ...look, hasCoast: region.hasCoast },
-    ).addTo(this.map);
+    this.tiles = tilesOf(region, look).addTo(this.map);
     this.colorGround(look.theme);
     this.scene = new SceneLayer(paint).addTo(this.map);
     this.top = new SceneLayer(paintTop).addTo(this.map);
@@ -65,6 +63,19 @@ export class LeafletStage {
   setLook(look: StageLook): void {
     this.tiles.setLook({ ...look, hasCoast: this.region.hasCoast });
     this.colorGround(look.theme);
+  }
+
+  /** The server works in another region from now on: its tiles, its bounds. */
+  useRegion(region: RegionDto, look: StageLook): void {
+    if (region.tilesUrl === this.region.tilesUrl) return;
+    this.region = region;
+    this.home = boundsOf(region);
+    this.tiles.remove();
+    this.tiles.end();
+    this.tiles = tilesOf(region, look).addTo(this.map);
+    this.colorGround(look.theme);
+    this.map.setMaxBounds(this.home.pad(BEYOND));
+    this.map.fitBounds(this.home, { animate: false });
   }
 
   refresh(): void {
@@ -141,3 +152,13 @@ export class LeafletStage {
     this.map.getContainer().style.background = groundColor(theme, this.region.hasCoast);
   }
 }
+
+function boundsOf({ bbox: [west, south, east, north] }: RegionDto): L.LatLngBounds {
+  return L.latLngBounds([south, west], [north, east]);
+}
+
+const tilesOf = (
+  { tilesUrl, houseNumbersUrl, hasCoast }: RegionDto,
+  look: StageLook,
+): PaintedTiles =>
+  new PaintedTiles({ ground: tilesUrl, numbers: houseNumbersUrl }, { ...look, hasCoast });

@@ -7,6 +7,7 @@ export const MAP_LAYERS = [
   { layer: 'pockets', name: 'Pockets', key: 'p' },
   { layer: 'areas', name: 'Areas', key: 'a' },
   { layer: 'routes', name: 'Routes', key: 'r' },
+  { layer: 'proposal', name: 'Proposal', key: 'n' },
   { layer: 'technicians', name: 'Technicians', key: 't' },
   { layer: 'storm-roads', name: 'Storm roads', key: 'o' },
   { layer: 'feeders', name: 'Feeders', key: 'f' },

@@ -9,11 +9,11 @@ import { MarkSprites } from './mark-sprites';
 import type { Outline } from './outline';
 import { paintAreaLabels } from './area-labels';
 import { type AreaShape, makeHatch, paintAreas } from './paint-areas';
-import { paintCalls, paintRing } from './paint-calls';
+import { paintCalls, paintDots, paintRing } from './paint-calls';
 import { type FeederShape, type GroundRings, paintFeeders, paintGround } from './paint-ground';
 import { paintOutline } from './paint-outline';
 import { paintPocketLabels, paintPockets, type PocketShape } from './paint-pockets';
-import { paintRoutes, paintStopNumbers, paintTechnicians, type RouteShape } from './paint-routes';
+import { paintProposal, paintRoutes, paintStopNumbers } from './paint-routes';
 import {
   makeStormRoadPatterns,
   paintPickedStretch,
@@ -22,6 +22,9 @@ import {
   type StormRoadMark,
   type StormRoadPatterns,
 } from './paint-storm-roads';
+import { paintTechnicians } from './paint-technicians';
+import type { ProposedRoute, RouteShape } from './route-shape';
+import type { Paint, Step } from './scene-layer';
 import { onScreen, toWorld, type View, type WorldPoint } from './world';
 
 /** What the map shows, but for what moves with the pointer. A layer that is left out is empty. */
@@ -32,6 +35,7 @@ export interface MapScene {
   readonly stormRoads: readonly StormRoadMark[];
   readonly pockets: readonly PocketShape[];
   readonly routes: readonly RouteShape[];
+  readonly proposal: readonly ProposedRoute[];
   readonly hasRoutes: boolean;
   readonly hasTechnicians: boolean;
   readonly chosenPocketKey: string | null;
@@ -59,6 +63,7 @@ const EMPTY_SCENE: MapScene = {
   stormRoads: [],
   pockets: [],
   routes: [],
+  proposal: [],
   hasRoutes: false,
   hasTechnicians: false,
   chosenPocketKey: null,
@@ -110,53 +115,82 @@ export class MapPicture {
     this.roadPatterns = null;
   }
 
-  readonly paint = (ctx: CanvasRenderingContext2D, view: View, pixelRatio: number): void => {
+  readonly paint: Paint = (view, pixelRatio) => {
     const { scene } = this;
     const ink = this.inkNow();
     const sprites = this.spritesNow(ink, pixelRatio);
-    this.hatch ??= makeHatch(ctx, ink);
-    this.roadPatterns ??= makeStormRoadPatterns(ctx, ink);
-    this.view = view;
     const boxes = new LabelBoxes();
-
-    paintPockets(ctx, view, scene.pockets, scene.chosenPocketKey, ink);
-    paintAreas(ctx, view, scene.areas, this.hatch, ink);
-    if (scene.hasRoutes) paintRoutes(ctx, view, scene.routes, scene.chosenTechnicianId, ink);
-    paintStormRoads(ctx, view, scene.stormRoads, this.roadPatterns, ink);
-    paintCalls(ctx, view, this.placedAt(view.zoom), sprites, ink);
-    this.plates = scene.hasTechnicians
-      ? paintTechnicians(ctx, view, scene.routes, scene.chosenTechnicianId, boxes, ink)
-      : [];
-    this.roadSigns = paintStormRoadSigns(ctx, view, scene.stormRoads, boxes, ink);
-    this.pocketLabels = paintPocketLabels(
-      ctx,
-      view,
-      scene.pockets,
-      scene.chosenPocketKey,
-      boxes,
-      ink,
-    );
-    this.areaLabels = paintAreaLabels(ctx, view, scene.areas, boxes, ink);
+    const chosenId = scene.chosenTechnicianId;
+    let placed: readonly PlacedMark[] = [];
+    let plates = this.plates;
+    return [
+      (ctx) => {
+        this.hatch ??= makeHatch(ctx, ink);
+        paintPockets(ctx, view, scene.pockets, scene.chosenPocketKey, ink);
+        paintAreas(ctx, view, scene.areas, this.hatch, ink);
+      },
+      (ctx) => {
+        if (scene.hasRoutes) paintRoutes(ctx, view, scene.routes, chosenId, ink);
+      },
+      (ctx) => {
+        paintProposal(ctx, view, scene.proposal, chosenId, ink);
+        this.roadPatterns ??= makeStormRoadPatterns(ctx, ink);
+        paintStormRoads(ctx, view, scene.stormRoads, this.roadPatterns, ink);
+        placed = this.placedAt(view.zoom);
+      },
+      (ctx) => paintDots(ctx, view, placed, sprites),
+      (ctx) => paintCalls(ctx, view, placed, sprites, ink),
+      (ctx) => {
+        plates = scene.hasTechnicians
+          ? paintTechnicians(ctx, view, scene.routes, chosenId, boxes, ink)
+          : [];
+      },
+      (ctx) => {
+        // What lies where is known from here on, together with the picture that shows it.
+        this.view = view;
+        this.plates = plates;
+        this.roadSigns = paintStormRoadSigns(ctx, view, scene.stormRoads, boxes, ink);
+        this.pocketLabels = paintPocketLabels(
+          ctx,
+          view,
+          scene.pockets,
+          scene.chosenPocketKey,
+          boxes,
+          ink,
+        );
+        this.areaLabels = paintAreaLabels(ctx, view, scene.areas, boxes, ink);
+      },
+    ];
   };
 
-  readonly paintTop = (ctx: CanvasRenderingContext2D, view: View, pixelRatio: number): void => {
+  readonly paintTop: Paint = (view, pixelRatio) => {
     const { scene, top } = this;
+    const chosen = scene.hasRoutes
+      ? scene.routes.find((one) => one.technician.id === scene.chosenTechnicianId)
+      : undefined;
+    const isEmpty =
+      !chosen &&
+      top.grounds.length + top.feeders.length === 0 &&
+      Object.values({ ...top, grounds: null, feeders: null }).every((one) => one === null);
+    if (isEmpty) return [];
     const ink = this.inkNow();
     const sprites = this.spritesNow(ink, pixelRatio);
-    const chosen = scene.routes.find((one) => one.technician.id === scene.chosenTechnicianId);
-    if (chosen && scene.hasRoutes) paintStopNumbers(ctx, view, chosen, ink);
-    for (const ground of top.grounds) paintGround(ctx, view, ground, ink);
-    paintFeeders(ctx, view, top.feeders, new LabelBoxes(), ink);
-    for (const kind of ['hovered', 'selected'] as const) {
-      const mark = top[kind];
-      if (mark) paintRing(ctx, view, this.placedOf(mark, view.zoom), kind, sprites, ink);
-    }
-    if (top.outline) {
-      const next = top.nextCorner ? toWorld(top.nextCorner) : null;
-      paintOutline(ctx, view, top.outline, next, ink);
-    }
-    if (top.stretch) paintPickedStretch(ctx, view, top.stretch.line, top.stretch.picks, ink);
-    if (top.pin) paintPin(ctx, onScreen(view, toWorld(top.pin)), ink);
+    const draw: Step = (ctx) => {
+      if (chosen) paintStopNumbers(ctx, view, chosen, ink);
+      for (const ground of top.grounds) paintGround(ctx, view, ground, ink);
+      paintFeeders(ctx, view, top.feeders, new LabelBoxes(), ink);
+      for (const kind of ['hovered', 'selected'] as const) {
+        const mark = top[kind];
+        if (mark) paintRing(ctx, view, this.placedOf(mark, view.zoom), kind, sprites, ink);
+      }
+      if (top.outline) {
+        const next = top.nextCorner ? toWorld(top.nextCorner) : null;
+        paintOutline(ctx, view, top.outline, next, ink);
+      }
+      if (top.stretch) paintPickedStretch(ctx, view, top.stretch.line, top.stretch.picks, ink);
+      if (top.pin) paintPin(ctx, onScreen(view, toWorld(top.pin)), ink);
+    };
+    return [draw];
   };
 
   /**

@@ -18,10 +18,10 @@ import { areaShape } from './paint-areas';
 import { feederShape, groundRings } from './paint-ground';
 import { pocketShape } from './paint-pockets';
 import { stormRoadMark } from './paint-storm-roads';
-import { routeShape } from './paint-routes';
+import { RoadWays } from './road-ways';
+import { proposedRoute, type RouteGround, routeShape } from './route-shape';
 import { StormRoadEditor } from './storm-road-editor';
 import { spanWords, tenseOf } from './storm-road-words';
-import { toWorld, type WorldPoint } from './world';
 
 /** Makes what the map draws from what the board knows; each part anew only when it has changed. */
 @Injectable()
@@ -32,6 +32,7 @@ export class MapScenes {
   private readonly zone = inject(Zone);
   private readonly layers = inject(MapLayers);
   private readonly editor = inject(AreaEditor);
+  private readonly ways = inject(RoadWays);
   private readonly roadEditor = inject(StormRoadEditor);
   private readonly feederPick = inject(FeederPick);
   private readonly files = inject(FileImport);
@@ -76,25 +77,44 @@ export class MapScenes {
       : [],
   );
 
-  private readonly routes = computed(() => {
+  /** Ways are asked for only while routes are shown. */
+  private readonly routeGround = computed((): RouteGround => {
     const calls = this.board.calls();
-    const placeOf = (callId: string): WorldPoint | null => {
-      const lonLat = calls.get(callId)?.address.lonLat;
-      return lonLat ? toWorld(lonLat) : null;
+    const isShown = this.layers.isShown('routes');
+    return {
+      placeOf: (callId) => calls.get(callId)?.address.lonLat ?? null,
+      wayOf: (from, to) => (isShown ? this.ways.way(from, to) : null),
     };
-    const now = this.clock.now();
+  });
+
+  private readonly routes = computed(() => {
+    const ground = this.routeGround();
+    const now = this.minute();
     return [...this.board.technicians().values()]
       .filter(({ active }) => active)
       .map((technician) =>
-        routeShape(
-          technician,
-          this.board.routes().get(technician.id) ?? [],
-          placeOf,
-          now,
-          duration,
-        ),
+        routeShape(technician, this.board.routes().get(technician.id) ?? [], ground, now, duration),
       );
   });
+
+  /** What the proposal in hand would make of the routes. */
+  private readonly proposal = computed(() => {
+    const plan = this.board.plan();
+    if (!plan || !this.layers.isShown('proposal')) return [];
+    const ground = this.routeGround();
+    const technicians = this.board.technicians();
+    return plan.routes.flatMap((route) => {
+      const technician = technicians.get(route.technicianId);
+      return technician ? [proposedRoute(technician, route, ground)] : [];
+    });
+  });
+
+  /** Some route is drawn straight, because no road is known. */
+  readonly hasStraightLegs = computed(
+    () =>
+      this.layers.isShown('routes') &&
+      this.routes().some(({ legs }) => legs.some(({ way }) => way === null)),
+  );
 
   readonly scene = computed<MapScene>(() => ({
     marks: this.marks(),
@@ -102,6 +122,7 @@ export class MapScenes {
     stormRoads: this.stormRoads(),
     pockets: this.pockets(),
     routes: this.routes(),
+    proposal: this.proposal(),
     hasRoutes: this.layers.isShown('routes'),
     hasTechnicians: this.layers.isShown('technicians'),
     chosenPocketKey: this.board.filter().pocketKey,

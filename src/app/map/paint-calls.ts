@@ -11,7 +11,7 @@ const NUMBERS_FROM_ZOOM = 16;
 const COUNTS_FROM_ZOOM = 14;
 const OUT_OF_SIGHT_PX = 24;
 
-/** Draws all calls, the most urgent last and so on top. */
+/** Draws the calls that have room for a mark, the most urgent last and so on top. */
 export function paintCalls(
   ctx: CanvasRenderingContext2D,
   view: View,
@@ -19,7 +19,6 @@ export function paintCalls(
   sprites: MarkSprites,
   ink: MapInk,
 ): void {
-  paintDots(ctx, view, placed, sprites);
   const inSight: { readonly one: PlacedMark; readonly x: number; readonly y: number }[] = [];
   for (const one of placed) {
     if (!one.isFull) continue;
@@ -51,7 +50,7 @@ export const lookOf = ({ mark }: PlacedMark) => ({
 const BY_PRESS: readonly Press[] = ['none', 'later', 'soon', 'now'];
 
 /** Copies of small pictures: one path of three thousand circles takes ten times as long to fill. */
-function paintDots(
+export function paintDots(
   ctx: CanvasRenderingContext2D,
   view: View,
   placed: readonly PlacedMark[],

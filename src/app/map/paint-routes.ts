@@ -1,61 +1,27 @@
-import type { StopDto, TechnicianDto } from '@shared/contract/routes';
-import { type Instant, MINUTE_MS } from '@shared/domain/instant';
-import type { Box, LabelBoxes } from './label-boxes';
-import { font, inkText, type MapInk } from './map-ink';
-import { isInView, onScreen, toWorld, type View, type WorldPoint } from './world';
+import { font, type MapInk } from './map-ink';
+import type { ProposedRoute, RouteLeg, RouteShape } from './route-shape';
+import { isInView, onScreen, type View, type WorldPoint } from './world';
 
-/** From here on a position is old: a van may be anywhere by now. */
-export const OLD_POSITION_MINUTES = 15;
-
-/** A technician and what is left of the route, projected once. */
-export interface RouteShape {
-  readonly technician: TechnicianDto;
-  readonly at: WorldPoint;
-  readonly initials: string;
-  /** The age of the position, such as "4 min"; empty when there is none. */
-  readonly age: string;
-  readonly isOld: boolean;
-  readonly legs: readonly {
-    readonly to: WorldPoint;
-    /** The technician has said yes to it. */
-    readonly isFirm: boolean;
-    readonly order: number;
-  }[];
+/** How a leg is drawn; legs of one look are drawn in one stroke. */
+interface LegLook {
+  readonly color: string;
+  readonly width: number;
+  /** In pixels, drawn and left out by turns; empty for a whole line. */
+  readonly dash: readonly number[];
+  readonly arrowPx: number;
+  readonly arrowEveryPx: number;
 }
 
-export function routeShape(
-  technician: TechnicianDto,
-  stops: readonly StopDto[],
-  placeOf: (callId: string) => WorldPoint | null,
-  now: Instant,
-  ageWords: (lengthMs: number) => string,
-): RouteShape {
-  const { position } = technician;
-  const legs = stops.flatMap((stop, i) => {
-    const to = placeOf(stop.callId);
-    const isFirm =
-      stop.state === 'accepted' || stop.state === 'travelling' || stop.state === 'on-site';
-    return to ? [{ to, isFirm, order: i + 1 }] : [];
-  });
-  return {
-    technician,
-    at: toWorld(position?.lonLat ?? technician.start),
-    initials: initialsOf(technician.name),
-    age: position ? ageWords(now - position.at) : '',
-    isOld: !position || now - position.at > OLD_POSITION_MINUTES * MINUTE_MS,
-    legs,
-  };
-}
+/** Farther out, sixty routes are a background, and only the chosen one has its arrows. */
+const ARROWS_FROM_ZOOM = 12;
+/** A straight line is dotted: it is no road, or not known yet. */
+const DOTS = [1.5, 4.5];
+const PLANNED = [9, 5];
 
-/** "AR" of "Ana Ruiz", "J" of "Jo". */
-export function initialsOf(name: string): string {
-  const words = name.split(/\s+/).filter(Boolean);
-  const [first = ''] = words;
-  const last = words.length > 1 ? (words.at(-1) ?? '') : '';
-  return `${[...first][0] ?? ''}${[...last][0] ?? ''}`.toUpperCase();
-}
-
-/** Straight lines from stop to stop, whole for what is accepted and broken for what is only planned. */
+/**
+ * Along the roads, whole for what is accepted and broken for what is only planned; the chosen route
+ * last, wider and in the accent's colour.
+ */
 export function paintRoutes(
   ctx: CanvasRenderingContext2D,
   view: View,
@@ -63,67 +29,173 @@ export function paintRoutes(
   chosenId: string | null,
   ink: MapInk,
 ): void {
-  for (const shape of shapes) {
-    const isChosen = shape.technician.id === chosenId;
-    let from = onScreen(view, shape.at);
-    for (const leg of shape.legs) {
-      const to = onScreen(view, leg.to);
-      paintLeg(ctx, from, to, leg.isFirm, isChosen, ink);
-      from = to;
+  const isFar = view.zoom < ARROWS_FROM_ZOOM;
+  for (const isChosen of [false, true]) {
+    const legs = shapes
+      .filter(({ technician }) => (technician.id === chosenId) === isChosen)
+      .flatMap((shape) => shape.legs);
+    const look: LegLook = {
+      color: isChosen ? ink.accent : ink.inkSoft,
+      width: isChosen ? 3 : isFar ? 1.1 : 1.6,
+      dash: [],
+      arrowPx: isChosen ? 7 : isFar ? 0 : 5,
+      arrowEveryPx: isChosen ? 110 : 170,
+    };
+    for (const [group, dash] of [
+      [legs.filter(({ way, isFirm }) => way && isFirm), []],
+      [legs.filter(({ way, isFirm }) => way && !isFirm), PLANNED],
+      [legs.filter(({ way }) => !way), DOTS],
+    ] as const) {
+      paintLegs(ctx, view, group, { ...look, dash }, ink.ground);
     }
   }
 }
 
-function paintLeg(
+/**
+ * What a proposal would make of the routes: two thin lines with open arrows, so that it is told from
+ * what is in force without its colour.
+ */
+export function paintProposal(
   ctx: CanvasRenderingContext2D,
-  from: WorldPoint,
-  to: WorldPoint,
-  isFirm: boolean,
-  isChosen: boolean,
+  view: View,
+  routes: readonly ProposedRoute[],
+  chosenId: string | null,
   ink: MapInk,
 ): void {
-  ctx.lineCap = 'butt';
-  ctx.beginPath();
-  ctx.moveTo(from.x, from.y);
-  ctx.lineTo(to.x, to.y);
-  ctx.strokeStyle = ink.ground;
-  ctx.lineWidth = isChosen ? 6 : 4;
-  ctx.globalAlpha = 0.75;
-  ctx.stroke();
-  ctx.globalAlpha = 1;
-  ctx.strokeStyle = isChosen ? ink.accent : ink.inkSoft;
-  ctx.lineWidth = isChosen ? 3 : 1.5;
-  ctx.setLineDash(isFirm ? [] : [5, 4]);
-  ctx.stroke();
-  ctx.setLineDash([]);
-  paintArrow(ctx, from, to, isChosen, ink);
+  for (const { technicianId, legs } of routes) {
+    const isChosen = technicianId === chosenId;
+    if (chosenId !== null && !isChosen) continue;
+    const width = isChosen ? 6.5 : 5;
+    const paths = pathsInView(view, legs);
+    ctx.lineJoin = 'round';
+    ctx.lineCap = 'round';
+    trace(ctx, paths);
+    ctx.strokeStyle = ink.accent;
+    ctx.lineWidth = width;
+    ctx.stroke();
+    ctx.strokeStyle = ink.ground;
+    ctx.lineWidth = width - 2.5;
+    ctx.stroke();
+    const arrows = arrowsOn(view, paths, 100);
+    traceArrows(ctx, arrows, isChosen ? 8.5 : 7);
+    ctx.fillStyle = ink.ground;
+    ctx.fill();
+    ctx.strokeStyle = ink.accent;
+    ctx.lineWidth = 1.5;
+    ctx.stroke();
+  }
 }
 
-/** Which way the leg goes, in its middle; short legs show it by their order alone. */
-function paintArrow(
+function paintLegs(
   ctx: CanvasRenderingContext2D,
-  from: WorldPoint,
-  to: WorldPoint,
-  isChosen: boolean,
-  ink: MapInk,
+  view: View,
+  legs: readonly RouteLeg[],
+  { color, width, dash, arrowPx, arrowEveryPx }: LegLook,
+  rim: string,
 ): void {
-  const length = Math.hypot(to.x - from.x, to.y - from.y);
-  if (length < 34) return;
-  const size = isChosen ? 7 : 5.5;
-  ctx.save();
-  ctx.translate((from.x + to.x) / 2, (from.y + to.y) / 2);
-  ctx.rotate(Math.atan2(to.y - from.y, to.x - from.x));
-  ctx.beginPath();
-  ctx.moveTo(size, 0);
-  ctx.lineTo(-size * 0.8, -size * 0.8);
-  ctx.lineTo(-size * 0.8, size * 0.8);
-  ctx.closePath();
-  ctx.strokeStyle = ink.ground;
+  const paths = pathsInView(view, legs);
+  if (paths.length === 0) return;
+  ctx.lineJoin = 'round';
+  ctx.lineCap = dash === DOTS ? 'round' : 'butt';
+  trace(ctx, paths);
+  ctx.strokeStyle = rim;
+  ctx.lineWidth = width + 2.5;
+  ctx.globalAlpha = 0.7;
+  ctx.stroke();
+  ctx.globalAlpha = 1;
+  ctx.strokeStyle = color;
+  ctx.lineWidth = width;
+  ctx.setLineDash([...dash]);
+  ctx.stroke();
+  ctx.setLineDash([]);
+  if (arrowPx === 0) return;
+  traceArrows(ctx, arrowsOn(view, paths, arrowEveryPx), arrowPx);
+  ctx.strokeStyle = rim;
   ctx.lineWidth = 2.5;
   ctx.stroke();
-  ctx.fillStyle = isChosen ? ink.accent : ink.inkSoft;
+  ctx.fillStyle = color;
   ctx.fill();
-  ctx.restore();
+}
+
+type Path = readonly WorldPoint[];
+
+/** On the canvas, in pixels; what lies beside it as a whole is left out. */
+function pathsInView(view: View, legs: readonly RouteLeg[]): Path[] {
+  const paths: Path[] = [];
+  for (const { from, to, way } of legs) {
+    const points = (way?.at(view.zoom) ?? [from, to]).map((point) => onScreen(view, point));
+    if (isSeen(view, points)) paths.push(points);
+  }
+  return paths;
+}
+
+function isSeen({ width, height }: View, points: Path): boolean {
+  let [left, top, right, bottom] = [Infinity, Infinity, -Infinity, -Infinity];
+  for (const { x, y } of points) {
+    left = Math.min(left, x);
+    right = Math.max(right, x);
+    top = Math.min(top, y);
+    bottom = Math.max(bottom, y);
+  }
+  return right >= 0 && bottom >= 0 && left <= width && top <= height;
+}
+
+function trace(ctx: CanvasRenderingContext2D, paths: readonly Path[]): void {
+  ctx.beginPath();
+  for (const path of paths)
+    path.forEach(({ x, y }, i) => (i === 0 ? ctx.moveTo(x, y) : ctx.lineTo(x, y)));
+}
+
+export interface Arrow extends WorldPoint {
+  readonly angle: number;
+}
+
+/** Which way the legs go: an arrow in the middle of a short one, more along a long one. */
+export function arrowsOn(view: View, paths: readonly Path[], everyPx: number): Arrow[] {
+  return paths.flatMap((path) => {
+    const length = lengthOf(path);
+    if (length < 34) return [];
+    const count = Math.max(1, Math.floor(length / everyPx));
+    return Array.from({ length: count }, (_, i) => pointAlong(path, ((i + 0.5) * length) / count))
+      .filter((arrow) => arrow !== null)
+      .filter((arrow) => isInView(view, arrow, 10));
+  });
+}
+
+const lengthOf = (path: Path): number =>
+  path.reduce((sum, { x, y }, i) => {
+    const before = path[i - 1];
+    return before ? sum + Math.hypot(x - before.x, y - before.y) : sum;
+  }, 0);
+
+function pointAlong(path: Path, at: number): Arrow | null {
+  let left = at;
+  for (let i = 1; i < path.length; i++) {
+    const from = path[i - 1]!;
+    const to = path[i]!;
+    const length = Math.hypot(to.x - from.x, to.y - from.y);
+    if (left <= length && length > 0) {
+      const share = left / length;
+      return {
+        x: from.x + (to.x - from.x) * share,
+        y: from.y + (to.y - from.y) * share,
+        angle: Math.atan2(to.y - from.y, to.x - from.x),
+      };
+    }
+    left -= length;
+  }
+  return null;
+}
+
+function traceArrows(ctx: CanvasRenderingContext2D, arrows: readonly Arrow[], size: number): void {
+  ctx.beginPath();
+  for (const { x, y, angle } of arrows) {
+    const [dx, dy] = [Math.cos(angle) * size, Math.sin(angle) * size];
+    ctx.moveTo(x + dx, y + dy);
+    ctx.lineTo(x - 0.8 * dx + 0.8 * dy, y - 0.8 * dy - 0.8 * dx);
+    ctx.lineTo(x - 0.8 * dx - 0.8 * dy, y - 0.8 * dy + 0.8 * dx);
+    ctx.closePath();
+  }
 }
 
 /** The order of the stops on the chosen route, beside their marks. */
@@ -149,90 +221,4 @@ export function paintStopNumbers(
     ctx.fillStyle = ink.onAccent;
     ctx.fillText(String(order), box.x + 8, box.y + 8);
   }
-}
-
-/**
- * A plate with initials on a foot, and the age of the position beside it: calls have letters in
- * round and edged shapes, people have plates. An old position has a broken rim.
- */
-export function paintTechnicians(
-  ctx: CanvasRenderingContext2D,
-  view: View,
-  shapes: readonly RouteShape[],
-  chosenId: string | null,
-  boxes: LabelBoxes,
-  ink: MapInk,
-): readonly { readonly technicianId: string; readonly box: Box }[] {
-  const plates: { readonly technicianId: string; readonly box: Box }[] = [];
-  for (const shape of shapes) {
-    const { x, y } = onScreen(view, shape.at);
-    if (!isInView(view, { x, y }, 40)) continue;
-    const isChosen = shape.technician.id === chosenId;
-    ctx.font = font(12, 600);
-    const width = Math.max(24, ctx.measureText(shape.initials).width + 10);
-    const box = { x: x - width / 2, y: y - 29, width, height: 20 };
-    boxes.take(box);
-    paintPlate(ctx, shape, { x, y }, box, isChosen, ink);
-    paintAge(ctx, shape, box, boxes, ink);
-    plates.push({ technicianId: shape.technician.id, box: { ...box, height: 30 } });
-  }
-  return plates;
-}
-
-function paintPlate(
-  ctx: CanvasRenderingContext2D,
-  shape: RouteShape,
-  at: WorldPoint,
-  box: Box,
-  isChosen: boolean,
-  ink: MapInk,
-): void {
-  const paper = isChosen ? ink.accent : ink.ink;
-  const plate = new Path2D();
-  plate.roundRect(box.x, box.y, box.width, box.height, 3);
-  plate.moveTo(at.x - 5, box.y + box.height - 1);
-  plate.lineTo(at.x, at.y);
-  plate.lineTo(at.x + 5, box.y + box.height - 1);
-  plate.closePath();
-  ctx.lineJoin = 'round';
-  ctx.strokeStyle = ink.ground;
-  ctx.lineWidth = 4;
-  ctx.stroke(plate);
-  ctx.fillStyle = shape.isOld ? ink.ground : paper;
-  ctx.fill(plate);
-  if (shape.isOld) {
-    ctx.strokeStyle = paper;
-    ctx.lineWidth = 1.75;
-    ctx.setLineDash([4, 3]);
-    ctx.stroke(plate);
-    ctx.setLineDash([]);
-  }
-  ctx.font = font(12, 600);
-  ctx.textAlign = 'center';
-  ctx.textBaseline = 'middle';
-  ctx.fillStyle = shape.isOld ? paper : isChosen ? ink.onAccent : ink.ground;
-  ctx.fillText(shape.initials, box.x + box.width / 2, box.y + box.height / 2 + 0.5);
-}
-
-function paintAge(
-  ctx: CanvasRenderingContext2D,
-  { age }: RouteShape,
-  plate: Box,
-  boxes: LabelBoxes,
-  ink: MapInk,
-): void {
-  if (age === '') return;
-  ctx.font = font(11, 500);
-  ctx.textAlign = 'left';
-  ctx.textBaseline = 'middle';
-  const width = ctx.measureText(age).width + 6;
-  const box = boxes.takeFirst(
-    [plate.x + plate.width + 2, plate.x - width].map((x) => ({
-      x,
-      y: plate.y + 2,
-      width,
-      height: 16,
-    })),
-  );
-  if (box) inkText(ctx, age, box.x + 3, box.y + 8.5, ink.ink, ink.ground);
 }

@@ -10,24 +10,44 @@ import { scaleAt, type View } from './world';
 
 /**
  * Drawn beyond the window's edges. The canvas moves with the map, so that moving costs nothing until
- * most of the margin is used up.
+ * much of the margin is used up.
  */
-const MARGIN_PX = 128;
-const REDRAW_AFTER_PX = 96;
+const MARGIN_PX = 192;
+const REDRAW_AFTER_PX = 80;
+/** Of each frame of the screen, so much is spent on drawing; the rest is for the hand on the map. */
+const BUDGET_MS = 9;
 
-/** Draws what is in view; the context counts in CSS pixels from the canvas's top left corner. */
-export type Paint = (ctx: CanvasRenderingContext2D, view: View, pixelRatio: number) => void;
+/** Draws one part of what is in view; the context counts in CSS pixels from the top left corner. */
+export type Step = (ctx: CanvasRenderingContext2D) => void;
+/** What is in view, in parts that are drawn one after the other, in one frame or in several. */
+export type Paint = (view: View, pixelRatio: number) => readonly Step[];
+
+/** A picture that is being drawn behind the one on screen. */
+interface Work {
+  readonly view: View;
+  readonly corner: Point;
+  readonly steps: readonly Step[];
+  done: number;
+}
 
 /**
  * A canvas of our own over the tiles. Leaflet's own vectors would be objects by the thousand; here
- * everything is drawn again in one go, at most once for each frame of the screen.
+ * everything is drawn again, at most once for each frame of the screen, out of sight and part by
+ * part, so that no frame waits for all of it.
  */
 export class SceneLayer extends Layer {
   private readonly canvas = document.createElement('canvas');
   private readonly ctx = this.canvas.getContext('2d');
+  /** Drawn on by the processor, so that what was drawn is finished within its own frame. */
+  private readonly behind = document.createElement('canvas');
+  private readonly pen = this.behind.getContext('2d', { willReadFrequently: true });
   private map: LeafletMap | null = null;
   private frame: number | null = null;
   private shown: View | null = null;
+  private work: Work | null = null;
+  private isStale = false;
+  /** What is on screen is in the wrong place: better one long frame than several wrong ones. */
+  private isUrgent = true;
   private isZooming = false;
 
   constructor(private readonly paint: Paint) {
@@ -39,13 +59,14 @@ export class SceneLayer extends Layer {
   override onAdd(map: LeafletMap): this {
     this.map = map;
     map.getPane('overlayPane')?.appendChild(this.canvas);
-    this.refresh();
+    this.refreshAtOnce();
     return this;
   }
 
   override onRemove(): this {
     if (this.frame !== null) cancelAnimationFrame(this.frame);
     this.frame = null;
+    this.work = null;
     this.map = null;
     this.canvas.remove();
     return this;
@@ -59,18 +80,22 @@ export class SceneLayer extends Layer {
         this.isZooming = false;
         this.refresh();
       },
-      viewreset: () => this.refresh(),
-      resize: () => this.refresh(),
+      viewreset: () => this.refreshAtOnce(),
+      resize: () => this.refreshAtOnce(),
       zoomanim: (event) => this.follow(event as ZoomAnimEvent),
     };
   }
 
-  /** Draws again in the next frame. */
+  /** Draws again from the next frame on. */
   refresh(): void {
-    this.frame ??= requestAnimationFrame(() => {
-      this.frame = null;
-      this.draw();
-    });
+    this.isStale = true;
+    this.wake();
+  }
+
+  private refreshAtOnce(): void {
+    this.isUrgent = true;
+    this.work = null;
+    this.refresh();
   }
 
   /** What the canvas shows now, or `null` before it has been drawn. */
@@ -86,32 +111,47 @@ export class SceneLayer extends Layer {
       Math.abs(origin.x - MARGIN_PX - shown.left),
       Math.abs(origin.y - MARGIN_PX - shown.top),
     );
-    if (map.getZoom() !== shown.zoom || away > REDRAW_AFTER_PX) this.refresh();
+    // While one is being drawn the next would only begin anew; its end looks again.
+    if (!this.work && (map.getZoom() !== shown.zoom || away > REDRAW_AFTER_PX)) this.refresh();
+  }
+
+  private wake(): void {
+    this.frame ??= requestAnimationFrame(() => {
+      this.frame = null;
+      this.draw();
+    });
   }
 
   private draw(): void {
-    const { map, ctx, canvas } = this;
     // In the middle of an animated zoom the map is not where it says it is; its end draws again.
-    if (!map || !ctx || this.isZooming) return;
+    if (!this.map || !this.pen || this.isZooming) return;
+    this.work ??= this.isStale ? this.begin(this.map) : null;
+    const { work } = this;
+    if (!work) return;
+    const until = this.isUrgent ? Infinity : performance.now() + BUDGET_MS;
+    while (work.done < work.steps.length && performance.now() < until) {
+      work.steps[work.done++]?.(this.pen);
+      // What was drawn is only noted down until somebody looks at it.
+      if (!this.isUrgent) this.pen.getImageData(0, 0, 1, 1);
+    }
+    if (work.done >= work.steps.length) {
+      this.isUrgent = false;
+      this.show(work);
+    }
+    if (this.work || this.isStale) this.wake();
+  }
+
+  private begin(map: LeafletMap): Work | null {
+    this.isStale = false;
     const size = map.getSize();
-    if (size.x === 0 || size.y === 0) return;
+    if (size.x === 0 || size.y === 0) return null;
     const width = size.x + 2 * MARGIN_PX;
     const height = size.y + 2 * MARGIN_PX;
     const pixelRatio = window.devicePixelRatio || 1;
-    if (
-      canvas.width !== Math.round(width * pixelRatio) ||
-      canvas.height !== Math.round(height * pixelRatio)
-    ) {
-      canvas.width = Math.round(width * pixelRatio);
-      canvas.height = Math.round(height * pixelRatio);
-      canvas.style.width = `${width}px`;
-      canvas.style.height = `${height}px`;
-    }
     const corner = map.containerPointToLayerPoint([-MARGIN_PX, -MARGIN_PX]).round();
-    DomUtil.setPosition(canvas, corner);
     const origin = map.getPixelOrigin();
     const zoom = map.getZoom();
-    this.shown = {
+    const view: View = {
       zoom,
       scale: scaleAt(zoom),
       left: origin.x + corner.x,
@@ -120,9 +160,37 @@ export class SceneLayer extends Layer {
       height,
       margin: MARGIN_PX,
     };
-    ctx.setTransform(pixelRatio, 0, 0, pixelRatio, 0, 0);
-    ctx.clearRect(0, 0, width, height);
-    this.paint(ctx, this.shown, pixelRatio);
+    const steps = this.paint(view, pixelRatio);
+    if (steps.length > 0) {
+      this.fit(this.behind, width * pixelRatio, height * pixelRatio);
+      this.pen?.setTransform(pixelRatio, 0, 0, pixelRatio, 0, 0);
+      this.pen?.clearRect(0, 0, width, height);
+    }
+    return { view, corner, steps, done: 0 };
+  }
+
+  /** Puts the finished picture in place of the one on screen. */
+  private show({ view, corner, steps }: Work): void {
+    this.work = null;
+    const { canvas, ctx, behind, map } = this;
+    // Another zoom has begun meanwhile, or has ended: a picture of the one before is of no use.
+    if (!ctx || !map || map.getZoom() !== view.zoom) return;
+    this.shown = view;
+    // An empty picture is none, and costs no screen its time.
+    canvas.style.display = steps.length === 0 ? 'none' : '';
+    if (steps.length === 0) return;
+    this.fit(canvas, behind.width, behind.height);
+    canvas.style.width = `${view.width}px`;
+    canvas.style.height = `${view.height}px`;
+    DomUtil.setPosition(canvas, corner);
+    ctx.globalCompositeOperation = 'copy';
+    ctx.drawImage(behind, 0, 0);
+  }
+
+  private fit(canvas: HTMLCanvasElement, width: number, height: number): void {
+    const [w, h] = [Math.round(width), Math.round(height)];
+    if (canvas.width !== w) canvas.width = w;
+    if (canvas.height !== h) canvas.height = h;
   }
 
   /** During the animation of a zoom the picture is stretched as the tiles are. */
@@ -130,6 +198,7 @@ export class SceneLayer extends Layer {
     const { map, shown } = this;
     if (!map || !shown) return;
     this.isZooming = true;
+    this.work = null;
     const scale = map.getZoomScale(zoom, shown.zoom);
     const origin = map
       .project(center, zoom)

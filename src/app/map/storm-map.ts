@@ -97,7 +97,10 @@ export class StormMap {
   private readonly stage = this.actions.stage;
   private focusedBefore: HTMLElement | null = null;
 
-  protected readonly layerNames = MAP_LAYERS;
+  /** A proposal is there to be shown only while somebody compares it. */
+  protected readonly layerNames = computed(() =>
+    MAP_LAYERS.filter(({ layer }) => layer !== 'proposal' || this.board.plan() !== null),
+  );
   protected readonly panel = this.actions.panel;
   /** Moves with the map. */
   private readonly sight = signal<{ readonly lat: number; readonly zoom: number } | null>(null);
@@ -112,9 +115,7 @@ export class StormMap {
     theme: this.theme.scheme(),
     hasFeeders: this.layers.isShown('feeders'),
   }));
-  protected readonly hasLegs = computed(
-    () => this.layers.isShown('routes') && this.board.stops().size > 0,
-  );
+  protected readonly hasStraightLegs = inject(MapScenes).hasStraightLegs;
   protected readonly popoverPlace = computed(() => {
     this.sight();
     const at = this.popover.at();
@@ -128,6 +129,7 @@ export class StormMap {
     this.showTop();
     this.showFinishedOutline();
     this.followLook();
+    this.followRegion();
     this.followSelection();
     this.followPinRequest();
     this.grantWishes();
@@ -271,6 +273,14 @@ export class StormMap {
       this.actions.picture.forgetInk();
       stage?.setLook(look);
       stage?.refresh();
+    });
+  }
+
+  private followRegion(): void {
+    effect(() => {
+      const region = this.session.region();
+      const stage = this.stage();
+      if (region && stage) untracked(() => stage.useRegion(region, this.look()));
     });
   }
 
