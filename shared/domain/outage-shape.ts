@@ -1,4 +1,4 @@
-import { isInRing } from './point-in-ring';
+import { BandedRing, isInRing } from './point-in-ring';
 
 /** Longitude and latitude in degrees. */
 type Place = readonly [number, number];
@@ -25,18 +25,24 @@ export const isInShape = (place: Place, shape: OutageShape): boolean =>
   );
 
 /**
- * Answers for many places in which of some areas each of them lies, in the order of the areas. Most
- * areas are ruled out by their bounds alone.
+ * Answers for many places in which of some areas each of them lies, in the order of the areas; as
+ * `isInShape` does for one. Most areas are ruled out by their bounds alone, and of the others only the
+ * edges at the place's own latitude are looked at.
  */
 export function shapeFinder<A extends { readonly shape: OutageShape }>(
   areas: readonly A[],
 ): (place: Place) => A[] {
-  const parts = areas.map((area) =>
-    area.shape.map((rings) => ({ rings: [rings], box: boxOf(rings[0] ?? []) })),
+  const parts = areas.map(({ shape }) =>
+    shape.map(([outer, ...holes]) => ({
+      outer: new BandedRing(outer ?? []),
+      holes: holes.map((hole) => new BandedRing(hole)),
+    })),
   );
   return (place) =>
     areas.filter((_, i) =>
-      parts[i]?.some(({ rings, box }) => isInBox(place, box) && isInShape(place, rings)),
+      parts[i]?.some(
+        ({ outer, holes }) => outer.contains(place) && !holes.some((hole) => hole.contains(place)),
+      ),
     );
 }
 
@@ -117,6 +123,3 @@ function boxOf(ring: OutageRing): Box {
   }
   return { west, south, east, north };
 }
-
-const isInBox = ([lon, lat]: Place, { west, south, east, north }: Box): boolean =>
-  lon >= west && lon <= east && lat >= south && lat <= north;
