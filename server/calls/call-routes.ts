@@ -62,7 +62,7 @@ export function callRoutes(context: Context): SomeHandlers<Names> {
       ),
 
     findHousehold: ({ params, query }) =>
-      findHousehold(context.sequelize, params.stormId, query.phone, context.clock()),
+      findHousehold(context, params.stormId, query.phone, context.clock()),
 
     readCall: ({ params }) => callDetail(context.sequelize, params.callId, context.clock()),
 

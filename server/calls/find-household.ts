@@ -1,13 +1,15 @@
-import type { Sequelize } from 'sequelize';
-import type { HouseholdFound } from '@shared/contract/calls';
+import type { Address, HouseholdFound } from '@shared/contract/calls';
 import type { Instant } from '@shared/domain/instant';
+import type { Context } from '../context';
 import { select } from '../db/sql';
+import type { RegionInUse } from '../region/region-in-use';
+import { isWithin } from '../region/is-within';
 import { callRows } from './call-rows';
 import { HouseholdRecord } from './household-record';
 
 /** What is known of whoever rings, from the number alone. */
 export async function findHousehold(
-  sequelize: Sequelize,
+  { sequelize, region }: Pick<Context, 'sequelize' | 'region'>,
   stormId: string,
   phone: string,
   now: Instant,
@@ -28,7 +30,7 @@ export async function findHousehold(
       id: household.id,
       name: household.name,
       phone: household.phone,
-      address: household.address(),
+      address: inRegion(household.address(), region),
       language: household.language,
       mayText: household.mayText,
       optedOut: optedOut.length > 0,
@@ -36,4 +38,13 @@ export async function findHousehold(
     openCall: openCall ?? null,
     earlierCalls: calls.length - (open ? 1 : 0),
   };
+}
+
+/** A place that was noted in another region is looked up in this one by its words; not found, it is open. */
+function inRegion(address: Address, region: RegionInUse): Address {
+  if (address.lonLat === null || isWithin(address.lonLat, region.dto.bbox)) return address;
+  const found = region.locate(address.text);
+  return found
+    ? { ...address, lonLat: found.lonLat, kind: found.kind }
+    : { ...address, lonLat: null, kind: 'unlocated' };
 }

@@ -30,6 +30,6 @@ export function leftOutOf(extract: OsmExtract): LeftOut[] {
       count: cut,
       why: 'the extract was cut there and lacks their points',
     },
-    { what: 'Roads', count: gone, why: 'the extract lacks all but one of their points' },
+    { what: 'Roads', count: gone, why: 'the extract lacks all of their points, or all but one' },
   ].filter(({ count }) => count > 0);
 }

@@ -12,13 +12,14 @@ import { TechnicianRecord } from '../technicians/technician-record';
 import { poll, type Poll } from '../texts/poll';
 import { listRegions } from './demo-region';
 import type { ImportedRegion } from './import-region';
+import { isWithin } from './is-within';
 import { openRegion } from './open-region';
-import { readReport } from './region-data';
+import { readReport, type RegionCounts } from './region-data';
 import { RegionFiles } from './region-files';
 import { findRegion, isReadable, keyOf, removeRegionFolder } from './region-folder';
 import { RegionImports } from './region-imports';
 import type { RegionInUse } from './region-in-use';
-import { isWithin, relocateCalls } from './relocate-calls';
+import { relocateCalls } from './relocate-calls';
 import { findSwitch, regionInUse, switchRegion } from './switch-region';
 
 /** How long until a server notices what another, or the command line, has switched to. */
@@ -209,7 +210,9 @@ export class Regions {
 
   private async kept(region: ImportedRegion): Promise<KeptRegion> {
     const { manifest, folder } = region;
-    const { addresses, streets, places, tiles, roadKm, bytes } = manifest.counts;
+    const { addresses, streets, places, tiles, bytes } = manifest.counts;
+    // An earlier importer did not measure the roads.
+    const measured: Partial<RegionCounts> = manifest.counts;
     return {
       key: keyOf(region),
       name: manifest.name,
@@ -217,13 +220,12 @@ export class Regions {
       attribution: manifest.attribution,
       isInUse: keyOf(region) === this.context.region.key,
       isOutdated: !isReadable(region),
-      // An earlier importer did not measure the roads.
       counts: {
         addresses,
         streets,
         places,
         tiles,
-        roadKm: (roadKm as number | undefined) ?? 0,
+        roadKm: measured.roadKm ?? 0,
         bytes,
       },
       report: await readReport(folder),

@@ -2,7 +2,6 @@ import { createHash } from 'node:crypto';
 import { setImmediate as breathe } from 'node:timers/promises';
 import { Op } from 'sequelize';
 import type { AddressSuggestion } from '@shared/contract/calls';
-import type { LonLat } from '@shared/contract/common';
 import { callsFollowAreas } from '../areas/calls-follow-areas';
 import { CallRecord } from '../calls/call-record';
 import { saveCall } from '../calls/change-call';
@@ -10,6 +9,7 @@ import { machine } from '../commands/actor';
 import { runCommand, type Job } from '../commands/run-command';
 import type { Context } from '../context';
 import { change, insert, select } from '../db/sql';
+import { isWithin, type Box } from './is-within';
 import { findRegion } from './region-folder';
 import type { RegionInUse } from './region-in-use';
 import { findSwitch, readSwitch, type RegionSwitch } from './switch-region';
@@ -18,11 +18,7 @@ import { findSwitch, readSwitch, type RegionSwitch } from './switch-region';
 const PIECE = 60;
 const LOCATOR = machine('Region switch');
 
-type Box = readonly [west: number, south: number, east: number, north: number];
 type Outcome = 'located' | 'returned' | 'kept' | 'outside';
-
-export const isWithin = ([lon, lat]: LonLat, [west, south, east, north]: Box): boolean =>
-  lon >= west && lon <= east && lat >= south && lat <= north;
 
 /**
  * Locates the storm's calls in the region that a switch has brought, in pieces of one command each;

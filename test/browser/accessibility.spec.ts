@@ -170,6 +170,7 @@ test('the map is accessible, with each of its panels', async ({ browser }) => {
   await page.goto('/board');
   for (const [button, panel] of [
     ['Draw area', 'Outage area'],
+    ['Close road', 'Storm road'],
     ['Lists', 'Areas and pockets'],
     ['Marks', 'What the marks mean'],
   ] as const) {
@@ -178,7 +179,8 @@ test('the map is accessible, with each of its panels', async ({ browser }) => {
     if (panel === 'Areas and pockets')
       await expect(page.getByRole('button', { name: /Only these/ }).first()).toBeVisible();
     await judge(page, `map, ${panel}`, QUEUE_ROWS);
-    if (panel === 'Outage area') await page.getByRole('button', { name: 'Cancel' }).click();
+    if (panel === 'Outage area' || panel === 'Storm road')
+      await page.getByRole('button', { name: 'Cancel' }).click();
   }
 
   await page.getByRole('button', { name: 'Lists', exact: true }).click();
@@ -271,7 +273,7 @@ test('the drain and the office are accessible', async ({ browser }) => {
   await page.getByRole('button', { name: 'Show the figures as a table' }).click();
   await judge(page, 'drain, with its table');
 
-  for (const part of ['storms', 'settings', 'technicians', 'accounts', 'trail']) {
+  for (const part of ['storms', 'settings', 'technicians', 'accounts', 'region', 'trail']) {
     await page.goto(`/office?part=${part}`);
     await expect(page.getByRole('tabpanel')).toBeVisible();
     // Each part fetches what it shows; the page is at rest when nothing is under way.

@@ -6,7 +6,7 @@ import { setTimeout as pause } from 'node:timers/promises';
 import { promisify } from 'node:util';
 import { build } from 'esbuild';
 import type { ReplyOf } from '@shared/contract/http';
-import { select } from '../../server/db/sql';
+import { change, select } from '../../server/db/sql';
 import { seedDemo } from '../../server/demo/seed-demo';
 import { ensureDemoRegion, listRegions } from '../../server/region/demo-region';
 import { openRegion } from '../../server/region/open-region';
@@ -42,7 +42,7 @@ const extracts = path.join(data ?? '', 'osm');
       context: { region: await openRegion(demo), regionImporter: program.port },
     });
     // The demo makes people and a storm of its own.
-    await server.sequelize.query('DELETE FROM storms');
+    await change(server.sequelize, 'DELETE FROM storms', []);
     await seedDemo(server.context, (await readAddressBook(demo.folder)).addresses);
     owner = await server.signIn('owner');
   });

@@ -10,6 +10,7 @@ import { writeCounty } from '../../server/region/county/write-county';
 import type { OsmData } from '../../server/region/osm-model';
 import { writeOsmPbf } from '../../server/region/osm-pbf-writer';
 import { dropAbandoned } from '../../server/region/workshop';
+import { insert } from '../../server/db/sql';
 import { keyOf } from '../../server/region/region-folder';
 import { openRegion } from '../../server/region/open-region';
 import { aCall } from '../support/calls';
@@ -239,9 +240,11 @@ describe('an import', () => {
 
     it('is not taken for running when its server is gone', async () => {
       const importId = randomUUID();
-      await server.sequelize.query(
+      await insert(
+        server.sequelize,
         `INSERT INTO region_imports (id, name, state, started_at, heard_at)
-         VALUES ('${importId}', 'Left', 'running', UTC_TIMESTAMP(3), UTC_TIMESTAMP(3) - INTERVAL 31 SECOND)`,
+         VALUES (?, 'Left', 'running', UTC_TIMESTAMP(3), UTC_TIMESTAMP(3) - INTERVAL 31 SECOND)`,
+        [importId],
       );
       await server.app.regions.imports.endSilent();
       expect(await ended(importId)).toMatchObject({
@@ -369,6 +372,22 @@ describe('a switch', () => {
         { number: 2, address: '7 Nowhere Road', outcome: 'outside' },
         { number: 3, address: 'by the old mill', outcome: 'outside' },
       ],
+    });
+
+    const household = async (phone: string) =>
+      (await owner.call('findHousehold', { params: { stormId: server.stormId }, query: { phone } }))
+        .body as { household: { address: object } };
+    const phones = (await CallRecord.findAll({ order: [['number', 'ASC']] })).map(
+      ({ phone }) => phone ?? '',
+    );
+    expect((await household(phones[0]!)).household.address).toMatchObject({
+      text: '12 Larch Lane, Sedge Corner',
+      lonLat: [-44.696, 36.4002],
+    });
+    expect((await household(phones[1]!)).household.address).toMatchObject({
+      text: '7 Nowhere Road',
+      lonLat: null,
+      kind: 'unlocated',
     });
 
     const back = await use(keyOf(home));

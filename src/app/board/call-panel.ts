@@ -22,8 +22,9 @@ import { formatPhone } from '@shared/domain/phone-number';
 import { BoardStore } from '../core/board-store';
 import { Clock } from '../core/clock';
 import { Keys } from '../core/keys';
+import { Session } from '../core/session';
 import { DayTimePipe, Zone } from '../core/zone';
-import { ADDRESS_KIND_WORDS } from '../intake/address-words';
+import { placeWords } from '../intake/address-words';
 import { manyAreasWords } from '../map/area-overlaps';
 import { AmendForm } from './amend-form';
 import { CallModel } from './call-model';
@@ -49,6 +50,7 @@ export class CallPanel {
   protected readonly clock = inject(Clock);
   private readonly board = inject(BoardStore);
   private readonly zone = inject(Zone);
+  private readonly session = inject(Session);
 
   readonly callId = input.required<string>();
   readonly closed = output();
@@ -57,7 +59,10 @@ export class CallPanel {
   private readonly wantsCheck = signal(false);
   protected readonly remark = signal('');
   protected readonly stateWords = STATE_WORDS;
-  protected readonly kindWords = ADDRESS_KIND_WORDS;
+  protected readonly placeWords = computed(() => {
+    const row = this.call.row();
+    return row ? placeWords(row.address, this.session.region()) : '';
+  });
   protected readonly keepShut = CAUTIONS['keep-shut'].words;
   protected readonly neverTaste = CAUTIONS['never-taste'].words;
 

@@ -1,3 +1,4 @@
+import type { RegionDto } from '@shared/contract/areas';
 import type { Address } from '@shared/contract/calls';
 
 /** How surely the point is the address, as a dispatcher would say it. */
@@ -27,3 +28,18 @@ export const shortPlaceDoubt = (kind: Address['kind']): string => SHORT_WORDS[ki
 /** What a row in a list says of an address whose point is not the house's own; empty when it is. */
 export const placeDoubt = (kind: Address['kind']): string =>
   kind === 'rooftop' || kind === 'unlocated' ? '' : ADDRESS_KIND_WORDS[kind];
+
+/**
+ * How surely the point is the address, or that it lies outside of the region in use: then the call is
+ * of another one, and kept its place when the region was switched.
+ */
+export function placeWords(
+  { kind, lonLat }: Pick<Address, 'kind' | 'lonLat'>,
+  region: Pick<RegionDto, 'bbox'> | null,
+): string {
+  if (lonLat === null || !region) return ADDRESS_KIND_WORDS[kind];
+  const [lon, lat] = lonLat;
+  const [west, south, east, north] = region.bbox;
+  const isInside = lon >= west && lon <= east && lat >= south && lat <= north;
+  return isInside ? ADDRESS_KIND_WORDS[kind] : 'not in this region';
+}

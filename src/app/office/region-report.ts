@@ -5,6 +5,11 @@ import { count, counted, kilometres, megabytes, seconds } from './region-words';
 /** Reasons shown before the rest is only counted. */
 const ROWS_SHOWN = 12;
 
+const capital = (text: string): string => text.charAt(0).toUpperCase() + text.slice(1);
+/** A sentence of the importer, as a part of one. */
+const clause = (text: string): string =>
+  (text.charAt(0).toLowerCase() + text.slice(1)).replace(/\.$/, '');
+
 /** What an import made, and what it left out and why. */
 @Component({
   selector: 'thaw-region-report',
@@ -96,7 +101,7 @@ export class RegionReport {
 
   protected readonly left = computed(() => [
     ...(this.report()?.leftOut ?? []).map(
-      ({ what, count: many, why }) => `${what}: ${count(many)}, since ${why}.`,
+      ({ what, count: many, why }) => `${capital(what)}: ${count(many)}, since ${clause(why)}.`,
     ),
     ...Object.entries(this.file()?.reasons ?? {}).map(
       ([reason, many]) => `${counted(many, 'row')} of the address file, since ${reason}.`,
