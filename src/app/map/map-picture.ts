@@ -13,7 +13,7 @@ import { paintCalls, paintDots, paintRing } from './paint-calls';
 import { type FeederShape, type GroundRings, paintFeeders, paintGround } from './paint-ground';
 import { paintOutline } from './paint-outline';
 import { paintPocketLabels, paintPockets, type PocketShape } from './paint-pockets';
-import { paintProposal, paintRoutes, paintStopNumbers } from './paint-routes';
+import { paintProposal, paintStopNumbers, routeSteps } from './paint-routes';
 import {
   makeStormRoadPatterns,
   paintPickedStretch,
@@ -129,9 +129,7 @@ export class MapPicture {
         paintPockets(ctx, view, scene.pockets, scene.chosenPocketKey, ink);
         paintAreas(ctx, view, scene.areas, this.hatch, ink);
       },
-      (ctx) => {
-        if (scene.hasRoutes) paintRoutes(ctx, view, scene.routes, chosenId, ink);
-      },
+      ...(scene.hasRoutes ? routeSteps(view, scene.routes, chosenId, ink) : []),
       (ctx) => {
         paintProposal(ctx, view, scene.proposal, chosenId, ink);
         this.roadPatterns ??= makeStormRoadPatterns(ctx, ink);

@@ -1,5 +1,6 @@
 import { font, type MapInk } from './map-ink';
 import type { ProposedRoute, RouteLeg, RouteShape } from './route-shape';
+import type { Step } from './scene-layer';
 import { isInView, onScreen, type View, type WorldPoint } from './world';
 
 /** How a leg is drawn; legs of one look are drawn in one stroke. */
@@ -18,19 +19,23 @@ const ARROWS_FROM_ZOOM = 12;
 const DOTS = [1.5, 4.5];
 const PLANNED = [9, 5];
 
+/** So many legs are drawn in one stroke: a stroke of all of them would hold up a frame by itself. */
+const LEGS_AT_ONCE = 24;
+
 /**
  * Along the roads, whole for what is accepted and broken for what is only planned; the chosen route
  * last, wider and in the accent's colour.
+ *
+ * @returns what is to be drawn, part by part
  */
-export function paintRoutes(
-  ctx: CanvasRenderingContext2D,
+export function routeSteps(
   view: View,
   shapes: readonly RouteShape[],
   chosenId: string | null,
   ink: MapInk,
-): void {
+): Step[] {
   const isFar = view.zoom < ARROWS_FROM_ZOOM;
-  for (const isChosen of [false, true]) {
+  return [false, true].flatMap((isChosen) => {
     const legs = shapes
       .filter(({ technician }) => (technician.id === chosenId) === isChosen)
       .flatMap((shape) => shape.legs);
@@ -41,15 +46,25 @@ export function paintRoutes(
       arrowPx: isChosen ? 7 : isFar ? 0 : 5,
       arrowEveryPx: isChosen ? 110 : 170,
     };
-    for (const [group, dash] of [
+    const groups: readonly (readonly [readonly RouteLeg[], readonly number[]])[] = [
       [legs.filter(({ way, isFirm }) => way && isFirm), []],
       [legs.filter(({ way, isFirm }) => way && !isFirm), PLANNED],
       [legs.filter(({ way }) => !way), DOTS],
-    ] as const) {
-      paintLegs(ctx, view, group, { ...look, dash }, ink.ground);
-    }
-  }
+    ];
+    return groups.flatMap(([group, dash]) =>
+      piecesOf(group).map(
+        (piece): Step =>
+          (ctx) =>
+            paintLegs(ctx, view, piece, { ...look, dash }, ink.ground),
+      ),
+    );
+  });
 }
+
+const piecesOf = (legs: readonly RouteLeg[]): RouteLeg[][] =>
+  Array.from({ length: Math.ceil(legs.length / LEGS_AT_ONCE) }, (_, i) =>
+    legs.slice(i * LEGS_AT_ONCE, (i + 1) * LEGS_AT_ONCE),
+  );
 
 /**
  * What a proposal would make of the routes: two thin lines with open arrows, so that it is told from
@@ -98,11 +113,13 @@ function paintLegs(
   ctx.lineJoin = 'round';
   ctx.lineCap = dash === DOTS ? 'round' : 'butt';
   trace(ctx, paths);
-  ctx.strokeStyle = rim;
-  ctx.lineWidth = width + 2.5;
-  ctx.globalAlpha = 0.7;
-  ctx.stroke();
-  ctx.globalAlpha = 1;
+  if (arrowPx > 0) {
+    ctx.strokeStyle = rim;
+    ctx.lineWidth = width + 2.5;
+    ctx.globalAlpha = 0.7;
+    ctx.stroke();
+    ctx.globalAlpha = 1;
+  }
   ctx.strokeStyle = color;
   ctx.lineWidth = width;
   ctx.setLineDash([...dash]);
