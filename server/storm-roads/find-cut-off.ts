@@ -21,13 +21,21 @@ const REACH_KEY = "CONVERT(SHA2(CONCAT(?, ' ', lon, ' ', lat), 256) USING ascii)
 /**
  * Marks the open calls that no technician can drive to, and unmarks those that somebody can again. A call is
  * looked at once under each set of conditions and for each place that it is given; one that is cut off is
- * looked at every time, for technicians move.
+ * looked at again when asked to, for technicians move.
  */
 export async function findCutOff(
   context: Context,
   stormId: string,
-  conditions: RoadConditions,
-  key: string,
+  {
+    conditions,
+    key,
+    looksAgain,
+  }: {
+    readonly conditions: RoadConditions;
+    /** Names the conditions. */
+    readonly key: string;
+    readonly looksAgain: boolean;
+  },
 ): Promise<void> {
   const { sequelize, roads } = context;
   if (!roads) return;
@@ -35,9 +43,9 @@ export async function findCutOff(
     sequelize,
     `SELECT id, lon, lat, cut_off FROM calls
       WHERE storm_id = ? AND settled_at IS NULL AND lon IS NOT NULL
-        AND (reach_key IS NULL OR reach_key <> ${REACH_KEY} OR cut_off)
+        AND (reach_key IS NULL OR reach_key <> ${REACH_KEY} OR (cut_off AND ?))
       ORDER BY id`,
-    [stormId, key],
+    [stormId, key, looksAgain],
   );
   if (calls.length === 0) return;
   const cutOff = await beyondReach(context, roads, calls, conditions);

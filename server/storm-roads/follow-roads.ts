@@ -1,12 +1,15 @@
 import { randomUUID } from 'node:crypto';
+import type { Sequelize } from 'sequelize';
+import type { Settings } from '@shared/contract/office';
 import { Refusal } from '@shared/domain/errors';
-import { MINUTE_MS } from '@shared/domain/instant';
+import { MINUTE_MS, type Instant } from '@shared/domain/instant';
 import { conditionsAt, conditionsKey, type RoadConditions } from '@shared/domain/roads/conditions';
 import { drive } from '@shared/domain/route-rules';
 import { forTheGraph } from '@shared/domain/storm-roads';
 import { machine } from '../commands/actor';
 import { runCommand, type Job } from '../commands/run-command';
 import type { Context } from '../context';
+import { select } from '../db/sql';
 import { readSettings } from '../office/settings';
 import { wasToldByTechnician } from '../routes/follow-position';
 import {
@@ -33,38 +36,78 @@ import { confirmedRoads, factorsAt, shortKey } from './road-conditions';
  * Brings travel times, routes and arrivals up to the roads of this moment: after a change of a storm road or
  * of the settings, and when a span begins or ends, or the hour changes. It only compares what holds with
  * what was followed last, so it may be called as often as one likes, by any number of processes.
+ *
+ * @param looksAgain whether calls that are cut off are looked at once more: vans move
  */
-export async function followRoads(context: Context): Promise<void> {
+export async function followRoads(context: Context, looksAgain = true): Promise<void> {
   const { roads } = context;
   if (!roads) return;
   const storm = await StormRecord.findOne({ where: { state: 'open' } });
   if (!storm) return;
   const conditions = await conditionsNow(context, storm.id);
-  if (conditionsKey(roads.followed) !== conditionsKey(conditions)) await roads.follow(conditions);
-  const key = shortKey(conditions);
-  if (storm.roadsKey !== key) await timeRoutesAgain(context, storm.id, conditions, key);
-  await findCutOff(context, storm.id, conditions, key);
+  // Until a moment ago commands of this process counted with other roads, whoever timed the routes last.
+  const wasBehind = conditionsKey(roads.followed) !== conditionsKey(conditions);
+  if (wasBehind) await roads.follow(conditions);
+  const key = shortKey(conditions, context.region.dto.id);
+  if (storm.roadsKey !== key || wasBehind)
+    await timeRoutesAgain(context, storm.id, { conditions, key, wasBehind });
+  await findCutOff(context, storm.id, { conditions, key, looksAgain });
 }
+
+/** Conditions as they were made last. Reading every outline each second would be work for nothing. */
+const made = new WeakMap<
+  Sequelize,
+  { readonly glance: string; readonly conditions: RoadConditions }
+>();
 
 async function conditionsNow(context: Context, stormId: string): Promise<RoadConditions> {
   const { sequelize, region } = context;
   const now = context.clock();
+  const zone = region.dto.timeZone;
   const settings = await readSettings(sequelize);
-  const factors = factorsAt(
-    settings,
-    await corrections(sequelize, settings),
-    now,
-    region.dto.timeZone,
+  const glance = await glanceAt(sequelize, stormId, settings, now, zone);
+  const before = made.get(sequelize);
+  if (before?.glance === glance) return before.conditions;
+  const factors = factorsAt(settings, await corrections(sequelize, settings), now, zone);
+  const conditions = conditionsAt((await confirmedRoads(stormId)).map(forTheGraph), factors, now);
+  made.set(sequelize, { glance, conditions });
+  return conditions;
+}
+
+/** Everything that conditions are made from, as versions: the same text makes the same conditions. */
+async function glanceAt(
+  sequelize: Sequelize,
+  stormId: string,
+  settings: Settings,
+  now: Instant,
+  zone: string,
+): Promise<string> {
+  const inForce = await select<{ id: string; version: number }>(
+    sequelize,
+    `SELECT id, version FROM storm_roads WHERE storm_id = ? AND state = 'confirmed'
+        AND starts_at <= ? AND (ends_at IS NULL OR ends_at > ?) ORDER BY id`,
+    [stormId, new Date(now), new Date(now)],
   );
-  return conditionsAt((await confirmedRoads(stormId)).map(forTheGraph), factors, now);
+  const [drives] = settings.usesMeasuredSpeeds
+    ? await select<{ count: number }>(sequelize, 'SELECT COUNT(*) AS count FROM drives')
+    : [];
+  const { timeOfDay } = factorsAt(settings, {}, now, zone);
+  return JSON.stringify([stormId, settings.version, timeOfDay, drives?.count, zone, inForce]);
 }
 
 /** One command for all routes of the storm, so that every board sees them change together. */
 async function timeRoutesAgain(
   context: Context,
   stormId: string,
-  conditions: RoadConditions,
-  key: string,
+  {
+    conditions,
+    key,
+    wasBehind,
+  }: {
+    readonly conditions: RoadConditions;
+    readonly key: string;
+    readonly wasBehind: boolean;
+  },
 ): Promise<void> {
   const order = {
     actor: machine('road conditions'),
@@ -75,7 +118,8 @@ async function timeRoutesAgain(
   try {
     await runCommand(context, order, async (job) => {
       const storm = await lockOpenStorm(stormId, job.tx);
-      if (storm.roadsKey === key)
+      const isNews = storm.roadsKey !== key;
+      if (!isNews && !wasBehind)
         throw new Refusal('stale-version', 'Another process has timed the routes already.');
       const isFirst = storm.roadsKey === '';
       storm.roadsKey = key;
@@ -84,7 +128,7 @@ async function timeRoutesAgain(
       for (const technicianId of routes.stops.keys()) await moveArrival(job, routes, technicianId);
       await settleRoutes(job, routes);
       // What was proposed before counted on other drives.
-      if (!isFirst) await overtakePlans(job, storm);
+      if (isNews && !isFirst) await overtakePlans(job, storm);
       job.note('storm', stormId, wordsFor(conditions, job.touched.stops.size));
       return null;
     });

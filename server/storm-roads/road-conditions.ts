@@ -60,6 +60,8 @@ export function factorsAt(
   return { timeOfDay: percent / 100, storm: settings.stormPercent / 100, byClass };
 }
 
-/** Names conditions in a column's width. */
-export const shortKey = (conditions: RoadConditions): string =>
-  createHash('sha256').update(conditionsKey(conditions)).digest('hex');
+/** Names conditions in a column's width, together with the region whose roads they are about. */
+export const shortKey = (conditions: RoadConditions, regionId: string): string =>
+  createHash('sha256')
+    .update(`${regionId} ${conditionsKey(conditions)}`)
+    .digest('hex');
