@@ -59,7 +59,7 @@ export class MapScenes {
   private readonly stormRoads = computed(() => {
     if (!this.layers.isShown('storm-roads')) return [];
     const edited = this.roadEditor.isOpen() ? this.roadEditor.base()?.id : undefined;
-    const now = this.minute();
+    const now = this.clock.now();
     return [...this.board.stormRoads().values()]
       .filter((road) => road.id !== edited && tenseOf(road, now) !== 'over')
       .map((road) =>

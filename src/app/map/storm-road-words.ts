@@ -16,8 +16,10 @@ export type StormRoadTense = 'reported' | 'now' | 'later' | 'over';
 export function tenseOf(road: StormRoadDto, now: Instant): StormRoadTense {
   if (road.state === 'reported') return 'reported';
   if (road.state === 'lifted') return 'over';
-  if (isDuring(road, now)) return 'now';
-  return road.startsAt > now ? 'later' : 'over';
+  // A screen's clock ticks: what begins with its making has begun.
+  const at = Math.max(now, road.at);
+  if (isDuring(road, at)) return 'now';
+  return road.startsAt > at ? 'later' : 'over';
 }
 
 /** "Closed", "Slow, 40 % of the usual speed". */

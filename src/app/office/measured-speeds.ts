@@ -71,8 +71,8 @@ export class MeasuredSpeeds {
 
   constructor() {
     effect(() => {
-      this.session.settings()?.measuredFrom;
-      untracked(() => void this.read());
+      const settings = this.session.settings();
+      if (settings) untracked(() => void this.read());
     });
   }
 
