@@ -58,18 +58,28 @@ function partsOverlap(a: readonly OutageRing[], b: readonly OutageRing[]): boole
   if (boxA.north <= boxB.south || boxB.north <= boxA.south) return false;
   if (a.some((ringA) => b.some((ringB) => ringsCross(ringA, ringB)))) return true;
   // Without a crossing a ring lies inside as a whole or outside as a whole.
-  return hasCornerIn(outerA, b) || hasCornerIn(outerB, a) || isSameRing(outerA, outerB);
+  return [innerPlace(a), innerPlace(b)].some(
+    (place) => place !== null && isInShape(place, [a]) && isInShape(place, [b]),
+  );
 }
 
-/** By the middles of edges: a corner may lie on the other's edge, where the answer is a matter of chance. */
-const hasCornerIn = (ring: OutageRing, part: readonly OutageRing[]): boolean =>
-  ring.slice(1).some((to, i) => {
-    const from = ring[i] ?? to;
-    return isInShape([(from[0] + to[0]) / 2, (from[1] + to[1]) / 2], [part]);
-  });
-
-const isSameRing = (a: OutageRing, b: OutageRing): boolean =>
-  a.length === b.length && a.every(([x, y]) => b.some((one) => one[0] === x && one[1] === y));
+/** A place well inside a part: the middle of its widest stretch, halfway between south and north. */
+function innerPlace(part: readonly OutageRing[]): Place | null {
+  const { south, north } = boxOf(part[0] ?? []);
+  // Off the half, where corners of drawn squares like to lie.
+  const y = south + (north - south) * 0.4871;
+  const crossings = part
+    .flatMap((ring) => edgesOf(ring, 0))
+    .filter(({ from, to }) => from[1] > y !== to[1] > y)
+    .map(({ from, to }) => from[0] + ((y - from[1]) / (to[1] - from[1])) * (to[0] - from[0]))
+    .sort((one, other) => one - other);
+  let widest: readonly [number, number] | null = null;
+  for (let i = 0; i + 1 < crossings.length; i += 2) {
+    const [left = 0, right = 0] = crossings.slice(i, i + 2);
+    if (!widest || right - left > widest[1] - widest[0]) widest = [left, right];
+  }
+  return widest && [(widest[0] + widest[1]) / 2, y];
+}
 
 interface Edge extends Box {
   readonly from: Place;

@@ -98,7 +98,7 @@ test('outage areas come from a file, and a bad file says why not', async ({ brow
   await expect(panel.getByText('areas.geojson: 2 areas')).toBeVisible();
   await panel.getByRole('button', { name: 'Save 2 areas' }).click();
   await expect(panel.getByText(/When did the power go/)).toBeVisible();
-  await panel.getByLabel('Power went').fill('3 h ago');
+  await panel.getByRole('textbox', { name: 'Power went' }).fill('3 h ago');
   await panel.getByRole('button', { name: 'Save 2 areas' }).click();
   await expect(page.getByText(/2 areas are saved/)).toBeVisible();
   await page.getByRole('button', { name: 'Lists', exact: true }).click();

@@ -82,6 +82,11 @@ describe('shapesOverlap', () => {
     ['inside', [[square(1, 1, 1)]], true],
     ['around', [[square(-5, -5, 50)]], true],
     ['itself', RING_ROAD, true],
+    [
+      'on the same ring with one corner more',
+      [[[[0, 0], [5, 0], ...square(0, 0, 10).slice(1)]]],
+      true,
+    ],
     ['in the hole', [[square(4, 4, 2)]], false],
     ['beside', [[square(12, 0, 5)]], false],
     ['touching along an edge', [[square(10, 0, 5)]], false],
