@@ -543,13 +543,18 @@ export type BodyOf<K extends RouteName> = Http[K] extends { body: infer B extend
   : Http[K] extends { body: 'bytes' }
     ? Uint8Array
     : undefined;
+/** What a browser's `Blob` is to the contract, which knows no browser: bytes that are not in memory. */
+export interface SentFile {
+  readonly size: number;
+  readonly type: string;
+}
 /** The body as a client writes it, before defaults are filled in. */
 export type SentBodyOf<K extends RouteName> = Http[K] extends { body: infer B extends z.ZodType }
   ? z.input<B>
   : Http[K] extends { body: 'bytes' }
     ? ArrayBuffer
     : Http[K] extends { body: 'stream' }
-      ? Blob
+      ? SentFile
       : undefined;
 export type QueryOf<K extends RouteName> = Http[K] extends { query: infer Q extends z.ZodType }
   ? z.output<Q>
