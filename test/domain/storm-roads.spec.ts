@@ -152,7 +152,7 @@ describe('stormRoadFault', () => {
       /longer than 60 km/,
     ],
   ] as const)('says of %j: %s', (road, words) => {
-    const fault = stormRoadFault(road as Parameters<typeof stormRoadFault>[0]);
+    const fault = stormRoadFault(road);
     if (words === null) expect(fault).toBeNull();
     else expect(fault).toMatch(words);
   });
