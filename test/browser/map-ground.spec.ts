@@ -27,13 +27,14 @@ const readGround = (page: Page): Promise<Ground> =>
           box.bottom > map.top &&
           box.top < map.bottom,
       );
-    const painted = tiles.filter(({ canvas }) => canvas.width === 256 && canvas.height === 256);
+    // Leaflet marks a tile as loaded once its picture has been handed over.
+    const painted = tiles.filter(({ canvas }) => canvas.classList.contains('leaflet-tile-loaded'));
     const pixels = new Map(
       painted.map(({ canvas }) => {
         const copy = document.createElement('canvas');
         copy.width = copy.height = 256;
         const ctx = copy.getContext('2d')!;
-        ctx.drawImage(canvas, 0, 0);
+        ctx.drawImage(canvas, 0, 0, 256, 256);
         return [canvas, ctx.getImageData(0, 0, 256, 256).data] as const;
       }),
     );

@@ -8,9 +8,8 @@ import {
   type AddressPoint,
 } from '../../server/region/address-points';
 import { chanceOf } from '../../server/region/county/chance';
-import { writeCounty } from '../../server/region/county/write-county';
-import { DEMO_SEED } from '../../server/region/demo-region';
 import { readExtract } from '../../server/region/osm-extract';
+import { demoCountyPbf } from '../support/demo-county';
 import { disturbedAddresses } from '../support/disturbed-addresses';
 import { measureAccepted, measureHits, type HitRates } from '../support/hit-rates';
 
@@ -94,7 +93,7 @@ describe('AddressIndex on the demo county', () => {
   let book: AddressBook;
   let index: AddressIndex;
   beforeAll(async () => {
-    book = await bookIn(writeCounty({ seed: DEMO_SEED }));
+    book = await bookIn(demoCountyPbf());
     index = AddressIndex.of(book);
   });
 

@@ -7,10 +7,9 @@ import { isInShape, shapeFinder } from '@shared/domain/outage-shape';
 import { demoCallers } from '../../server/demo/demo-callers';
 import { demoOutages, outageFinder, type DemoOutage } from '../../server/demo/demo-outages';
 import { ownAddresses, type AddressPoint } from '../../server/region/address-points';
-import { writeCounty } from '../../server/region/county/write-county';
-import { DEMO_SEED } from '../../server/region/demo-region';
 import { feedersOf } from '../../server/region/feeders';
 import { readExtract } from '../../server/region/osm-extract';
+import { demoCountyPbf } from '../support/demo-county';
 
 jest.setTimeout(180_000);
 
@@ -19,7 +18,7 @@ let addresses: AddressPoint[];
 
 /** The feeders as an import reads them, never as the generator knows them. */
 beforeAll(async () => {
-  const extract = await readExtract(writeCounty({ seed: DEMO_SEED }));
+  const extract = await readExtract(demoCountyPbf());
   addresses = ownAddresses(extract);
   power = feedersOf(extract, addresses);
 });

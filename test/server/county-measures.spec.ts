@@ -1,7 +1,6 @@
 import { existsSync } from 'node:fs';
 import path from 'node:path';
-import { writeCounty } from '../../server/region/county/write-county';
-import { DEMO_SEED } from '../../server/region/demo-region';
+import { demoCountyPbf } from '../support/demo-county';
 import { readAll, type ReadOsm } from '../support/region-files';
 import { roadMeasures, type RoadMeasures } from '../support/road-measures';
 
@@ -11,7 +10,7 @@ let osm: ReadOsm;
 let measures: RoadMeasures;
 
 beforeAll(async () => {
-  osm = await readAll(writeCounty({ seed: DEMO_SEED }));
+  osm = await readAll(demoCountyPbf());
   measures = roadMeasures(osm);
 });
 

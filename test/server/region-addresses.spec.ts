@@ -31,8 +31,9 @@ async function importWith(
 const HEADER = 'LON,LAT,NUMBER,STREET,UNIT,CITY,DISTRICT,REGION,POSTCODE,ID,HASH';
 const rowOf = (lon: number, lat: number, number: string, street: string, rest = ',,,,,,'): string =>
   `${String(lon)},${String(lat)},${number},${street}${rest}`;
+/** Sorted: in which order a book keeps its addresses is its own affair. */
 const doors = (book: AddressBook): string[] =>
-  book.addresses.map(({ number, street, city }) => `${number} ${street}, ${city}`);
+  book.addresses.map(({ number, street, city }) => `${number} ${street}, ${city}`).sort();
 
 describe('an address file', () => {
   it('adds what the extract lacks and keeps what it has', async () => {
@@ -47,10 +48,11 @@ describe('an address file', () => {
     expect(doors(book)).toEqual([
       '12 Larch Lane, Sedge Corner',
       '14 Larch Lane, Sedge Corner',
+      // Spelled as the street is in the extract.
+      '20 Larch Lane, Sedge Corner',
       '3 Heron Street, Upper Sedge',
-      '20 Larch Ln, Sedge Corner',
     ]);
-    expect(book.addresses[0]?.at).toEqual([-47.696, 36.4002]);
+    expect(book.addresses.find(({ number }) => number === '12')?.at).toEqual([-47.696, 36.4002]);
     expect(report.addressFile).toMatchObject({ rows: 2, added: 1, merged: 1, rejectedCount: 0 });
     expect(attribution).toBe('invented; Addresses of an invented county');
   });
@@ -88,11 +90,13 @@ describe('an address file', () => {
         rowOf(-47.694, 36.4034, '5', 'Heron Street'),
       ].join('\n'),
     );
-    expect(doors(book).slice(3)).toEqual([
-      '40 Heron Street, Sedge Corner',
-      '2 Larch Lane, Rushmere',
-      '5 Heron Street, Upper Sedge',
-    ]);
+    expect(doors(book)).toEqual(
+      expect.arrayContaining([
+        '40 Heron Street, Sedge Corner',
+        '2 Larch Lane, Rushmere',
+        '5 Heron Street, Upper Sedge',
+      ]),
+    );
     expect(report.addressFile?.citiesFilled).toBe(3);
   });
 

@@ -56,15 +56,13 @@ function coastRings(osm: ReadOsm): Spot[][] {
 }
 
 let county: County;
-let pbf: Uint8Array;
 let osm: ReadOsm;
 let roads: OsmWay[];
 let houses: OsmNode[];
 
 beforeAll(async () => {
   county = makeCounty(DEMO_SEED);
-  pbf = countyToPbf(county);
-  osm = await readAll(pbf);
+  osm = await readAll(countyToPbf(county));
   roads = osm.ways.filter(({ tags }) => tags['highway'] !== undefined);
   houses = [...osm.nodes.values()].filter(
     ({ tags }) => tags['addr:housenumber'] !== undefined && tags['name'] === undefined,
@@ -77,9 +75,8 @@ describe('the invented county', () => {
     expect(fingerprintOf({ nodes, ways, relations })).toBe(DEMO_DATA);
   });
 
-  it('is the same again for the same seed, and another for another', () => {
-    // The first run made `county`; equal bytes mean equal data.
-    expect(Buffer.compare(countyToPbf(makeCounty(DEMO_SEED)), pbf)).toBe(0);
+  // That the same seed gives the same again, the fingerprint says.
+  it('is another for another seed', () => {
     const { nodes, ways, relations } = countyToOsm(makeCounty(DEMO_SEED + 1));
     expect(fingerprintOf({ nodes, ways, relations })).not.toBe(DEMO_DATA);
   });

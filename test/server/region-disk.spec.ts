@@ -3,9 +3,9 @@ import { mkdirSync, readdirSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { Readable } from 'node:stream';
 import type { Refusal } from '@shared/domain/errors';
-import { writeCounty } from '../../server/region/county/write-county';
 import { RegionFiles } from '../../server/region/region-files';
 import { importRegion } from '../../server/region/import-region';
+import { demoCountyPbf } from '../support/demo-county';
 import { importerProgram, type ImporterProgram } from '../support/importer-program';
 import { temporaryFolder } from '../support/region-files';
 
@@ -40,7 +40,7 @@ afterAll(() => {
 
   it('ends an import in words, leaves nothing, and lets the next one go on', async () => {
     const pbf = join(folder.path, 'county.osm.pbf');
-    writeFileSync(pbf, writeCounty({ seed: 1 }));
+    writeFileSync(pbf, demoCountyPbf());
     const order = { pbf, name: 'County', timeZone: 'UTC', attribution: 'invented' };
     const running = program.port.start(
       { ...order, outFolder: join(small, 'tiles') },

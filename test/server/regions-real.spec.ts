@@ -8,10 +8,11 @@ import { build } from 'esbuild';
 import type { ReplyOf } from '@shared/contract/http';
 import { change, select } from '../../server/db/sql';
 import { seedDemo } from '../../server/demo/seed-demo';
-import { ensureDemoRegion, listRegions } from '../../server/region/demo-region';
+import { listRegions } from '../../server/region/demo-region';
 import { openRegion } from '../../server/region/open-region';
 import { readAddressBook } from '../../server/region/region-data';
 import { keyOf } from '../../server/region/region-folder';
+import { demoRegionIn } from '../support/demo-county';
 import { importerProgram, type ImporterProgram } from '../support/importer-program';
 import { temporaryFolder } from '../support/region-files';
 import { startServer, type TestPerson, type TestServer } from '../support/server';
@@ -30,7 +31,7 @@ const extracts = path.join(data ?? '', 'osm');
 
   beforeAll(async () => {
     program = await importerProgram('real');
-    const demo = await ensureDemoRegion(tiles);
+    const demo = await demoRegionIn(tiles);
     server = await startServer({
       suffix: '_real',
       config: {

@@ -6,13 +6,13 @@ import request from 'supertest';
 import type { ReplyOf } from '@shared/contract/http';
 import { CallRecord } from '../../server/calls/call-record';
 import { importRegion, type ImportedRegion } from '../../server/region/import-region';
-import { writeCounty } from '../../server/region/county/write-county';
 import type { OsmData } from '../../server/region/osm-model';
 import { writeOsmPbf } from '../../server/region/osm-pbf-writer';
 import { dropAbandoned } from '../../server/region/workshop';
 import { insert } from '../../server/db/sql';
 import { keyOf } from '../../server/region/region-folder';
 import { openRegion } from '../../server/region/open-region';
+import { demoCountyPbf } from '../support/demo-county';
 import { aCall } from '../support/calls';
 import { HAMLET_DATA, hamletPbf } from '../support/hamlet';
 import { importerProgram, type ImporterProgram } from '../support/importer-program';
@@ -197,7 +197,7 @@ describe('an import', () => {
         },
       });
     };
-    const county = writeCounty({ seed: 1 });
+    const county = demoCountyPbf();
 
     it('keeps another from beginning, and can be stopped', async () => {
       const before = readdirSync(tiles);

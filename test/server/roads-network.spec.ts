@@ -7,13 +7,13 @@ import { ROAD_CLASSES } from '@shared/domain/roads/road-class';
 import { SEGMENT_FLAGS } from '@shared/domain/roads/road-graph';
 import { lineOf } from '@shared/domain/roads/storm-cover';
 import { greatCircleKm, type LonLat } from '@shared/domain/travel/great-circle';
-import { writeCounty } from '../../server/region/county/write-county';
 import type { Tags } from '../../server/region/osm-model';
 import { readExtract } from '../../server/region/osm-extract';
 import { roadNetwork, type RoadNetwork } from '../../server/region/road-network';
 import { RoadSnap } from '../../server/region/road-snap';
 import { durationMinutes, roadWayOf, speedKmh } from '../../server/region/road-tags';
 import { readRoadFile, roadsIn, writeRoads } from '../../server/region/road-file';
+import { demoCountyPbf } from '../support/demo-county';
 import { extractOf, placeOn, type Sketch } from '../support/osm-sketch';
 import { temporaryFolder } from '../support/region-files';
 import { RoadOracle } from '../support/road-oracle';
@@ -297,7 +297,7 @@ describe('the file of roads', () => {
 
 const data = process.env['THAWLINE_TEST_DATA'] ?? '';
 const extracts: readonly { name: string; pbf: () => string | Uint8Array }[] = [
-  { name: 'the demo county', pbf: () => writeCounty({ seed: 1 }) },
+  { name: 'the demo county', pbf: demoCountyPbf },
   ...['queens-village', 'harrisburg']
     .map((name) => ({ name, path: join(data, 'osm', `${name}.osm.pbf`) }))
     .filter(({ path }) => data !== '' && existsSync(path))

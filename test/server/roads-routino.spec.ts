@@ -8,9 +8,9 @@ import type { RoadGraph } from '@shared/domain/roads/road-graph';
 import type { RoadPoint } from '@shared/domain/roads/road-ends';
 import { lineOf } from '@shared/domain/roads/storm-cover';
 import { EARTH_RADIUS_KM, greatCircleKm, type LonLat } from '@shared/domain/travel/great-circle';
-import { writeCounty } from '../../server/region/county/write-county';
 import { readExtract } from '../../server/region/osm-extract';
 import { roadNetwork } from '../../server/region/road-network';
+import { demoCountyPbf } from '../support/demo-county';
 import { temporaryFolder } from '../support/region-files';
 import { hasRoutino, Routino } from '../support/routino';
 import { timedRoads } from '../support/timed-roads';
@@ -49,7 +49,7 @@ routino('drives beside those of routino (needs routino-router)', () => {
 
   it('agree on the demo county', async () => {
     const path = join(folder(), 'county.osm.pbf');
-    writeFileSync(path, writeCounty({ seed: 1 }));
+    writeFileSync(path, demoCountyPbf());
     await compare(path, folder());
   });
 
