@@ -3,8 +3,11 @@ import type { Response, Test } from 'supertest';
 import { select } from '../../server/db/sql';
 import type { TestServer } from './server';
 
-/** `innodb_trx` is filled anew ten times a second at most, so asking faster learns nothing. */
-const LOOK_MS = 120;
+/**
+ * `innodb_trx` is filled anew only when nobody has read it for a tenth of a second. Two specs that look in one
+ * rhythm would keep each other from ever learning anything, so nobody keeps a rhythm.
+ */
+const lookMs = (): number => 120 + Math.random() * 380;
 
 /**
  * Lets requests meet for certain: holds the row that they all need, sends them one by one as soon as
@@ -30,7 +33,7 @@ export async function atOnce(
       const end = Date.now() + 4000;
       while ((await waiting(server)) < replies.length) {
         if (Date.now() > end) throw new Error('the requests never met');
-        await pause(LOOK_MS);
+        await pause(lookMs());
       }
     }
     await tx.commit();

@@ -156,8 +156,11 @@ export class StormMap {
       const host = this.host().nativeElement;
       if (host.clientWidth === 0 || host.clientHeight === 0) return;
       const stage = this.stage();
-      if (stage) stage.resized();
-      else this.start(host);
+      if (stage) {
+        stage.resized();
+        // A panel that opens for the selected call takes room, and may take the call out of sight.
+        this.bringSelectedIntoSight();
+      } else this.start(host);
     });
     effect((onCleanup) => {
       const host = this.host().nativeElement;
@@ -289,13 +292,19 @@ export class StormMap {
     effect(() => {
       const selected = this.board.selectedCallId();
       untracked(() => {
-        const stage = this.stage();
-        if (selected === null || !stage || this.hands.hasTool()) return;
-        const lonLat = this.board.calls().get(selected)?.address.lonLat;
-        if (lonLat && stage.map.getSize().x > 0) stage.bringIntoSight(lonLat);
+        if (selected === null || !this.stage() || this.hands.hasTool()) return;
+        this.bringSelectedIntoSight();
         this.popover.selectionIs(selected);
       });
     });
+  }
+
+  private bringSelectedIntoSight(): void {
+    const stage = this.stage();
+    const selected = this.board.selectedCallId();
+    if (selected === null || !stage || this.hands.hasTool()) return;
+    const lonLat = this.board.calls().get(selected)?.address.lonLat;
+    if (lonLat && stage.map.getSize().x > 0) stage.bringIntoSight(lonLat);
   }
 
   private followPinRequest(): void {
