@@ -129,15 +129,15 @@ export class Queue {
     this.registerKeys();
   }
 
-  /** Goes to the rows or to the list, whichever is shown; a key may come before that is drawn. */
+  /** Goes to the rows or to the list, whichever is shown; at once, unless a key came before it is drawn. */
   focus(): void {
-    afterNextRender(
-      () => {
-        this.viewport()?.elementRef.nativeElement.focus();
-        this.list()?.focus();
-      },
-      { injector: this.injector },
-    );
+    if (this.isList() ? this.list() : this.viewport()) this.focusShown();
+    else afterNextRender(() => this.focusShown(), { injector: this.injector });
+  }
+
+  private focusShown(): void {
+    if (this.isList()) this.list()?.focus();
+    else this.viewport()?.elementRef.nativeElement.focus();
   }
 
   protected readonly trackId = (_: number, id: string): string => id;
