@@ -162,11 +162,12 @@ export class RoutesPage {
       );
     });
     // What is published leaves the panel and the list, and the focus may go with them.
-    let wasBeside = false;
+    // The two may go one after the other.
+    let before = { isBeside: false, isWaiting: false };
     effect(() => {
-      const isBeside = this.board.plan() !== null;
-      const hasLeft = wasBeside && !isBeside;
-      wasBeside = isBeside;
+      const now = { isBeside: this.board.plan() !== null, isWaiting: this.waiting().length > 0 };
+      const hasLeft = (before.isBeside && !now.isBeside) || (before.isWaiting && !now.isWaiting);
+      before = now;
       if (!hasLeft) return;
       afterNextRender(
         () => document.activeElement === document.body && this.routeBoard()?.focus(),
