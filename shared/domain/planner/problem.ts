@@ -26,9 +26,24 @@ export interface PlanProblem {
   readonly matrix: ArrayLike<number> | readonly ArrayLike<number>[];
   readonly jobs: readonly PlanJob[];
   readonly technicians: readonly PlanTechnician[];
+  /** Where a van can fetch parts that it lacks; without it a lacking part rules a technician out. */
+  readonly shop?: PlanShop;
   /** The plan in force: where the search starts, and what a change of technician is measured by. */
   readonly previous?: PreviousPlan;
   readonly weights?: Partial<PlanWeights>;
+}
+
+/**
+ * The company's store. A route fetches there, once a shift and before the first visit that needs one,
+ * every part that its visits need and its van lacks.
+ */
+export interface PlanShop {
+  /** Index of its place in the matrix. */
+  readonly loc: number;
+  /** Seconds that a stop there takes. */
+  readonly seconds: number;
+  /** When given, only these parts can be had there, and only so many. */
+  readonly parts?: Readonly<Record<string, number>>;
 }
 
 /** One visit that a call needs. */
@@ -38,6 +53,8 @@ export interface PlanJob {
   readonly loc: number;
   /** Seconds of work at the door. */
   readonly service: number;
+  /** The same for technicians who are known to take longer or less, by their id. */
+  readonly serviceBy?: Readonly<Record<string, number>>;
   readonly calledAt: number;
   /** No visit starts before this. */
   readonly earliest?: number;
@@ -90,6 +107,18 @@ export interface PlanShift {
   readonly from?: number;
   /** Place where it ends: `home` unless given. */
   readonly to?: number;
+  readonly breaks?: readonly PlanBreak[];
+}
+
+/**
+ * A pause that is due. It is taken where the technician is between two visits: at the first such moment
+ * at or after `from`; or before, waiting until `from`, when the next visit would end after `to`.
+ * No pause begins after `to`, and breaks of one shift do not overlap.
+ */
+export interface PlanBreak {
+  readonly from: number;
+  readonly to: number;
+  readonly seconds: number;
 }
 
 export interface PreviousPlan {
@@ -112,6 +141,10 @@ export interface PlanWeights {
   /** Price of a call on no route, times its weight. */
   readonly unservedBase: number;
   readonly churnReassign: number;
+  /** Price of moving a start by more than `movedBy` from what the previous plan promised soon; 0 is none. */
+  readonly churnMoved: number;
+  /** Seconds of such a move that nobody minds. */
+  readonly movedBy: number;
   /** Seconds from now within which a change of technician is priced. */
   readonly churnHorizon: number;
 }
@@ -126,6 +159,8 @@ export const DEFAULT_WEIGHTS: PlanWeights = {
   maxOvertime: 3600,
   unservedBase: 150,
   churnReassign: 15,
+  churnMoved: 0,
+  movedBy: 1800,
   churnHorizon: 7200,
 };
 
@@ -144,8 +179,20 @@ export interface PlanRoute {
   /** Index into the technician's shifts. */
   readonly shift: number;
   readonly stops: readonly PlanStop[];
+  /** Breaks and the stop at the shop, in their order; left out when there are none. */
+  readonly halts?: readonly PlanHalt[];
   /** Arrival at the place where the shift ends. */
   readonly end: number;
+}
+
+export interface PlanHalt {
+  readonly kind: 'break' | 'shop';
+  /** The stop before which it is made, counted from 0; the number of stops when it is made after the last. */
+  readonly before: number;
+  readonly start: number;
+  readonly finish: number;
+  /** What is fetched at the shop. */
+  readonly parts?: Readonly<Record<string, number>>;
 }
 
 export interface PlanStop {
