@@ -10,7 +10,8 @@
  * - the value of each deadline that the visit's start has passed (a start at the deadline keeps it);
  * - lateness, a fixed part and a part per hour, of a start after the last window;
  * - overtime, from the shift's end to the arrival home;
- * - a change of technician, for stops that the previous plan promised within the churn horizon;
+ * - a change of technician, and on top of it a moved start, for stops that the previous plan promised
+ *   within the churn horizon;
  * - for each call on no route: all its values, its waiting until the last shift ends, and a base
  *   price times its weight.
  */
@@ -35,7 +36,9 @@ export interface PlanProblem {
 
 /**
  * The company's store. A route fetches there, once a shift and before the first visit that needs one,
- * every part that its visits need and its van lacks.
+ * every part that its visits need and its van lacks; but not before an accepted stop, and nothing for
+ * accepted stops. Visits use up what is on the van in the order of the day, shift by shift. The stop at
+ * the shop begins at the arrival; where in the route it is made is for the plan to say.
  */
 export interface PlanShop {
   /** Index of its place in the matrix. */
@@ -111,9 +114,12 @@ export interface PlanShift {
 }
 
 /**
- * A pause that is due. It is taken where the technician is between two visits: at the first such moment
- * at or after `from`; or before, waiting until `from`, when the next visit would end after `to`.
- * No pause begins after `to`, and breaks of one shift do not overlap.
+ * A pause that is due. It is taken before a visit, where the technician then is (at the place of the visit
+ * before, or where the shift begins): at the first such moment at or after `from`; or earlier, waiting
+ * there until `from`, when the next visit would end after `to`. The stop at the shop counts as a visit here;
+ * the way home does not, so after the last visit no pause is taken. A pause that could only begin after
+ * `to` falls away. Breaks come one after the other in the order of `from`; several may be taken at one
+ * place, each as if the one before were done.
  */
 export interface PlanBreak {
   readonly from: number;
@@ -187,7 +193,7 @@ export interface PlanRoute {
 
 export interface PlanHalt {
   readonly kind: 'break' | 'shop';
-  /** The stop before which it is made, counted from 0; the number of stops when it is made after the last. */
+  /** The stop before which it is made, counted from 0. */
   readonly before: number;
   readonly start: number;
   readonly finish: number;
