@@ -32,18 +32,24 @@ export const isInShape = (place: Place, shape: OutageShape): boolean =>
 export function shapeFinder<A extends { readonly shape: OutageShape }>(
   areas: readonly A[],
 ): (place: Place) => A[] {
-  const parts = areas.map(({ shape }) =>
-    shape.map(([outer, ...holes]) => ({
+  const parts = areas.flatMap((area) =>
+    area.shape.map(([outer, ...holes]) => ({
+      area,
       outer: new BandedRing(outer ?? []),
       holes: holes.map((hole) => new BandedRing(hole)),
     })),
   );
-  return (place) =>
-    areas.filter((_, i) =>
-      parts[i]?.some(
-        ({ outer, holes }) => outer.contains(place) && !holes.some((hole) => hole.contains(place)),
-      ),
-    );
+  return (place) => {
+    const x = place[0];
+    const y = place[1];
+    const found: A[] = [];
+    for (const part of parts) {
+      if (!part.outer.contains(x, y) || part.holes.some((hole) => hole.contains(x, y))) continue;
+      // An area may have two parts here when they touch.
+      if (found.at(-1) !== part.area) found.push(part.area);
+    }
+    return found;
+  };
 }
 
 /** Whether two shapes share ground, be it that one lies inside the other. Touching is not enough. */

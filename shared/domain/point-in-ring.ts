@@ -22,55 +22,74 @@ const EDGES_A_BAND = 4;
 
 /** As `isInRing`, for many points and one ring: its edges are sorted into bands of latitude once. */
 export class BandedRing {
-  private readonly bands: number[][] = [];
+  west = Infinity;
+  east = -Infinity;
+  south = Infinity;
+  north = -Infinity;
   /** The two ends of each edge: x, y, x, y. */
   private readonly edges: Float64Array;
-  private readonly south: number;
-  private readonly perBand: number;
-  private west = Infinity;
-  private east = -Infinity;
+  /** Where the edges of each band begin in `inBand`; one more than there are bands. */
+  private readonly bandStart: Int32Array;
+  /** Where the edges of one band after the other lie in `edges`. */
+  private readonly inBand: Int32Array;
+  private readonly bands: number;
+  private readonly bandsPerDegree: number;
 
   constructor(ring: readonly (readonly [number, number])[]) {
-    this.edges = new Float64Array(4 * Math.max(0, ring.length - 1));
-    let [south, north] = [Infinity, -Infinity];
     for (const [x, y] of ring) {
-      this.west = Math.min(this.west, x);
-      this.east = Math.max(this.east, x);
-      south = Math.min(south, y);
-      north = Math.max(north, y);
+      if (x < this.west) this.west = x;
+      if (x > this.east) this.east = x;
+      if (y < this.south) this.south = y;
+      if (y > this.north) this.north = y;
     }
-    this.south = south;
-    const count = Math.max(1, Math.ceil(ring.length / EDGES_A_BAND));
-    this.perBand = (north - south) / count;
-    for (let i = 0; i < count; i++) this.bands.push([]);
+    const count = Math.max(0, ring.length - 1);
+    this.bands = Math.max(1, Math.ceil(ring.length / EDGES_A_BAND));
+    this.bandsPerDegree = this.north > this.south ? this.bands / (this.north - this.south) : 0;
+    this.edges = new Float64Array(4 * count);
+    this.bandStart = new Int32Array(this.bands + 1);
+    const first = new Int32Array(count);
+    const last = new Int32Array(count);
     // In the direction of the ring, as `isInRing` reads it: rounding must fall the same way.
-    for (let i = 1; i < ring.length; i++) {
-      const [a, b] = [ring[i], ring[i - 1]];
-      if (!a || !b) continue;
-      this.edges.set([a[0], a[1], b[0], b[1]], 4 * (i - 1));
-      const last = this.bandOf(Math.max(a[1], b[1]));
-      for (let band = this.bandOf(Math.min(a[1], b[1])); band <= last; band++)
-        this.bands[band]?.push(4 * (i - 1));
+    for (let i = 0; i < count; i++) {
+      const a = ring[i + 1]!;
+      const b = ring[i]!;
+      this.edges[4 * i] = a[0];
+      this.edges[4 * i + 1] = a[1];
+      this.edges[4 * i + 2] = b[0];
+      this.edges[4 * i + 3] = b[1];
+      const low = this.bandOf(a[1] < b[1] ? a[1] : b[1]);
+      const high = this.bandOf(a[1] < b[1] ? b[1] : a[1]);
+      first[i] = low;
+      last[i] = high;
+      for (let band = low; band <= high; band++) this.bandStart[band + 1]!++;
     }
+    for (let band = 0; band < this.bands; band++)
+      this.bandStart[band + 1]! += this.bandStart[band]!;
+    this.inBand = new Int32Array(this.bandStart[this.bands]!);
+    const next = this.bandStart.slice();
+    for (let i = 0; i < count; i++)
+      for (let band = first[i]!; band <= last[i]!; band++) this.inBand[next[band]!++] = 4 * i;
   }
 
-  contains([x, y]: readonly [number, number]): boolean {
-    if (x < this.west || x > this.east || !(y >= this.south)) return false;
-    const { edges } = this;
+  contains(x: number, y: number): boolean {
+    if (!(x >= this.west && x <= this.east && y >= this.south && y <= this.north)) return false;
+    const { edges, inBand } = this;
+    const band = this.bandOf(y);
+    const end = this.bandStart[band + 1]!;
     let inside = false;
-    for (const at of this.bands[this.bandOf(y)] ?? []) {
-      const ay = edges[at + 1] ?? 0;
-      const by = edges[at + 3] ?? 0;
+    for (let i = this.bandStart[band]!; i < end; i++) {
+      const at = inBand[i]!;
+      const ay = edges[at + 1]!;
+      const by = edges[at + 3]!;
       if (ay > y === by > y) continue;
-      const ax = edges[at] ?? 0;
-      const bx = edges[at + 2] ?? 0;
-      if (x < ((bx - ax) * (y - ay)) / (by - ay) + ax) inside = !inside;
+      const ax = edges[at]!;
+      if (x < ((edges[at + 2]! - ax) * (y - ay)) / (by - ay) + ax) inside = !inside;
     }
     return inside;
   }
 
   private bandOf(y: number): number {
-    const band = Math.floor((y - this.south) / this.perBand);
-    return Math.min(this.bands.length - 1, Math.max(0, Number.isFinite(band) ? band : 0));
+    const band = Math.floor((y - this.south) * this.bandsPerDegree);
+    return band < this.bands ? band : this.bands - 1;
   }
 }
