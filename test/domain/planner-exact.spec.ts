@@ -1,6 +1,6 @@
 import { plan } from '@shared/domain/planner/plan';
 import type { PlanJob, PlanProblem } from '@shared/domain/planner/problem';
-import { scorePlan } from '@shared/domain/planner/score-plan';
+import { checkPlan } from '@shared/domain/planner/check-plan';
 import { travelMatrix } from '@shared/domain/travel/travel-times';
 import { exactPlan } from '../support/exact-plan';
 import { randomProblem } from '../support/random-problem';
@@ -89,7 +89,7 @@ describe('plan, against the exact best', () => {
       const problem = randomProblem(options);
       const best = exactPlan(problem);
       const planned = new Set(best.routes.flatMap((route) => route.jobs));
-      const scored = scorePlan(problem, {
+      const scored = checkPlan(problem, {
         routes: best.routes
           .filter((route) => route.jobs.length > 0)
           .map(({ technician, shift, jobs }) => ({
@@ -104,7 +104,7 @@ describe('plan, against the exact best', () => {
       });
       expect(scored.cost).toBeCloseTo(best.cost, 6);
       // No times were claimed above, so those are the only faults that may be found.
-      expect(scored.violations.filter((one) => !/starts at|ends at/.test(one))).toEqual([]);
+      expect(scored.violations.filter((one) => !/ not at /.test(one))).toEqual([]);
     }
   });
 

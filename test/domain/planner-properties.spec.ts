@@ -1,7 +1,7 @@
 import fc from 'fast-check';
 import { plan } from '@shared/domain/planner/plan';
 import type { Plan, PlanProblem } from '@shared/domain/planner/problem';
-import { scorePlan } from '@shared/domain/planner/score-plan';
+import { checkPlan } from '@shared/domain/planner/check-plan';
 import { randomProblem } from '../support/random-problem';
 
 const problems = fc
@@ -19,7 +19,7 @@ const stopsOf = (result: Pick<Plan, 'routes'>): string[] =>
 
 /** What can be said of any plan, whatever its problem. */
 function expectSound(problem: PlanProblem, result: Plan): void {
-  const score = scorePlan(problem, result);
+  const score = checkPlan(problem, result);
   expect(score.violations).toEqual([]);
   expect(Math.abs(score.cost - result.cost)).toBeLessThan(0.005);
 
@@ -52,7 +52,7 @@ function expectSound(problem: PlanProblem, result: Plan): void {
 }
 
 describe('plan', () => {
-  it('keeps every rule, and agrees with the independent scorer to the cent', () => {
+  it('keeps every rule, and agrees with the independent checker to the cent', () => {
     fc.assert(
       fc.property(
         problems,
@@ -83,7 +83,7 @@ describe('plan', () => {
         const again = { ...problem, previous };
         const result = plan(again, { iterations, seed: 2 });
         expectSound(again, result);
-        expect(result.cost).toBeLessThanOrEqual(scorePlan(again, previous).cost + 0.005);
+        expect(result.cost).toBeLessThanOrEqual(checkPlan(again, previous).cost + 0.005);
       }),
       { numRuns: 60 },
     );

@@ -2,7 +2,7 @@ import { MalformedProblem } from '@shared/domain/planner/compiled-problem';
 import { plan } from '@shared/domain/planner/plan';
 import { movesBetween, stopReasons, summarisePlan } from '@shared/domain/planner/plan-summary';
 import type { PlanJob, PlanProblem, PlanTechnician } from '@shared/domain/planner/problem';
-import { scorePlan } from '@shared/domain/planner/score-plan';
+import { checkPlan } from '@shared/domain/planner/check-plan';
 
 const HOUR = 3600;
 
@@ -66,7 +66,7 @@ describe('the price of a plan', () => {
       ],
       [aTechnician('t', { shifts: [{ start: 0, end: 2.5 * HOUR }] })],
     );
-    const score = scorePlan(problem, {
+    const score = checkPlan(problem, {
       routes: [
         {
           technician: 't',
@@ -92,7 +92,7 @@ describe('the price of a plan', () => {
   });
 });
 
-describe('the scorer refuses', () => {
+describe('the checker refuses', () => {
   const problem = aProblem(
     [aJob('a'), aJob('b', { skills: ['electrical'], part: 'start-relay' }), aJob('c', { loc: 2 })],
     [aTechnician('t', { frozen: ['a'] }), aTechnician('u', { skills: ['electrical'] })],
@@ -144,19 +144,19 @@ describe('the scorer refuses', () => {
     ['a job that nobody asked for', [good], left('b', 'c', 'x'), 'Unknown job x'],
     ['a shift that is not there', [good, { ...good, shift: 1 }], left('b', 'c'), 'No shift 1'],
   ])('%s', (_, routes, unassigned, words) => {
-    expect(scorePlan(problem, { routes, unassigned }).violations.join(' ')).toContain(words);
+    expect(checkPlan(problem, { routes, unassigned }).violations.join(' ')).toContain(words);
   });
 
   it('overtime past the limit', () => {
     const long = aProblem([aJob('a', { service: 9 * HOUR })], [aTechnician('t')]);
     const route = { ...good, stops: [{ ...stop('a', 900), finish: 33300 }], end: 34200 };
-    expect(scorePlan(long, { routes: [route], unassigned: [] }).violations.join()).toContain(
+    expect(checkPlan(long, { routes: [route], unassigned: [] }).violations.join()).toContain(
       'overtime',
     );
   });
 
   it('nothing in a sound plan', () => {
-    expect(scorePlan(problem, planned(problem)).violations).toEqual([]);
+    expect(checkPlan(problem, planned(problem)).violations).toEqual([]);
   });
 });
 
@@ -214,7 +214,7 @@ describe('accepted stops', () => {
     );
     const result = planned(problem);
     expect(result.routes[0]?.stops.map(({ job }) => job)).toEqual(['long']);
-    expect(scorePlan(problem, result).violations).toEqual([]);
+    expect(checkPlan(problem, result).violations).toEqual([]);
   });
 });
 

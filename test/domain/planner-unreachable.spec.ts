@@ -5,7 +5,7 @@ import {
   type PlanProblem,
   type PlanTechnician,
 } from '@shared/domain/planner/problem';
-import { scorePlan } from '@shared/domain/planner/score-plan';
+import { checkPlan } from '@shared/domain/planner/check-plan';
 import { doorToDoor, roadTravel } from '@shared/domain/travel/road-travel';
 
 const NO = NO_WAY_SECONDS;
@@ -40,7 +40,7 @@ function solve(matrix: number[][], jobs: PlanJob[], technicians: PlanTechnician[
     technicians,
   };
   const result = plan(problem, { iterations: 300, seed: 1 });
-  expect(scorePlan(problem, result).violations).toEqual([]);
+  expect(checkPlan(problem, result).violations).toEqual([]);
   return {
     planned: result.routes.flatMap(({ stops }) => stops.map((stop) => stop.job)).sort(),
     left: Object.fromEntries(result.unassigned.map(({ job: id, reason }) => [id, reason])),

@@ -2,7 +2,7 @@ import { existsSync, readdirSync, readFileSync } from 'node:fs';
 import path from 'node:path';
 import { plan } from '@shared/domain/planner/plan';
 import type { PlanProblem } from '@shared/domain/planner/problem';
-import { scorePlan } from '@shared/domain/planner/score-plan';
+import { checkPlan } from '@shared/domain/planner/check-plan';
 
 /**
  * Best known distances of Solomon's instances (M. M. Solomon, Operations Research 35(2), 1987) for the
@@ -82,7 +82,7 @@ describe('plan, on published routing instances', () => {
     (file) => {
       const problem = read(file);
       const result = plan(problem, { iterations: 8000, seed: 1 });
-      const score = scorePlan(problem, result);
+      const score = checkPlan(problem, result);
       expect(score.violations).toEqual([]);
       expect(result.unassigned).toEqual([]);
       expect(score.lateness).toBe(0);

@@ -4,7 +4,7 @@ import path from 'node:path';
 import { booleanPointInPolygon, kinks, polygon } from '@turf/turf';
 import { build, stop } from 'esbuild';
 import { plan } from '@shared/domain/planner/plan';
-import { scorePlan } from '@shared/domain/planner/score-plan';
+import { checkPlan } from '@shared/domain/planner/check-plan';
 import { SeededRandom } from '@shared/domain/planner/random';
 import type { PocketCall } from '@shared/domain/pockets/pocket-summary';
 import type { LonLat } from '@shared/domain/travel/great-circle';
@@ -211,7 +211,7 @@ describe('the planner worker', () => {
     };
     const answer = await planner().run({ ...request, iterations: 300 });
     expect(answer.plan).toEqual(plan(problem, { iterations: 300, seed: 1 }));
-    expect(scorePlan(problem, answer.plan).violations).toEqual([]);
+    expect(checkPlan(problem, answer.plan).violations).toEqual([]);
     const stops = answer.plan.routes.flatMap((route) => route.stops);
     expect(answer.summary.stopCount).toBe(stops.length);
     expect(answer.summary.driveMiles).toBeGreaterThan(0);
