@@ -6,6 +6,7 @@ import { MINUTE_MS, type Instant } from '@shared/domain/instant';
 import { conditionsAt, conditionsKey, type RoadConditions } from '@shared/domain/roads/conditions';
 import { drive } from '@shared/domain/route-rules';
 import { forTheGraph } from '@shared/domain/storm-roads';
+import { writeRemark } from '../calls/change-call';
 import { machine } from '../commands/actor';
 import { runCommand, type Job } from '../commands/run-command';
 import type { Context } from '../context';
@@ -151,8 +152,12 @@ async function moveArrival(job: Job, routes: Routes, technicianId: string): Prom
   const arrival = arrivalOf(job, routes, stop);
   if (arrival === null) return;
   const isUnreachable = !Number.isFinite(arrival);
-  if ((stop.unreachable ?? false) !== isUnreachable) stop.unreachable = isUnreachable;
-  if (isUnreachable) return;
+  const isNews = (stop.unreachable ?? false) !== isUnreachable;
+  if (isNews) stop.unreachable = isUnreachable;
+  if (isUnreachable) {
+    if (isNews) await remarkCutOff(job, call.id, technicianOf(routes, technicianId).name);
+    return;
+  }
   const laterBy = arrival - (stop.etaAt ?? stop.arriveAt).getTime();
   if (Math.abs(laterBy) < MINUTE_MS) return;
   const { travelAt } = stop;
@@ -162,6 +167,16 @@ async function moveArrival(job: Job, routes: Routes, technicianId: string): Prom
   }
   setEta(stop, arrival);
   await tellEtaIfMoved(job, call, stop);
+}
+
+/** The arrival that the customer was told cannot be kept, and no other can be told: people have to talk. */
+async function remarkCutOff(job: Job, callId: string, technician: string): Promise<void> {
+  await writeRemark(
+    job,
+    callId,
+    `No open road leads there any more, and ${technician} is on the way. The arrival that was told cannot be kept: ring the customer.`,
+  );
+  job.touched.call(callId);
 }
 
 /** Infinity where no open road leads there; `null` where nobody knows from where to count. */

@@ -252,6 +252,27 @@ describe('an island without a bridge', () => {
   });
 });
 
+describe('a drive that is cut off on its way', () => {
+  it('says that its arrival cannot be kept, once, on the stop and to the desk', async () => {
+    await follow();
+    const technician = await aTechnician(server, 'Juno Marsh');
+    const stop = await driving(
+      technician,
+      await aStop(server, mara, technician.technicianId, ON_ISLAND),
+    );
+    await seenAt(technician, -47.69);
+    await close('south');
+    await close('north');
+    await follow();
+    await follow();
+    expect((await stopNow(stop.id)).unreachable).toBe(true);
+    const { remarks } = await readCall(stop.callId);
+    expect(remarks.map(({ text }) => text)).toEqual([
+      'No open road leads there any more, and Juno Marsh is on the way. The arrival that was told cannot be kept: ring the customer.',
+    ]);
+  });
+});
+
 describe('a closure with a span', () => {
   it('begins and ends by the clock, with nobody at the desk', async () => {
     const technician = await aTechnician(server, 'Juno Marsh');

@@ -57,6 +57,7 @@ export class AmendForm {
     computation: (detail, previous) => previous?.value ?? (detail ? startFrom(detail) : null),
   });
   protected readonly error = signal('');
+  protected readonly isSaving = signal(false);
 
   protected readonly findings = FINDINGS;
   protected readonly unitKinds = UNIT_KINDS.map((kind) => ({ kind, name: UNIT_WORDS[kind] }));
@@ -139,13 +140,31 @@ export class AmendForm {
     return kind === 'freezer';
   }
 
+  /** Enter counts whenever it comes: what is on its way to the server goes first, and nothing is lost. */
   protected async save(): Promise<void> {
-    const edited = this.edited();
-    if (!edited) return;
+    if (this.isSaving()) return;
+    this.isSaving.set(true);
+    try {
+      const callId = this.call.row()?.id;
+      await this.call.whenIdle();
+      if (this.call.row()?.id !== callId) return;
+      // What is typed while it is being saved is saved after it.
+      let saved: Edited | null = null;
+      while (saved !== this.edited()) {
+        saved = this.edited();
+        if (!saved || !(await this.saveNow(saved))) return;
+      }
+      this.closed.emit();
+    } finally {
+      this.isSaving.set(false);
+    }
+  }
+
+  private async saveNow(edited: Edited): Promise<boolean> {
     const problem = problemIn(edited);
     this.error.set(problem);
-    if (problem !== '' || edited.outAt === null) return;
-    const isSaved = await this.call.amend({
+    if (problem !== '' || edited.outAt === null) return false;
+    return this.call.amend({
       name: edited.name.trim(),
       address: { ...edited.address, text: edited.address.text.trim() },
       mayText: edited.mayText,
@@ -159,7 +178,6 @@ export class AmendForm {
           }
         : {}),
     });
-    if (isSaved) this.closed.emit();
   }
 
   private meaning(at: Instant | null): { readonly at: string; readonly words: string } {

@@ -58,19 +58,26 @@ export class NextStop {
 
   /** The large line: when, in the sense of the state. */
   protected readonly when = computed(() => {
-    const { state, arriveAt, etaAt } = this.card().stop;
+    const { state, arriveAt, etaAt, isUnreachable } = this.card().stop;
     const at = etaAt ?? arriveAt;
     const clock = whenWords(at, this.now(), this.zone.name());
     if (state === 'on-site') return `Arrived ${clock}`;
+    // The time of before would read like a promise.
+    if (isUnreachable) return 'Nobody knows when';
     if (state === 'travelling') return `Arrive ${clock}, ${fromNowWords(at, this.now())}`;
     return `About ${clock}`;
   });
   protected readonly drive = computed(() => {
-    const { state, driveMinutes } = this.card().stop;
+    const { state, driveMinutes, etaAt, arriveAt, isUnreachable } = this.card().stop;
+    if (isUnreachable && state !== 'on-site') {
+      return `It was ${whenWords(etaAt ?? arriveAt, this.now(), this.zone.name())} while a road led there.`;
+    }
     return state === 'on-site' ? '' : `${Math.max(1, Math.round(driveMinutes))} min of driving`;
   });
   protected readonly verdict = computed(() => {
-    const { arriveAt, etaAt, finishAt } = this.card().stop;
+    const { arriveAt, etaAt, finishAt, state, isUnreachable } = this.card().stop;
+    if (isUnreachable && state !== 'on-site')
+      return 'No road leads there now: nothing is saved yet';
     const end = Math.max(finishAt + ((etaAt ?? arriveAt) - arriveAt), arriveAt);
     return verdictWords(saveVerdict(valuedFactsOf(this.card()), end, this.now()));
   });

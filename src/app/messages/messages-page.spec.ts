@@ -236,6 +236,33 @@ describe('MessagesPage', () => {
     expect(second?.args.body).toEqual(first?.args.body);
   });
 
+  it('takes Enter while a text is on its way: what was written by then goes after it, once', async () => {
+    await show();
+    await click(rows()[2]!);
+    const write = (text: string): void => {
+      const box = host().querySelector('textarea')!;
+      box.value = text;
+      box.dispatchEvent(new Event('input'));
+    };
+    // Pressed in one breath: nothing of the first has been answered yet.
+    const enter = (): void => {
+      const button = host().querySelector<HTMLButtonElement>('thaw-reply-box [type=submit]')!;
+      if (!button.disabled) host().querySelector('form')!.requestSubmit();
+    };
+    write('On our way');
+    await settle();
+    enter();
+    enter();
+    write('Keep it shut');
+    enter();
+    await settle();
+    await settle();
+    expect(
+      server.named('sendMessage').map(({ args }) => (args.body as { body: string }).body),
+    ).toEqual(['On our way', 'Keep it shut']);
+    expect(host().querySelector('textarea')!.value).toBe('');
+  });
+
   it('says that a phone has opted out instead of offering a reply', async () => {
     server.optedOut = true;
     await show();

@@ -68,13 +68,15 @@ export class ReplyBox {
   protected readonly most = MOST_CHARACTERS;
   protected readonly text = signal('');
   private readonly isSending = signal(false);
+  /** What stood in the box when Enter was pressed last: it goes after the text that is on its way. */
+  private next: string | null = null;
 
   private readonly cost = computed(() => textCost(this.text()));
   protected readonly length = computed(() => lengthWords(this.cost()));
   protected readonly dear = computed(() => dearWords(this.cost()));
   protected readonly room = computed(() => MOST_CHARACTERS - this.text().length);
   protected readonly maySend = computed(
-    () => this.cost().characters > 0 && !this.isSending() && this.model.replyCallId() !== null,
+    () => this.cost().characters > 0 && this.model.replyCallId() !== null,
   );
 
   constructor() {
@@ -97,16 +99,29 @@ export class ReplyBox {
   protected async send(): Promise<void> {
     if (!this.maySend()) return;
     const phone = this.phone();
-    const written = this.text();
+    this.next = this.text();
+    if (this.isSending()) return;
     this.isSending.set(true);
     try {
-      if (!(await this.model.send(written.trim()))) return;
-      this.drafts.clear(keyOf(phone));
-      if (this.phone() === phone && this.text() === written) this.text.set('');
-      this.announce.say('The text is on its way out.');
+      let sent: string | null = null;
+      // The same words again are the same press of a key.
+      while (this.next !== null && this.next !== sent && this.phone() === phone) {
+        sent = this.next;
+        this.next = null;
+        if (!(await this.sendNow(phone, sent))) return;
+      }
     } finally {
+      this.next = null;
       this.isSending.set(false);
     }
+  }
+
+  private async sendNow(phone: string, written: string): Promise<boolean> {
+    if (!(await this.model.send(written.trim()))) return false;
+    if (this.phone() !== phone || this.text() === written) this.drafts.clear(keyOf(phone));
+    if (this.phone() === phone && this.text() === written) this.text.set('');
+    this.announce.say('The text is on its way out.');
+    return true;
   }
 }
 

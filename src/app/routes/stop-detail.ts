@@ -33,8 +33,7 @@ import { isFirmStop, isUnderWay, STOP_STATE_WORDS } from './stop-words';
         }
         @if (one.stop.isUnreachable) {
           <span class="danger">
-            <mat-icon svgIcon="warning" aria-hidden="true" /> No open road; these times cannot be
-            kept
+            <mat-icon svgIcon="warning" aria-hidden="true" /> No open road
           </span>
         }
         <span class="name">{{ one.call?.name }}, {{ one.call?.address?.text }}</span>
@@ -102,6 +101,11 @@ export class StopDetail {
     const { arriveAt, finishAt, driveMinutes, stop } = this.view();
     const zone = this.zone.name();
     const drive = `${Math.round(driveMinutes)} min of driving`;
+    if (stop.isUnreachable && stop.state !== 'on-site') {
+      const was = whenWords(arriveAt, this.now(), zone);
+      const told = stop.state === 'travelling' ? ' Ring the customer and the technician.' : '';
+      return `No open road leads there: the arrival (${was} before) cannot be kept.${told}`;
+    }
     const arrival = stop.state === 'on-site' ? 'Arrived' : 'Arrives';
     return `${drive}. ${arrival} ${whenWords(arriveAt, this.now(), zone)}, done ${clockTime(finishAt, zone)}.`;
   });
