@@ -10,6 +10,7 @@ const ENTRIES = [
   'server/workers/pockets-worker.ts',
   'server/workers/roads-worker.ts',
   'server/night-log/import-worker.ts',
+  'server/plan-program/plan-cli.ts',
   'server/region/region-cli.ts',
   'server/region/import-program.ts',
   'server/db/migrate-cli.ts',

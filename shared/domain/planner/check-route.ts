@@ -58,6 +58,8 @@ class RouteCheck {
   private readonly frozen: readonly string[];
   /** Pauses still to be taken, the earliest first. */
   private readonly due: PlanBreak[];
+  /** What the route has halted for so far. */
+  private readonly halts: PlanHalt[] = [];
   private clock: number;
   private here: number;
   private hasFetched = false;
@@ -72,77 +74,58 @@ class RouteCheck {
     this.frozen = route.shift === 0 ? person.frozen : [];
     this.clock = Math.max(context.problem.now, person.availableAt, shift.start);
     this.here = shift.from ?? (route.shift === 0 ? person.at : person.home);
-    // No pause begins after its `to`: one that is over when the route begins is not due any more.
-    this.due = [...(shift.breaks ?? [])]
-      .sort((one, other) => one.from - other.from)
-      .filter(({ to }) => to >= this.clock);
+    this.due = [...(shift.breaks ?? [])].sort((one, other) => one.from - other.from);
   }
 
   run(): CheckedRoute {
     const { route, context } = this;
-    const lacking = context.stock.lacking(route, this.person, context.jobs);
-    const halts = route.halts ?? [];
     if (route.stops.length === 0) {
-      if (halts.length > 0) context.refuse(`${this.label} halts without a stop.`);
+      if (route.halts?.length) context.refuse(`${this.label} halts without a stop.`);
       return this.price;
     }
-    this.checkHaltOrder(halts);
+    const lacking = context.stock.lacking(route, this.person, context.jobs);
+    const shops = (route.halts ?? []).filter(({ kind }) => kind === 'shop');
     route.stops.forEach((stop, position) => {
-      this.makeHalts(halts, position, lacking);
+      for (const halt of shops) if (halt.before === position) this.fetch(halt, lacking);
       this.makeStop(stop, position);
     });
-    this.makeHalts(halts, route.stops.length, lacking);
-    if (lacking.size > 0 && !this.hasFetched && context.problem.shop) {
+    if (lacking.size > 0 && shops.length === 0 && context.problem.shop) {
       context.refuse(`${this.label} does not fetch ${[...lacking.keys()].join(', ')}.`);
     }
+    this.compareHalts();
     this.goHome();
     return this.price;
   }
 
-  private makeHalts(
-    halts: readonly PlanHalt[],
-    position: number,
-    lacking: ReadonlyMap<string, number>,
-  ): void {
-    for (const halt of halts) {
-      if (halt.before !== position) continue;
-      if (halt.kind === 'shop') this.fetch(halt, lacking);
-      else this.takeBreak(halt, position);
-    }
-    const missed = this.due[0];
-    if (missed && this.isDue(missed, position)) {
-      this.context.refuse(`${this.label} misses the break of ${missed.from}.`);
+  /** Takes the pauses that are due before a visit, or before the stop at the shop. */
+  private takeBreaks(before: number, endOfVisit: () => number): void {
+    for (let pause = this.due[0]; pause; pause = this.due[0]) {
+      if (this.clock > pause.to) {
+        // It could only begin too late: it falls away.
+        this.due.shift();
+        continue;
+      }
+      if (this.clock < pause.from && endOfVisit() <= pause.to) return;
       this.due.shift();
+      const start = Math.max(this.clock, pause.from);
+      this.clock = start + pause.seconds;
+      this.halts.push({ kind: 'break', before, start, finish: this.clock });
     }
   }
 
-  private takeBreak(halt: PlanHalt, position: number): void {
-    const pause = this.due[0];
-    if (!pause) {
-      this.context.refuse(`${this.label} takes a break that is not due.`);
+  private compareHalts(): void {
+    const claimed = this.route.halts ?? [];
+    const words = ({ kind, before }: PlanHalt): string => `${kind} before stop ${before}`;
+    const due = this.halts.map(words).join(', ');
+    if (claimed.map(words).join(', ') !== due) {
+      this.context.refuse(`${this.label} has to halt thus: ${due || 'not at all'}.`);
       return;
     }
-    if (position < this.route.stops.length && !this.isDue(pause, position)) {
-      this.context.refuse(`${this.label} takes the break of ${pause.from} too early.`);
-    }
-    this.due.shift();
-    const start = Math.max(this.clock, pause.from);
-    if (start > pause.to) {
-      this.context.refuse(`${this.label} begins the break of ${pause.from} at ${start}.`);
-    }
-    this.clock = start + pause.seconds;
-    this.compare(`The break of ${this.label} starts`, start, halt.start);
-    this.compare(`The break of ${this.label} ends`, this.clock, halt.finish);
-  }
-
-  /** Whether a pause has to be taken now: its time has come, or the next visit would go on past it. */
-  private isDue(pause: PlanBreak, position: number): boolean {
-    if (position >= this.route.stops.length) return false;
-    if (this.clock >= pause.from) return true;
-    const job = this.context.jobs.get(this.route.stops[position]!.job);
-    if (!job) return false;
-    const begin = beginning(job, this.clock + this.drive(job.loc));
-    return begin + this.serviceOf(job) > pause.to;
+    claimed.forEach((halt, index) => {
+      const found = this.halts[index]!;
+      this.compare(`The ${halt.kind} of ${this.label} starts`, found.start, halt.start);
+      this.compare(`The ${halt.kind} of ${this.label} ends`, found.finish, halt.finish);
+    });
   }
 
   private fetch(halt: PlanHalt, lacking: ReadonlyMap<string, number>): void {
@@ -164,10 +147,12 @@ class RouteCheck {
         );
       }
     }
-    this.travelTo(problem.shop.loc);
-    this.compare(`The stop at the shop of ${this.label} starts`, this.clock, halt.start);
-    this.clock += problem.shop.seconds;
-    this.compare(`The stop at the shop of ${this.label} ends`, this.clock, halt.finish);
+    const { loc, seconds } = problem.shop;
+    this.takeBreaks(halt.before, () => this.clock + this.drive(loc) + seconds);
+    this.travelTo(loc);
+    const start = this.clock;
+    this.clock += seconds;
+    this.halts.push({ ...halt, start, finish: this.clock });
   }
 
   private makeStop(stop: PlanStop, position: number): void {
@@ -185,6 +170,9 @@ class RouteCheck {
     if (!isEquipped && !isFrozen)
       refuse(`${this.person.id} has no ${job.part} left for ${job.id}.`);
 
+    this.takeBreaks(position, () => {
+      return beginning(job, this.clock + this.drive(job.loc)) + this.serviceOf(job);
+    });
     this.travelTo(job.loc);
     this.compare(`${job.id} is reached`, this.clock, stop.arrive);
     const begin = beginning(job, this.clock);
@@ -207,15 +195,6 @@ class RouteCheck {
     if (over > weights.maxOvertime && this.route.stops.length > this.frozen.length) {
       refuse(`${this.label} runs ${over} s into overtime.`);
     }
-  }
-
-  private checkHaltOrder(halts: readonly PlanHalt[]): void {
-    halts.forEach(({ before }, index) => {
-      const earlier = halts[index - 1]?.before ?? 0;
-      if (!(before >= earlier && before <= this.route.stops.length)) {
-        this.context.refuse(`Halt ${index} of ${this.label} is out of order.`);
-      }
-    });
   }
 
   private checkRights(job: PlanJob): void {
