@@ -1,21 +1,33 @@
 import {
   DEFAULT_WEIGHTS,
-  type PlanJob,
   type PlanProblem,
   type PlanTechnician,
   type PlanWeights,
 } from '@shared/domain/planner/problem';
+import { bestOrders, type Order } from './exact-orders';
 
 /** The cheapest plan of a small problem: its price and, for each shift, the order of its jobs. */
 export interface ExactPlan {
   readonly cost: number;
-  readonly routes: readonly { technician: string; shift: number; jobs: readonly string[] }[];
+  readonly routes: readonly ExactRoute[];
 }
 
-interface Best {
-  readonly cost: number;
-  readonly orders: readonly (readonly number[])[];
+export interface ExactRoute {
+  readonly technician: string;
+  readonly shift: number;
+  readonly jobs: readonly string[];
+  /** The job before which the shop is visited, counted from 0; null when it is not. */
+  readonly shopBefore: number | null;
 }
+
+/** What some technicians do with a set of jobs: for each of their shifts an order. */
+export interface Share {
+  readonly cost: number;
+  readonly orders: readonly Order[];
+}
+
+/** Shares by set of jobs (one bit a job). */
+export type Shares = ReadonlyMap<number, Share>;
 
 /**
  * Tries every order of every set of jobs on every shift, then shares the sets out among shifts and
@@ -24,27 +36,43 @@ interface Best {
  */
 export function exactPlan(problem: PlanProblem): ExactPlan {
   const weights = { ...DEFAULT_WEIGHTS, ...problem.weights };
-  const full = (1 << problem.jobs.length) - 1;
-  let shared: (Best | undefined)[] = [{ cost: 0, orders: [] }];
+  // By set of jobs and by what they take from a shop that has an end.
+  let shared = new Map<string, { mask: number; taken: readonly number[]; share: Share }>([
+    ['0|', { mask: 0, taken: [], share: { cost: 0, orders: [] } }],
+  ]);
+  const limited = Object.keys(problem.shop?.parts ?? {});
   for (const technician of problem.technicians) {
-    let own: (Best | undefined)[] = [{ cost: 0, orders: [] }];
-    technician.shifts.forEach((_, shift) => {
-      own = combined(own, bestOrders(problem, weights, technician, shift), full);
-    });
-    own = own.map((best, mask) => (keepsStock(problem, technician, mask) ? best : undefined));
-    shared = combined(shared, own, full);
+    const next: typeof shared = new Map();
+    const own = [...technicianShares(problem, technician)].map(([mask, share]) => ({
+      mask,
+      share,
+      lack: limited.map((part) => partsTaken(problem, technician, mask, part)),
+    }));
+    for (const before of shared.values()) {
+      for (const { mask, share, lack } of own) {
+        if (mask & before.mask) continue;
+        const taken = lack.map((count, index) => count + (before.taken[index] ?? 0));
+        if (taken.some((count, i) => count > problem.shop!.parts![limited[i]!]!)) continue;
+        const key = `${before.mask | mask}|${taken.join()}`;
+        const cost = before.share.cost + share.cost;
+        if (cost >= (next.get(key)?.share.cost ?? Infinity)) continue;
+        next.set(key, {
+          mask: before.mask | mask,
+          taken,
+          share: { cost, orders: [...before.share.orders, ...share.orders] },
+        });
+      }
+    }
+    shared = next;
   }
 
   let cost = Infinity;
-  let winner: Best | undefined;
-  for (let mask = 0; mask <= full; mask++) {
-    const best = shared[mask];
-    if (!best) continue;
-    const left = problem.jobs.filter((_, job) => !(mask & (1 << job)));
-    const total = left.reduce((sum, job) => sum + absent(problem, weights, job), best.cost);
+  let winner: Share | undefined;
+  for (const { mask, share } of shared.values()) {
+    const total = share.cost + absentCost(problem, weights, mask);
     if (total < cost) {
       cost = total;
-      winner = best;
+      winner = share;
     }
   }
   const shifts = problem.technicians.flatMap(({ id, shifts: own }) =>
@@ -54,139 +82,76 @@ export function exactPlan(problem: PlanProblem): ExactPlan {
     cost,
     routes: shifts.map((shift, index) => ({
       ...shift,
-      jobs: (winner?.orders[index] ?? []).map((job) => problem.jobs[job]!.id),
+      jobs: (winner?.orders[index]?.jobs ?? []).map((job) => problem.jobs[job]!.id),
+      shopBefore: winner?.orders[index]?.shopBefore ?? null,
     })),
   };
 }
 
-/** For every set of jobs the cheapest way to split it between two. */
-function combined(
-  one: readonly (Best | undefined)[],
-  other: readonly (Best | undefined)[],
-  full: number,
-): (Best | undefined)[] {
-  const result: (Best | undefined)[] = [];
-  for (let mask = 0; mask <= full; mask++) {
-    for (let part = mask; ; part = (part - 1) & mask) {
-      const a = one[mask ^ part];
-      const b = other[part];
-      if (a && b && a.cost + b.cost < (result[mask]?.cost ?? Infinity)) {
-        result[mask] = { cost: a.cost + b.cost, orders: [...a.orders, ...b.orders] };
-      }
-      if (part === 0) break;
-    }
-  }
-  return result;
-}
-
-function bestOrders(
-  problem: PlanProblem,
-  weights: PlanWeights,
-  technician: PlanTechnician,
-  shiftIndex: number,
-): (Best | undefined)[] {
-  const shift = technician.shifts[shiftIndex]!;
-  const home = shift.to ?? technician.home;
-  const frozen = shiftIndex > 0 ? [] : technician.frozen;
-  const opening = frozen.map((id) => problem.jobs.findIndex((job) => job.id === id));
-  const best: (Best | undefined)[] = [];
-  if (opening.length === 0) best[0] = { cost: 0, orders: [[]] };
-
-  const visit = (
-    order: number[],
-    mask: number,
-    place: number,
-    time: number,
-    cost: number,
-  ): void => {
-    if (order.length >= opening.length && order.length > 0) {
-      const drive = travel(problem, place, home);
-      const over = Math.max(0, time + drive - shift.end);
-      if (over <= weights.maxOvertime || order.length === opening.length) {
-        const total =
-          cost + (drive / 3600) * weights.travelPerHour + (over / 3600) * weights.overtimePerHour;
-        if (total < (best[mask]?.cost ?? Infinity))
-          best[mask] = { cost: total, orders: [[...order]] };
+/** The cheapest way for one technician to serve each set of jobs, all shifts together. */
+export function technicianShares(problem: PlanProblem, technician: PlanTechnician): Shares {
+  const weights = { ...DEFAULT_WEIGHTS, ...problem.weights };
+  let shares: Shares = new Map([[0, { cost: 0, orders: [] }]]);
+  technician.shifts.forEach((_, shift) => {
+    const next = new Map<number, Share>();
+    const byVan = new Map<string, ReadonlyMap<number, Order>>();
+    for (const [mask, share] of shares) {
+      const van = vanAfter(problem, technician, mask);
+      const key = JSON.stringify([...van]);
+      const orders = byVan.get(key) ?? bestOrders(problem, weights, technician, shift, van);
+      byVan.set(key, orders);
+      for (const [part, order] of orders) {
+        const cost = share.cost + order.cost;
+        if (part & mask || cost >= (next.get(mask | part)?.cost ?? Infinity)) continue;
+        next.set(mask | part, { cost, orders: [...share.orders, order] });
       }
     }
-    problem.jobs.forEach((job, index) => {
-      if (mask & (1 << index)) return;
-      if (order.length < opening.length && opening[order.length] !== index) return;
-      if (order.length >= opening.length && !mayGo(job, technician)) return;
-      const drive = travel(problem, place, job.loc);
-      const start = startOf(job, time + drive);
-      const added =
-        (drive / 3600) * weights.travelPerHour +
-        visitCost(problem, weights, job, start, technician);
-      order.push(index);
-      visit(order, mask | (1 << index), job.loc, start + job.service, cost + added);
-      order.pop();
-    });
-  };
-  const from = shift.from ?? (shiftIndex === 0 ? technician.at : technician.home);
-  visit([], 0, from, Math.max(shift.start, technician.availableAt, problem.now), 0);
-  return best;
-}
-
-function mayGo(job: PlanJob, technician: PlanTechnician): boolean {
-  return (
-    job.skills.every((skill) => technician.skills.includes(skill)) &&
-    (job.onlyTechnicians?.includes(technician.id) ?? true)
-  );
-}
-
-/** Accepted stops may overdraw the van; nothing else may. */
-function keepsStock(problem: PlanProblem, technician: PlanTechnician, mask: number): boolean {
-  const taken = new Map<string, { all: number; free: number }>();
-  problem.jobs.forEach((job, index) => {
-    if (!(mask & (1 << index)) || job.part === undefined) return;
-    const count = taken.get(job.part) ?? { all: 0, free: 0 };
-    count.all++;
-    if (!technician.frozen.includes(job.id)) count.free++;
-    taken.set(job.part, count);
+    shares = next;
   });
-  return [...taken].every(
-    ([part, { all, free }]) => free === 0 || all <= (technician.parts[part] ?? 0),
-  );
+  return shares;
 }
 
-function startOf(job: PlanJob, arrival: number): number {
-  const ready = Math.max(arrival, job.earliest ?? -Infinity);
-  for (const [from, to] of [...(job.windows ?? [])].sort((a, b) => a[0] - b[0])) {
-    if (to >= ready) return Math.max(from, ready);
-  }
-  return ready;
-}
-
-function visitCost(
-  problem: PlanProblem,
-  weights: PlanWeights,
-  job: PlanJob,
-  start: number,
-  technician: PlanTechnician,
-): number {
-  let cost = ((start - job.calledAt) / 3600) * weights.waitPerHour * job.weight;
-  for (const deadline of job.deadlines ?? []) cost += start > deadline.at ? deadline.value : 0;
-  const lastEnd = Math.max(...(job.windows ?? []).map((window) => window[1]));
-  if (job.windows?.length && start > lastEnd) {
-    cost += weights.lateFixed + ((start - lastEnd) / 3600) * weights.latePerHour;
-  }
-  for (const route of problem.previous?.routes ?? []) {
-    const isPromised = route.stops.some(
-      (stop) => stop.job === job.id && stop.start < problem.now + weights.churnHorizon,
-    );
-    if (isPromised && route.technician !== technician.id) cost += weights.churnReassign;
-  }
-  return cost;
-}
-
-function absent(problem: PlanProblem, weights: PlanWeights, job: PlanJob): number {
+/** Price of leaving out all jobs that are not in a set. */
+export function absentCost(problem: PlanProblem, weights: PlanWeights, mask: number): number {
   const ends = problem.technicians.flatMap(({ shifts }) => shifts.map(({ end }) => end));
-  const hours = (Math.max(problem.now, ...ends) - job.calledAt) / 3600;
-  const values = (job.deadlines ?? []).reduce((sum, { value }) => sum + value, 0);
-  return values + job.weight * (weights.unservedBase + hours * weights.waitPerHour);
+  const horizon = Math.max(problem.now, ...ends);
+  return problem.jobs.reduce((total, job, index) => {
+    if (mask & (1 << index)) return total;
+    const values = (job.deadlines ?? []).reduce((sum, { value }) => sum + value, 0);
+    const hours = (horizon - job.calledAt) / 3600;
+    return total + values + job.weight * (weights.unservedBase + hours * weights.waitPerHour);
+  }, 0);
 }
 
-function travel(problem: PlanProblem, from: number, to: number): number {
-  return (problem.matrix as ArrayLike<number>)[from * problem.locations + to]!;
+/** What is on the van when a set of jobs has been served; accepted ones take theirs first. */
+function vanAfter(
+  { jobs }: PlanProblem,
+  technician: PlanTechnician,
+  mask: number,
+): ReadonlyMap<string, number> {
+  const van = new Map(Object.entries(technician.parts));
+  const use = (part: string | undefined): void => {
+    if (part !== undefined) van.set(part, Math.max(0, (van.get(part) ?? 0) - 1));
+  };
+  for (const id of technician.frozen) use(jobs.find((job) => job.id === id)!.part);
+  jobs.forEach((job, index) => {
+    if (mask & (1 << index) && !technician.frozen.includes(job.id)) use(job.part);
+  });
+  return van;
+}
+
+/** How many of a part the shop gives for a set of jobs. */
+export function partsTaken(
+  { jobs }: PlanProblem,
+  technician: PlanTechnician,
+  mask: number,
+  part: string,
+): number {
+  const takes = (accepted: boolean): number =>
+    jobs.filter(
+      (job, index) =>
+        mask & (1 << index) && job.part === part && technician.frozen.includes(job.id) === accepted,
+    ).length;
+  const van = Math.max(0, (technician.parts[part] ?? 0) - takes(true));
+  return Math.max(0, takes(false) - van);
 }

@@ -1,4 +1,5 @@
 import type { PlanJob, PlanProblem, PlanTechnician } from '@shared/domain/planner/problem';
+import { everythingElse } from './random-extras';
 import { SeededRandom } from '@shared/domain/planner/random';
 import type { LonLat } from '@shared/domain/travel/great-circle';
 import { travelMatrix } from '@shared/domain/travel/travel-times';
@@ -13,6 +14,8 @@ export interface RandomProblemOptions {
   readonly frozenShare?: number;
   /** Half-width of the county in degrees. */
   readonly spread?: number;
+  /** With breaks, a shop, times of their own, limits to some technicians, promises that count. */
+  readonly everything?: boolean;
 }
 
 const HOUR = 3600;
@@ -84,7 +87,8 @@ export function randomProblem(options: RandomProblemOptions): PlanProblem {
     if (free.length === 0 || !chance(options.frozenShare ?? 0)) return technician;
     return { ...technician, frozen: free.splice(random.below(free.length), 1) };
   });
-  return {
+  const shop = options.everything ? add(place()) : -1;
+  const problem: PlanProblem = {
     version: 1,
     now: NOW,
     locations: points.length,
@@ -92,4 +96,5 @@ export function randomProblem(options: RandomProblemOptions): PlanProblem {
     jobs,
     technicians: withFrozen,
   };
+  return options.everything ? everythingElse(problem, random, shop) : problem;
 }

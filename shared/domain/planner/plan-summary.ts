@@ -119,12 +119,17 @@ export function stopReasons(
   for (const route of plan.routes) {
     const technician = problem.technicians.find(({ id }) => id === route.technician);
     const frozen = new Set(route.shift === 0 ? technician?.frozen : []);
-    const drives = drivesOf(problem, jobs, route);
+    const places = placesOf(problem, jobs, route);
     route.stops.forEach((stop, index) => {
       const job = jobs.get(stop.job);
       if (!job) return;
-      const drive = drives[index];
-      const driveSeconds = drive ? seconds(problem, ...drive) : 0;
+      const driveSeconds = sum(
+        places
+          .slice(1)
+          .flatMap(({ before, place }, from) =>
+            before === index ? [seconds(problem, places[from]!.place, place)] : [],
+          ),
+      );
       reasons.set(stop.job, stopReason(job, stop.start, driveSeconds, frozen.has(stop.job)));
     });
   }
@@ -193,13 +198,38 @@ function drivesOf(
   jobs: ReadonlyMap<string, PlanJob>,
   route: Plan['routes'][number],
 ): readonly (readonly [from: number, to: number])[] {
+  const places = placesOf(problem, jobs, route).map(({ place }) => place);
+  return places.slice(1).map((to, index) => [places[index]!, to]);
+}
+
+interface PlaceOnRoute {
+  readonly place: number;
+  /** Number of the stop that the drive to this place leads to; the way home has the next number. */
+  readonly before: number;
+}
+
+/** Where a route leads: its beginning, the doors with the shop between them, its end. */
+function placesOf(
+  problem: PlanProblem,
+  jobs: ReadonlyMap<string, PlanJob>,
+  route: Plan['routes'][number],
+): readonly PlaceOnRoute[] {
   const technician = problem.technicians.find(({ id }) => id === route.technician);
   const shift = technician?.shifts[route.shift];
   if (!technician || !shift || route.stops.length === 0) return [];
   const first = shift.from ?? (route.shift === 0 ? technician.at : technician.home);
-  const doors = route.stops.map((stop) => jobs.get(stop.job)?.loc ?? first);
-  const places = [first, ...doors, shift.to ?? technician.home];
-  return places.slice(1).map((to, index) => [places[index]!, to]);
+  const { shop } = problem;
+  const fetches = (route.halts ?? []).filter(({ kind }) => kind === 'shop');
+  return [
+    { place: first, before: -1 },
+    ...route.stops.flatMap((stop, before): PlaceOnRoute[] => [
+      ...fetches.flatMap((halt) =>
+        shop && halt.before === before ? [{ place: shop.loc, before }] : [],
+      ),
+      { place: jobs.get(stop.job)?.loc ?? first, before },
+    ]),
+    { place: shift.to ?? technician.home, before: route.stops.length },
+  ];
 }
 
 function seconds({ matrix, locations }: PlanProblem, from: number, to: number): number {

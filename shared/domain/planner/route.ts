@@ -1,91 +1,28 @@
 import type { CompiledProblem, ShiftStart } from './compiled-problem';
+import { departure, type Departure } from './departure';
+import { RouteTimes } from './route-times';
+import { serviceStart, stopPrice } from './stop-price';
 
 /**
- * When the work on a job starts for an arrival at `arrive`: not before its earliest time, in the
- * first window that is still open, and at once when all windows are over.
+ * One technician's one shift under work. `put`, `cut` and `replace` change the order of its stops;
+ * `refresh` then works out the times and the price. The stop at the shop is a stop among the others.
  */
-export function serviceStart(c: CompiledProblem, job: number, arrive: number): number {
-  const earliest = c.earliest[job]!;
-  const ready = arrive > earliest ? arrive : earliest;
-  const end = c.windowOffset[job + 1]!;
-  for (let w = c.windowOffset[job]!; w < end; w++) {
-    if (ready <= c.windowTo[w]!) return ready > c.windowFrom[w]! ? ready : c.windowFrom[w]!;
-  }
-  return ready;
-}
-
-/** Waiting, lost values and lateness of a job that starts at `start`. */
-export function stopPrice(c: CompiledProblem, job: number, start: number): number {
-  let price = c.waitPrice[job]! * (start - c.calledAt[job]!);
-  const end = c.deadlineOffset[job + 1]!;
-  for (let d = c.deadlineOffset[job]!; d < end && start > c.deadlineAt[d]!; d++) {
-    price += c.deadlineValue[d]!;
-  }
-  const late = start - c.lastWindowEnd[job]!;
-  if (late > 0) price += c.weights.lateFixed + late * c.latePrice;
-  return price;
-}
-
-/** How far a start may slip until its price stops growing in a straight line. */
-function straightFor(c: CompiledProblem, job: number, start: number): number {
-  let seconds = Infinity;
-  const deadlinesEnd = c.deadlineOffset[job + 1]!;
-  for (let d = c.deadlineOffset[job]!; d < deadlinesEnd; d++) {
-    if (start <= c.deadlineAt[d]!) {
-      seconds = c.deadlineAt[d]! - start;
-      break;
-    }
-  }
-  const windowsEnd = c.windowOffset[job + 1]!;
-  for (let w = c.windowOffset[job]!; w < windowsEnd; w++) {
-    const left = c.windowTo[w]! - start;
-    if (left >= 0 && left < seconds) seconds = left;
-  }
-  return seconds;
-}
-
-/**
- * One technician's one shift under work, with what is needed to price a slip of its later part
- * without walking through it.
- *
- * Gap i lies before stop i; gap `count` lies before the way home. For each gap, over all that comes
- * after it: `slope` is the price of a slip per second, exact up to `slack` seconds and a lower bound
- * beyond; a slip of more than `hard` seconds breaks the overtime limit. A stop that waits for its
- * window swallows a slip: its slope is zero and its slack is the wait.
- */
-export class Route {
-  count = 0;
+export class Route extends RouteTimes {
   price = 0;
   /** Stops at the head of the route that never move. */
   readonly frozenCount: number;
-  stops: Int32Array;
-  /** Place before gap i; place after it is at i + 1. */
-  place: Int32Array;
-  /** When the technician can leave the place before gap i. */
-  ready: Float64Array;
-  /** Arrival at the place after gap i. */
-  arrive: Float64Array;
-  start: Float64Array;
-  stopPrices: Float64Array;
-  slope: Float64Array;
-  slack: Float64Array;
-  hard: Float64Array;
-  private capacity = 16;
+  /** Where the stop at the shop stands, or -1. */
+  shopAt = -1;
+  /** Differs whenever the order differs. */
+  stamp = 0;
+  /** Where the technician's row of `service` and `mayServe` begins. */
+  readonly row: number;
+  private readonly leave: Departure = { at: 0, pending: 0, room: 0, isSwallowed: false };
 
-  constructor(
-    private readonly c: CompiledProblem,
-    readonly from: ShiftStart,
-  ) {
+  constructor(c: CompiledProblem, from: ShiftStart) {
+    super(c, from);
+    this.row = from.technician * c.rowLength;
     this.frozenCount = from.frozen.length;
-    this.stops = new Int32Array(this.capacity);
-    this.place = new Int32Array(this.capacity + 2);
-    this.ready = new Float64Array(this.capacity + 1);
-    this.arrive = new Float64Array(this.capacity + 1);
-    this.start = new Float64Array(this.capacity);
-    this.stopPrices = new Float64Array(this.capacity);
-    this.slope = new Float64Array(this.capacity + 1);
-    this.slack = new Float64Array(this.capacity + 1);
-    this.hard = new Float64Array(this.capacity + 1);
     from.frozen.forEach((job, index) => this.put(index, job));
     this.refresh();
   }
@@ -98,14 +35,16 @@ export class Route {
   /** Puts a job into a gap; `refresh` has to follow. */
   put(gap: number, job: number): void {
     this.reserve(this.count + 1);
-    this.stops.copyWithin(gap + 1, gap, this.count);
-    this.stops[gap] = job;
+    const { stops } = this;
+    for (let i = this.count; i > gap; i--) stops[i] = stops[i - 1]!;
+    stops[gap] = job;
     this.count++;
   }
 
   /** Takes `length` stops out; `refresh` has to follow. */
   cut(first: number, length: number): void {
-    this.stops.copyWithin(first, first + length, this.count);
+    const { stops } = this;
+    for (let i = first + length; i < this.count; i++) stops[i - length] = stops[i]!;
     this.count -= length;
   }
 
@@ -116,39 +55,12 @@ export class Route {
     this.count = count;
   }
 
-  /** Recomputes times, price and slip figures from the order of the stops. */
-  refresh(): void {
-    const { c, count, stops } = this;
-    const { travel, locations } = c;
-    let place = this.from.startLoc;
-    let time = this.from.startAt;
-    let drive = 0;
-    let price = 0;
-    for (let i = 0; i < count; i++) {
-      const job = stops[i]!;
-      const seconds = travel[place * locations + c.loc[job]!]!;
-      const arrive = time + seconds;
-      const start = serviceStart(c, job, arrive);
-      const stop = stopPrice(c, job, start) + this.changePrice(job);
-      this.place[i] = place;
-      this.ready[i] = time;
-      this.arrive[i] = arrive;
-      this.start[i] = start;
-      this.stopPrices[i] = stop;
-      drive += seconds;
-      price += stop;
-      time = start + c.service[job]!;
-      place = c.loc[job]!;
+  /** Takes the stop at the shop out; `refresh` has to follow. */
+  cutShop(): void {
+    for (let i = this.count - 1; i >= this.frozenCount; i--) {
+      if (this.stops[i]! >= this.c.jobCount) this.cut(i, 1);
     }
-    const home = travel[place * locations + this.from.endLoc]!;
-    this.place[count] = place;
-    this.place[count + 1] = this.from.endLoc;
-    this.ready[count] = time;
-    this.arrive[count] = time + home;
-    const overtime = Math.max(0, time + home - this.from.shiftEnd);
-    this.price =
-      count === 0 ? 0 : price + (drive + home) * c.travelPrice + overtime * c.overtimePrice;
-    this.refreshSlip();
+    this.shopAt = -1;
   }
 
   /** Price of taking a job from the technician to whom it was promised for soon. */
@@ -157,70 +69,90 @@ export class Route {
     return promised >= 0 && promised !== this.from.technician ? this.c.weights.churnReassign : 0;
   }
 
-  private refreshSlip(): void {
-    const { c, count } = this;
-    const overrun = this.arrive[count]! - this.from.shiftEnd;
-    this.slope[count] = overrun >= 0 ? c.overtimePrice : 0;
-    this.slack[count] = overrun >= 0 ? Infinity : -overrun;
-    this.hard[count] = this.from.limit - this.arrive[count]!;
-    for (let i = count - 1; i >= 0; i--) {
-      const job = this.stops[i]!;
-      const start = this.start[i]!;
-      const wait = start - this.arrive[i]!;
-      if (wait > 0) {
-        this.slope[i] = 0;
-        this.slack[i] = wait;
-        this.hard[i] = wait + this.hard[i + 1]!;
-        continue;
+  /** Recomputes times, price and slip figures from the order of the stops. */
+  refresh(): void {
+    const { c, count, stops, from, row } = this;
+    const { travel, locations, loc, service, jobCount } = c;
+    const { place, ready, pend, direct, arrive, start, stopPrices } = this;
+    const hasBreaks = from.breaks.length > 0;
+    let here = from.startLoc;
+    let time = from.startAt;
+    let pending = 0;
+    let drive = 0;
+    let price = 0;
+    this.shopAt = -1;
+    for (let i = 0; i < count; i++) {
+      const job = stops[i]!;
+      const at = loc[job]!;
+      const seconds = travel[here * locations + at]!;
+      place[i] = here;
+      ready[i] = time;
+      pend[i] = pending;
+      direct[i] = seconds;
+      if (hasBreaks) {
+        departure(c, from.breaks, pending, time, job, seconds, service[row + job]!, this.leave);
+        time = this.leave.at;
+        pending = this.leave.pending;
       }
-      const isLate = start > c.lastWindowEnd[job]!;
-      const straight = straightFor(c, job, start);
-      this.slope[i] = c.waitPrice[job]! + (isLate ? c.latePrice : 0) + this.slope[i + 1]!;
-      this.slack[i] = straight < this.slack[i + 1]! ? straight : this.slack[i + 1]!;
-      this.hard[i] = this.hard[i + 1]!;
+      if (job === jobCount) this.shopAt = i;
+      const arrival = time + seconds;
+      const begin = serviceStart(c, job, arrival);
+      const stop = stopPrice(c, job, begin) + this.changePrice(job);
+      arrive[i] = arrival;
+      start[i] = begin;
+      stopPrices[i] = stop;
+      drive += seconds;
+      price += stop;
+      time = begin + service[row + job]!;
+      here = at;
     }
+    const home = travel[here * locations + from.endLoc]!;
+    place[count] = here;
+    place[count + 1] = from.endLoc;
+    ready[count] = time;
+    pend[count] = pending;
+    direct[count] = home;
+    arrive[count] = time + home;
+    const overtime = Math.max(0, time + home - from.shiftEnd);
+    this.price =
+      count === 0 ? 0 : price + (drive + home) * c.travelPrice + overtime * c.overtimePrice;
+    this.refreshSlip();
   }
 
   /**
-   * Price of a slip of everything after a gap, by walking through it until the slip is swallowed.
+   * Price of arriving at a stop at another time, by walking through what follows until nothing differs.
    *
+   * @param gap number of the stop
+   * @param arrival when the technician gets there
+   * @param pending first break that is not taken or fallen away by then
    * @param upTo stop counting at this price
    * @returns Infinity when the limit is broken, otherwise the price, or at least `upTo`
    */
-  slipPrice(gap: number, slip: number, upTo: number): number {
-    const { c } = this;
+  walk(gap: number, arrival: number, pending: number, upTo: number): number {
+    const { c, count, from, stops, row, start, stopPrices, pend, direct, credit } = this;
+    const breakCount = from.breaks.length;
     let price = 0;
-    for (let i = gap; i < this.count; i++) {
-      const job = this.stops[i]!;
-      const start = serviceStart(c, job, this.arrive[i]! + slip);
-      slip = start - this.start[i]!;
-      if (slip === 0) return price;
-      price += stopPrice(c, job, start) + this.changePrice(job) - this.stopPrices[i]!;
-      if (price >= upTo && slip > 0) return price;
+    for (let i = gap; i < count; i++) {
+      const job = stops[i]!;
+      const begin = serviceStart(c, job, arrival);
+      if (begin === start[i]! && pending === pend[i + 1]!) return price;
+      price += stopPrice(c, job, begin) + this.changePrice(job) - stopPrices[i]!;
+      const isSettled = pending === breakCount && pend[i + 1] === breakCount;
+      const least = price - credit[i + 1]!;
+      if (isSettled && begin >= start[i]! && least >= upTo) return least;
+      let time = begin + c.service[row + job]!;
+      if (i + 1 < count && pending < breakCount) {
+        const next = stops[i + 1]!;
+        const seconds = direct[i + 1]!;
+        departure(c, from.breaks, pending, time, next, seconds, c.service[row + next]!, this.leave);
+        time = this.leave.at;
+        pending = this.leave.pending;
+      }
+      arrival = time + direct[i + 1]!;
     }
-    const end = this.arrive[this.count]!;
-    if (end + slip > this.from.limit) return Infinity;
-    const before = Math.max(0, end - this.from.shiftEnd);
-    const after = Math.max(0, end + slip - this.from.shiftEnd);
+    if (arrival > from.limit) return Infinity;
+    const before = Math.max(0, this.arrive[count]! - from.shiftEnd);
+    const after = Math.max(0, arrival - from.shiftEnd);
     return price + (after - before) * c.overtimePrice;
   }
-
-  private reserve(count: number): void {
-    if (count <= this.capacity) return;
-    this.capacity = Math.max(count, this.capacity * 2);
-    this.stops = grown(this.stops, new Int32Array(this.capacity));
-    this.place = grown(this.place, new Int32Array(this.capacity + 2));
-    this.ready = grown(this.ready, new Float64Array(this.capacity + 1));
-    this.arrive = grown(this.arrive, new Float64Array(this.capacity + 1));
-    this.start = grown(this.start, new Float64Array(this.capacity));
-    this.stopPrices = grown(this.stopPrices, new Float64Array(this.capacity));
-    this.slope = grown(this.slope, new Float64Array(this.capacity + 1));
-    this.slack = grown(this.slack, new Float64Array(this.capacity + 1));
-    this.hard = grown(this.hard, new Float64Array(this.capacity + 1));
-  }
-}
-
-function grown<A extends Int32Array | Float64Array>(old: A, fresh: A): A {
-  fresh.set(old);
-  return fresh;
 }

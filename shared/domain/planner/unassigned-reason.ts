@@ -1,40 +1,73 @@
 import type { CompiledProblem, ShiftStart } from './compiled-problem';
 import { NO_WAY_SECONDS, type UnassignedJob } from './problem';
 import { Route } from './route';
-import type { Search } from './search';
+import type { WorkingPlan } from './working-plan';
 
 type Reason = Pick<UnassignedJob, 'reason' | 'because'>;
 
-/** Why a job is on no route, the hardest reason first. */
-export function unassignedReason(job: number, search: Search, c: CompiledProblem): Reason {
-  const technicians = Array.from({ length: c.technicianCount }, (_, technician) => technician);
-  const skilled = technicians.filter((t) => c.mayServe[t * c.jobCount + job]);
-  if (skilled.length === 0) return noSkill(job, c);
+/** Why jobs are on no route, the hardest reason first. */
+export class UnassignedReasons {
+  private readonly c: CompiledProblem;
+  /** A route of each shift with nothing but its accepted stops. */
+  private readonly drafts: (Route | undefined)[] = [];
+  private readonly technicians: readonly number[];
 
-  const part = c.part[job]!;
-  const withPart = skilled.filter((t) => part < 0 || c.stock[t * c.partCount + part]! > 0);
-  const name = c.problem.jobs[job]!.part;
-  if (withPart.length === 0) {
-    return { reason: 'part', because: `No van of those who may go carries: ${name}.` };
+  constructor(private readonly plan: WorkingPlan) {
+    this.c = plan.c;
+    this.technicians = Array.from({ length: this.c.technicianCount }, (_, index) => index);
   }
-  const withPartLeft = withPart.filter((t) => part < 0 || search.partsLeft(t, part) > 0);
-  const shifts = c.shifts.filter((shift) => withPart.includes(shift.technician));
-  if (shifts.length > 0 && !shifts.some((shift) => canDriveTo(job, shift, c))) {
-    return {
-      reason: 'unreachable',
-      because: 'No open road leads there and back for those who may go.',
-    };
+
+  of(job: number): Reason {
+    const { c } = this;
+    const skilled = this.technicians.filter((t) => c.mayServe[t * c.rowLength + job]);
+    if (skilled.length === 0) return noSkill(job, c);
+
+    const withPart = skilled.filter((t) => this.couldHavePart(t, job));
+    const name = c.problem.jobs[job]!.part;
+    if (withPart.length === 0) {
+      const shop = c.hasShop ? ', nor has the shop any' : '';
+      return { reason: 'part', because: `No van of those who may go carries: ${name}${shop}.` };
+    }
+    const mayGo = new Set(withPart);
+    const shifts = c.shifts.filter((shift) => mayGo.has(shift.technician));
+    if (shifts.length > 0 && !shifts.some((shift) => canDriveTo(job, shift, c))) {
+      return {
+        reason: 'unreachable',
+        because: 'No open road leads there and back for those who may go.',
+      };
+    }
+    if (!c.shifts.some((shift, s) => mayGo.has(shift.technician) && this.hasTime(job, shift, s))) {
+      return {
+        reason: 'no_shift',
+        because: 'No shift of those who may go is long enough for this visit.',
+      };
+    }
+    if (!withPart.some((t) => this.plan.parts.hasFor(t, job))) {
+      return { reason: 'part', because: `Other visits take the last on the vans of: ${name}.` };
+    }
+    return { reason: 'capacity', because: 'The time goes to visits that save more.' };
   }
-  if (!shifts.some((shift) => hasTime(job, shift, c))) {
-    return {
-      reason: 'no_shift',
-      because: 'No shift of those who may go is long enough for this visit.',
-    };
+
+  private couldHavePart(technician: number, job: number): boolean {
+    const { part, stock, partCount, shopParts } = this.c;
+    const needed = part[job]!;
+    if (needed < 0) return true;
+    return stock[technician * partCount + needed]! > 0 || shopParts[needed]! > 0;
   }
-  if (withPartLeft.length === 0) {
-    return { reason: 'part', because: `Other visits take the last on the vans of: ${name}.` };
+
+  /** Whether the shift could hold this visit if it held nothing but its accepted stops. */
+  private hasTime(job: number, shift: ShiftStart, s: number): boolean {
+    const { c } = this;
+    const draft = (this.drafts[s] ??= new Route(c, shift));
+    const part = c.part[job]!;
+    const isFetched = part >= 0 && c.vanFree[shift.technician * c.partCount + part] === 0;
+    const last = draft.frozenCount;
+    draft.replace(shift.frozen, last);
+    if (isFetched && c.hasShop) draft.put(last, c.jobCount);
+    draft.put(draft.count, job);
+    draft.refresh();
+    return draft.isWithinLimit;
   }
-  return { reason: 'capacity', because: 'The time goes to visits that save more.' };
 }
 
 function noSkill(job: number, c: CompiledProblem): Reason {
@@ -52,12 +85,4 @@ function canDriveTo(job: number, { startLoc, endLoc }: ShiftStart, c: CompiledPr
     c.travel[startLoc * c.locations + place]! < NO_WAY_SECONDS &&
     c.travel[place * c.locations + endLoc]! < NO_WAY_SECONDS
   );
-}
-
-/** Whether the shift could hold this visit if it held nothing but its accepted stops. */
-function hasTime(job: number, shift: ShiftStart, c: CompiledProblem): boolean {
-  const route = new Route(c, shift);
-  route.put(route.count, job);
-  route.refresh();
-  return route.isWithinLimit;
 }
