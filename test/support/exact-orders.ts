@@ -124,7 +124,7 @@ function take(at: Moment, part: string, hasShop: boolean): Moment | null {
 
 /** The rule of breaks, told from the technician's side: sit down now, sit down at `from`, or go on. */
 function arriveAfterBreaks(
-  { time, breaks }: Moment,
+  { time, breaks }: Pick<Moment, 'time' | 'breaks'>,
   drive: number,
   start: (arrival: number) => number,
   service: number,
@@ -132,7 +132,7 @@ function arriveAfterBreaks(
   const [next, ...later] = breaks;
   if (!next) return { start: start(time + drive), breaks };
   const after = (clock: number): ReturnType<typeof arriveAfterBreaks> =>
-    arriveAfterBreaks({ time: clock, breaks: later } as Moment, drive, start, service);
+    arriveAfterBreaks({ time: clock, breaks: later }, drive, start, service);
   if (time > next.to) return after(time);
   if (time >= next.from) return after(time + next.seconds);
   if (start(time + drive) + service > next.to) return after(next.from + next.seconds);
