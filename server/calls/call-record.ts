@@ -52,6 +52,9 @@ export class CallRecord extends Model<
   /** Likely causes in words, likeliest first. */
   declare causes: string[];
   declare duplicateOfId: CreationOptional<string | null>;
+  /** The window that the customer agreed to for the next visit. */
+  declare windowFrom: CreationOptional<Date | null>;
+  declare windowTo: CreationOptional<Date | null>;
   declare version: CreationOptional<number>;
 
   address(): Address {
@@ -96,6 +99,8 @@ export class CallRecord extends Model<
         parts: { type: DataTypes.JSON, allowNull: false },
         causes: { type: DataTypes.JSON, allowNull: false },
         duplicateOfId: DataTypes.UUID,
+        windowFrom: DataTypes.DATE(3),
+        windowTo: DataTypes.DATE(3),
         version: { type: DataTypes.INTEGER, allowNull: false, defaultValue: 0 },
       },
       { sequelize, tableName: 'calls' },

@@ -93,7 +93,7 @@ export function callRoutes(context: Context): SomeHandlers<Names> {
 
     returnToWaiting: (asked) =>
       changed('returnToWaiting', asked, (job) =>
-        returnToWaiting(job, asked.params.callId, asked.body.version, asked.body.reason),
+        returnToWaiting(job, asked.params.callId, asked.body.version, asked.body),
       ),
   };
 }

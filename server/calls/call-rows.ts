@@ -35,6 +35,8 @@ interface StoredCall {
   technician_id: string | null;
   eta_at: Date | null;
   unread: number;
+  window_from: Date | null;
+  window_to: Date | null;
 }
 
 /**
@@ -57,6 +59,7 @@ export async function callRows(
             c.phone, c.address_text, c.unit_no, c.lon, c.lat, c.address_kind, c.area_id,
             c.power_out_at, c.restored_at, c.claim_user_id, c.claim_until, u.name AS claim_name,
             c.danger, c.cut_off, c.source, c.skills, c.parts, s.technician_id, s.eta_at,
+            c.window_from, c.window_to,
             (SELECT COUNT(*) FROM messages m
               WHERE m.call_id = c.id AND m.direction = 'in' AND m.read_at IS NULL) AS unread
        FROM calls c
@@ -104,6 +107,9 @@ function toRow(call: StoredCall, units: readonly UnitRow[], now: Instant): CallR
     danger: Boolean(call.danger),
     cutOff: Boolean(call.cut_off),
     unreadTexts: Number(call.unread),
+    ...(call.window_from && call.window_to
+      ? { window: { from: call.window_from.getTime(), to: call.window_to.getTime() } }
+      : {}),
     source: call.source,
   };
 }

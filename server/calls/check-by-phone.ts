@@ -1,4 +1,5 @@
-import type { AnswerPhoneCheck, ConcludeCall } from '@shared/contract/calls';
+import type { z } from 'zod';
+import type { AnswerPhoneCheck, ConcludeCall, ReturnToWaiting } from '@shared/contract/calls';
 import { isSettled, mayFollow } from '@shared/domain/call-state';
 import { Refusal } from '@shared/domain/errors';
 import { CAUSES, LIKELIHOOD_WORDS } from '@shared/domain/phone-check/causes';
@@ -102,17 +103,30 @@ export async function returnToWaiting(
   job: Job,
   callId: string,
   version: number,
-  reason: string,
+  { reason, window }: Pick<z.output<typeof ReturnToWaiting>, 'reason' | 'window'>,
 ): Promise<CallRecord> {
   const call = await lockCall(job, callId, version);
+  if (window && !(window.to > window.from && window.to > job.now))
+    throw new Refusal(
+      'times-disagree',
+      'The agreed window has to end after it begins, and from now on.',
+    );
   if (call.state !== 'parts-on-order' && call.state !== 'no-access')
     throw new Refusal(
       'illegal-transition',
       'Only a call with parts on order or without access goes back to waiting this way.',
     );
   await moveCall(job, call, 'waiting', reason);
+  call.windowFrom = window ? new Date(window.from) : null;
+  call.windowTo = window ? new Date(window.to) : null;
   await saveCall(job, call);
-  job.note('call', call.id, 'put the call back in the queue');
+  job.note(
+    'call',
+    call.id,
+    window
+      ? 'put the call back in the queue with an agreed window'
+      : 'put the call back in the queue',
+  );
   return call;
 }
 

@@ -11,6 +11,7 @@ import * as locksInOrder from './migrations/0007-locks-in-order';
 import * as stormRoads from './migrations/0008-storm-roads';
 import * as regions from './migrations/0009-regions';
 import * as areaShapes from './migrations/0010-area-shapes';
+import * as rollingRoutes from './migrations/0012-rolling-routes';
 
 /** Runs one statement of a migration. */
 export type Run = (statement: string) => Promise<void>;
@@ -31,6 +32,7 @@ const MIGRATIONS: Readonly<Record<string, Migration>> = {
   '0008-storm-roads': stormRoads,
   '0009-regions': regions,
   '0010-area-shapes': areaShapes,
+  '0012-rolling-routes': rollingRoutes,
 };
 
 /** Brings the schema up to date; safe when two processes start at once. @returns names newly applied */

@@ -2,6 +2,7 @@ import { OFFICE } from '../commands/audit';
 import { orderFrom, runCommand } from '../commands/run-command';
 import type { Context } from '../context';
 import type { SomeHandlers } from '../http/bind-routes';
+import { measuredVisitsDto } from '../routes/measured-visits';
 import { findStorm } from '../storms/storm-queries';
 import { measuredSpeeds } from '../storm-roads/measured-speeds';
 import { technicianDtos } from '../technicians/technician-rows';
@@ -17,6 +18,7 @@ type Names =
   | 'changeSettings'
   | 'measuredSpeeds'
   | 'resetMeasuredSpeeds'
+  | 'measuredVisits'
   | 'audit'
   | 'officeAudit'
   | 'listTechnicians';
@@ -49,6 +51,8 @@ export function officeRoutes(context: Context): SomeHandlers<Names> {
       ),
 
     measuredSpeeds: () => measuredSpeeds(context.sequelize),
+
+    measuredVisits: () => measuredVisitsDto(context.sequelize),
 
     resetMeasuredSpeeds: ({ body, person }) =>
       runCommand(context, orderFrom('resetMeasuredSpeeds', person, body), (job) =>

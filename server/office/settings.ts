@@ -30,7 +30,30 @@ export const DEFAULT_SETTINGS: Omit<Settings, 'version'> = {
   measuredFrom: null,
   // Our estimate; the company's own times replace it.
   serviceMinutes: 45,
+  // Our estimate: the way, the talk and the tools are there already.
+  furtherUnitPercent: 60,
+  // Off until a manager has looked at what the visits say.
+  usesMeasuredVisits: false,
+  shopPlace: null,
+  shopMinutes: 10,
+  // Our estimates, no source: prices that make driving and waiting small beside a freezer of food.
+  driveDollarsPerHour: 40,
+  waitDollarsPerHour: 2,
+  lateDollars: 30,
+  lateDollarsPerHour: 60,
+  overtimeDollarsPerHour: 90,
+  mostOvertimeMinutes: 60,
+  leftOutDollars: 150,
+  otherTechnicianDollars: 15,
+  otherTimeDollars: 10,
+  otherTimeMinutes: 30,
+  promisedAheadMinutes: 120,
   medicineWeight: 5,
+  changesPerHour: 6,
+  // Nothing happens by itself until a manager wants it.
+  automaticRoutes: 'off',
+  automaticGainDollars: 25,
+  automaticKeepMinutes: 45,
   pocketKm: 1,
   pocketCalls: 4,
 };

@@ -22,6 +22,7 @@ interface Driving {
   version: number;
   eta_at: Date;
   travel_at: Date;
+  by_shop: number;
   lon: number;
   lat: number;
 }
@@ -38,7 +39,8 @@ export async function followPosition(
   if ((accuracyMeters ?? 0) > COARSEST_METERS) return;
   const [driving] = await select<Driving>(
     context.sequelize,
-    `SELECT s.id, s.storm_id, s.version, s.eta_at, s.travel_at, c.lon, c.lat
+    `SELECT s.id, s.storm_id, s.version, s.eta_at, s.travel_at, c.lon, c.lat,
+            s.fetches IS NOT NULL AS by_shop
        FROM stops s JOIN calls c ON c.id = s.call_id
       WHERE s.busy_technician = ? AND s.state = 'travelling' AND s.eta_at IS NOT NULL
         AND c.lon IS NOT NULL`,
@@ -55,6 +57,8 @@ export async function followPosition(
   if (!arrival) return;
   const laterBy = arrival.at - driving.eta_at.getTime();
   if (Math.abs(laterBy) <= settings.etaMovedMinutes * MINUTE_MS) return;
+  // Nobody knows whether the van has been at the store already: the direct way would promise too much.
+  if (laterBy < 0 && driving.by_shop) return;
   if (laterBy < 0 && (await wasToldByTechnician(context.sequelize, driving))) return;
   await correctEta(context, technicianId, driving, arrival.at);
 }

@@ -3,14 +3,18 @@ import type { Settings } from '@shared/contract/office';
 import type { CallState } from '@shared/domain/call-state';
 import { Refusal } from '@shared/domain/errors';
 import type { RouteStopState, Sighting, WorkShift } from '@shared/domain/route-rules';
+import type { LearnedService } from '@shared/domain/service-times';
 import { CallRecord } from '../calls/call-record';
 import { moveCall } from '../calls/change-call';
 import type { Job } from '../commands/run-command';
 import { readSettings } from '../office/settings';
 import { lockTechnicians, shiftsAhead } from '../technicians/lock-technicians';
 import type { TechnicianRecord } from '../technicians/technician-record';
+import { withBreaksDue } from './breaks-due';
+import { learnedVisits } from './measured-visits';
 import { StopRecord } from './stop-record';
 import { ACTIVE_STOPS } from './stop-rows';
+import { visitFacts, type VisitFacts } from './visit-facts';
 import { lastDoors } from './where-technicians-are';
 
 /** A stop that is still to be done. */
@@ -24,6 +28,9 @@ export interface Routes {
   readonly shifts: ReadonlyMap<string, readonly WorkShift[]>;
   readonly lastDoors: ReadonlyMap<string, Sighting>;
   readonly calls: ReadonlyMap<string, CallRecord>;
+  readonly visits: ReadonlyMap<string, VisitFacts>;
+  /** What finished visits say of the time at a stop; `null` while it does not count. */
+  readonly learned: LearnedService | null;
   /** By technician, in the order of the route. Commands change these lists in place. */
   readonly stops: Map<string, StopRecord[]>;
   /** Stops that came off a route and have to be saved. */
@@ -65,13 +72,22 @@ export async function lockRoutes(
     ],
     lock: job.tx.LOCK.UPDATE,
   });
+  const settings = await readSettings(job.sequelize, job.tx);
+  const shifts = await shiftsAhead(job.sequelize, job.now, job.tx);
   return {
     stormId,
-    settings: await readSettings(job.sequelize, job.tx),
+    settings,
     technicians: new Map(technicians.map((one) => [one.id, one])),
-    shifts: await shiftsAhead(job.sequelize, job.now, job.tx),
+    shifts: await withBreaksDue(job.sequelize, shifts, job.now, job.tx),
     lastDoors: await lastDoors(job.sequelize, ids, job.tx),
     calls: new Map(calls.map((call) => [call.id, call])),
+    visits: await visitFacts(
+      job.sequelize,
+      calls.map(({ id }) => id),
+      job.now,
+      job.tx,
+    ),
+    learned: await learnedVisits(job.sequelize, settings, job.tx),
     stops: new Map(ids.map((id) => [id, stops.filter((stop) => stop.technicianId === id)])),
     ended: [],
     changedCalls: new Set(),

@@ -4,6 +4,7 @@ import type { CallState } from '@shared/domain/call-state';
 import type { CompartmentKind } from '@shared/domain/cold-unit';
 import { HOUR_MS, type Instant } from '@shared/domain/instant';
 import type { RouteStopState, WorkShift } from '@shared/domain/route-rules';
+import type { LearnedService } from '@shared/domain/service-times';
 import type { Part, Skill } from '@shared/domain/skills';
 import type { LonLat } from '@shared/domain/travel/great-circle';
 import { json, select } from '../db/sql';
@@ -12,6 +13,10 @@ import { readSettings } from '../office/settings';
 import { findStorm } from '../storms/storm-queries';
 import { shiftsAhead } from '../technicians/lock-technicians';
 import { technicianDtos } from '../technicians/technician-rows';
+import { withBreaksDue } from './breaks-due';
+import { changesSince } from './route-changes';
+import { learnedVisits } from './measured-visits';
+import { visitFacts, type VisitFacts } from './visit-facts';
 import { lastDoors, whereIs } from './where-technicians-are';
 
 /** Shifts that begin later are planned later: our estimate of how far a storm's night can be seen. */
@@ -39,6 +44,8 @@ export interface CallToPlan {
 
 export interface StopInForce {
   readonly callId: string;
+  /** The arrival that its customer was told by text. */
+  readonly toldEtaAt: Instant | null;
   readonly state: RouteStopState;
   readonly locked: boolean;
   readonly arriveAt: Instant;
@@ -49,6 +56,7 @@ export interface StopInForce {
 
 export interface TechnicianToPlan {
   readonly id: string;
+  readonly name: string;
   readonly active: boolean;
   readonly skills: readonly Skill[];
   readonly van: Readonly<Partial<Record<Part, number>>>;
@@ -70,18 +78,28 @@ export interface PlanFacts {
   readonly technicians: readonly TechnicianToPlan[];
   /** Those that wait for a visit, and those on routes. */
   readonly calls: ReadonlyMap<string, CallToPlan>;
+  readonly visits: ReadonlyMap<string, VisitFacts>;
+  /** What finished visits say of the time at a stop; `null` while it does not count. */
+  readonly learned: LearnedService | null;
+  /** Changes that publications made to each technician's stops within the last hour. */
+  readonly changesThisHour: ReadonlyMap<string, number>;
 }
 
 export function planFacts(sequelize: Sequelize, stormId: string, now: Instant): Promise<PlanFacts> {
   return asOfOneMoment(sequelize, async (tx) => {
     const storm = await findStorm(stormId, tx);
+    const settings = await readSettings(sequelize, tx);
+    const calls = await callsToPlan(sequelize, stormId, tx);
     return {
       now,
       epoch: storm.planEpoch ?? 0,
       isOpen: storm.state === 'open',
-      settings: await readSettings(sequelize, tx),
+      settings,
       technicians: await techniciansToPlan(sequelize, stormId, now, tx),
-      calls: await callsToPlan(sequelize, stormId, tx),
+      calls,
+      visits: await visitFacts(sequelize, [...calls.keys()], now, tx),
+      learned: await learnedVisits(sequelize, settings, tx),
+      changesThisHour: await changesSince(sequelize, stormId, now - HOUR_MS, tx),
     };
   });
 }
@@ -93,7 +111,7 @@ async function techniciansToPlan(
   tx: Transaction,
 ): Promise<TechnicianToPlan[]> {
   const technicians = await technicianDtos(sequelize, 'all', tx);
-  const shifts = await shiftsAhead(sequelize, now, tx);
+  const shifts = await withBreaksDue(sequelize, await shiftsAhead(sequelize, now, tx), now, tx);
   const doors = await lastDoors(
     sequelize,
     technicians.map(({ id }) => id),
@@ -111,6 +129,7 @@ async function techniciansToPlan(
     };
     return {
       id: one.id,
+      name: one.name,
       active: one.active,
       skills: one.skills,
       van: one.van,
@@ -132,13 +151,14 @@ async function stopsInForce(
     call_id: string;
     state: RouteStopState;
     locked: number;
+    told_eta_at: Date | null;
     arrive_at: Date;
     finish_at: Date;
     drive_minutes: number;
     because: string;
   }>(
     sequelize,
-    `SELECT technician_id, call_id, state, locked, arrive_at, finish_at, drive_minutes, because
+    `SELECT technician_id, call_id, state, locked, told_eta_at, arrive_at, finish_at, drive_minutes, because
        FROM stops WHERE storm_id = ? AND active_call IS NOT NULL ORDER BY technician_id, position`,
     [stormId],
     tx,
@@ -151,6 +171,7 @@ async function stopsInForce(
       callId: row.call_id,
       state: row.state,
       locked: Boolean(row.locked),
+      toldEtaAt: row.told_eta_at?.getTime() ?? null,
       arriveAt: row.arrive_at.getTime(),
       finishAt: row.finish_at.getTime(),
       driveMinutes: row.drive_minutes,

@@ -1,20 +1,38 @@
+import type { PlanPrices } from '@shared/contract/plan-prices';
 import { isPlannable } from '@shared/domain/call-state';
 import { MINUTE_MS, type Instant } from '@shared/domain/instant';
+import { weightsOf } from '@shared/domain/planner/plan-prices';
 import type {
   PlanDeadline,
   PlanJob,
+  PlanShift,
   PlanTechnician,
   PreviousPlan,
 } from '@shared/domain/planner/problem';
-import { heldCount, isUnderWay, shiftOf } from '@shared/domain/route-rules';
+import { heldCount, isUnderWay, shiftOf, type WorkShift } from '@shared/domain/route-rules';
 import type { LonLat } from '@shared/domain/travel/great-circle';
 import type { PlannerRequest } from '../workers/planner-client';
+import { keptStops, type KeptStop } from './kept-stops';
+import { kitOf, kitsOnVan } from './part-kits';
 import type { CallToPlan, PlanFacts, TechnicianToPlan } from './plan-facts';
+import { minutesAtDoor } from './visit-facts';
 
 /** How much a minute of waiting counts for food that can still be saved; the planner's own scale. */
 const FOOD_WEIGHT = 2;
 
-export type Problem = Pick<PlannerRequest, 'problem' | 'points'>;
+export type Problem = Pick<PlannerRequest, 'problem' | 'points'> & {
+  /** Stops that no plan may move now, though nobody has accepted or locked them, and why. */
+  readonly kept: ReadonlyMap<string, KeptStop>;
+};
+
+export interface ProblemOptions {
+  /** Other prices than those that are set, to try them. */
+  readonly prices?: Partial<PlanPrices> | undefined;
+  /** Stops that begin within so many minutes stay. */
+  readonly keepMinutes?: number;
+  /** Technicians whose stops soon to come stay besides. */
+  readonly keepAlso?: ReadonlySet<string>;
+}
 
 /** The planner counts in seconds, the board in milliseconds. */
 export const seconds = (at: Instant): number => Math.floor(at / 1000);
@@ -23,16 +41,24 @@ export const seconds = (at: Instant): number => Math.floor(at / 1000);
  * The planner's problem. Accepted and locked stops open their routes as they stand; a stop under way
  * is where its technician starts from. Money is in dollars, as the planner's own prices are.
  */
-export function planProblem(facts: PlanFacts): Problem {
+export function planProblem(stored: PlanFacts, options: ProblemOptions = {}): Problem {
+  const facts = options.prices
+    ? { ...stored, settings: { ...stored.settings, ...options.prices } }
+    : stored;
   const points: LonLat[] = [];
   const place = (at: LonLat): number => points.push(at) - 1;
   const technicians: PlanTechnician[] = [];
   const jobs = new Map<string, PlanJob>();
-  const kept = new Set<string>();
+  const held = new Set<string>();
+  const kept = keptStops(facts, options);
+  const kits = new Set<string>();
+  for (const { needs } of facts.visits.values()) if (needs.length > 0) kits.add(kitOf(needs));
 
   for (const technician of facts.technicians) {
-    const held = technician.stops.slice(0, heldCount(technician.stops));
-    for (const stop of held) kept.add(stop.callId);
+    const ahead = technician.stops.filter(
+      (stop, index) => index < heldCount(technician.stops) || kept.has(stop.callId),
+    );
+    for (const stop of ahead) held.add(stop.callId);
     if (!mayBePlanned(technician)) continue;
     const { at, freeAt } = startOf(technician, facts);
     const start = place(at);
@@ -42,14 +68,11 @@ export function planProblem(facts: PlanFacts): Problem {
       at: start,
       availableAt: seconds(freeAt),
       skills: technician.skills,
-      parts: technician.van,
-      shifts: technician.shifts.map((shift) => ({
-        start: seconds(shift.startsAt),
-        end: seconds(shift.endsAt),
-      })),
-      frozen: held.filter((stop) => !isUnderWay(stop.state)).map((stop) => stop.callId),
+      parts: kitsOnVan(technician.van, kits),
+      shifts: technician.shifts.map(shiftToPlan),
+      frozen: ahead.filter((stop) => !isUnderWay(stop.state)).map((stop) => stop.callId),
     });
-    for (const stop of held) {
+    for (const stop of ahead) {
       const call = facts.calls.get(stop.callId);
       if (!call || isUnderWay(stop.state)) continue;
       // A household put on a route by hand whose place nobody knows: no drive can be counted.
@@ -57,23 +80,41 @@ export function planProblem(facts: PlanFacts): Problem {
     }
   }
   for (const call of facts.calls.values())
-    if (!kept.has(call.id) && isPlannable(call.state) && call.lonLat && !call.cutOff)
+    if (!held.has(call.id) && isPlannable(call.state) && call.lonLat && !call.cutOff)
       jobs.set(call.id, jobOf(call, place(call.lonLat), facts));
 
+  const { shopPlace, shopMinutes } = facts.settings;
   return {
     problem: {
       version: 1,
       now: seconds(facts.now),
       jobs: [...jobs.values()],
       technicians,
-      previous: routesInForce(facts),
+      previous: routesInForce(facts, kept),
+      weights: weightsOf(facts.settings),
+      ...(shopPlace ? { shop: { loc: place(shopPlace), seconds: shopMinutes * 60 } } : {}),
     },
     points,
+    kept,
   };
 }
 
 export const mayBePlanned = (technician: TechnicianToPlan): boolean =>
   technician.active && technician.shifts.length > 0;
+
+const shiftToPlan = ({ startsAt, endsAt, breaks }: WorkShift): PlanShift => ({
+  start: seconds(startsAt),
+  end: seconds(endsAt),
+  ...(breaks && breaks.length > 0
+    ? {
+        breaks: breaks.map(({ from, to, minutes }) => ({
+          from: seconds(from),
+          to: seconds(to),
+          seconds: minutes * 60,
+        })),
+      }
+    : {}),
+});
 
 /** Where and when the technician is free: after the stop under way, if there is one. */
 function startOf(
@@ -96,27 +137,33 @@ function jobOf(call: CallToPlan, loc: number, facts: PlanFacts): PlanJob {
     : live.some(({ valueCents }) => valueCents > 0)
       ? Math.min(FOOD_WEIGHT, settings.medicineWeight)
       : 1;
-  const [part] = call.parts;
+  const visit = facts.visits.get(call.id);
   const allowed =
     call.declinedBy.length === 0
       ? null
       : facts.technicians.map(({ id }) => id).filter((id) => !call.declinedBy.includes(id));
+  const { service, serviceBy } = serviceOf(call, facts);
+  // Whoever takes longer may not be promised what only the quick ones can save.
+  const longest = Math.max(service, ...Object.values(serviceBy)) / 60;
   return {
     id: call.id,
     loc,
-    service: settings.serviceMinutes * 60,
+    service,
+    ...(Object.keys(serviceBy).length > 0 ? { serviceBy } : {}),
     calledAt: seconds(call.receivedAt),
     weight,
     skills: call.skills,
-    // The likeliest one: the planner counts one part a visit.
-    ...(part === undefined ? {} : { part }),
+    ...(visit && visit.needs.length > 0 ? { part: kitOf(visit.needs) } : {}),
+    ...(visit?.window
+      ? { windows: [[seconds(visit.window.from), seconds(visit.window.to)] as const] }
+      : {}),
     ...(allowed ? { onlyTechnicians: allowed } : {}),
     deadlines: live.flatMap((one): PlanDeadline[] => {
       if (one.saveByAt === null) return [];
       const isMedicine = one.kind === 'medicine';
       return [
         {
-          at: latestStart(one.saveByAt, settings.serviceMinutes),
+          at: latestStart(one.saveByAt, longest),
           value: (one.valueCents / 100) * (isMedicine ? settings.medicineWeight : 1),
         },
       ];
@@ -124,22 +171,47 @@ function jobOf(call: CallToPlan, loc: number, facts: PlanFacts): PlanJob {
   };
 }
 
+/** Seconds at the door, and those of technicians who take longer or less. */
+function serviceOf(
+  { id }: CallToPlan,
+  { visits, settings, learned, technicians }: PlanFacts,
+): { readonly service: number; readonly serviceBy: Readonly<Record<string, number>> } {
+  const visit = visits.get(id) ?? { cause: null, units: 1 };
+  const service = minutesAtDoor(visit, settings, learned) * 60;
+  if (!learned) return { service, serviceBy: {} };
+  return {
+    service,
+    serviceBy: Object.fromEntries(
+      technicians.flatMap((technician) => {
+        const own = minutesAtDoor(visit, settings, learned, technician.id) * 60;
+        return own === service ? [] : [[technician.id, own]];
+      }),
+    ),
+  };
+}
+
 /** Contents are saved when cooling runs before their save-by, so the work has to be done by then. */
 export const latestStart = (saveByAt: Instant, serviceMinutes: number): number =>
   seconds(saveByAt - serviceMinutes * MINUTE_MS - 1);
 
-function routesInForce(facts: PlanFacts): PreviousPlan {
+function routesInForce(facts: PlanFacts, kept: ReadonlyMap<string, unknown>): PreviousPlan {
+  const { mostOvertimeMinutes } = facts.settings;
   return {
     routes: facts.technicians.filter(mayBePlanned).flatMap((technician) => {
       const open = technician.stops.filter((stop) => !isUnderWay(stop.state));
-      const held = heldCount(open);
+      const held = Math.max(
+        heldCount(open),
+        open.findLastIndex(({ callId }) => kept.has(callId)) + 1,
+      );
       return technician.shifts.map((_, shift) => ({
         technician: technician.id,
         shift,
         stops: open
           // What is held opens the first shift, as it does in the problem.
           .filter((stop, index) =>
-            index < held ? shift === 0 : shiftOf(technician.shifts, stop.arriveAt) === shift,
+            index < held
+              ? shift === 0
+              : shiftOf(technician.shifts, stop.arriveAt, mostOvertimeMinutes) === shift,
           )
           .map((stop) => ({ job: stop.callId, start: seconds(stop.arriveAt) })),
       }));

@@ -3,7 +3,10 @@ import type { PlanDto } from '@shared/contract/routes';
 import { PlanRecord } from './stop-record';
 
 /** What of a plan is stored as JSON. */
-export type PlanBody = Pick<PlanDto, 'routes' | 'unplanned' | 'figures' | 'inForce' | 'drivesFrom'>;
+export type PlanBody = Pick<
+  PlanDto,
+  'routes' | 'unplanned' | 'figures' | 'inForce' | 'drivesFrom' | 'gainCents' | 'automatic'
+>;
 
 export function toPlanDto(record: PlanRecord): PlanDto {
   return {

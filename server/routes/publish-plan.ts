@@ -20,6 +20,7 @@ import {
 } from './lock-routes';
 import { withdrawOffer } from './offer-next';
 import { overtakePlans } from './overtake-plans';
+import { writeChanges } from './route-changes';
 import { toPlanDto } from './plan-rows';
 import { settleRoutes } from './settle-routes';
 import { PlanRecord, StopRecord } from './stop-record';
@@ -55,6 +56,7 @@ export async function publishPlan(job: Job, told: SeenPlan): Promise<PlanDto> {
   await plan.save({ transaction: job.tx });
   job.touched.plans.add(plan.id);
   await overtakePlans(job, storm, plan);
+  await writeChanges(job, { id: plan.id, stormId: storm.id, routes: planned });
   const count = [...wanted.values()].reduce((sum, stops) => sum + stops.length, 0);
   job.note('plan', plan.id, `published routes with ${String(count)} stops that may still move`);
   return toPlanDto(plan);
@@ -177,6 +179,8 @@ async function putOnRoute(
     arriveAt: new Date(planned.arriveAt),
     finishAt: new Date(planned.finishAt),
     because: planned.because.slice(0, 300),
+    // Where the plan goes by the store; what is fetched there follows when the route is settled.
+    fetches: planned.fetches ?? null,
   });
   route.push(stop);
 }

@@ -1,6 +1,8 @@
 import { Refusal } from '@shared/domain/errors';
 import { MINUTE_MS } from '@shared/domain/instant';
-import { routeTimes, type StopTimes } from '@shared/domain/route-rules';
+import { fetchesOn } from '@shared/domain/fetch-parts';
+import { routeTimes, type RouteStart, type StopTimes } from '@shared/domain/route-times';
+import type { Settings } from '@shared/contract/office';
 import { saveCall } from '../calls/change-call';
 import type { Job } from '../commands/run-command';
 import { isDuplicateOf } from '../db/sql';
@@ -8,6 +10,7 @@ import { callOf, routeOf, technicianOf, type Routes } from './lock-routes';
 import { offerNext } from './offer-next';
 import type { StopRecord } from './stop-record';
 import { travelNow } from './travel-by-settings';
+import { minutesAtDoor } from './visit-facts';
 import { whereIs } from './where-technicians-are';
 
 /** A time that moves by less is no news, and every board would have to hear of it. */
@@ -22,6 +25,7 @@ export async function settleRoutes(job: Job, routes: Routes): Promise<void> {
   for (const stop of routes.ended) await saveStop(job, stop);
   for (const technicianId of routes.stops.keys()) {
     const route = routeOf(routes, technicianId);
+    setFetches(routes, technicianId);
     const times = timesOf(job, routes, technicianId);
     route.forEach((stop, index) => {
       stop.position = index;
@@ -42,9 +46,12 @@ function timesOf(job: Job, routes: Routes, technicianId: string): StopTimes[] {
       at: whereIs(technician, routes.lastDoors.get(technicianId), shifts, job.now),
       home: [technician.startLon, technician.startLat],
       shifts,
+      shop: shopOf(routes.settings),
+      mostOvertimeMinutes: routes.settings.mostOvertimeMinutes,
     },
     routeOf(routes, technicianId).map((stop) => {
       const { lon, lat } = callOf(routes, stop);
+      const visit = routes.visits.get(stop.callId);
       return {
         state: stop.state,
         locked: stop.locked ?? false,
@@ -52,12 +59,43 @@ function timesOf(job: Job, routes: Routes, technicianId: string): StopTimes[] {
         arriveAt: stop.arriveAt.getTime(),
         driveMinutes: stop.driveMinutes,
         isUnreachable: stop.unreachable ?? false,
+        serviceMinutes: visit
+          ? minutesAtDoor(visit, routes.settings, routes.learned, technicianId)
+          : routes.settings.serviceMinutes,
+        window: visit?.window ?? null,
+        fetches: Boolean(stop.fetches),
       };
     }),
     travelNow(job.roads, routes.settings),
-    routes.settings.serviceMinutes,
   );
 }
+
+/** Which stop the van drives to by the store, and what it fetches there, after any change of its route. */
+function setFetches(routes: Routes, technicianId: string): void {
+  const route = routeOf(routes, technicianId);
+  const fetches = routes.settings.shopPlace
+    ? fetchesOn(
+        route.map((stop) => ({
+          state: stop.state,
+          locked: stop.locked ?? false,
+          needs: routes.visits.get(stop.callId)?.needs ?? [],
+          fetches: stop.fetches ?? null,
+        })),
+        technicianOf(routes, technicianId).van,
+      )
+    : [];
+  route.forEach((stop, index) => {
+    const next = fetches[index] ?? null;
+    if (JSON.stringify(stop.fetches ?? null) !== JSON.stringify(next)) stop.fetches = next;
+  });
+}
+
+/** The company's store, as times are counted with it. */
+export const shopOf = ({
+  shopPlace,
+  shopMinutes,
+}: Pick<Settings, 'shopPlace' | 'shopMinutes'>): RouteStart['shop'] =>
+  shopPlace && { at: shopPlace, minutes: shopMinutes };
 
 function setTimes(stop: StopRecord, times: StopTimes | undefined): void {
   if (!times) return;

@@ -6,6 +6,7 @@ import {
   type InferCreationAttributes,
   type Sequelize,
 } from 'sequelize';
+import type { Part } from '@shared/domain/skills';
 import { STOP_STATES, type PlanDto, type StopDto } from '@shared/contract/routes';
 
 /** One row of `stops`. A call that is declined and offered again gets a new one. */
@@ -31,6 +32,8 @@ export class StopRecord extends Model<
   /** Where the van was known to be when it set off. */
   declare travelFromLon: CreationOptional<number | null>;
   declare travelFromLat: CreationOptional<number | null>;
+  /** Parts that the van fetches at the store on the way to it. */
+  declare fetches: CreationOptional<Partial<Record<Part, number>> | null>;
   declare because: string;
   declare endedBecause: CreationOptional<string | null>;
   declare acceptedAt: CreationOptional<Date | null>;
@@ -57,6 +60,7 @@ export class StopRecord extends Model<
         unreachable: { type: DataTypes.BOOLEAN, allowNull: false, defaultValue: false },
         travelFromLon: DataTypes.DOUBLE,
         travelFromLat: DataTypes.DOUBLE,
+        fetches: DataTypes.JSON,
         because: { type: DataTypes.STRING(300), allowNull: false },
         endedBecause: DataTypes.STRING(300),
         acceptedAt: DataTypes.DATE(3),

@@ -49,6 +49,7 @@ export function toStopDto(stop: StopRecord): StopDto {
     driveMinutes: stop.driveMinutes,
     isUnreachable: stop.unreachable,
     because: stop.because,
+    ...(stop.fetches ? { fetches: stop.fetches } : {}),
     version: stop.version,
   };
 }

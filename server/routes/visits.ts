@@ -3,7 +3,9 @@ import type { DeclineStop, FinishStop, StartTravel, TellEta } from '@shared/cont
 import { STATE_WORDS, type VisitOutcome } from '@shared/domain/call-state';
 import { Refusal } from '@shared/domain/errors';
 import { addMinutes, HOUR_MS, MINUTE_MS, type Instant } from '@shared/domain/instant';
-import { drive, isUnderWay, type RouteStopState } from '@shared/domain/route-rules';
+import { loaded } from '@shared/domain/fetch-parts';
+import { isUnderWay, type RouteStopState } from '@shared/domain/route-rules';
+import { drive } from '@shared/domain/route-times';
 import type { Part } from '@shared/domain/skills';
 import type { LonLat } from '@shared/domain/travel/great-circle';
 import type { CallRecord } from '../calls/call-record';
@@ -21,7 +23,7 @@ import {
   type Routes,
 } from './lock-routes';
 import { openOwnStop } from './open-stop';
-import { settleRoutes } from './settle-routes';
+import { settleRoutes, shopOf } from './settle-routes';
 import { travelNow } from './travel-by-settings';
 import { newestSighting, whereIs } from './where-technicians-are';
 
@@ -73,7 +75,7 @@ export async function startTravel(job: Job, told: Own<typeof StartTravel>): Prom
   if (routeOf(routes, stop.technicianId).some((other) => isUnderWay(other.state)))
     throw new Refusal('technician-busy', 'Finish the stop that you are at before you drive on.');
   const from = told.from ?? placeOf(job, routes, stop.technicianId);
-  const arrival = arrivalFrom(job, routes, from, call);
+  const arrival = arrivalFrom(job, routes, from, call, Boolean(stop.fetches));
   // A drive that is measured needs to have begun where somebody saw it begin.
   const start = told.from ?? seenJustNow(job, routes, stop.technicianId);
   stop.set({
@@ -111,6 +113,7 @@ export async function arrive(job: Job, told: OwnStop): Promise<void> {
   const { routes, stop, call } = await openOwnStop(job, told);
   refuseUnless(stop, ['travelling'], 'arrived at');
   stop.set({ state: 'on-site', arrivedAt: job.at, arriveAt: job.at, etaAt: null });
+  if (stop.fetches) await loadParts(job, technicianOf(routes, stop.technicianId), stop.fetches);
   await stepCall(job, routes, call, 'on-site', 'arrived');
   await settleRoutes(job, routes);
   job.note('stop', stop.id, `arrived at call ${String(call.number)}`);
@@ -176,11 +179,34 @@ export function arrivalFrom(
   { settings }: Pick<Routes, 'settings'>,
   from: LonLat,
   { lon, lat }: Pick<CallRecord, 'lon' | 'lat'>,
+  isByShop = false,
 ): { readonly at: Instant; readonly driveMinutes: number } | null {
   if (lon == null || lat == null) return null;
-  const minutes = drive(travelNow(job.roads, settings), from, [lon, lat]) / MINUTE_MS;
+  const travel = travelNow(job.roads, settings);
+  const shop = isByShop ? shopOf(settings) : null;
+  const driven = shop
+    ? drive(travel, from, shop.at) + drive(travel, shop.at, [lon, lat])
+    : drive(travel, from, [lon, lat]);
+  const minutes = driven / MINUTE_MS;
   if (!Number.isFinite(minutes)) return null;
-  return { at: addMinutes(job.now, minutes), driveMinutes: Math.round(minutes * 10) / 10 };
+  return {
+    at: addMinutes(job.now, minutes + (shop?.minutes ?? 0)),
+    driveMinutes: Math.round(minutes * 10) / 10,
+  };
+}
+
+/** Whoever arrives by the store has the parts on the van. */
+async function loadParts(
+  job: Job,
+  technician: TechnicianRecord,
+  fetched: Partial<Record<Part, number>>,
+): Promise<void> {
+  technician.set({
+    van: loaded(technician.van, fetched),
+    version: (technician.version ?? 0) + 1,
+  });
+  await technician.save({ transaction: job.tx });
+  job.touched.technicians.add(technician.id);
 }
 
 async function takeParts(

@@ -4,7 +4,7 @@ import type { Settings } from '@shared/contract/office';
 import { Refusal } from '@shared/domain/errors';
 import { MINUTE_MS, type Instant } from '@shared/domain/instant';
 import { conditionsAt, conditionsKey, type RoadConditions } from '@shared/domain/roads/conditions';
-import { drive } from '@shared/domain/route-rules';
+import { drive } from '@shared/domain/route-times';
 import { forTheGraph } from '@shared/domain/storm-roads';
 import { writeRemark } from '../calls/change-call';
 import { machine } from '../commands/actor';
@@ -161,6 +161,7 @@ async function moveArrival(job: Job, routes: Routes, technicianId: string): Prom
   const laterBy = arrival - (stop.etaAt ?? stop.arriveAt).getTime();
   if (Math.abs(laterBy) < MINUTE_MS) return;
   const { travelAt } = stop;
+  if (laterBy < 0 && stop.fetches) return;
   if (laterBy < 0 && travelAt) {
     const driving = { id: stop.id, travel_at: travelAt };
     if (await wasToldByTechnician(job.sequelize, driving, job.tx)) return;

@@ -4,6 +4,7 @@ import type { Instant } from '@shared/domain/instant';
 import type { WorkShift } from '@shared/domain/route-rules';
 import type { Job } from '../commands/run-command';
 import { ShiftRecord, TechnicianRecord } from './technician-record';
+import { toShift } from './technician-rows';
 
 /**
  * Technicians by id, locked until the command ends. Whoever changes a route holds its technician's
@@ -38,10 +39,11 @@ export async function shiftsAhead(
     transaction: tx,
   });
   const byTechnician = new Map<string, WorkShift[]>();
-  for (const { technicianId, startsAt, endsAt } of records) {
-    const shifts = byTechnician.get(technicianId) ?? [];
-    byTechnician.set(technicianId, shifts);
-    shifts.push({ startsAt: startsAt.getTime(), endsAt: endsAt.getTime() });
+  for (const record of records) {
+    const shifts = byTechnician.get(record.technicianId) ?? [];
+    byTechnician.set(record.technicianId, shifts);
+    const { breaks, ...shift } = toShift(record);
+    shifts.push(breaks ? { ...shift, breaks } : shift);
   }
   return byTechnician;
 }

@@ -2,7 +2,7 @@ import { randomUUID } from 'node:crypto';
 import type { z } from 'zod';
 import type { AddTechnician, ChangeTechnician, TechnicianDto } from '@shared/contract/routes';
 import { Refusal } from '@shared/domain/errors';
-import type { WorkShift } from '@shared/domain/route-rules';
+import { breaksFault } from '@shared/domain/shift-breaks';
 import type { Job } from '../commands/run-command';
 import { isDuplicateOf } from '../db/sql';
 import { clearRoute, settleRouteOf } from '../routes/clear-route';
@@ -89,17 +89,22 @@ export async function changeTechnician(
 async function writeShifts(
   job: Job,
   technicianId: string,
-  shifts: readonly WorkShift[],
+  shifts: TechnicianDto['shifts'],
 ): Promise<void> {
   if (shifts.some(({ startsAt, endsAt }) => endsAt <= startsAt))
     throw new Refusal('times-disagree', 'A shift ends before it begins.');
+  for (const shift of shifts) {
+    const fault = breaksFault(shift, shift.breaks ?? []);
+    if (fault !== null) throw new Refusal('times-disagree', fault);
+  }
   try {
     await ShiftRecord.bulkCreate(
-      shifts.map(({ startsAt, endsAt }) => ({
+      shifts.map(({ startsAt, endsAt, breaks }) => ({
         id: randomUUID(),
         technicianId,
         startsAt: new Date(startsAt),
         endsAt: new Date(endsAt),
+        breaks: breaks ?? [],
       })),
       { transaction: job.tx },
     );

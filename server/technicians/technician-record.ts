@@ -6,6 +6,7 @@ import {
   type InferCreationAttributes,
   type Sequelize,
 } from 'sequelize';
+import type { ShiftBreak } from '@shared/domain/shift-breaks';
 import type { Part, Skill } from '@shared/domain/skills';
 
 /** One row of `technicians`. */
@@ -59,6 +60,7 @@ export class ShiftRecord extends Model<
   declare technicianId: string;
   declare startsAt: Date;
   declare endsAt: Date;
+  declare breaks: CreationOptional<ShiftBreak[]>;
 
   static register(sequelize: Sequelize): void {
     ShiftRecord.init(
@@ -67,6 +69,7 @@ export class ShiftRecord extends Model<
         technicianId: { type: DataTypes.UUID, allowNull: false },
         startsAt: { type: DataTypes.DATE(3), allowNull: false },
         endsAt: { type: DataTypes.DATE(3), allowNull: false },
+        breaks: { type: DataTypes.JSON, allowNull: false, defaultValue: [] },
       },
       { sequelize, tableName: 'shifts' },
     );

@@ -31,6 +31,16 @@ export async function technicianDtos(
   );
 }
 
+export const toShift = ({
+  startsAt,
+  endsAt,
+  breaks,
+}: ShiftRecord): TechnicianDto['shifts'][number] => ({
+  startsAt: startsAt.getTime(),
+  endsAt: endsAt.getTime(),
+  ...(breaks.length > 0 ? { breaks: breaks.map((one) => ({ ...one })) } : {}),
+});
+
 function toTechnicianDto(record: TechnicianRecord, shifts: readonly ShiftRecord[]): TechnicianDto {
   const { positionLon, positionLat, positionAt } = record;
   return {
@@ -40,10 +50,7 @@ function toTechnicianDto(record: TechnicianRecord, shifts: readonly ShiftRecord[
     skills: record.skills,
     van: record.van,
     start: [record.startLon, record.startLat],
-    shifts: shifts.map((shift) => ({
-      startsAt: shift.startsAt.getTime(),
-      endsAt: shift.endsAt.getTime(),
-    })),
+    shifts: shifts.map(toShift),
     position:
       positionLon === null || positionLat === null || positionAt === null
         ? null

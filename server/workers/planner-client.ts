@@ -1,3 +1,5 @@
+import type { MoveGain } from '@shared/domain/planner/explain-moves';
+import type { WhyUnplanned } from '@shared/domain/planner/explain-unplanned';
 import type { PlanSummary, StopReason } from '@shared/domain/planner/plan-summary';
 import type { Plan, PlanProblem } from '@shared/domain/planner/problem';
 import type { LonLat } from '@shared/domain/travel/great-circle';
@@ -18,6 +20,14 @@ export interface PlannerRequest {
   readonly budgetMs?: number;
   /** Most rounds of search; 0 repairs the plan in force and does not search. */
   readonly iterations?: number;
+  /** Most milliseconds for saying what changes gain and why calls are left out; 0 leaves it out. */
+  readonly explainMs?: number;
+}
+
+/** What a plan does on the route of one technician. */
+export interface RouteSummary {
+  readonly technician: string;
+  readonly summary: PlanSummary;
 }
 
 export interface PlannerResponse {
@@ -27,6 +37,12 @@ export interface PlannerResponse {
   readonly before: { readonly plan: Plan; readonly summary: PlanSummary } | null;
   /** Why each stop stands where it stands. */
   readonly reasons: readonly ({ readonly job: string } & StopReason)[];
+  /** Driving to each stop. */
+  readonly drives: readonly { readonly job: string; readonly seconds: number }[];
+  readonly byTechnician: readonly RouteSummary[];
+  /** What changes gain, and what stands in the way of calls on no route; as many as time allowed. */
+  readonly gains: readonly MoveGain[];
+  readonly unplanned: readonly WhyUnplanned[];
   /** Where the drives come from, in words for the screen. */
   readonly source: string;
   readonly elapsedMs: number;

@@ -104,6 +104,9 @@ export const CompartmentRow = z.strictObject({
 });
 export type CompartmentRow = z.infer<typeof CompartmentRow>;
 
+/** A window that a customer agreed to. */
+export const AgreedWindow = z.strictObject({ from: Moment, to: Moment });
+
 /** A call as every board shows it. */
 export const CallRow = z.strictObject({
   id: Id,
@@ -136,6 +139,8 @@ export const CallRow = z.strictObject({
   unreadTexts: z.int().nonnegative(),
   /** No technician can drive there now: every road is closed or flooded. */
   cutOff: z.boolean(),
+  /** When the customer agreed that the visit begins; left out when nothing was agreed. */
+  window: AgreedWindow.optional(),
   source: z.enum(['phone', 'night-log', 'customer']),
 });
 export type CallRow = z.infer<typeof CallRow>;
@@ -216,7 +221,11 @@ export const ConcludeCall = VersionedCommand.extend({
 });
 export type ConcludeCall = z.infer<typeof ConcludeCall>;
 
-export const ReturnToWaiting = VersionedCommand.extend({ reason: filledLine(300) });
+export const ReturnToWaiting = VersionedCommand.extend({
+  reason: filledLine(300),
+  /** When the next visit is to begin, as agreed with the customer. */
+  window: AgreedWindow.optional(),
+});
 export const AddRemark = Command.extend({ text: prose(2000).pipe(z.string().min(1)) });
 
 /** What is known of whoever rings, from the phone number alone. */

@@ -330,6 +330,12 @@ export const HTTP = {
     reply: routes.PlanDto,
     status: 201,
   },
+  tryPrices: {
+    summary: 'Plan with other prices and compare; nothing is kept',
+    who: DESK,
+    body: routes.TryPrices,
+    reply: routes.PlanTrialDto,
+  },
   publishPlan: {
     summary: 'Publish proposed routes and offer the next stops',
     who: DESK,
@@ -481,6 +487,11 @@ export const HTTP = {
     summary: 'What measured drives say of the speeds of roads',
     who: OFFICE,
     reply: office.MeasuredSpeedsDto,
+  },
+  measuredVisits: {
+    summary: 'What finished visits say of the time at a stop',
+    who: OFFICE,
+    reply: office.MeasuredVisitsDto,
   },
   resetMeasuredSpeeds: {
     summary: 'Forget the drives measured so far; speeds are learned anew',

@@ -4,6 +4,7 @@ import {
   Command,
   filledLine,
   Id,
+  LonLat,
   Moment,
   PhoneNumber,
   Role,
@@ -11,6 +12,7 @@ import {
   VersionedCommand,
 } from './common';
 import { RegionDto } from './areas';
+import { PlanPrices } from './plan-prices';
 
 export const SignInName = z.string().trim().toLowerCase().max(120).pipe(z.email());
 
@@ -50,6 +52,9 @@ export type StormDto = z.infer<typeof StormDto>;
 export const OpenStorm = Command.extend({ stormId: Id, name: filledLine(80) });
 export const CloseStorm = VersionedCommand;
 
+/** What routes do by themselves: nothing, proposals, or publications within limits. */
+export const AUTOMATIC_MODES = ['off', 'propose', 'publish'] as const;
+
 const SpeedPercent = z.int().min(40).max(130);
 
 export const Settings = z.strictObject({
@@ -74,8 +79,19 @@ export const Settings = z.strictObject({
   usesMeasuredSpeeds: z.boolean(),
   measuredFrom: Moment.nullable(),
   serviceMinutes: z.int().min(5).max(480),
-  /** How much more a medicine counts than its money value. */
-  medicineWeight: z.number().min(1).max(100),
+  /** What each further unit of a call adds, of the time at the first. */
+  furtherUnitPercent: z.int().min(0).max(100),
+  /** Whether finished visits correct the time at a stop, by cause and by technician. */
+  usesMeasuredVisits: z.boolean(),
+  /** The company's store, where vans fetch parts that they lack; `null`: nothing is fetched. */
+  shopPlace: LonLat.nullable(),
+  shopMinutes: z.int().min(1).max(120),
+  ...PlanPrices.shape,
+  automaticRoutes: z.enum(AUTOMATIC_MODES),
+  /** A change that gains less stays undone. */
+  automaticGainDollars: z.number().min(0).max(10_000),
+  /** Nothing that begins within so many minutes is moved by the automatic mode. */
+  automaticKeepMinutes: z.int().min(0).max(480),
   pocketKm: z.number().min(0.1).max(10),
   pocketCalls: z.int().min(2).max(50),
   version: Version,
@@ -108,6 +124,25 @@ export const MeasuredSpeedsDto = z.strictObject({
 });
 export type MeasuredSpeedsDto = z.infer<typeof MeasuredSpeedsDto>;
 export const ResetMeasuredSpeeds = VersionedCommand;
+
+const VisitFactor = z.strictObject({
+  name: z.string(),
+  visits: z.int(),
+  /** Times the time that was expected. */
+  factor: z.number(),
+});
+/** What finished visits say of the time at a stop. */
+export const MeasuredVisitsDto = z.strictObject({
+  isUsed: z.boolean(),
+  visits: z.int(),
+  /** Visits that tell nothing, and why. */
+  leftOut: z.array(z.strictObject({ why: z.string(), visits: z.int() })),
+  serviceMinutes: z.number(),
+  all: VisitFactor,
+  byCause: z.array(VisitFactor),
+  byTechnician: z.array(VisitFactor),
+});
+export type MeasuredVisitsDto = z.infer<typeof MeasuredVisitsDto>;
 
 /** Who is signed in and what every screen needs to know first. */
 export const Me = z.strictObject({

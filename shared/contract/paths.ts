@@ -59,6 +59,7 @@ export const PATHS = {
   changeTechnician: ['PATCH', '/api/technicians/:technicianId'],
 
   proposePlan: ['POST', '/api/storms/:stormId/plans'],
+  tryPrices: ['POST', '/api/storms/:stormId/plan-trials'],
   publishPlan: ['POST', '/api/plans/:planId/publication'],
   discardPlan: ['POST', '/api/plans/:planId/discarding'],
   addStop: ['POST', '/api/calls/:callId/stop'],
@@ -91,6 +92,7 @@ export const PATHS = {
   changeSettings: ['PATCH', '/api/settings'],
   measuredSpeeds: ['GET', '/api/measured-speeds'],
   resetMeasuredSpeeds: ['POST', '/api/measured-speeds/reset'],
+  measuredVisits: ['GET', '/api/measured-visits'],
   listUsers: ['GET', '/api/users'],
   addUser: ['POST', '/api/users'],
   changeUser: ['PATCH', '/api/users/:userId'],

@@ -3,6 +3,7 @@ import { VISIT_OUTCOMES, CALL_STATES } from '../domain/call-state';
 import { UNIT_KINDS } from '../domain/cold-unit';
 import { PARTS, SKILLS } from '../domain/skills';
 import { Address, CompartmentRow } from './calls';
+import { PlanPrices } from './plan-prices';
 import {
   Command,
   filledLine,
@@ -16,7 +17,18 @@ import {
   VersionedCommand,
 } from './common';
 
-export const Shift = z.strictObject({ startsAt: Moment, endsAt: Moment });
+/** A pause of so many minutes that begins between two moments. */
+export const ShiftBreak = z.strictObject({
+  from: Moment,
+  to: Moment,
+  minutes: z.int().min(5).max(180),
+});
+export const Shift = z.strictObject({
+  startsAt: Moment,
+  endsAt: Moment,
+  /** Left out when there are none. */
+  breaks: z.array(ShiftBreak).max(3).optional(),
+});
 
 export const Position = z.strictObject({
   lonLat: LonLat,
@@ -88,6 +100,8 @@ export const StopDto = z.strictObject({
   isUnreachable: z.boolean(),
   /** Why it has this place, in words. */
   because: z.string(),
+  /** Parts that the van fetches at the company's store on the way to it; left out when there are none. */
+  fetches: z.partialRecord(z.enum(PARTS), z.int().positive()).optional(),
   version: Version,
 });
 export type StopDto = z.infer<typeof StopDto>;
@@ -133,10 +147,24 @@ export const PlanFigures = z.strictObject({
   driveMiles: z.number(),
   lateMinutes: z.number(),
   stops: z.int(),
+  /** Plans of an earlier version do not say these. */
+  overtimeMinutes: z.number().optional(),
+  waitHours: z.number().optional(),
+  leftOut: z.int().optional(),
   /** Stops with another technician, or a start that moves by more than 30 minutes. */
   moved: z.int(),
 });
 export type PlanFigures = z.infer<typeof PlanFigures>;
+
+/** What one technician's route does. */
+export const RouteFigures = z.strictObject({
+  savedCents: z.int(),
+  driveMinutes: z.number(),
+  driveMiles: z.number(),
+  lateMinutes: z.number(),
+  overtimeMinutes: z.number(),
+});
+export type RouteFigures = z.infer<typeof RouteFigures>;
 
 export const PlanDto = z.strictObject({
   id: Id,
@@ -156,8 +184,22 @@ export const PlanDto = z.strictObject({
           driveMinutes: z.number(),
           firm: z.boolean(),
           because: z.string(),
+          /** Parts that are fetched at the store on the way to it; left out when there are none. */
+          fetches: z.partialRecord(z.enum(PARTS), z.int().positive()).optional(),
+          /** What putting it here gains over leaving it as it was; only of stops that are new here. */
+          gainCents: z.int().optional(),
         }),
       ),
+      /** Breaks and the stop at the store; left out when there are none. */
+      halts: z
+        .array(
+          z.strictObject({ kind: z.enum(['break', 'shop']), startAt: Moment, finishAt: Moment }),
+        )
+        .optional(),
+      /** What this route does; plans of an earlier version do not say it. */
+      figures: RouteFigures.optional(),
+      /** How many of this technician's stops in force it changes. */
+      changes: z.int().optional(),
     }),
   ),
   unplanned: z.array(
@@ -165,11 +207,17 @@ export const PlanDto = z.strictObject({
       callId: Id,
       reason: z.enum(['skill', 'part', 'no-shift', 'capacity', 'unlocated', 'cut-off']),
       words: z.string(),
+      /** What would bring it on a route, as tried; left out when nothing was found. */
+      help: z.array(z.string()).optional(),
     }),
   ),
   figures: PlanFigures,
   /** The same figures for the routes in force, to compare. */
   inForce: PlanFigures,
+  /** How much lower the price of the plan is than that of the routes in force, changes counted. */
+  gainCents: z.int().optional(),
+  /** Of a plan that was made by itself: what brought it about, and why it was not published. */
+  automatic: z.strictObject({ because: z.string(), heldBack: z.string().nullable() }).optional(),
   /** Where its drives come from, in words; plans of an earlier version do not say it. */
   drivesFrom: z.string().optional(),
   version: Version,
@@ -181,6 +229,21 @@ export const ProposePlan = Command.extend({
   /** How long to search, in seconds of one core. */
   seconds: z.number().min(0.05).max(10).default(1),
 });
+/** Plans with other prices than those that are set, and keeps nothing of it. */
+export const TryPrices = z.strictObject({
+  seconds: z.number().min(0.05).max(5).default(1),
+  prices: PlanPrices.partial(),
+});
+export const PlanTrialDto = z.strictObject({
+  inForce: PlanFigures,
+  /** A plan by the settings, and one by the prices that were tried, from the same facts and moment. */
+  asSet: PlanFigures,
+  tried: PlanFigures,
+  /** Calls that only one of the two puts on a route. */
+  onlyAsSet: z.array(Id),
+  onlyTried: z.array(Id),
+});
+export type PlanTrialDto = z.infer<typeof PlanTrialDto>;
 export const PublishPlan = VersionedCommand;
 export const DiscardPlan = VersionedCommand;
 

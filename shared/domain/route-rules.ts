@@ -1,7 +1,7 @@
-import { HOUR_MS, MINUTE_MS, type Instant } from './instant';
+import { MINUTE_MS, type Instant } from './instant';
+import type { ShiftBreak } from './shift-breaks';
 import type { Skill } from './skills';
 import type { LonLat } from './travel/great-circle';
-import type { TravelTimes } from './travel/travel-times';
 
 /** The states of a stop that is still to be done. */
 export type RouteStopState = 'planned' | 'offered' | 'accepted' | 'travelling' | 'on-site';
@@ -15,6 +15,8 @@ export interface RouteStop {
 export interface WorkShift {
   readonly startsAt: Instant;
   readonly endsAt: Instant;
+  /** Left out when there are none. */
+  readonly breaks?: readonly ShiftBreak[];
 }
 
 /** Whether the stop is the technician's by their own word. */
@@ -70,86 +72,17 @@ export const lastSeen = (home: LonLat, sightings: readonly Sighting[]): LonLat =
     seenAt: -Infinity,
   }).at;
 
-/** Nobody is planned to work longer than this past the end of a shift; the planner's own limit. */
-const MOST_OVERTIME_MS = HOUR_MS;
-
-/** The shift in which a promised arrival falls; the last one when it is later than all. */
-export function shiftOf(shifts: readonly WorkShift[], arriveAt: Instant): number {
-  const index = shifts.findIndex((shift) => shift.endsAt + MOST_OVERTIME_MS > arriveAt);
+/**
+ * The shift in which a promised arrival falls; the last one when it is later than all.
+ *
+ * @param mostOvertimeMinutes nobody is planned to work longer than this past the end of a shift
+ */
+export function shiftOf(
+  shifts: readonly WorkShift[],
+  arriveAt: Instant,
+  mostOvertimeMinutes: number,
+): number {
+  const overtime = mostOvertimeMinutes * MINUTE_MS;
+  const index = shifts.findIndex((shift) => shift.endsAt + overtime > arriveAt);
   return index < 0 ? shifts.length - 1 : index;
 }
-
-export interface TimedStop extends RouteStop {
-  /** Null for a household whose place nobody knows yet: no drive to it can be counted. */
-  readonly lonLat: LonLat | null;
-  readonly arriveAt: Instant;
-  readonly driveMinutes: number;
-  /** As it was found last. */
-  readonly isUnreachable?: boolean;
-}
-
-export interface StopTimes {
-  readonly arriveAt: Instant;
-  readonly finishAt: Instant;
-  readonly driveMinutes: number;
-  /** False where no open road leads there from the place before; the drive is then the one of before. */
-  readonly isReachable: boolean;
-}
-
-export interface RouteStart {
-  readonly now: Instant;
-  /** Where the technician is now. */
-  readonly at: LonLat;
-  /** Where every later shift begins. */
-  readonly home: LonLat;
-  /** In their order, those that are over left out. */
-  readonly shifts: readonly WorkShift[];
-}
-
-/**
- * When each stop of a route is reached and left, in the order of the route. A stop under way keeps
- * the arrival that is known of it; a stop that was promised for a later shift waits for that shift.
- */
-export function routeTimes(
-  { now, at, home, shifts }: RouteStart,
-  stops: readonly TimedStop[],
-  travel: TravelTimes,
-  serviceMinutes: number,
-): StopTimes[] {
-  const service = serviceMinutes * MINUTE_MS;
-  let place = at;
-  let free = now;
-  let shift = -1;
-  return stops.map((stop) => {
-    if (isUnderWay(stop.state)) {
-      place = stop.lonLat ?? place;
-      free = Math.max(now, stop.arriveAt + service);
-      // Whoever is there has reached it; for one on the way the command that moved it knows better.
-      const isReachable = stop.state === 'on-site' || !stop.isUnreachable;
-      return {
-        arriveAt: stop.arriveAt,
-        finishAt: free,
-        driveMinutes: stop.driveMinutes,
-        isReachable,
-      };
-    }
-    const promised = Math.max(shift, shiftOf(shifts, stop.arriveAt));
-    const begins = shifts[promised]?.startsAt ?? -Infinity;
-    // The first shift may have begun; whoever starts a shift later starts it at home.
-    if (promised > shift && begins > free) place = home;
-    shift = promised;
-    free = Math.max(free, begins);
-    const found = stop.lonLat ? drive(travel, place, stop.lonLat) : 0;
-    const isReachable = Number.isFinite(found);
-    // A stop stays where it is and shows some time; a warning says that it cannot be kept.
-    const driveMs = isReachable ? found : stop.driveMinutes * MINUTE_MS;
-    const arriveAt = free + driveMs;
-    place = stop.lonLat ?? place;
-    free = arriveAt + service;
-    return { arriveAt, finishAt: free, driveMinutes: driveMs / MINUTE_MS, isReachable };
-  });
-}
-
-/** Milliseconds from door to door; Infinity where no open road leads. */
-export const drive = (travel: TravelTimes, from: LonLat, to: LonLat): number =>
-  (travel.matrix([from, to])[1] ?? 0) * 1000;

@@ -20,3 +20,18 @@ export const PARTS = [
   'power-cord',
 ] as const;
 export type Part = (typeof PARTS)[number];
+
+/** How each part is said within a sentence. */
+export const PART_WORDS: Readonly<Record<Part, string>> = {
+  'start-relay': 'start relay',
+  overload: 'overload protector',
+  'run-capacitor': 'run capacitor',
+  'control-board': 'control board',
+  'inverter-board': 'inverter board',
+  'evaporator-fan': 'evaporator fan',
+  'condenser-fan': 'condenser fan',
+  thermostat: 'thermostat',
+  'defrost-heater': 'defrost heater',
+  'door-gasket': 'door gasket',
+  'power-cord': 'power cord',
+};

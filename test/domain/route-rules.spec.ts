@@ -1,4 +1,4 @@
-import { HOUR_MS, MINUTE_MS } from '@shared/domain/instant';
+import { HOUR_MS } from '@shared/domain/instant';
 import {
   firmCount,
   heldCount,
@@ -6,14 +6,11 @@ import {
   missingSkills,
   offersDue,
   placeOnRoute,
-  routeTimes,
   shiftOf,
   type RouteStop,
   type RouteStopState,
-  type TimedStop,
 } from '@shared/domain/route-rules';
 import type { LonLat } from '@shared/domain/travel/great-circle';
-import type { TravelTimes } from '@shared/domain/travel/travel-times';
 
 const NOON = Date.UTC(2026, 9, 3, 12);
 const route = (...states: (RouteStopState | 'locked')[]): RouteStop[] =>
@@ -88,98 +85,8 @@ describe('shiftOf', () => {
     { hour: 9, shift: 1, why: 'past overtime' },
     { hour: 40, shift: 1, why: 'later than all' },
   ])('puts an arrival $why into shift $shift', ({ hour, shift }) => {
-    expect(shiftOf(shifts, NOON + hour * HOUR_MS)).toBe(shift);
+    expect(shiftOf(shifts, NOON + hour * HOUR_MS, 60)).toBe(shift);
   });
 
-  it('knows no shift where there is none', () => expect(shiftOf([], NOON)).toBe(-1));
-});
-
-/** Drives of as many minutes as the longitudes are degrees apart. */
-const TRAVEL: TravelTimes = {
-  source: 'test',
-  distanceKm: () => 0,
-  matrix: (points) => {
-    const [from, to] = points;
-    return Float64Array.from([0, 60 * Math.abs((to?.[0] ?? 0) - (from?.[0] ?? 0)), 0, 0]);
-  },
-};
-const minutes = (ms: number): number => (ms - NOON) / MINUTE_MS;
-const stopAt = (lon: number | null, told: Partial<TimedStop> = {}): TimedStop => ({
-  state: 'planned',
-  locked: false,
-  lonLat: lon === null ? null : [lon, 0],
-  arriveAt: NOON,
-  driveMinutes: 0,
-  ...told,
-});
-
-describe('routeTimes', () => {
-  const start = {
-    now: NOON,
-    at: [10, 0] as LonLat,
-    home: [0, 0] as LonLat,
-    shifts: [{ startsAt: NOON - HOUR_MS, endsAt: NOON + 8 * HOUR_MS }],
-  };
-  const times = (stops: TimedStop[], from = start) =>
-    routeTimes(from, stops, TRAVEL, 30).map((one) => [
-      minutes(one.arriveAt),
-      minutes(one.finishAt),
-      one.driveMinutes,
-    ]);
-
-  it('chains drives and work from where the technician is', () => {
-    expect(times([stopAt(15), stopAt(35)])).toEqual([
-      [5, 35, 5],
-      [55, 85, 20],
-    ]);
-  });
-
-  it('keeps the known arrival of a stop under way, and what follows starts from its door', () => {
-    const underWay = stopAt(40, {
-      state: 'travelling',
-      arriveAt: NOON + 12 * MINUTE_MS,
-      driveMinutes: 12,
-    });
-    expect(times([underWay, stopAt(35)])).toEqual([
-      [12, 42, 12],
-      [47, 77, 5],
-    ]);
-  });
-
-  it('does not let work that takes too long end in the past', () => {
-    const late = stopAt(10, { state: 'on-site', arriveAt: NOON - 3 * HOUR_MS });
-    expect(times([late, stopAt(20)])).toEqual([
-      [-180, 0, 0],
-      [10, 40, 10],
-    ]);
-  });
-
-  it('waits for a shift that is yet to begin, at home', () => {
-    const from = {
-      ...start,
-      shifts: [{ startsAt: NOON + HOUR_MS, endsAt: NOON + 8 * HOUR_MS }],
-    };
-    expect(times([stopAt(7)], from)).toEqual([[67, 97, 7]]);
-  });
-
-  it('leaves a stop of tomorrow to tomorrow, and starts that day at home', () => {
-    const from = {
-      ...start,
-      shifts: [...start.shifts, { startsAt: NOON + 20 * HOUR_MS, endsAt: NOON + 28 * HOUR_MS }],
-    };
-    expect(
-      times([stopAt(15), stopAt(3, { arriveAt: NOON + 21 * HOUR_MS }), stopAt(4)], from),
-    ).toEqual([
-      [5, 35, 5],
-      [1203, 1233, 3],
-      [1234, 1264, 1],
-    ]);
-  });
-
-  it('counts no drive to a place that nobody knows', () => {
-    expect(times([stopAt(null), stopAt(12)])).toEqual([
-      [0, 30, 0],
-      [32, 62, 2],
-    ]);
-  });
+  it('knows no shift where there is none', () => expect(shiftOf([], NOON, 60)).toBe(-1));
 });

@@ -24,13 +24,13 @@ import {
   stepsSoFar,
 } from '@shared/domain/phone-check/phone-check';
 import type { Answer, CheckUnit, Question } from '@shared/domain/phone-check/question';
+import { PART_WORDS } from '@shared/domain/skills';
 import { Announce } from '../core/announce';
 import { Clock } from '../core/clock';
 import { Drafts } from '../core/drafts';
 import { CallModel } from './call-model';
 import { type CheckDraft, checkKey, EMPTY_CHECK, isCheckDraft, timerWords } from './check-draft';
 import { UNIT_WORDS } from './compartment-words';
-import { PART_WORDS } from './part-words';
 import { SKILL_WORDS } from './queue-words';
 
 /**

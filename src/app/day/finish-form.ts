@@ -14,8 +14,7 @@ import {
 } from '@angular/core';
 import type { StopCard, TechnicianDto } from '@shared/contract/routes';
 import { VISIT_OUTCOMES, type VisitOutcome } from '@shared/domain/call-state';
-import { type Part, PARTS } from '@shared/domain/skills';
-import { PART_WORDS } from '../board/part-words';
+import { PART_WORDS, type Part, PARTS } from '@shared/domain/skills';
 import { Drafts } from '../core/drafts';
 import { formDraftKey } from './day-orders';
 import { OUTCOME_CHOICES } from './day-words';
