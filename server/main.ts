@@ -16,6 +16,7 @@ import { regionToStart } from './region/region-to-start';
 import { createPlannerWorker } from './workers/planner-client';
 import { createPocketsWorker } from './workers/pockets-client';
 import { createRoadsWorker, RoadsClient } from './workers/roads-client';
+import { watchRoutes } from './routes/watch-routes';
 import { watchRoads } from './storm-roads/watch-roads';
 import { startOutbox } from './texts/outbox';
 import { poll } from './texts/poll';
@@ -80,6 +81,7 @@ async function main(): Promise<void> {
   outbox.wake = () => worker.wake();
 
   const roadWatch = watchRoads(app.context);
+  const routeWatch = watchRoutes(app.context);
 
   const tidying = poll(
     async () => {
@@ -109,7 +111,7 @@ async function main(): Promise<void> {
     if (isStopping) return;
     isStopping = true;
     setTimeout(() => process.exit(1), DRAIN_MS).unref();
-    await Promise.all([worker.stop(), roadWatch.stop(), tidying.stop()]);
+    await Promise.all([worker.stop(), roadWatch.stop(), routeWatch.stop(), tidying.stop()]);
     await app.close();
     await Promise.all([planner.close(), pockets.close(), roadsThread.close(), logReader.close()]);
     await sequelize.close();
