@@ -165,9 +165,14 @@ export class CallModel {
     );
   }
 
-  returnToWaiting(reason: string): Promise<boolean> {
+  /** @param window when the customer agreed that the next visit begins */
+  returnToWaiting(
+    reason: string,
+    window: { readonly from: number; readonly to: number } | null = null,
+  ): Promise<boolean> {
+    const body = { reason, ...(window ? { window: { ...window } } : {}) };
     return this.versioned((callId, stamp) =>
-      this.api.call('returnToWaiting', { params: { callId }, body: { reason, ...stamp } }),
+      this.api.call('returnToWaiting', { params: { callId }, body: { ...body, ...stamp } }),
     );
   }
 

@@ -35,11 +35,21 @@ import { ConcludeForm } from './conclude-form';
 import { PhoneCheckPanel } from './phone-check-panel';
 import { LANE_WORDS, lossWords } from './queue-words';
 import { fromNowWords, whenWords } from './time-words';
+import { ReturnForm } from './return-form';
 
 /** The open call: who and where, its strip with the reasons, the phone check, texts and history. */
 @Component({
   selector: 'thaw-call-panel',
-  imports: [AmendForm, CallThread, ColdStrip, ConcludeForm, DayTimePipe, MatIcon, PhoneCheckPanel],
+  imports: [
+    AmendForm,
+    CallThread,
+    ColdStrip,
+    ConcludeForm,
+    DayTimePipe,
+    MatIcon,
+    PhoneCheckPanel,
+    ReturnForm,
+  ],
   templateUrl: './call-panel.html',
   styleUrls: ['../intake/fields.scss', './call-panel.scss'],
   providers: [CallModel],

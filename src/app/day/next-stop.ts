@@ -2,14 +2,15 @@ import { ChangeDetectionStrategy, Component, computed, inject, input } from '@an
 import { MatIcon } from '@angular/material/icon';
 import type { StopCard, TechnicianDto } from '@shared/contract/routes';
 import type { Instant } from '@shared/domain/instant';
+import { PART_WORDS } from '@shared/domain/skills';
 import { ColdStrip } from '../board/cold-strip';
 import { stripFactsOf } from '../board/cold-strip-scale';
 import { COMPARTMENT_WORDS, UNIT_WORDS } from '../board/compartment-words';
-import { PART_WORDS } from '../board/part-words';
 import { SKILL_WORDS } from '../board/queue-words';
 import { fromNowWords, whenWords } from '../board/time-words';
 import { Zone } from '../core/zone';
 import { placeDoubt } from '../intake/address-words';
+import { fetchWords } from '../routes/fetch-words';
 import { saveVerdict, valuedFactsOf, verdictWords } from '../routes/save-verdict';
 import { STOP_STATE_WORDS } from '../routes/stop-words';
 import { cautionsFor, geoLink, partsToBring, phoneWords } from './day-words';
@@ -36,6 +37,8 @@ export class NextStop {
   protected readonly unitWords = UNIT_WORDS;
   protected readonly partWords = PART_WORDS;
   protected readonly skillWords = SKILL_WORDS;
+
+  protected readonly fetchWords = fetchWords;
 
   protected readonly geo = computed(() => geoLink(this.card()));
   /** Where the point on the map is, when it is not the house's own. */

@@ -1,18 +1,27 @@
 import type { Settings } from '@shared/contract/office';
 import { readPhone } from '@shared/domain/phone-number';
+import { PLAN_GROUPS } from './plan-settings';
 
-/** Measured speeds are switched where they are shown, not in a field. */
-export const NOT_IN_FIELDS = ['version', 'usesMeasuredSpeeds', 'measuredFrom'] as const;
+/** What was measured is switched where it is shown, and the store is a place on the map. */
+export const NOT_IN_FIELDS = [
+  'version',
+  'usesMeasuredSpeeds',
+  'measuredFrom',
+  'usesMeasuredVisits',
+  'shopPlace',
+] as const;
 export type SettingKey = Exclude<keyof Settings, (typeof NOT_IN_FIELDS)[number]>;
 
 export interface SettingField {
   readonly key: SettingKey;
   readonly label: string;
-  readonly kind: 'text' | 'phone' | 'number' | 'time';
+  readonly kind: 'text' | 'phone' | 'number' | 'time' | 'choice';
   readonly unit: string;
   readonly least?: number;
   readonly most?: number;
   readonly isWhole?: boolean;
+  /** With `choice`. */
+  readonly choices?: readonly { readonly value: string; readonly label: string }[];
   readonly meaning: string;
   /** Where the value that it starts with comes from. */
   readonly source: string;
@@ -47,11 +56,13 @@ function percentField(
   };
 }
 
-/** Every setting in plain words. The ranges are the contract's; a test holds them to it. */
-export const SETTING_GROUPS: readonly {
+export interface SettingGroup {
   readonly title: string;
   readonly fields: readonly SettingField[];
-}[] = [
+}
+
+/** Every setting in plain words. The ranges are the contract's; a test holds them to it. */
+export const SETTING_GROUPS: readonly SettingGroup[] = [
   {
     title: 'The company',
     fields: [
@@ -119,16 +130,6 @@ export const SETTING_GROUPS: readonly {
         meaning: 'Without a further step; then another dispatcher may take the call.',
         source: OUR_ESTIMATE,
       },
-      {
-        key: 'medicineWeight',
-        label: 'A medicine counts',
-        kind: 'number',
-        unit: 'times its value',
-        least: 1,
-        most: 100,
-        meaning: 'Moves calls with medicine up in the queue and on the routes.',
-        source: OUR_ESTIMATE,
-      },
     ],
   },
   {
@@ -167,8 +168,31 @@ export const SETTING_GROUPS: readonly {
         meaning: 'From arrival to departure, on average.',
         source: 'Our estimate, no source; your own times replace it.',
       },
+      {
+        key: 'furtherUnitPercent',
+        label: 'Each further unit adds',
+        kind: 'number',
+        unit: '% of that',
+        least: 0,
+        most: 100,
+        isWhole: true,
+        meaning: 'The way, the talk and the tools are there already.',
+        source: OUR_ESTIMATE,
+      },
+      {
+        key: 'shopMinutes',
+        label: 'A stop at the store takes',
+        kind: 'number',
+        unit: 'min',
+        least: 1,
+        most: 120,
+        isWhole: true,
+        meaning: 'Where vans fetch parts that they lack.',
+        source: OUR_ESTIMATE,
+      },
     ],
   },
+  ...PLAN_GROUPS,
   {
     title: 'Speeds on the road',
     fields: [
@@ -227,6 +251,8 @@ export function settingFault(field: SettingField, text: string): string | null {
       return phoneOf(text) === null ? 'Ten digits are needed, as in 252 555 0142.' : null;
     case 'time':
       return minutesOf(text) === null ? 'A time is needed, as in 21:00.' : null;
+    case 'choice':
+      return field.choices?.some(({ value }) => value === text) ? null : 'Choose one.';
     case 'number': {
       const value = numberOf(text);
       const { least = 0, most = Infinity } = field;
@@ -242,6 +268,8 @@ export function settingValue(field: SettingField, text: string): string | number
   switch (field.kind) {
     case 'text':
       return text.trim();
+    case 'choice':
+      return text;
     case 'phone':
       return phoneOf(text) ?? text;
     case 'time':

@@ -22,7 +22,9 @@ import { FAULTY, focusFirst, OVERTAKEN } from './focus-first';
 import { inWords, showFaults } from './form-words';
 import { type Overtaken, overtaken } from './merge';
 import { MeasuredSpeeds } from './measured-speeds';
+import { MeasuredVisits } from './measured-visits';
 import { OrderId } from './order-id';
+import { StorePlace } from './store-place';
 import {
   SETTING_FIELDS,
   SETTING_GROUPS,
@@ -36,7 +38,16 @@ import {
 /** Everything that the office may set, with what it means and where its first value comes from. */
 @Component({
   selector: 'thaw-settings-part',
-  imports: [MatButton, MatFormFieldModule, MatIcon, MatInput, MeasuredSpeeds, ReactiveFormsModule],
+  imports: [
+    MatButton,
+    MatFormFieldModule,
+    MatIcon,
+    MatInput,
+    MeasuredSpeeds,
+    MeasuredVisits,
+    ReactiveFormsModule,
+    StorePlace,
+  ],
   templateUrl: './settings-part.html',
   styleUrls: ['./parts.scss', './settings-part.scss'],
   changeDetection: ChangeDetectionStrategy.OnPush,

@@ -41,6 +41,36 @@ describe('a shift as it is written', () => {
   });
 });
 
+describe('a break of a shift', () => {
+  const night = { date: '2026-10-03', from: '22:00', to: '06:00' };
+  const pause = { from: '01:00', to: '03:00', minutes: '30' };
+
+  it('lies on the next day when its times come before the shift begins, and reads back', () => {
+    const read = fromEntry({ ...night, breaks: [pause] }, ZONE);
+    expect(read).toMatchObject({
+      // 01:00 in New York in October is 05:00 UTC.
+      breaks: [{ from: Date.UTC(2026, 9, 4, 5), to: Date.UTC(2026, 9, 4, 7), minutes: 30 }],
+    });
+    expect(toEntry(read as Shift, ZONE).breaks).toEqual([pause]);
+  });
+
+  it.each([
+    [{ ...pause, from: '' }, 'between which times'],
+    [{ ...pause, minutes: '4' }, '5 to 180 minutes'],
+    [{ ...pause, to: '05:45' }, 'does not lie within its shift'],
+    [{ ...pause, from: '03:00', to: '01:00' }, 'at the latest before'],
+  ])('says what is wrong with %j', (entry, words) => {
+    expect(fromEntry({ ...night, breaks: [entry] }, ZONE)).toContain(words);
+  });
+
+  it('makes two shifts with the same hours differ', () => {
+    const one = { startsAt: 60_000, endsAt: 9_000_000 };
+    const broken = { ...one, breaks: [{ from: 600_000, to: 1_200_000, minutes: 10 }] };
+    expect(sameShifts([one], [broken])).toBe(false);
+    expect(sameShifts([broken], [{ ...broken }])).toBe(true);
+  });
+});
+
 describe('overlapIn', () => {
   it('finds two shifts that share time, and lets them touch', () => {
     const [early, late, long] = [

@@ -21,13 +21,13 @@ import { readCoordinates } from '../intake/coordinates';
 
 const DEBOUNCE_MS = 150;
 
-/** Where a technician's day begins: an address of the region, or latitude and longitude. */
+/** A place of the company, such as where a technician's day begins: an address of the region, or latitude and longitude. */
 @Component({
   selector: 'thaw-start-place',
   imports: [MatAutocompleteModule, MatFormFieldModule, MatInput, ReactiveFormsModule],
   template: `
     <mat-form-field>
-      <mat-label>Starts from</mat-label>
+      <mat-label>{{ label() }}</mat-label>
       <input
         #field
         matInput
@@ -59,6 +59,7 @@ const DEBOUNCE_MS = 150;
 export class StartPlace {
   private readonly api = inject(Api);
 
+  readonly label = input('Starts from');
   readonly point = input.required<LonLat | null>();
   readonly error = input<string | null>(null);
   readonly changed = output<LonLat | null>();

@@ -17,8 +17,7 @@ import { MatFormFieldModule } from '@angular/material/form-field';
 import { MatIcon } from '@angular/material/icon';
 import { MatInput } from '@angular/material/input';
 import type { TechnicianDto } from '@shared/contract/routes';
-import { PARTS, type Part, SKILLS, type Skill } from '@shared/domain/skills';
-import { PART_WORDS } from '../board/part-words';
+import { PART_WORDS, PARTS, type Part, SKILLS, type Skill } from '@shared/domain/skills';
 import { Announce } from '../core/announce';
 import { Api, newId } from '../core/api';
 import { Clock } from '../core/clock';
@@ -32,8 +31,11 @@ import {
   fromEntry,
   nextEntry,
   overlapIn,
+  type BreakEntry,
+  MOST_BREAKS,
   type Shift,
   type ShiftEntry,
+  USUAL_BREAK,
   toEntry,
 } from './shift-entry';
 import { SKILL_WORDS } from './skill-words';
@@ -106,6 +108,7 @@ export class TechnicianForm {
   });
   protected readonly startError = signal<string | null>(null);
   protected readonly shifts = signal<readonly ShiftEntry[]>([]);
+  protected readonly mostBreaks = MOST_BREAKS;
   protected readonly shiftErrors = signal<readonly string[]>([]);
   /** Shifts that are over: not shown, and not thrown away either. */
   private readonly pastShifts = signal<readonly Shift[]>([]);
@@ -140,6 +143,22 @@ export class TechnicianForm {
       return;
     }
     this.shifts.update((all) => [...all, nextEntry(all, this.clock.exact(), this.zone.name())]);
+  }
+
+  protected setBreak(shift: number, index: number, part: Partial<BreakEntry>): void {
+    const breaks = this.shifts()[shift]?.breaks ?? [];
+    this.setShift(shift, {
+      breaks: breaks.map((one, i) => (i === index ? { ...one, ...part } : one)),
+    });
+  }
+
+  protected addBreak(shift: number): void {
+    this.setShift(shift, { breaks: [...(this.shifts()[shift]?.breaks ?? []), USUAL_BREAK] });
+  }
+
+  protected removeBreak(shift: number, index: number): void {
+    const breaks = this.shifts()[shift]?.breaks ?? [];
+    this.setShift(shift, { breaks: breaks.filter((_, i) => i !== index) });
   }
 
   protected removeShift(index: number): void {
@@ -301,7 +320,11 @@ const mutable = (told: TechnicianTold) => ({
   skills: [...told.skills],
   van: { ...told.van },
   start: [told.start[0], told.start[1]] as [number, number],
-  shifts: told.shifts.map((shift) => ({ ...shift })),
+  shifts: told.shifts.map(({ startsAt, endsAt, breaks }) => ({
+    startsAt,
+    endsAt,
+    ...(breaks && breaks.length > 0 ? { breaks: breaks.map((one) => ({ ...one })) } : {}),
+  })),
   active: told.active,
 });
 

@@ -16,7 +16,8 @@ type Figures = PlanDto['figures'];
 
 interface FigureKind {
   readonly label: string;
-  readonly of: (figures: Figures) => number;
+  /** Left out where a plan of an earlier version does not say it. */
+  readonly of: (figures: Figures) => number | undefined;
   readonly words: (value: number) => string;
   /** `neither`: more of it is neither good nor bad. */
   readonly good: 'more' | 'less' | 'neither';
@@ -31,30 +32,38 @@ const FIGURES: readonly FigureKind[] = [
   { label: 'Miles', of: (f) => f.driveMiles, words: whole, good: 'less' },
   { label: 'Driving', of: (f) => f.driveMinutes, words: minutes, good: 'less' },
   { label: 'Lateness', of: (f) => f.lateMinutes, words: minutes, good: 'less' },
+  { label: 'Overtime', of: (f) => f.overtimeMinutes, words: minutes, good: 'less' },
   { label: 'Stops', of: (f) => f.stops, words: whole, good: 'more' },
+  { label: 'On no route', of: (f) => f.leftOut, words: whole, good: 'less' },
 ];
+
+/** One set of figures against another, figure by figure. */
+export const comparedFigures = (figures: Figures, inForce: Figures): FigureLine[] =>
+  FIGURES.flatMap(({ label, of, words, good }): FigureLine[] => {
+    const [was, is] = [of(inForce), of(figures)];
+    if (was === undefined || is === undefined) return [];
+    const [before, after] = [words(was), words(is)];
+    // What reads the same is the same, whatever the cents say.
+    if (before === after) {
+      return [{ label, inForce: before, proposed: after, difference: 'same', turn: 'same' }];
+    }
+    return [
+      {
+        label,
+        inForce: before,
+        proposed: after,
+        difference: `${words(Math.abs(is - was))} ${is > was ? 'more' : 'less'}`,
+        turn: turnOf(is - was, good),
+      },
+    ];
+  });
 
 /** The proposal against the routes in force, figure by figure. */
 export function figureLines({
   figures,
   inForce,
 }: Pick<PlanDto, 'figures' | 'inForce'>): FigureLine[] {
-  const lines = FIGURES.map(({ label, of, words, good }): FigureLine => {
-    const before = words(of(inForce));
-    const after = words(of(figures));
-    const change = of(figures) - of(inForce);
-    // What reads the same is the same, whatever the cents say.
-    if (before === after) {
-      return { label, inForce: before, proposed: after, difference: 'same', turn: 'same' };
-    }
-    return {
-      label,
-      inForce: before,
-      proposed: after,
-      difference: `${words(Math.abs(change))} ${change > 0 ? 'more' : 'less'}`,
-      turn: turnOf(change, good),
-    };
-  });
+  const lines = comparedFigures(figures, inForce);
   lines.push({
     label: 'Stops moved',
     inForce: '',
@@ -77,6 +86,8 @@ export interface CallChange {
   readonly otherTechnicianId: string | null;
   /** With `retimed`: later when positive. */
   readonly laterMs: number;
+  /** What this change gains by itself, where the planner has found it out. */
+  readonly gainCents?: number | undefined;
 }
 
 /** What the proposal changes for one technician. */
@@ -106,12 +117,12 @@ export function changesByTechnician(
     byTechnician.set(technicianId, known);
     return known;
   };
-  for (const { callId, technicianId, arriveAt } of after.values()) {
+  for (const { callId, technicianId, arriveAt, gainCents } of after.values()) {
     const was = before.get(callId);
     const mine = of(technicianId);
-    if (!was) mine.changes.push(change(callId, 'added'));
+    if (!was) mine.changes.push({ ...change(callId, 'added'), gainCents });
     else if (was.technicianId !== technicianId) {
-      mine.changes.push(change(callId, 'from-other', was.technicianId));
+      mine.changes.push({ ...change(callId, 'from-other', was.technicianId), gainCents });
       of(was.technicianId).changes.push(change(callId, 'to-other', technicianId));
     } else if (Math.abs(arriveAt - was.arriveAt) > SAME_START_MS) {
       mine.changes.push(change(callId, 'retimed', null, arriveAt - was.arriveAt));
@@ -139,7 +150,7 @@ const change = (
  * @param nameOf a technician's name
  */
 export function changeWords(
-  { callId, kind, otherTechnicianId, laterMs }: CallChange,
+  { callId, kind, otherTechnicianId, laterMs, gainCents }: CallChange,
   numberOf: (callId: string) => string,
   nameOf: (technicianId: string) => string,
 ): string {
@@ -147,9 +158,9 @@ export function changeWords(
   const other = otherTechnicianId === null ? '' : nameOf(otherTechnicianId);
   switch (kind) {
     case 'added':
-      return `${call} is new`;
+      return `${call} is new${gainWords(gainCents)}`;
     case 'from-other':
-      return `${call} comes from ${other}`;
+      return `${call} comes from ${other}${gainWords(gainCents)}`;
     case 'to-other':
       return `${call} goes to ${other}`;
     case 'off-route':
@@ -157,6 +168,23 @@ export function changeWords(
     case 'retimed':
       return `${call} comes ${duration(Math.abs(laterMs))} ${laterMs > 0 ? 'later' : 'earlier'}`;
   }
+}
+
+/** Below a dollar a change is only there to make room for others. */
+function gainWords(cents: number | undefined): string {
+  if (cents === undefined) return '';
+  return cents < 100 ? ' (makes room)' : ` (gains ${money(cents)})`;
+}
+
+/** What one technician's proposed route does, in words. */
+export function routeWords(figures: NonNullable<PlanDto['routes'][number]['figures']>): string {
+  const { savedCents, driveMiles, driveMinutes, lateMinutes, overtimeMinutes } = figures;
+  return [
+    `saves ${money(savedCents)}`,
+    `${whole(driveMiles)} mi, ${minutes(driveMinutes)} of driving`,
+    ...(lateMinutes > 0 ? [`${minutes(lateMinutes)} late`] : []),
+    ...(overtimeMinutes > 0 ? [`${minutes(overtimeMinutes)} of overtime`] : []),
+  ].join('; ');
 }
 
 /** Whether a call's stop is another in the proposal: for the mark on its block. */

@@ -3,8 +3,8 @@ import { MatIcon } from '@angular/material/icon';
 import type { CallRow } from '@shared/contract/calls';
 import type { PlanDto, StopDto, TechnicianDto } from '@shared/contract/routes';
 import type { Instant } from '@shared/domain/instant';
-import { ago } from '../core/zone';
-import { changesByTechnician, changeWords, figureLines } from './plan-comparison';
+import { ago, money } from '../core/zone';
+import { changesByTechnician, changeWords, figureLines, routeWords } from './plan-comparison';
 import { Zone } from '../core/zone';
 
 /** The proposal beside the routes in force: what it saves and costs, and what it changes for whom. */
@@ -16,6 +16,14 @@ import { Zone } from '../core/zone';
       Proposal
       <span class="soft">by {{ plan().proposedBy }}, {{ age() }}</span>
     </h2>
+    @if (plan().automatic; as automatic) {
+      <p class="soft">
+        Planned anew since {{ automatic.because }}.
+        @if (automatic.heldBack) {
+          <strong>Not published by itself: {{ automatic.heldBack }}.</strong>
+        }
+      </p>
+    }
     <table>
       <caption class="visually-hidden">
         The proposal against the routes in force
@@ -48,6 +56,9 @@ import { Zone } from '../core/zone';
         }
       </tbody>
     </table>
+    @if (gain(); as words) {
+      <p class="soft source">{{ words }}</p>
+    }
     @if (plan().drivesFrom; as source) {
       <p class="soft source">Drives: {{ source }}</p>
     }
@@ -69,6 +80,9 @@ import { Zone } from '../core/zone';
               <span class="soft">{{ one.unchanged }} as before</span>
             }
             <span class="words">{{ one.words }}</span>
+            @if (one.route) {
+              <span class="words soft">The route then {{ one.route }}.</span>
+            }
           </li>
         }
       </ul>
@@ -104,6 +118,7 @@ export class PlanPanel {
         technicianId,
         unchanged,
         name: this.nameOf(technicianId),
+        route: this.routeOf(technicianId),
         words: changes.map((one) => changeWords(one, this.numberOf, this.nameOf)).join('; '),
       })),
   );
@@ -114,6 +129,20 @@ export class PlanPanel {
     const who = changed === 1 ? '1 technician' : `${changed} technicians`;
     return `What changes for ${who}${same > 0 ? `; ${same} as before` : ''}`;
   });
+
+  /** The difference that the search was after, with the price of every change in it. */
+  protected readonly gain = computed(() => {
+    const { gainCents } = this.plan();
+    if (gainCents === undefined) return '';
+    return gainCents < 100
+      ? 'By the weights that are set it gains nothing.'
+      : `By the weights that are set it gains ${money(gainCents)}, the price of its changes counted.`;
+  });
+
+  private routeOf(technicianId: string): string {
+    const figures = this.plan().routes.find((one) => one.technicianId === technicianId)?.figures;
+    return figures ? routeWords(figures) : '';
+  }
 
   private readonly numberOf = (callId: string): string =>
     String(this.calls().get(callId)?.number ?? '?');

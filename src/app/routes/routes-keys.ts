@@ -5,6 +5,7 @@ export interface RoutesActs {
   readonly propose: () => void;
   readonly publish: () => void;
   readonly discard: () => void;
+  readonly tryWeights: () => void;
   readonly hasPlan: () => boolean;
   readonly lock: () => void;
   readonly move: () => void;
@@ -33,6 +34,7 @@ export function routesKeys(acts: RoutesActs): KeyAction[] {
       run: acts.publish,
     },
     { keys: 'x', does: 'Discard the proposal', scope: proposal, when: hasPlan, run: acts.discard },
+    { keys: 'v', does: 'Try other weights', scope: proposal, run: acts.tryWeights },
     { keys: 'l', does: 'Lock the stop, or free it', scope: stops, when: mayMove, run: acts.lock },
     {
       keys: 'm',

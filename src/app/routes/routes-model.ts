@@ -8,7 +8,7 @@ import { BoardStore } from '../core/board-store';
 import { Clock } from '../core/clock';
 import { Live } from '../core/live';
 import { ProblemError } from '../core/problem-error';
-import { Zone } from '../core/zone';
+import { money, Zone } from '../core/zone';
 import { isStop, stopChanges } from './stop-words';
 
 /** What stood in the way of the last change, what is different since, and how to go on. */
@@ -50,6 +50,7 @@ export class RoutesModel {
   private readonly stopped = signal<Setback | null>(null);
   private readonly searching = signal<RunningSearch | null>(null);
   private readonly fateNow = signal<PlanFate | null>(null);
+  private readonly doneNow = signal('');
   private readonly newestPlan = signal<PlanDto | null>(null);
   private readonly endedPlans = new Map<string, PlanDto['state']>();
   /** Proposals that this desk published or discarded: their end is no news here. */
@@ -59,6 +60,8 @@ export class RoutesModel {
   readonly setback = this.stopped.asReadonly();
   readonly search = this.searching.asReadonly();
   readonly fate = this.fateNow.asReadonly();
+  /** What the automatic mode has just done; empty when nothing. */
+  readonly done = this.doneNow.asReadonly();
   /** Why calls are on no route, as the newest proposal found out. */
   readonly unplanned = computed(
     () => new Map((this.newestPlan()?.unplanned ?? []).map((one) => [one.callId, one])),
@@ -66,8 +69,10 @@ export class RoutesModel {
 
   constructor() {
     const stop = inject(Live).on('board:changed', ({ change }) => {
-      if (change.kind === 'plan' && change.plan.state !== 'proposed') {
-        this.endedPlans.set(change.plan.id, change.plan.state);
+      if (change.kind !== 'plan' || change.plan.state === 'proposed') return;
+      this.endedPlans.set(change.plan.id, change.plan.state);
+      if (change.plan.state === 'published' && change.plan.automatic) {
+        this.tellAutomatic(change.plan);
       }
     });
     inject(DestroyRef).onDestroy(stop);
@@ -86,6 +91,10 @@ export class RoutesModel {
 
   dismissSetback(): void {
     this.stopped.set(null);
+  }
+
+  dismissDone(): void {
+    this.doneNow.set('');
   }
 
   dismissFate(): void {
@@ -229,6 +238,15 @@ export class RoutesModel {
       return [`Call ${current.number} is now: ${STATE_WORDS[current.state]}`];
     }
     return [];
+  }
+
+  private tellAutomatic({ proposedAt, automatic, gainCents = 0, figures }: PlanDto): void {
+    const at = this.zone.clockTime(proposedAt);
+    const moved = `${figures.moved} ${figures.moved === 1 ? 'stop' : 'stops'} moved`;
+    this.doneNow.set(
+      `${at}: the automatic mode published routes, since ${automatic?.because ?? ''}. They gain ${money(gainCents)}; ${moved}.`,
+    );
+    this.fateNow.set(null);
   }
 
   private tellFate(planId: string): void {

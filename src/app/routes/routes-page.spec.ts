@@ -291,4 +291,70 @@ describe('RoutesPage', () => {
     expect(own.text('aside')).not.toContain('discarded this proposal');
     expect(own.text('aside')).not.toContain('Propose again');
   });
+
+  it('says what the automatic mode has done, and what it did it for', async () => {
+    const page = await aPage(withStops());
+    await page.hear({
+      kind: 'plan',
+      plan: aPlan({
+        state: 'published',
+        gainCents: 8_400,
+        figures: { ...figures, moved: 1 },
+        automatic: { because: 'a call came in or changed', heldBack: null },
+      }),
+    });
+    expect(page.text('aside')).toContain(
+      'the automatic mode published routes, since a call came in or changed. They gain $84; 1 stop moved.',
+    );
+    await page.hear({
+      kind: 'plan',
+      plan: aPlan({
+        id: idOf(7001),
+        automatic: { because: 'the roads changed', heldBack: 'it changes more stops of Ana Quill' },
+      }),
+    });
+    expect(page.text('thaw-plan-panel')).toContain(
+      'Not published by itself: it changes more stops of Ana Quill.',
+    );
+  });
+
+  it('says in full why the chosen call is on no route, and what would change that', async () => {
+    const help = ['Overtime for Ana Quill, 40 min in all: there at 4:10 pm'];
+    const page = await aPage(withStops());
+    await page.hear({
+      kind: 'plan',
+      plan: aPlan({
+        unplanned: [{ callId: idOf(1002), reason: 'capacity', words: 'No room.', help }],
+      }),
+    });
+    await page.press('w');
+    expect(page.text('.whole')).toContain('No room.');
+    expect(page.text('.whole li')).toBe(help[0]);
+  });
+
+  it('tries other weights beside the routes and keeps nothing, until they are set', async () => {
+    const page = await aPage(withStops());
+    await page.press('v');
+    const dialog = (): HTMLElement => document.querySelector('thaw-try-dialog')!;
+    const [driving] = dialog().querySelectorAll('input');
+    driving!.value = '80';
+    driving!.dispatchEvent(new Event('input'));
+    await page.settle();
+    dialog().querySelector('form')!.requestSubmit();
+    await page.settle();
+    const asked = page.http.expectOne(`/api/storms/${STORM_ID}/plan-trials`);
+    expect(asked.request.body).toEqual({ seconds: 1, prices: { driveDollarsPerHour: 80 } });
+    asked.flush({
+      inForce: figures,
+      asSet: figures,
+      tried: { ...figures, driveMiles: 12 },
+      onlyAsSet: [],
+      onlyTried: [idOf(1002)],
+    });
+    await page.settle();
+    const text = dialog().textContent?.replace(/\s+/g, ' ');
+    expect(text).toContain('better: 8 less');
+    expect(text).toContain('Only with the tried weights on a route: 2.');
+    page.http.verify();
+  });
 });

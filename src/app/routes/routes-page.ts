@@ -21,6 +21,7 @@ import { Announce } from '../core/announce';
 import { BoardStore } from '../core/board-store';
 import { Clock } from '../core/clock';
 import { Keys } from '../core/keys';
+import { Session } from '../core/session';
 import { Zone } from '../core/zone';
 import { whenWords } from '../board/time-words';
 import { type PlaceAnswer, PlaceDialog, type PlaceQuestion } from './place-dialog';
@@ -35,6 +36,7 @@ import { routesKeys } from './routes-keys';
 import { SearchBar } from './search-bar';
 import { StopDetail } from './stop-detail';
 import { isFirmStop, isUnderWay, STOP_STATE_WORDS } from './stop-words';
+import { TryDialog } from './try-dialog';
 import { UnplannedList } from './unplanned-list';
 import { whyUnplanned } from './why-unplanned';
 
@@ -51,6 +53,7 @@ export class RoutesPage {
   protected readonly model = inject(RoutesModel);
   protected readonly board = inject(BoardStore);
   protected readonly clock = inject(Clock);
+  private readonly session = inject(Session);
   private readonly zone = inject(Zone);
   private readonly dialogs = inject(MatDialog);
   private readonly announce = inject(Announce);
@@ -117,6 +120,16 @@ export class RoutesPage {
     const stops = this.allStops().length;
     return `${onShift} of ${rows.length} technicians on shift, ${stops} ${stops === 1 ? 'stop' : 'stops'}`;
   });
+  protected readonly automaticWords = computed(() => {
+    switch (this.session.settings()?.automaticRoutes) {
+      case 'propose':
+        return 'Automatic mode proposes';
+      case 'publish':
+        return 'Automatic mode publishes within its limits';
+      default:
+        return '';
+    }
+  });
   protected readonly emptyWords = computed(() => {
     const unchecked = this.unchecked();
     const more =
@@ -180,6 +193,7 @@ export class RoutesPage {
         propose: () => void this.propose(),
         publish: () => void this.publish(),
         discard: () => void this.discard(),
+        tryWeights: () => this.tryWeights(),
         hasPlan: () => this.board.plan() !== null,
         lock: () => void this.lock(),
         move: () => void this.move(),
@@ -209,6 +223,12 @@ export class RoutesPage {
   protected async discard(): Promise<void> {
     const plan = this.board.plan();
     if (plan && !this.model.isBusy()) await this.model.discard(plan);
+  }
+
+  /** Other weights are tried beside the routes; nothing of it is kept. */
+  protected tryWeights(): void {
+    if (!this.board.storm()) return;
+    this.dialogs.open(TryDialog, { width: '980px', maxWidth: '96vw', restoreFocus: true });
   }
 
   protected zoomBy(step: number): void {

@@ -8,6 +8,7 @@ import { whenWords } from '../board/time-words';
 import { clockTime, Zone } from '../core/zone';
 import type { StopView } from './route-rows';
 import { verdictWords } from './save-verdict';
+import { fetchWords } from './fetch-words';
 import { isFirmStop, isUnderWay, STOP_STATE_WORDS } from './stop-words';
 
 /** The stop that the cursor is on: what it is, why it stands there, and what can be done with it. */
@@ -38,7 +39,7 @@ import { isFirmStop, isUnderWay, STOP_STATE_WORDS } from './stop-words';
         }
         <span class="name">{{ one.call?.name }}, {{ one.call?.address?.text }}</span>
       </p>
-      <p class="because">{{ technicianName() }}: {{ one.stop.because }}</p>
+      <p class="because" [title]="because()">{{ because() }}</p>
       <p class="soft">{{ times() }}</p>
     </div>
     @if (one.call; as call) {
@@ -96,6 +97,11 @@ export class StopDetail {
   protected readonly verdict = computed(() => {
     const { verdict } = this.view();
     return verdict ? verdictWords(verdict) : '';
+  });
+  protected readonly because = computed(() => {
+    const { because, fetches } = this.view().stop;
+    const words = `${this.technicianName()}: ${because}`;
+    return fetches ? `${words} By the store first: ${fetchWords(fetches)}.` : words;
   });
   protected readonly times = computed(() => {
     const { arriveAt, finishAt, driveMinutes, stop } = this.view();

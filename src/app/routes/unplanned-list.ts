@@ -82,6 +82,21 @@ const ROW_PX = 98;
           </div>
         </div>
       </cdk-virtual-scroll-viewport>
+      @if (chosenWhy(); as one) {
+        <div class="whole" role="status">
+          <p>
+            <strong>Call {{ one.call.number }}.</strong> {{ one.why.words }}
+          </p>
+          @if (one.why.help; as help) {
+            <p class="soft">What would change it, tried on this plan:</p>
+            <ul>
+              @for (words of help; track words) {
+                <li>{{ words }}</li>
+              }
+            </ul>
+          }
+        </div>
+      }
       <p class="keys" id="unplanned-keys">
         <kbd>A</kbd> or Enter puts the chosen call on a route by hand
       </p>
@@ -112,6 +127,8 @@ export class UnplannedList {
   private readonly at = computed(() =>
     this.calls().findIndex(({ call }) => call.id === this.selected()),
   );
+  /** The reason in full: in its row there is room for one line. */
+  protected readonly chosenWhy = computed(() => this.calls()[this.at()] ?? null);
   protected readonly activeId = computed(() =>
     this.at() < 0 ? null : `unplanned-${this.selected()}`,
   );

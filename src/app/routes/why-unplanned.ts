@@ -1,8 +1,7 @@
 import type { CallRow } from '@shared/contract/calls';
 import type { PlanDto, TechnicianDto } from '@shared/contract/routes';
 import type { Instant } from '@shared/domain/instant';
-import type { Part, Skill } from '@shared/domain/skills';
-import { PART_WORDS } from '../board/part-words';
+import { PART_WORDS, type Part, type Skill } from '@shared/domain/skills';
 import { SKILL_WORDS } from '../board/queue-words';
 
 type Unplanned = PlanDto['unplanned'][number];
@@ -13,6 +12,8 @@ export type UnplannedReason = Unplanned['reason'] | 'not-proposed';
 export interface WhyUnplanned {
   readonly reason: UnplannedReason;
   readonly words: string;
+  /** What would bring it on a route, as the newest proposal tried. */
+  readonly help?: readonly string[] | undefined;
 }
 
 /**
@@ -39,12 +40,16 @@ export function whyUnplanned(
   const working = [...technicians].filter((technician) => technician.active);
   const skilled = working.filter(({ skills }) => call.skills.every((s) => skills.includes(s)));
   if (working.length > 0 && skilled.length === 0) {
-    return { reason: 'skill', words: `No technician has the skill: ${skillWords(call.skills)}.` };
+    const words = `No technician has the skill: ${skillWords(call.skills)}.`;
+    return { reason: 'skill', words, ...(found?.help ? { help: found.help } : {}) };
   }
   if (working.length > 0 && !skilled.some((one) => one.shifts.some((s) => s.endsAt > now))) {
     return { reason: 'no-shift', words: 'Nobody who may do it has a shift now or later.' };
   }
-  if (found) return { reason: found.reason, words: found.words };
+  if (found) {
+    const { reason, words, help } = found;
+    return { reason, words, ...(help ? { help } : {}) };
+  }
   return { reason: 'not-proposed', words: 'Not yet planned: propose routes, or add it by hand.' };
 }
 
