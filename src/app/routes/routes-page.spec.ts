@@ -327,6 +327,8 @@ describe('RoutesPage', () => {
         unplanned: [{ callId: idOf(1002), reason: 'capacity', words: 'No room.', help }],
       }),
     });
+    // jsdom scrolls nothing.
+    Element.prototype.scrollTo = () => undefined;
     await page.press('w');
     expect(page.text('.whole')).toContain('No room.');
     expect(page.text('.whole li')).toBe(help[0]);
