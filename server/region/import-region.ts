@@ -28,7 +28,7 @@ import { dropAbandoned, openWorkshop, settleWorkshop } from './workshop';
 import { ADDRESS_ZOOM, writeAddressTiles, writeTiles } from './write-tiles';
 
 /** Part of every region's hash: raise it when the same file would give other files. */
-export const IMPORTER_VERSION = 5;
+export const IMPORTER_VERSION = 6;
 
 const READING_WEIGHT = 15;
 

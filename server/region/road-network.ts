@@ -3,7 +3,8 @@ import { ROAD_CLASSES } from '@shared/domain/roads/road-class';
 import { SEGMENT_FLAGS } from '@shared/domain/roads/road-graph';
 import type { OsmExtract } from './osm-extract';
 import { roadPieces, type RoadPiece, type RoadPieces } from './road-pieces';
-import { turnRulesOf, type TurnRule } from './road-turns';
+import { bannedPaths, type DrivenLane, rulesInPlace } from './banned-paths';
+import { turnRulesOf } from './road-turns';
 
 export interface RoadNetwork extends SegmentsAndTurns {
   /** Road names; the first is none. */
@@ -13,12 +14,16 @@ export interface RoadNetwork extends SegmentsAndTurns {
   readonly turnRulesLeftOut: number;
 }
 
-/** The roads of an extract: pieces that meet nobody else joined to segments, and the banned turns. */
+/** The roads of an extract: pieces that meet nobody else joined to segments, and what nobody may drive. */
 export function roadNetwork(extract: OsmExtract): RoadNetwork {
   const { rules, leftOut } = turnRulesOf(extract.relations);
-  const cut = roadPieces(extract, new Set(rules.map(({ via }) => via)));
-  const vias = new Set(rules.flatMap(({ via }) => cut.numberOf.get(via) ?? []));
-  const chains = joinedPieces(cut, vias);
+  const placed = rulesInPlace(rules, extract.ways);
+  const fixed = new Set(placed.flatMap(({ nodes }) => nodes));
+  const cut = roadPieces(extract, fixed);
+  const chains = joinedPieces(
+    cut,
+    new Set([...fixed].flatMap((node) => cut.numberOf.get(node) ?? [])),
+  );
   const names = [''];
   const nameNumber = new Map([['', 0]]);
   const number = (name: string): number => {
@@ -28,14 +33,14 @@ export function roadNetwork(extract: OsmExtract): RoadNetwork {
     return names.push(name) - 1;
   };
   const segments = chains.map((chain) => segmentOf(chain, number));
-  const banned = bannedTurns(chains, segments, rules, cut.numberOf);
+  const banned = bannedPaths(lanesOf(chains, segments), placed, cut.numberOf);
   return {
     junctions: cut.nodes,
     segments,
-    bannedTurns: banned.turns,
+    bannedPaths: banned.paths,
     names,
-    turnRules: rules.length - banned.leftOut,
-    turnRulesLeftOut: leftOut + banned.leftOut,
+    turnRules: banned.applied,
+    turnRulesLeftOut: leftOut + rules.length - banned.applied,
   };
 }
 
@@ -98,6 +103,7 @@ function isAlike(a: Link, b: Link): boolean {
     a.piece.road.roadClass === b.piece.road.roadClass &&
     a.piece.road.isBridge === b.piece.road.isBridge &&
     a.piece.isFord === b.piece.isFord &&
+    a.piece.road.isForVisits === b.piece.road.isForVisits &&
     a.piece.road.name === b.piece.road.name &&
     ahead(a) > 0 === ahead(b) > 0 &&
     backwards(a) > 0 === backwards(b) > 0
@@ -121,60 +127,24 @@ function segmentOf(chain: Chain, nameNumber: (name: string) => number): Segment 
     againstMs: total(backwards),
     dm: Math.round(total(({ piece }) => piece.metres) * 10),
     roadClass: ROAD_CLASSES.indexOf(road.roadClass),
-    flags: (road.isBridge ? SEGMENT_FLAGS.bridge : 0) + (isFord ? SEGMENT_FLAGS.ford : 0),
+    flags:
+      (road.isBridge ? SEGMENT_FLAGS.bridge : 0) +
+      (isFord ? SEGMENT_FLAGS.ford : 0) +
+      (road.isForVisits ? SEGMENT_FLAGS.destination : 0),
     name: nameNumber(road.name),
     lons: points(({ lons }) => lons),
     lats: points(({ lats }) => lats),
   };
 }
 
-/** Turns rules about ways into turns from lane to lane. */
-function bannedTurns(
-  chains: readonly Chain[],
-  segments: readonly Segment[],
-  rules: readonly TurnRule[],
-  numberOf: ReadonlyMap<number, number>,
-): { readonly turns: Map<number, Set<number>>; readonly leftOut: number } {
-  const arriving = new Map<number, { readonly lane: number; readonly way: number }[]>();
-  const leaving = new Map<number, { readonly lane: number; readonly way: number }[]>();
-  const put = (map: typeof arriving, node: number, lane: number, way: number): void => {
-    const own = map.get(node);
-    if (own) own.push({ lane, way });
-    else map.set(node, [{ lane, way }]);
-  };
-  chains.forEach((chain, i) => {
+/** The lanes that may be driven, with the ways that they begin and end on. */
+function lanesOf(chains: readonly Chain[], segments: readonly Segment[]): DrivenLane[] {
+  return chains.flatMap((chain, i): DrivenLane[] => {
     const { from, to, alongMs, againstMs } = segments[i]!;
     const [first, last] = [chain[0]!.piece.way, chain.at(-1)!.piece.way];
-    if (alongMs > 0) {
-      put(leaving, from, i * 2, first);
-      put(arriving, to, i * 2, last);
-    }
-    if (againstMs > 0) {
-      put(leaving, to, i * 2 + 1, last);
-      put(arriving, from, i * 2 + 1, first);
-    }
+    return [
+      ...(alongMs > 0 ? [{ lane: i * 2, from, to, first, last }] : []),
+      ...(againstMs > 0 ? [{ lane: i * 2 + 1, from: to, to: from, first: last, last: first }] : []),
+    ];
   });
-  const turns = new Map<number, Set<number>>();
-  let leftOut = 0;
-  for (const { kind, from, via, to } of rules) {
-    const node = numberOf.get(via) ?? -1;
-    const exits = leaving.get(node) ?? [];
-    const isBanned = (lane: number, exit: { readonly lane: number; readonly way: number }) => {
-      const isNamed = to.includes(exit.way);
-      // A way that is named twice forbids turning round on it, not going straight on along it.
-      if (isNamed && from.includes(exit.way)) return kind === 'no' && (lane ^ 1) === exit.lane;
-      return kind === 'no' ? isNamed : !isNamed;
-    };
-    const entries = (arriving.get(node) ?? []).filter(({ way }) => from.includes(way));
-    if (entries.length === 0 || !exits.some(({ way }) => to.includes(way))) {
-      leftOut++;
-      continue;
-    }
-    for (const { lane } of entries) {
-      const own = turns.get(lane) ?? new Set<number>();
-      turns.set(lane, own);
-      for (const exit of exits) if (isBanned(lane, exit)) own.add(exit.lane);
-    }
-  }
-  return { turns, leftOut };
 }

@@ -14,15 +14,15 @@ export const ROADS_STEP: MakingStep = {
     await writeRoads(folder, built, network.names);
     if (built.leftOut > 0)
       leaveOut({
-        what: 'stretches of road',
+        what: 'Stretches of road',
         count: built.leftOut,
-        why: 'Nobody can drive there and back from the rest of the region.',
+        why: 'nobody can drive there and back from the rest of the region',
       });
     if (network.turnRulesLeftOut > 0)
       leaveOut({
-        what: 'turn restrictions',
+        what: 'Turn restrictions',
         count: network.turnRulesLeftOut,
-        why: 'They lead over more than one junction, or name roads that are not in the file.',
+        why: 'they hold for some hours only, or name roads that are not in the file',
       });
     return { roadNodes: built.graph.nodeCount, roadEdges: built.graph.arcTail.length };
   },

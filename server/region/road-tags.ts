@@ -11,6 +11,8 @@ export interface RoadWay {
   readonly minutes: number | null;
   readonly isBridge: boolean;
   readonly isFord: boolean;
+  /** Open only to those who begin or end their drive there. */
+  readonly isForVisits: boolean;
   readonly name: string;
 }
 
@@ -51,17 +53,14 @@ const CLOSED = new Set([
   'psv',
 ]);
 
-/**
- * Whether a van may use it. Roads for those who have business there (`destination`, `delivery`,
- * `customers`) count as open: a visit is business, and few of them shorten a way through.
- */
-export function isOpenTo(tags: Tags): boolean {
-  for (const key of ACCESS_KEYS) {
-    const value = tags[key];
-    if (value !== undefined) return !CLOSED.has(value);
-  }
-  return true;
-}
+/** For those who have business there, and not for a way through ("Key:access", as above). A visit is business. */
+const FOR_VISITS = new Set(['destination', 'delivery', 'customers']);
+
+const accessOf = (tags: Tags): string | undefined =>
+  ACCESS_KEYS.map((key) => tags[key]).find((value) => value !== undefined);
+
+/** Whether a van may use it, be it only for a visit. */
+export const isOpenTo = (tags: Tags): boolean => !CLOSED.has(accessOf(tags) ?? 'yes');
 
 /** Whether somebody said that motor vehicles may use it, so that it counts though its kind would not. */
 const isSaidOpen = (tags: Tags): boolean =>
@@ -85,6 +84,7 @@ export function roadWayOf(tags: Tags): RoadWay | null {
     minutes: roadClass === 'ferry' ? durationMinutes(tags['duration']) : null,
     isBridge: !['no', undefined].includes(tags['bridge']),
     isFord: isFord(tags),
+    isForVisits: FOR_VISITS.has(accessOf(tags) ?? 'yes'),
     name: tags['name'] ?? tags['ref'] ?? '',
   };
 }

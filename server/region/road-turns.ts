@@ -1,16 +1,17 @@
 import type { OsmRelation } from './osm-model';
 
-/** A rule at a junction, as far as this program applies it. */
+/** A rule at a junction, or along some ways, as far as this program applies it. */
 export interface TurnRule {
   readonly kind: 'no' | 'only';
   readonly from: readonly number[];
-  readonly via: number;
+  /** The node where it holds, or the ways that it leads over, in their order. */
+  readonly via: { readonly node: number } | { readonly ways: readonly number[] };
   readonly to: readonly number[];
 }
 
 export interface TurnRules {
   readonly rules: readonly TurnRule[];
-  /** Restrictions that were left out: over a way instead of a node, for some hours, or incomplete. */
+  /** Restrictions that were left out: for some hours only, or incomplete. */
   readonly leftOut: number;
 }
 
@@ -27,9 +28,18 @@ export function turnRulesOf(relations: readonly OsmRelation[]): TurnRules {
     if (except.includes('motorcar') || except.includes('motor_vehicle')) continue;
     const of = (role: string, type: string): number[] =>
       members.filter((m) => m.role === role && m.type === type).map(({ ref }) => ref);
-    const [from, to, via] = [of('from', 'way'), of('to', 'way'), of('via', 'node')];
-    if (kind === undefined || from.length === 0 || to.length === 0 || via.length !== 1) leftOut++;
-    else rules.push({ kind, from, via: via[0]!, to });
+    const [from, to, nodes, ways] = [
+      of('from', 'way'),
+      of('to', 'way'),
+      of('via', 'node'),
+      of('via', 'way'),
+    ];
+    const isWhole = kind !== undefined && from.length > 0 && to.length > 0;
+    if (isWhole && nodes.length === 1 && ways.length === 0)
+      rules.push({ kind, from, via: { node: nodes[0]! }, to });
+    else if (isWhole && nodes.length === 0 && ways.length > 0)
+      rules.push({ kind, from, via: { ways }, to });
+    else leftOut++;
   }
   return { rules, leftOut };
 }

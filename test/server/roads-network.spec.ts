@@ -216,6 +216,63 @@ describe('the network of an extract', () => {
     expect(bound('W', 'Q') / free('W', 'Q')).toBeCloseTo(least === 4 ? 2 : 1, 0);
   });
 
+  it('obeys restrictions that lead over a way, and only for those who come that way', async () => {
+    // A dual carriageway: from W eastwards, over the link BQ, and back westwards to S.
+    const paper = ['W.B.C', '.....', 'S.Q.F'];
+    const ways = [
+      { through: 'WB', tags: { ...ROAD, oneway: 'yes' } },
+      { through: 'BC', tags: { ...ROAD, oneway: 'yes' } },
+      { through: 'BQ', tags: ROAD },
+      { through: 'CF', tags: ROAD },
+      { through: 'FQ', tags: { ...ROAD, oneway: 'yes' } },
+      { through: 'QS', tags: ROAD },
+      { through: 'SW', tags: ROAD },
+    ];
+    const ruled = (restriction: string, to: number) =>
+      built({
+        paper,
+        ways,
+        relations: [
+          {
+            members: ['from:1', 'via:3', `to:${String(to)}`],
+            tags: { type: 'restriction', restriction },
+          },
+        ],
+      });
+    const free = driver(await built({ paper, ways }), paper);
+    const noTurn = await ruled('no_u_turn', 6);
+    expect([noTurn.network.turnRules, noTurn.network.turnRulesLeftOut]).toEqual([1, 0]);
+    const bound = driver(noTurn, paper);
+    expect(bound('W', 'S')).toBeGreaterThan(free('W', 'S'));
+    expect(bound('W', 'Q')).toBe(free('W', 'Q'));
+    expect(bound('C', 'S')).toBe(free('C', 'S'));
+
+    const only = await ruled('only_straight_on', 6);
+    expect(only.network.turnRules).toBe(1);
+    // Who comes from W has to go over the link and on to S, and back from there to C.
+    expect(driver(only, paper)('W', 'C')).toBeGreaterThan(2 * free('W', 'C'));
+    expect(driver(only, paper)('W', 'S')).toBe(free('W', 'S'));
+  });
+
+  it('takes nobody through roads for visits, and everybody there and away', async () => {
+    const paper = ['A.P.B.R.C', '....X....', 'D.S.E.T.F'];
+    const drive = async (tags: Tags) => {
+      const ways = [
+        { through: 'APBRC', tags: ROAD },
+        { through: 'CF', tags: ROAD },
+        { through: 'FTESD', tags: ROAD },
+        { through: 'DA', tags: ROAD },
+        { through: 'BXE', tags: { ...ROAD, ...tags } },
+      ];
+      return driver(await built({ paper, ways }), paper);
+    };
+    const free = await drive({});
+    const visits = await drive({ access: 'destination' });
+    expect(visits('P', 'T')).toBeGreaterThan(1.3 * free('P', 'T'));
+    expect(visits('P', 'X')).toBe(free('P', 'X'));
+    expect(visits('X', 'T')).toBe(free('X', 'T'));
+  });
+
   it('says how many restrictions it leaves out, and skips those that do not concern a van', async () => {
     const ways = [
       { through: 'AB', tags: ROAD },

@@ -50,5 +50,5 @@ function grid(
       if (y + 1 < side) street(x, y, 0, 1, x);
     }
   }
-  return { junctions: side * side, segments, bannedTurns: new Map() };
+  return { junctions: side * side, segments, bannedPaths: [] };
 }

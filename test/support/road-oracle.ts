@@ -2,14 +2,24 @@ import type { BuiltRoads, SegmentsAndTurns } from '@shared/domain/roads/build-gr
 import type { LaneTimes } from '@shared/domain/roads/lane-times';
 import type { RoadPoint } from '@shared/domain/roads/road-ends';
 
+/** At the end of a lane: the lanes driven so far, as many as rules ask for, and whether it may leave roads for visits. */
+interface State {
+  readonly driven: readonly number[];
+  /** On roads for visits since the beginning, or through them to an end among them; neither outside. */
+  readonly visit: 'began' | 'came' | 'none';
+}
+
 /**
- * Quickest drives by Dijkstra's method over lanes: a state is "at the end of this lane", so a turn is a
- * pair of lanes and needs no copies of junctions. It works on the map's own segments and shares nothing
- * with the hierarchy but the times of the lanes.
+ * Quickest drives by Dijkstra's method over lanes: a state is "at the end of this lane, after those", so
+ * what is banned needs no copies of junctions. It works on the map's own segments and shares nothing with
+ * the hierarchy but the times of the lanes and which of them are for visits.
  */
 export class RoadOracle {
   private readonly leaving: number[][];
   private readonly numberInGraph: Map<number, number>;
+  private readonly banned: ReadonlySet<string>;
+  /** Lanes that a rule may ask for before the next one. */
+  private readonly longest: number;
 
   constructor(
     private readonly map: SegmentsAndTurns,
@@ -17,6 +27,8 @@ export class RoadOracle {
     private readonly times: LaneTimes,
   ) {
     this.numberInGraph = new Map(Array.from(built.kept, (raw, own) => [raw, own]));
+    this.banned = new Set(map.bannedPaths.map((path) => path.join()));
+    this.longest = Math.max(1, ...map.bannedPaths.map((path) => path.length - 1));
     this.leaving = Array.from({ length: map.junctions }, () => []);
     map.segments.forEach((_, raw) => {
       for (const lane of [raw * 2, raw * 2 + 1])
@@ -27,26 +39,36 @@ export class RoadOracle {
   /** Milliseconds from a point of the graph to others; Infinity where no way leads. */
   from(start: RoadPoint, goals: readonly RoadPoint[]): number[] {
     const raw = this.built.kept[start.segment]!;
-    const best = new Map<number, number>();
-    const queue: [ms: number, lane: number][] = [];
-    const offer = (lane: number, ms: number): void => {
-      if (ms >= (best.get(lane) ?? Infinity)) return;
-      best.set(lane, ms);
-      push(queue, [ms, lane]);
+    const best = new Map<string, { readonly state: State; readonly ms: number }>();
+    /** When a lane can be entered, at the earliest. */
+    const entered = new Map<number, number>();
+    const queue: Entry[] = [];
+    const offer = (state: State, ms: number): void => {
+      const key = `${state.driven.join()} ${state.visit}`;
+      if (ms >= (best.get(key)?.ms ?? Infinity)) return;
+      best.set(key, { state, ms });
+      push(queue, [ms, key]);
     };
     for (const lane of [raw * 2, raw * 2 + 1])
       if (this.isDriven(lane) && this.isFree(lane, this.behind(lane, start.share), 1))
-        offer(lane, this.whole(lane) - this.upTo(lane, start.share));
+        offer(
+          { driven: [lane], visit: this.built.isForVisits(lane) ? 'began' : 'none' },
+          this.whole(lane) - this.upTo(lane, start.share),
+        );
     for (let next = pop(queue); next; next = pop(queue)) {
-      const [ms, lane] = next;
-      if (ms > best.get(lane)!) continue;
-      for (const onward of this.turns(lane))
-        if (this.isFree(onward, 0, 1)) offer(onward, ms + this.whole(onward));
+      const [ms, key] = next;
+      const { state, ms: least } = best.get(key)!;
+      if (ms > least) continue;
+      for (const onward of this.onward(state)) {
+        const lane = onward.driven.at(-1)!;
+        entered.set(lane, Math.min(ms, entered.get(lane) ?? Infinity));
+        if (this.isFree(lane, 0, 1)) offer(onward, ms + this.whole(lane));
+      }
     }
-    return goals.map((goal) => this.at(goal, best, start));
+    return goals.map((goal) => this.at(goal, entered, start));
   }
 
-  private at(goal: RoadPoint, best: ReadonlyMap<number, number>, start: RoadPoint): number {
+  private at(goal: RoadPoint, entered: ReadonlyMap<number, number>, start: RoadPoint): number {
     const raw = this.built.kept[goal.segment]!;
     let least = Infinity;
     for (const lane of [raw * 2, raw * 2 + 1]) {
@@ -59,16 +81,23 @@ export class RoadOracle {
           least = Math.min(least, this.upTo(lane, goal.share) - this.upTo(lane, start.share));
       }
       if (!this.isFree(lane, 0, share)) continue;
-      for (const [before, ms] of best)
-        if (this.turns(before).includes(lane))
-          least = Math.min(least, ms + this.upTo(lane, goal.share));
+      least = Math.min(least, (entered.get(lane) ?? Infinity) + this.upTo(lane, goal.share));
     }
     return least;
   }
 
-  private turns(lane: number): number[] {
-    const banned = this.map.bannedTurns.get(lane);
-    return this.leaving[this.end(lane)]!.filter((next) => !banned?.has(next));
+  private onward({ driven, visit }: State): State[] {
+    return this.leaving[this.end(driven.at(-1)!)]!.flatMap((lane): State[] => {
+      const all = [...driven, lane];
+      const isForVisits = this.built.isForVisits(lane);
+      if (this.isBanned(all) || (visit === 'came' && !isForVisits)) return [];
+      const next = !isForVisits ? 'none' : visit === 'began' ? 'began' : 'came';
+      return [{ driven: all.slice(-this.longest), visit: next }];
+    });
+  }
+
+  private isBanned(driven: readonly number[]): boolean {
+    return driven.some((_, from) => this.banned.has(driven.slice(from).join()));
   }
 
   private isDriven(lane: number): boolean {
@@ -99,7 +128,7 @@ export class RoadOracle {
     Math.round(this.whole(lane) * this.behind(lane, share));
 }
 
-type Entry = [ms: number, lane: number];
+type Entry = [ms: number, key: string];
 
 function push(heap: Entry[], entry: Entry): void {
   let at = heap.push(entry) - 1;

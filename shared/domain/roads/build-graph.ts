@@ -1,6 +1,7 @@
+import { driveStates, type StateArc } from './drive-states';
 import { eliminate, type Neighbours } from './elimination-order';
 import { stackUp, type StoredHierarchy } from './hierarchy';
-import type { RoadGraph } from './road-graph';
+import { type RoadGraph, SEGMENT_FLAGS } from './road-graph';
 import { largestStrongPart } from './strong-part';
 
 /** A stretch of road between two junctions, as the map gives it. */
@@ -22,9 +23,14 @@ export interface Segment {
 export interface SegmentsAndTurns {
   readonly junctions: number;
   readonly segments: readonly Segment[];
-  /** For a lane (2 × segment, + 1 against the line) the lanes that nobody may turn into from its end. */
-  readonly bannedTurns: ReadonlyMap<number, ReadonlySet<number>>;
+  readonly bannedPaths: readonly LanePath[];
 }
+
+/**
+ * Lanes (2 × segment, + 1 against the line), two or more, that nobody may drive one after the other: a
+ * banned turn, or one that is banned for those who come from some road before.
+ */
+export type LanePath = readonly number[];
 
 export interface BuiltRoads {
   readonly graph: RoadGraph;
@@ -33,83 +39,80 @@ export interface BuiltRoads {
   readonly kept: Int32Array;
   /** Segments that are not joined to the rest in both directions, and so were left out. */
   readonly leftOut: number;
+  /** Whether drives may only begin or end on a lane, in the map's numbers. */
+  readonly isForVisits: (lane: number) => boolean;
 }
 
 /**
- * Makes the graph of a region's roads: nodes with their turns, the largest part in which everybody can
- * get everywhere and back, and the hierarchy over it.
+ * Makes the graph of a region's roads: the largest part in which everybody can get everywhere and back,
+ * its nodes with what may be driven from them, and the hierarchy over it.
  */
 export function buildRoads(map: SegmentsAndTurns): BuiltRoads {
-  const raw = withTurns(map);
-  const inside = largestStrongPart(...outward(raw));
-  const joined = raw.arcs.filter(({ tail, head }) => inside[tail]! && inside[head]!);
+  const isThere = (lane: number): boolean => {
+    const { alongMs, againstMs } = map.segments[lane >> 1]!;
+    return (lane % 2 === 0 ? alongMs : againstMs) > 0;
+  };
+  const joined = joinedLanes(map, isThere);
+  const isJoined = (lane: number): boolean => joined[lane] === 1;
+  const isForVisits = visitLanes(map, isJoined);
+  const states = driveStates(map, isJoined, isForVisits);
   const segmentNumber = numbered(
     map.segments.length,
-    joined.map(({ lane }) => lane >> 1),
+    states.arcs.map(({ lane }) => lane >> 1),
   );
-  const nodeNumber = numbered(
-    raw.nodes,
-    joined.flatMap(({ tail, head }) => [tail, head]),
-  );
-  const arcs = joined.map(({ tail, head, lane }): Arc => ({
-    tail: nodeNumber.of[tail]!,
-    head: nodeNumber.of[head]!,
-    lane: segmentNumber.of[lane >> 1]! * 2 + (lane & 1),
-  }));
-  const elimination = eliminate(neighbours(nodeNumber.count, arcs));
-  const rank = new Int32Array(nodeNumber.count);
-  elimination.order.forEach((node, at) => (rank[node] = at));
-  const ranked = arcs
-    .map(({ tail, head, lane }): Arc => ({ tail: rank[tail]!, head: rank[head]!, lane }))
+  const laneNumber = (lane: number): number => segmentNumber.of[lane >> 1]! * 2 + (lane & 1);
+  const elimination = eliminate(neighbours(states.count, states.arcs));
+  const rank = new Int32Array(states.count);
+  elimination.order.forEach((state, at) => (rank[state] = at));
+  const ranked = states.arcs
+    .map(({ tail, head, lane }): StateArc => ({
+      tail: rank[tail]!,
+      head: rank[head]!,
+      lane: laneNumber(lane),
+    }))
     .sort((a, b) => a.tail - b.tail || a.head - b.head || a.lane - b.lane);
+  const laneHead = new Int32Array(segmentNumber.count * 2).fill(-1);
+  states.startOf.forEach((state, lane) => {
+    if (state >= 0) laneHead[laneNumber(lane)] = rank[state]!;
+  });
   const kept = Int32Array.from(map.segments.keys()).filter((i) => segmentNumber.of[i]! >= 0);
   const segments = Array.from(kept, (i) => map.segments[i]!);
   return {
-    graph: flat(segments, ranked, nodeNumber.count),
+    graph: flat(segments, ranked, laneHead, states.count),
     stored: stackUp(elimination),
     kept,
     leftOut: map.segments.length - segments.length,
+    isForVisits,
   };
 }
 
-interface Arc {
-  readonly tail: number;
-  readonly head: number;
-  readonly lane: number;
+/** 1 for each lane of the largest part in which everybody gets from each to each, banned paths observed. */
+function joinedLanes(map: SegmentsAndTurns, isDriven: (lane: number) => boolean): Uint8Array {
+  const { count, arcs } = driveStates(map, isDriven, () => false);
+  const inside = largestStrongPart(...outward(count, arcs));
+  const joined = new Uint8Array(map.segments.length * 2);
+  for (const { tail, head, lane } of arcs) if (inside[tail]! && inside[head]!) joined[lane] = 1;
+  return joined;
 }
 
-interface Joined {
-  readonly nodes: number;
-  readonly arcs: readonly Arc[];
+/**
+ * Which lanes are for visits only: those that are said to be, and what can be reached only through such
+ * a one, or left only through it.
+ */
+function visitLanes(
+  map: SegmentsAndTurns,
+  isJoined: (lane: number) => boolean,
+): (lane: number) => boolean {
+  const isSaid = (lane: number): boolean =>
+    (map.segments[lane >> 1]!.flags & SEGMENT_FLAGS.destination) !== 0;
+  const isAnySaid = map.segments.some((_, segment) => isSaid(segment * 2));
+  if (!isAnySaid) return () => false;
+  const through = joinedLanes(map, (lane) => isJoined(lane) && !isSaid(lane));
+  // Where there is no road for everybody, nothing is told apart.
+  return through.includes(1) ? (lane) => through[lane] === 0 : () => false;
 }
 
-/** A lane from whose end some turn is banned leads to a node of its own, with the turns that are left. */
-function withTurns({ junctions, segments, bannedTurns }: SegmentsAndTurns): Joined {
-  const leaving: number[][] = Array.from({ length: junctions }, () => []);
-  const ownNode = new Map<number, number>();
-  let nodes = junctions;
-  const junctionAfter = (lane: number): number =>
-    lane % 2 === 0 ? segments[lane >> 1]!.to : segments[lane >> 1]!.from;
-  segments.forEach(({ from, to, alongMs, againstMs }, segment) => {
-    if (alongMs > 0) leaving[from]!.push(segment * 2);
-    if (againstMs > 0) leaving[to]!.push(segment * 2 + 1);
-    for (const lane of [segment * 2, segment * 2 + 1])
-      if ((bannedTurns.get(lane)?.size ?? 0) > 0) ownNode.set(lane, nodes++);
-  });
-  const headOf = (lane: number): number => ownNode.get(lane) ?? junctionAfter(lane);
-  const arcs: Arc[] = [];
-  leaving.forEach((lanes, tail) => {
-    for (const lane of lanes) arcs.push({ tail, head: headOf(lane), lane });
-  });
-  for (const [lane, tail] of ownNode) {
-    const banned = bannedTurns.get(lane)!;
-    for (const next of leaving[junctionAfter(lane)]!)
-      if (!banned.has(next)) arcs.push({ tail, head: headOf(next), lane: next });
-  }
-  return { nodes, arcs };
-}
-
-function outward({ nodes, arcs }: Joined): [Int32Array, Int32Array] {
+function outward(nodes: number, arcs: readonly StateArc[]): [Int32Array, Int32Array] {
   const first = new Int32Array(nodes + 1);
   for (const { tail } of arcs) first[tail + 1]!++;
   for (let v = 0; v < nodes; v++) first[v + 1]! += first[v]!;
@@ -119,12 +122,12 @@ function outward({ nodes, arcs }: Joined): [Int32Array, Int32Array] {
   return [first, to];
 }
 
-function neighbours(count: number, arcs: readonly Arc[]): Neighbours {
+function neighbours(count: number, arcs: readonly StateArc[]): Neighbours {
   const both = arcs.flatMap(({ tail, head, lane }) => [
     { tail, head, lane },
     { tail: head, head: tail, lane },
   ]);
-  const [first, to] = outward({ nodes: count, arcs: both });
+  const [first, to] = outward(count, both);
   return { first, to };
 }
 
@@ -140,10 +143,13 @@ function numbered(
   return { of, count };
 }
 
-function flat(segments: readonly Segment[], arcs: readonly Arc[], nodeCount: number): RoadGraph {
+function flat(
+  segments: readonly Segment[],
+  arcs: readonly StateArc[],
+  laneHead: Int32Array,
+  nodeCount: number,
+): RoadGraph {
   const lanes = segments.length * 2;
-  const laneHead = new Int32Array(lanes).fill(-1);
-  for (const { head, lane } of arcs) laneHead[lane] = head;
   const laneTailFirst = new Int32Array(lanes + 1);
   for (const { lane } of arcs) laneTailFirst[lane + 1]!++;
   for (let lane = 0; lane < lanes; lane++) laneTailFirst[lane + 1]! += laneTailFirst[lane]!;

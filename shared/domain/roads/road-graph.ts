@@ -3,8 +3,9 @@
  *
  * A **segment** is a stretch of road between two junctions with its line and its length. Its two
  * directions are its **lanes**: 2 × segment along the line, 2 × segment + 1 against it. A **node** is a
- * junction; one at which turns are forbidden is there several times, once for each lane that may not
- * go on everywhere, so an **arc** says which node a lane leads to, and one lane may have several arcs.
+ * junction; one from which not everybody may go on everywhere is there several times, once for each state
+ * that a drive can be in (`drive-states.ts`), so an **arc** says which node a lane leads from and to, and
+ * one lane may have several arcs.
  * Nodes are numbered by their rank in the hierarchy, the lowest first.
  */
 export interface RoadGraph {
@@ -17,7 +18,7 @@ export interface RoadGraph {
 
   /** Milliseconds from end to end of a lane as usual; meaningless for a lane that may not be driven. */
   readonly laneMs: Int32Array;
-  /** The node at the end of a lane; -1 for a lane that may not be driven. */
+  /** The node at the end of a lane for a drive that began on it; -1 for a lane that may not be driven. */
   readonly laneHead: Int32Array;
   /** The nodes from which lane l may be entered: `laneTail[laneTailFirst[l]] …`. */
   readonly laneTailFirst: Int32Array;
@@ -36,7 +37,8 @@ export interface RoadGraph {
   readonly lineLat: Int32Array;
 }
 
-export const SEGMENT_FLAGS = { bridge: 1, ford: 2 } as const;
+/** `destination`: open only to those who begin or end their drive there. */
+export const SEGMENT_FLAGS = { bridge: 1, ford: 2, destination: 4 } as const;
 
 /** No way, in milliseconds or decimetres: two of them still fit into 31 bits. */
 export const NO_WAY = 0x3fff_ffff;
