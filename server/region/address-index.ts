@@ -1,3 +1,4 @@
+import { setImmediate } from 'node:timers/promises';
 import type { AddressSuggestion } from '@shared/domain/address/address-suggestion';
 import { confidenceOf, tooClose } from '@shared/domain/address/confidence';
 import { waysToRead } from '@shared/domain/address/parse-address';
@@ -37,42 +38,69 @@ const SAME_PLACE_METRES = 40;
 /** So many answers are looked at for others that are as good. */
 const RIVALS = 40;
 
+/** What is made of a region's table, each once. */
+interface Parts {
+  readonly streets: StreetNames;
+  readonly cityNames: CityNames;
+  readonly corners: CornerSearch;
+  readonly houses: HouseSearch;
+  readonly places: PlaceSearch;
+  /** How each word of the region's names sounds. */
+  readonly sounds: ReadonlyMap<string, string>;
+}
+
+/** One part after the other: with a whole state's streets all of them would hold up a server for long. */
+function* makeParts(table: AddressTable): Generator<void, Parts> {
+  const streets = new StreetNames(table);
+  yield;
+  const cityNames = new CityNames(table);
+  yield;
+  const corners = new CornerSearch(table);
+  yield;
+  const book = new StreetBook(table);
+  yield;
+  const houses = new HouseSearch(table, book, corners);
+  yield;
+  const places = new PlaceSearch(table);
+  yield;
+  const words = [...streets.words, ...cityNames.distinct, ...places.words];
+  const sounds = new Map(words.map(longType).map((word) => [word, soundKey(word)]));
+  return { streets, cityNames, corners, houses, places, sounds };
+}
+
 /** Finds addresses of one region by what people say, type and misspell. Kept in memory. */
 export class AddressIndex {
-  private readonly streets: StreetNames;
-  private readonly cityNames: CityNames;
-  private readonly houses: HouseSearch;
-  private readonly corners: CornerSearch;
-  private readonly places: PlaceSearch;
   private readonly points: NearestAddress;
-  /** How each word of the region's names sounds. */
-  private readonly sounds: ReadonlyMap<string, string>;
   private readonly squeeze: number;
 
-  constructor(table: AddressTable) {
-    this.streets = new StreetNames(table);
-    this.cityNames = new CityNames(table);
-    this.corners = new CornerSearch(table);
-    this.houses = new HouseSearch(table, new StreetBook(table), this.corners);
-    this.places = new PlaceSearch(table);
+  private constructor(
+    table: AddressTable,
+    private readonly parts: Parts,
+  ) {
     this.points = new NearestAddress(table);
-    const words = [...this.streets.words, ...this.cityNames.distinct, ...this.places.words];
-    this.sounds = new Map(words.map(longType).map((word) => [word, soundKey(word)]));
     this.squeeze = Math.cos((((table.streets.lat[0] ?? 0) / 1e7) * Math.PI) / 180);
   }
 
   static of(book: AddressBook): AddressIndex {
-    return new AddressIndex(packAddressBook(book));
+    const table = packAddressBook(book);
+    const making = makeParts(table);
+    for (let step = making.next(); ; step = making.next())
+      if (step.done) return new AddressIndex(table, step.value);
   }
 
-  /** Reads a region's folder, as the importer left it. */
+  /** Reads a region's folder, as the importer left it. What else there is to do is done in between. */
   static async open(folder: string): Promise<AddressIndex> {
-    return new AddressIndex(await readAddressTable(folder));
+    const table = await readAddressTable(folder);
+    const making = makeParts(table);
+    for (let step = making.next(); ; step = making.next()) {
+      if (step.done) return new AddressIndex(table, step.value);
+      await setImmediate();
+    }
   }
 
   /** Names of the towns that have houses. */
   get cities(): string[] {
-    return this.cityNames.withHouses;
+    return this.parts.cityNames.withHouses;
   }
 
   /** What the words typed so far may mean, best first. */
@@ -94,22 +122,27 @@ export class AddressIndex {
   }
 
   private readings(text: string, isTyping: boolean): Reading[] {
-    const search = new Search(this.streets, this.cityNames, this.sounds, isTyping);
+    const search = new Search(
+      this.parts.streets,
+      this.parts.cityNames,
+      this.parts.sounds,
+      isTyping,
+    );
     const ways = waysToRead(text).filter(({ street }) => street.length > 0);
     const found: Reading[] = [];
     let best = Infinity;
     for (const way of search.waysOf(ways).slice(0, MOST_WAYS)) {
       if (way.doubt > best + FAR_FETCHED) break;
       const readings = [
-        ...(way.cross && way.number === null ? [] : this.houses.readings(search, way)),
-        ...this.corners.readings(search, way),
+        ...(way.cross && way.number === null ? [] : this.parts.houses.readings(search, way)),
+        ...this.parts.corners.readings(search, way),
       ];
       for (const reading of readings) {
         if (reading.rank < best) best = reading.rank;
         found.push(reading);
       }
     }
-    for (const way of ways) found.push(...this.places.readings(search, way));
+    for (const way of ways) found.push(...this.parts.places.readings(search, way));
     return found;
   }
 

@@ -4,16 +4,14 @@ import type { AddressSuggestion } from '@shared/contract/calls';
 import type { AddressSuggestion as Found } from '@shared/domain/address/address-suggestion';
 import { ACCEPT_CONFIDENCE } from '@shared/domain/address/address-suggestion';
 import { AddressIndex } from './address-index';
-import { readAddressTable } from './address-store';
 import { readFeeders } from './feeders-file';
 import type { ImportedRegion } from './import-region';
 import type { RegionInUse } from './region-in-use';
 
 /** Loads an imported region's address book, and says where its tiles are. */
 export async function openRegion({ manifest, folder }: ImportedRegion): Promise<RegionInUse> {
-  const table = await readAddressTable(folder);
+  const index = await AddressIndex.open(folder);
   const power = await readFeeders(folder);
-  const index = new AddressIndex(table);
   const tiles = `/tiles/${manifest.id}-${manifest.hash}`;
   const dto: RegionDto = {
     id: manifest.id,

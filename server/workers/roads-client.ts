@@ -1,4 +1,5 @@
 import { basename } from 'node:path';
+import { setImmediate } from 'node:timers/promises';
 import {
   conditionsKey,
   USUAL_CONDITIONS,
@@ -98,7 +99,8 @@ export class RoadsClient implements RoadsPort {
       file,
       engine: new RoadsEngine(file),
     };
-    // Made now, or the first command that asks for a drive would wait for it.
+    // Made now, or the first command that asks for a drive would wait for it; others go first.
+    await setImmediate();
     void opened?.engine.snap;
     await this.become({ opened, conditions: this.wanted.conditions });
   }
