@@ -146,12 +146,12 @@ export const INVARIANTS: readonly Invariant[] = [
     ),
   },
   {
-    id: 'storm-roads-fit',
-    says: 'A storm road ends after it begins, has a speed just when it is slow, and a time when it was lifted.',
+    id: 'storm-roads-have-ground',
+    says: 'A storm road lies along a line of two points or more, or around an area of three or more.',
     breaches: none(
-      `SELECT id, kind, state FROM storm_roads
-        WHERE ends_at <= starts_at OR (kind = 'slow') <> (speed_share IS NOT NULL)
-           OR speed_share NOT BETWEEN 0.1 AND 0.9 OR (state = 'lifted') <> (lifted_at IS NOT NULL)`,
+      // A ring ends where it begins.
+      `SELECT id, kind FROM storm_roads
+        WHERE COALESCE(JSON_LENGTH(shape, '$.points') >= 2, JSON_LENGTH(shape, '$.ring') >= 4, 0) = 0`,
     ),
   },
   {

@@ -2,6 +2,7 @@ import { stringify } from 'csv-stringify/sync';
 import { DateTime } from 'luxon';
 import type { RegionDto } from '@shared/contract/areas';
 import type { DrainDto } from '@shared/contract/office';
+import { creditText } from '@shared/domain/map-credit';
 import { safeCell } from './safe-cell';
 
 /**
@@ -45,7 +46,7 @@ export function drainCsv(
     ['Forecast', drain.forecast.emptyAt === null ? 'never' : time(drain.forecast.emptyAt)],
     ['Assumption', safeCell(drain.forecast.assumption)],
     // Areas and drives come from the map: its licence asks to be named (ODbL 1.0, section 4.3).
-    ['Map data', safeCell(attribution)],
+    ['Map data', safeCell(creditText(attribution))],
   ]);
 }
 

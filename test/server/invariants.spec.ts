@@ -35,6 +35,12 @@ describe('the invariants', () => {
     ['every-call-has-clocks', 'DELETE FROM compartments LIMIT 1'],
     ['calls-are-numbered', 'UPDATE storms SET calls_taken = 7'],
     ['call-and-stop-agree', "UPDATE calls SET state = 'accepted' LIMIT 1"],
+    [
+      'storm-roads-have-ground',
+      `INSERT INTO storm_roads (id, storm_id, kind, state, name, notes, shape, starts_at, made_by, made_at, earlier)
+       SELECT UUID(), id, 'closed', 'confirmed', 'Larch Lane', '',
+              '{"type":"line","points":[[-47.7,36.4]]}', NOW(), 'Mara', NOW(), '[]' FROM storms`,
+    ],
     ['every-command-is-audited', 'UPDATE applied_commands SET id = UUID() LIMIT 1'],
   ])('%s sees %s', async (invariant, sql) => {
     await tamper(sql);
