@@ -1,4 +1,3 @@
-import type { AreaDto } from '@shared/contract/areas';
 import type { Box, LabelBoxes } from './label-boxes';
 import { font, inkText, type MapInk } from './map-ink';
 import { type AreaShape, boundsOf, type ScreenBounds } from './paint-areas';
@@ -11,8 +10,8 @@ export function paintAreaLabels(
   shapes: readonly AreaShape[],
   boxes: LabelBoxes,
   ink: MapInk,
-): readonly { readonly area: AreaDto; readonly box: Box }[] {
-  const labels: { readonly area: AreaDto; readonly box: Box }[] = [];
+): readonly { readonly areaId: string; readonly box: Box }[] {
+  const labels: { readonly areaId: string; readonly box: Box }[] = [];
   ctx.textAlign = 'left';
   ctx.textBaseline = 'top';
   for (const { area, rings, times } of shapes) {
@@ -28,7 +27,7 @@ export function paintAreaLabels(
     inkText(ctx, area.name, box.x + 2, box.y + 1, ink.ink, ink.ground);
     ctx.font = font(11);
     if (hasTimes) inkText(ctx, times, box.x + 2, box.y + 16, ink.ink, ink.ground);
-    labels.push({ area, box });
+    labels.push({ areaId: area.id, box });
   }
   return labels;
 }

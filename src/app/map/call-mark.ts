@@ -12,9 +12,9 @@ export type Press = 'now' | 'soon' | 'later' | 'none';
 const NOW_MINUTES = 60;
 const SOON_MINUTES = 4 * 60;
 
-/** One call on the map, in the order of the queue. */
-export interface CallMark {
-  readonly call: CallRow;
+/** What is drawn of a call. */
+export interface DrawnMark {
+  readonly call: Pick<CallRow, 'number' | 'danger'>;
   readonly x: number;
   readonly y: number;
   /** The compartment that presses most; shape and letter are its. */
@@ -22,6 +22,11 @@ export interface CallMark {
   readonly press: Press;
   /** A technician has the call on a route. */
   readonly isOnRoute: boolean;
+}
+
+/** One call on the map, in the order of the queue. */
+export interface CallMark extends DrawnMark {
+  readonly call: CallRow;
 }
 
 /** `null` for a call that nobody knows the place of. */

@@ -1,7 +1,8 @@
 import * as L from 'leaflet';
 import type { RegionDto } from '@shared/contract/areas';
 import type { LonLat } from '@shared/contract/common';
-import { type Paint, SceneLayer } from './scene-layer';
+import { SceneLayer, type SceneSource } from './scene/scene-layer';
+import { type Paint, TopLayer } from './scene/top-layer';
 import { MAP_MAX_ZOOM, MAP_MIN_ZOOM } from './tiles/map-zoom';
 import { PaintedTiles } from './tiles/painted-tiles';
 import { groundColor, type MapTheme } from './tiles/palette';
@@ -21,17 +22,18 @@ export interface StageLook {
 /** Leaflet, the tiles and two canvases: one for the picture, one for what changes with the pointer. */
 export class LeafletStage {
   readonly map: L.Map;
-  private tiles: PaintedTiles;
+  private readonly tiles: PaintedTiles;
   private readonly scene: SceneLayer;
-  private readonly top: SceneLayer;
-  private home: L.LatLngBounds;
+  private readonly top: TopLayer;
+  private readonly home: L.LatLngBounds;
 
   constructor(
     host: HTMLElement,
-    private region: RegionDto,
-    { look, paint, paintTop }: { look: StageLook; paint: Paint; paintTop: Paint },
+    private readonly region: RegionDto,
+    { look, scene, paintTop }: { look: StageLook; scene: SceneSource; paintTop: Paint },
   ) {
     this.home = boundsOf(region);
+    standOnWholePixels(host);
     this.map = L.map(host, {
       attributionControl: false,
       zoomControl: false,
@@ -49,8 +51,8 @@ export class LeafletStage {
     });
     this.tiles = tilesOf(region, look).addTo(this.map);
     this.colorGround(look.theme);
-    this.scene = new SceneLayer(paint).addTo(this.map);
-    this.top = new SceneLayer(paintTop).addTo(this.map);
+    this.scene = new SceneLayer(scene).addTo(this.map);
+    this.top = new TopLayer(paintTop).addTo(this.map);
     this.map.fitBounds(this.home, { animate: false });
   }
 
@@ -63,19 +65,6 @@ export class LeafletStage {
   setLook(look: StageLook): void {
     this.tiles.setLook({ ...look, hasCoast: this.region.hasCoast });
     this.colorGround(look.theme);
-  }
-
-  /** The server works in another region from now on: its tiles, its bounds. */
-  useRegion(region: RegionDto, look: StageLook): void {
-    if (region.tilesUrl === this.region.tilesUrl) return;
-    this.region = region;
-    this.home = boundsOf(region);
-    this.tiles.remove();
-    this.tiles.end();
-    this.tiles = tilesOf(region, look).addTo(this.map);
-    this.colorGround(look.theme);
-    this.map.setMaxBounds(this.home.pad(BEYOND));
-    this.map.fitBounds(this.home, { animate: false });
   }
 
   refresh(): void {
@@ -139,6 +128,7 @@ export class LeafletStage {
 
   /** The window has another size. */
   resized(): void {
+    standOnWholePixels(this.map.getContainer());
     this.map.invalidateSize({ animate: false, pan: false });
   }
 
@@ -146,11 +136,23 @@ export class LeafletStage {
     this.map.off();
     this.map.remove();
     this.tiles.end();
+    this.scene.end();
   }
 
   private colorGround(theme: MapTheme): void {
     this.map.getContainer().style.background = groundColor(theme, this.region.hasCoast);
   }
+}
+
+/**
+ * Columns of a page may begin between two points of the screen. Each tile would then be blended with the
+ * ground at its edges, and the seams be seen.
+ */
+function standOnWholePixels(host: HTMLElement): void {
+  const { left = 0, top = 0 } = host.parentElement?.getBoundingClientRect() ?? {};
+  const ratio = window.devicePixelRatio || 1;
+  const [x, y] = [left, top].map((px) => Math.round(px * ratio) / ratio - px);
+  host.style.translate = `${x}px ${y}px`;
 }
 
 function boundsOf({ bbox: [west, south, east, north] }: RegionDto): L.LatLngBounds {

@@ -37,6 +37,8 @@ export class MapActions {
 
   /** `null` until the map has a size to stand in. */
   readonly stage = signal<LeafletStage | null>(null);
+  /** Moves with the map. */
+  readonly sight = signal<{ readonly lat: number; readonly zoom: number } | null>(null);
   readonly picture = new MapPicture(() => readInk(this.theme));
   readonly panel = signal<'none' | 'lists' | 'legend' | 'file'>('none');
 

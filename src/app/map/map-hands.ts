@@ -160,15 +160,21 @@ export class MapHands {
       case 'technician':
         this.actions.chooseTechnician(hit.technicianId);
         return;
-      case 'pocket':
-        this.actions.choosePocket(hit.pocket);
+      case 'pocket': {
+        const pocket = this.board.pockets().find(({ key }) => key === hit.pocketKey);
+        if (pocket) this.actions.choosePocket(pocket);
         return;
-      case 'area':
-        this.actions.change(hit.area);
+      }
+      case 'area': {
+        const area = this.board.areas().get(hit.areaId);
+        if (area) this.actions.change(area);
         return;
-      case 'storm-road':
-        this.actions.changeRoad(hit.road);
+      }
+      case 'storm-road': {
+        const road = this.board.stormRoads().get(hit.roadId);
+        if (road) this.actions.changeRoad(road);
         return;
+      }
       default:
         this.actions.chooseTechnician(null);
     }

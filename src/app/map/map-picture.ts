@@ -1,46 +1,20 @@
-import type { AreaDto, PocketDto } from '@shared/contract/areas';
 import type { LonLat } from '@shared/contract/common';
-import type { StormRoadDto } from '@shared/contract/storm-roads';
 import type { CallMark } from './call-mark';
 import { type Box, isInBox, LabelBoxes } from './label-boxes';
-import { type MapInk } from './map-ink';
+import type { MapInk } from './map-ink';
 import { type PlacedMark, marksAt, placeMarks } from './mark-places';
 import { MarkSprites } from './mark-sprites';
 import type { Outline } from './outline';
-import { paintAreaLabels } from './area-labels';
-import { type AreaShape, makeHatch, paintAreas } from './paint-areas';
-import { paintCalls, paintDots, paintRing } from './paint-calls';
+import { paintRing } from './paint-calls';
 import { type FeederShape, type GroundRings, paintFeeders, paintGround } from './paint-ground';
 import { paintOutline } from './paint-outline';
-import { paintPocketLabels, paintPockets, type PocketShape } from './paint-pockets';
-import { paintProposal, paintStopNumbers, routeSteps } from './paint-routes';
-import {
-  makeStormRoadPatterns,
-  paintPickedStretch,
-  paintStormRoads,
-  paintStormRoadSigns,
-  type StormRoadMark,
-  type StormRoadPatterns,
-} from './paint-storm-roads';
-import { paintTechnicians } from './paint-technicians';
-import type { ProposedRoute, RouteShape } from './route-shape';
-import type { Paint, Step } from './scene-layer';
+import { paintPickedStretch } from './paint-picked-stretch';
+import { paintStopNumbers } from './paint-routes';
+import { EMPTY_SCENE, type MapScene } from './scene/map-scene';
+import type { SceneSource } from './scene/scene-layer';
+import { NO_PLACES, type ScenePlaces } from './scene/scene-orders';
+import type { Paint } from './scene/top-layer';
 import { onScreen, toWorld, type View, type WorldPoint } from './world';
-
-/** What the map shows, but for what moves with the pointer. A layer that is left out is empty. */
-export interface MapScene {
-  /** In the order of the queue. */
-  readonly marks: readonly CallMark[];
-  readonly areas: readonly AreaShape[];
-  readonly stormRoads: readonly StormRoadMark[];
-  readonly pockets: readonly PocketShape[];
-  readonly routes: readonly RouteShape[];
-  readonly proposal: readonly ProposedRoute[];
-  readonly hasRoutes: boolean;
-  readonly hasTechnicians: boolean;
-  readonly chosenPocketKey: string | null;
-  readonly chosenTechnicianId: string | null;
-}
 
 /** What moves with the pointer and the cross-hair. */
 export interface MapTop {
@@ -57,18 +31,6 @@ export interface MapTop {
   readonly stretch: { readonly line: readonly LonLat[]; readonly picks: readonly LonLat[] } | null;
 }
 
-const EMPTY_SCENE: MapScene = {
-  marks: [],
-  areas: [],
-  stormRoads: [],
-  pockets: [],
-  routes: [],
-  proposal: [],
-  hasRoutes: false,
-  hasTechnicians: false,
-  chosenPocketKey: null,
-  chosenTechnicianId: null,
-};
 const EMPTY_TOP: MapTop = {
   selected: null,
   hovered: null,
@@ -83,83 +45,40 @@ const EMPTY_TOP: MapTop = {
 export type MapHit =
   | { readonly kind: 'calls'; readonly marks: readonly CallMark[] }
   | { readonly kind: 'technician'; readonly technicianId: string }
-  | { readonly kind: 'pocket'; readonly pocket: PocketDto }
-  | { readonly kind: 'area'; readonly area: AreaDto }
-  | { readonly kind: 'storm-road'; readonly road: StormRoadDto };
+  | { readonly kind: 'pocket'; readonly pocketKey: string }
+  | { readonly kind: 'area'; readonly areaId: string }
+  | { readonly kind: 'storm-road'; readonly roadId: string };
 
-/** Draws the scene, and knows afterwards what lies where. */
-export class MapPicture {
-  scene = EMPTY_SCENE;
+/** What there is to draw, and afterwards what lies where; what moves with the pointer it draws itself. */
+export class MapPicture implements SceneSource {
+  scene: MapScene = EMPTY_SCENE;
   top = EMPTY_TOP;
 
-  private ink: MapInk | null = null;
+  private known: MapInk | null = null;
   private sprites: MarkSprites | null = null;
   private spritesFor = '';
-  private hatch: CanvasPattern | null = null;
-  private roadPatterns: StormRoadPatterns | null = null;
-  private placed: readonly PlacedMark[] = [];
+  private placed: readonly PlacedMark<CallMark>[] = [];
   private placedFor: { readonly marks: readonly CallMark[]; readonly zoom: number } | null = null;
   private view: View | null = null;
-  private plates: ReturnType<typeof paintTechnicians> = [];
-  private roadSigns: ReturnType<typeof paintStormRoadSigns> = [];
-  private areaLabels: ReturnType<typeof paintAreaLabels> = [];
-  private pocketLabels: ReturnType<typeof paintPocketLabels> = [];
+  private places = NO_PLACES;
 
   constructor(private readonly readInk: () => MapInk) {}
 
   /** The colours have changed: everything that was drawn in them is forgotten. */
   forgetInk(): void {
-    this.ink = null;
+    this.known = null;
     this.sprites = null;
-    this.hatch = null;
-    this.roadPatterns = null;
   }
 
-  readonly paint: Paint = (view, pixelRatio) => {
-    const { scene } = this;
-    const ink = this.inkNow();
-    const sprites = this.spritesNow(ink, pixelRatio);
-    const boxes = new LabelBoxes();
-    const chosenId = scene.chosenTechnicianId;
-    let placed: readonly PlacedMark[] = [];
-    let plates = this.plates;
-    return [
-      (ctx) => {
-        this.hatch ??= makeHatch(ctx, ink);
-        paintPockets(ctx, view, scene.pockets, scene.chosenPocketKey, ink);
-        paintAreas(ctx, view, scene.areas, this.hatch, ink);
-      },
-      ...(scene.hasRoutes ? routeSteps(view, scene.routes, chosenId, ink) : []),
-      (ctx) => {
-        paintProposal(ctx, view, scene.proposal, chosenId, ink);
-        this.roadPatterns ??= makeStormRoadPatterns(ctx, ink);
-        paintStormRoads(ctx, view, scene.stormRoads, this.roadPatterns, ink);
-        placed = this.placedAt(view.zoom);
-      },
-      (ctx) => paintDots(ctx, view, placed, sprites),
-      (ctx) => paintCalls(ctx, view, placed, sprites, ink),
-      (ctx) => {
-        plates = scene.hasTechnicians
-          ? paintTechnicians(ctx, view, scene.routes, chosenId, boxes, ink)
-          : [];
-      },
-      (ctx) => {
-        // What lies where is known from here on, together with the picture that shows it.
-        this.view = view;
-        this.plates = plates;
-        this.roadSigns = paintStormRoadSigns(ctx, view, scene.stormRoads, boxes, ink);
-        this.pocketLabels = paintPocketLabels(
-          ctx,
-          view,
-          scene.pockets,
-          scene.chosenPocketKey,
-          boxes,
-          ink,
-        );
-        this.areaLabels = paintAreaLabels(ctx, view, scene.areas, boxes, ink);
-      },
-    ];
-  };
+  ink(): MapInk {
+    return (this.known ??= this.readInk());
+  }
+
+  /** The scene is on screen: what lies where is known from here on. */
+  isShown(view: View, places: ScenePlaces): void {
+    this.view = view;
+    this.places = places;
+  }
 
   readonly paintTop: Paint = (view, pixelRatio) => {
     const { scene, top } = this;
@@ -170,10 +89,10 @@ export class MapPicture {
       !chosen &&
       top.grounds.length + top.feeders.length === 0 &&
       Object.values({ ...top, grounds: null, feeders: null }).every((one) => one === null);
-    if (isEmpty) return [];
-    const ink = this.inkNow();
+    if (isEmpty) return null;
+    const ink = this.ink();
     const sprites = this.spritesNow(ink, pixelRatio);
-    const draw: Step = (ctx) => {
+    return (ctx) => {
       if (chosen) paintStopNumbers(ctx, view, chosen, ink);
       for (const ground of top.grounds) paintGround(ctx, view, ground, ink);
       paintFeeders(ctx, view, top.feeders, new LabelBoxes(), ink);
@@ -188,7 +107,6 @@ export class MapPicture {
       if (top.stretch) paintPickedStretch(ctx, view, top.stretch.line, top.stretch.picks, ink);
       if (top.pin) paintPin(ctx, onScreen(view, toWorld(top.pin)), ink);
     };
-    return [draw];
   };
 
   /**
@@ -202,20 +120,17 @@ export class MapPicture {
     const x = at.x - view.left;
     const y = at.y - view.top;
     const inBox = ({ box }: { readonly box: Box }): boolean => isInBox(box, x, y);
-    const plate = this.plates.findLast(inBox);
+    const { plates, roadSigns, pocketLabels, areaLabels } = this.places;
+    const plate = plates.findLast(inBox);
     if (plate) return { kind: 'technician', technicianId: plate.technicianId };
-    const sign = this.roadSigns.findLast(inBox);
-    if (sign) return { kind: 'storm-road', road: sign.road };
-    const pocket = this.pocketLabels.find(inBox);
-    if (pocket) return { kind: 'pocket', pocket: pocket.pocket };
+    const sign = roadSigns.findLast(inBox);
+    if (sign) return { kind: 'storm-road', roadId: sign.roadId };
+    const pocket = pocketLabels.find(inBox);
+    if (pocket) return { kind: 'pocket', pocketKey: pocket.pocketKey };
     const near = marksAt(this.placedAt(view.zoom), view.zoom, at, slackPx);
     if (near.length > 0) return { kind: 'calls', marks: meant(near) };
-    const area = this.areaLabels.find(inBox);
-    return area ? { kind: 'area', area: area.area } : null;
-  }
-
-  private inkNow(): MapInk {
-    return (this.ink ??= this.readInk());
+    const area = areaLabels.find(inBox);
+    return area ? { kind: 'area', areaId: area.areaId } : null;
   }
 
   private spritesNow(ink: MapInk, pixelRatio: number): MarkSprites {
@@ -227,7 +142,7 @@ export class MapPicture {
     return this.sprites;
   }
 
-  private placedAt(zoom: number): readonly PlacedMark[] {
+  private placedAt(zoom: number): readonly PlacedMark<CallMark>[] {
     const whole = Math.round(zoom);
     const { marks } = this.scene;
     if (this.placedFor?.marks !== marks || this.placedFor.zoom !== whole) {
@@ -244,7 +159,7 @@ export class MapPicture {
 }
 
 /** A full mark on top means itself and its house; dots beside each other mean all of them. */
-function meant(near: readonly PlacedMark[]): readonly CallMark[] {
+function meant(near: readonly PlacedMark<CallMark>[]): readonly CallMark[] {
   const [first] = near;
   if (!first) return [];
   const sameHouse = near.filter(

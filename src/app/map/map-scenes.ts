@@ -13,15 +13,15 @@ import { FileImport } from './file-import';
 import { areaTimesWords, pocketWords } from './area-words';
 import { type CallMark, callMark, CallMarks } from './call-mark';
 import { MapLayers } from './map-layers';
-import type { MapScene } from './map-picture';
 import { areaShape } from './paint-areas';
 import { feederShape, groundRings } from './paint-ground';
 import { pocketShape } from './paint-pockets';
 import { stormRoadMark } from './paint-storm-roads';
 import { RoadWays } from './road-ways';
 import { proposedRoute, type RouteGround, routeShape } from './route-shape';
+import type { MapScene } from './scene/map-scene';
 import { StormRoadEditor } from './storm-road-editor';
-import { spanWords, tenseOf } from './storm-road-words';
+import { KIND_WORDS, spanWords, tenseOf } from './storm-road-words';
 
 /** Makes what the map draws from what the board knows; each part anew only when it has changed. */
 @Injectable()
@@ -63,7 +63,10 @@ export class MapScenes {
     return [...this.board.stormRoads().values()]
       .filter((road) => road.id !== edited && tenseOf(road, now) !== 'over')
       .map((road) =>
-        stormRoadMark(road, tenseOf(road, now), spanWords(road, now, this.zone.name())),
+        stormRoadMark(road, tenseOf(road, now), {
+          title: `${KIND_WORDS[road.kind]}: ${road.name}`,
+          span: spanWords(road, now, this.zone.name()),
+        }),
       );
   });
 

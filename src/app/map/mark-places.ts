@@ -1,9 +1,9 @@
-import type { CallMark, Press } from './call-mark';
+import type { DrawnMark, Press } from './call-mark';
 import { scaleAt } from './world';
 
 /** A call's mark as it stands at one zoom. */
-export interface PlacedMark {
-  readonly mark: CallMark;
+export interface PlacedMark<Mark extends DrawnMark = DrawnMark> {
+  readonly mark: Mark;
   /** With shape and letter; without it is a dot, because a more urgent one needs the room. */
   readonly isFull: boolean;
   /** How many calls stand in this very place, this one among them. */
@@ -39,13 +39,16 @@ const SAME_PLACE = 1 / 2 ** 22.6;
  *
  * @returns the marks in the order in which they were given
  */
-export function placeMarks(marks: readonly CallMark[], zoom: number): PlacedMark[] {
+export function placeMarks<Mark extends DrawnMark>(
+  marks: readonly Mark[],
+  zoom: number,
+): PlacedMark<Mark>[] {
   const scale = scaleAt(zoom);
   const spacing = spacingAt(zoom);
   const cell = 2 * MARK_RADIUS.now * spacing;
-  const grid = new Map<number, CallMark[]>();
+  const grid = new Map<number, DrawnMark[]>();
   const houses = countHouses(marks);
-  const placed: PlacedMark[] = [];
+  const placed: PlacedMark<Mark>[] = [];
 
   for (const mark of marks) {
     const column = Math.floor((mark.x * scale) / cell);
@@ -62,11 +65,11 @@ export function placeMarks(marks: readonly CallMark[], zoom: number): PlacedMark
   return placed;
 }
 
-const EMPTY_CELL: readonly CallMark[] = [];
+const EMPTY_CELL: readonly DrawnMark[] = [];
 
 function hasRoom(
-  mark: CallMark,
-  grid: ReadonlyMap<number, readonly CallMark[]>,
+  mark: DrawnMark,
+  grid: ReadonlyMap<number, readonly DrawnMark[]>,
   column: number,
   row: number,
   scale: number,
@@ -88,10 +91,10 @@ function hasRoom(
 /** Cells reach to 2^26 at the closest zoom, so a pair of them is one exact whole number. */
 const cellKey = (column: number, row: number): number => column * 2 ** 26 + row;
 
-const houseKey = ({ x, y }: CallMark): number =>
+const houseKey = ({ x, y }: DrawnMark): number =>
   Math.round(x / SAME_PLACE) * 2 ** 26 + Math.round(y / SAME_PLACE);
 
-function countHouses(marks: readonly CallMark[]): ReadonlyMap<number, number> {
+function countHouses(marks: readonly DrawnMark[]): ReadonlyMap<number, number> {
   const counts = new Map<number, number>();
   for (const mark of marks) {
     const key = houseKey(mark);
@@ -112,14 +115,14 @@ export function dotRadius(press: Press, zoom: number): number {
  * @param x,y the pointer in CSS pixels of the whole world at this zoom
  * @param slack how far beside a mark still counts, in CSS pixels
  */
-export function marksAt(
-  placed: readonly PlacedMark[],
+export function marksAt<Mark extends DrawnMark>(
+  placed: readonly PlacedMark<Mark>[],
   zoom: number,
   { x, y }: { readonly x: number; readonly y: number },
   slack: number,
-): PlacedMark[] {
+): PlacedMark<Mark>[] {
   const scale = scaleAt(zoom);
-  const near: { readonly one: PlacedMark; readonly beside: number }[] = [];
+  const near: { readonly one: PlacedMark<Mark>; readonly beside: number }[] = [];
   for (const one of placed) {
     const radius = one.isFull ? MARK_RADIUS[one.mark.press] : dotRadius(one.mark.press, zoom);
     const beside = Math.hypot(one.mark.x * scale - x, one.mark.y * scale - y) - radius;

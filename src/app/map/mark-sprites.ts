@@ -1,8 +1,9 @@
-import { COMPARTMENT_SHAPES } from '../board/compartment-glyph';
+import { COMPARTMENT_SHAPES } from '../board/compartment-shapes';
 import { COMPARTMENT_WORDS } from '../board/compartment-words';
-import type { CallMark, Press } from './call-mark';
+import type { DrawnMark, Press } from './call-mark';
 import { font, type MapInk } from './map-ink';
 import { MARK_RADIUS } from './mark-places';
+import { scratchCanvas } from './scratch-canvas';
 
 /** The shapes of compartments are drawn in a square from -10 to 10. */
 const SHAPE_RADIUS = 10;
@@ -10,7 +11,7 @@ const RIM_PX = 2.5;
 /** Room around a mark for its second outline, its foot and its badge. */
 const MARGIN_PX = 8;
 
-export type MarkLook = Pick<CallMark, 'kind' | 'press' | 'isOnRoute'> & {
+export type MarkLook = Pick<DrawnMark, 'kind' | 'press' | 'isOnRoute'> & {
   readonly hasDanger: boolean;
 };
 
@@ -19,7 +20,7 @@ export type MarkLook = Pick<CallMark, 'kind' | 'press' | 'isOnRoute'> & {
  * of a few dozen pictures.
  */
 export class MarkSprites {
-  private readonly made = new Map<string, HTMLCanvasElement>();
+  private readonly made = new Map<string, OffscreenCanvas>();
 
   constructor(
     private readonly ink: MapInk,
@@ -49,20 +50,17 @@ export class MarkSprites {
     ctx.drawImage(sprite, x - size / 2, y - size / 2, size, size);
   }
 
-  private draw(look: MarkLook): HTMLCanvasElement {
+  private draw(look: MarkLook): OffscreenCanvas {
     const half = Math.ceil(MARK_RADIUS[look.press] + MARGIN_PX);
     return this.canvas(half, (pen) => drawMark(pen, look, this.ink));
   }
 
   /** @param half half the side of the picture; its middle is the origin of what is drawn */
-  private canvas(half: number, draw: (pen: CanvasRenderingContext2D) => void): HTMLCanvasElement {
-    const canvas = document.createElement('canvas');
-    canvas.width = canvas.height = Math.ceil(2 * half * this.pixelRatio);
-    const ctx = canvas.getContext('2d');
-    if (!ctx) return canvas;
-    ctx.scale(canvas.width / (2 * half), canvas.height / (2 * half));
-    ctx.translate(half, half);
-    draw(ctx);
+  private canvas(half: number, draw: (pen: CanvasRenderingContext2D) => void): OffscreenCanvas {
+    const { canvas, pen } = scratchCanvas(Math.ceil(2 * half * this.pixelRatio));
+    pen.scale(canvas.width / (2 * half), canvas.height / (2 * half));
+    pen.translate(half, half);
+    draw(pen);
     return canvas;
   }
 }

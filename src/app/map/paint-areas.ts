@@ -1,10 +1,11 @@
 import type { AreaDto } from '@shared/contract/areas';
 import type { MapInk } from './map-ink';
+import { scratchCanvas } from './scratch-canvas';
 import { onScreen, toWorld, type View, type WorldPoint } from './world';
 
 /** An outage area, projected once. */
 export interface AreaShape {
-  readonly area: AreaDto;
+  readonly area: Pick<AreaDto, 'id' | 'name' | 'backAt'>;
   /** Outer rings and holes alike. */
   readonly rings: readonly (readonly WorldPoint[])[];
   readonly times: string;
@@ -50,10 +51,7 @@ export function paintAreas(
 }
 
 export function makeHatch(ctx: CanvasRenderingContext2D, ink: MapInk): CanvasPattern | null {
-  const tile = document.createElement('canvas');
-  tile.width = tile.height = HATCH_PX;
-  const pen = tile.getContext('2d');
-  if (!pen) return null;
+  const { canvas, pen } = scratchCanvas(HATCH_PX);
   pen.strokeStyle = ink.inkSoft;
   pen.globalAlpha = 0.34;
   pen.lineWidth = 1;
@@ -63,7 +61,7 @@ export function makeHatch(ctx: CanvasRenderingContext2D, ink: MapInk): CanvasPat
     pen.lineTo(shift + HATCH_PX + 1, -1);
   }
   pen.stroke();
-  return ctx.createPattern(tile, 'repeat');
+  return ctx.createPattern(canvas, 'repeat');
 }
 
 export const tracePath = (

@@ -6,7 +6,7 @@ import { onScreen, toWorld, type View, type WorldPoint } from './world';
 
 /** A pocket, projected once, with what its label says. */
 export interface PocketShape {
-  readonly pocket: PocketDto;
+  readonly pocket: Pick<PocketDto, 'key'>;
   readonly points: readonly WorldPoint[];
   readonly label: string;
   readonly shortLabel: string;
@@ -61,11 +61,18 @@ export function paintPocketLabels(
   chosenKey: string | null,
   boxes: LabelBoxes,
   ink: MapInk,
-): readonly { readonly pocket: PocketDto; readonly box: Box }[] {
-  const labels: { readonly pocket: PocketDto; readonly box: Box }[] = [];
+): readonly { readonly pocketKey: string; readonly box: Box }[] {
+  const labels: { readonly pocketKey: string; readonly box: Box }[] = [];
   ctx.font = font(11.5, 500);
   ctx.textAlign = 'left';
   ctx.textBaseline = 'middle';
+  // Half a tag at the window's edge is not read.
+  const window = {
+    left: view.margin + 4,
+    right: view.width - view.margin - 4,
+    // Above the map's foot.
+    lowest: view.height - view.margin - 46,
+  };
   for (const shape of shapes) {
     if (!isWorthDrawing(view, shape)) continue;
     const bounds = boundsOf(shape.points.map((point) => onScreen(view, point)));
@@ -74,8 +81,12 @@ export function paintPocketLabels(
     const isSmall = bounds.right - bounds.left < WHOLE_LABEL_FROM_PX && !isChosen;
     for (const text of isSmall ? [shape.shortLabel] : [shape.label, shape.shortLabel]) {
       const width = ctx.measureText(text).width + 14;
-      const at = (y: number): Box => ({ x: middle - width / 2, y, width, height: 20 });
-      const box = boxes.takeFirst([at(bounds.bottom - 9), at(bounds.top - 11)]);
+      const x = Math.max(window.left, Math.min(middle - width / 2, window.right - width));
+      const at = (y: number): Box => ({ x, y, width, height: 20 });
+      const box = boxes.takeFirst([
+        at(Math.min(bounds.bottom - 9, window.lowest)),
+        at(bounds.top - 11),
+      ]);
       if (!box) continue;
       ctx.fillStyle = isChosen ? ink.accent : ink.raised;
       ctx.strokeStyle = ink.accent;
@@ -86,7 +97,7 @@ export function paintPocketLabels(
       ctx.stroke();
       ctx.fillStyle = isChosen ? ink.onAccent : ink.ink;
       ctx.fillText(text, box.x + 7, box.y + 10.5);
-      labels.push({ pocket: shape.pocket, box });
+      labels.push({ pocketKey: shape.pocket.key, box });
       break;
     }
   }

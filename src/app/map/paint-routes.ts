@@ -1,7 +1,7 @@
 import { font, type MapInk } from './map-ink';
 import type { ProposedRoute, RouteLeg, RouteShape } from './route-shape';
-import type { Step } from './scene-layer';
-import { isInView, onScreen, type View, type WorldPoint } from './world';
+import { lengthOf, pointAlong, type PointOnLine, type ScreenLine, traceLines } from './screen-line';
+import { isInView, onScreen, type View } from './world';
 
 /** How a leg is drawn; legs of one look are drawn in one stroke. */
 interface LegLook {
@@ -19,23 +19,19 @@ const ARROWS_FROM_ZOOM = 12;
 const DOTS = [1.5, 4.5];
 const PLANNED = [9, 5];
 
-/** So many legs are drawn in one stroke: a stroke of all of them would hold up a frame by itself. */
-const LEGS_AT_ONCE = 24;
-
 /**
  * Along the roads, whole for what is accepted and broken for what is only planned; the chosen route
  * last, wider and in the accent's colour.
- *
- * @returns what is to be drawn, part by part
  */
-export function routeSteps(
+export function paintRoutes(
+  ctx: CanvasRenderingContext2D,
   view: View,
   shapes: readonly RouteShape[],
   chosenId: string | null,
   ink: MapInk,
-): Step[] {
+): void {
   const isFar = view.zoom < ARROWS_FROM_ZOOM;
-  return [false, true].flatMap((isChosen) => {
+  for (const isChosen of [false, true]) {
     const legs = shapes
       .filter(({ technician }) => (technician.id === chosenId) === isChosen)
       .flatMap((shape) => shape.legs);
@@ -51,20 +47,9 @@ export function routeSteps(
       [legs.filter(({ way, isFirm }) => way && !isFirm), PLANNED],
       [legs.filter(({ way }) => !way), DOTS],
     ];
-    return groups.flatMap(([group, dash]) =>
-      piecesOf(group).map(
-        (piece): Step =>
-          (ctx) =>
-            paintLegs(ctx, view, piece, { ...look, dash }, ink.ground),
-      ),
-    );
-  });
+    for (const [group, dash] of groups) paintLegs(ctx, view, group, { ...look, dash }, ink.ground);
+  }
 }
-
-const piecesOf = (legs: readonly RouteLeg[]): RouteLeg[][] =>
-  Array.from({ length: Math.ceil(legs.length / LEGS_AT_ONCE) }, (_, i) =>
-    legs.slice(i * LEGS_AT_ONCE, (i + 1) * LEGS_AT_ONCE),
-  );
 
 /**
  * What a proposal would make of the routes: two thin lines with open arrows, so that it is told from
@@ -84,7 +69,7 @@ export function paintProposal(
     const paths = pathsInView(view, legs);
     ctx.lineJoin = 'round';
     ctx.lineCap = 'round';
-    trace(ctx, paths);
+    traceLines(ctx, paths);
     ctx.strokeStyle = ink.accent;
     ctx.lineWidth = width;
     ctx.stroke();
@@ -112,7 +97,7 @@ function paintLegs(
   if (paths.length === 0) return;
   ctx.lineJoin = 'round';
   ctx.lineCap = dash === DOTS ? 'round' : 'butt';
-  trace(ctx, paths);
+  traceLines(ctx, paths);
   if (arrowPx > 0) {
     ctx.strokeStyle = rim;
     ctx.lineWidth = width + 2.5;
@@ -134,11 +119,9 @@ function paintLegs(
   ctx.fill();
 }
 
-type Path = readonly WorldPoint[];
-
 /** On the canvas, in pixels; what lies beside it as a whole is left out. */
-function pathsInView(view: View, legs: readonly RouteLeg[]): Path[] {
-  const paths: Path[] = [];
+function pathsInView(view: View, legs: readonly RouteLeg[]): ScreenLine[] {
+  const paths: ScreenLine[] = [];
   for (const { from, to, way } of legs) {
     const points = (way?.at(view.zoom) ?? [from, to]).map((point) => onScreen(view, point));
     if (isSeen(view, points)) paths.push(points);
@@ -146,7 +129,7 @@ function pathsInView(view: View, legs: readonly RouteLeg[]): Path[] {
   return paths;
 }
 
-function isSeen({ width, height }: View, points: Path): boolean {
+function isSeen({ width, height }: View, points: ScreenLine): boolean {
   let [left, top, right, bottom] = [Infinity, Infinity, -Infinity, -Infinity];
   for (const { x, y } of points) {
     left = Math.min(left, x);
@@ -157,18 +140,8 @@ function isSeen({ width, height }: View, points: Path): boolean {
   return right >= 0 && bottom >= 0 && left <= width && top <= height;
 }
 
-function trace(ctx: CanvasRenderingContext2D, paths: readonly Path[]): void {
-  ctx.beginPath();
-  for (const path of paths)
-    path.forEach(({ x, y }, i) => (i === 0 ? ctx.moveTo(x, y) : ctx.lineTo(x, y)));
-}
-
-export interface Arrow extends WorldPoint {
-  readonly angle: number;
-}
-
 /** Which way the legs go: an arrow in the middle of a short one, more along a long one. */
-export function arrowsOn(view: View, paths: readonly Path[], everyPx: number): Arrow[] {
+export function arrowsOn(view: View, paths: readonly ScreenLine[], everyPx: number): PointOnLine[] {
   return paths.flatMap((path) => {
     const length = lengthOf(path);
     if (length < 34) return [];
@@ -179,32 +152,11 @@ export function arrowsOn(view: View, paths: readonly Path[], everyPx: number): A
   });
 }
 
-const lengthOf = (path: Path): number =>
-  path.reduce((sum, { x, y }, i) => {
-    const before = path[i - 1];
-    return before ? sum + Math.hypot(x - before.x, y - before.y) : sum;
-  }, 0);
-
-function pointAlong(path: Path, at: number): Arrow | null {
-  let left = at;
-  for (let i = 1; i < path.length; i++) {
-    const from = path[i - 1]!;
-    const to = path[i]!;
-    const length = Math.hypot(to.x - from.x, to.y - from.y);
-    if (left <= length && length > 0) {
-      const share = left / length;
-      return {
-        x: from.x + (to.x - from.x) * share,
-        y: from.y + (to.y - from.y) * share,
-        angle: Math.atan2(to.y - from.y, to.x - from.x),
-      };
-    }
-    left -= length;
-  }
-  return null;
-}
-
-function traceArrows(ctx: CanvasRenderingContext2D, arrows: readonly Arrow[], size: number): void {
+function traceArrows(
+  ctx: CanvasRenderingContext2D,
+  arrows: readonly PointOnLine[],
+  size: number,
+): void {
   ctx.beginPath();
   for (const { x, y, angle } of arrows) {
     const [dx, dy] = [Math.cos(angle) * size, Math.sin(angle) * size];

@@ -19,7 +19,7 @@ export interface RouteLeg {
 
 /** A technician and what is left of the route, projected once. */
 export interface RouteShape {
-  readonly technician: TechnicianDto;
+  readonly technician: Pick<TechnicianDto, 'id'>;
   readonly at: WorldPoint;
   readonly initials: string;
   /** The age of the position, such as "4 min"; empty when there is none. */

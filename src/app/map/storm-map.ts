@@ -13,14 +13,13 @@ import {
   ViewEncapsulation,
 } from '@angular/core';
 import type { RegionDto } from '@shared/contract/areas';
-import type { LonLat } from '@shared/contract/common';
 import type { StopDto } from '@shared/contract/routes';
 import { BoardStore } from '../core/board-store';
 import { Clock } from '../core/clock';
-import { Keys } from '../core/keys';
 import { Session } from '../core/session';
 import { Theme } from '../core/theme';
 import { AgoPipe, ClockTimePipe, Zone } from '../core/zone';
+import { MapCredit } from '../ui/map-credit';
 import { AreaEditor } from './area-editor';
 import { AreaForm } from './area-form';
 import { AreaImport } from './area-import';
@@ -30,11 +29,13 @@ import { FileImport } from './file-import';
 import { LeafletStage } from './leaflet-stage';
 import { MapActions } from './map-actions';
 import { MapHands } from './map-hands';
+import { MapKeys } from './map-keys';
 import { MAP_LAYERS, MapLayers } from './map-layers';
 import { MapLegend } from './map-legend';
 import { MapLists } from './map-lists';
 import { MapPopover } from './map-popover';
 import { MapScenes } from './map-scenes';
+import { MapTops } from './map-tops';
 import { MapWish } from './map-wish';
 import { PinTool } from './pin-tool';
 import { scaleBar } from './scale-bar';
@@ -54,6 +55,7 @@ import { metresPerPixel } from './world';
     AreaImport,
     CallPopover,
     ClockTimePipe,
+    MapCredit,
     MapLegend,
     MapLists,
     StormRoadForm,
@@ -68,8 +70,10 @@ import { metresPerPixel } from './world';
     FileImport,
     MapActions,
     MapHands,
+    MapKeys,
     MapPopover,
     MapScenes,
+    MapTops,
     PinTool,
     StormRoadEditor,
   ],
@@ -86,6 +90,7 @@ export class StormMap {
   protected readonly pin = inject(PinTool);
   protected readonly popover = inject(MapPopover);
   private readonly scenes = inject(MapScenes);
+  private readonly tops = inject(MapTops);
   private readonly theme = inject(Theme);
   private readonly wish = inject(MapWish);
   private readonly zone = inject(Zone);
@@ -101,9 +106,13 @@ export class StormMap {
   protected readonly layerNames = computed(() =>
     MAP_LAYERS.filter(({ layer }) => layer !== 'proposal' || this.board.plan() !== null),
   );
+  protected readonly shownLayers = computed(
+    () => this.layerNames().filter(({ layer }) => this.layers.isShown(layer)).length,
+  );
+  /** Where the bar is too narrow for all layers they are a list that is opened. */
+  protected readonly hasLayerList = signal(false);
   protected readonly panel = this.actions.panel;
-  /** Moves with the map. */
-  private readonly sight = signal<{ readonly lat: number; readonly zoom: number } | null>(null);
+  private readonly sight = this.actions.sight;
   protected readonly scale = computed(
     () => {
       const sight = this.sight();
@@ -115,7 +124,7 @@ export class StormMap {
     theme: this.theme.scheme(),
     hasFeeders: this.layers.isShown('feeders'),
   }));
-  protected readonly hasStraightLegs = inject(MapScenes).hasStraightLegs;
+  protected readonly hasStraightLegs = this.scenes.hasStraightLegs;
   protected readonly popoverPlace = computed(() => {
     this.sight();
     const at = this.popover.at();
@@ -129,11 +138,10 @@ export class StormMap {
     this.showTop();
     this.showFinishedOutline();
     this.followLook();
-    this.followRegion();
     this.followSelection();
     this.followPinRequest();
     this.grantWishes();
-    this.registerKeys();
+    inject(MapKeys).register(() => this.isInSight(), inject(DestroyRef));
   }
 
   protected open(callId: string): void {
@@ -196,7 +204,7 @@ export class StormMap {
     const { picture } = this.actions;
     const stage = new LeafletStage(host, region, {
       look: this.look(),
-      paint: picture.paint,
+      scene: picture,
       paintTop: picture.paintTop,
     });
     const { map } = stage;
@@ -220,31 +228,9 @@ export class StormMap {
 
   private showTop(): void {
     effect(() => {
-      const stage = this.stage();
-      this.actions.picture.top = {
-        selected: this.scenes.selectedMark(),
-        hovered: this.scenes.hoveredMark(),
-        outline: this.outlineUnderChange(),
-        grounds: this.scenes.grounds(),
-        feeders: this.scenes.feeders(),
-        nextCorner: this.nextCorner(),
-        pin: this.pin.placed(),
-        stretch: this.stretchUnderChange(),
-      };
-      stage?.refreshTop();
+      this.actions.picture.top = this.tops.top();
+      this.stage()?.refreshTop();
     });
-  }
-
-  private outlineUnderChange() {
-    if (this.editor.isOpen()) return this.editor.outline();
-    const { roadEditor } = this;
-    return roadEditor.isOpen() && roadEditor.drawsArea() ? roadEditor.outline() : null;
-  }
-
-  private stretchUnderChange() {
-    const { roadEditor } = this;
-    if (!roadEditor.isOpen() || roadEditor.drawsArea()) return null;
-    return { line: roadEditor.line() ?? [], picks: roadEditor.picks() };
   }
 
   /** With its last corner the outline gets a larger form beside it. */
@@ -258,15 +244,6 @@ export class StormMap {
     });
   }
 
-  private nextCorner(): LonLat | null {
-    const stage = this.stage();
-    if (!(this.editor.isDrawing() || this.roadEditor.isDrawing()) || !stage) return null;
-    const pointer = this.hands.pointerAt();
-    if (pointer) return pointer;
-    this.sight();
-    return stage.centre();
-  }
-
   private followLook(): void {
     effect(() => {
       const look = this.look();
@@ -276,14 +253,6 @@ export class StormMap {
       this.actions.picture.forgetInk();
       stage?.setLook(look);
       stage?.refresh();
-    });
-  }
-
-  private followRegion(): void {
-    effect(() => {
-      const region = this.session.region();
-      const stage = this.stage();
-      if (region && stage) untracked(() => stage.useRegion(region, this.look()));
     });
   }
 
@@ -345,50 +314,5 @@ export class StormMap {
 
   private isInSight(): boolean {
     return this.host().nativeElement.clientWidth > 0;
-  }
-
-  private registerKeys(): void {
-    const { actions } = this;
-    const when = (): boolean => this.isInSight();
-    const action = (keys: string, does: string, run: () => void) => ({
-      keys,
-      does,
-      scope: 'Map',
-      when,
-      run,
-    });
-    inject(Keys).register(
-      [
-        action('a', 'Draw an outage area', () => actions.draw()),
-        action('z f', 'Make an outage area of feeders', () => actions.pickFeeders()),
-        action('z i', 'Take outage areas from a file', () => actions.importFile()),
-        action('b', 'Close a road, or say that it is flooded or slow', () => actions.closeRoad()),
-        action('z a', 'Show all calls', () => actions.show('all')),
-        action('z s', 'Show the selected call', () => actions.show('selected-call')),
-        action('z p', 'Show the pocket of the selected call', () => actions.show('pocket')),
-        ...MAP_LAYERS.map(({ layer, name, key }) =>
-          action(`l ${key}`, `Show or hide ${name.toLowerCase()}`, () => this.layers.toggle(layer)),
-        ),
-        {
-          ...action('Escape', 'Leave the pin, the drawing or what is shown', () => this.stepBack()),
-          inFields: true,
-          when: () => this.isInSight() && this.canStepBack(),
-        },
-      ],
-      inject(DestroyRef),
-    );
-  }
-
-  private canStepBack(): boolean {
-    return this.hands.hasTool() || this.popover.at() !== null || this.panel() !== 'none';
-  }
-
-  private stepBack(): void {
-    if (this.pin.isOn()) this.pin.cancel();
-    else if (this.editor.isOpen()) this.actions.cancelArea();
-    else if (this.roadEditor.isOpen()) this.actions.cancelRoad();
-    else if (this.popover.at() !== null) this.popover.close();
-    else if (this.panel() === 'file') this.actions.closeFile();
-    else this.panel.set('none');
   }
 }

@@ -11,7 +11,7 @@ import {
 import type { StormRoadKind } from '@shared/domain/roads/conditions';
 import { Theme } from '../core/theme';
 import { readInk } from './map-ink';
-import { paintSign } from './paint-storm-roads';
+import { paintSign } from './storm-road-signs';
 import type { StormRoadTense } from './storm-road-words';
 
 const SIZE_PX = 34;

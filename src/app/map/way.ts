@@ -9,7 +9,7 @@ const TRUE_TO_PX = 0.75;
 export class Way {
   private readonly byZoom = new Map<number, readonly WorldPoint[]>();
 
-  constructor(private readonly line: readonly LonLat[]) {}
+  constructor(readonly line: readonly LonLat[]) {}
 
   at(zoom: number): readonly WorldPoint[] {
     const whole = Math.round(zoom);

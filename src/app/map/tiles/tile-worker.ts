@@ -2,12 +2,12 @@
  * The thread that reads and paints tiles. A tile takes ten to a hundred milliseconds; on the page's
  * own thread each would be a frame that the map stands still.
  */
-import type { FontFile, TileNews, TileOrder } from './tile-orders';
+import { loadFonts } from './load-fonts';
+import type { TileNews, TileOrder } from './tile-orders';
 import { keyOf, TilePainter } from './tile-painter';
 import { TileQueue, type WantedTile } from './tile-queue';
 
 interface ThreadScope {
-  readonly fonts: { add(font: FontFace): void };
   onmessage: ((event: MessageEvent<TileOrder>) => void) | null;
   postMessage(news: TileNews, transfer?: Transferable[]): void;
 }
@@ -74,16 +74,3 @@ const turn = (): Promise<void> =>
     wakeUp.port1.onmessage = () => resolve();
     wakeUp.port2.postMessage(null);
   });
-
-/** Names drawn before their font has come would be measured with another one. */
-const loadFonts = (files: readonly FontFile[]): Promise<unknown> =>
-  Promise.allSettled(
-    files.map(async ({ family, url, weight, style, range }) => {
-      const font = new FontFace(family, `url(${JSON.stringify(url)})`, {
-        weight,
-        style,
-        unicodeRange: range,
-      });
-      thread.fonts.add(await font.load());
-    }),
-  );
