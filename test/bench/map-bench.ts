@@ -22,6 +22,8 @@ const DRAG_STEP_MS = 16;
 interface Frames {
   readonly times: number[];
   readonly longTasks: number[];
+  /** What tasks of the page's thread took of the processor, whoever else was using it. */
+  readonly taskCpu: number[];
 }
 
 /** The map with a full storm on it in Chromium: how long frames take while it is moved and zoomed. */
@@ -83,7 +85,7 @@ async function main(): Promise<void> {
   await Promise.all([pockets.close(), roadsThread.close()]);
 }
 
-const summary = ({ times, longTasks }: Frames) => ({
+const summary = ({ times, longTasks, taskCpu }: Frames) => ({
   frames: times.length,
   p50: quantile(times, 0.5),
   p95: quantile(times, 0.95),
@@ -92,15 +94,23 @@ const summary = ({ times, longTasks }: Frames) => ({
   /** Work of the page's own thread that held it up for more than 50 ms. */
   longTasks: longTasks.length,
   longestTask: quantile(longTasks, 1),
+  /** The same by the processor's own count, which a busy machine does not lengthen as much. */
+  longTasksByCpu: taskCpu.filter((ms) => ms > SLOW_FRAME_MS).length,
+  longestTaskByCpu: quantile(taskCpu, 1),
 });
 
 const joined = (all: readonly Frames[]): Frames => ({
   times: all.flatMap(({ times }) => times),
   longTasks: all.flatMap(({ longTasks }) => longTasks),
+  taskCpu: all.flatMap(({ taskCpu }) => taskCpu),
 });
 
 /** Times between frames while the hand works, and a moment longer: the picture settles then. */
 async function during(page: Page, work: () => Promise<void>): Promise<Frames> {
+  const browser = page.context().browser();
+  await browser?.startTracing(page, {
+    categories: ['disabled-by-default-devtools.timeline', 'toplevel'],
+  });
   await page.evaluate(() => {
     const seen = { times: [] as number[], longTasks: [] as number[], isOn: true };
     (globalThis as unknown as { seen: typeof seen }).seen = seen;
@@ -117,11 +127,39 @@ async function during(page: Page, work: () => Promise<void>): Promise<Frames> {
   });
   await work();
   await page.waitForTimeout(600);
-  return page.evaluate(() => {
-    const { seen } = globalThis as unknown as { seen: Frames & { isOn: boolean } };
+  const seen = await page.evaluate(() => {
+    const { seen } = globalThis as unknown as {
+      seen: Omit<Frames, 'taskCpu'> & { isOn: boolean };
+    };
     seen.isOn = false;
     return { times: seen.times.slice(1), longTasks: seen.longTasks };
   });
+  const trace = await browser?.stopTracing();
+  return { ...seen, taskCpu: trace ? taskCpuOf(trace) : [] };
+}
+
+/** Milliseconds of processor time of every task of the thread that most of them ran in: the page's. */
+function taskCpuOf(trace: Buffer): number[] {
+  const { traceEvents } = JSON.parse(trace.toString('utf8')) as {
+    traceEvents: {
+      name: string;
+      ph: string;
+      pid: number;
+      tid: number;
+      tdur?: number;
+      args?: { name?: string };
+    }[];
+  };
+  const pages = new Set(
+    traceEvents
+      .filter(({ name, args }) => name === 'thread_name' && args?.name === 'CrRendererMain')
+      .map(({ pid, tid }) => `${pid} ${tid}`),
+  );
+  return traceEvents.flatMap(({ name, pid, tid, tdur }) =>
+    name.endsWith('RunTask') && tdur !== undefined && pages.has(`${pid} ${tid}`)
+      ? [tdur / 1000]
+      : [],
+  );
 }
 
 async function drag(page: Page, { x, y }: { x: number; y: number }): Promise<void> {

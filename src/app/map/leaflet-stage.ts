@@ -51,7 +51,7 @@ export class LeafletStage {
     });
     this.tiles = tilesOf(region, look).addTo(this.map);
     this.colorGround(look.theme);
-    this.scene = new SceneLayer(scene).addTo(this.map);
+    this.scene = new SceneLayer(scene, () => this.top.refresh()).addTo(this.map);
     this.top = new TopLayer(paintTop).addTo(this.map);
     this.map.fitBounds(this.home, { animate: false });
   }

@@ -2,7 +2,7 @@ import type { LonLat } from '@shared/contract/common';
 import type { CallMark } from './call-mark';
 import { type Box, isInBox, LabelBoxes } from './label-boxes';
 import type { MapInk } from './map-ink';
-import { type PlacedMark, marksAt, placeMarks } from './mark-places';
+import { marksAt, type PlacedMark } from './mark-places';
 import { MarkSprites } from './mark-sprites';
 import type { Outline } from './outline';
 import { paintRing } from './paint-calls';
@@ -57,10 +57,10 @@ export class MapPicture implements SceneSource {
   private known: MapInk | null = null;
   private sprites: MarkSprites | null = null;
   private spritesFor = '';
-  private placed: readonly PlacedMark<CallMark>[] = [];
-  private placedFor: { readonly marks: readonly CallMark[]; readonly zoom: number } | null = null;
   private view: View | null = null;
+  private shown: MapScene = EMPTY_SCENE;
   private places = NO_PLACES;
+  private placed: readonly PlacedMark<CallMark>[] | null = null;
 
   constructor(private readonly readInk: () => MapInk) {}
 
@@ -75,9 +75,11 @@ export class MapPicture implements SceneSource {
   }
 
   /** The scene is on screen: what lies where is known from here on. */
-  isShown(view: View, places: ScenePlaces): void {
+  isShown(view: View, scene: MapScene, places: ScenePlaces): void {
     this.view = view;
+    this.shown = scene;
     this.places = places;
+    this.placed = null;
   }
 
   readonly paintTop: Paint = (view, pixelRatio) => {
@@ -98,7 +100,7 @@ export class MapPicture implements SceneSource {
       paintFeeders(ctx, view, top.feeders, new LabelBoxes(), ink);
       for (const kind of ['hovered', 'selected'] as const) {
         const mark = top[kind];
-        if (mark) paintRing(ctx, view, this.placedOf(mark, view.zoom), kind, sprites, ink);
+        if (mark) paintRing(ctx, view, this.placedOf(mark), kind, sprites, ink);
       }
       if (top.outline) {
         const next = top.nextCorner ? toWorld(top.nextCorner) : null;
@@ -127,7 +129,7 @@ export class MapPicture implements SceneSource {
     if (sign) return { kind: 'storm-road', roadId: sign.roadId };
     const pocket = pocketLabels.find(inBox);
     if (pocket) return { kind: 'pocket', pocketKey: pocket.pocketKey };
-    const near = marksAt(this.placedAt(view.zoom), view.zoom, at, slackPx);
+    const near = marksAt(this.placedMarks(), view.zoom, at, slackPx);
     if (near.length > 0) return { kind: 'calls', marks: meant(near) };
     const area = areaLabels.find(inBox);
     return area ? { kind: 'area', areaId: area.areaId } : null;
@@ -142,18 +144,17 @@ export class MapPicture implements SceneSource {
     return this.sprites;
   }
 
-  private placedAt(zoom: number): readonly PlacedMark<CallMark>[] {
-    const whole = Math.round(zoom);
-    const { marks } = this.scene;
-    if (this.placedFor?.marks !== marks || this.placedFor.zoom !== whole) {
-      this.placed = placeMarks(marks, whole);
-      this.placedFor = { marks, zoom: whole };
-    }
-    return this.placed;
+  private placedMarks(): readonly PlacedMark<CallMark>[] {
+    const { isFull, counts } = this.places.marks;
+    return (this.placed ??= this.shown.marks.map((mark, i) => ({
+      mark,
+      isFull: isFull[i] === 1,
+      count: counts[i] ?? 1,
+    })));
   }
 
-  private placedOf(mark: CallMark, zoom: number): PlacedMark {
-    const found = this.placedAt(zoom).find((one) => one.mark.call.id === mark.call.id);
+  private placedOf(mark: CallMark): PlacedMark {
+    const found = this.placedMarks().find((one) => one.mark.call.id === mark.call.id);
     return found ?? { mark, isFull: false, count: 1 };
   }
 }

@@ -34,9 +34,9 @@ import { MAP_LAYERS, MapLayers } from './map-layers';
 import { MapLegend } from './map-legend';
 import { MapLists } from './map-lists';
 import { MapPopover } from './map-popover';
+import { MapRequests } from './map-requests';
 import { MapScenes } from './map-scenes';
 import { MapTops } from './map-tops';
-import { MapWish } from './map-wish';
 import { PinTool } from './pin-tool';
 import { scaleBar } from './scale-bar';
 import { StormRoadEditor } from './storm-road-editor';
@@ -72,6 +72,7 @@ import { metresPerPixel } from './world';
     MapHands,
     MapKeys,
     MapPopover,
+    MapRequests,
     MapScenes,
     MapTops,
     PinTool,
@@ -92,7 +93,6 @@ export class StormMap {
   private readonly scenes = inject(MapScenes);
   private readonly tops = inject(MapTops);
   private readonly theme = inject(Theme);
-  private readonly wish = inject(MapWish);
   private readonly zone = inject(Zone);
 
   /** A call is to be opened, not only selected. */
@@ -100,7 +100,6 @@ export class StormMap {
 
   private readonly host = viewChild.required<ElementRef<HTMLElement>>('map');
   private readonly stage = this.actions.stage;
-  private focusedBefore: HTMLElement | null = null;
 
   /** A proposal is there to be shown only while somebody compares it. */
   protected readonly layerNames = computed(() =>
@@ -139,8 +138,7 @@ export class StormMap {
     this.showFinishedOutline();
     this.followLook();
     this.followSelection();
-    this.followPinRequest();
-    this.grantWishes();
+    inject(MapRequests).follow();
     inject(MapKeys).register(() => this.isInSight(), inject(DestroyRef));
   }
 
@@ -274,42 +272,6 @@ export class StormMap {
     if (selected === null || !stage || this.hands.hasTool()) return;
     const lonLat = this.board.calls().get(selected)?.address.lonLat;
     if (lonLat && stage.map.getSize().x > 0) stage.bringIntoSight(lonLat);
-  }
-
-  private followPinRequest(): void {
-    effect(() => {
-      const wanted = this.pin.wanted();
-      const stage = this.stage();
-      untracked(() => {
-        if (wanted && stage) {
-          this.focusedBefore = document.activeElement as HTMLElement | null;
-          this.popover.close();
-          this.pin.reset();
-          if (wanted.near) stage.showCall(wanted.near);
-          this.actions.focus();
-        } else if (!wanted && this.focusedBefore) {
-          // Back to where the hands were, unless they have gone elsewhere already.
-          if (document.activeElement === this.host().nativeElement) this.focusedBefore.focus();
-          this.focusedBefore = null;
-        }
-      });
-    });
-  }
-
-  private grantWishes(): void {
-    effect(() => {
-      const wanted = this.wish.wanted();
-      const stage = this.stage();
-      if (!wanted || !stage) return;
-      untracked(() => {
-        this.wish.granted();
-        // The page may have just made room for the map.
-        requestAnimationFrame(() => {
-          stage.resized();
-          this.actions.show(wanted.sight);
-        });
-      });
-    });
   }
 
   private isInSight(): boolean {

@@ -46,7 +46,7 @@ describe('a scene on its way to its thread', () => {
     expect(arrived).toEqual(
       MARKS.map(({ call: { number, danger }, ...mark }) => ({ ...mark, call: { number, danger } })),
     );
-    // The page places them itself for clicks, and must come to the same.
+    // Those with room for a mark are the same ones.
     for (const zoom of [10, 13, 16])
       expect(placeMarks(arrived, zoom).map(({ isFull, count }) => [isFull, count])).toEqual(
         placeMarks(MARKS, zoom).map(({ isFull, count }) => [isFull, count]),

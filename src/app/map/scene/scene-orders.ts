@@ -16,8 +16,10 @@ export type SceneOrder =
       readonly changes: SceneChanges;
     };
 
-/** What can be clicked besides calls, in pixels of the picture, in the order in which it was drawn. */
+/** What can be clicked, in pixels of the picture, in the order in which it was drawn. */
 export interface ScenePlaces {
+  /** How each call stands there, in the order of the scene: with a full mark or as a dot, and how many in its place. */
+  readonly marks: { readonly isFull: Uint8Array; readonly counts: Uint16Array };
   readonly plates: readonly { readonly technicianId: string; readonly box: Box }[];
   readonly roadSigns: readonly { readonly roadId: string; readonly box: Box }[];
   readonly pocketLabels: readonly { readonly pocketKey: string; readonly box: Box }[];
@@ -25,6 +27,7 @@ export interface ScenePlaces {
 }
 
 export const NO_PLACES: ScenePlaces = {
+  marks: { isFull: new Uint8Array(), counts: new Uint16Array() },
   plates: [],
   roadSigns: [],
   pocketLabels: [],

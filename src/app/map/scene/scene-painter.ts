@@ -47,6 +47,10 @@ export class ScenePainter {
     paintDots(ctx, view, placed, sprites);
     paintCalls(ctx, view, placed, sprites, ink);
     return {
+      marks: {
+        isFull: Uint8Array.from(placed, ({ isFull }) => Number(isFull)),
+        counts: Uint16Array.from(placed, ({ count }) => count),
+      },
       plates: scene.hasTechnicians
         ? paintTechnicians(ctx, view, routes, chosenTechnicianId, boxes, ink)
         : [],

@@ -8,6 +8,9 @@ const RETRY_AFTER_MS = [1000, 4000, 15_000];
 /** More points would not be seen in a map, and cost as much. */
 const MOST_PIXEL_RATIO = 2;
 
+/** So much of each frame of the screen is spent on showing tiles that have come. */
+const BUDGET_MS = 4;
+
 interface Tile {
   readonly canvas: HTMLCanvasElement;
   readonly place: Coords;
@@ -24,6 +27,8 @@ export class PaintedTiles extends GridLayer {
   });
   private readonly tiles = new Map<number, Tile>();
   private readonly ids = new WeakMap<HTMLElement, number>();
+  private readonly arrived: (TileNews & { readonly kind: 'painted' })[] = [];
+  private frame: number | null = null;
   private lastId = 0;
 
   constructor(
@@ -52,6 +57,7 @@ export class PaintedTiles extends GridLayer {
   end(): void {
     for (const { timer } of this.tiles.values()) clearTimeout(timer);
     this.tiles.clear();
+    if (this.frame !== null) cancelAnimationFrame(this.frame);
     this.thread.terminate();
   }
 
@@ -73,16 +79,35 @@ export class PaintedTiles extends GridLayer {
   }
 
   private hear(news: TileNews): void {
+    if (news.kind === 'painted') {
+      this.arrived.push(news);
+      this.wake();
+      return;
+    }
     const tile = this.tiles.get(news.id);
-    if (news.kind === 'failed') {
-      if (tile) this.tryAgain(news.id, tile);
-      return;
-    }
+    if (tile) this.tryAgain(news.id, tile);
+  }
+
+  private wake(): void {
+    this.frame ??= requestAnimationFrame(() => {
+      this.frame = null;
+      const until = performance.now() + BUDGET_MS;
+      do {
+        const news = this.arrived.shift();
+        if (news) this.show(news);
+      } while (this.arrived.length > 0 && performance.now() < until);
+      if (this.arrived.length > 0) this.wake();
+    });
+  }
+
+  /** With each one that is new Leaflet takes away what it hides: many at once would hold up a frame. */
+  private show({ id, picture }: TileNews & { readonly kind: 'painted' }): void {
+    const tile = this.tiles.get(id);
     if (!tile) {
-      news.picture.close();
+      picture.close();
       return;
     }
-    tile.canvas.getContext('bitmaprenderer')?.transferFromImageBitmap(news.picture);
+    tile.canvas.getContext('bitmaprenderer')?.transferFromImageBitmap(picture);
     tile.done?.(undefined, tile.canvas);
     tile.done = null;
   }
