@@ -1,0 +1,56 @@
+import { checkPlan } from '../planner/check-plan';
+import { plan } from '../planner/plan';
+import { POSING, type Posing } from '../planner/pose';
+import type { PlanProblem } from '../planner/problem';
+import { jobOf } from './rolling-policy';
+import type { StormOutcome } from './run-storm';
+import { MOST_OVERTIME, NEVER, type Storm } from './storm';
+
+/**
+ * One long search that knows every call, every drive and every visit's length beforehand: what the
+ * rolling plans are measured by. It is a search and no bound: nothing says that it could not be passed.
+ */
+export function clairvoyantOutcome(
+  storm: Storm,
+  iterations: number,
+): StormOutcome & { readonly invalidPlans: number } {
+  const posing: Posing = { ...POSING, deadlineSpread: [{ seconds: 0, share: 1 }], windowMargin: 0 };
+  const calls = storm.calls.filter(({ cancelledAt }) => cancelledAt === NEVER);
+  const problem: PlanProblem = {
+    version: 1,
+    now: 0,
+    locations: storm.places,
+    matrix: storm.actualDrive,
+    jobs: calls.map((call) => ({ ...jobOf(call, posing), service: call.actualService })),
+    technicians: storm.technicians.map((technician) => ({
+      id: technician.id,
+      home: technician.home,
+      at: technician.home,
+      availableAt: 0,
+      skills: technician.skills,
+      parts: technician.parts,
+      shifts: technician.shifts,
+      frozen: [],
+    })),
+    weights: { maxOvertime: MOST_OVERTIME },
+  };
+  const result = plan(problem, { iterations, seed: storm.seed });
+  const starts = new Map(
+    result.routes.flatMap(({ technician, stops }) =>
+      stops.map(({ job, start }) => [job, { technician, start }] as const),
+    ),
+  );
+  const check = checkPlan(problem, result);
+  return {
+    calls: storm.calls.map((call) => ({
+      call,
+      startedAt: starts.get(call.id)?.start ?? null,
+      technician: starts.get(call.id)?.technician ?? null,
+      isCalledOff: call.cancelledAt < NEVER,
+    })),
+    driveSeconds: (check.travel / 40) * 3600,
+    overtimeSeconds: (check.overtime / 90) * 3600,
+    decisions: 1,
+    invalidPlans: check.violations.length > 0 ? 1 : 0,
+  };
+}
