@@ -7,6 +7,8 @@ import { areaRoutes } from './areas/area-routes';
 import { PocketWatch } from './areas/pocket-watch';
 import { callRoutes } from './calls/call-routes';
 import type { Context } from './context';
+import { forecastRoutes } from './forecast/forecast-routes';
+import { LookAhead } from './forecast/look-ahead';
 import { bindRoutes, type Handlers } from './http/bind-routes';
 import { healthRoutes } from './http/health';
 import { metrics } from './http/metrics';
@@ -80,6 +82,7 @@ export async function createApp(given: GivenContext): Promise<App> {
   };
   const watch = new PocketWatch(context);
   const regions = new Regions(context);
+  const ahead = new LookAhead(context);
 
   app.set('trust proxy', given.config.http.trustProxyHops);
   app.disable('x-powered-by');
@@ -112,7 +115,8 @@ export async function createApp(given: GivenContext): Promise<App> {
     ...stopRoutes(context),
     ...messageRoutes(context),
     ...nightLogRoutes(context),
-    ...officeRoutes(context),
+    ...officeRoutes(context, ahead),
+    ...forecastRoutes(context, ahead),
   };
   app.use(bindRoutes(context, handlers, (request: Request) => personOf(request)));
   app.use('/api', (_request, response) => {

@@ -6,7 +6,7 @@ import type { LogReaderPort } from './night-log/log-reader';
 import type { Live } from './realtime/live';
 import type { RegionHolder } from './region/region-in-use';
 import type { RegionImporterPort } from './region/region-importer';
-import type { PlannerPort, PocketsPort, RoadsPort } from './workers/ports';
+import type { ForecastPort, PlannerPort, PocketsPort, RoadsPort } from './workers/ports';
 
 /** What every command and query may reach. Made once, in main.ts or by a test. */
 export interface Context {
@@ -21,6 +21,7 @@ export interface Context {
   readonly regionImporter: RegionImporterPort;
   readonly planner: PlannerPort;
   readonly pockets: PocketsPort;
+  readonly forecast: ForecastPort;
   /** Null for a region without roads; then drives are straight lines, and say so. */
   readonly roads: RoadsPort | null;
   readonly logReader: LogReaderPort;

@@ -13,6 +13,7 @@ import { machine } from './commands/actor';
 import { openRegion } from './region/open-region';
 import { readAddressBook } from './region/region-data';
 import { regionToStart } from './region/region-to-start';
+import { createForecastWorker } from './workers/forecast-client';
 import { createPlannerWorker } from './workers/planner-client';
 import { createPocketsWorker } from './workers/pockets-client';
 import { createRoadsWorker, RoadsClient } from './workers/roads-client';
@@ -50,6 +51,9 @@ async function main(): Promise<void> {
   const pockets = createPocketsWorker(path.join(__dirname, 'pockets-worker.js'), {
     onCrash: (error) => log.error({ err: error }, 'the pocket maker crashed'),
   });
+  const forecast = createForecastWorker(path.join(__dirname, 'forecast-worker.js'), {
+    onCrash: (error) => log.error({ err: error }, 'the forecast crashed'),
+  });
   const roadsThread = createRoadsWorker(path.join(__dirname, 'roads-worker.js'), {
     onCrash: (error) => log.error({ err: error }, 'the thread of the roads crashed'),
   });
@@ -71,6 +75,7 @@ async function main(): Promise<void> {
     region: await openRegion(imported),
     planner,
     pockets,
+    forecast,
     roads,
     logReader,
     wakeOutbox: () => outbox.wake(),
@@ -113,7 +118,9 @@ async function main(): Promise<void> {
     setTimeout(() => process.exit(1), DRAIN_MS).unref();
     await Promise.all([worker.stop(), roadWatch.stop(), routeWatch.stop(), tidying.stop()]);
     await app.close();
-    await Promise.all([planner.close(), pockets.close(), roadsThread.close(), logReader.close()]);
+    await Promise.all(
+      [planner, pockets, forecast, roadsThread, logReader].map((thread) => thread.close()),
+    );
     await sequelize.close();
     process.exit(0);
   };

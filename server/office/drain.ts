@@ -3,7 +3,6 @@ import {
   drainByArea,
   drainByTechnician,
   drainSeries,
-  forecastEmpty,
   type DrainCall,
   type DrainGroup,
 } from '@shared/domain/backlog-drain';
@@ -66,14 +65,12 @@ export function drainOf(
         ...group,
         name: group.id === null ? none : (names.get(group.id) ?? ''),
       }));
-    const { emptyAt, arrivalsPerHour, settledPerHour, assumption } = forecastEmpty(facts, now);
     return {
       at: now,
       bucketMinutes,
       series: [...drainSeries(facts, now, bucketMinutes)],
       byArea: named(drainByArea(facts, now), 'Outside every outage area'),
       byTechnician: named(drainByTechnician(facts, now), 'Nobody yet, or by phone'),
-      forecast: { emptyAt, arrivalsPerHour, settledPerHour, assumption },
     };
   });
 }

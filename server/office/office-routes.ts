@@ -1,6 +1,7 @@
 import { OFFICE } from '../commands/audit';
 import { orderFrom, runCommand } from '../commands/run-command';
 import type { Context } from '../context';
+import type { LookAhead } from '../forecast/look-ahead';
 import type { SomeHandlers } from '../http/bind-routes';
 import { measuredVisitsDto } from '../routes/measured-visits';
 import { findStorm } from '../storms/storm-queries';
@@ -26,7 +27,7 @@ type Names =
 const DEFAULT_BUCKET_MINUTES = 30;
 
 /** What the manager reads and sets. */
-export function officeRoutes(context: Context): SomeHandlers<Names> {
+export function officeRoutes(context: Context, ahead: LookAhead): SomeHandlers<Names> {
   return {
     drain: async ({ params, query, http: { response } }) => {
       const drain = await drainOf(
@@ -35,11 +36,13 @@ export function officeRoutes(context: Context): SomeHandlers<Names> {
         query.bucketMinutes ?? DEFAULT_BUCKET_MINUTES,
       );
       if (query.format !== 'csv') return drain;
+      const storm = await findStorm(params.stormId);
+      const forecast = storm.state === 'open' ? await ahead.forecast(params.stormId) : null;
       response
         .type('text/csv; charset=utf-8')
         .attachment('backlog-drain.csv')
         // The mark tells spreadsheets that this is UTF-8.
-        .send(`\uFEFF${drainCsv(drain, context.region.dto)}`);
+        .send(`\uFEFF${drainCsv(drain, forecast, context.region.dto)}`);
       return undefined;
     },
 

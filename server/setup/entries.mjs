@@ -8,6 +8,7 @@ const ENTRIES = [
   'server/main.ts',
   'server/workers/planner-worker.ts',
   'server/workers/pockets-worker.ts',
+  'server/workers/forecast-worker.ts',
   'server/workers/roads-worker.ts',
   'server/night-log/import-worker.ts',
   'server/plan-program/plan-cli.ts',

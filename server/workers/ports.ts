@@ -2,9 +2,15 @@ import type { RoadConditions } from '@shared/domain/roads/conditions';
 import type { RoadClass } from '@shared/domain/roads/road-class';
 import type { LonLat } from '@shared/domain/travel/great-circle';
 import type { TravelTimes } from '@shared/domain/travel/travel-times';
+import type { ForecastRequest, ForecastResponse } from './forecast-client';
 import type { PlannerRequest, PlannerResponse } from './planner-client';
 import type { PocketsRequest, PocketsResponse } from './pockets-client';
 import type { RunOptions } from './worker-client';
+
+/** What looks ahead; a test may answer in its own thread. */
+export interface ForecastPort {
+  run(request: ForecastRequest, options?: RunOptions): Promise<ForecastResponse>;
+}
 
 /** What commands see of the planner; a test may answer in its own thread. */
 export interface PlannerPort {

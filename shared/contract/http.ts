@@ -4,6 +4,7 @@ import { BoardPicture } from './board';
 import * as calls from './calls';
 import { Command, Id, PhoneNumber, ROLES, type Role } from './common';
 import { FeederMap } from './feeders';
+import * as ahead from './forecast';
 import * as messages from './messages';
 import * as nightLogs from './night-logs';
 import * as office from './office';
@@ -475,6 +476,23 @@ export const HTTP = {
       format: z.literal('csv').optional(),
     }),
     reply: office.DrainDto,
+  },
+  forecast: {
+    summary: 'When the backlog will be empty and what will be lost, with how sure that is',
+    who: OFFICE,
+    reply: ahead.ForecastDto,
+  },
+  whatIf: {
+    summary: 'What a change of the crew would do; nothing is changed',
+    who: OFFICE,
+    body: ahead.WhatIf,
+    reply: ahead.WhatIfDto,
+  },
+  partsAhead: {
+    summary: 'What the stops until tomorrow night need against what is on the vans',
+    who: OFFICE,
+    query: z.strictObject({ format: z.literal('csv').optional() }),
+    reply: ahead.PartsAheadDto,
   },
   settings: { summary: 'Settings', who: EVERYONE, reply: office.Settings },
   changeSettings: {

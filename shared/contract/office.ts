@@ -206,13 +206,6 @@ export const DrainDto = z.strictObject({
   series: z.array(DrainPoint),
   byArea: z.array(DrainShare),
   byTechnician: z.array(DrainShare),
-  forecast: z.strictObject({
-    emptyAt: Moment.nullable(),
-    arrivalsPerHour: z.number(),
-    settledPerHour: z.number(),
-    /** The assumption, in words. */
-    assumption: z.string(),
-  }),
 });
 export type DrainDto = z.infer<typeof DrainDto>;
 

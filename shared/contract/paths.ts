@@ -88,6 +88,9 @@ export const PATHS = {
   settleNightLogRow: ['POST', '/api/night-log-rows/:rowId/settlement'],
 
   drain: ['GET', '/api/storms/:stormId/drain'],
+  forecast: ['GET', '/api/storms/:stormId/forecast'],
+  whatIf: ['POST', '/api/storms/:stormId/what-if'],
+  partsAhead: ['GET', '/api/storms/:stormId/parts'],
   settings: ['GET', '/api/settings'],
   changeSettings: ['PATCH', '/api/settings'],
   measuredSpeeds: ['GET', '/api/measured-speeds'],

@@ -1,4 +1,4 @@
-import { HOUR_MS, MINUTE_MS, type Instant } from './instant';
+import { MINUTE_MS, type Instant } from './instant';
 
 /** What the drain needs to know of one call. */
 export interface DrainCall {
@@ -82,75 +82,6 @@ export const drainByTechnician = (
   calls: readonly DrainCall[],
   now: Instant,
 ): readonly DrainGroup[] => drainBy(({ technicianId }) => technicianId, calls, now);
-
-export interface DrainForecast {
-  /** When no call will be open any more at the current rates; null is never at these rates. */
-  readonly emptyAt: Instant | null;
-  readonly arrivalsPerHour: number;
-  readonly settledPerHour: number;
-  /** Over which stretch before now the rates were counted. */
-  readonly windowMinutes: number;
-  readonly assumption: string;
-}
-
-/** Our estimate: long enough to smooth out single calls, short enough to follow a shift's change. */
-export const DEFAULT_WINDOW_MINUTES = 120;
-
-/** A younger storm than this is counted as if it were this old, so that one call makes no rate. */
-const LEAST_WINDOW_MINUTES = 15;
-
-/**
- * When the backlog will be empty if calls keep coming and being settled as they did in the window.
- * It knows nothing of the night, of shifts that end or of parts that run out.
- */
-export function forecastEmpty(
-  calls: readonly DrainCall[],
-  now: Instant,
-  windowMinutes: number = DEFAULT_WINDOW_MINUTES,
-): DrainForecast {
-  const arrived = calls.filter(({ arrivedAt }) => arrivedAt <= now);
-  const settled = arrived.flatMap((call) => settlement(call, now) ?? []);
-  const open = arrived.length - settled.length;
-
-  const firstAt = arrived.reduce((least, { arrivedAt }) => Math.min(least, arrivedAt), now);
-  const ageMinutes = Math.max(LEAST_WINDOW_MINUTES, (now - firstAt) / MINUTE_MS);
-  const counted = Math.min(windowMinutes, ageMinutes);
-  const isYoung = ageMinutes <= windowMinutes;
-  const from = now - counted * MINUTE_MS;
-  const isRecent = (at: Instant): boolean => isYoung || at > from;
-  const perHour = (count: number): number => (count * 60) / counted;
-  const arrivalsPerHour = perHour(arrived.filter(({ arrivedAt }) => isRecent(arrivedAt)).length);
-  const settledPerHour = perHour(settled.filter(({ at }) => isRecent(at)).length);
-
-  const hours = drainHours(open, settledPerHour, arrivalsPerHour);
-  const rates =
-    `${rounded(arrivalsPerHour)} calls an hour coming in and ${rounded(settledPerHour)} settled, ` +
-    `as in the last ${Math.round(counted)} minutes`;
-  return {
-    emptyAt: hours === null ? null : Math.round(now + hours * HOUR_MS),
-    arrivalsPerHour,
-    settledPerHour,
-    windowMinutes: counted,
-    assumption: hours === null ? `Never at this rate: ${rates}` : `If it goes on with ${rates}`,
-  };
-}
-
-/**
- * Hours until a backlog is empty, by the fluid rule: backlog / (outflow - inflow).
- *
- * The rule for a backlog, where Erlang C fails: in a storm the load exceeds the people.
- *
- * @returns null when nothing drains at these rates
- */
-export function drainHours(
-  backlog: number,
-  outflowPerHour: number,
-  inflowPerHour: number,
-): number | null {
-  if (backlog === 0) return 0;
-  const drainPerHour = outflowPerHour - inflowPerHour;
-  return drainPerHour > 0 ? backlog / drainPerHour : null;
-}
 
 const NOTHING: DrainTotals = {
   arrivals: 0,
@@ -246,5 +177,3 @@ function drainBy(
         (a.id ?? '').localeCompare(b.id ?? ''),
     );
 }
-
-const rounded = (rate: number): number => Math.round(rate * 10) / 10;

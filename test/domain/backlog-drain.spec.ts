@@ -2,10 +2,8 @@ import fc from 'fast-check';
 import {
   drainByArea,
   drainByTechnician,
-  drainHours,
   drainSeries,
   drainTotals,
-  forecastEmpty,
   type DrainCall,
 } from '@shared/domain/backlog-drain';
 import { addMinutes, HOUR_MS, MINUTE_MS, type Instant } from '@shared/domain/instant';
@@ -27,30 +25,6 @@ const worth = (valueCents: number, saveBy: number | null, restored: number | nul
   valueCents,
   saveByAt: saveBy === null ? null : minute(saveBy),
   restoredAt: restored === null ? null : minute(restored),
-});
-
-describe('drainHours', () => {
-  // The fluid rule: backlog / (people * calls per person-hour - arrivals per hour).
-  it('empties 300 waiting calls in 10 h with five people at 10 an hour against 20 new ones', () => {
-    expect(drainHours(300, 5 * 10, 20)).toBe(10);
-  });
-
-  it('needs 4.4 days for 210 visits with eight technicians at six a day', () => {
-    // 300 calls of which 30 % are settled by phone.
-    const hours = drainHours(300 * 0.7, (8 * 6) / 24, 0)!;
-    expect(hours / 24).toBeCloseTo(4.375, 9);
-  });
-
-  it.each([
-    [300, 20, 20],
-    [300, 19, 20],
-  ])('never empties %d calls at %d out and %d in', (backlog, outflow, inflow) => {
-    expect(drainHours(backlog, outflow, inflow)).toBeNull();
-  });
-
-  it('has nothing to do for an empty backlog, whatever comes in', () => {
-    expect(drainHours(0, 0, 50)).toBe(0);
-  });
 });
 
 describe('drainSeries', () => {
@@ -231,58 +205,5 @@ describe('drainByArea', () => {
   it('does not name an area before its first call', () => {
     const calls = [aCall({ areaId: 'north' }), aCall({ areaId: 'south', arrivedAt: minute(5) })];
     expect(drainByArea(calls, minute(4)).map(({ id }) => id)).toEqual(['north']);
-  });
-});
-
-describe('forecastEmpty', () => {
-  /** `count` calls, one every `every` minutes from `start`. */
-  const arriving = (count: number, start: number, every: number, known: Partial<DrainCall> = {}) =>
-    Array.from({ length: count }, (_, i) =>
-      aCall({ arrivedAt: minute(start + i * every), ...known }),
-    );
-
-  it('carries the rates of the window on', () => {
-    // 100 came long ago. In the last two hours 10 came and 60 were settled: 50 left, 25 an hour less.
-    const settledAt = (i: number) => ({ settledAt: minute(482 + i), settledHow: 'phone' }) as const;
-    const calls = [
-      ...arriving(100, 0, 1).map((call, i) => (i < 60 ? { ...call, ...settledAt(i) } : call)),
-      ...arriving(10, 490, 10),
-    ];
-    expect(forecastEmpty(calls, minute(600), 120)).toEqual({
-      emptyAt: minute(600) + 2 * HOUR_MS,
-      arrivalsPerHour: 5,
-      settledPerHour: 30,
-      windowMinutes: 120,
-      assumption:
-        'If it goes on with 5 calls an hour coming in and 30 settled, as in the last 120 minutes',
-    });
-  });
-
-  it('says never, with the rates, while more comes in than goes out', () => {
-    const forecast = forecastEmpty(arriving(60, 0, 1), minute(60), 60);
-    expect(forecast.emptyAt).toBeNull();
-    expect(forecast.assumption).toBe(
-      'Never at this rate: 60 calls an hour coming in and 0 settled, as in the last 60 minutes',
-    );
-  });
-
-  it('counts a young storm over its own age, and no less than a quarter of an hour', () => {
-    const halfHour = forecastEmpty(arriving(30, 0, 1), minute(30), 120);
-    expect(halfHour).toMatchObject({ windowMinutes: 30, arrivalsPerHour: 60 });
-    const oneCall = forecastEmpty([aCall()], minute(1), 120);
-    expect(oneCall).toMatchObject({ windowMinutes: 15, arrivalsPerHour: 4 });
-  });
-
-  it('is empty now when nothing is open', () => {
-    const calls = [aCall({ settledAt: minute(5), settledHow: 'visit' })];
-    expect(forecastEmpty(calls, minute(60)).emptyAt).toBe(minute(60));
-    expect(forecastEmpty([], minute(60)).emptyAt).toBe(minute(60));
-  });
-
-  it('agrees with the fluid rule on the storm desk example', () => {
-    // 300 waiting; in the last hour 20 came and 50 were settled: 10 h.
-    const settled = { settledAt: minute(990), settledHow: 'phone' } as const;
-    const calls = [...arriving(280, 0, 1), ...arriving(50, 0, 1, settled), ...arriving(20, 942, 2)];
-    expect(forecastEmpty(calls, minute(1_000), 60).emptyAt).toBe(minute(1_000) + 10 * HOUR_MS);
   });
 });

@@ -1,18 +1,46 @@
 import { randomUUID } from 'node:crypto';
 import { parse } from 'csv-parse/sync';
 import type { CallDetail } from '@shared/contract/calls';
+import type { ForecastDto, PartsAheadDto, WhatIfDto } from '@shared/contract/forecast';
 import type { DrainDto } from '@shared/contract/office';
 import type { StopDto } from '@shared/contract/routes';
 import { HOUR_MS, MINUTE_MS, type Instant } from '@shared/domain/instant';
+import { forecast as playForecast } from '@shared/domain/forecast/forecast';
+import type { ForecastRequest } from '../../server/workers/forecast-client';
+import type { ForecastPort } from '../../server/workers/ports';
+import { WorkerError } from '../../server/workers/worker-client';
+import { ShiftRecord } from '../../server/technicians/technician-record';
 import { aCall, aUnit } from '../support/calls';
 import { NIGHT, startServer, type TestPerson, type TestServer } from '../support/server';
+
+/** The forecast in this thread, and what it was asked. */
+const asked: ForecastRequest[] = [];
+let isStuck = false;
+const forecast: ForecastPort = {
+  run: (request, { signal } = {}) => {
+    asked.push(request);
+    if (isStuck)
+      return new Promise((_, reject) => {
+        signal?.addEventListener('abort', () => {
+          stopped += 1;
+          reject(new WorkerError('cancelled', 'told to stop'));
+        });
+      });
+    const { facts, seed, change } = request;
+    const made = playForecast(facts, { seed, futures: 20, ...(change ? { change } : {}) });
+    return Promise.resolve({ ...made, elapsedMs: 1 });
+  },
+};
+let stopped = 0;
 
 let server: TestServer;
 let mara: TestPerson;
 let ines: TestPerson;
-beforeAll(async () => (server = await startServer()));
+beforeAll(async () => (server = await startServer({ context: { forecast } })));
 afterAll(() => server.close());
 beforeEach(async () => {
+  isStuck = false;
+  asked.length = 0;
   await server.reset();
   mara = await server.signIn('dispatcher', 'Mara Quill');
   ines = await server.signIn('manager', 'Ines Calloway');
@@ -103,7 +131,6 @@ describe('the drain of a storm', () => {
         lostCents: 0,
       },
     ]);
-    expect(empty.forecast.emptyAt).toBe(NIGHT);
   });
 
   it('counts calls as they come in and are settled, by phone and by visit', async () => {
@@ -234,20 +261,6 @@ describe('the drain of a storm', () => {
     expect(last(seen)).toMatchObject({ open: 1, valueAtRiskCents: CENTS, lostCents: 0 });
   });
 
-  it('forecasts the empty time from the rates, and says from which', async () => {
-    const calls = [await taken(), await taken(), await taken(), await taken()];
-    at(NIGHT + HOUR_MS);
-    for (const call of calls.slice(0, 3)) await concluded(call, 'cancelled');
-    at(NIGHT + 3 * HOUR_MS);
-    // In the last two hours nothing came in and nothing was settled.
-    expect((await drain()).forecast).toMatchObject({ emptyAt: null, arrivalsPerHour: 0 });
-    at(NIGHT + 2.5 * HOUR_MS);
-    // 3 settled in 120 minutes are 1.5 an hour; one open call takes 40 minutes.
-    const { forecast } = await drain();
-    expect(forecast.emptyAt).toBe(NIGHT + 2.5 * HOUR_MS + 40 * MINUTE_MS);
-    expect(forecast.assumption).toContain('120 minutes');
-  });
-
   it.each([
     ['a bucket of two minutes', { bucketMinutes: '2' }, '/bucketMinutes'],
     ['a bucket that is no number', { bucketMinutes: 'soon' }, '/bucketMinutes'],
@@ -319,7 +332,13 @@ describe('the drain as CSV', () => {
       '0.00',
     ]);
     expect(times).toHaveLength(seen.series.length);
-    expect(rows.find(([first]) => first === 'Assumption')?.[1]).toBe(seen.forecast.assumption);
+    expect(rows.find(([first]) => first === 'Forecast')).toEqual([
+      'Forecast',
+      '10 %',
+      '50 %',
+      '90 %',
+    ]);
+    expect(rows.find(([first]) => first === 'Lost from now on (USD)')).toHaveLength(4);
     expect(rows.at(-1)).toEqual(['Map data', server.context.region.dto.attribution]);
   });
 
@@ -348,5 +367,151 @@ describe('the drain as CSV', () => {
     await taken();
     const names = (await csv()).map(([first]) => first);
     expect(names).toContain(`'=HYPERLINK("http://example.com","x")`);
+  });
+});
+
+describe('looking ahead', () => {
+  const params = () => ({ stormId: server.stormId });
+  const NOTHING = {
+    technicians: 0,
+    overtimeHours: 0,
+    secondShift: 0,
+    phoneStaff: 0,
+    partsOnEachVan: 0,
+  };
+  const shiftFor = (technician: TestPerson) =>
+    ShiftRecord.create({
+      id: randomUUID(),
+      technicianId: technician.technicianId ?? '',
+      startsAt: new Date(NIGHT),
+      endsAt: new Date(NIGHT + 60 * HOUR_MS),
+    });
+  const forecastNow = async (): Promise<ForecastDto> => {
+    const reply = await ines.call('forecast', { params: params() });
+    expect([reply.status, reply.text.slice(0, 200)]).toEqual([200, expect.any(String)]);
+    return reply.body as ForecastDto;
+  };
+
+  it('is made from what was seen, and is empty when the visits are done', async () => {
+    const theo = await server.signIn('technician', 'Theo Larkspur');
+    await shiftFor(theo);
+    const calls = [await taken(), await taken(), await taken()];
+    at(NIGHT + 10 * MINUTE_MS);
+    await concluded(calls[0]!, 'running-again');
+    await visited(calls[1]!, theo);
+    await concluded(calls[2]!, 'waiting');
+    at(NIGHT + HOUR_MS);
+    const { outlook, restsOn, phone } = await forecastNow();
+    expect(outlook.emptyAt.low).toBeGreaterThan(NIGHT + HOUR_MS);
+    expect(outlook.curve[0]).toMatchObject({ at: NIGHT + HOUR_MS, open: { middle: 1 } });
+    expect(phone.staffNow).toBe(1);
+    expect(restsOn.join(' ')).toContain('1 of 3 calls checked');
+    const { facts } = asked[0]!;
+    expect(facts.calls.map(({ stage }) => stage)).toEqual(['visit']);
+    expect(facts.otherRingsAt).toHaveLength(3);
+    expect(facts.visits).toMatchObject({ restored: 1, usualServiceMinutes: 45 });
+    expect(facts.technicians.map(({ route }) => route)).toEqual([[]]);
+  });
+
+  it('is told again within a minute, and made anew after it', async () => {
+    await taken();
+    await forecastNow();
+    at(NIGHT + 30_000);
+    await forecastNow();
+    expect(asked).toHaveLength(1);
+    at(NIGHT + 2 * MINUTE_MS);
+    await forecastNow();
+    expect(asked).toHaveLength(2);
+  });
+
+  it('tells what more technicians would do, and changes nothing', async () => {
+    const theo = await server.signIn('technician', 'Theo Larkspur');
+    await shiftFor(theo);
+    for (let i = 0; i < 6; i++) await concluded(await taken(), 'waiting');
+    // By noon it is clear that calls do not pour in.
+    at(NIGHT + 10 * HOUR_MS);
+    const reply = await ines.call('whatIf', {
+      params: params(),
+      body: { ...NOTHING, technicians: 3 },
+    });
+    expect(reply.status).toBe(200);
+    const { difference, changed, asItIs } = reply.body as WhatIfDto;
+    expect(difference.emptyHours.middle).toBeLessThan(-1);
+    expect(changed.emptyAt.middle).toBeLessThan(asItIs.emptyAt.middle ?? 0);
+    const { body } = await mara.call('listTechnicians');
+    expect((body as { technicians: unknown[] }).technicians).toHaveLength(1);
+  });
+
+  it('lets go of a question that nobody waits for', async () => {
+    await taken();
+    isStuck = true;
+    const before = stopped;
+    const question = ines.call('whatIf', {
+      params: params(),
+      body: { ...NOTHING, phoneStaff: 1 },
+    });
+    const aborted = question.then(
+      () => 'answered',
+      () => 'aborted',
+    );
+    while (asked.length === 0) await new Promise((done) => setTimeout(done, 10));
+    question.abort();
+    while (stopped === before) await new Promise((done) => setTimeout(done, 10));
+    void aborted;
+    expect(stopped).toBe(before + 1);
+  });
+
+  it('refuses what cannot be, and a storm that is closed', async () => {
+    const wrong = await ines.call('whatIf', {
+      params: params(),
+      body: { ...NOTHING, overtimeHours: 40 },
+    });
+    expect(wrong.status).toBe(422);
+    expect((wrong.body as { errors: { pointer: string }[] }).errors[0]?.pointer).toBe(
+      '/overtimeHours',
+    );
+    await ines.call('closeStorm', {
+      params: params(),
+      body: { commandId: randomUUID(), version: 0 },
+    });
+    for (const route of ['forecast', 'partsAhead'] as const) {
+      const { status, body } = await ines.call(route, { params: params() });
+      expect([route, status, (body as { type: string }).type]).toEqual([
+        route,
+        409,
+        '/problems/storm-closed',
+      ]);
+    }
+  });
+
+  it('says what each van lacks for its stops, also as a file', async () => {
+    const theo = await server.signIn('technician', '=Theo');
+    await shiftFor(theo);
+    const call = await taken();
+    await concluded(call, 'waiting');
+    await concluded(await taken(), 'waiting');
+    const { body } = await mara.call('readCall', { params: { callId: call.row.id } });
+    await mara.call('addStop', {
+      params: { callId: call.row.id },
+      body: {
+        commandId: randomUUID(),
+        version: (body as CallDetail).row.version,
+        stopId: randomUUID(),
+        technicianId: theo.technicianId,
+        position: 0,
+      },
+    });
+    const parts = (await ines.call('partsAhead', { params: params() })).body as PartsAheadDto;
+    expect(parts.waitingCalls).toBe(1);
+    const [van] = parts.vans;
+    expect(van).toMatchObject({ name: '=Theo', stops: 1 });
+    for (const one of van!.parts) expect(one).toMatchObject({ onVan: 0, lackChance: one.expected });
+    expect(van!.lackChance).toBeGreaterThan(0.3);
+
+    const file = await ines.call('partsAhead', { params: params(), query: { format: 'csv' } });
+    expect(file.headers['content-disposition']).toContain('parts-to-load.csv');
+    const rows: string[][] = parse(file.text, { bom: true, relax_column_count: true });
+    expect(rows[0]?.[0]).toBe('Technician');
+    expect(rows[1]?.[0]).toBe("'=Theo");
   });
 });

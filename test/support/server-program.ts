@@ -51,6 +51,7 @@ async function main(): Promise<void> {
     region: TEST_REGION,
     planner: unused,
     pockets: unused,
+    forecast: unused,
     roads: null,
     logReader: unused,
     wakeOutbox: () => undefined,

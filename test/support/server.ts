@@ -81,6 +81,7 @@ export async function startServer(
     region: TEST_REGION,
     planner: unused,
     pockets: unused,
+    forecast: unused,
     roads: null,
     logReader: unused,
     wakeOutbox: () => undefined,

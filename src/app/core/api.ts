@@ -13,6 +13,8 @@ import {
   filter,
   firstValueFrom,
   fromEvent,
+  NEVER,
+  type Observable,
   Subject,
   takeUntil,
   tap,
@@ -50,7 +52,33 @@ export class Api {
   /** The server no longer knows this session. */
   readonly sessionLost = new Subject<void>();
 
-  async call<K extends RouteName>(name: K, ...[args]: ArgsList<K>): Promise<ReplyOf<K>> {
+  call<K extends RouteName>(name: K, ...[args]: ArgsList<K>): Promise<ReplyOf<K>> {
+    return this.send(name, args, NEVER);
+  }
+
+  /**
+   * As `call`, of an answer that may no longer be wanted.
+   *
+   * @param stop closes the line; the promise then rejects with a `DOMException`
+   */
+  async callUntil<K extends RouteName>(
+    stop: AbortSignal,
+    name: K,
+    ...[args]: ArgsList<K>
+  ): Promise<ReplyOf<K>> {
+    try {
+      return await this.send(name, args, fromEvent(stop, 'abort'));
+    } catch (error) {
+      if (stop.aborted) throw new DOMException('The question was taken back.', 'AbortError');
+      throw error;
+    }
+  }
+
+  private async send<K extends RouteName>(
+    name: K,
+    args: CallArgs<K> | undefined,
+    stopped: Observable<unknown>,
+  ): Promise<ReplyOf<K>> {
     const [method, path] = PATHS[name];
     const parts: {
       readonly params?: Readonly<Record<string, string>> | undefined;
@@ -66,7 +94,7 @@ export class Api {
             headers: headersFor(parts.body),
             observe: 'response',
           })
-          .pipe(timeout(ANSWER_WITHIN_MS)),
+          .pipe(timeout(ANSWER_WITHIN_MS), takeUntil(stopped)),
       );
       return bodyOf(reply);
     } catch (error) {

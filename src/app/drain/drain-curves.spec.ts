@@ -1,82 +1,110 @@
-import type { DrainDto } from '@shared/contract/office';
 import { HOUR_MS } from '@shared/domain/instant';
-import { forecastOf, totalsOf } from './drain-curves';
-import { backlogWords, forecastWords } from './drain-words';
-import { aDrain, AT } from './drain-fixture';
+import { aheadWords, differenceWords, emptyWords } from './ahead/outlook-words';
+import { changeWords, FIELDS, NOTHING_CHANGED, readField } from './ahead/what-if-fields';
+import { aheadLines, totalsOf } from './drain-curves';
+import { aDrain, anOutlook, AT } from './drain-fixture';
+import { backlogWords } from './drain-words';
 import { spread } from './end-labels';
 import { sortedShares } from './share-table';
 import { timeTicks } from './time-ticks';
 
-const forecast = (
-  emptyAt: number | null,
-  arrivalsPerHour: number,
-  settledPerHour: number,
-): DrainDto['forecast'] => ({ emptyAt, arrivalsPerHour, settledPerHour, assumption: 'If so' });
+describe('aheadLines', () => {
+  const same = (value: number) => ({ low: value, middle: value, high: value });
 
-describe('forecastOf', () => {
-  it('draws from what is open now to nothing at the empty time', () => {
-    const drain = aDrain({ open: 12, forecast: forecast(AT + 4 * HOUR_MS, 2, 5) });
-    expect(forecastOf(drain)).toEqual({
-      kind: 'empties',
-      line: [
-        { x: AT, y: 12 },
-        { x: AT + 4 * HOUR_MS, y: 0 },
-      ],
-      isCut: false,
-    });
+  it('are the outlook’s curve and its edges', () => {
+    const lines = aheadLines(anOutlook(), aDrain({ open: 25 }));
+    expect(lines.middle.map(({ y }) => y)).toEqual([25, 12, 0]);
+    expect(lines.low[1]).toEqual({ x: AT + 2 * HOUR_MS, y: 8 });
+    expect(lines.high.at(-1)).toEqual({ x: AT + 5 * HOUR_MS, y: 1 });
+    expect(lines.isCut).toBe(false);
   });
 
-  it('cuts a far empty time off where the picture ends, on the same line', () => {
-    // 6 h of 24 h: three quarters of 12 are left.
-    const drain = aDrain({ open: 12, forecast: forecast(AT + 24 * HOUR_MS, 2, 2.5) });
-    expect(forecastOf(drain)).toEqual({
-      kind: 'empties',
-      line: [
-        { x: AT, y: 12 },
-        { x: AT + 6 * HOUR_MS, y: 9 },
-      ],
-      isCut: true,
-    });
-  });
-
-  it('shows a backlog that grows as growing', () => {
-    // 10 - 4 an hour for 3 hours on top of 12.
-    const drain = aDrain({ open: 12, forecast: forecast(null, 10, 4) });
-    expect(forecastOf(drain)).toMatchObject({
-      kind: 'grows',
-      line: [
-        { x: AT, y: 12 },
-        { x: AT + 3 * HOUR_MS, y: 30 },
-      ],
-    });
-  });
-
-  it('draws nothing when nothing is open, or nothing moves', () => {
-    expect(forecastOf(aDrain({ open: 0, forecast: forecast(AT, 0, 4) })).kind).toBe('is-empty');
-    expect(forecastOf(aDrain({ open: 3, forecast: forecast(null, 0, 0) }))).toMatchObject({
-      kind: 'stands',
-      line: [],
-    });
+  it('end where the picture ends, so that the past keeps its part', () => {
+    const curve = Array.from({ length: 60 }, (_, i) => ({ at: AT + i * HOUR_MS, open: same(9) }));
+    const lines = aheadLines(anOutlook({ curve }), aDrain({ open: 9 }));
+    // The drain looks two hours back; twelve ahead are the least.
+    expect(lines.middle.at(-1)?.x).toBe(AT + 12 * HOUR_MS);
+    expect(lines.isCut).toBe(true);
   });
 });
 
 describe('the words of the forecast', () => {
-  const clock = () => 'Thu 06:15';
-  it('tell when, how long until then, or why not', () => {
-    const words = (drain: DrainDto) => forecastWords(drain, clock);
-    expect(words(aDrain({ open: 12, forecast: forecast(AT + 4.5 * HOUR_MS, 2, 5) }))).toBe(
-      'Empty Thu 06:15, in 4 h 30.',
-    );
-    expect(words(aDrain({ open: 12, forecast: forecast(null, 10.25, 4) }))).toBe(
-      'Not empty at this rate: it grows by 6.3 an hour.',
-    );
-    expect(words(aDrain({ open: 0, forecast: forecast(AT, 0, 4) }))).toBe('Nothing is open.');
+  const clock = (at: number) => `+${(at - AT) / HOUR_MS} h`;
+  const words = (told: Parameters<typeof anOutlook>[0], open = 12) =>
+    emptyWords(anOutlook(told), aDrain({ open }), clock);
+
+  it('tell when, how long until then, and how sure that is', () => {
+    expect(words({})).toBe('Empty +4 h, in 4 h 00; four times of five between +3 h and +5 h.');
+    expect(words({}, 0)).toBe('Nothing is open.');
   });
 
-  it('are part of what the picture tells, unless the storm is closed', () => {
-    const drain = aDrain({ open: 12, forecast: forecast(AT + HOUR_MS, 2, 5) });
-    expect(backlogWords(drain, clock, false)).toContain('12 are open. Empty Thu 06:15');
-    expect(backlogWords(drain, clock, true)).not.toContain('Empty');
+  it('say until when one sees when it may not be empty by then', () => {
+    const emptyAt = { low: AT + HOUR_MS, middle: AT + 4 * HOUR_MS, high: null };
+    expect(words({ emptyAt })).toContain('one time in ten before +1 h, one in ten not by +36 h');
+    expect(words({ emptyAt: { low: null, middle: null, high: null }, emptyShare: 0.04 })).toContain(
+      'not empty by +36 h, as far as shifts are entered: it is in 4 of 100 futures',
+    );
+  });
+
+  it('tell what is lost and what comes, each with its band', () => {
+    expect(aheadWords(anOutlook())).toBe(
+      'Until then 9 more calls (4 to 15) and $200 lost ($100 to $400); ' +
+        'medicine is lost in 1 households (0 to 2).',
+    );
+  });
+
+  it('tell what a change does, and its band', () => {
+    const outlook = anOutlook();
+    const difference = {
+      emptyHours: { low: -6, middle: -4.5, high: 0 },
+      lostCents: { low: -90_00, middle: -40_00, high: 10_00 },
+      medicineLost: { low: -1, middle: 0, high: 0 },
+      openAtEnd: { low: -20, middle: -12, high: -3 },
+      soonerShare: 0.875,
+    };
+    const change = { ...NOTHING_CHANGED, technicians: 2 };
+    const told = { at: AT, change, asItIs: outlook, difference, elapsedMs: 1 };
+    expect(differenceWords({ ...told, changed: outlook }, clock)).toBe(
+      'Empty 4 h 30 sooner (−6 h 00 to 0 min); sooner in 88 of 100 futures. ' +
+        'Lost: $40 less (−$90 to +$10). Households whose medicine is lost: no fewer (−1 to 0).',
+    );
+    const never = anOutlook({ emptyAt: { low: null, middle: null, high: null } });
+    expect(differenceWords({ ...told, changed: never }, clock)).toContain(
+      'Open +36 h: 12 fewer (−20 to −3).',
+    );
+  });
+
+  it('are part of what the picture tells, unless there is no forecast', () => {
+    const drain = aDrain({ open: 12 });
+    expect(backlogWords(drain, clock, anOutlook())).toContain('12 are open. Empty +4 h');
+    expect(backlogWords(drain, clock, null)).not.toContain('Empty');
+  });
+});
+
+describe('the fields of a change', () => {
+  const [technicians, overtime] = FIELDS;
+  it('read what people type, and say what is wrong with it', () => {
+    expect(readField(technicians!, ' −3 ')).toBe(-3);
+    expect(readField(technicians!, '')).toBe(0);
+    expect(readField(overtime!, '1,5')).toBe(1.5);
+    expect(readField(overtime!, '9')).toBe('Hours of overtime: a number from 0 to 8.');
+    expect(readField(technicians!, '1.5')).toBe('Technicians, + or −: in steps of 1, such as 2.');
+    expect(readField(technicians!, 'two')).toContain('a number from −30'.replace('−', '-'));
+  });
+
+  it('are told in words', () => {
+    expect(
+      changeWords({
+        technicians: -1,
+        overtimeHours: 1,
+        secondShift: 2,
+        phoneStaff: 3,
+        partsOnEachVan: 4,
+      }),
+    ).toBe(
+      '1 technician fewer, 1 hour of overtime, 2 technicians in a second shift, ' +
+        '3 people more on the phones, 4 more of each part on each van',
+    );
   });
 });
 

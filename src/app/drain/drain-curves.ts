@@ -1,19 +1,10 @@
+import type { OutlookDto } from '@shared/contract/forecast';
 import type { DrainDto } from '@shared/contract/office';
 import { HOUR_MS, type Instant } from '@shared/domain/instant';
 
 export interface Spot {
   readonly x: Instant;
   readonly y: number;
-}
-
-/** Where the backlog goes if the rates of the last while go on. */
-export interface Forecast {
-  /** `empties`: it reaches nothing. `grows`: at these rates it never will. `is-empty`: nothing is open. */
-  readonly kind: 'empties' | 'grows' | 'stands' | 'is-empty';
-  /** From now on; empty when there is nothing to draw. */
-  readonly line: readonly Spot[];
-  /** The line ends before the backlog does, because the picture is not that long. */
-  readonly isCut: boolean;
 }
 
 export type DrainPoint = DrainDto['series'][number];
@@ -40,34 +31,29 @@ export const curve = (
 ): readonly Spot[] => series.map((point) => ({ x: point.at, y: value(point) }));
 
 /** How far the picture looks ahead at least, and how much longer than it looks back at most. */
-const LEAST_AHEAD_MS = 6 * HOUR_MS;
-const AHEAD_OF_BACK = 1;
-/** A growing backlog is drawn this far only: long enough to see that it grows. */
-const GROWTH_MS = 3 * HOUR_MS;
+const LEAST_AHEAD_MS = 12 * HOUR_MS;
+const AHEAD_OF_BACK = 3;
 
-/**
- * The straight line from what is open now to the forecast empty time. A far empty time is cut off, so
- * that the past keeps its half of the picture.
- */
-export function forecastOf(drain: DrainDto): Forecast {
-  const { open } = totalsOf(drain);
-  const { emptyAt, arrivalsPerHour, settledPerHour } = drain.forecast;
-  const from: Spot = { x: drain.at, y: open };
-  if (open === 0) return { kind: 'is-empty', line: [], isCut: false };
+/** The three lines of an outlook: what is open in the middle, and what four of five futures lie between. */
+export interface AheadLines {
+  readonly low: readonly Spot[];
+  readonly middle: readonly Spot[];
+  readonly high: readonly Spot[];
+  /** The lines end before the backlog does, because the picture is not that long. */
+  readonly isCut: boolean;
+}
 
-  if (emptyAt === null || emptyAt <= drain.at) {
-    const growth = arrivalsPerHour - settledPerHour;
-    if (growth <= 0) return { kind: 'stands', line: [], isCut: false };
-    const to = { x: drain.at + GROWTH_MS, y: open + (growth * GROWTH_MS) / HOUR_MS };
-    return { kind: 'grows', line: [from, to], isCut: true };
-  }
-
+/** A far empty time is cut off, so that the past keeps its part of the picture. */
+export function aheadLines({ curve }: OutlookDto, drain: DrainDto): AheadLines {
   const back = drain.at - (drain.series[0]?.at ?? drain.at);
-  const ahead = Math.max(LEAST_AHEAD_MS, back * AHEAD_OF_BACK);
-  const length = emptyAt - drain.at;
-  if (length <= ahead) {
-    return { kind: 'empties', line: [from, { x: emptyAt, y: 0 }], isCut: false };
-  }
-  const end = { x: drain.at + ahead, y: open * (1 - ahead / length) };
-  return { kind: 'empties', line: [from, end], isCut: true };
+  const most = drain.at + Math.max(LEAST_AHEAD_MS, back * AHEAD_OF_BACK);
+  const shown = curve.filter(({ at }) => at <= most);
+  const line = (key: 'low' | 'middle' | 'high') =>
+    shown.map(({ at, open }) => ({ x: at, y: open[key] }));
+  return {
+    low: line('low'),
+    middle: line('middle'),
+    high: line('high'),
+    isCut: shown.length < curve.length,
+  };
 }

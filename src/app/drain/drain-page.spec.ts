@@ -5,7 +5,9 @@ import { TestBed } from '@angular/core/testing';
 import { MatButtonHarness } from '@angular/material/button/testing';
 import { MatButtonToggleHarness } from '@angular/material/button-toggle/testing';
 import { provideRouter } from '@angular/router';
+import type { PartsAheadDto, WhatIfDto } from '@shared/contract/forecast';
 import type { DrainDto } from '@shared/contract/office';
+import { HOUR_MS } from '@shared/domain/instant';
 import { Api } from '../core/api';
 import { BoardStore } from '../core/board-store';
 import { Clock } from '../core/clock';
@@ -13,7 +15,7 @@ import { ProblemError } from '../core/problem-error';
 import { Session } from '../core/session';
 import { aCallRow, aMe, aStorm, settled } from '../core/testing';
 import { provideIcons } from '../ui/icons';
-import { AT, aDrain } from './drain-fixture';
+import { AT, aDrain, aForecast, anOutlook } from './drain-fixture';
 import { DrainPage } from './drain-page';
 
 const FULL = aDrain({
@@ -26,12 +28,45 @@ const FULL = aDrain({
   lostCents: 30_000,
 });
 
+const PARTS: PartsAheadDto = {
+  at: AT,
+  until: AT + 30 * HOUR_MS,
+  mostLackChance: 0.05,
+  vans: [
+    {
+      technicianId: aStorm().id,
+      name: 'Theo Larkspur',
+      stops: 2,
+      lackChance: 0.25,
+      parts: [{ part: 'start-relay', onVan: 1, expected: 1, lackChance: 0.25, load: 1 }],
+    },
+  ],
+  shelf: [{ part: 'start-relay', onRoutes: 1, waiting: 2.5, onVans: 1, load: 1 }],
+  waitingCalls: 5,
+};
+
+const WHAT_IF: WhatIfDto = {
+  at: AT,
+  change: { technicians: 2, overtimeHours: 0, secondShift: 0, phoneStaff: 0, partsOnEachVan: 0 },
+  asItIs: anOutlook(),
+  changed: anOutlook(),
+  difference: {
+    emptyHours: { low: -3, middle: -2, high: -1 },
+    lostCents: { low: -100, middle: 0, high: 0 },
+    medicineLost: { low: 0, middle: 0, high: 0 },
+    openAtEnd: { low: 0, middle: 0, high: 0 },
+    soonerShare: 1,
+  },
+  elapsedMs: 5,
+};
+
 describe('DrainPage', () => {
   const storm = signal<ReturnType<typeof aStorm> | null>(null);
   const n = signal(1);
   let storms: ReturnType<typeof aStorm>[];
   let answer: DrainDto | ProblemError;
   const asked: { name: string; query?: unknown }[] = [];
+  let answerWhatIf: () => void;
 
   async function show(): Promise<{ text: () => string; loader: HarnessLoader; root: HTMLElement }> {
     const fixture = TestBed.createComponent(DrainPage);
@@ -57,13 +92,22 @@ describe('DrainPage', () => {
     const call = (name: string, args?: { query?: unknown }) => {
       asked.push({ name, query: args?.query });
       if (name === 'listStorms') return Promise.resolve({ storms });
+      if (name === 'forecast') return Promise.resolve(aForecast());
+      if (name === 'partsAhead') return Promise.resolve(PARTS);
       return answer instanceof ProblemError ? Promise.reject(answer) : Promise.resolve(answer);
+    };
+    const callUntil = (stop: AbortSignal, name: string, args?: { body?: unknown }) => {
+      asked.push({ name, query: args?.body });
+      return new Promise((resolve, reject) => {
+        stop.addEventListener('abort', () => reject(new DOMException('taken back', 'AbortError')));
+        answerWhatIf = () => resolve(WHAT_IF);
+      });
     };
     TestBed.configureTestingModule({
       providers: [
         provideIcons(),
         provideRouter([]),
-        { provide: Api, useValue: { call } },
+        { provide: Api, useValue: { call, callUntil } },
         { provide: Clock, useValue: { now: signal(AT), exact: () => AT } },
         {
           provide: Session,
@@ -112,6 +156,56 @@ describe('DrainPage', () => {
     const rows = root.querySelectorAll('thaw-time-table tbody tr');
     expect(rows).toHaveLength(2);
     expect(rows[0]?.textContent).toContain('25');
+    expect(words[0]).toContain('four times of five between');
+    const ahead = [...root.querySelectorAll('thaw-forecast-table tbody tr')].map((row) =>
+      [...row.querySelectorAll('td')].map((cell) => cell.textContent?.trim()),
+    );
+    expect(ahead).toEqual([
+      ['25', '25', '25'],
+      ['8', '12', '17'],
+      ['0', '0', '1'],
+    ]);
+  });
+
+  it('tries a change of the crew, which can be taken back, and tells the difference', async () => {
+    const { root, loader, text } = await show();
+    const press = async (words: RegExp) =>
+      (await loader.getHarness(MatButtonHarness.with({ text: words }))).click();
+    await press(/Try it/);
+    expect(text()).toContain('Change a number first');
+    expect(asked.some(({ name }) => name === 'whatIf')).toBe(false);
+
+    const box = root.querySelector<HTMLInputElement>('#what-if-technicians');
+    box!.value = '2';
+    box!.dispatchEvent(new Event('input'));
+    await press(/Try it/);
+    expect(asked.at(-1)).toMatchObject({
+      name: 'whatIf',
+      query: { technicians: 2, phoneStaff: 0 },
+    });
+    expect(text()).toContain('Playing the futures');
+    await press(/Stop/);
+    expect(text()).not.toContain('Playing the futures');
+
+    await press(/Try it/);
+    answerWhatIf();
+    await settled();
+    await settled();
+    await loader.getAllHarnesses(MatButtonHarness);
+    expect(text()).toContain('2 technicians more');
+    expect(text()).toContain('Empty 2 h 00 sooner');
+    expect(root.querySelectorAll('thaw-what-if tbody tr')).toHaveLength(3);
+  });
+
+  it('says who on the phones is enough, and what each van lacks', async () => {
+    const { root, text } = await show();
+    const phones = root.querySelectorAll('thaw-phone-table tbody tr');
+    expect(phones[0]?.textContent).toContain('grows');
+    expect(phones[1]?.textContent).toContain('2 (now)');
+    expect(text()).toContain('To load tonight: 1 start relay.');
+    expect(root.querySelector('thaw-parts-table a')?.getAttribute('href')).toBe(
+      `/api/storms/${aStorm().id}/parts?format=csv`,
+    );
   });
 
   it('asks again in the chosen buckets, also for the file', async () => {
@@ -160,7 +254,8 @@ describe('DrainPage', () => {
     storms = [closed];
     const over = await show();
     expect(over.text()).toContain('Closed Thu 02:15; these figures are final');
-    expect(over.text()).not.toContain('at this rate');
+    expect(over.text()).not.toContain('What if');
+    expect(over.root.querySelector('thaw-parts-table')).toBeNull();
     expect(over.root.querySelector('thaw-loss-ahead')).toBeNull();
 
     storms = [];

@@ -19,11 +19,17 @@ import { BoardStore } from '../core/board-store';
 import { Clock } from '../core/clock';
 import { Keys } from '../core/keys';
 import { DayTimePipe, Zone } from '../core/zone';
+import { ForecastFeed } from './ahead/forecast-feed';
+import { ForecastTable } from './ahead/forecast-table';
+import { aheadWords, emptyWords } from './ahead/outlook-words';
+import { PartsTable } from './ahead/parts-table';
+import { PhoneTable } from './ahead/phone-table';
+import { WhatIfPanel } from './ahead/what-if';
 import { ChartCanvas } from './chart-canvas';
 import { totalsOf } from './drain-curves';
 import { BUCKETS, type BucketMinutes, DrainFeed } from './drain-feed';
 import { DrainFigures } from './drain-figures';
-import { assumptionWords, backlogWords, forecastWords, valueWords } from './drain-words';
+import { backlogWords, valueWords } from './drain-words';
 import { drawBacklog, drawValue, type DrainView } from './draw-drain';
 import { LossAhead } from './loss-ahead';
 import { ShareTable } from './share-table';
@@ -36,15 +42,19 @@ import { TimeTable } from './time-table';
     ChartCanvas,
     DayTimePipe,
     DrainFigures,
+    ForecastTable,
     LossAhead,
     MatButton,
     MatButtonToggleModule,
     MatIcon,
+    PartsTable,
+    PhoneTable,
     RouterLink,
     ShareTable,
     TimeTable,
+    WhatIfPanel,
   ],
-  providers: [DrainFeed],
+  providers: [DrainFeed, ForecastFeed],
   templateUrl: './drain-page.html',
   styleUrl: './drain-page.scss',
   changeDetection: ChangeDetectionStrategy.OnPush,
@@ -52,13 +62,14 @@ import { TimeTable } from './time-table';
 export class DrainPage {
   private readonly zone = inject(Zone);
   protected readonly feed = inject(DrainFeed);
+  protected readonly ahead = inject(ForecastFeed);
   protected readonly board = inject(BoardStore);
   protected readonly clock = inject(Clock);
 
   protected readonly buckets = BUCKETS;
   protected readonly isTableShown = signal(false);
 
-  private readonly isNarrow = toSignal(
+  protected readonly isNarrow = toSignal(
     inject(BreakpointObserver)
       .observe('(width < 600px)')
       .pipe(map(({ matches }) => matches)),
@@ -76,7 +87,7 @@ export class DrainPage {
         drain,
         zone: this.zone.name(),
         isNarrow: this.isNarrow(),
-        isOver: !this.feed.isOpen(),
+        outlook: this.ahead.forecast()?.outlook ?? null,
       }
     );
   });
@@ -84,17 +95,19 @@ export class DrainPage {
   protected readonly shown = computed(() => {
     const view = this.view();
     if (!view || totalsOf(view.drain).arrivals === 0) return null;
-    const { drain, isOver } = view;
+    const { drain, outlook } = view;
     const clock = (at: number): string => this.zone.dayTime(at);
     return {
       drain,
-      isOver,
+      isOver: !this.feed.isOpen(),
       drawBacklog: drawBacklog(view),
       drawValue: drawValue(view),
-      backlog: backlogWords(drain, clock, isOver),
+      backlog: backlogWords(drain, clock, outlook),
       value: valueWords(drain),
-      forecast: forecastWords(drain, clock),
-      assumption: assumptionWords(drain),
+      forecast: outlook && {
+        empty: emptyWords(outlook, drain, clock),
+        ahead: aheadWords(outlook),
+      },
     };
   });
 
@@ -110,6 +123,10 @@ export class DrainPage {
     const query = { format: 'csv', bucketMinutes: this.feed.bucketMinutes() };
     return urlOf(PATHS.drain[1], { stormId: storm.id }, query);
   });
+
+  protected readonly partsCsvUrl = computed(() =>
+    urlOf(PATHS.partsAhead[1], { stormId: this.feed.storm()?.id ?? '' }, { format: 'csv' }),
+  );
 
   constructor() {
     const scope = 'Drain';

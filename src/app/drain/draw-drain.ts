@@ -1,9 +1,10 @@
+import type { OutlookDto } from '@shared/contract/forecast';
 import type { DrainDto } from '@shared/contract/office';
 import type { Instant } from '@shared/domain/instant';
 import type { ChartDataset, ChartOptions } from 'chart.js';
 import { dayTime, money } from '../core/zone';
 import type { Draw } from './chart-canvas';
-import { curve, type Forecast, forecastOf, settledOf, totalsOf } from './drain-curves';
+import { aheadLines, type AheadLines, curve, settledOf, totalsOf } from './drain-curves';
 import type { Ink } from './ink';
 import { moneyShort } from './money-short';
 import { timeTicks } from './time-ticks';
@@ -14,20 +15,18 @@ export interface DrainView {
   readonly zone: string;
   /** Whether the picture is a hand wide. */
   readonly isNarrow: boolean;
-  /** A closed storm has no forecast. */
-  readonly isOver: boolean;
+  /** Null while it is not known; a closed storm has none. */
+  readonly outlook: OutlookDto | null;
 }
 
-const NO_FORECAST: Forecast = { kind: 'stands', line: [], isCut: false };
-
-type Line = ChartDataset<'line', { x: number; y: number }[]>;
+export type Line = ChartDataset<'line', { x: number; y: number }[]>;
 
 /** Calls that came in, were settled and are open, and where that leads. */
-export function drawBacklog({ drain, zone, isNarrow, isOver }: DrainView): Draw {
+export function drawBacklog({ drain, zone, isNarrow, outlook }: DrainView): Draw {
   return (ink) => {
     const now = totalsOf(drain);
-    const forecast = isOver ? NO_FORECAST : forecastOf(drain);
-    const far = forecast.line.at(-1)?.x ?? drain.at;
+    const ahead = outlook && aheadLines(outlook, drain);
+    const far = ahead?.middle.at(-1)?.x ?? drain.at;
     const datasets: Line[] = [
       {
         ...thin(ink.soft, 'triangle', drain),
@@ -50,18 +49,7 @@ export function drawBacklog({ drain, zone, isNarrow, isOver }: DrainView): Draw 
         endLabel: `open ${now.open}`,
       },
     ];
-    if (forecast.line.length > 0) {
-      datasets.push({
-        ...thin(ink.text, 'crossRot', drain),
-        borderWidth: 2,
-        borderDash: [2, 5],
-        pointRadius: forecast.isCut ? 0 : [0, 6],
-        pointBorderWidth: 2,
-        data: [...forecast.line],
-        label: 'forecast',
-        endLabel: forecastLabel(drain, zone),
-      });
-    }
+    if (outlook && ahead) datasets.push(...bandOf(ahead, ink, aheadLabel(outlook, ahead, zone)));
     return {
       type: 'line',
       data: { datasets },
@@ -71,7 +59,7 @@ export function drawBacklog({ drain, zone, isNarrow, isOver }: DrainView): Draw 
         from: drain.series[0]?.at ?? drain.at,
         to: far,
         isNarrow,
-        roomRight: forecast.kind === 'empties' ? 126 : 104,
+        roomRight: ahead ? 126 : 104,
         value: (amount) => String(Math.round(amount)),
         tick: (amount) => String(amount),
       }),
@@ -133,18 +121,46 @@ export function drawValue({ drain, zone, isNarrow }: DrainView): Draw {
   };
 }
 
-function forecastLabel(drain: DrainDto, zone: string): string {
-  const { kind, isCut } = forecastOf(drain);
-  if (kind === 'grows') return 'growing';
-  const { emptyAt } = drain.forecast;
-  if (emptyAt === null) return '';
-  return `${isCut ? '→ ' : ''}empty ${dayTime(emptyAt, zone)}`;
+/**
+ * The middle of the futures as a dotted line, and hatched ground between the edges of four of five of
+ * them: edges and hatching tell it without colour.
+ */
+export function bandOf(lines: AheadLines, ink: Ink, label: string, color = ink.text): Line[] {
+  const edge = {
+    borderColor: color,
+    borderWidth: 1,
+    pointRadius: 0,
+    pointHitRadius: 12,
+  };
+  return [
+    { ...edge, data: [...lines.low], label: 'open at least, in nine of ten futures' },
+    {
+      ...edge,
+      data: [...lines.high],
+      label: 'open at most, in nine of ten futures',
+      backgroundColor: ink.aheadGround,
+      fill: '-1',
+    },
+    {
+      ...edge,
+      data: [...lines.middle],
+      borderWidth: 2.5,
+      borderDash: [2, 5],
+      label: 'open, as likely more as less',
+      endLabel: label,
+    },
+  ];
+}
+
+function aheadLabel({ emptyAt }: OutlookDto, { isCut }: AheadLines, zone: string): string {
+  if (emptyAt.middle === null) return '→ not empty';
+  return `${isCut ? '→ ' : ''}empty ${dayTime(emptyAt.middle, zone)}`;
 }
 
 /** About a dozen points a line: enough to tell the lines apart by shape, too few to hide them. */
 const POINTS = 12;
 
-function thin(color: string, shape: 'triangle' | 'rect' | 'circle' | 'crossRot', drain: DrainDto) {
+function thin(color: string, shape: 'triangle' | 'rect' | 'circle', drain: DrainDto) {
   const every = Math.max(1, Math.round(drain.series.length / POINTS));
   const last = drain.series.length - 1;
   return {
@@ -160,7 +176,7 @@ function thin(color: string, shape: 'triangle' | 'rect' | 'circle' | 'crossRot',
   };
 }
 
-interface Axes {
+export interface Axes {
   readonly ink: Ink;
   readonly zone: string;
   readonly from: Instant;
@@ -173,7 +189,7 @@ interface Axes {
   readonly tick: (amount: number) => string;
 }
 
-function options(axes: Axes): ChartOptions<'line'> {
+export function options(axes: Axes): ChartOptions<'line'> {
   const { ink, zone, from, to } = axes;
   const font = { family: "'IBM Plex Sans', sans-serif", size: 12 };
   const ticks = timeTicks(from, to, zone, axes.isNarrow ? 4 : 9);

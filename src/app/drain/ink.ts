@@ -16,6 +16,8 @@ export interface Ink {
   readonly safeGround: CanvasPattern | string;
   readonly riskGround: CanvasPattern | string;
   readonly lostGround: CanvasPattern | string;
+  /** What lies ahead and is not sure: upright hatching, which no state of contents has. */
+  readonly aheadGround: CanvasPattern | string;
 }
 
 export function inkOf(theme: Pick<Theme, 'color'>, context: CanvasRenderingContext2D): Ink {
@@ -46,6 +48,15 @@ export function inkOf(theme: Pick<Theme, 'color'>, context: CanvasRenderingConte
         pen.moveTo(shift, 7);
         pen.lineTo(shift + 7, 0);
       }
+      pen.stroke();
+    }),
+    aheadGround: tile(context, 6, (pen) => {
+      pen.globalAlpha = 0.4;
+      pen.strokeStyle = theme.color('--thaw-ink-soft');
+      pen.lineWidth = 1;
+      pen.beginPath();
+      pen.moveTo(3, 0);
+      pen.lineTo(3, 6);
       pen.stroke();
     }),
     lostGround: tile(context, 6, (pen) => {
