@@ -17,6 +17,7 @@ import { PARTS, SKILLS, type Skill } from '@shared/domain/skills';
 import type { Context } from '../context';
 import { asOfOneMoment } from '../db/transaction';
 import { readSettings } from '../office/settings';
+import { withBreaksDue } from '../routes/breaks-due';
 import { findStorm } from '../storms/storm-queries';
 import { shiftsAhead } from '../technicians/lock-technicians';
 import { technicianDtos } from '../technicians/technician-rows';
@@ -49,7 +50,7 @@ export function forecastFacts(context: Context, stormId: string): Promise<Foreca
     const stops = await stopsAhead(sequelize, stormId, tx);
     const changes = await histories(sequelize, stormId, tx);
     const technicians = await technicianDtos(sequelize, 'all', tx);
-    const shifts = await shiftsAhead(sequelize, now, tx);
+    const shifts = await withBreaksDue(sequelize, await shiftsAhead(sequelize, now, tx), now, tx);
     const areas = await areasAhead(sequelize, stormId, tx);
     const seen = seenOf(changes.values(), now);
     const staff = seen.phone.people || (await dispatcherCount(sequelize, tx));

@@ -33,6 +33,9 @@ const forecast: ForecastPort = {
 };
 let stopped = 0;
 
+/** A busy machine is no fault. */
+jest.setTimeout(60_000);
+
 let server: TestServer;
 let mara: TestPerson;
 let ines: TestPerson;

@@ -1,6 +1,6 @@
 import { SeededRandom } from '@shared/domain/planner/random';
 import { HOUR_MS, MINUTE_MS, type Instant } from '@shared/domain/instant';
-import { handfulFor, LULL_MS } from '@shared/domain/forecast/play';
+import { handfulFor, LULL_MS } from '@shared/domain/forecast/played';
 
 /**
  * A storm as it goes, minute by minute, to hold forecasts against: made apart from the forecast's own

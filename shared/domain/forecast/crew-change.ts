@@ -2,7 +2,7 @@ import { HOUR_MS } from '../instant';
 import type { WorkShift } from '../route-rules';
 import { PARTS } from '../skills';
 import type { ForecastFacts, ForecastTechnician } from './facts';
-import type { Crew } from './play';
+import type { Crew } from './played';
 
 /** What a manager may want to try. Nothing is changed by asking. */
 export interface CrewChange {
@@ -97,7 +97,7 @@ const nextAfter = (days: readonly { until: number }[], i: number, until: number)
 
 /** Nobody works into the next of their own shifts twice. */
 const longer = (shifts: readonly WorkShift[], hours: number): WorkShift[] =>
-  shifts.map(({ startsAt, endsAt }, i) => ({
-    startsAt,
-    endsAt: Math.min(endsAt + hours * HOUR_MS, shifts[i + 1]?.startsAt ?? Infinity),
+  shifts.map((shift, i) => ({
+    ...shift,
+    endsAt: Math.min(shift.endsAt + hours * HOUR_MS, shifts[i + 1]?.startsAt ?? Infinity),
   }));

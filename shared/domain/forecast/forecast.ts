@@ -5,7 +5,8 @@ import { crewOf, NO_CHANGE, type CrewChange } from './crew-change';
 import { Draws } from './draws';
 import type { AtStake, ForecastFacts } from './facts';
 import { drawOtherRings } from './other-rings';
-import { handfulFor, play, type Crew, type Played, type Span } from './play';
+import { play } from './play';
+import { handfulFor, type Crew, type Played, type Span } from './played';
 import { RingClock } from './ring-clock';
 import { drawWorld, type World } from './world';
 

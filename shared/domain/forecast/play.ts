@@ -1,48 +1,11 @@
-import { HOUR_MS, type Instant } from '../instant';
+import type { Instant } from '../instant';
 import { EventHeap } from './event-heap';
-import type { ForecastCall, ForecastTechnician } from './facts';
+import type { ForecastCall } from './facts';
 import { RUNS_AGAIN, TO_VISIT } from './fates';
+import { LULL_MS, type Crew, type Played, type Span } from './played';
+import { Roster } from './roster';
 import { WaitingLine } from './waiting-line';
 import type { World } from './world';
-
-/** Who works, and until when. */
-export interface Crew {
-  readonly phoneStaff: number;
-  readonly technicians: readonly ForecastTechnician[];
-  /** For each, its number in the facts, for what is left of the stop under way; -1 is none. */
-  readonly known: readonly number[];
-}
-
-export interface Span {
-  readonly now: Instant;
-  readonly until: Instant;
-  /** Between two points of the curve. */
-  readonly stepMs: number;
-  /** How many calls may be open at once without being a backlog. */
-  readonly handful: number;
-}
-
-/**
- * The backlog is empty when nobody is left to speak with or to drive to, and for so long after it no
- * more are than there are technicians to take them at once: a lull before the power comes back is no
- * end. Calls whose part is on order, or where nobody was at home, wait for others meanwhile. Our estimate.
- */
-export const LULL_MS = 8 * HOUR_MS;
-const LEAST_HANDFUL = 3;
-export const handfulFor = (technicians: number): number => Math.max(LEAST_HANDFUL, technicians);
-
-/** What came of one future with one crew. */
-export interface Played {
-  /** When nobody was left to speak with or to drive to; Infinity when that did not come. */
-  readonly emptyAt: Instant;
-  /** Calls open at `now` and after each step, those that wait for parts among them. */
-  readonly open: Uint32Array;
-  /** What was lost from now on, until it was empty; contents that nobody will cool again count whole. */
-  readonly lostCents: number;
-  /** Households whose medicine was lost. */
-  readonly medicineLost: number;
-  readonly arrivals: number;
-}
 
 const PHONE_ENDS = 0;
 const IS_FREE = 1;
@@ -59,8 +22,6 @@ const SETTLED = 5;
 
 /** A visit that lacks its part still takes this share of the time: our estimate. */
 const DIAGNOSIS = 0.6;
-/** Before each later shift a van gets so many of each part at least. Our estimate. */
-const FILLED_UP = 2;
 /** The last visit of a shift is chosen among the near ones: it takes this share of a usual one. Our estimate. */
 const LAST_VISIT = 0.75;
 
@@ -72,6 +33,7 @@ export function play(calls: readonly ForecastCall[], world: World, crew: Crew, s
 class Run {
   private readonly heap = new EventHeap();
   private readonly line: WaitingLine;
+  private readonly roster: Roster;
   private readonly state: Uint8Array;
   /** Parts and access are a matter of the first visit only. */
   private readonly isSecondVisit: Uint8Array;
@@ -80,8 +42,6 @@ class Run {
   private phonesFree: number;
   private readonly current: Int32Array;
   private readonly routeNext: Int32Array;
-  private readonly vans: number[][];
-  private readonly shiftNow: Int32Array;
   private idle: number[] = [];
   private readonly onRoute: Uint8Array;
   private openCount = 0;
@@ -101,13 +61,12 @@ class Run {
     const count = world.calls.length;
     const { technicians } = crew;
     this.line = new WaitingLine(world);
+    this.roster = new Roster(technicians);
     this.state = new Uint8Array(count);
     this.isSecondVisit = new Uint8Array(count);
     this.onRoute = new Uint8Array(count);
     this.current = new Int32Array(technicians.length).fill(-1);
     this.routeNext = new Int32Array(technicians.length);
-    this.shiftNow = new Int32Array(technicians.length).fill(-1);
-    this.vans = technicians.map(({ van }) => [...van]);
     this.phonesFree = crew.phoneStaff;
     this.begin();
   }
@@ -179,7 +138,7 @@ class Run {
         this.state[first] = WITH_SOMEBODY;
         this.current[i] = first;
         this.routeNext[i] = 1;
-        this.shiftNow[i] = Math.max(0, this.shiftAt(i, span.now));
+        this.roster.begin(i, this.roster.shiftAt(i, span.now));
         this.heap.push(span.now + world.restMs[known]!, i * KINDS + IS_FREE);
       } else this.heap.push(span.now, i * KINDS + IS_FREE);
     });
@@ -241,7 +200,7 @@ class Run {
   /** Sends a technician to the next stop of the route, else to the most urgent call, else to rest. */
   private seekWork(technician: number, at: Instant): void {
     const { shifts, skills, route } = this.crew.technicians[technician]!;
-    const shift = this.shiftAt(technician, at);
+    const shift = this.roster.shiftAt(technician, at);
     if (shift < 0) return this.leaveRoute(technician, at);
     const { startsAt, endsAt } = shifts[shift]!;
     if (at < startsAt) return this.heap.push(startsAt, technician * KINDS + IS_FREE);
@@ -250,14 +209,9 @@ class Run {
       if (next) this.heap.push(Math.max(next.startsAt, at), technician * KINDS + IS_FREE);
       return this.leaveRoute(technician, at);
     }
-    if (shift !== this.shiftNow[technician]) {
-      // What a van carries is made good before every shift; no part that it needs stays out for good.
-      if (this.shiftNow[technician]! >= 0)
-        this.vans[technician] = this.crew.technicians[technician]!.van.map((n) =>
-          Math.max(FILLED_UP, n),
-        );
-      this.shiftNow[technician] = shift;
-    }
+    this.roster.begin(technician, shift);
+    const backAt = this.roster.afterBreak(technician, shifts[shift]!, at);
+    if (backAt > at) return this.heap.push(backAt, technician * KINDS + IS_FREE);
     let call = -1;
     while (call < 0 && this.routeNext[technician]! < route.length) {
       const next = route[this.routeNext[technician]!]!;
@@ -267,10 +221,12 @@ class Run {
     if (call < 0) call = this.line.take(skills, at);
     if (call < 0) {
       this.idle.push(technician);
+      this.roster.rests(technician, at);
       return;
     }
     this.state[call] = WITH_SOMEBODY;
     this.current[technician] = call;
+    this.roster.works(technician);
     const { driveMs, serviceMs } = this.world.calls;
     const share = this.isCutShort(technician, call) ? DIAGNOSIS : 1;
     this.heap.push(at + driveMs[call]! + share * serviceMs[call]!, technician * KINDS + IS_FREE);
@@ -288,16 +244,11 @@ class Run {
     if (left.length > 0) this.wake(at);
   }
 
-  /** The first shift that is not over; -1 is none. */
-  private shiftAt(technician: number, at: Instant): number {
-    return this.crew.technicians[technician]!.shifts.findIndex(({ endsAt }) => endsAt > at);
-  }
-
   private isCutShort(technician: number, call: number): boolean {
     if (this.isSecondVisit[call]) return false;
     const part = this.world.calls.part[call]!;
     if (this.world.calls.firstVisitFails[call] === 1) return true;
-    return part >= 0 && !((this.vans[technician]![part] ?? 0) > 0);
+    return part >= 0 && !this.roster.has(technician, part);
   }
 
   private finish(technician: number, at: Instant): void {
@@ -314,7 +265,7 @@ class Run {
       this.heap.push(at + calls.parkedMs[call]!, call * KINDS + COMES_BACK);
       return;
     }
-    if (part >= 0 && !this.isSecondVisit[call]) this.vans[technician]![part]!--;
+    if (part >= 0 && !this.isSecondVisit[call]) this.roster.uses(technician, part);
     this.settle(call, calls.isRepaired[call] === 1 ? at : Infinity);
   }
 
