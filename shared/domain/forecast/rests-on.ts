@@ -10,6 +10,7 @@ export function restsOn(facts: ForecastFacts): readonly string[] {
   const working = technicians.filter(({ shifts }) => shifts.length > 0).length;
   const checks = phone.settledRunning + phone.settledOtherwise + phone.toVisit;
   return [
+    'Empty: nobody is left to speak with or to drive to. Calls that wait for a part on order, or for somebody to be at home, are left out of that; the curve counts them as open.',
     `Calls to come: from ${plural(areas.length, 'outage area', 'outage areas')}, ${String(out)} still out, by how the households of this storm have rung so far.`,
     checks === 0
       ? 'Settled by phone: our estimate of three in ten, until calls have been checked.'

@@ -49,7 +49,7 @@ describe('the words of the forecast', () => {
   it('tell what is lost and what comes, each with its band', () => {
     expect(aheadWords(anOutlook())).toBe(
       'Until then 9 more calls (4 to 15) and $200 lost ($100 to $400); ' +
-        'medicine is lost in 1 households (0 to 2).',
+        'medicine is lost in 1 household (0 to 2).',
     );
   });
 

@@ -29,7 +29,7 @@ export function aheadWords({ lostCents, medicineLost, arrivals }: OutlookDto): s
   return (
     `Until then ${count(arrivals.middle)} more calls (${count(arrivals.low)} to ${count(arrivals.high)}) ` +
     `and ${money(lostCents.middle)} lost (${money(lostCents.low)} to ${money(lostCents.high)}); ` +
-    `medicine is lost in ${count(medicineLost.middle)} households ` +
+    `medicine is lost in ${count(medicineLost.middle)} ${count(medicineLost.middle) === 1 ? 'household' : 'households'} ` +
     `(${count(medicineLost.low)} to ${count(medicineLost.high)}).`
   );
 }
