@@ -1,5 +1,4 @@
 import type { PlanDto } from '@shared/contract/routes';
-import type { Instant } from '@shared/domain/instant';
 import type {
   CheapestPlace,
   Relaxation,
@@ -86,4 +85,4 @@ function helpWords(help: Relaxation, { nameOf, zone }: Names): string {
 
 const dollars = (money: number): string => `$${Math.round(money).toLocaleString('en-US')}`;
 /** The planner counts in seconds. */
-const at = (seconds: number, zone: string): string => wallClock((seconds * 1000) as Instant, zone);
+const at = (seconds: number, zone: string): string => wallClock(seconds * 1000, zone);
