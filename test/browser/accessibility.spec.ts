@@ -74,8 +74,8 @@ async function judge(page: Page, state: string, known: readonly string[] = []): 
 // None of these needs what another leaves behind, and together they take longest.
 test.describe.configure({ mode: 'parallel' });
 
-const asMara = (browser: Browser): Promise<Page> =>
-  enter(browser, ({ email }) => email.startsWith('mara'), DESK);
+const asMara = (browser: Browser, at: string): Promise<Page> =>
+  enter(browser, ({ email }) => email.startsWith('mara'), DESK, at);
 
 // A board that stays open goes on drawing itself.
 test.afterEach(async ({ browser }) => {
@@ -119,9 +119,8 @@ test('signing in is accessible, refused or cut off too', async ({ browser }) => 
 });
 
 test('the board is accessible, whatever is open on it', async ({ browser }) => {
-  const page = await asMara(browser);
+  const page = await asMara(browser, '/board');
   const rows = page.getByRole('grid', { name: 'Queue of calls by urgency' });
-  await page.goto('/board');
   await expect(rows.getByRole('row').nth(1)).toBeVisible();
   await expect(page.getByRole('application', { name: /Map of/ })).toBeVisible();
   await judge(page, 'board, nothing selected');
@@ -166,8 +165,7 @@ test('the board is accessible, whatever is open on it', async ({ browser }) => {
 });
 
 test('the map is accessible, with each of its panels', async ({ browser }) => {
-  const page = await asMara(browser);
-  await page.goto('/board');
+  const page = await asMara(browser, '/board');
   for (const [button, panel] of [
     ['Draw area', 'Outage area'],
     ['Close road', 'Storm road'],
@@ -203,8 +201,7 @@ test('the map is accessible, with each of its panels', async ({ browser }) => {
 });
 
 test('routes are accessible, with a proposal and without', async ({ browser }) => {
-  const page = await asMara(browser);
-  await page.goto('/routes');
+  const page = await asMara(browser, '/routes');
   await expect(page.getByRole('grid', { name: 'Routes of all technicians' })).toBeVisible();
   await expect(page.getByRole('heading', { name: /On no route/ })).toBeVisible();
   await judge(page, 'routes, no proposal');
@@ -222,8 +219,7 @@ test('routes are accessible, with a proposal and without', async ({ browser }) =
 });
 
 test('messages and night logs are accessible, in trouble too', async ({ browser }) => {
-  const page = await asMara(browser);
-  await page.goto('/messages');
+  const page = await asMara(browser, '/messages');
   await expect(page.getByRole('listbox')).toBeVisible();
   await judge(page, 'messages');
   await page.getByRole('option').first().click();
@@ -249,8 +245,7 @@ test('messages and night logs are accessible, in trouble too', async ({ browser 
 });
 
 test('what lies over a screen is accessible', async ({ browser }) => {
-  const page = await asMara(browser);
-  await page.goto('/board');
+  const page = await asMara(browser, '/board');
   await expect(page.getByRole('grid', { name: /Queue/ })).toBeVisible();
   await page.keyboard.press('?');
   await expect(page.getByRole('dialog')).toBeVisible();
@@ -268,8 +263,7 @@ test('what lies over a screen is accessible', async ({ browser }) => {
 });
 
 test('the drain and the office are accessible', async ({ browser }) => {
-  const page = await enter(browser, ({ role }) => role === 'owner', DESK);
-  await page.goto('/drain');
+  const page = await enter(browser, ({ role }) => role === 'owner', DESK, '/drain');
   await page.getByRole('button', { name: 'Show the figures as a table' }).click();
   await judge(page, 'drain, with its table');
 
@@ -288,7 +282,7 @@ test('the drain and the office are accessible', async ({ browser }) => {
 });
 
 test('the day on the phone is accessible at each step of a stop', async ({ browser }) => {
-  const desk = await asMara(browser);
+  const desk = await asMara(browser, '/password');
   const phone = await enter(browser, ({ email }) => email.startsWith(DRIVER), {
     ...PHONE,
     reducedMotion: 'reduce',

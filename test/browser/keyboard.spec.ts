@@ -82,10 +82,8 @@ const queueOf = (page: Page) => page.getByRole('grid', { name: 'Queue of calls b
 
 /** Signs in a dispatcher whom no other story uses, and takes the mouse away. */
 async function atTheDesk(browser: Parameters<typeof enter>[0]): Promise<Page> {
-  const page = await enter(browser, ({ email }) => email.startsWith('jonas'), {
-    viewport: { width: 1440, height: 900 },
-    reducedMotion: 'reduce',
-  });
+  const window = { viewport: { width: 1440, height: 900 }, reducedMotion: 'reduce' } as const;
+  const page = await enter(browser, ({ email }) => email.startsWith('jonas'), window, '/password');
   await page.addInitScript(() => {
     // A story by keyboard alone fails when something was clicked by a pointer.
     addEventListener('pointerdown', () => (document.documentElement.dataset['pointed'] = 'yes'));

@@ -16,8 +16,7 @@ const square = ([lon, lat]: readonly [number, number], half: number): number[][]
 test('an outage area is made of feeders by keyboard, and says what it overlaps', async ({
   browser,
 }) => {
-  const page = await enter(browser, ({ role }) => role === 'dispatcher');
-  await page.goto('/board');
+  const page = await enter(browser, ({ role }) => role === 'dispatcher', {}, '/board');
   await page.getByRole('application', { name: /Map of/ }).waitFor();
   await page.keyboard.press('z');
   await page.keyboard.press('f');
@@ -54,8 +53,7 @@ test('an outage area is made of feeders by keyboard, and says what it overlaps',
 });
 
 test('outage areas come from a file, and a bad file says why not', async ({ browser }) => {
-  const page = await enter(browser, ({ role }) => role === 'dispatcher');
-  await page.goto('/board');
+  const page = await enter(browser, ({ role }) => role === 'dispatcher', {}, '/board');
   await page.getByRole('application', { name: /Map of/ }).waitFor();
   const { centre } = await ask<Region>(page, 'GET', '/api/region');
   await page.keyboard.press('z');

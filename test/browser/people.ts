@@ -33,26 +33,35 @@ export const PHONE: BrowserContextOptions = {
 /** By e-mail address, the session of whoever has signed in: the next window opens in it. */
 const sessions = new Map<string, Awaited<ReturnType<BrowserContext['cookies']>>>();
 
-/** Opens a browser of its own for one person, signed in. */
+/**
+ * Opens a browser of its own for one person, signed in.
+ *
+ * @param at the page to open; one at once, for each that is drawn on the way takes seconds
+ */
 export async function enter(
   browser: Browser,
   who: (one: SignIn) => boolean,
   options: BrowserContextOptions = {},
+  at = '/',
 ): Promise<Page> {
   const person = signIns().find(who);
   if (!person) throw new Error('nobody has that sign-in');
   const context = await browser.newContext(options);
   await context.addCookies(sessions.get(person.email) ?? []);
   const page = await context.newPage();
-  await page.goto('/');
-  await page.waitForURL(({ pathname }) => pathname !== '/');
-  if (new URL(page.url()).pathname === '/sign-in') {
-    await page.getByLabel('E-mail address').fill(person.email);
+  const live = page.getByText('Live', { exact: true }).first();
+  const door = page.getByLabel('E-mail address');
+  await page.goto(at);
+  await live.or(door).first().waitFor();
+  if (await door.isVisible()) {
+    await door.fill(person.email);
     await page.getByLabel('Password', { exact: true }).fill(person.password);
     await page.keyboard.press('Enter');
     await expect(page).not.toHaveURL(/sign-in/);
+    if (at !== '/' && new URL(page.url()).pathname !== at) await page.goto(at);
   }
-  await expect(page.getByText('Live', { exact: true }).first()).toBeVisible();
+  await expect(live).toBeVisible();
+  await page.waitForURL(({ pathname }) => pathname !== '/');
   sessions.set(person.email, await context.cookies());
   return page;
 }

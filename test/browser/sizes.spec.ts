@@ -106,6 +106,13 @@ const misfits = (page: Page): Promise<readonly string[]> =>
     return [...new Set(found)];
   });
 
+/** Lists and charts measure themselves some frames after the window has its new size, and draw. */
+const remeasured = (page: Page): Promise<void> =>
+  page.evaluate(async () => {
+    for (let drawn = 0; drawn < 8; drawn++)
+      await new Promise((next) => requestAnimationFrame(next));
+  });
+
 /** Looks at what is open now in each size; nothing is loaded anew, as when a window is resized. */
 async function fits(
   page: Page,
@@ -114,11 +121,14 @@ async function fits(
 ): Promise<void> {
   for (const size of sizes) {
     await page.setViewportSize(size);
-    // Lists and charts measure themselves once the window has its new size.
-    await page.evaluate(
-      () => new Promise((done) => requestAnimationFrame(() => setTimeout(done, 250))),
-    );
-    expect.soft(await misfits(page), `${what} at ${size.width}x${size.height}`).toEqual([]);
+    await remeasured(page);
+    let found = await misfits(page);
+    // On a busy machine some part may still be at it.
+    for (let looks = 1; found.length > 0 && looks < 5; looks++) {
+      await page.waitForTimeout(200);
+      found = await misfits(page);
+    }
+    expect.soft(found, `${what} at ${size.width}x${size.height}`).toEqual([]);
   }
   await page.setViewportSize({ width: 1440, height: 900 });
 }
@@ -160,9 +170,8 @@ test('signing in fits every window', async ({ page }) => {
 });
 
 test('the dispatcher’s screens fit every window', async ({ browser }) => {
-  const page = await enter(browser, ({ email }) => email.startsWith('jonas'), STILL);
+  const page = await enter(browser, ({ email }) => email.startsWith('jonas'), STILL, '/board');
   const rows = page.getByRole('grid', { name: 'Queue of calls by urgency' });
-  await page.goto('/board');
   await expect(rows.getByRole('row').nth(1)).toBeVisible();
   await fits(page, 'board');
 
@@ -213,8 +222,7 @@ test('the dispatcher’s screens fit every window', async ({ browser }) => {
 });
 
 test('the owner’s screens fit every window', async ({ browser }) => {
-  const page = await enter(browser, ({ role }) => role === 'owner', STILL);
-  await page.goto('/drain');
+  const page = await enter(browser, ({ role }) => role === 'owner', STILL, '/drain');
   await page.getByRole('button', { name: 'Show the figures as a table' }).click();
   await fits(page, 'drain');
   for (const part of ['storms', 'settings', 'technicians', 'accounts', 'trail']) {
@@ -226,7 +234,7 @@ test('the owner’s screens fit every window', async ({ browser }) => {
 });
 
 test('the technician’s day fits the smallest phone', async ({ browser }) => {
-  const desk = await enter(browser, ({ email }) => email.startsWith('jonas'), STILL);
+  const desk = await enter(browser, ({ email }) => email.startsWith('jonas'), STILL, '/password');
   const phone = await enter(browser, ({ email }) => email.startsWith('piet@'), PHONE);
   const sizes = [
     { width: 390, height: 844 },
