@@ -13,8 +13,6 @@ export const CHECKS = [
     args: [bin('prettier', 'bin', 'prettier.cjs'), '--check', '--log-level', 'warn', '.'],
   },
   { name: 'types: shared', args: [TSC, '-p', 'shared/tsconfig.json'] },
-  // One program for all the rest; the build of the client looks at its templates besides.
-  { name: 'types', args: [TSC, '-p', 'test/tsconfig.json'] },
   {
     name: 'directions',
     args: [
@@ -31,16 +29,8 @@ export const CHECKS = [
       ],
     ],
   },
-  {
-    name: 'lint',
-    args: [
-      bin('eslint', 'bin', 'eslint.js'),
-      '-c',
-      'test/eslint.config.mjs',
-      '--max-warnings=0',
-      '.',
-    ],
-  },
+  // The build of the client looks at the types of its templates besides.
+  { name: 'types and lint', args: [path.join(root, 'server', 'setup', 'types-and-lint.mjs')] },
 ];
 
 /** Runs one check. */

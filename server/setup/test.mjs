@@ -61,12 +61,13 @@ async function prepareMachine(parts) {
 }
 
 /**
- * Two cores: first, side by side, what only thinks (the checks and the build; rules and components),
- * then alone what watches the clock (races on the server; four people in a browser).
+ * Two cores, kept busy to the end. What only thinks (checks, then the build) runs beside the rules and
+ * the components, and goes on beside the server's tests, which wait now and then. The browser stories
+ * are heaviest, so they come last and alone.
  */
 async function runParts(parts, options) {
   const part = (name, work) => (parts.has(name) ? measure(name, work) : undefined);
-  const checks = async () => {
+  const checksAndBuild = async () => {
     for (const check of parts.has('checks') ? CHECKS : []) {
       await measure(check.name, async () => {
         const { passed, output } = await runCheck(check);
@@ -80,12 +81,12 @@ async function runParts(parts, options) {
     }
     await part('build', build);
   };
-  const quick = async () => {
+  const jestParts = async () => {
     await part('domain', () => runJest('domain', { workers: 1, ...options }));
     await part('client', () => runJest('client', { workers: 1, ...options }));
+    await part('server', () => runJest('server', { workers: 2, ...options }));
   };
-  await Promise.all([checks(), quick()]);
-  await part('server', () => runJest('server', { workers: 2, ...options }));
+  await Promise.all([checksAndBuild(), jestParts()]);
   // The stories run against the built product; a stale build must not pass for a new one.
   if (parts.has('browser') && !parts.has('build')) await measure('build', build);
   await part('browser', () => runBrowserStories(options));
