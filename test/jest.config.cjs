@@ -18,11 +18,15 @@ const swc = [
 ];
 /** What the build and the set-up leave behind is no part of the program. */
 const modulePathIgnorePatterns = ['<rootDir>/.data/', '<rootDir>/dist/'];
+/** For a test that hangs: a busy machine is no fault, so no honest test should come near it. */
+const testTimeout = 120_000;
 const shared = { '^@shared/(.*)$': '<rootDir>/shared/$1' };
 
 module.exports = {
   rootDir: root,
   maxWorkers: 2,
+  testSequencer: '<rootDir>/test/sequencer.cjs',
+  testTimeout,
   projects: [
     {
       displayName: 'domain',

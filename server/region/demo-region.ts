@@ -20,10 +20,15 @@ const DEMO_NAME = 'Skerry County';
 /** The company's setting; the county itself lies in no country. */
 const DEMO_TIME_ZONE = 'America/New_York';
 
-/** Makes the demo county's region unless it is there. */
+/**
+ * Makes the demo county's region unless it is there.
+ *
+ * @param countyPbf the county, from whoever has it already: making it takes seconds
+ */
 export async function ensureDemoRegion(
   tilesFolder: string,
   onProgress?: (step: ImportStep) => void,
+  countyPbf: () => Uint8Array = () => writeCounty({ seed: DEMO_SEED }),
 ): Promise<ImportedRegion> {
   const existing = await findRegion(
     tilesFolder,
@@ -31,7 +36,7 @@ export async function ensureDemoRegion(
   );
   if (existing) return existing;
   return importRegion({
-    pbf: writeCounty({ seed: DEMO_SEED }),
+    pbf: countyPbf(),
     outFolder: tilesFolder,
     name: DEMO_NAME,
     timeZone: DEMO_TIME_ZONE,

@@ -26,7 +26,6 @@ async function main(): Promise<void> {
   const pockets = createPocketsWorker(path.resolve('dist/server/pockets-worker.js'));
   const port = 4395;
   const server = await startServer({
-    suffix: '_bench_board',
     port,
     config: withClient(port),
     context: { region, pockets, log: pino({ level: 'error' }), clock: () => Date.now() },

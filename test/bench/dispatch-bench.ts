@@ -20,7 +20,7 @@ const CLIENTS = 8;
  * sync time is measured beside it, to compare with.
  */
 async function main(): Promise<void> {
-  const server = await startServer({ suffix: '_bench_dispatch' });
+  const server = await startServer();
   const desks = await Promise.all(
     Array.from({ length: CLIENTS }, () => server.signIn('dispatcher')),
   );

@@ -36,7 +36,6 @@ async function main(): Promise<void> {
   const roads = new RoadsClient(roadsThread);
   await roads.switchTo({ folder: imported.folder, name: imported.manifest.name });
   const server = await startServer({
-    suffix: '_bench_map',
     port: PORT,
     config: withClient(PORT),
     context: { region, pockets, roads, log: pino({ level: 'error' }), clock: () => Date.now() },

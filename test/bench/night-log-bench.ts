@@ -17,7 +17,7 @@ async function main(): Promise<void> {
   const region = await openRegion(imported);
   const { addresses } = await readAddressBook(imported.folder);
   const logReader = createLogReader(path.resolve('dist/server/import-worker.js'));
-  const server = await startServer({ suffix: '_bench_log', context: { region, logReader } });
+  const server = await startServer({ context: { region, logReader } });
   const from = server.now();
   server.setNow(from + 12 * HOUR_MS);
   const mara = await server.signIn('dispatcher');

@@ -182,7 +182,6 @@ describe('suggestions of the server', () => {
   let server: TestServer;
   beforeAll(async () => {
     server = await startServer({
-      suffix: '_addresses',
       context: {
         region: {
           ...TEST_REGION,

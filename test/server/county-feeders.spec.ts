@@ -11,8 +11,6 @@ import { feedersOf } from '../../server/region/feeders';
 import { readExtract } from '../../server/region/osm-extract';
 import { demoCountyPbf } from '../support/demo-county';
 
-jest.setTimeout(180_000);
-
 let power: FeederMap;
 let addresses: AddressPoint[];
 

@@ -4,8 +4,6 @@ import { demoCountyPbf } from '../support/demo-county';
 import { readAll, type ReadOsm } from '../support/region-files';
 import { roadMeasures, type RoadMeasures } from '../support/road-measures';
 
-jest.setTimeout(180_000);
-
 let osm: ReadOsm;
 let measures: RoadMeasures;
 

@@ -66,7 +66,7 @@ describe('a board that was away', () => {
     socket.close();
     const broken = await brokenInvariants(server.sequelize);
     expect(broken.filter(({ invariant }) => !invariant.startsWith('no-text-is'))).toEqual([]);
-  }, 120_000);
+  });
 
   /** Takes a call, and settles it, puts it on a route, or puts it there and takes it off again. */
   let turn = 0;
@@ -98,7 +98,7 @@ describe('a board that was away', () => {
     expect(await resumed(mara, n)).toEqual({ kind: 'start-over' });
     expect((await resumed(mara, n + 1)).kind).toBe('changes');
     expect(await resumed(mara, n + 2_000)).toEqual({ kind: 'start-over' });
-  }, 20_000);
+  });
 
   /** Changes that say nothing; their number is what matters. */
   async function grow(from: number, by: number): Promise<void> {
@@ -189,5 +189,5 @@ describe('a phone that was away', () => {
       );
       if (!wasTheos) expect(told).not.toContain(id);
     }
-  }, 60_000);
+  });
 });

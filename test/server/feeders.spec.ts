@@ -164,7 +164,6 @@ describe('GET /api/region/feeders', () => {
   beforeAll(async () => {
     power = await read(hamletWith([square(100, -47.7, 36.399, 0.01, area('H-7'))]));
     server = await startServer({
-      suffix: '_feeders',
       context: { region: { ...TEST_REGION, power } },
     });
   });

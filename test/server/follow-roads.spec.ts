@@ -22,7 +22,7 @@ let roads: ReturnType<typeof twoBridges>;
 
 beforeAll(async () => {
   roads = twoBridges();
-  lab = await startTextLab('_follow_roads', { roads });
+  lab = await startTextLab({ roads });
   server = lab.server;
 });
 afterAll(() => lab.close());
@@ -103,7 +103,7 @@ describe('a road that is closed', () => {
     expect(told()[1]?.body).toContain('Juno');
     const texts = await MessageRecord.findAll({ where: { milestone: 'eta-moved' } });
     expect(texts).toHaveLength(1);
-  }, 30_000);
+  });
 
   it('leaves accepted stops where they are and gives them their new times', async () => {
     await follow();
@@ -364,7 +364,7 @@ describe('speeds', () => {
     expect(await shown()).toMatchObject({ drives: 0, classes: [] });
     await follow();
     expect(roads.followed.factors.byClass).toEqual({});
-  }, 60_000);
+  });
 
   it('are not learned from a drive that nobody saw begin', async () => {
     await follow();

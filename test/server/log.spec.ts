@@ -8,7 +8,7 @@ const lines: string[] = [];
 let server: TestServer;
 beforeAll(async () => {
   const log = makeLog('debug', { write: (line) => void lines.push(line) });
-  server = await startServer({ suffix: '_log', context: { log } });
+  server = await startServer({ context: { log } });
 });
 afterAll(() => server.close());
 beforeEach(() => lines.splice(0));

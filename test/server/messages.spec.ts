@@ -16,7 +16,7 @@ import {
 
 let lab: TextLab;
 let mara: TestPerson;
-beforeAll(async () => (lab = await startTextLab('_messages')));
+beforeAll(async () => (lab = await startTextLab()));
 afterAll(() => lab.close());
 beforeEach(async () => {
   await lab.reset();

@@ -6,7 +6,7 @@ import { select } from '../../server/db/sql';
 import { freshDatabase } from '../support/database';
 
 let sequelize: Sequelize;
-beforeAll(async () => (sequelize = await freshDatabase('_migrations')));
+beforeAll(async () => (sequelize = await freshDatabase()));
 afterAll(() => sequelize.close());
 
 const tables = async () =>

@@ -16,7 +16,7 @@ import {
 import { textSender } from '../support/texts-sender';
 
 let lab: TextLab;
-beforeAll(async () => (lab = await startTextLab('_outbox')));
+beforeAll(async () => (lab = await startTextLab()));
 afterAll(() => lab.close());
 beforeEach(() => lab.reset());
 
@@ -24,6 +24,9 @@ const fresh = async (id: string) => MessageRecord.findByPk(id, { rejectOnEmpty: 
 const stateOf = async (id: string) => (await fresh(id)).state;
 const becomes = (id: string, state: string) =>
   until(async () => (await stateOf(id)) === state, `the text to be ${state}`);
+/** Until the service has been asked for a text of unknown fate, with this result. */
+const isToldOf = (id: string, words: string) =>
+  until(async () => (await fresh(id)).trouble?.includes(words) ?? false, `"${words}"`);
 const timesAccepted = (id: string) => lab.accepted().filter((one) => one.outbox === id).length;
 const needPerson = async (): Promise<string[]> => {
   const mara = await lab.server.signIn('dispatcher');
@@ -53,7 +56,8 @@ describe('each way in which a send can go wrong', () => {
     lab.work();
     await becomes(id, state);
     // Time enough for a second send, had there been one.
-    await pause(state === 'unknown' ? 2_500 : 300);
+    if (state === 'unknown') await isToldOf(id, 'does not list it');
+    else await pause(300);
     expect([await stateOf(id), timesAccepted(id)]).toEqual([state, accepted]);
     expect(await needPerson()).toEqual(state === 'unknown' ? [id] : []);
   });
@@ -82,7 +86,7 @@ describe('each way in which a send can go wrong', () => {
     });
     const { id } = await aWaitingText(lab.server);
     lab.work();
-    await until(async () => (await fresh(id)).providerSid !== null, 'the third look', 15_000);
+    await until(async () => (await fresh(id)).providerSid !== null, 'the third look');
     expect(timesAccepted(id)).toBe(1);
   });
 
@@ -93,9 +97,7 @@ describe('each way in which a send can go wrong', () => {
       await aWaitingText(lab.server, { body: 'the same words' }),
     ];
     lab.work();
-    await becomes(one.id, 'unknown');
-    await becomes(two.id, 'unknown');
-    await pause(2_500);
+    for (const { id } of [one, two]) await isToldOf(id, 'Another text with the same words');
     expect(await Promise.all([one, two].map(({ id }) => stateOf(id)))).toEqual([
       'unknown',
       'unknown',
@@ -201,10 +203,9 @@ describe('several workers at once', () => {
     await until(
       async () => (await MessageRecord.count({ where: { state: 'delivered' } })) === 60,
       'all to be delivered',
-      30_000,
     );
     expect(ids.filter((id) => timesAccepted(id) !== 1)).toEqual([]);
-  }, 40_000);
+  });
 });
 
 describe('what may change while a text waits', () => {
@@ -270,7 +271,8 @@ describe('what may change while a text waits', () => {
 
 it('tells the boards of each state, and writes one line of the trail for each', async () => {
   const { id } = await aWaitingText(lab.server);
-  lab.work();
+  // Patient: an answer that is late on a busy machine is another story.
+  lab.work({ sender: lab.sender(10_000), leaseMs: 60_000 });
   await becomes(id, 'delivered');
   const rows = await select<{ change: string }>(
     lab.server.sequelize,
@@ -279,7 +281,8 @@ it('tells the boards of each state, and writes one line of the trail for each', 
   expect(rows.map((row) => row.change)).toEqual(['sending', 'sent', 'delivered']);
   const [audit] = await select<{ n: number }>(
     lab.server.sequelize,
-    'SELECT COUNT(*) AS n FROM audit_entries WHERE entity_id = ?',
+    // Whether the service's "sent" comes before our own is a matter of chance; it changes nothing.
+    "SELECT COUNT(*) AS n FROM audit_entries WHERE entity_id = ? AND summary <> 'a status that was known'",
     [id],
   );
   expect(Number(audit?.n)).toBe(3);

@@ -28,8 +28,8 @@ let theo: Awaited<ReturnType<typeof aTechnician>>;
 let ilse: Awaited<ReturnType<typeof aTechnician>>;
 beforeAll(async () => {
   planner = await startPlanner();
-  server = await startServer({ suffix: '_plans', context: { planner: planner.planner } });
-}, 60_000);
+  server = await startServer({ context: { planner: planner.planner } });
+});
 afterAll(async () => {
   await server.close();
   await planner.close();

@@ -4,9 +4,8 @@ import { fingerprintOf } from '../../server/region/county/fingerprint';
 import { countyToOsm, countyToPbf } from '../../server/region/county/write-county';
 import { DEMO_DATA, DEMO_SEED } from '../../server/region/demo-region';
 import type { OsmNode, OsmWay } from '../../server/region/osm-model';
+import { keepDemoCounty } from '../support/demo-county';
 import { readAll, type ReadOsm } from '../support/region-files';
-
-jest.setTimeout(180_000);
 
 type Spot = readonly [x: number, y: number];
 
@@ -62,7 +61,9 @@ let houses: OsmNode[];
 
 beforeAll(async () => {
   county = makeCounty(DEMO_SEED);
-  osm = await readAll(countyToPbf(county));
+  const pbf = countyToPbf(county);
+  keepDemoCounty(pbf);
+  osm = await readAll(pbf);
   roads = osm.ways.filter(({ tags }) => tags['highway'] !== undefined);
   houses = [...osm.nodes.values()].filter(
     ({ tags }) => tags['addr:housenumber'] !== undefined && tags['name'] === undefined,

@@ -6,10 +6,9 @@ import type { Refusal } from '@shared/domain/errors';
 import { RegionFiles } from '../../server/region/region-files';
 import { importRegion } from '../../server/region/import-region';
 import { demoCountyPbf } from '../support/demo-county';
+import { hamletPbf } from '../support/hamlet';
 import { importerProgram, type ImporterProgram } from '../support/importer-program';
 import { temporaryFolder } from '../support/region-files';
-
-jest.setTimeout(120_000);
 
 const folder = temporaryFolder();
 const small = join(folder.path, 'small');
@@ -41,15 +40,15 @@ afterAll(() => {
   it('ends an import in words, leaves nothing, and lets the next one go on', async () => {
     const pbf = join(folder.path, 'county.osm.pbf');
     writeFileSync(pbf, demoCountyPbf());
-    const order = { pbf, name: 'County', timeZone: 'UTC', attribution: 'invented' };
+    const order = { name: 'County', timeZone: 'UTC', attribution: 'invented' };
     const running = program.port.start(
-      { ...order, outFolder: join(small, 'tiles') },
+      { ...order, pbf, outFolder: join(small, 'tiles') },
       () => undefined,
     );
     await expect(running.key).rejects.toThrow(full);
     expect(readdirSync(join(small, 'tiles'))).toEqual([]);
-    const { manifest } = await importRegion({ ...order, outFolder: join(folder.path, 'tiles') });
-    expect(manifest.counts.tiles).toBeGreaterThan(500);
+    const next = { ...order, pbf: hamletPbf(), outFolder: join(folder.path, 'tiles') };
+    expect((await importRegion(next)).manifest.counts.tiles).toBeGreaterThan(0);
   });
 
   it('refuses a file that has no room, and leaves nothing of it', async () => {

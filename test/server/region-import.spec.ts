@@ -4,7 +4,7 @@ import express from 'express';
 import request from 'supertest';
 import { AddressIndex } from '../../server/region/address-index';
 import type { AddressBook } from '../../server/region/address-points';
-import { ensureDemoRegion, listRegions } from '../../server/region/demo-region';
+import { listRegions } from '../../server/region/demo-region';
 import { importRegion, type ImportedRegion } from '../../server/region/import-region';
 import { readFeeders } from '../../server/region/feeders-file';
 import { openRegion } from '../../server/region/open-region';
@@ -12,9 +12,8 @@ import type { ImportStep } from '../../server/region/region-making';
 import { writeOsmPbf } from '../../server/region/osm-pbf-writer';
 import { readAddressBook } from '../../server/region/region-data';
 import { tileRoutes } from '../../server/region/serve-tiles';
+import { demoRegion, keepDemoRegion } from '../support/demo-county';
 import { decodeTile, temporaryFolder } from '../support/region-files';
-
-jest.setTimeout(180_000);
 
 const tiles = temporaryFolder();
 const steps: ImportStep[] = [];
@@ -22,7 +21,8 @@ let demo: ImportedRegion;
 let book: AddressBook;
 
 beforeAll(async () => {
-  demo = await ensureDemoRegion(tiles.path, (step) => steps.push(step));
+  demo = await demoRegion(tiles.path, (step) => steps.push(step));
+  keepDemoRegion(demo);
   book = await readAddressBook(demo.folder);
 });
 afterAll(() => tiles.remove());
@@ -123,7 +123,7 @@ describe('the demo region', () => {
   it('is used as it is the second time', async () => {
     const before = statSync(join(demo.folder, 'region.json')).mtimeMs;
     const done: ImportStep[] = [];
-    const again = await ensureDemoRegion(tiles.path, (step) => done.push(step));
+    const again = await demoRegion(tiles.path, (step) => done.push(step));
     expect(done).toEqual([]);
     expect(again.folder).toBe(demo.folder);
     expect(statSync(join(demo.folder, 'region.json')).mtimeMs).toBe(before);

@@ -33,7 +33,6 @@ const extracts = path.join(data ?? '', 'osm');
     program = await importerProgram('real');
     const demo = await demoRegionIn(tiles);
     server = await startServer({
-      suffix: '_real',
       config: {
         tilesFolder: tiles,
         dataFolder: folder.path,

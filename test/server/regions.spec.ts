@@ -19,8 +19,6 @@ import { importerProgram, type ImporterProgram } from '../support/importer-progr
 import { temporaryFolder } from '../support/region-files';
 import { startServer, type TestPerson, type TestServer } from '../support/server';
 
-jest.setTimeout(120_000);
-
 const folder = temporaryFolder();
 const tiles = join(folder.path, 'tiles');
 const laid = join(folder.path, 'laid');
@@ -40,7 +38,6 @@ beforeAll(async () => {
     attribution: 'invented',
   });
   server = await startServer({
-    suffix: '_regions',
     config: {
       tilesFolder: tiles,
       dataFolder: join(folder.path, 'data'),

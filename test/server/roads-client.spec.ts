@@ -54,7 +54,7 @@ beforeAll(async () => {
     logLevel: 'error',
   });
   await stop();
-}, 60_000);
+});
 afterAll(() => {
   folder.remove();
   rmSync(bundle, { recursive: true, force: true });

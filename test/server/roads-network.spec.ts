@@ -19,8 +19,6 @@ import { temporaryFolder } from '../support/region-files';
 import { RoadOracle } from '../support/road-oracle';
 import { timedRoads } from '../support/timed-roads';
 
-jest.setTimeout(120_000);
-
 const way = (tags: Tags) => roadWayOf({ highway: 'residential', ...tags });
 
 describe('what a way is to a van', () => {

@@ -18,10 +18,9 @@ beforeAll(async () => {
   planner = await startPlanner();
   made = await openMadeRoads(wholeGrid(60));
   server = await startServer({
-    suffix: '_roads',
     context: { planner: planner.planner, roads: made.roads },
   });
-}, 60_000);
+});
 afterAll(async () => {
   await server.close();
   await planner.close();

@@ -15,8 +15,6 @@ import { temporaryFolder } from '../support/region-files';
 import { hasRoutino, Routino } from '../support/routino';
 import { timedRoads } from '../support/timed-roads';
 
-jest.setTimeout(180_000);
-
 const PAIRS = 50;
 /** Shorter drives are mostly the rounding of what is printed. */
 const LEAST_MINUTES = 4;

@@ -23,7 +23,7 @@ let theo: Awaited<ReturnType<typeof aTechnician>>;
 let watch: ReturnType<typeof newWatch>;
 beforeAll(async () => {
   planner = await startPlanner();
-  server = await startServer({ suffix: '_rolling', context: { planner: planner.planner } });
+  server = await startServer({ context: { planner: planner.planner } });
 }, 60_000);
 afterAll(async () => {
   await server.close();

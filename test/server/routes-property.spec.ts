@@ -19,7 +19,7 @@ let desk: TestPerson[];
 let vans: Awaited<ReturnType<typeof aTechnician>>[];
 beforeAll(async () => {
   planner = await startPlanner();
-  server = await startServer({ suffix: '_property', context: { planner: planner.planner } });
+  server = await startServer({ context: { planner: planner.planner } });
   desk = [
     await server.signIn('dispatcher', 'Mara Quill'),
     await server.signIn('dispatcher', 'Jonas Fenwick'),
@@ -29,7 +29,7 @@ beforeAll(async () => {
     await aTechnician(server, 'Ilse Rowan', 100),
     await aTechnician(server, 'Bram Hollis', 100),
   ];
-}, 60_000);
+});
 afterAll(async () => {
   await server.close();
   await planner.close();
@@ -399,7 +399,7 @@ describe('any sequence of commands by two dispatchers and three technicians', ()
       }),
       { numRuns: 60, interruptAfterTimeLimit: BUDGET_MS, examples: [[WHOLE_NIGHT]] },
     );
-  }, 90_000);
+  });
 
   it('has tried every command with success, and refusals too', () => {
     const untried = [...BY_DESK, ...BY_VAN, 'refused'].filter((verb) => !worked.has(verb));

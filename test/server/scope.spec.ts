@@ -198,7 +198,7 @@ describe('what a technician is shown', () => {
     );
     phone.close();
     board.close();
-  }, 20_000);
+  });
 
   it('is not the board: asking for it ends the socket, and asking for a day gets their own', async () => {
     await wrensStop();

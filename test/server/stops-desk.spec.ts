@@ -24,7 +24,7 @@ let server: TestServer;
 let mara: TestPerson;
 let theo: Awaited<ReturnType<typeof aTechnician>>;
 let ilse: Awaited<ReturnType<typeof aTechnician>>;
-beforeAll(async () => (server = await startServer({ suffix: '_desk' })));
+beforeAll(async () => (server = await startServer()));
 afterAll(() => server.close());
 beforeEach(async () => {
   await server.reset();

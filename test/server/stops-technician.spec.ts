@@ -11,7 +11,7 @@ import { NIGHT, startServer, type TestPerson, type TestServer } from '../support
 let server: TestServer;
 let mara: TestPerson;
 let theo: Awaited<ReturnType<typeof aTechnician>>;
-beforeAll(async () => (server = await startServer({ suffix: '_stops' })));
+beforeAll(async () => (server = await startServer()));
 afterAll(() => server.close());
 beforeEach(async () => {
   await server.reset();

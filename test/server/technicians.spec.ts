@@ -19,7 +19,7 @@ import { NIGHT, startServer, type TestPerson, type TestServer } from '../support
 let server: TestServer;
 let mara: TestPerson;
 let ines: TestPerson;
-beforeAll(async () => (server = await startServer({ suffix: '_technicians' })));
+beforeAll(async () => (server = await startServer()));
 afterAll(() => server.close());
 beforeEach(async () => {
   await server.reset();

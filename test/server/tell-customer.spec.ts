@@ -16,7 +16,6 @@ let server: TestServer;
 const woken = { times: 0 };
 beforeAll(async () => {
   server = await startServer({
-    suffix: '_tell',
     context: { wakeOutbox: () => (woken.times += 1) },
   });
 });

@@ -10,7 +10,6 @@ import { Board, boardOf, hashOf } from '../support/pictures';
 import { aTechnician, aWaitingCall, put } from '../support/routes';
 import { browser, NIGHT, startServer, type TestPerson, type TestServer } from '../support/server';
 
-const SUFFIX = '_two';
 const CALLS = 50;
 /** By then the claims of whoever took the calls have lapsed. */
 const LATER = NIGHT + HOUR_MS;
@@ -21,10 +20,10 @@ let here: TestServer;
 let others: OtherServers;
 let there: OtherServer;
 beforeAll(async () => {
-  here = await startServer({ suffix: SUFFIX });
-  others = await otherServers(SUFFIX);
+  here = await startServer();
+  others = await otherServers();
   there = await others.start({ now: LATER });
-}, 60_000);
+});
 afterAll(async () => {
   await others.close();
   await here.close();
@@ -123,7 +122,7 @@ describe('two servers on one database', () => {
     expect(Number(stops?.n)).toBe(CALLS);
     expect(await invariants()).toEqual([]);
     for (const socket of sockets) socket.close();
-  }, 120_000);
+  });
 
   it('answer a command that was sent to both with one reply, and apply it once', async () => {
     const mara = await here.signIn('dispatcher');
@@ -165,5 +164,5 @@ describe('two servers on one database', () => {
     // The other server may have told of the call before.
     expect(heard.filter((n) => n > last)).toEqual([]);
     expect((await overThere(jonas).call('me')).body).toEqual({ me: null });
-  }, 20_000);
+  });
 });

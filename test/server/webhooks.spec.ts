@@ -16,7 +16,7 @@ import { aWaitingText, startTextLab, takeACall, type TextLab, until } from '../s
 import { ACCOUNT, OURS, TOKEN } from '../support/texts-sender';
 
 let lab: TextLab;
-beforeAll(async () => (lab = await startTextLab('_hooks')));
+beforeAll(async () => (lab = await startTextLab()));
 afterAll(() => lab.close());
 beforeEach(() => lab.reset());
 

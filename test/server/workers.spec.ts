@@ -54,7 +54,7 @@ beforeAll(async () => {
     logLevel: 'error',
   });
   await stop();
-}, 60_000);
+});
 
 afterAll(() => rmSync(folder, { recursive: true, force: true }));
 
@@ -259,7 +259,7 @@ describe('the planner worker', () => {
     await expect(endless).rejects.toMatchObject({ failure: 'cancelled' });
     const next = await client.run({ ...stormMorning(20, 2), iterations: 10 });
     expect(next.plan.iterations).toBe(10);
-  }, 30_000);
+  });
 
   it('refuses a problem that contradicts itself and a plan without any budget', async () => {
     const client = planner();

@@ -1,8 +1,8 @@
 import type { ChildProcess } from 'node:child_process';
 import { mkdirSync, readdirSync, rmSync } from 'node:fs';
 import path from 'node:path';
-import { build } from 'esbuild';
 import { createRegionImporter, type RegionImporterPort } from '../../server/region/region-importer';
+import { bundleProgram } from './bundle-program';
 
 const ROOT = path.resolve(__dirname, '../..');
 
@@ -21,15 +21,7 @@ export async function importerProgram(name: string): Promise<ImporterProgram> {
   const folder = path.join(ROOT, '.data', `importer-program-${String(process.pid)}-${name}`);
   const program = path.join(folder, 'import-program.cjs');
   mkdirSync(folder, { recursive: true });
-  await build({
-    entryPoints: [path.join(ROOT, 'server/region/import-program.ts')],
-    outfile: program,
-    bundle: true,
-    platform: 'node',
-    packages: 'external',
-    tsconfig: path.join(ROOT, 'tsconfig.json'),
-    logLevel: 'error',
-  });
+  await bundleProgram('server/region/import-program.ts', program);
   let running: ChildProcess | null = null;
   return {
     port: createRegionImporter(program, (child) => (running = child)),

@@ -2,8 +2,8 @@ import { type ChildProcess, spawn } from 'node:child_process';
 import { once } from 'node:events';
 import { mkdirSync, rmSync } from 'node:fs';
 import path from 'node:path';
-import { build } from 'esbuild';
 import type { Instant } from '@shared/domain/instant';
+import { bundleProgram } from './bundle-program';
 import { testDatabase } from './database';
 
 const ROOT = path.resolve(__dirname, '../..');
@@ -29,20 +29,12 @@ export interface OtherServers {
   close(): Promise<void>;
 }
 
-export async function otherServers(suffix: string): Promise<OtherServers> {
+export async function otherServers(): Promise<OtherServers> {
   // Inside the repository, so that the bundle finds its packages.
-  const folder = path.join(ROOT, '.data', `server-program-${String(process.pid)}${suffix}`);
+  const folder = path.join(ROOT, '.data', `server-program-${String(process.pid)}`);
   const program = path.join(folder, 'server-program.cjs');
   mkdirSync(folder, { recursive: true });
-  await build({
-    entryPoints: [path.join(ROOT, 'test/support/server-program.ts')],
-    outfile: program,
-    bundle: true,
-    platform: 'node',
-    packages: 'external',
-    tsconfig: path.join(ROOT, 'tsconfig.json'),
-    logLevel: 'error',
-  });
+  await bundleProgram('test/support/server-program.ts', program);
   const running = new Set<OtherServer>();
 
   return {
@@ -51,7 +43,7 @@ export async function otherServers(suffix: string): Promise<OtherServers> {
         stdio: ['ignore', 'pipe', isQuiet ? 'ignore' : 'inherit'],
         env: {
           ...process.env,
-          SERVER_PROGRAM: JSON.stringify({ database: testDatabase(suffix), now, dieAfter }),
+          SERVER_PROGRAM: JSON.stringify({ database: testDatabase(), now, dieAfter }),
         },
       });
       const gone = once(child, 'exit');

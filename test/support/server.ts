@@ -11,15 +11,13 @@ import type { Instant } from '@shared/domain/instant';
 import { createApp, type App, type GivenContext } from '../../server/app';
 import type { Config } from '../../server/config';
 import type { Context } from '../../server/context';
-import { hashPassword } from '../../server/staff/passwords';
-import { UserRecord } from '../../server/staff/user-record';
 import { StormRecord } from '../../server/storms/storm-record';
-import { TechnicianRecord } from '../../server/technicians/technician-record';
+import { Accounts, PASSWORD } from './accounts';
 import { ORIGIN, testConfig } from './config';
 import { emptyAll, freshDatabase, testDatabase } from './database';
 import { TEST_REGION } from './region';
 
-export const PASSWORD = 'a heron on the sandbar';
+export { PASSWORD };
 /** 2026-10-03 06:00 UTC, some night of a storm. */
 export const NIGHT: Instant = Date.UTC(2026, 9, 3, 6);
 
@@ -34,7 +32,7 @@ export interface TestServer {
   /** Starts again with empty tables, an open storm and nobody known. */
   reset(): Promise<void>;
   readonly stormId: string;
-  /** Makes an account and signs it in. */
+  /** Makes an account and signs it in; see Accounts for what that saves. */
   signIn(role: Role, name?: string): Promise<TestPerson>;
   close(): Promise<void>;
 }
@@ -57,21 +55,18 @@ export interface TestPerson {
   socket(): Promise<Socket<ServerEvents, ClientEvents>>;
 }
 
-const PLACE: readonly [number, number] = TEST_REGION.dto.centre;
-
 /** The whole server on a real database and a free port, with a clock that stands until it is set. */
 export async function startServer(
   options: {
-    suffix?: string;
     port?: number;
     config?: Partial<Config>;
     context?: Partial<GivenContext>;
   } = {},
 ): Promise<TestServer> {
-  const sequelize = await freshDatabase(options.suffix);
+  const sequelize = await freshDatabase();
   let now = NIGHT;
   let stormId = '';
-  const config: Config = { ...testConfig(testDatabase(options.suffix)), ...options.config };
+  const config: Config = { ...testConfig(testDatabase()), ...options.config };
   const unused = { run: () => Promise.reject(new Error('this test has no such worker')) };
   const app = await createApp({
     config,
@@ -90,46 +85,16 @@ export async function startServer(
   await new Promise<void>((resolve) => app.http.listen(options.port ?? 0, '127.0.0.1', resolve));
   const url = `http://127.0.0.1:${String((app.http.address() as AddressInfo).port)}`;
   const origin = config.http.publicUrl;
+  const accounts = new Accounts(sequelize, url, origin);
 
   const reset = async (): Promise<void> => {
     await emptyAll(sequelize);
+    accounts.forgetPresent();
     now = NIGHT;
     stormId = randomUUID();
     await StormRecord.create({ id: stormId, name: 'Test storm', openedAt: new Date(now) });
   };
   await reset();
-
-  const signIn = async (role: Role, name: string = role): Promise<TestPerson> => {
-    const technicianId = role === 'technician' ? randomUUID() : null;
-    if (technicianId)
-      await TechnicianRecord.create({
-        id: technicianId,
-        name,
-        phone: '+12525550120',
-        skills: ['electrical', 'sealed-system', 'commercial'],
-        van: {},
-        startLon: PLACE[0],
-        startLat: PLACE[1],
-      });
-    const userId = randomUUID();
-    const signInName = `${name.toLowerCase().replace(/\W+/g, '.')}.${userId.slice(0, 4)}@example.com`;
-    await UserRecord.create({
-      id: userId,
-      name,
-      signInName,
-      role,
-      technicianId,
-      passwordHash: await sharedHash(),
-    });
-    const entered = await request(url)
-      .post('/api/session')
-      .set('Origin', origin)
-      .send({ signInName, password: PASSWORD });
-    if (entered.status !== 200) throw new Error(`sign-in failed: ${entered.text}`);
-    const set = entered.get('Set-Cookie') ?? [];
-    const cookies = set.map((cookie) => cookie.split(';')[0]).join('; ');
-    return { userId, technicianId, cookies, ...browser(url, cookies, origin) };
-  };
 
   return {
     app,
@@ -142,7 +107,10 @@ export async function startServer(
     get stormId() {
       return stormId;
     },
-    signIn,
+    signIn: async (role, name = role) => {
+      const { userId, technicianId, cookies } = await accounts.signIn(role, name);
+      return { userId, technicianId, cookies, ...browser(url, cookies, origin) };
+    },
     close: async () => {
       await app.close();
       await sequelize.close();
@@ -184,7 +152,3 @@ export function browser(
       }),
   };
 }
-
-let hashed: Promise<string> | undefined;
-/** Hashing is slow on purpose; once is enough for all accounts of a test run. */
-const sharedHash = (): Promise<string> => (hashed ??= hashPassword(PASSWORD));

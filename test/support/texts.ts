@@ -46,7 +46,6 @@ export interface TextLab {
 
 /** The product, the stand-in of the text service, and a proxy between the two. */
 export async function startTextLab(
-  suffix: string,
   context: Partial<GivenContext> = {},
   /** How long each step of a text takes at the service, and so how late its callbacks come. */
   stepMs = 20,
@@ -72,7 +71,6 @@ export async function startTextLab(
   };
   setNow(AFTERNOON);
   const server = await startServer({
-    suffix,
     config: {
       http: { host: '127.0.0.1', port: 0, publicUrl: proxy.url, trustProxyHops: 1 },
       texts: { account: ACCOUNT, token: TOKEN, baseUrl: fake.url, from: OURS },
@@ -206,10 +204,14 @@ export function aWaitingText(
   });
 }
 
+/** Only what will never hold takes so long, also on a busy machine. */
+const PATIENCE_MS = 60_000;
+
+/** Waits until something holds. */
 export async function until(
   holds: () => boolean | Promise<boolean>,
   what: string,
-  withinMs = 8_000,
+  withinMs = PATIENCE_MS,
 ): Promise<void> {
   const deadline = Date.now() + withinMs;
   while (!(await holds())) {
