@@ -19,12 +19,6 @@ export function momentBandOf(moments: readonly number[]): Band<number | null> {
   return { low: known(low), middle: known(middle), high: known(high) };
 }
 
-export const mapBand = <T, U>(band: Band<T>, change: (value: T) => U): Band<U> => ({
-  low: change(band.low),
-  middle: change(band.middle),
-  high: change(band.high),
-});
-
 function at(sorted: Float64Array, share: number): number {
   if (sorted.length === 0) return 0;
   const place = share * (sorted.length - 1);

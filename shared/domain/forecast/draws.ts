@@ -14,10 +14,6 @@ export class Draws {
     return this.random.unit();
   }
 
-  below(below: number): number {
-    return this.random.below(below);
-  }
-
   /** Mean 0, variance 1: the polar method (Marsaglia and Bray, SIAM Review 6(3), 1964; from memory). */
   normal(): number {
     if (this.spare !== null) {

@@ -1,7 +1,7 @@
 import { HOUR_MS, MINUTE_MS, type Instant } from '../instant';
 import { drawHabits } from './area-rings';
 import { bandOf, momentBandOf, type Band } from './band';
-import { crewOf, NO_CHANGE, type CrewChange } from './crew-change';
+import { crewOf, type CrewChange } from './crew-change';
 import { Draws } from './draws';
 import type { AtStake, ForecastFacts } from './facts';
 import { drawOtherRings } from './other-rings';
@@ -135,9 +135,6 @@ function busiestHour({ calls }: World, now: Instant): number {
   }
   return Math.max(...hours);
 }
-
-export const isNoChange = (change: CrewChange): boolean =>
-  (Object.keys(NO_CHANGE) as (keyof CrewChange)[]).every((key) => change[key] === NO_CHANGE[key]);
 
 const futuresFor = (open: number): number =>
   Math.min(MOST_FUTURES, Math.max(LEAST_FUTURES, Math.round(CALLS_IN_ALL / (open + 100))));

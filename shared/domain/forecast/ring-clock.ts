@@ -45,10 +45,4 @@ export class RingClock {
     const hours = hour + ((left - UNTIL[hour]!) * MEAN) / HOURLY[hour]!;
     return (day * 24 + hours) * HOUR_MS - this.zoneOffsetMs;
   }
-
-  /** How much faster than on average people ring at this moment. */
-  pace(moment: Instant): number {
-    const local = (moment + this.zoneOffsetMs) / HOUR_MS;
-    return HOURLY[Math.floor(local - Math.floor(local / 24) * 24)]! / MEAN;
-  }
 }
