@@ -9,7 +9,9 @@ export interface Posing {
   /** How much more a dollar of medicine counts than a dollar of food. */
   readonly medicineFactor: number;
   /** Parts of a value that count as lost so many seconds after its true deadline (before it, if negative). */
-  readonly deadlineSpread: readonly { readonly seconds: number; readonly share: number }[];
+  readonly deadlineSpread: readonly SpreadPart[];
+  /** The same for medicine: visits before it may take longer than thought, so it is aimed at earlier. */
+  readonly medicineSpread: readonly SpreadPart[];
   /** Seconds before a promised window's end at which a start counts as late. */
   readonly windowMargin: number;
   /** What keeping a promise is worth, in money; so also what it costs to go to nobody there at all. */
@@ -20,28 +22,37 @@ export interface Posing {
   readonly weights: Partial<PlanWeights>;
 }
 
+export interface SpreadPart {
+  readonly seconds: number;
+  readonly share: number;
+}
+
 export const POSING: Posing = {
-  medicineFactor: 10,
+  medicineFactor: 20,
   deadlineSpread: [
-    { seconds: -25 * 60, share: 0.25 },
-    { seconds: -10 * 60, share: 0.25 },
-    { seconds: 0, share: 0.35 },
-    { seconds: 10 * 60, share: 0.15 },
+    { seconds: -20 * 60, share: 0.3 },
+    { seconds: 0, share: 0.7 },
   ],
-  windowMargin: 15 * 60,
-  promiseValue: 200,
+  medicineSpread: [
+    { seconds: -120 * 60, share: 0.1 },
+    { seconds: -60 * 60, share: 0.2 },
+    { seconds: -20 * 60, share: 0.3 },
+    { seconds: 0, share: 0.4 },
+  ],
+  windowMargin: 20 * 60,
+  promiseValue: 400,
   leastGain: 5,
   leastGainShare: 0.002,
-  weights: {},
+  weights: { churnReassign: 40, churnMoved: 20 },
 };
 
 /** The deadlines of one value at stake. */
 export function posedDeadlines(
   stake: PlanDeadline & { readonly isMedicine: boolean },
-  { deadlineSpread, medicineFactor }: Posing = POSING,
+  { deadlineSpread, medicineSpread, medicineFactor }: Posing = POSING,
 ): PlanDeadline[] {
   const value = stake.value * (stake.isMedicine ? medicineFactor : 1);
-  return deadlineSpread.map(({ seconds, share }) => ({
+  return (stake.isMedicine ? medicineSpread : deadlineSpread).map(({ seconds, share }) => ({
     at: stake.at + seconds,
     value: value * share,
   }));

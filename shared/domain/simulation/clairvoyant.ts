@@ -14,7 +14,13 @@ export function clairvoyantOutcome(
   storm: Storm,
   iterations: number,
 ): StormOutcome & { readonly invalidPlans: number } {
-  const posing: Posing = { ...POSING, deadlineSpread: [{ seconds: 0, share: 1 }], windowMargin: 0 };
+  const exact = [{ seconds: 0, share: 1 }];
+  const posing: Posing = {
+    ...POSING,
+    deadlineSpread: exact,
+    medicineSpread: exact,
+    windowMargin: 0,
+  };
   const calls = storm.calls.filter(({ cancelledAt }) => cancelledAt === NEVER);
   const problem: PlanProblem = {
     version: 1,
