@@ -116,7 +116,7 @@ async function lockArea(job: Job, areaId: string, version: number): Promise<Area
 }
 
 function refuseTimes(job: Job, outAt: number, backAt: number | null): void {
-  refuseImpossibleTimes({ powerOutAt: outAt, powerBackAt: backAt }, job.now);
+  refuseImpossibleTimes({ powerOutAt: outAt, powerBackAt: backAt, powerOnSpans: [] }, job.now);
 }
 
 function refuseCrossing(shape: AreaShape): void {

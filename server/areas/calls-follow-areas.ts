@@ -1,5 +1,6 @@
-import { thawClock } from '@shared/domain/thaw/thaw-clock';
-import type { CompartmentFacts } from '@shared/domain/cold-unit';
+import type { CompartmentFacts, CoolingNow, RanBetween } from '@shared/domain/cold-unit';
+import type { Span } from '@shared/domain/thaw/uncooled-time';
+import { woundClock } from '../calls/wound-clock';
 import type { Job } from '../commands/run-command';
 import { change, insert, json, select } from '../db/sql';
 import { areasOf } from './area-of';
@@ -83,10 +84,16 @@ async function windAll(job: Job, callIds: readonly string[], lostAt: number): Pr
       kind: string;
       facts: unknown;
       value_cents: number;
+      cubic_feet: number | null;
+      cooling: CoolingNow;
+      ran_between: RanBetween;
+      power_on_spans: unknown;
     }>(
       job.sequelize,
-      `SELECT k.unit_id, k.place_no, k.kind, k.facts, k.value_cents
-         FROM compartments k JOIN cold_units u ON u.id = k.unit_id WHERE u.call_id IN (?)`,
+      `SELECT k.unit_id, k.place_no, k.kind, k.facts, k.value_cents, u.cubic_feet, u.cooling,
+              u.ran_between, c.power_on_spans
+         FROM compartments k JOIN cold_units u ON u.id = k.unit_id JOIN calls c ON c.id = u.call_id
+        WHERE u.call_id IN (?)`,
       [callIds.slice(i, i + BATCH)],
       job.tx,
     );
@@ -94,21 +101,34 @@ async function windAll(job: Job, callIds: readonly string[], lostAt: number): Pr
     await insert(
       job.sequelize,
       `INSERT INTO compartments
-         (unit_id, place_no, kind, facts, value_cents, at_risk_at, save_by_at, reasons)
+         (unit_id, place_no, kind, facts, value_cents, at_risk_at, earliest_at, likely_at,
+          save_by_at, reasons)
        VALUES ? ON DUPLICATE KEY UPDATE at_risk_at = VALUES(at_risk_at),
+         earliest_at = VALUES(earliest_at), likely_at = VALUES(likely_at),
          save_by_at = VALUES(save_by_at), reasons = VALUES(reasons)`,
       [
         rows.map((row) => {
           const facts = json<CompartmentFacts>(row.facts);
-          const clock = thawClock(facts, { lostAt, restoredAt: null });
+          const powerOnSpans = json<Span[]>(row.power_on_spans);
+          const clock = woundClock(
+            { lostAt, restoredAt: null, powerOnSpans },
+            {
+              cubicFeet: row.cubic_feet,
+              cooling: row.cooling,
+              ranBetween: row.ran_between,
+            },
+            facts,
+          );
           return [
             row.unit_id,
             row.place_no,
             row.kind,
             JSON.stringify(facts),
             row.value_cents,
-            new Date(Math.round(clock.atRiskAt)),
-            clock.saveByAt === null ? null : new Date(Math.round(clock.saveByAt)),
+            clock.atRiskAt,
+            clock.earliestAt,
+            clock.likelyAt,
+            clock.saveByAt,
             JSON.stringify(clock.reasons),
           ];
         }),

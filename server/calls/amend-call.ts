@@ -25,6 +25,7 @@ export async function amendCall(job: Job, callId: string, told: AmendCall): Prom
   if (told.name !== undefined) call.name = told.name;
   if (told.language !== undefined) call.language = told.language;
   if (told.mayText !== undefined) call.mayText = told.mayText;
+  if (told.householdAtRisk !== undefined) call.householdAtRisk = told.householdAtRisk;
   if (told.phone !== undefined) call.phone = told.phone;
   if (told.address !== undefined)
     call.set({
@@ -50,11 +51,12 @@ export async function amendCall(job: Job, callId: string, told: AmendCall): Prom
 
 /** Times follow the outage area where the call says so and there is one. */
 async function setTimes(job: Job, call: CallRecord, told: AmendCall): Promise<boolean> {
-  const before = [call.powerOutAt.getTime(), call.powerBackAt?.getTime()];
+  const before = timesOf(call);
   if (told.timesFrom !== undefined) call.timesFrom = told.timesFrom;
   if (told.powerOutAt !== undefined) call.powerOutAt = new Date(told.powerOutAt);
   if (told.powerBackAt !== undefined)
     call.powerBackAt = told.powerBackAt === null ? null : new Date(told.powerBackAt);
+  if (told.powerOnSpans !== undefined) call.powerOnSpans = [...told.powerOnSpans];
   const { lon, lat } = call;
   const area =
     lon === null || lat === null ? null : await areaAround(job.tx, call.stormId, [lon, lat]);
@@ -67,11 +69,16 @@ async function setTimes(job: Job, call: CallRecord, told: AmendCall): Promise<bo
     {
       powerOutAt: call.powerOutAt.getTime(),
       powerBackAt: call.powerBackAt?.getTime() ?? null,
+      // Told before an outage area's times moved, they may lie outside now; the clock cuts them.
+      powerOnSpans: told.powerOnSpans ?? [],
     },
     job.now,
   );
-  return before[0] !== call.powerOutAt.getTime() || before[1] !== call.powerBackAt?.getTime();
+  return before !== timesOf(call);
 }
+
+const timesOf = ({ powerOutAt, powerBackAt, powerOnSpans }: CallRecord): string =>
+  JSON.stringify([powerOutAt.getTime(), powerBackAt?.getTime(), powerOnSpans]);
 
 async function save(job: Job, call: CallRecord): Promise<void> {
   try {

@@ -38,6 +38,7 @@ export async function detailOf(
     mayText: call.mayText,
     powerOutAt: call.powerOutAt.getTime(),
     powerBackAt: call.powerBackAt?.getTime() ?? null,
+    powerOnSpans: call.powerOnSpans,
     timesFrom: call.timesFrom,
     units: units.map(({ facts }) => facts),
     clockReasons: units.map(({ reasons }) => reasons),

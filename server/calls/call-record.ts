@@ -8,7 +8,9 @@ import {
 } from 'sequelize';
 import { ADDRESS_KINDS, type Address } from '@shared/contract/calls';
 import { CALL_STATES, type CallState } from '@shared/domain/call-state';
+import type { PowerTimes } from '@shared/domain/cold-unit';
 import type { Part, Skill } from '@shared/domain/skills';
+import type { Span } from '@shared/domain/thaw/uncooled-time';
 
 export interface StoredPhoneCheck {
   answers: Record<string, string | number>;
@@ -38,6 +40,8 @@ export class CallRecord extends Model<
   declare areaId: CreationOptional<string | null>;
   declare powerOutAt: Date;
   declare powerBackAt: CreationOptional<Date | null>;
+  /** When the power was back for a while before it went again. */
+  declare powerOnSpans: CreationOptional<Span[]>;
   declare timesFrom: 'area' | 'caller';
   declare restoredAt: CreationOptional<Date | null>;
   declare claimUserId: CreationOptional<string | null>;
@@ -45,6 +49,7 @@ export class CallRecord extends Model<
   declare language: 'en' | 'es';
   declare mayText: boolean;
   declare danger: boolean;
+  declare householdAtRisk: CreationOptional<boolean>;
   declare source: 'phone' | 'night-log' | 'customer';
   declare phoneCheck: StoredPhoneCheck;
   declare skills: Skill[];
@@ -63,6 +68,15 @@ export class CallRecord extends Model<
       unitNo: this.unitNo,
       lonLat: this.lon === null || this.lat === null ? null : [this.lon, this.lat],
       kind: this.addressKind,
+    };
+  }
+
+  /** Cooling counts as lost with the power, at the earliest plausible moment. */
+  powerTimes(): PowerTimes {
+    return {
+      lostAt: this.powerOutAt.getTime(),
+      restoredAt: this.restoredAt?.getTime() ?? null,
+      powerOnSpans: this.powerOnSpans,
     };
   }
 
@@ -86,6 +100,7 @@ export class CallRecord extends Model<
         areaId: DataTypes.UUID,
         powerOutAt: { type: DataTypes.DATE(3), allowNull: false },
         powerBackAt: DataTypes.DATE(3),
+        powerOnSpans: { type: DataTypes.JSON, allowNull: false, defaultValue: [] },
         timesFrom: { type: DataTypes.ENUM('area', 'caller'), allowNull: false },
         restoredAt: DataTypes.DATE(3),
         claimUserId: DataTypes.UUID,
@@ -93,6 +108,7 @@ export class CallRecord extends Model<
         language: { type: DataTypes.ENUM('en', 'es'), allowNull: false },
         mayText: { type: DataTypes.BOOLEAN, allowNull: false },
         danger: { type: DataTypes.BOOLEAN, allowNull: false },
+        householdAtRisk: { type: DataTypes.BOOLEAN, allowNull: false, defaultValue: false },
         source: { type: DataTypes.ENUM('phone', 'night-log', 'customer'), allowNull: false },
         phoneCheck: { type: DataTypes.JSON, allowNull: false },
         skills: { type: DataTypes.JSON, allowNull: false },

@@ -29,6 +29,7 @@ interface StoredCall {
   claim_name: string | null;
   danger: number;
   cut_off: number;
+  household_at_risk: number;
   source: CallRow['source'];
   skills: unknown;
   parts: unknown;
@@ -58,8 +59,8 @@ export async function callRows(
     `SELECT c.id, c.storm_id, c.number, c.state, c.version, c.received_at, c.settled_at, c.name,
             c.phone, c.address_text, c.unit_no, c.lon, c.lat, c.address_kind, c.area_id,
             c.power_out_at, c.restored_at, c.claim_user_id, c.claim_until, u.name AS claim_name,
-            c.danger, c.cut_off, c.source, c.skills, c.parts, s.technician_id, s.eta_at,
-            c.window_from, c.window_to,
+            c.danger, c.cut_off, c.household_at_risk, c.source, c.skills, c.parts, s.technician_id,
+            s.eta_at, c.window_from, c.window_to,
             (SELECT COUNT(*) FROM messages m
               WHERE m.call_id = c.id AND m.direction = 'in' AND m.read_at IS NULL) AS unread
        FROM calls c
@@ -105,6 +106,7 @@ function toRow(call: StoredCall, units: readonly UnitRow[], now: Instant): CallR
     technicianId: call.technician_id,
     etaAt: call.eta_at?.getTime() ?? null,
     danger: Boolean(call.danger),
+    householdAtRisk: Boolean(call.household_at_risk),
     cutOff: Boolean(call.cut_off),
     unreadTexts: Number(call.unread),
     ...(call.window_from && call.window_to

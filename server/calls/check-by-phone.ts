@@ -1,9 +1,19 @@
 import type { z } from 'zod';
-import type { AnswerPhoneCheck, ConcludeCall, ReturnToWaiting } from '@shared/contract/calls';
+import type {
+  AnswerPhoneCheck,
+  ConcludeCall,
+  ReturnToWaiting,
+  UnitFacts,
+} from '@shared/contract/calls';
 import { isSettled, mayFollow } from '@shared/domain/call-state';
 import { Refusal } from '@shared/domain/errors';
-import { CAUSES, LIKELIHOOD_WORDS } from '@shared/domain/phone-check/causes';
-import { conclude } from '@shared/domain/phone-check/phone-check';
+import { UNIT_WORDS } from '@shared/domain/cold-unit';
+import {
+  answersOf,
+  causeWords,
+  concludeCall as concludeUnits,
+} from '@shared/domain/phone-check/call-check';
+import { coolingHeard } from '@shared/domain/phone-check/cooling-heard';
 import type { Job } from '../commands/run-command';
 import { readSettings } from '../office/settings';
 import { leaveRoute, lockRouteOf } from '../routes/leave-route';
@@ -19,6 +29,7 @@ import {
   saveClaim,
 } from './change-call';
 import { readUnits } from './read-units';
+import { storeUnits } from './store-units';
 
 /** Takes or keeps the claim. A call that nobody has checked yet is then being checked. */
 export async function claimCall(job: Job, callId: string): Promise<CallRecord> {
@@ -138,18 +149,32 @@ const OUTCOME_REASONS: Readonly<Record<ConcludeCall['outcome'], string>> = {
   waiting: 'needs a visit',
 };
 
-/** What the answers point to: danger, likely causes, the parts and skills of a visit. */
+/**
+ * What the answers about all units point to: danger, likely causes, the parts and skills of a visit. What
+ * a unit was said to do is a fact of its clocks as well.
+ */
 async function drawConclusions(job: Job, call: CallRecord): Promise<void> {
-  const [unit] = await readUnits(call.id, job.tx);
-  if (!unit) return;
-  const found = conclude(call.phoneCheck.answers, unit.facts);
+  const units = (await readUnits(call.id, job.tx)).map(({ facts }) => facts);
+  const { answers } = call.phoneCheck;
+  const found = concludeUnits(answers, units);
+  if (!found) return;
   call.danger = call.danger || found.danger !== null;
   call.skills = [...found.skills];
   call.parts = [...found.parts];
-  call.causes = found.causes.map(
-    ({ cause, likelihood }) => `${CAUSES[cause].words} (${LIKELIHOOD_WORDS[likelihood]})`,
-  );
+  call.causes = [...causeWords(found, ({ id }) => nameOf(units.find((unit) => unit.id === id)))];
+
+  const heard = units.map((unit) => ({
+    ...unit,
+    cooling: coolingHeard(answersOf(answers, unit, units)) ?? unit.cooling,
+  }));
+  if (heard.some(({ cooling }, i) => cooling !== units[i]?.cooling))
+    await storeUnits(job, call, heard);
 }
+
+const nameOf = (unit: UnitFacts | undefined): string => {
+  if (!unit) return '';
+  return unit.place === '' ? UNIT_WORDS[unit.kind] : `${UNIT_WORDS[unit.kind]}, ${unit.place}`;
+};
 
 async function originalOf(
   job: Job,

@@ -9,10 +9,14 @@ import {
 import {
   COMPARTMENT_KINDS,
   COMPRESSOR_STARTS,
+  COOLING_NOW,
+  RAN_BETWEEN,
   UNIT_KINDS,
   type CompartmentFacts,
   type CompartmentKind,
   type CompressorStart,
+  type CoolingNow,
+  type RanBetween,
   type UnitKind,
 } from '@shared/domain/cold-unit';
 
@@ -29,6 +33,8 @@ export class ColdUnitRecord extends Model<
   declare ageYears: CreationOptional<number | null>;
   declare cubicFeet: CreationOptional<number | null>;
   declare place: string;
+  declare cooling: CoolingNow;
+  declare ranBetween: RanBetween;
 
   static register(sequelize: Sequelize): void {
     ColdUnitRecord.init(
@@ -41,6 +47,8 @@ export class ColdUnitRecord extends Model<
         ageYears: DataTypes.INTEGER,
         cubicFeet: DataTypes.DOUBLE,
         place: { type: DataTypes.STRING(60), allowNull: false },
+        cooling: { type: DataTypes.ENUM(...COOLING_NOW), allowNull: false },
+        ranBetween: { type: DataTypes.ENUM(...RAN_BETWEEN), allowNull: false },
       },
       { sequelize, tableName: 'cold_units' },
     );
@@ -59,6 +67,8 @@ export class CompartmentRecord extends Model<
   declare valueCents: number;
   declare atRiskAt: Date;
   declare saveByAt: CreationOptional<Date | null>;
+  declare earliestAt: Date;
+  declare likelyAt: CreationOptional<Date | null>;
   declare reasons: string[];
 
   static register(sequelize: Sequelize): void {
@@ -71,6 +81,8 @@ export class CompartmentRecord extends Model<
         valueCents: { type: DataTypes.INTEGER, allowNull: false },
         atRiskAt: { type: DataTypes.DATE(3), allowNull: false },
         saveByAt: DataTypes.DATE(3),
+        earliestAt: { type: DataTypes.DATE(3), allowNull: false },
+        likelyAt: DataTypes.DATE(3),
         reasons: { type: DataTypes.JSON, allowNull: false },
       },
       { sequelize, tableName: 'compartments' },

@@ -33,6 +33,8 @@ export async function readUnits(callId: string, tx?: Transaction): Promise<Store
         ageYears: unit.ageYears,
         cubicFeet: unit.cubicFeet,
         place: unit.place,
+        cooling: unit.cooling,
+        ranBetween: unit.ranBetween,
         compartments: inside.map((one) => one.facts as UnitFacts['compartments'][number]),
       },
       reasons: inside.map((one) => json<string[]>(one.reasons)),

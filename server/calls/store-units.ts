@@ -1,9 +1,9 @@
 import type { UnitFacts } from '@shared/contract/calls';
-import { thawClock } from '@shared/domain/thaw/thaw-clock';
 import type { Job } from '../commands/run-command';
 import { change } from '../db/sql';
 import type { CallRecord } from './call-record';
 import { ColdUnitRecord, CompartmentRecord } from './cold-unit-record';
+import { woundClock } from './wound-clock';
 
 /** Writes a call's units anew, with the clocks that follow from the facts. */
 export async function storeUnits(
@@ -31,6 +31,8 @@ export async function storeNewUnits(
         ageYears: unit.ageYears,
         cubicFeet: unit.cubicFeet,
         place: unit.place,
+        cooling: unit.cooling,
+        ranBetween: unit.ranBetween,
       })),
     ),
     { transaction: job.tx },
@@ -44,7 +46,7 @@ export async function storeNewUnits(
           kind: facts.kind,
           facts,
           valueCents: facts.valueCents,
-          ...clockOf(call, facts),
+          ...woundClock(call.powerTimes(), unit, facts),
         })),
       ),
     ),
@@ -62,22 +64,13 @@ export async function windClocks(job: Job, call: CallRecord): Promise<void> {
     where: { unitId: units.map((unit) => unit.id) },
     transaction: job.tx,
   });
+  const unitOf = new Map(units.map((unit) => [unit.id, unit]));
   for (const one of compartments) {
-    one.set(clockOf(call, one.facts));
+    const unit = unitOf.get(one.unitId);
+    if (!unit) continue;
+    one.set(woundClock(call.powerTimes(), unit, one.facts));
     await one.save({ transaction: job.tx });
   }
-}
-
-function clockOf(call: CallRecord, facts: CompartmentRecord['facts']) {
-  const clock = thawClock(facts, {
-    lostAt: call.powerOutAt.getTime(),
-    restoredAt: call.restoredAt?.getTime() ?? null,
-  });
-  return {
-    atRiskAt: new Date(Math.round(clock.atRiskAt)),
-    saveByAt: clock.saveByAt === null ? null : new Date(Math.round(clock.saveByAt)),
-    reasons: [...clock.reasons],
-  };
 }
 
 async function removeUnits(job: Job, callId: string): Promise<void> {

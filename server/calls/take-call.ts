@@ -1,6 +1,7 @@
 import type { TakeCall } from '@shared/contract/calls';
 import { Refusal } from '@shared/domain/errors';
 import { HOUR_MS, type Instant } from '@shared/domain/instant';
+import type { Span } from '@shared/domain/thaw/uncooled-time';
 import { areasOf } from '../areas/area-of';
 import type { AreaRecord } from '../areas/area-record';
 import { insert, isDuplicateOf } from '../db/sql';
@@ -126,7 +127,9 @@ function callFacts(
     areaId: area?.id ?? null,
     powerOutAt: follows ? area.outAt : new Date(told.powerOutAt),
     powerBackAt: follows ? area.backAt : toldBackAt,
+    powerOnSpans: [...told.powerOnSpans],
     timesFrom: told.timesFrom,
+    householdAtRisk: told.householdAtRisk,
     language: told.language,
     mayText: told.mayText,
     danger: told.danger,
@@ -206,10 +209,14 @@ async function writeBeginnings(
 
 /** @throws Refusal `times-disagree` */
 export function refuseImpossibleTimes(
-  times: { readonly powerOutAt: Instant; readonly powerBackAt: Instant | null },
+  times: {
+    readonly powerOutAt: Instant;
+    readonly powerBackAt: Instant | null;
+    readonly powerOnSpans: readonly Span[];
+  },
   now: Instant,
 ): void {
-  const { powerOutAt, powerBackAt } = times;
+  const { powerOutAt, powerBackAt, powerOnSpans } = times;
   if (powerOutAt > now + CLOCK_SLACK_MS)
     throw new Refusal(
       'times-disagree',
@@ -219,4 +226,10 @@ export function refuseImpossibleTimes(
     throw new Refusal('times-disagree', 'The power went out more than 45 days ago; look again.');
   if (powerBackAt !== null && powerBackAt < powerOutAt)
     throw new Refusal('times-disagree', 'The power came back before it went out.');
+  const last = powerBackAt ?? now + CLOCK_SLACK_MS;
+  if (powerOnSpans.some(({ from, to }) => from <= powerOutAt || to > last))
+    throw new Refusal(
+      'times-disagree',
+      'The power was back for a while: that lies between when it went first and when it came back for good.',
+    );
 }

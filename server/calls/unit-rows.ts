@@ -19,6 +19,8 @@ interface Stored {
   kind: CompartmentRow['kind'];
   value_cents: number;
   at_risk_at: Date;
+  earliest_at: Date;
+  likely_at: Date | null;
   save_by_at: Date | null;
 }
 
@@ -36,7 +38,7 @@ export async function unitRows(
   const rows = await select<Stored>(
     sequelize,
     `SELECT u.call_id, u.id AS unit_id, u.kind AS unit_kind, u.place, k.kind, k.value_cents,
-            k.at_risk_at, k.save_by_at
+            k.at_risk_at, k.earliest_at, k.likely_at, k.save_by_at
        FROM cold_units u JOIN compartments k ON k.unit_id = u.id
       WHERE ${condition} ORDER BY u.call_id, u.place_no, k.place_no`,
     [value],
@@ -56,6 +58,8 @@ export async function unitRows(
       kind: row.kind,
       valueCents: row.value_cents,
       atRiskAt: row.at_risk_at.getTime(),
+      earliestAt: row.earliest_at.getTime(),
+      likelyAt: row.likely_at?.getTime() ?? null,
       saveByAt: row.save_by_at?.getTime() ?? null,
     });
   }

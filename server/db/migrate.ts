@@ -11,12 +11,18 @@ import * as locksInOrder from './migrations/0007-locks-in-order';
 import * as stormRoads from './migrations/0008-storm-roads';
 import * as regions from './migrations/0009-regions';
 import * as areaShapes from './migrations/0010-area-shapes';
+import * as whatIsLost from './migrations/0011-what-is-lost';
 import * as rollingRoutes from './migrations/0012-rolling-routes';
 
-/** Runs one statement of a migration. */
-export type Run = (statement: string) => Promise<void>;
+/** Runs one statement of a migration; `?` stands for a value. */
+export type Run = (statement: string, values?: readonly unknown[]) => Promise<void>;
+/** Reads rows, for a migration that works something out from them. */
+export type Read = <Row extends object>(
+  query: string,
+  values?: readonly unknown[],
+) => Promise<Row[]>;
 export interface Migration {
-  up(run: Run): Promise<void>;
+  up(run: Run, read: Read): Promise<void>;
   down(run: Run): Promise<void>;
 }
 
@@ -32,6 +38,7 @@ const MIGRATIONS: Readonly<Record<string, Migration>> = {
   '0008-storm-roads': stormRoads,
   '0009-regions': regions,
   '0010-area-shapes': areaShapes,
+  '0011-what-is-lost': whatIsLost,
   '0012-rolling-routes': rollingRoutes,
 };
 
@@ -49,18 +56,22 @@ export function unmigrate(sequelize: Sequelize): Promise<string[]> {
   );
 }
 
-function migrator(sequelize: Sequelize): Umzug<{ run: Run }> {
-  const run: Run = async (statement) => {
-    await sequelize.query(statement, { type: QueryTypes.RAW });
+function migrator(sequelize: Sequelize): Umzug<{ run: Run; read: Read }> {
+  const run: Run = async (statement, values = []) => {
+    await sequelize.query(statement, {
+      type: QueryTypes.RAW,
+      ...(values.length > 0 ? { replacements: [...values] } : {}),
+    });
   };
-  return new Umzug<{ run: Run }>({
+  const read: Read = (query, values = []) => select(sequelize, query, [...values]);
+  return new Umzug<{ run: Run; read: Read }>({
     migrations: Object.entries(MIGRATIONS).map(([name, { up, down }]) => ({
       name,
-      up: ({ context }) => up(context.run),
+      up: ({ context }) => up(context.run, context.read),
       down: ({ context }) => down(context.run),
     })),
     // Wrapped, since a bare function would be called as a factory.
-    context: { run },
+    context: { run, read },
     storage: {
       async executed() {
         await run(

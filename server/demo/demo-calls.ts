@@ -100,7 +100,9 @@ export function demoCall(
     mayText: chance.next() < 0.9,
     powerOutAt: times.outAt,
     powerBackAt: times.backAt,
+    powerOnSpans: [],
     timesFrom: 'area',
+    householdAtRisk: number % 23 === 0,
     units,
     remark: chance.pick(REMARKS),
     danger: false,
@@ -124,6 +126,8 @@ function unit(chance: Chance): UnitFacts {
     ageYears: 1 + chance.below(16),
     cubicFeet: kind === 'walk-in' ? 400 : 12 + chance.below(14),
     place: kind === 'walk-in' ? 'back room' : chance.pick(PLACES),
+    cooling: 'unknown',
+    ranBetween: 'unknown',
     compartments,
   };
 }

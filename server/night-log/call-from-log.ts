@@ -2,6 +2,7 @@ import { randomUUID } from 'node:crypto';
 import type { UnitFacts } from '@shared/contract/calls';
 import type { MedicineKind } from '@shared/domain/cold-unit';
 import { isOnlyPostBox } from '@shared/domain/address/post-box';
+import type { UsualValues } from '@shared/domain/food-value';
 import { MINUTE_MS, type Instant } from '@shared/domain/instant';
 import type { NightCall, NightUnit } from '@shared/domain/night-log/night-call';
 import { formatPhone } from '@shared/domain/phone-number';
@@ -15,6 +16,8 @@ export interface NightSetting {
   /** The earliest plausible moment for a row that does not say when the power went. */
   readonly stormBegan: Instant;
   readonly now: Instant;
+  /** What contents of a usual unit are worth. */
+  readonly values: UsualValues;
 }
 
 /**
@@ -33,8 +36,10 @@ export function callFromLog(call: NightCall, setting: NightSetting): CallToTake 
     mayText: false,
     powerOutAt: powerOutAt ?? Math.min(setting.stormBegan, call.receivedAt),
     powerBackAt: plausibleBack(call, powerOutAt),
+    powerOnSpans: [],
     timesFrom: powerOutAt === null ? 'area' : 'caller',
-    units: unitsOf(call),
+    householdAtRisk: false,
+    units: unitsOf(call, setting.values),
     remark: remarkOf(call),
     danger: call.dangers.length > 0,
     receivedAt: Math.min(call.receivedAt, setting.now),
@@ -73,7 +78,7 @@ function addressOf(call: NightCall, region: RegionInUse): CallToTake['address'] 
   };
 }
 
-function unitsOf(call: NightCall): UnitFacts[] {
+function unitsOf(call: NightCall, values: UsualValues): UnitFacts[] {
   const named: readonly NightUnit[] =
     call.units.length > 0
       ? call.units
@@ -85,7 +90,7 @@ function unitsOf(call: NightCall): UnitFacts[] {
             assumed: true,
           },
         ];
-  const units = named.slice(0, 12).map(unitOf);
+  const units = named.slice(0, 12).map((unit) => unitOf(unit, values));
   const first = units[0];
   const hasMedicine = units.some((unit) =>
     unit.compartments.some(({ kind }) => kind === 'medicine'),
@@ -94,7 +99,8 @@ function unitsOf(call: NightCall): UnitFacts[] {
   if (!hasMedicine) {
     const kinds: readonly (MedicineKind | undefined)[] =
       call.medicine.kinds.length > 0 ? call.medicine.kinds.slice(0, MOST_MEDICINES) : [undefined];
-    for (const kind of kinds) first.compartments.push(compartmentOf(first.kind, 'medicine', kind));
+    for (const kind of kinds)
+      first.compartments.push(compartmentOf(first.kind, 'medicine', values, kind));
     return units;
   }
   const [kind] = call.medicine.kinds;
@@ -103,7 +109,7 @@ function unitsOf(call: NightCall): UnitFacts[] {
   return units;
 }
 
-function unitOf(unit: NightUnit): UnitFacts {
+function unitOf(unit: NightUnit, values: UsualValues): UnitFacts {
   return {
     id: randomUUID(),
     kind: unit.kind,
@@ -111,15 +117,18 @@ function unitOf(unit: NightUnit): UnitFacts {
     ageYears: null,
     cubicFeet: null,
     place: unit.said.replace(/\p{Cc}+/gu, ' ').slice(0, 60),
-    compartments: unit.compartments.map((kind) => compartmentOf(unit.kind, kind)),
+    cooling: 'unknown',
+    ranBetween: 'unknown',
+    compartments: unit.compartments.map((kind) => compartmentOf(unit.kind, kind, values)),
   };
 }
 
 const compartmentOf = (
   unit: UnitFacts['kind'],
   kind: UnitFacts['compartments'][number]['kind'],
+  values: UsualValues,
   medicine: MedicineKind = 'label-not-read',
-): UnitFacts['compartments'][number] => unknownCompartment(unit, kind, medicine);
+): UnitFacts['compartments'][number] => unknownCompartment(unit, kind, medicine, values);
 
 /** Everything that has no field of its own, so that nothing is lost. */
 export function remarkOf(call: NightCall): string {

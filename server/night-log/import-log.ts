@@ -11,6 +11,7 @@ import { runCommand, type Job } from '../commands/run-command';
 import type { Context } from '../context';
 import { select } from '../db/sql';
 import { StormRecord } from '../storms/storm-record';
+import { readSettings } from '../office/settings';
 import { callFromLog, remarkOf } from './call-from-log';
 import { logToRead } from './log-context';
 import { NightLogRecord, NightLogRowRecord } from './night-log-record';
@@ -95,6 +96,7 @@ async function importPiece(
   if (fresh.length === 0) return;
 
   const storm = await StormRecord.findByPk(log.stormId);
+  const values = await readSettings(context.sequelize);
   const toTake = new Map<Household, CallToTake>();
   for (const [i, household] of fresh.entries()) {
     toTake.set(
@@ -103,6 +105,7 @@ async function importPiece(
         region: context.region,
         stormBegan: storm?.openedAt.getTime() ?? context.clock(),
         now: context.clock(),
+        values,
       }),
     );
     // Looking up an address takes a millisecond; boards are served in between.

@@ -1,6 +1,8 @@
 import type { Sequelize, Transaction } from 'sequelize';
 import { z } from 'zod';
 import { Settings } from '@shared/contract/office';
+import { DEFAULT_VALUES } from '@shared/domain/food-value';
+import { DEFAULT_REACH_MINUTES, DEFAULT_WEIGHTS } from '@shared/domain/urgency';
 import { select } from '../db/sql';
 
 /** Used until the manager says otherwise, and for whatever a stored set does not name yet. */
@@ -48,12 +50,15 @@ export const DEFAULT_SETTINGS: Omit<Settings, 'version'> = {
   otherTimeDollars: 10,
   otherTimeMinutes: 30,
   promisedAheadMinutes: 120,
-  medicineWeight: 5,
+  medicineWeight: DEFAULT_WEIGHTS.medicine,
   changesPerHour: 6,
   // Nothing happens by itself until a manager wants it.
   automaticRoutes: 'off',
   automaticGainDollars: 25,
   automaticKeepMinutes: 45,
+  householdWeight: DEFAULT_WEIGHTS.household,
+  reachMinutes: DEFAULT_REACH_MINUTES,
+  ...DEFAULT_VALUES,
   pocketKm: 1,
   pocketCalls: 4,
 };

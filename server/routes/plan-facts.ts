@@ -2,6 +2,7 @@ import type { Sequelize, Transaction } from 'sequelize';
 import type { Settings } from '@shared/contract/office';
 import type { CallState } from '@shared/domain/call-state';
 import type { CompartmentKind } from '@shared/domain/cold-unit';
+import type { CompartmentAtStake } from '@shared/domain/planner/loss-deadlines';
 import { HOUR_MS, type Instant } from '@shared/domain/instant';
 import type { RouteStopState, WorkShift } from '@shared/domain/route-rules';
 import type { LearnedService } from '@shared/domain/service-times';
@@ -22,12 +23,6 @@ import { lastDoors, whereIs } from './where-technicians-are';
 /** Shifts that begin later are planned later: our estimate of how far a storm's night can be seen. */
 const LOOK_AHEAD_MS = 24 * HOUR_MS;
 
-export interface CompartmentAtStake {
-  readonly kind: CompartmentKind;
-  readonly valueCents: number;
-  readonly saveByAt: Instant | null;
-}
-
 export interface CallToPlan {
   readonly id: string;
   readonly state: CallState;
@@ -38,6 +33,7 @@ export interface CallToPlan {
   readonly skills: readonly Skill[];
   readonly parts: readonly Part[];
   readonly compartments: readonly CompartmentAtStake[];
+  readonly householdAtRisk: boolean;
   /** Technicians who have given it back; it is not put on their route again but by hand. */
   readonly declinedBy: readonly string[];
 }
@@ -194,11 +190,12 @@ async function callsToPlan(
     lon: number | null;
     lat: number | null;
     cut_off: number;
+    household_at_risk: number;
     skills: unknown;
     parts: unknown;
   }>(
     sequelize,
-    `SELECT id, state, received_at, lon, lat, cut_off, skills, parts FROM calls
+    `SELECT id, state, received_at, lon, lat, cut_off, household_at_risk, skills, parts FROM calls
       WHERE storm_id = ? AND state IN ${toVisit} ORDER BY number`,
     [stormId],
     tx,
@@ -207,10 +204,12 @@ async function callsToPlan(
     call_id: string;
     kind: CompartmentKind;
     value_cents: number;
+    earliest_at: Date;
+    likely_at: Date | null;
     save_by_at: Date | null;
   }>(
     sequelize,
-    `SELECT u.call_id, k.kind, k.value_cents, k.save_by_at
+    `SELECT u.call_id, k.kind, k.value_cents, k.earliest_at, k.likely_at, k.save_by_at
        FROM calls c JOIN cold_units u ON u.call_id = c.id JOIN compartments k ON k.unit_id = u.id
       WHERE c.storm_id = ? AND c.state IN ${toVisit}`,
     [stormId],
@@ -233,11 +232,14 @@ async function callsToPlan(
         receivedAt: call.received_at.getTime(),
         lonLat: call.lon === null || call.lat === null ? null : [call.lon, call.lat],
         cutOff: Boolean(call.cut_off),
+        householdAtRisk: Boolean(call.household_at_risk),
         skills: json<Skill[]>(call.skills),
         parts: json<Part[]>(call.parts),
         compartments: (atStake.get(call.id) ?? []).map((one) => ({
           kind: one.kind,
           valueCents: one.value_cents,
+          earliestAt: one.earliest_at.getTime(),
+          likelyAt: one.likely_at?.getTime() ?? null,
           saveByAt: one.save_by_at?.getTime() ?? null,
         })),
         declinedBy: (declinedBy.get(call.id) ?? []).map((one) => one.technician_id),

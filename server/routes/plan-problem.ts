@@ -1,9 +1,9 @@
 import type { PlanPrices } from '@shared/contract/plan-prices';
 import { isPlannable } from '@shared/domain/call-state';
-import { MINUTE_MS, type Instant } from '@shared/domain/instant';
+import type { Instant } from '@shared/domain/instant';
+import { lossDeadlines } from '@shared/domain/planner/loss-deadlines';
 import { weightsOf } from '@shared/domain/planner/plan-prices';
 import type {
-  PlanDeadline,
   PlanJob,
   PlanShift,
   PlanTechnician,
@@ -144,7 +144,7 @@ function jobOf(call: CallToPlan, loc: number, facts: PlanFacts): PlanJob {
       : facts.technicians.map(({ id }) => id).filter((id) => !call.declinedBy.includes(id));
   const { service, serviceBy } = serviceOf(call, facts);
   // Whoever takes longer may not be promised what only the quick ones can save.
-  const longest = Math.max(service, ...Object.values(serviceBy)) / 60;
+  const longest = Math.max(service, ...Object.values(serviceBy));
   return {
     id: call.id,
     loc,
@@ -158,15 +158,11 @@ function jobOf(call: CallToPlan, loc: number, facts: PlanFacts): PlanJob {
       ? { windows: [[seconds(visit.window.from), seconds(visit.window.to)] as const] }
       : {}),
     ...(allowed ? { onlyTechnicians: allowed } : {}),
-    deadlines: live.flatMap((one): PlanDeadline[] => {
-      if (one.saveByAt === null) return [];
-      const isMedicine = one.kind === 'medicine';
-      return [
-        {
-          at: latestStart(one.saveByAt, longest),
-          value: (one.valueCents / 100) * (isMedicine ? settings.medicineWeight : 1),
-        },
-      ];
+    deadlines: lossDeadlines(live, {
+      now,
+      serviceSeconds: longest,
+      weights: { medicine: settings.medicineWeight, household: settings.householdWeight },
+      householdAtRisk: call.householdAtRisk,
     }),
   };
 }
@@ -189,10 +185,6 @@ function serviceOf(
     ),
   };
 }
-
-/** Contents are saved when cooling runs before their save-by, so the work has to be done by then. */
-export const latestStart = (saveByAt: Instant, serviceMinutes: number): number =>
-  seconds(saveByAt - serviceMinutes * MINUTE_MS - 1);
 
 function routesInForce(facts: PlanFacts, kept: ReadonlyMap<string, unknown>): PreviousPlan {
   const { mostOvertimeMinutes } = facts.settings;

@@ -3,9 +3,11 @@ import { CALL_STATES, PHONE_OUTCOMES } from '../domain/call-state';
 import {
   COMPARTMENT_KINDS,
   COMPRESSOR_STARTS,
+  COOLING_NOW,
   DOOR_USES,
   INSPECTION_FINDINGS,
   MEDICINE_KINDS,
+  RAN_BETWEEN,
   UNIT_KINDS,
 } from '../domain/cold-unit';
 import { PARTS, SKILLS } from '../domain/skills';
@@ -67,6 +69,11 @@ export const CompartmentFacts = z.strictObject({
       }),
     )
     .max(20),
+  /** Ice or frozen packs put in. */
+  ice: z
+    .array(z.strictObject({ at: Moment }))
+    .max(20)
+    .default([]),
   medicine: z
     .strictObject({
       kind: z.enum(MEDICINE_KINDS),
@@ -90,6 +97,9 @@ export const UnitFacts = z.strictObject({
   cubicFeet: z.number().positive().max(5000).nullable(),
   /** Where it stands, in the caller's words. */
   place: line(60),
+  /** What it does now, and whether it ran while the power was back for a while. */
+  cooling: z.enum(COOLING_NOW).default('unknown'),
+  ranBetween: z.enum(RAN_BETWEEN).default('unknown'),
   compartments: z.array(CompartmentFacts).min(1).max(4),
 });
 export type UnitFacts = z.infer<typeof UnitFacts>;
@@ -99,6 +109,9 @@ export const CompartmentRow = z.strictObject({
   kind: z.enum(COMPARTMENT_KINDS),
   valueCents: Cents,
   atRiskAt: Moment,
+  /** From when they may have passed their temperature, and from when they likely have. */
+  earliestAt: Moment,
+  likelyAt: Moment.nullable(),
   /** `null`: software never declares these contents lost. */
   saveByAt: Moment.nullable(),
 });
@@ -135,6 +148,8 @@ export const CallRow = z.strictObject({
   etaAt: Moment.nullable(),
   /** A safety answer stopped the phone check, or the log's words spoke of danger. */
   danger: z.boolean(),
+  /** Somebody there can do less without than others; who and why is not asked. */
+  householdAtRisk: z.boolean(),
   /** Texts from the customer that nobody has read. */
   unreadTexts: z.int().nonnegative(),
   /** No technician can drive there now: every road is closed or flooded. */
@@ -145,6 +160,12 @@ export const CallRow = z.strictObject({
 });
 export type CallRow = z.infer<typeof CallRow>;
 
+/** The power was back for so long and then went again. */
+export const PowerOnSpan = z
+  .strictObject({ from: Moment, to: Moment })
+  .refine(({ from, to }) => from < to, 'It came back before it went again.');
+const powerOnSpans = z.array(PowerOnSpan).max(6);
+
 export const TIME_SOURCES = ['area', 'caller'] as const;
 
 /** Everything about one call, for the person who works on it. */
@@ -154,6 +175,8 @@ export const CallDetail = z.strictObject({
   mayText: z.boolean(),
   powerOutAt: Moment,
   powerBackAt: Moment.nullable(),
+  /** When the power was back for a while between the two. */
+  powerOnSpans,
   /** Whether the times follow the outage area or were given by the caller. */
   timesFrom: z.enum(TIME_SOURCES),
   units: z.array(UnitFacts),
@@ -187,7 +210,9 @@ export const TakeCall = Command.extend({
   mayText: z.boolean(),
   powerOutAt: Moment,
   powerBackAt: Moment.nullable(),
+  powerOnSpans: powerOnSpans.default([]),
   timesFrom: z.enum(TIME_SOURCES),
+  householdAtRisk: z.boolean().default(false),
   units: z.array(UnitFacts).min(1).max(12),
   remark: prose(2000),
   danger: z.boolean(),
@@ -202,13 +227,16 @@ export const AmendCall = VersionedCommand.extend({
   mayText: z.boolean().optional(),
   powerOutAt: Moment.optional(),
   powerBackAt: Moment.nullable().optional(),
+  powerOnSpans: powerOnSpans.optional(),
+  householdAtRisk: z.boolean().optional(),
   timesFrom: z.enum(TIME_SOURCES).optional(),
   units: z.array(UnitFacts).min(1).max(12).optional(),
 });
 export type AmendCall = z.infer<typeof AmendCall>;
 
 export const AnswerPhoneCheck = VersionedCommand.extend({
-  answers: z.record(z.string().max(40), z.union([z.string().max(40), z.number()])),
+  /** By question; of a call's other units by question, `@` and the unit's id. */
+  answers: z.record(z.string().max(60), z.union([z.string().max(40), z.number()])),
 });
 export type AnswerPhoneCheck = z.infer<typeof AnswerPhoneCheck>;
 

@@ -57,6 +57,8 @@ export const AUTOMATIC_MODES = ['off', 'propose', 'publish'] as const;
 
 const SpeedPercent = z.int().min(40).max(130);
 
+const Dollars = z.int().min(0).max(100_000);
+
 export const Settings = z.strictObject({
   companyName: z.string(),
   companyPhone: z.string(),
@@ -92,6 +94,17 @@ export const Settings = z.strictObject({
   automaticGainDollars: z.number().min(0).max(10_000),
   /** Nothing that begins within so many minutes is moved by the automatic mode. */
   automaticKeepMinutes: z.int().min(0).max(480),
+  /** How much more everything counts in a household that can do less without. */
+  householdWeight: z.number().min(1).max(10),
+  /** Minutes until somebody could be at a door; urgency is what is lost around that moment. */
+  reachMinutes: z.int().min(0).max(1440),
+  /** What contents are worth until somebody says otherwise, in dollars, three quarters full. */
+  valueFreshFood: Dollars,
+  valueFreezerSection: Dollars,
+  valueUprightFreezer: Dollars,
+  valueChestFreezer: Dollars,
+  valueMedicine: Dollars,
+  valueStock: Dollars,
   pocketKm: z.number().min(0.1).max(10),
   pocketCalls: z.int().min(2).max(50),
   version: Version,

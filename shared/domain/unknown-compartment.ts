@@ -2,20 +2,27 @@ import type {
   CompartmentFacts,
   CompartmentKind,
   DryIce,
+  Ice,
   Inspection,
   MedicineKind,
   Reading,
   UnitKind,
 } from './cold-unit';
-import { defaultValueCents } from './food-value';
+import { DEFAULT_VALUES, usualValueCents, type UsualValues } from './food-value';
 
 /**
  * A compartment of which only its kind has been told: everything else is unknown, and each rule
  * takes the cautious reading of that. Its worth, in US cents, is the usual one for such a unit.
  *
  * @param medicine what to suppose of a medicine compartment until somebody says more
+ * @param values what the manager counts for a usual unit
  */
-export const unknownCompartment = (unit: UnitKind, kind: CompartmentKind, medicine: MedicineKind) =>
+export const unknownCompartment = (
+  unit: UnitKind,
+  kind: CompartmentKind,
+  medicine: MedicineKind,
+  values: UsualValues = DEFAULT_VALUES,
+) =>
   ({
     kind,
     fill: null,
@@ -26,6 +33,7 @@ export const unknownCompartment = (unit: UnitKind, kind: CompartmentKind, medici
     readings: [] as Reading[],
     inspections: [] as Inspection[],
     dryIce: [] as DryIce[],
+    ice: [] as Ice[],
     medicine:
       kind === 'medicine'
         ? {
@@ -37,5 +45,5 @@ export const unknownCompartment = (unit: UnitKind, kind: CompartmentKind, medici
           }
         : null,
     coldAtLoss: null,
-    valueCents: defaultValueCents(unit, kind),
+    valueCents: usualValueCents({ kind: unit, cubicFeet: null }, { kind, fill: null }, values),
   }) satisfies CompartmentFacts;

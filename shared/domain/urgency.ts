@@ -1,5 +1,6 @@
 import type { CompartmentFacts, CompartmentKind, CoolingLoss } from './cold-unit';
 import { MINUTE_MS, type Instant } from './instant';
+import { lossRate } from './loss-rate';
 import { compartmentState, savedBy, type ThawClock } from './thaw/thaw-clock';
 
 /**
@@ -14,16 +15,19 @@ export type Lane = 1 | 2 | 3 | 4;
 /** What the urgency needs of a compartment; a board has no more than this. */
 export interface CompartmentOnClock {
   readonly facts: Pick<CompartmentFacts, 'kind' | 'valueCents'>;
-  readonly clock: Pick<ThawClock, 'atRiskAt' | 'saveByAt' | 'recoveredAt'>;
+  readonly clock: Pick<
+    ThawClock,
+    'atRiskAt' | 'earliestAt' | 'likelyAt' | 'saveByAt' | 'recoveredAt'
+  >;
 }
 
 /** What is lost per minute if a call waits. */
 export interface Urgency {
   readonly lane: Lane;
   /**
-   * US cents per minute: the value of each live compartment spread over the minutes it has left.
-   * Our estimate; contents are lost at a moment and not little by little, so it serves to compare
-   * calls and not to bill anyone.
+   * US cents per minute: for each live compartment its weighed value, times the share of it that is lost
+   * per minute around the moment when somebody could help. Our estimate; contents are lost at a
+   * moment and not little by little, so it serves to compare calls and not to bill anyone.
    */
   readonly lossPerMinuteCents: number;
   /** Minutes until the next save-by of a live compartment; null when there is none. */
@@ -31,7 +35,7 @@ export interface Urgency {
   readonly saveByAt: Instant | null;
   /** When the first live compartment counts as at risk, past or to come. */
   readonly atRiskAt: Instant | null;
-  /** What can still be saved, US cents, medicine unweighted. */
+  /** What can still be saved, US cents, unweighted. */
   readonly valueAtRiskCents: number;
   /** In words, what decides the call's place first. */
   readonly reasons: readonly string[];
@@ -40,16 +44,26 @@ export interface Urgency {
 export interface UrgencyWeights {
   /** How much more a minute of medicine counts than a minute of food of the same price. */
   readonly medicine: number;
+  /** How much more everything counts in a household that can do less without. */
+  readonly household: number;
 }
 
-/** Our estimate: a lost dose costs more than its price, and the queue must show that. */
-export const DEFAULT_WEIGHTS: UrgencyWeights = { medicine: 5 };
-
 /**
- * The least time over which a value is spread, in minutes. Our estimate: one phone call. Without it
- * the last seconds of a compartment that nobody can reach any more would outrank everything.
+ * Our estimates: a lost dose costs more than its price, as does food where somebody can do less without
+ * it, and the queue must show that.
  */
-const LEAST_MINUTES = 10;
+export const DEFAULT_WEIGHTS: UrgencyWeights = { medicine: 5, household: 1.5 };
+
+/** Our estimate until a manager says otherwise: the rest of the stop before, and the drive. */
+export const DEFAULT_REACH_MINUTES = 60;
+
+/** The moment around which a call is weighed. */
+export interface UrgencySetting {
+  readonly weights: UrgencyWeights;
+  /** When a visit could be at the door. What phone advice or ice saves is weighed at once. */
+  readonly couldBeThere: Instant;
+  readonly householdAtRisk: boolean;
+}
 
 /** Over how long medicine without a save-by is spread: "a day or more, replace" (HHS/CDC). */
 const UNDATED_MINUTES = 24 * 60;
@@ -65,7 +79,11 @@ export function urgency(
   compartments: readonly CompartmentOnClock[],
   loss: CoolingLoss,
   now: Instant,
-  weights: UrgencyWeights = DEFAULT_WEIGHTS,
+  {
+    weights = DEFAULT_WEIGHTS,
+    couldBeThere = now + DEFAULT_REACH_MINUTES * MINUTE_MS,
+    householdAtRisk = false,
+  }: Partial<UrgencySetting> = {},
 ): Urgency {
   let lane: Lane = 4;
   let lossPerMinuteCents = 0;
@@ -77,21 +95,25 @@ export function urgency(
   for (const compartment of compartments) {
     if (!isLive(compartment, loss, now)) continue;
     const { facts, clock } = compartment;
-    const leftMinutes = clock.saveByAt === null ? null : (clock.saveByAt - now) / MINUTE_MS;
-    const spreadMinutes = Math.max(LEAST_MINUTES, leftMinutes ?? UNDATED_MINUTES);
-    const weight = facts.kind === 'medicine' ? weights.medicine : 1;
     const ownLane = laneOf(compartment, now);
-    const ownLoss = (weight * facts.valueCents) / spreadMinutes;
+    // Phone advice and ice save the rest at once; only a visit makes a freezer cold again.
+    const helpAt = facts.kind === 'freezer' ? Math.max(now, couldBeThere) : now;
+    const weight =
+      (facts.kind === 'medicine' ? weights.medicine : 1) *
+      (householdAtRisk ? weights.household : 1);
+    const ownLoss = weight * facts.valueCents * rateOf(clock, helpAt);
 
     lane = Math.min(lane, ownLane) as Lane;
     lossPerMinuteCents += ownLoss;
     valueAtRiskCents += facts.valueCents;
     saveByAt = Math.min(saveByAt, clock.saveByAt ?? Infinity);
     atRiskAt = Math.min(atRiskAt, clock.atRiskAt);
-    const words = reasonOf(facts, leftMinutes, now >= clock.atRiskAt);
+    const words = reasonOf(compartment, now, helpAt);
     reasons.push({ lane: ownLane, lossPerMinuteCents: ownLoss, words });
   }
   reasons.sort((a, b) => a.lane - b.lane || b.lossPerMinuteCents - a.lossPerMinuteCents);
+  const words = reasons.map((reason) => reason.words);
+  if (householdAtRisk && words.length > 0) words.push('A household that can do less without');
 
   return {
     lane,
@@ -100,11 +122,15 @@ export function urgency(
     saveByAt: saveByAt === Infinity ? null : saveByAt,
     atRiskAt: atRiskAt === Infinity ? null : atRiskAt,
     valueAtRiskCents,
-    reasons:
-      reasons.length > 0
-        ? reasons.map(({ words }) => words)
-        : ['Nothing left to save: an ordinary repair'],
+    reasons: words.length > 0 ? words : ['Nothing left to save: an ordinary repair'],
   };
+}
+
+function rateOf(clock: CompartmentOnClock['clock'], at: Instant): number {
+  const { earliestAt, likelyAt, saveByAt } = clock;
+  return saveByAt === null || likelyAt === null
+    ? 1 / UNDATED_MINUTES
+    : lossRate({ earliestAt, likelyAt, saveByAt }, at);
 }
 
 /** What one compartment adds, in the order in which it is told. */
@@ -166,14 +192,30 @@ const NAMES: Readonly<Record<CompartmentKind, string>> = {
   'commercial-stock': 'Stock',
 };
 
-function reasonOf(
-  facts: CompartmentOnClock['facts'],
-  left: number | null,
-  isAtRisk: boolean,
+/** Below this many minutes two moments are told as one. */
+const TOLD_APART_MINUTES = 15;
+
+function reasonOf({ facts, clock }: CompartmentOnClock, now: Instant, helpAt: Instant): string {
+  const name = `${NAMES[facts.kind]}${now >= clock.atRiskAt ? ' at risk' : ''}`;
+  return `${name}: ${timeWords(clock, now, helpAt)}, $${Math.round(facts.valueCents / 100)}`;
+}
+
+function timeWords(
+  { likelyAt, saveByAt }: CompartmentOnClock['clock'],
+  now: Instant,
+  helpAt: Instant,
 ): string {
-  const time = left === null ? 'set apart, ask the pharmacist' : `${minutesInWords(left)} left`;
-  const value = `$${Math.round(facts.valueCents / 100)}`;
-  return `${NAMES[facts.kind]}${isAtRisk ? ' at risk' : ''}: ${time}, ${value}`;
+  if (saveByAt === null) return 'set apart, ask the pharmacist';
+  const left = minutesInWords((saveByAt - now) / MINUTE_MS);
+  const likely = ((likelyAt ?? saveByAt) - now) / MINUTE_MS;
+  const isTold = saveByAt - (likelyAt ?? saveByAt) >= TOLD_APART_MINUTES * MINUTE_MS;
+  const words = !isTold
+    ? `${left} left`
+    : likely <= 0
+      ? `likely warm already, ${left} left to the limit`
+      : `likely ${minutesInWords(likely)} left, ${left} to the limit`;
+  // A visit that comes too late is a fact for the dispatcher, not a lower number.
+  return helpAt >= saveByAt ? `${words}, no visit could be there before` : words;
 }
 
 /** '25 min', '1 h 05 min', '42 h', '27 days'; rounded down, so that nobody counts on more. */

@@ -9,7 +9,7 @@ import { unknownCompartment } from '@shared/domain/unknown-compartment';
 import { byUrgency, urgency } from '@shared/domain/urgency';
 import { ensureDemoRegion } from '../../server/region/demo-region';
 import { holdOrder } from '../../src/app/board/held-order';
-import { Ranking } from '../../src/app/core/ranking';
+import { DEFAULT_WEIGHING, Ranking } from '../../src/app/core/ranking';
 import { aCallRow, NOW } from '../../src/app/core/testing';
 import { spread } from './quantiles';
 
@@ -57,7 +57,7 @@ const food = (kind: 'fresh-food' | 'freezer', valueCents: number): CompartmentFa
 /** The whole queue anew, as at each full minute. */
 function rankingTimes() {
   const calls = Array.from({ length: CALLS }, (_, i) => aCallRow(((i * 7919) % CALLS) + 1));
-  return times((round) => new Ranking().rank(calls, NOW + round * MINUTE_MS, 5));
+  return times((round) => new Ranking().rank(calls, NOW + round * MINUTE_MS, DEFAULT_WEIGHING));
 }
 
 /** The worst there is: every row has moved. */

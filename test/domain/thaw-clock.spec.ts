@@ -94,7 +94,7 @@ describe('thawClock for fresh food', () => {
   });
 
   it('names the published limit and its source in words', () => {
-    expect(thawClock(fresh(), lossUntil()).reasons).toEqual([
+    expect(thawClock(fresh({ beforeF: 37 }), lossUntil()).reasons).toEqual([
       'Refrigerator, door shut: published limit 4 h (USDA FSIS)',
     ]);
   });

@@ -59,6 +59,7 @@ const compartment = (
     readings: fc.array(aReading, { maxLength: 4 }),
     inspections: fc.array(anInspection, { maxLength: 2 }),
     dryIce: fc.array(someIce, { maxLength: 2 }),
+    ice: fc.array(fc.record({ at: moment() }), { maxLength: 2 }),
     medicine: fc.option(aMedicine),
     coldAtLoss: fc.option(fc.boolean()),
     valueCents: fc.nat(100_000),

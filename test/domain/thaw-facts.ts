@@ -26,6 +26,7 @@ export const aCompartment = (
   readings: [],
   inspections: [],
   dryIce: [],
+  ice: [],
   medicine: null,
   coldAtLoss: null,
   valueCents: 20_000,

@@ -1,6 +1,6 @@
 import fc from 'fast-check';
 import type { CompartmentFacts } from '@shared/domain/cold-unit';
-import { defaultValueCents } from '@shared/domain/food-value';
+import { DEFAULT_VALUES, usualValueCents } from '@shared/domain/food-value';
 import { thawClock } from '@shared/domain/thaw/thaw-clock';
 import {
   byUrgency,
@@ -29,9 +29,10 @@ const urgencyAfter = (hours: number, ...facts: CompartmentFacts[]): Urgency =>
 
 describe('urgency', () => {
   it('spreads the value of what is live over the minutes that it has left', () => {
-    // $150 over the 120 minutes to 4 h, and $200 over the 2,760 minutes to 48 h.
+    // $150 over the 120 minutes to 4 h, as phone advice helps now; and $200 over the 2,700 minutes
+    // from when somebody could be there, in an hour, to 48 h.
     const { lossPerMinuteCents, valueAtRiskCents } = urgencyAfter(2, food(), freezer());
-    expect(lossPerMinuteCents).toBeCloseTo(15_000 / 120 + 20_000 / 2_760, 9);
+    expect(lossPerMinuteCents).toBeCloseTo(15_000 / 120 + 20_000 / 2_700, 9);
     expect(valueAtRiskCents).toBe(350_00);
   });
 
@@ -40,7 +41,10 @@ describe('urgency', () => {
       slackMinutes: 60,
       saveByAt: at(4),
       atRiskAt: at(3),
-      reasons: ['Fresh food at risk: 1 h left, $150', 'Freezer: 45 h left, $200'],
+      reasons: [
+        'Fresh food at risk: 1 h left, $150',
+        'Freezer: likely 39 h left, 45 h to the limit, $200',
+      ],
     });
   });
 
@@ -75,13 +79,47 @@ describe('urgency', () => {
   it('counts medicine more, by a weight that can be set', () => {
     const call = onClocks(insulin(92));
     const withWeight = (medicine: number) =>
-      urgency(call, lossUntil(), at(12), { medicine }).lossPerMinuteCents;
+      urgency(call, lossUntil(), at(12), { weights: { medicine, household: 1 } })
+        .lossPerMinuteCents;
     expect(withWeight(1)).toBeCloseTo(10_000 / 720, 9);
     expect(withWeight(3)).toBeCloseTo(3 * withWeight(1), 9);
     expect(urgency(call, lossUntil(), at(12)).lossPerMinuteCents).toBeCloseTo(
       withWeight(DEFAULT_WEIGHTS.medicine),
       9,
     );
+  });
+
+  it('counts more in a household that can do less without, by a weight that can be set', () => {
+    const call = onClocks(food(), insulin(92));
+    const told = (householdAtRisk: boolean) =>
+      urgency(call, lossUntil(), at(1), {
+        weights: { medicine: 5, household: 3 },
+        householdAtRisk,
+      });
+    expect(told(true).lossPerMinuteCents).toBeCloseTo(3 * told(false).lossPerMinuteCents, 9);
+    expect(told(true).valueAtRiskCents).toBe(told(false).valueAtRiskCents);
+    expect(told(true).reasons.at(-1)).toBe('A household that can do less without');
+  });
+
+  it('weighs a freezer around the moment when somebody could be there, and food at once', () => {
+    const at20 = (facts: CompartmentFacts, hours: number) =>
+      urgency(onClocks(facts), lossUntil(), at(20), { couldBeThere: at(20 + hours) });
+    // Half full, shut, 72 F: 4 h to the published 24 h, of which a visit in 3 h leaves one; likely
+    // passed at 22.6 h, so twice the even rate.
+    expect(at20(freezer(200_00, 0.5), 3).lossPerMinuteCents).toBeCloseTo((2 * 20_000) / 60, 6);
+    expect(at20(freezer(200_00, 0.5), 0).lossPerMinuteCents).toBeLessThan(20_000 / 60);
+    const phone = (hours: number) =>
+      urgency(onClocks(food()), lossUntil(), at(1), { couldBeThere: at(1 + hours) });
+    expect(phone(5)).toEqual(phone(0));
+  });
+
+  it('says it when no visit could be there before the limit, and does not hide it in the number', () => {
+    const call = onClocks(freezer(200_00, 0.5));
+    const told = urgency(call, lossUntil(), at(23.5), { couldBeThere: at(24.5) });
+    expect(told.reasons).toEqual([
+      'Freezer at risk: likely warm already, 30 min left to the limit, no visit could be there before, $200',
+    ]);
+    expect(told.lossPerMinuteCents).toBe(2_000);
   });
 
   it('spreads the value over ten minutes at least, so that the last second outranks nothing', () => {
@@ -278,11 +316,43 @@ describe('minutesInWords', () => {
   });
 });
 
-describe('defaultValueCents', () => {
+describe('usualValueCents', () => {
+  const chest = { kind: 'chest-freezer', cubicFeet: null } as const;
+  const freezerOf = (fill: number | null) => ({ kind: 'freezer', fill }) as const;
+
   it('values a freezer that stands alone above a freezer section', () => {
-    expect(defaultValueCents('fridge-freezer', 'freezer')).toBe(200_00);
-    expect(defaultValueCents('chest-freezer', 'freezer')).toBe(400_00);
-    expect(defaultValueCents('walk-in', 'commercial-stock')).toBe(4_000_00);
+    const section = { kind: 'fridge-freezer', cubicFeet: null } as const;
+    expect(usualValueCents(section, freezerOf(null))).toBe(200_00);
+    expect(usualValueCents(chest, freezerOf(null))).toBe(400_00);
+    expect(usualValueCents({ kind: 'walk-in', cubicFeet: null }, stock())).toBe(4_000_00);
+  });
+
+  it('takes what the manager has set, to the dollar', () => {
+    const values = { ...DEFAULT_VALUES, valueChestFreezer: 612 };
+    expect(usualValueCents(chest, freezerOf(null), values)).toBe(612_00);
+  });
+
+  it('goes with the size of the unit and with how full it is, in whole five dollars', () => {
+    expect(usualValueCents(chest, freezerOf(1))).toBe(535_00); // 400 / 0.75
+    expect(usualValueCents(chest, freezerOf(0.25))).toBe(135_00);
+    expect(usualValueCents({ ...chest, cubicFeet: 7.5 }, freezerOf(null))).toBe(200_00);
+  });
+
+  it('does not count medicine by the foot', () => {
+    const small = { kind: 'medicine-fridge', cubicFeet: 1 } as const;
+    expect(usualValueCents(small, { kind: 'medicine', fill: null })).toBe(300_00);
+  });
+
+  it('is never less for more', () => {
+    fc.assert(
+      fc.property(fc.nat(100), fc.nat(100), fc.nat(60), fc.nat(60), (a, b, size, more) => {
+        const value = (fill: number, cubicFeet: number) =>
+          usualValueCents({ kind: 'upright-freezer', cubicFeet }, freezerOf(fill / 100));
+        expect(value(Math.max(a, b), size + more)).toBeGreaterThanOrEqual(
+          value(Math.min(a, b), size),
+        );
+      }),
+    );
   });
 });
 

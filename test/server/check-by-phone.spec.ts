@@ -1,5 +1,6 @@
 import { randomUUID } from 'node:crypto';
 import type { CallDetail } from '@shared/contract/calls';
+import { nextOfCall } from '@shared/domain/phone-check/call-check';
 import { nextQuestion } from '@shared/domain/phone-check/phone-check';
 import { HOUR_MS, MINUTE_MS } from '@shared/domain/instant';
 import { aCall, aUnit } from '../support/calls';
@@ -32,6 +33,46 @@ const on =
       params: { callId: detail.row.id },
       body: { commandId: randomUUID(), ...body },
     });
+
+describe('the phone check of several units', () => {
+  it('asks about each, brings what all need, and tells the clocks what a unit does', async () => {
+    const [fridge, chest] = [
+      aUnit(),
+      { ...aUnit(), kind: 'chest-freezer' as const, place: 'porch' },
+    ];
+    const call = await taken({ units: [fridge, chest] });
+    const safe = {
+      fire: 'no',
+      line: 'no',
+      generator: 'none',
+      lights: 'no',
+      water: 'no',
+      device: 'no',
+      power: 'on',
+    };
+    const reply = await on(
+      mara,
+      'answerPhoneCheck',
+      call,
+    )({
+      version: call.row.version,
+      answers: {
+        ...safe,
+        doing: 'runs-cold',
+        [`fire@${chest.id}`]: 'no',
+        [`water@${chest.id}`]: 'no',
+        [`doing@${chest.id}`]: 'runs-warm',
+      },
+    });
+    expect(reply.status).toBe(200);
+    const detail = reply.body as CallDetail;
+    expect(detail.units.map(({ id, cooling }) => [id, cooling])).toEqual([
+      [fridge.id, 'unknown'],
+      [chest.id, 'partial'],
+    ]);
+    expect(nextOfCall(detail.phoneCheck.answers, [fridge, chest])?.unit.id).toBe(chest.id);
+  });
+});
 
 describe('the claim on a call', () => {
   it('keeps others off while it runs, and says who has it', async () => {

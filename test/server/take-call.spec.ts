@@ -1,7 +1,9 @@
 import { randomUUID } from 'node:crypto';
-import type { CallDetail } from '@shared/contract/calls';
+import { QueryTypes } from 'sequelize';
+import type { CallDetail, TakeCall } from '@shared/contract/calls';
 import type { BoardChange, Numbered } from '@shared/contract/realtime';
 import { HOUR_MS } from '@shared/domain/instant';
+import { down, up } from '../../server/db/migrations/0011-what-is-lost';
 import { select } from '../../server/db/sql';
 import { aCall, aPhone, aUnit } from '../support/calls';
 import { NIGHT, startServer, type TestServer } from '../support/server';
@@ -31,6 +33,83 @@ describe('POST /api/storms/:stormId/calls', () => {
     });
     // USDA FSIS: about 24 h for a half-full freezer with its door shut.
     expect(row.units[0]?.compartments[0]?.saveByAt).toBe(NIGHT - 2 * HOUR_MS + 24 * HOUR_MS);
+  });
+
+  it('keeps what was told of power that came back for a while, and winds the clocks by it', async () => {
+    const mara = await server.signIn('dispatcher');
+    const outAt = NIGHT - 6 * HOUR_MS;
+    const span = { from: NIGHT - 5 * HOUR_MS, to: NIGHT - 2 * HOUR_MS };
+    const told = (spans: (typeof span)[]) => ({
+      ...aCall(NIGHT, { powerOutAt: outAt, powerBackAt: NIGHT - HOUR_MS }),
+      powerOnSpans: spans,
+      householdAtRisk: true,
+      units: [{ ...aUnit({ ice: [] }), ranBetween: 'yes' as const, cooling: 'partial' as const }],
+    });
+    const early = await mara.call('takeCall', {
+      params: inStorm(),
+      body: told([{ from: outAt - HOUR_MS, to: outAt }]),
+    });
+    expect(early.status).toBe(422);
+    expect(early.body).toMatchObject({ type: '/problems/times-disagree' });
+
+    const reply = await mara.call('takeCall', { params: inStorm(), body: told([span]) });
+    expect(reply.status).toBe(201);
+    const detail = reply.body as CallDetail;
+    expect(detail.powerOnSpans).toEqual([span]);
+    expect(detail.row.householdAtRisk).toBe(true);
+    expect(detail.units[0]).toMatchObject({ ranBetween: 'yes', cooling: 'partial' });
+    // 24 h without cooling, three of the hours in between with it.
+    const [clock] = detail.row.units[0]?.compartments ?? [];
+    expect(clock?.saveByAt).toBe(outAt + 27 * HOUR_MS);
+    expect(clock?.earliestAt).toBeLessThanOrEqual(clock?.likelyAt ?? 0);
+    expect(clock?.likelyAt).toBeLessThanOrEqual(clock?.saveByAt ?? 0);
+
+    const amended = await mara.call('amendCall', {
+      params: { callId: detail.row.id },
+      body: {
+        commandId: randomUUID(),
+        version: detail.row.version,
+        powerOnSpans: [],
+        householdAtRisk: false,
+      },
+    });
+    const { row } = amended.body as CallDetail;
+    expect(row.householdAtRisk).toBe(false);
+    expect(row.units[0]?.compartments[0]?.saveByAt).toBe(outAt + 24 * HOUR_MS);
+  });
+
+  it('takes a call from a program that knows nothing of what may be left out', async () => {
+    const mara = await server.signIn('dispatcher');
+    const { powerOnSpans: _1, householdAtRisk: _2, units, ...old } = aCall(NIGHT);
+    const oldUnits = units.map(({ cooling: _3, ranBetween: _4, compartments, ...unit }) => ({
+      ...unit,
+      compartments: compartments.map(({ ice: _5, ...facts }) => facts),
+    }));
+    const reply = await mara.call('takeCall', {
+      params: inStorm(),
+      body: { ...old, units: oldUnits } as unknown as TakeCall,
+    });
+    expect(reply.status).toBe(201);
+    expect((reply.body as CallDetail).units[0]).toMatchObject({ ranBetween: 'unknown' });
+  });
+
+  it('has the clocks of calls stored before wound again by the migration', async () => {
+    const mara = await server.signIn('dispatcher');
+    const unit = aUnit();
+    await mara.call('takeCall', { params: inStorm(), body: aCall(NIGHT, { units: [unit] }) });
+    const clocks = () =>
+      select(
+        server.sequelize,
+        'SELECT at_risk_at, earliest_at, likely_at, save_by_at, facts, reasons FROM compartments',
+      );
+    const before = await clocks();
+    const run = async (statement: string, values: readonly unknown[] = []) => {
+      await server.sequelize.query(statement, { type: QueryTypes.RAW, replacements: [...values] });
+    };
+    await down(run);
+    await run("UPDATE compartments SET reasons = '[]'");
+    await up(run, (query, values = []) => select(server.sequelize, query, [...values]));
+    expect(await clocks()).toEqual(before);
   });
 
   it('changes nothing when the same command comes again, and gives the first answer', async () => {

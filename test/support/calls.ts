@@ -11,6 +11,8 @@ export function aUnit(facts: Partial<UnitFacts['compartments'][number]> = {}): U
     ageYears: null,
     cubicFeet: null,
     place: 'garage',
+    cooling: 'unknown',
+    ranBetween: 'unknown',
     compartments: [
       {
         kind: 'freezer',
@@ -22,6 +24,7 @@ export function aUnit(facts: Partial<UnitFacts['compartments'][number]> = {}): U
         readings: [],
         inspections: [],
         dryIce: [],
+        ice: [],
         medicine: null,
         coldAtLoss: null,
         valueCents: 30_000,
@@ -56,7 +59,9 @@ export function aCall(now: Instant, told: Partial<TakeCall> = {}): TakeCall {
     mayText: true,
     powerOutAt: now - 2 * HOUR_MS,
     powerBackAt: now - HOUR_MS,
+    powerOnSpans: [],
     timesFrom: 'caller',
+    householdAtRisk: false,
     units: [aUnit()],
     remark: '',
     danger: false,

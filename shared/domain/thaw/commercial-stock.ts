@@ -50,8 +50,14 @@ export function commercialStockHours(facts: FactsInHours): ClockHours {
       reasons.push(`Log shows ${temperatureF} F: above 41 F (FDA Food Code 3-501.16)`);
     }
   }
+  if (facts.time.hasRun) {
+    reasons.push('Ran in between: only a log reading at or under 41 F starts the 4 h anew');
+  }
   return {
     atRiskHours: Math.min(atRiskHours, lostHours),
+    // A kitchen goes by its log: nothing but a reading tells more than the limit does.
+    earliestHours: Math.min(atRiskHours, lostHours),
+    likelyHours: lostHours,
     lostHours,
     overrunHours: overrunsOf(facts),
     reasons,

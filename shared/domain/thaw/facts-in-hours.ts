@@ -1,6 +1,7 @@
-import type { CompartmentFacts, InspectionFinding } from '../cold-unit';
+import type { CompartmentFacts, CoolingLoss, InspectionFinding, UnitOnClock } from '../cold-unit';
 import { hoursBetween, type Instant } from '../instant';
 import type { AdviceKey } from './advice';
+import { uncooledTime, type UncooledTime } from './uncooled-time';
 
 /** What is known of a compartment, with every moment in hours after cooling was lost. */
 export interface FactsInHours extends Pick<
@@ -15,11 +16,24 @@ export interface FactsInHours extends Pick<
     readonly pounds: number;
     readonly cubicFeet: number;
   }[];
+  readonly ice: readonly { readonly hours: number }[];
+  /** Inside volume of the whole unit, cubic feet. */
+  readonly unitCubicFeet: number | null;
+  readonly isPartlyCooled: boolean;
+  /** Hours without cooling, which the limits of an outage count; everything else counts on the wall. */
+  readonly time: UncooledTime;
 }
 
-/** What a clock says, in hours after cooling was lost: `0 <= atRiskHours <= lostHours`. */
+/**
+ * What a clock says, in hours after cooling was lost: `0 <= atRiskHours <= lostHours` and
+ * `0 <= earliestHours <= likelyHours <= lostHours`.
+ */
 export interface ClockHours {
   readonly atRiskHours: number;
+  /** From here the contents may have passed their temperature, and from here they likely have. */
+  readonly earliestHours: number;
+  /** `null` with `lostHours`. */
+  readonly likelyHours: number | null;
   /** `null`: no rule here may call the contents lost. */
   readonly lostHours: number | null;
   /** When a measurement found the contents warm for longer than the published limit allows. */
@@ -34,7 +48,8 @@ export interface ClockHours {
  */
 export function factsInHours(
   facts: CompartmentFacts,
-  lostAt: Instant,
+  { lostAt, ranSpans = [] }: CoolingLoss,
+  unit: UnitOnClock,
   until: Instant | null,
 ): FactsInHours {
   const { fill, door, roomF, beforeF, medicine, coldAtLoss, standingOpenSince } = facts;
@@ -57,6 +72,10 @@ export function factsInHours(
     dryIce: facts.dryIce
       .filter(counts)
       .map(({ at, pounds, cubicFeet }) => ({ hours: hours(at), pounds, cubicFeet })),
+    ice: facts.ice.filter(counts).map(({ at }) => ({ hours: hours(at) })),
+    unitCubicFeet: unit.cubicFeet,
+    isPartlyCooled: unit.cooling === 'partial',
+    time: uncooledTime(lostAt, ranSpans),
   };
 }
 

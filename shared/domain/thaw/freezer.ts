@@ -1,4 +1,7 @@
 import { hoursInWords, type ClockHours, type FactsInHours } from './facts-in-hours';
+import { freezerSpread, FREEZER_SPREAD_SOURCE, type HeldCold } from './freezer-spread';
+import { LIKELY_DOOR, LIKELY_ROOM_F } from './newton';
+import { spreadReason } from './spread';
 import { ABOVE_LIMIT_HOURS, overruns, warmFindings } from './temperature-record';
 import { ACT_SHARE, doorFactor, doorInWords, roomFactor, roomInWords, THAW_F } from './warming';
 
@@ -37,6 +40,7 @@ interface Span {
  */
 export function freezerHours(facts: FactsInHours): ClockHours {
   const { fill, door, roomF } = facts;
+  const { wallAfter } = facts.time;
   const limitHours = publishedHours(fill);
   const warmingHours =
     (fill === null ? UNKNOWN_FILL_WARMING_HOURS : limitHours) *
@@ -45,8 +49,8 @@ export function freezerHours(facts: FactsInHours): ClockHours {
 
   const events = eventsOf(facts);
   const start: Span = {
-    atRiskHours: Math.min(warmingHours, ACT_SHARE * limitHours),
-    lostHours: limitHours,
+    atRiskHours: wallAfter(Math.min(warmingHours, ACT_SHARE * limitHours)),
+    lostHours: wallAfter(limitHours),
   };
   const end = events.reduce((span, event) => event.apply(span), start);
   const lostHours = Math.max(0, end.lostHours);
@@ -55,13 +59,16 @@ export function freezerHours(facts: FactsInHours): ClockHours {
     `${fillInWords(fill)} freezer${door === 'shut' ? ', door shut' : ''}: ${limitSource(fill)}`,
     ...events.map(({ reason }) => reason),
   ];
-  if (warmingHours < ACT_SHARE * limitHours && end.atRiskHours === warmingHours) {
+  if (warmingHours < ACT_SHARE * limitHours && end.atRiskHours === start.atRiskHours) {
     reasons.push(
-      `At risk from ${hoursInWords(warmingHours)}: ` +
+      `At risk from ${hoursInWords(start.atRiskHours)}: ` +
         `${roomInWords(roomF)}, ${doorInWords(door)} (our estimate)`,
     );
   }
+  const spread = freezerSpread(facts, warmingHours, heldCold(facts), lostHours);
+  reasons.push(...spreadReason('Thawing', spread, lostHours, FREEZER_SPREAD_SOURCE));
   return {
+    ...spread,
     atRiskHours: Math.min(Math.max(0, end.atRiskHours), lostHours),
     lostHours,
     overrunHours: overruns(warmFindings(facts)),
@@ -127,33 +134,53 @@ const warmReadings = (facts: FactsInHours): FreezerEvent[] =>
     },
   }));
 
-const iceAdded = ({ dryIce, fill, roomF, door }: FactsInHours): FreezerEvent[] =>
-  dryIce
-    .filter(({ pounds, cubicFeet }) => pounds > 0 && cubicFeet > 0)
-    .map(({ hours, pounds, cubicFeet }) => {
-      const mostHours = fill !== null && fill >= FULL_FROM ? FULL_HOURS : HALF_FULL_HOURS;
-      const share = Math.min(1, pounds / cubicFeet / DRY_ICE_POUNDS_PER_CUBIC_FOOT);
-      const heldHours = mostHours * share;
-      return {
-        hours,
-        rank: 2,
-        reason:
-          `${pounds} lb of dry ice in ${cubicFeet} cu ft after ${hoursInWords(hours)}: ` +
-          `${hoursInWords(heldHours)} from then (USDA FSIS, FDA: 50 lb in a full 18 cu ft, 2 days)`,
-        apply: (span) => {
-          // Ice that comes too late revives nothing, and a little ice never shortens anything.
-          if (hours >= span.lostHours) return span;
-          const warmHours = ACT_SHARE * heldHours * roomFactor(roomF, THAW_F) * doorFactor(door);
-          const isStillSafe = hours < span.atRiskHours;
-          return {
-            atRiskHours: isStillSafe
-              ? Math.max(span.atRiskHours, hours + warmHours)
-              : span.atRiskHours,
-            lostHours: Math.max(span.lostHours, hours + heldHours),
-          };
-        },
-      };
-    });
+type DryIceInHours = FactsInHours['dryIce'][number];
+
+const realIce = ({ dryIce }: FactsInHours): readonly DryIceInHours[] =>
+  dryIce.filter(({ pounds, cubicFeet }) => pounds > 0 && cubicFeet > 0);
+
+/** How long dry ice holds a freezer by the published rule, in proportion to its pounds. */
+function heldHoursOf({ pounds, cubicFeet }: DryIceInHours, fill: number | null): number {
+  const mostHours = fill !== null && fill >= FULL_FROM ? FULL_HOURS : HALF_FULL_HOURS;
+  return mostHours * Math.min(1, pounds / cubicFeet / DRY_ICE_POUNDS_PER_CUBIC_FOOT);
+}
+
+const heldCold = (facts: FactsInHours): readonly HeldCold[] =>
+  realIce(facts).map((ice) => {
+    const heldHours = heldHoursOf(ice, facts.fill);
+    const { roomF, door } = facts;
+    return {
+      hours: ice.hours,
+      possibleHours: ACT_SHARE * heldHours * roomFactor(roomF, THAW_F) * doorFactor(door),
+      likelyHours: heldHours * roomFactor(roomF ?? LIKELY_ROOM_F, THAW_F) * LIKELY_DOOR[door],
+    };
+  });
+
+const iceAdded = (facts: FactsInHours): FreezerEvent[] =>
+  realIce(facts).map((ice) => {
+    const { fill, roomF, door } = facts;
+    const { hours, pounds, cubicFeet } = ice;
+    const heldHours = heldHoursOf(ice, fill);
+    return {
+      hours,
+      rank: 2,
+      reason:
+        `${pounds} lb of dry ice in ${cubicFeet} cu ft after ${hoursInWords(hours)}: ` +
+        `${hoursInWords(heldHours)} from then (USDA FSIS, FDA: 50 lb in a full 18 cu ft, 2 days)`,
+      apply: (span) => {
+        // Ice that comes too late revives nothing, and a little ice never shortens anything.
+        if (hours >= span.lostHours) return span;
+        const warmHours = ACT_SHARE * heldHours * roomFactor(roomF, THAW_F) * doorFactor(door);
+        const isStillSafe = hours < span.atRiskHours;
+        return {
+          atRiskHours: isStillSafe
+            ? Math.max(span.atRiskHours, hours + warmHours)
+            : span.atRiskHours,
+          lostHours: Math.max(span.lostHours, hours + heldHours),
+        };
+      },
+    };
+  });
 
 function fillInWords(fill: number | null): string {
   if (fill === null) return 'Unknown how full:';

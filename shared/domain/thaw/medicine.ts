@@ -25,9 +25,9 @@ export function medicineHours(facts: FactsInHours): ClockHours {
   const medicine = facts.medicine;
   switch (medicine?.kind) {
     case 'insulin':
-      return insulinHours(medicine, facts.roomF);
+      return onTheWall(insulinHours(medicine, facts.roomF), facts);
     case 'labelled':
-      return labelledHours(medicine, facts.roomF);
+      return onTheWall(labelledHours(medicine, facts.roomF), facts);
     case 'injectable':
       return clock(0, null, 'medicine-quarantine', [
         'Vaccine or injectable: set apart, keep cold, ask the pharmacist (no hour is published)',
@@ -39,8 +39,21 @@ export function medicineHours(facts: FactsInHours): ClockHours {
     case 'label-not-read':
     case 'rather-not-say':
     case undefined:
-      return labelNotReadHours(medicine);
+      return onTheWall(labelNotReadHours(medicine), facts);
   }
+}
+
+/** Limits of medicine count hours out of the cold; hours in which the unit ran are not among them. */
+function onTheWall(hours: ClockHours, { time }: FactsInHours): ClockHours {
+  const wall = (uncooled: number): number => time.wallAfter(uncooled);
+  const { likelyHours, lostHours } = hours;
+  return {
+    ...hours,
+    atRiskHours: wall(hours.atRiskHours),
+    earliestHours: wall(hours.earliestHours),
+    likelyHours: likelyHours === null ? null : wall(likelyHours),
+    lostHours: lostHours === null ? null : wall(lostHours),
+  };
 }
 
 function insulinHours(medicine: Medicine, roomF: number | null): ClockHours {
@@ -92,14 +105,17 @@ const frozenOr = (medicine: Medicine | null | undefined, atRiskHours: number): n
 /** Milk and opened formula follow the refrigerator, and are looked at from 2 h (CDC: formula 2 h). */
 function milkHours(facts: FactsInHours): ClockHours {
   const food = freshFoodHours(facts);
+  const lookedAtHours = facts.time.wallAfter(COOL_HOURS);
   return {
     ...food,
-    atRiskHours: Math.min(food.atRiskHours, COOL_HOURS),
+    atRiskHours: Math.min(food.atRiskHours, lookedAtHours),
+    earliestHours: Math.min(food.earliestHours, lookedAtHours),
     reasons: [...food.reasons, 'Milk or formula: looked at from 2 h (CDC)'],
     advice: 'milk-or-formula',
   };
 }
 
+/** No measurement says how medicine warms: its limit is what is likely, and its risk what is possible. */
 function clock(
   atRiskHours: number,
   lostHours: number | null,
@@ -107,8 +123,11 @@ function clock(
   reasons: readonly string[],
 ): ClockHours {
   const lost = lostHours === null ? null : Math.max(0, lostHours);
+  const atRisk = Math.max(0, Math.min(atRiskHours, lost ?? atRiskHours));
   return {
-    atRiskHours: Math.max(0, Math.min(atRiskHours, lost ?? atRiskHours)),
+    atRiskHours: atRisk,
+    earliestHours: atRisk,
+    likelyHours: lost,
     lostHours: lost,
     overrunHours: [],
     reasons,

@@ -1,4 +1,4 @@
-import type { CompartmentFacts, CompartmentKind, CoolingLoss } from '../cold-unit';
+import type { CompartmentFacts, CompartmentKind, CoolingLoss, UnitOnClock } from '../cold-unit';
 import { addHours, hoursBetween, type Instant } from '../instant';
 import type { AdviceKey } from './advice';
 import { COMMERCIAL_LIMIT_F, commercialStockHours, NOTICE_HOURS } from './commercial-stock';
@@ -6,6 +6,7 @@ import { factsInHours, type ClockHours, type FactsInHours } from './facts-in-hou
 import { freezerHours } from './freezer';
 import { freshFoodHours } from './fresh-food';
 import { medicineHours } from './medicine';
+import { inOrder } from './uncooled-time';
 import { CONSUMER_LIMIT_F, THAW_F } from './warming';
 
 export const COMPARTMENT_STATES = ['still-safe', 'at-risk', 'lost', 'recovering'] as const;
@@ -20,6 +21,13 @@ export interface ThawClock {
    * them lost (vaccines and injectable biologics).
    */
   readonly saveByAt: Instant | null;
+  /**
+   * How surely they keep until then: from when they may have passed their temperature, and from when
+   * they likely have, by measured warming. Our estimates; never after `saveByAt`.
+   */
+  readonly earliestAt: Instant;
+  /** `null` with `saveByAt`. */
+  readonly likelyAt: Instant | null;
   /** In plain words, each with the name of its source. */
   readonly reasons: readonly string[];
   readonly advice: AdviceKey;
@@ -31,19 +39,31 @@ export interface ThawClock {
   readonly recoveredAt: Instant | null;
 }
 
+const UNKNOWN_UNIT: UnitOnClock = { cubicFeet: null, cooling: 'unknown' };
+
 /**
  * The clock of one compartment. It depends on what is known and not on the time of day, so it is
  * worked out once whenever the facts change.
+ *
+ * Hours without cooling are added up over every time that the unit stopped. Only where a thermometer or
+ * a look inside proved the contents cold again while it ran in between does the clock begin anew.
  */
-export function thawClock(facts: CompartmentFacts, loss: CoolingLoss): ThawClock {
+export function thawClock(
+  told: CompartmentFacts,
+  toldLoss: CoolingLoss,
+  unit: UnitOnClock = UNKNOWN_UNIT,
+): ThawClock {
+  const { facts, loss } = sinceLastProof(told, toldLoss, unit);
   const recoveredAt = recoveryProof(facts, loss);
-  const hours = CLOCKS[facts.kind](factsInHours(facts, loss.lostAt, recoveredAt));
+  const hours = CLOCKS[facts.kind](factsInHours(facts, loss, unit, recoveredAt));
   const lostHours = lostHoursOf(hours, loss);
-  const atRiskHours = Math.min(hours.atRiskHours, lostHours ?? Infinity);
+  const within = (moment: number): number => Math.min(moment, lostHours ?? Infinity);
   return {
-    atRiskAt: momentAfter(loss, atRiskHours),
+    atRiskAt: momentAfter(loss, within(hours.atRiskHours)),
     saveByAt: lostHours === null ? null : momentAfter(loss, lostHours),
-    reasons: hours.reasons,
+    earliestAt: momentAfter(loss, within(hours.earliestHours)),
+    likelyAt: hours.likelyHours === null ? null : momentAfter(loss, within(hours.likelyHours)),
+    reasons: [...hours.reasons, ...runReasons(toldLoss, loss)],
     advice: hours.advice,
     lostWord: facts.kind === 'medicine' ? 'Replace' : 'Lost',
     noticeAt: facts.kind === 'commercial-stock' ? addHours(loss.lostAt, NOTICE_HOURS) : null,
@@ -110,6 +130,73 @@ function lostHoursOf({ lostHours, overrunHours }: ClockHours, loss: CoolingLoss)
 /** Whole milliseconds, so that a moment survives the wire and the database unchanged. */
 const momentAfter = (loss: CoolingLoss, hours: number): Instant =>
   Math.round(addHours(loss.lostAt, hours));
+
+/** Only food and milk come back from the cold as they were; medicine adds up, a kitchen has its log. */
+const mayBeginAnew = ({ kind, medicine }: CompartmentFacts): boolean =>
+  kind === 'fresh-food' ||
+  kind === 'freezer' ||
+  medicine?.kind === 'milk-or-formula' ||
+  medicine?.kind === 'frozen-milk';
+
+/**
+ * What counts since the contents were last proved cold while the unit ran in between. Contents that
+ * were lost before it ran stay lost.
+ */
+function sinceLastProof(
+  facts: CompartmentFacts,
+  loss: CoolingLoss,
+  unit: UnitOnClock,
+): { readonly facts: CompartmentFacts; readonly loss: CoolingLoss } {
+  if (!loss.ranSpans?.length || !mayBeginAnew(facts)) return { facts, loss };
+  let since = { facts, loss };
+  const spans = inOrder(loss.ranSpans, loss.lostAt);
+  for (const [i, span] of spans.entries()) {
+    const before: CoolingLoss = {
+      lostAt: since.loss.lostAt,
+      restoredAt: span.from,
+      ranSpans: spans.slice(0, i),
+    };
+    const provedAt = recoveryProof(since.facts, before);
+    if (provedAt === null || provedAt >= span.to) continue;
+    const clock = thawClock(until(since.facts, provedAt), before, unit);
+    if (!savedBy(clock, span.from)) continue;
+    const anew = { ...loss, lostAt: span.to, ranSpans: spans.slice(i + 1) };
+    since = { facts: from(since.facts, provedAt), loss: anew };
+  }
+  return since;
+}
+
+const until = (facts: CompartmentFacts, last: Instant): CompartmentFacts =>
+  having(facts, (at) => at <= last);
+
+const from = (facts: CompartmentFacts, first: Instant): CompartmentFacts =>
+  having(facts, (at) => at >= first);
+
+function having(facts: CompartmentFacts, counts: (at: Instant) => boolean): CompartmentFacts {
+  const counted = <T extends { readonly at: Instant }>(all: readonly T[]): readonly T[] =>
+    all.filter(({ at }) => counts(at));
+  const { standingOpenSince } = facts;
+  return {
+    ...facts,
+    readings: counted(facts.readings),
+    inspections: counted(facts.inspections),
+    dryIce: counted(facts.dryIce),
+    ice: counted(facts.ice),
+    standingOpenSince:
+      standingOpenSince !== null && counts(standingOpenSince) ? standingOpenSince : null,
+  };
+}
+
+function runReasons(told: CoolingLoss, counted: CoolingLoss): readonly string[] {
+  const words: string[] = [];
+  if (counted.lostAt !== told.lostAt) {
+    words.push('Proved cold while it ran in between: counted from when it stopped again');
+  }
+  if (inOrder(counted.ranSpans ?? [], counted.lostAt).length > 0) {
+    words.push('Ran in between: the hours without cooling are added up (USDA FSIS)');
+  }
+  return words;
+}
 
 /** Source: FDA: medicine is stored at 36-46 F (2-8 C). */
 const MEDICINE_LIMIT_F = 46;

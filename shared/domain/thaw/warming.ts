@@ -22,7 +22,7 @@ export const ACT_SHARE = 0.75;
 export const ASSUMED_ROOM_F = 90;
 
 /** The room for which the published hours are taken to hold. Our estimate; the sources name none. */
-const REFERENCE_ROOM_F = 72;
+export const REFERENCE_ROOM_F = 72;
 
 /** Our estimate, no source: published hours hold for a shut door. 'few' is once or twice. */
 const DOOR_FACTORS: Readonly<Record<DoorUse, number>> = {
@@ -33,7 +33,7 @@ const DOOR_FACTORS: Readonly<Record<DoorUse, number>> = {
 };
 
 /** Assumed when nobody knows how cold it was: the published 4 h assume a unit that worked. */
-const ASSUMED_BEFORE_F = 37;
+export const ASSUMED_BEFORE_F = 37;
 
 /**
  * Ratio of the temperature differences that drive the warming, against the reference room.

@@ -10,32 +10,29 @@ import {
   signal,
   viewChild,
 } from '@angular/core';
-import type { CallDetail, CompartmentFacts, UnitFacts } from '@shared/contract/calls';
-import type { CompartmentKind, InspectionFinding, UnitKind } from '@shared/domain/cold-unit';
+import type { CallDetail, UnitFacts } from '@shared/contract/calls';
+import type { UnitKind } from '@shared/domain/cold-unit';
 import { UNIT_KINDS } from '@shared/domain/cold-unit';
+import { DEFAULT_VALUES } from '@shared/domain/food-value';
 import type { Instant } from '@shared/domain/instant';
+import type { Span } from '@shared/domain/thaw/uncooled-time';
 import { newId } from '../core/api';
 import { Clock } from '../core/clock';
 import { Session } from '../core/session';
 import { Zone } from '../core/zone';
 import { AddressField } from '../intake/address-field';
-import { changeCompartment, changeUnit, newUnit } from '../intake/intake-draft';
+import { changeUnit, newUnit } from '../intake/intake-draft';
+import { PowerSpans } from '../intake/power-spans';
 import { readTimeEntry } from '../intake/time-entry';
 import { UnitCard } from '../intake/unit-card';
 import { CallModel } from './call-model';
-import { COMPARTMENT_WORDS, UNIT_WORDS } from './compartment-words';
+import { UNIT_WORDS } from './compartment-words';
 import { fromNowWords } from './time-words';
-
-const FINDINGS: readonly { readonly value: InspectionFinding; readonly label: string }[] = [
-  { value: 'ice-crystals', label: 'Ice crystals' },
-  { value: 'at-or-below-40', label: '40 °F or below' },
-  { value: 'thawed', label: 'Thawed' },
-];
 
 /** Corrects a call and adds what is found out later: readings, a look inside, dry ice. */
 @Component({
   selector: 'thaw-amend-form',
-  imports: [AddressField, UnitCard],
+  imports: [AddressField, PowerSpans, UnitCard],
   templateUrl: './amend-form.html',
   styleUrls: ['../intake/fields.scss', './amend-form.scss'],
   changeDetection: ChangeDetectionStrategy.OnPush,
@@ -59,9 +56,7 @@ export class AmendForm {
   protected readonly error = signal('');
   protected readonly isSaving = signal(false);
 
-  protected readonly findings = FINDINGS;
   protected readonly unitKinds = UNIT_KINDS.map((kind) => ({ kind, name: UNIT_WORDS[kind] }));
-  protected readonly words = COMPARTMENT_WORDS;
   protected readonly unitWords = UNIT_WORDS;
 
   protected readonly out = computed(() => this.meaning(this.edited()?.outAt ?? null));
@@ -83,7 +78,8 @@ export class AmendForm {
 
   protected addUnit(kind: string): void {
     if (kind === '') return;
-    this.set({ units: [...(this.edited()?.units ?? []), newUnit(kind as UnitKind, newId())] });
+    const unit = newUnit(kind as UnitKind, newId(), this.session.settings() ?? DEFAULT_VALUES);
+    this.set({ units: [...(this.edited()?.units ?? []), unit] });
   }
 
   protected removeUnit(id: string): void {
@@ -98,49 +94,6 @@ export class AmendForm {
     else this.set({ backText: text, backAt: at, timesTouched: true, stillOut: false });
   }
 
-  protected addReading(unit: UnitFacts, compartment: CompartmentFacts, text: string): void {
-    const temperatureF = Number(text);
-    if (text.trim() === '' || !(temperatureF >= -60 && temperatureF <= 150)) return;
-    const readings = [...compartment.readings, { at: this.clock.exact(), temperatureF }];
-    this.setUnit(unit.id, changeCompartment(unit, compartment.kind, { readings }));
-  }
-
-  protected addInspection(unit: UnitFacts, compartment: CompartmentFacts, finding: string): void {
-    if (finding === '') return;
-    const look = { at: this.clock.exact(), finding: finding as InspectionFinding };
-    const inspections = [...compartment.inspections, look];
-    this.setUnit(unit.id, changeCompartment(unit, compartment.kind, { inspections }));
-  }
-
-  protected addDryIce(
-    unit: UnitFacts,
-    compartment: CompartmentFacts,
-    pounds: string,
-    cubicFeet: string,
-  ): void {
-    const ice = { at: this.clock.exact(), pounds: Number(pounds), cubicFeet: Number(cubicFeet) };
-    if (!(ice.pounds > 0 && ice.cubicFeet > 0)) return;
-    const dryIce = [...compartment.dryIce, ice];
-    this.setUnit(unit.id, changeCompartment(unit, compartment.kind, { dryIce }));
-  }
-
-  protected foundWords(compartment: CompartmentFacts): string {
-    const { readings, inspections, dryIce } = compartment;
-    return [
-      ...readings.map((one) => `${one.temperatureF} °F at ${this.zone.dayTime(one.at)}`),
-      ...inspections.map(
-        (one) =>
-          `${FINDINGS.find(({ value }) => value === one.finding)?.label ?? one.finding} at ${this.zone.dayTime(one.at)}`,
-      ),
-      ...dryIce.map((one) => `${one.pounds} lb dry ice at ${this.zone.dayTime(one.at)}`),
-    ].join('; ');
-  }
-
-  protected isFrozenKind(kind: CompartmentKind): boolean {
-    return kind === 'freezer';
-  }
-
-  /** Enter counts whenever it comes: what is on its way to the server goes first, and nothing is lost. */
   protected async save(): Promise<void> {
     if (this.isSaving()) return;
     this.isSaving.set(true);
@@ -170,6 +123,8 @@ export class AmendForm {
       mayText: edited.mayText,
       language: edited.language,
       units: [...edited.units],
+      powerOnSpans: [...edited.powerOnSpans],
+      householdAtRisk: edited.householdAtRisk,
       ...(edited.timesTouched
         ? {
             powerOutAt: edited.outAt,
@@ -198,6 +153,8 @@ interface Edited {
   readonly stillOut: boolean;
   /** Times that nobody touched keep following the outage area. */
   readonly timesTouched: boolean;
+  readonly powerOnSpans: readonly Span[];
+  readonly householdAtRisk: boolean;
   readonly units: readonly UnitFacts[];
 }
 
@@ -212,6 +169,8 @@ const startFrom = (detail: CallDetail): Edited => ({
   backAt: detail.powerBackAt,
   stillOut: detail.powerBackAt === null,
   timesTouched: false,
+  powerOnSpans: detail.powerOnSpans,
+  householdAtRisk: detail.row.householdAtRisk,
   units: detail.units,
 });
 

@@ -16,7 +16,8 @@ import {
 } from '@angular/core';
 import { MatIcon } from '@angular/material/icon';
 import { isOpen, STATE_WORDS } from '@shared/domain/call-state';
-import type { Instant } from '@shared/domain/instant';
+import { addMinutes, type Instant } from '@shared/domain/instant';
+import { sourcesOf } from '@shared/domain/thaw/sources';
 import { CAUTIONS } from '@shared/domain/phone-check/cautions';
 import { formatPhone } from '@shared/domain/phone-number';
 import { BoardStore } from '../core/board-store';
@@ -119,6 +120,11 @@ export class CallPanel {
     }));
   });
 
+  /** Where the clocks of this call come from. */
+  protected readonly sources = computed(() =>
+    sourcesOf(this.strip()?.facts.compartments.map(({ kind }) => kind) ?? []),
+  );
+
   protected readonly urgency = computed(() => {
     const ranked = this.board.ranked().find(({ call }) => call.id === this.callId());
     if (!ranked) return null;
@@ -126,6 +132,7 @@ export class CallPanel {
       lane: LANE_WORDS[ranked.urgency.lane],
       loss: lossWords(ranked.urgency),
       reasons: ranked.urgency.reasons,
+      thereAt: this.when(addMinutes(this.clock.now(), this.board.weighing().reachMinutes)),
     };
   });
 
@@ -142,7 +149,10 @@ export class CallPanel {
     const out = `Power went ${this.when(detail.powerOutAt)} (${fromNowWords(detail.powerOutAt, this.clock.now())})`;
     const back =
       detail.powerBackAt === null ? 'still out' : `back ${this.when(detail.powerBackAt)}`;
-    return `${out}, ${back}; ${detail.timesFrom === 'area' ? 'as the outage area says' : 'as the caller says'}`;
+    const between = detail.powerOnSpans
+      .map(({ from, to }) => `, in between back ${this.when(from)} to ${this.when(to)}`)
+      .join('');
+    return `${out}${between}, ${back}; ${detail.timesFrom === 'area' ? 'as the outage area says' : 'as the caller says'}`;
   });
 
   /** Of a call in several outage areas: which of them counts, and why. */

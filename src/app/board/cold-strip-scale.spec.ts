@@ -79,6 +79,15 @@ describe('lanesByKind', () => {
     });
   });
 
+  it('marks the moment from which contents are likely warm, where it is told apart', () => {
+    const [freezer] = facts.compartments;
+    const laneWith = (likelyAt: number, now = NOW) =>
+      lanesByKind({ ...facts, compartments: [{ ...freezer!, likelyAt }] }, now)[0];
+    expect(laneWith(at(12))).toMatchObject({ likelyAt: at(12), likely: shareOfHours(12) });
+    expect(laneWith(at(20.9))).toMatchObject({ likelyAt: null, likely: null });
+    expect(laneWith(at(12), at(21))).toMatchObject({ state: 'lost', likelyAt: null });
+  });
+
   it('counts the moment of the save-by itself as lost', () => {
     expect(lanesByKind(facts, at(1) - 1)[0]?.state).toBe('at-risk');
     expect(lanesByKind(facts, at(1))[0]?.state).toBe('lost');
@@ -167,6 +176,22 @@ describe('stripWords', () => {
   it('says for each compartment what the picture shows', () => {
     expect(stripWords(lanesByKind(facts, NOW), NOW, clock)).toBe(
       'Fresh food: at risk, save by +1, in 1 h 00. Freezer: at risk from +15, save by +21, in 21 h 00.',
+    );
+  });
+
+  it('says from when contents are likely warm, and still names the save-by', () => {
+    const [freezer] = facts.compartments;
+    const wordsAt = (now: number) =>
+      stripWords(
+        lanesByKind({ ...facts, compartments: [{ ...freezer!, likelyAt: at(12) }] }, now),
+        now,
+        clock,
+      );
+    expect(wordsAt(NOW)).toBe(
+      'Freezer: at risk from +15, likely thawing from +12, save by +21, in 21 h 00.',
+    );
+    expect(wordsAt(at(16))).toBe(
+      'Freezer: at risk, likely thawing by now, save by +21, in 5 h 00.',
     );
   });
 

@@ -1,6 +1,6 @@
 import type { CompartmentKind } from '@shared/domain/cold-unit';
 import { COMPARTMENT_KINDS } from '@shared/domain/cold-unit';
-import { HOUR_MS, type Instant } from '@shared/domain/instant';
+import { HOUR_MS, MINUTE_MS, type Instant } from '@shared/domain/instant';
 
 /**
  * The ruler of every cold strip, in hours from now. It is the same in every row and on every
@@ -59,6 +59,8 @@ export const shareOf = (at: Instant, now: Instant): number => shareOfHours((at -
 export interface StripCompartment {
   readonly kind: CompartmentKind;
   readonly atRiskAt: Instant;
+  /** From when they have likely passed their temperature; left out where nobody has worked it out. */
+  readonly likelyAt?: Instant | null;
   /** `null`: no published hour says that these contents are lost. */
   readonly saveByAt: Instant | null;
 }
@@ -86,6 +88,9 @@ export interface StripLane {
   /** The hatched span: at risk until the tick. */
   readonly riskFrom: number;
   readonly riskTo: number;
+  /** From when the contents are likely warm, if that is told apart from the save-by; and where it stands. */
+  readonly likelyAt: Instant | null;
+  readonly likely: number | null;
   /** Where the tick stands; `null` when there is no save-by to draw. */
   readonly tick: number | null;
   /** The save-by lies outside the ruler on this side. */
@@ -160,9 +165,29 @@ function laneOf(
     coldTo: riskFrom,
     riskFrom,
     riskTo,
+    likelyAt: likelyOf(compartment, state),
+    likely: likelyShare(likelyOf(compartment, state), now),
     tick: saveByAt === null ? null : shareOf(saveByAt, now),
     beyond: saveByAt === null ? null : sideBeyond((saveByAt - now) / HOUR_MS),
   };
+}
+
+/** Closer to the save-by than this the two are one mark. */
+const TOLD_APART_MS = 15 * MINUTE_MS;
+
+function likelyOf(
+  { likelyAt = null, saveByAt }: StripCompartment,
+  state: StripState,
+): Instant | null {
+  if (likelyAt === null || saveByAt === null || state === 'lost' || state === 'stopped')
+    return null;
+  return saveByAt - likelyAt >= TOLD_APART_MS ? likelyAt : null;
+}
+
+/** Outside the ruler there is no mark; the words tell it. */
+function likelyShare(likelyAt: Instant | null, now: Instant): number | null {
+  if (likelyAt === null || sideBeyond((likelyAt - now) / HOUR_MS) !== null) return null;
+  return shareOf(likelyAt, now);
 }
 
 function sideBeyond(hours: number): StripLane['beyond'] {

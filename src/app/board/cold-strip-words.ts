@@ -36,6 +36,18 @@ function stateWords(lane: StripLane, now: Instant, clock: (at: Instant) => strin
       ? `replace, its limit passed at ${when}`
       : `passed its save-by at ${when}`;
   }
-  if (state === 'at-risk') return `at risk, save by ${when}`;
-  return `at risk from ${clock(atRiskAt)}, save by ${when}`;
+  const likely = likelyWords(lane, now, clock);
+  if (state === 'at-risk') return `at risk, ${likely}save by ${when}`;
+  return `at risk from ${clock(atRiskAt)}, ${likely}save by ${when}`;
+}
+
+/** Never that contents are safe until then: from here they are likely warm, by measured warming. */
+function likelyWords(
+  { kind, likelyAt }: StripLane,
+  now: Instant,
+  clock: (at: Instant) => string,
+): string {
+  if (likelyAt === null) return '';
+  const what = kind === 'freezer' ? 'thawing' : 'warm';
+  return likelyAt <= now ? `likely ${what} by now, ` : `likely ${what} from ${clock(likelyAt)}, `;
 }

@@ -1,4 +1,4 @@
-import type { CompartmentKind, UnitKind } from '@shared/domain/cold-unit';
+import type { CompartmentKind } from '@shared/domain/cold-unit';
 
 /** How a compartment is called on every screen, and the letter that stands for it on a strip. */
 export const COMPARTMENT_WORDS: Readonly<
@@ -13,11 +13,4 @@ export const COMPARTMENT_WORDS: Readonly<
   'commercial-stock': { letter: 'C', name: 'Commercial stock', short: 'commercial' },
 };
 
-export const UNIT_WORDS: Readonly<Record<UnitKind, string>> = {
-  refrigerator: 'Refrigerator',
-  'fridge-freezer': 'Fridge-freezer',
-  'upright-freezer': 'Upright freezer',
-  'chest-freezer': 'Chest freezer',
-  'walk-in': 'Walk-in',
-  'medicine-fridge': 'Medicine fridge',
-};
+export { UNIT_WORDS } from '@shared/domain/cold-unit';

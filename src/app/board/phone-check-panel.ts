@@ -13,17 +13,17 @@ import {
   untracked,
 } from '@angular/core';
 import { MatIcon } from '@angular/material/icon';
+import type { UnitFacts } from '@shared/contract/calls';
 import { CAUSES, LIKELIHOOD_WORDS } from '@shared/domain/phone-check/causes';
 import { CAUTIONS } from '@shared/domain/phone-check/cautions';
 import {
-  conclude,
-  isAnswerTo,
-  nextQuestion,
-  OUTCOME_WORDS,
-  type Step,
-  stepsSoFar,
-} from '@shared/domain/phone-check/phone-check';
-import type { Answer, CheckUnit, Question } from '@shared/domain/phone-check/question';
+  concludeCall,
+  nextOfCall,
+  stepsOfCall,
+  type UnitStep,
+} from '@shared/domain/phone-check/call-check';
+import { isAnswerTo, OUTCOME_WORDS } from '@shared/domain/phone-check/phone-check';
+import type { Answer, Question } from '@shared/domain/phone-check/question';
 import { PART_WORDS } from '@shared/domain/skills';
 import { Announce } from '../core/announce';
 import { Clock } from '../core/clock';
@@ -35,7 +35,7 @@ import { SKILL_WORDS } from './queue-words';
 
 /**
  * The phone check of the open call: one question at a time, safety first, answered by a digit or
- * a letter. Answers and running timers survive a reload; the outcome is handed to the conclusion.
+ * a letter; one unit after the other, and what concerns the whole home once. Answers and running timers survive a reload; the outcome is handed to the conclusion.
  */
 @Component({
   selector: 'thaw-phone-check-panel',
@@ -67,25 +67,37 @@ export class PhoneCheckPanel {
   protected readonly partWords = PART_WORDS;
   protected readonly skillWords = SKILL_WORDS;
 
-  protected readonly unit = computed<CheckUnit | null>(() => this.call.detail()?.units[0] ?? null);
+  private readonly units = computed(() => this.call.detail()?.units ?? []);
+  private readonly asked = computed(() => nextOfCall(this.draft().answers, this.units()));
+  /** The units of the call in the order in which they are asked about, and how far each is. */
+  protected readonly unitRows = computed(() => {
+    const ofUnits = this.conclusion()?.ofUnits ?? [];
+    const asked = this.asked()?.unit.id;
+    return this.units().map((unit) => {
+      const outcome = ofUnits.find((one) => one.unit.id === unit.id)?.outcome ?? null;
+      return {
+        id: unit.id,
+        name: this.nameOf(unit),
+        isAsked: unit.id === asked,
+        words: outcome === null ? '' : OUTCOME_WORDS[outcome],
+      };
+    });
+  });
+  /** Of each unit that was asked about: what it may be. */
+  protected readonly found = computed(() =>
+    (this.conclusion()?.ofUnits ?? [])
+      .filter(({ causes }) => causes.length > 0)
+      .map((one) => ({ name: this.nameById(one.unit.id), causes: one.causes })),
+  );
   protected readonly unitWords = computed(() => {
-    const unit = this.call.detail()?.units[0];
-    if (!unit) return '';
-    return unit.place ? `${UNIT_WORDS[unit.kind]}, ${unit.place}` : UNIT_WORDS[unit.kind];
+    const asked = this.asked()?.unit;
+    const unit = this.units().find(({ id }) => id === asked?.id) ?? this.units()[0];
+    return unit ? this.nameOf(unit) : '';
   });
   protected readonly isUnsent = computed(() => !this.draft().isSent);
-  protected readonly question = computed<Question | null>(() => {
-    const unit = this.unit();
-    return unit ? nextQuestion(this.draft().answers, unit) : null;
-  });
-  protected readonly steps = computed(() => {
-    const unit = this.unit();
-    return unit ? stepsSoFar(this.draft().answers, unit) : [];
-  });
-  protected readonly conclusion = computed(() => {
-    const unit = this.unit();
-    return unit ? conclude(this.draft().answers, unit) : null;
-  });
+  protected readonly question = computed<Question | null>(() => this.asked()?.question ?? null);
+  protected readonly steps = computed(() => stepsOfCall(this.draft().answers, this.units()));
+  protected readonly conclusion = computed(() => concludeCall(this.draft().answers, this.units()));
   protected readonly outcomeWords = computed(() => {
     const outcome = this.conclusion()?.outcome ?? null;
     return outcome === null ? '' : OUTCOME_WORDS[outcome];
@@ -96,7 +108,7 @@ export class PhoneCheckPanel {
   protected readonly timer = computed(() => {
     const question = this.question();
     if (!question?.timerSeconds) return null;
-    const startedAt = this.draft().timers[question.id] ?? null;
+    const startedAt = this.draft().timers[this.asked()?.key ?? ''] ?? null;
     const totalMs = question.timerSeconds * 1000;
     const leftMs = startedAt === null ? totalMs : startedAt + totalMs - this.second();
     return {
@@ -165,10 +177,11 @@ export class PhoneCheckPanel {
   }
 
   protected give(question: Question, answer: string | number): void {
-    if (!isAnswerTo(question, answer)) return;
+    const asked = this.asked();
+    if (asked?.question !== question || !isAnswerTo(question, answer)) return;
     this.change({
       ...this.draft(),
-      answers: { ...this.draft().answers, [question.id]: answer },
+      answers: { ...this.draft().answers, [asked.key]: answer },
       isSent: false,
     });
     this.focus();
@@ -181,23 +194,38 @@ export class PhoneCheckPanel {
   }
 
   /** Takes back the answer to this question, and with it whatever followed from it. */
-  protected takeBack({ question }: Step): void {
-    const { [question.id]: _, ...answers } = this.draft().answers;
+  protected takeBack({ key }: UnitStep): void {
+    const { [key]: _, ...answers } = this.draft().answers;
     this.change({ ...this.draft(), answers, isSent: false });
     this.focus();
     void this.sync();
   }
 
   protected startTimer(): void {
-    const question = this.question();
-    if (!question?.timerSeconds) return;
+    const asked = this.asked();
+    if (!asked?.question.timerSeconds) return;
+    const { question, key } = asked;
     const now = this.clock.exact();
     this.second.set(now);
-    this.change({ ...this.draft(), timers: { ...this.draft().timers, [question.id]: now } });
-    this.announce.say(`The timer runs: ${question.timerSeconds / 60} minutes.`);
+    this.change({ ...this.draft(), timers: { ...this.draft().timers, [key]: now } });
+    this.announce.say(`The timer runs: ${(question.timerSeconds ?? 0) / 60} minutes.`);
   }
 
-  protected answerWords({ question, answer }: Step): string {
+  private nameOf({ kind, place }: UnitFacts): string {
+    return place ? `${UNIT_WORDS[kind]}, ${place}` : UNIT_WORDS[kind];
+  }
+
+  private nameById(unitId: string): string {
+    const unit = this.units().find(({ id }) => id === unitId);
+    return unit && this.units().length > 1 ? this.nameOf(unit) : '';
+  }
+
+  /** Of a call with several units: which one a question was about. */
+  protected stepUnit({ unit }: UnitStep): string {
+    return this.nameById(unit.id);
+  }
+
+  protected answerWords({ question, answer }: UnitStep): string {
     if (typeof answer === 'number') return `${answer} °F`;
     return question.answers.find(({ id }) => id === answer)?.label ?? answer;
   }

@@ -9,7 +9,7 @@ import { BoardStore } from '../core/board-store';
 import { Clock } from '../core/clock';
 import { Keys } from '../core/keys';
 import { NO_FILTER, type QueueFilter } from '../core/queue-filter';
-import { type RankedCall, rankedCall } from '../core/ranking';
+import { DEFAULT_WEIGHING, type RankedCall, rankedCall } from '../core/ranking';
 import { Session } from '../core/session';
 import { Queue } from './queue';
 
@@ -43,6 +43,8 @@ const aCall = (number: number, part: Partial<CallRow> = {}): CallRow => ({
           kind: 'fresh-food',
           valueCents: 15_000,
           atRiskAt: NOW + HOUR_MS,
+          earliestAt: NOW + HOUR_MS,
+          likelyAt: NOW + 2 * HOUR_MS,
           saveByAt: NOW + 2 * HOUR_MS,
         },
       ],
@@ -54,6 +56,7 @@ const aCall = (number: number, part: Partial<CallRow> = {}): CallRow => ({
   technicianId: null,
   etaAt: null,
   danger: false,
+  householdAtRisk: false,
   unreadTexts: 0,
   cutOff: false,
   source: 'phone',
@@ -78,7 +81,7 @@ class FakeBoard {
   announce(...calls: CallRow[]): void {
     this.order.set(calls);
     this.calls.set(new Map([...this.calls(), ...calls.map((call) => [call.id, call] as const)]));
-    this.ranked.set(calls.map((call) => rankedCall(call, NOW, 5)));
+    this.ranked.set(calls.map((call) => rankedCall(call, NOW, DEFAULT_WEIGHING)));
   }
 }
 

@@ -4,7 +4,6 @@ import type { BoardChange, Numbered } from '@shared/contract/realtime';
 import type { Position } from '@shared/contract/routes';
 import { isOpen } from '@shared/domain/call-state';
 import { MINUTE_MS } from '@shared/domain/instant';
-import { DEFAULT_WEIGHTS } from '@shared/domain/urgency';
 import { Announce } from './announce';
 import { Api } from './api';
 import { afterChanges, type Picture, pictureOf } from './board-picture';
@@ -13,7 +12,7 @@ import { Live, type LinkState } from './live';
 import { type FeedPlace, OrderedFeed } from './ordered-feed';
 import { ProblemError } from './problem-error';
 import { matcher, NO_FILTER, type QueueFilter } from './queue-filter';
-import { Ranking, type RankedCall } from './ranking';
+import { Ranking, type RankedCall, weighingBy } from './ranking';
 import { Session } from './session';
 
 const NONE: ReadonlyMap<string, never> = new Map<string, never>();
@@ -78,15 +77,13 @@ export class BoardStore {
   readonly openCalls = computed(() => [...this.calls().values()].filter((c) => isOpen(c.state)));
 
   private readonly ranking = new Ranking();
+  /** How urgency is weighed, as the manager has set it. */
+  readonly weighing = computed(() => weighingBy(this.session.settings()));
   private readonly minute = computed(() => Math.floor(this.clock.now() / MINUTE_MS) * MINUTE_MS);
 
   /** The open calls in the order of the queue, worked out again each minute and at each change. */
   readonly ranked = computed<readonly RankedCall[]>(() =>
-    this.ranking.rank(
-      this.calls().values(),
-      this.minute(),
-      this.session.settings()?.medicineWeight ?? DEFAULT_WEIGHTS.medicine,
-    ),
+    this.ranking.rank(this.calls().values(), this.minute(), this.weighing()),
   );
   /** Those of them that the filter lets through. */
   readonly shown = computed<readonly RankedCall[]>(() => {

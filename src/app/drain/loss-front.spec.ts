@@ -8,7 +8,16 @@ const worth = (valueCents: number, saveByAt: number | null, more = {}) =>
       {
         id: 'u',
         kind: 'upright-freezer',
-        compartments: [{ kind: 'freezer', valueCents, atRiskAt: NOW, saveByAt }],
+        compartments: [
+          {
+            kind: 'freezer',
+            valueCents,
+            atRiskAt: NOW,
+            earliestAt: NOW,
+            likelyAt: saveByAt,
+            saveByAt,
+          },
+        ],
       },
     ],
     ...more,

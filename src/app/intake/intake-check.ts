@@ -70,7 +70,9 @@ export function checkIntake(draft: IntakeDraft, now: Instant, zone: string): Int
       mayText: draft.mayText,
       powerOutAt: outAt,
       powerBackAt: backAt,
+      powerOnSpans: [...draft.powerOnSpans],
       timesFrom: times.from,
+      householdAtRisk: draft.householdAtRisk,
       units: [...draft.units],
       remark: draft.remark.trim(),
       danger: draft.danger,
@@ -106,6 +108,7 @@ export function fieldOfPointer(pointer: string): IntakeField {
     case 'powerOutAt':
       return 'out';
     case 'powerBackAt':
+    case 'powerOnSpans':
       return 'back';
     default:
       return 'form';

@@ -2,6 +2,8 @@ import type { AreaDto } from '@shared/contract/areas';
 import type { Address, CompartmentFacts, UnitFacts } from '@shared/contract/calls';
 import { COMPARTMENTS_OF, type CompartmentKind, type UnitKind } from '@shared/domain/cold-unit';
 import type { Instant } from '@shared/domain/instant';
+import type { Span } from '@shared/domain/thaw/uncooled-time';
+import { DEFAULT_VALUES, usualValueCents, type UsualValues } from '@shared/domain/food-value';
 import { unknownCompartment } from '@shared/domain/unknown-compartment';
 
 /** A call as far as it has been taken. It survives JSON, so that a reload loses nothing. */
@@ -16,6 +18,9 @@ export interface IntakeDraft {
   readonly language: 'en' | 'es';
   readonly mayText: boolean;
   readonly times: IntakeTimes;
+  /** When the power was back for a while. */
+  readonly powerOnSpans: readonly Span[];
+  readonly householdAtRisk: boolean;
   readonly units: readonly UnitFacts[];
   readonly remark: string;
   readonly danger: boolean;
@@ -51,6 +56,8 @@ export function blankDraft(newId: () => string): IntakeDraft {
       backAt: null,
       stillOut: false,
     },
+    powerOnSpans: [],
+    householdAtRisk: false,
     units: [],
     remark: '',
     danger: false,
@@ -69,7 +76,11 @@ export function timesInForce(times: IntakeTimes, area: AreaDto | null): IntakeTi
 }
 
 /** A unit as it is added by its chip: what it is, and nothing else known yet. */
-export function newUnit(kind: UnitKind, id: string): UnitFacts {
+export function newUnit(
+  kind: UnitKind,
+  id: string,
+  values: UsualValues = DEFAULT_VALUES,
+): UnitFacts {
   return {
     id,
     kind,
@@ -77,19 +88,51 @@ export function newUnit(kind: UnitKind, id: string): UnitFacts {
     ageYears: null,
     cubicFeet: null,
     place: '',
-    compartments: COMPARTMENTS_OF[kind].map((compartment) => newCompartment(compartment, kind)),
+    cooling: 'unknown',
+    ranBetween: 'unknown',
+    compartments: COMPARTMENTS_OF[kind].map((compartment) =>
+      newCompartment(compartment, kind, values),
+    ),
   };
 }
 
-export const newCompartment = (kind: CompartmentKind, unit: UnitKind): CompartmentFacts =>
-  unknownCompartment(unit, kind, 'rather-not-say');
+export const newCompartment = (
+  kind: CompartmentKind,
+  unit: UnitKind,
+  values: UsualValues = DEFAULT_VALUES,
+): CompartmentFacts => unknownCompartment(unit, kind, 'rather-not-say', values);
+
+/**
+ * A unit as it was changed, its contents worth what such a unit's usually are; but a worth that somebody
+ * gave, or gives now, stays.
+ */
+export function withUsualValues(
+  before: UnitFacts,
+  after: UnitFacts,
+  values: UsualValues,
+): UnitFacts {
+  return {
+    ...after,
+    compartments: after.compartments.map((one) => {
+      const was = before.compartments.find(({ kind }) => kind === one.kind);
+      const isUsual = was?.valueCents === (was && usualValueCents(before, was, values));
+      const isGiven = was?.valueCents !== one.valueCents;
+      if (!was || !isUsual || isGiven) return one;
+      return { ...one, valueCents: usualValueCents(after, one, values) };
+    }),
+  };
+}
 
 /** Medicine kept in an ordinary refrigerator has a clock of its own beside the food's. */
-export function withMedicine(unit: UnitFacts, kept: boolean): UnitFacts {
+export function withMedicine(
+  unit: UnitFacts,
+  kept: boolean,
+  values: UsualValues = DEFAULT_VALUES,
+): UnitFacts {
   const others = unit.compartments.filter(({ kind }) => kind !== 'medicine');
   return {
     ...unit,
-    compartments: kept ? [...others, newCompartment('medicine', unit.kind)] : others,
+    compartments: kept ? [...others, newCompartment('medicine', unit.kind, values)] : others,
   };
 }
 
@@ -113,6 +156,20 @@ export function changeCompartment(
     ),
   };
 }
+
+/** A draft that was kept before some of these things were asked: they are not known. */
+export function wholeDraft(kept: IntakeDraft): IntakeDraft {
+  const { powerOnSpans = [], householdAtRisk = false } = kept as Partial<IntakeDraft>;
+  const units = kept.units.map((unit): UnitFacts => {
+    const { cooling = 'unknown', ranBetween = 'unknown' } = unit as Partial<UnitFacts>;
+    const compartments = unit.compartments.map((one) => ({ ...one, ice: withIce(one) }));
+    return { ...unit, cooling, ranBetween, compartments };
+  });
+  return { ...kept, powerOnSpans, householdAtRisk, units };
+}
+
+const withIce = ({ ice = [] }: Partial<Pick<CompartmentFacts, 'ice'>>): CompartmentFacts['ice'] =>
+  ice;
 
 /** Whether something read from storage is a draft of this program. */
 export function isIntakeDraft(value: unknown): value is IntakeDraft {

@@ -32,7 +32,11 @@ function aModel(): { model: IntakeModel; http: HttpTestingController; taken: unk
       },
       {
         provide: Session,
-        useValue: { storm: signal({ id: STORM }), zone: signal('America/New_York') },
+        useValue: {
+          storm: signal({ id: STORM }),
+          zone: signal('America/New_York'),
+          settings: signal(null),
+        },
       },
     ],
   });

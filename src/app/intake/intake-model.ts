@@ -1,7 +1,8 @@
 import { computed, effect, inject, Injectable, signal, untracked } from '@angular/core';
 import type { CallRow, HouseholdFound, UnitFacts } from '@shared/contract/calls';
 import { thawClock } from '@shared/domain/thaw/thaw-clock';
-import type { UnitKind } from '@shared/domain/cold-unit';
+import { coolingLoss, type UnitKind } from '@shared/domain/cold-unit';
+import { DEFAULT_VALUES } from '@shared/domain/food-value';
 import type { Instant } from '@shared/domain/instant';
 import { formatPhone } from '@shared/domain/phone-number';
 import { Api, newId } from '../core/api';
@@ -27,10 +28,14 @@ import {
   isWorthKeeping,
   newUnit,
   timesInForce,
+  wholeDraft,
 } from './intake-draft';
 import { readTimeEntry } from './time-entry';
 
 const DRAFT_KEY = 'intake';
+
+const keptDraft = (kept: IntakeDraft | null): IntakeDraft =>
+  kept === null ? blankDraft(newId) : wholeDraft(kept);
 
 /** What became of an attempt to save. */
 export type SaveResult = { readonly callId: string } | null;
@@ -45,7 +50,7 @@ export class IntakeModel {
   private readonly session = inject(Session);
 
   private readonly draftNow = signal<IntakeDraft>(
-    this.drafts.load(DRAFT_KEY, isIntakeDraft) ?? blankDraft(newId),
+    keptDraft(this.drafts.load(DRAFT_KEY, isIntakeDraft)),
   );
   private readonly found = signal<HouseholdFound | null>(null);
   private readonly looking = signal(false);
@@ -91,18 +96,19 @@ export class IntakeModel {
 
   /** The strip as it will be; `null` until there is a unit and a time. */
   readonly preview = computed<StripFacts | null>(() => {
-    const { units } = this.draftNow();
+    const { units, powerOnSpans } = this.draftNow();
     const lostAt = this.times().outAt;
     if (lostAt === null || units.length === 0) return null;
-    const loss = { lostAt, restoredAt: null };
+    const times = { lostAt, restoredAt: null, powerOnSpans };
     return {
-      ...loss,
+      lostAt,
+      restoredAt: null,
       compartments: units.flatMap((unit) =>
-        unit.compartments.map((facts) => ({
-          kind: facts.kind,
-          valueCents: facts.valueCents,
-          ...clockTimes(facts, loss),
-        })),
+        unit.compartments.map((facts) => {
+          const clock = thawClock(facts, coolingLoss(times, unit.ranBetween), unit);
+          const { atRiskAt, likelyAt, saveByAt } = clock;
+          return { kind: facts.kind, valueCents: facts.valueCents, atRiskAt, likelyAt, saveByAt };
+        }),
       ),
     };
   });
@@ -131,7 +137,7 @@ export class IntakeModel {
   }
 
   addUnit(kind: UnitKind): UnitFacts {
-    const unit = newUnit(kind, newId());
+    const unit = newUnit(kind, newId(), this.session.settings() ?? DEFAULT_VALUES);
     this.change({ units: [...this.draftNow().units, unit] }, 'units');
     return unit;
   }
@@ -263,14 +269,6 @@ export class IntakeModel {
       mayText: household.mayText && !household.optedOut,
     });
   }
-}
-
-function clockTimes(
-  facts: Parameters<typeof thawClock>[0],
-  loss: Parameters<typeof thawClock>[1],
-): { readonly atRiskAt: Instant; readonly saveByAt: Instant | null } {
-  const { atRiskAt, saveByAt } = thawClock(facts, loss);
-  return { atRiskAt, saveByAt };
 }
 
 /** The server sends the row as it is; anything else is treated as nothing. */

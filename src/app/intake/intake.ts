@@ -29,12 +29,13 @@ import { AddressField } from './address-field';
 import { changeUnit } from './intake-draft';
 import { IntakeModel } from './intake-model';
 import { PinRequest } from './pin-request';
+import { PowerSpans } from './power-spans';
 import { UnitCard } from './unit-card';
 
 /** Takes a call by keyboard alone. What was typed is kept until the server has it. */
 @Component({
   selector: 'thaw-intake',
-  imports: [AddressField, ColdRuler, ColdStrip, MatIcon, UnitCard],
+  imports: [AddressField, ColdRuler, ColdStrip, MatIcon, PowerSpans, UnitCard],
   templateUrl: './intake.html',
   styleUrls: ['./fields.scss', './intake.scss'],
   providers: [IntakeModel],

@@ -1,5 +1,11 @@
 import type { CompartmentFacts } from '@shared/contract/calls';
-import type { CompressorStart, DoorUse, MedicineKind } from '@shared/domain/cold-unit';
+import type {
+  CompressorStart,
+  CoolingNow,
+  DoorUse,
+  MedicineKind,
+  RanBetween,
+} from '@shared/domain/cold-unit';
 import type { Choice } from './choices';
 
 export const FILL_CHOICES: readonly Choice<number | null>[] = [
@@ -37,6 +43,18 @@ export const MEDICINE_CHOICES: readonly Choice<MedicineKind>[] = [
 export const START_CHOICES: readonly Choice<CompressorStart>[] = [
   { value: 'relay', label: 'Clicks on and off' },
   { value: 'inverter', label: 'Inverter' },
+  { value: 'unknown', label: 'Not known' },
+];
+
+export const COOLING_CHOICES: readonly Choice<CoolingNow>[] = [
+  { value: 'none', label: 'Nothing, or silent' },
+  { value: 'partial', label: 'Runs but stays warm' },
+  { value: 'unknown', label: 'Not known' },
+];
+
+export const RAN_CHOICES: readonly Choice<RanBetween>[] = [
+  { value: 'yes', label: 'It ran and cooled' },
+  { value: 'no', label: 'It stayed dead' },
   { value: 'unknown', label: 'Not known' },
 ];
 

@@ -1,6 +1,6 @@
 import type { CallRow } from '@shared/contract/calls';
 import { HOUR_MS } from '@shared/domain/instant';
-import { rankedCall } from '../core/ranking';
+import { DEFAULT_WEIGHING, rankedCall } from '../core/ranking';
 import { aCallRow, NOW } from '../core/testing';
 import { type CallMark, callMark, CallMarks, pressOf } from './call-mark';
 
@@ -10,6 +10,8 @@ const aCompartment = (change: Partial<Compartment>): Compartment => ({
   kind: 'fresh-food',
   valueCents: 10_000,
   atRiskAt: NOW - HOUR_MS,
+  earliestAt: NOW - HOUR_MS,
+  likelyAt: NOW + HOUR_MS,
   saveByAt: NOW + 2 * HOUR_MS,
   ...change,
 });
@@ -17,7 +19,7 @@ const aCompartment = (change: Partial<Compartment>): Compartment => ({
 function markOf(compartments: readonly Compartment[], change: Partial<CallRow> = {}): CallMark {
   const [unit] = aCallRow(1).units;
   const call = aCallRow(1, { units: [{ ...unit!, compartments: [...compartments] }], ...change });
-  const mark = callMark(rankedCall(call, NOW, 5), NOW);
+  const mark = callMark(rankedCall(call, NOW, DEFAULT_WEIGHING), NOW);
   if (!mark) throw new Error('The call has a place.');
   return mark;
 }
@@ -50,7 +52,7 @@ describe('the mark of a call', () => {
     const call = aCallRow(1, {
       address: { text: 'by the old mill', unitNo: '', lonLat: null, kind: 'unlocated' },
     });
-    expect(callMark(rankedCall(call, NOW, 5), NOW)).toBeNull();
+    expect(callMark(rankedCall(call, NOW, DEFAULT_WEIGHING), NOW)).toBeNull();
   });
 });
 
@@ -72,9 +74,12 @@ describe('pressOf', () => {
 describe('CallMarks', () => {
   it('keeps the mark of a row that stays, within the same minute', () => {
     const marks = new CallMarks();
-    const ranked = [rankedCall(aCallRow(1), NOW, 5), rankedCall(aCallRow(2), NOW, 5)];
+    const ranked = [
+      rankedCall(aCallRow(1), NOW, DEFAULT_WEIGHING),
+      rankedCall(aCallRow(2), NOW, DEFAULT_WEIGHING),
+    ];
     const before = marks.of(ranked, NOW);
-    const changed = [ranked[0]!, rankedCall(aCallRow(2, { version: 2 }), NOW, 5)];
+    const changed = [ranked[0]!, rankedCall(aCallRow(2, { version: 2 }), NOW, DEFAULT_WEIGHING)];
     const after = marks.of(changed, NOW + 1000);
     expect(after[0]).toBe(before[0]);
     expect(after[1]).not.toBe(before[1]);

@@ -1,7 +1,6 @@
 import { computed, inject, Injectable, signal } from '@angular/core';
 import type { LonLat } from '@shared/contract/common';
 import { MINUTE_MS } from '@shared/domain/instant';
-import { DEFAULT_WEIGHTS } from '@shared/domain/urgency';
 import { BoardStore } from '../core/board-store';
 import { Clock } from '../core/clock';
 import { rankedCall } from '../core/ranking';
@@ -169,8 +168,7 @@ export class MapScenes {
   private markOf(callId: string | null): CallMark | null {
     const call = this.board.calls().get(callId ?? '');
     if (!call) return null;
-    const medicine = this.session.settings()?.medicineWeight ?? DEFAULT_WEIGHTS.medicine;
     const now = this.minute();
-    return callMark(rankedCall(call, now, medicine), now);
+    return callMark(rankedCall(call, now, this.board.weighing()), now);
   }
 }

@@ -1,5 +1,5 @@
 import { aCallRow, NOW } from '../core/testing';
-import { rankedCall } from '../core/ranking';
+import { DEFAULT_WEIGHING, rankedCall } from '../core/ranking';
 import { type CallMark, callMark } from './call-mark';
 import { dotRadius, MARK_RADIUS, marksAt, placeMarks } from './mark-places';
 import { scaleAt } from './world';
@@ -12,7 +12,7 @@ function aMark(n: number, lon: number, lat = 34): CallMark {
   const call = aCallRow(n, {
     address: { text: '', unitNo: '', lonLat: [lon, lat], kind: 'rooftop' },
   });
-  const mark = callMark(rankedCall(call, NOW, 5), NOW);
+  const mark = callMark(rankedCall(call, NOW, DEFAULT_WEIGHING), NOW);
   if (!mark) throw new Error('The call has a place.');
   return mark;
 }

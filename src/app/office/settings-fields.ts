@@ -56,6 +56,24 @@ function percentField(
   };
 }
 
+function valueField(key: SettingKey, label: string): SettingField {
+  return {
+    key,
+    label,
+    kind: 'number',
+    unit: '$',
+    least: 0,
+    most: 100_000,
+    isWhole: true,
+    meaning:
+      key === 'valueMedicine'
+        ? 'Worth until somebody says otherwise, on any call taken from now on.'
+        : 'Worth of a unit of usual size, three quarters full, until somebody says otherwise; it goes with size and fill.',
+    source:
+      'Our estimate. Weak figures only: a household loses "$200 to $600" (a food site, no method); home insurance commonly covers $500 of spoiled food.',
+  };
+}
+
 export interface SettingGroup {
   readonly title: string;
   readonly fields: readonly SettingField[];
@@ -130,6 +148,40 @@ export const SETTING_GROUPS: readonly SettingGroup[] = [
         meaning: 'Without a further step; then another dispatcher may take the call.',
         source: OUR_ESTIMATE,
       },
+    ],
+  },
+  {
+    title: 'What is lost, and how it is weighed',
+    fields: [
+      {
+        key: 'householdWeight',
+        label: 'Where somebody can do less without',
+        kind: 'number',
+        unit: 'times its value',
+        least: 1,
+        most: 10,
+        meaning:
+          'Everything in a household that was marked so at intake counts so much more, in the queue and on the routes.',
+        source: OUR_ESTIMATE,
+      },
+      {
+        key: 'reachMinutes',
+        label: 'Somebody could be there in',
+        kind: 'number',
+        unit: 'min',
+        least: 0,
+        most: 1440,
+        isWhole: true,
+        meaning:
+          'Urgency is what is lost per minute around that moment, for what only a visit can save.',
+        source: OUR_ESTIMATE,
+      },
+      valueField('valueFreshFood', 'Fresh food of a refrigerator'),
+      valueField('valueFreezerSection', 'Freezer section of a refrigerator'),
+      valueField('valueUprightFreezer', 'Upright freezer'),
+      valueField('valueChestFreezer', 'Chest freezer'),
+      valueField('valueMedicine', 'Medicine'),
+      valueField('valueStock', 'Stock of a walk-in'),
     ],
   },
   {
