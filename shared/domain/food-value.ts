@@ -64,6 +64,13 @@ export function usualValueCents(
   return share === 1 ? dollars * 100 : Math.round((dollars * share) / 5) * 500;
 }
 
+/** Of a unit of which nothing else is known. */
+export const defaultValueCents = (
+  unit: UnitKind,
+  kind: CompartmentKind,
+  values: UsualValues = DEFAULT_VALUES,
+): number => usualValueCents({ kind: unit, cubicFeet: null }, { kind, fill: null }, values);
+
 function usualDollars(unit: UnitKind, kind: CompartmentKind, values: UsualValues): number {
   switch (kind) {
     case 'fresh-food':

@@ -8,7 +8,7 @@ import type {
   Reading,
   UnitKind,
 } from './cold-unit';
-import { DEFAULT_VALUES, usualValueCents, type UsualValues } from './food-value';
+import { DEFAULT_VALUES, defaultValueCents, type UsualValues } from './food-value';
 
 /**
  * A compartment of which only its kind has been told: everything else is unknown, and each rule
@@ -45,5 +45,5 @@ export const unknownCompartment = (
           }
         : null,
     coldAtLoss: null,
-    valueCents: usualValueCents({ kind: unit, cubicFeet: null }, { kind, fill: null }, values),
+    valueCents: defaultValueCents(unit, kind, values),
   }) satisfies CompartmentFacts;

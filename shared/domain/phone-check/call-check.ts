@@ -1,5 +1,5 @@
 import { PARTS, SKILLS } from '../skills';
-import { CAUSES, LIKELIHOOD_WORDS } from './causes';
+import { CAUSES, LIKELIHOOD_WORDS, LIKELIHOODS } from './causes';
 import {
   conclude,
   nextQuestion,
@@ -135,17 +135,18 @@ export function concludeCall(
   };
 }
 
-/** The likely causes in words, each with its unit's name where there is more than one. */
+/** The likely causes in words, likeliest first; each with its unit's name where there is more than one. */
 export const causeWords = (
   { ofUnits }: CallConclusion,
   nameOf: (unit: UnitToCheck) => string,
 ): readonly string[] =>
-  ofUnits.flatMap(({ unit, causes }) =>
-    causes.map(({ cause, likelihood }) => {
+  ofUnits
+    .flatMap(({ unit, causes }) => causes.map((one) => ({ ...one, unit })))
+    .sort((a, b) => LIKELIHOODS.indexOf(a.likelihood) - LIKELIHOODS.indexOf(b.likelihood))
+    .map(({ cause, likelihood, unit }) => {
       const words = `${CAUSES[cause].words} (${LIKELIHOOD_WORDS[likelihood]})`;
-      return ofUnits.length > 1 ? `${nameOf(unit)}: ${words}` : words;
-    }),
-  );
+      return ofUnits.length > 1 ? `${words}: ${nameOf(unit)}` : words;
+    });
 
 /** A danger ends the check of every unit, and so does what was asked once for the whole home. */
 function endsAll(own: PhoneCheckAnswers, unit: UnitToCheck): boolean {

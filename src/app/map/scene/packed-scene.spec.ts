@@ -1,6 +1,6 @@
 import { deserialize, serialize } from 'node:v8';
 import { aCallRow, NOW } from '../../core/testing';
-import { rankedCall } from '../../core/ranking';
+import { DEFAULT_WEIGHING, rankedCall } from '../../core/ranking';
 import { callMark, type DrawnMark } from '../call-mark';
 import { placeMarks } from '../mark-places';
 import type { RouteShape } from '../route-shape';
@@ -14,7 +14,7 @@ const MARKS = Array.from({ length: 40 }, (_, i) => {
     danger: i % 5 === 0,
     technicianId: i % 3 === 0 ? 'theo' : null,
   });
-  const mark = callMark(rankedCall(call, NOW, 5), NOW);
+  const mark = callMark(rankedCall(call, NOW, DEFAULT_WEIGHING), NOW);
   if (!mark) throw new Error('The call has a place.');
   return mark;
 });
