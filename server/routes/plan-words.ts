@@ -60,11 +60,13 @@ function cheapestWords(place: CheapestPlace, { nameOf, zone }: Names): string {
     ...(place.overtimeMinutes >= 1 ? [`${minutesInWords(place.overtimeMinutes)} of overtime`] : []),
     ...(place.driveMinutes >= 1 ? [`${minutesInWords(place.driveMinutes)} of driving`] : []),
   ];
+  const where = `${at(place.start, zone)} with ${nameOf(place.technician)}`;
+  if (place.dearer <= 0) return `There may be room: ${where}. Propose again with a longer search.`;
   const list = costs.length > 0 ? `: ${costs.join(', ')}` : '';
-  return `Its cheapest place, ${at(place.start, zone)} with ${nameOf(place.technician)}, costs more than leaving it${list}.`;
+  return `Its cheapest place, ${where}, costs more than leaving it${list}.`;
 }
 
-/** "any technician certified for sealed systems before 4:10 pm (Theo Larkspur would be there at 3:20 pm)". */
+/** "Any technician certified for sealed systems before 4:10 pm (from the place of Theo Larkspur: 3:20 pm)". */
 function helpWords(help: Relaxation, { nameOf, zone }: Names): string {
   const name = nameOf(help.technician);
   const until = help.before === null ? '' : ` before ${at(help.before, zone)}`;
