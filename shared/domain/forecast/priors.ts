@@ -39,9 +39,9 @@ export const PRIORS = {
   /** How the waits of single calls spread about that. */
   parkedSpread: 0.6,
   /** How far all areas together may stray from the pattern in which households ring, as a spread. */
-  ringStray: 0.35,
+  ringStray: 0.3,
   /** How far all drives and visits to come may stray from those measured, as a spread. */
-  workStray: 0.1,
+  workStray: 0.05,
   /** How far the order of visits strays from urgency, least and most, as a spread of its logarithm. */
   pullSpread: [0.6, 2.4],
   /** How long an area stays out: as if this many had come back after so many hours each. */
