@@ -78,7 +78,7 @@ export async function answerPhoneCheck(
   };
   await drawConclusions(job, call);
   await saveCall(job, call);
-  job.note('call', call.id, `answered ${String(Object.keys(answers).length)} questions`);
+  job.note('call', call.id, answeredWords(Object.keys(answers).length));
   return call;
 }
 
@@ -104,7 +104,7 @@ export async function concludeCall(
   }
   releaseClaim(call);
   await saveCall(job, call);
-  if (outcome === 'running-again') await tellSettledByPhone(job, call, words);
+  if (outcome === 'running-again') await tellSettledByPhone(job, call);
   job.note('call', call.id, `ended the phone check: ${outcome}`);
   return call;
 }
@@ -148,6 +148,11 @@ const OUTCOME_REASONS: Readonly<Record<ConcludeCall['outcome'], string>> = {
   duplicate: 'the same household is another call',
   waiting: 'needs a visit',
 };
+
+function answeredWords(count: number): string {
+  if (count === 0) return 'took the answers back';
+  return `answered ${String(count)} ${count === 1 ? 'question' : 'questions'}`;
+}
 
 /**
  * What the answers about all units point to: danger, likely causes, the parts and skills of a visit. What

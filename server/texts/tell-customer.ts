@@ -24,14 +24,9 @@ export async function tellCallReceived(job: Job, call: CallRecord): Promise<void
   await tell(job, call, 'call-received', milestoneKey(call.id, 'call-received', 1), {});
 }
 
-/** @param adviceWords one sentence of what to do now, in the customer's language */
-export async function tellSettledByPhone(
-  job: Job,
-  call: CallRecord,
-  adviceWords: string,
-): Promise<void> {
-  const key = milestoneKey(call.id, 'settled-by-phone', 1);
-  await tell(job, call, 'settled-by-phone', key, { advice: adviceWords });
+/** A call that runs again after the phone check is told so, once. */
+export async function tellSettledByPhone(job: Job, call: CallRecord): Promise<void> {
+  await tell(job, call, 'settled-by-phone', milestoneKey(call.id, 'settled-by-phone', 1), {});
 }
 
 /**

@@ -3,6 +3,7 @@ import type { CallDetail } from '@shared/contract/calls';
 import { nextOfCall } from '@shared/domain/phone-check/call-check';
 import { nextQuestion } from '@shared/domain/phone-check/phone-check';
 import { HOUR_MS, MINUTE_MS } from '@shared/domain/instant';
+import { MessageRecord } from '../../server/texts/message-record';
 import { aCall, aUnit } from '../support/calls';
 import { until } from '../support/routes';
 import { NIGHT, startServer, type TestPerson, type TestServer } from '../support/server';
@@ -208,8 +209,11 @@ describe('the phone check', () => {
     )({
       version: now.row.version,
       outcome: 'running-again',
-      reason: '',
+      reason: 'she had it on a switched outlet',
     });
+    const told = await MessageRecord.findOne({ where: { milestone: 'settled-by-phone' } });
+    expect(told?.body).toContain('when in doubt, throw it out');
+    expect(told?.body).not.toContain('switched outlet');
     expect((reply.body as CallDetail).row).toMatchObject({
       state: 'running-again',
       settledAt: NIGHT + HOUR_MS / 2,

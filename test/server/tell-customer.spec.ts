@@ -216,7 +216,7 @@ describe('whether and when it may go', () => {
   it('writes what may not go as suppressed, with the reason', async () => {
     const { row } = await takeACall(server, { mayText: false });
     const call = await CallRecord.findByPk(row.id, { rejectOnEmpty: true });
-    await command((job) => tellSettledByPhone(job, call, 'Keep the doors shut.'));
+    await command((job) => tellSettledByPhone(job, call));
     expect((await texts())[0]).toMatchObject({
       state: 'suppressed',
       trouble: 'The household did not agree to texts.',
@@ -227,7 +227,7 @@ describe('whether and when it may go', () => {
     await change(server.sequelize, 'INSERT INTO opt_outs (phone, at) VALUES (?, NOW(3))', [
       call.phone,
     ]);
-    await command((job) => tellSettledByPhone(job, call, 'Keep the doors shut.'));
+    await command((job) => tellSettledByPhone(job, call));
     expect((await texts())[0]).toMatchObject({
       state: 'suppressed',
       trouble: 'This phone has opted out of texts.',
@@ -235,7 +235,7 @@ describe('whether and when it may go', () => {
     await MessageRecord.destroy({ where: {} });
 
     call.phone = null;
-    await command((job) => tellSettledByPhone(job, call, 'Keep the doors shut.'));
+    await command((job) => tellSettledByPhone(job, call));
     expect((await texts())[0]).toMatchObject({
       state: 'suppressed',
       trouble: 'There is no phone number to text.',

@@ -22,14 +22,11 @@ export interface MilestoneFacts {
   readonly eta?: string;
   /** The technician's given name. */
   readonly technician?: string;
-  /** One sentence of advice for a call that was settled by phone. */
-  readonly advice?: string;
 }
 
 /** A text never gets longer than this: four joined GSM-7 segments, far under the provider's 1,600. */
 export const MAX_BODY_CHARACTERS = 600;
 const MAX_NAME_CHARACTERS = 40;
-const MAX_ADVICE_CHARACTERS = 320;
 
 type Template = (facts: Readonly<Record<keyof MilestoneFacts, string>>) => string;
 
@@ -44,11 +41,12 @@ const TEMPLATES: Readonly<Record<MilestoneKind, Readonly<Record<TextLanguage, Te
     es: (f) =>
       `${f.company}: recibimos su llamada sobre su equipo. Mantenga la puerta cerrada. Le avisamos cuando vaya su técnico. Preguntas: ${f.companyPhone}. Responda STOP para no recibir textos, AYUDA para ayuda.`,
   },
+  // In fixed words: what the dispatcher wrote down is for the company, and in one language.
   'settled-by-phone': {
     en: (f) =>
-      `${f.company}: your call is settled for now. ${f.advice} If it stops again, call ${f.companyPhone}. Reply STOP to end texts.`,
+      `${f.company}: your call is settled for now. Keep the door shut while it cools down. Food: when in doubt, throw it out. If it stops again, call ${f.companyPhone}. Reply STOP to end texts.`,
     es: (f) =>
-      `${f.company}: su llamada queda resuelta por ahora. ${f.advice} Si vuelve a parar, llame al ${f.companyPhone}. Responda STOP para no recibir textos.`,
+      `${f.company}: su llamada queda resuelta por ahora. Mantenga la puerta cerrada hasta que vuelva a estar fresco. Si duda de un alimento, no lo coma. Si vuelve a parar, llame al ${f.companyPhone}. Responda STOP para no recibir textos.`,
   },
   'on-the-way': {
     en: (f) =>
@@ -100,7 +98,6 @@ export function milestoneText(
     companyPhone: name(facts.companyPhone),
     eta: name(facts.eta ?? '') || UNNAMED[language].eta,
     technician: name(facts.technician ?? '') || UNNAMED[language].technician,
-    advice: oneLine(facts.advice ?? '', MAX_ADVICE_CHARACTERS),
   });
   return oneLine(body, MAX_BODY_CHARACTERS);
 }
