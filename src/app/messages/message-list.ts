@@ -14,6 +14,9 @@ import {
 import { MatIcon } from '@angular/material/icon';
 import type { MessageDto } from '@shared/contract/messages';
 import { formatPhone } from '@shared/domain/phone-number';
+import { ColdRuler } from '../board/cold-ruler';
+import { ColdStrip } from '../board/cold-strip';
+import { stripFactsOf } from '../board/cold-strip-scale';
 import { EMPTY_ORDER, type HeldOrder, heldWords, nextOrder, takeOrder } from '../board/held-order';
 import { whenWords } from '../board/time-words';
 import { BoardStore } from '../core/board-store';
@@ -34,7 +37,7 @@ export type ListEntry =
  */
 @Component({
   selector: 'thaw-message-list',
-  imports: [MatIcon],
+  imports: [ColdRuler, ColdStrip, MatIcon],
   templateUrl: './message-list.html',
   styleUrls: ['../intake/fields.scss', './message-list.scss'],
   changeDetection: ChangeDetectionStrategy.OnPush,
@@ -42,7 +45,7 @@ export type ListEntry =
 export class MessageListView {
   protected readonly model = inject(MessagesModel);
   private readonly board = inject(BoardStore);
-  private readonly clock = inject(Clock);
+  protected readonly clock = inject(Clock);
   private readonly zone = inject(Zone);
 
   readonly opened = output<ListEntry>();
@@ -86,6 +89,7 @@ export class MessageListView {
       return thread ? [this.threadRow(id, thread)] : [];
     }),
   );
+  protected readonly hasStrips = computed(() => this.threads().some(({ strip }) => strip !== null));
   private readonly ids = computed(() => [...this.needs(), ...this.threads()].map(({ id }) => id));
   /** The row under the cursor; the next one when it has gone. */
   readonly cursor = linkedSignal<readonly string[], string | null>({
@@ -201,12 +205,13 @@ export class MessageListView {
       who: call?.name ?? this.nameOf(phone, callId),
       number: call ? `Call ${call.number}` : 'No call on the board',
       when: this.when(at),
-      body: last?.body ?? 'Texts that nobody has read',
+      body: last ? withoutCompany(last) : 'Texts that nobody has read',
       from: last?.direction === 'out' ? 'We: ' : '',
       icon: state?.icon ?? ('message' as const),
       words: [state?.words, milestone].filter(Boolean).join(' · '),
       isTrouble: state?.isTrouble ?? false,
       unread,
+      strip: call && call.settledAt === null ? stripFactsOf(call) : null,
     };
   }
 
@@ -227,6 +232,12 @@ interface OrderSource {
 }
 
 const REPLY_WITHOUT_CALL = { icon: 'message', words: 'belongs to no open call' } as const;
+
+/** Each of our own texts begins with the company's name, which no list has to repeat. */
+function withoutCompany({ body, milestone }: MessageDto): string {
+  const end = milestone === null ? -1 : body.indexOf(': ');
+  return end < 0 ? body : body.slice(end + 2);
+}
 
 const NEED = 'need-';
 const THREAD = 'thread-';
