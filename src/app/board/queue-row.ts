@@ -60,15 +60,21 @@ export class QueueRow {
     return { clock: whenWords(at, now, this.zone.name()), words: fromNowWords(at, now) };
   });
 
-  /** Who is on it, or when the technician comes. */
+  /** Who is on it, or when the technician comes; in short where a mark stands beside it. */
   protected readonly claim = computed(() => {
-    const { claim, etaAt } = this.call();
+    const { claim, etaAt, danger, cutOff, unreadTexts } = this.call();
     const now = this.now();
+    const isCrowded = danger || cutOff || unreadTexts > 0;
     if (claim && claim.until > now) {
-      const who = claim.userId === this.myUserId() ? 'Yours' : `${firstName(claim.name)} has it`;
-      return `${who} until ${whenWords(claim.until, now, this.zone.name())}`;
+      const isMine = claim.userId === this.myUserId();
+      const until = `until ${whenWords(claim.until, now, this.zone.name())}`;
+      const long = isMine ? `Yours ${until}` : `${firstName(claim.name)} has it ${until}`;
+      const short = isMine ? 'Yours' : firstName(claim.name);
+      return { long, short: isCrowded ? short : long };
     }
-    return etaAt === null ? '' : `Arrives ${whenWords(etaAt, now, this.zone.name())}`;
+    if (etaAt === null) return { long: '', short: '' };
+    const at = whenWords(etaAt, now, this.zone.name());
+    return { long: `Arrives ${at}`, short: isCrowded ? at : `Arrives ${at}` };
   });
 }
 
