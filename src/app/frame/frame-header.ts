@@ -1,4 +1,4 @@
-import { ChangeDetectionStrategy, Component, computed, DestroyRef, inject } from '@angular/core';
+import { ChangeDetectionStrategy, Component, computed, effect, inject } from '@angular/core';
 import { Router, RouterLink, RouterLinkActive } from '@angular/router';
 import { Clock } from '../core/clock';
 import { Keys } from '../core/keys';
@@ -36,15 +36,18 @@ export class FrameHeader {
   }
 
   constructor() {
-    inject(Keys).register(
-      DESTINATIONS.map(({ path, name, key }) => ({
-        keys: `g ${key}`,
-        does: name,
-        scope: 'Go to',
-        run: () => void this.router.navigateByUrl(path),
-        when: () => this.destinations().some((destination) => destination.path === path),
-      })),
-      inject(DestroyRef),
-    );
+    const keys = inject(Keys);
+    // Those of this person only: the sheet of keys lists no screen that the header does not show.
+    effect((onCleanup) => {
+      const remove = keys.register(
+        this.destinations().map(({ path, name, key }) => ({
+          keys: `g ${key}`,
+          does: name,
+          scope: 'Go to',
+          run: () => void this.router.navigateByUrl(path),
+        })),
+      );
+      onCleanup(remove);
+    });
   }
 }

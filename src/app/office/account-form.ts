@@ -75,6 +75,12 @@ export class AccountForm {
     initialValue: this.form.controls.role.value,
   });
   protected readonly roleWords = computed(() => ROLE_WORDS[this.role()]);
+  protected readonly roleHint = computed(() =>
+    this.isSelf() ? 'Nobody changes their own role.' : this.roleWords().does,
+  );
+  protected readonly choiceHint = computed(() =>
+    this.choices().length === 0 ? 'Add the technician first.' : 'Those without an account.',
+  );
   protected readonly choices = computed(() =>
     this.technicians().filter(
       ({ id, active }) => id === this.base()?.technicianId || (active && !this.taken().has(id)),

@@ -97,6 +97,17 @@ export class AuditPart {
     return this.show(this.pages().slice(0, -1));
   }
 
+  /** `call 216`, where the board knows its number. */
+  protected subjectWords({ entity, entityId }: AuditEntryDto): string {
+    const call = entity === 'call' ? this.board.calls().get(entityId) : undefined;
+    return call ? `call ${call.number}` : entity;
+  }
+
+  /** `answerPhoneCheck` as `answer phone check`. */
+  protected orderWords(command: string): string {
+    return command.replace(/[A-Z]/g, (letter) => ` ${letter.toLowerCase()}`);
+  }
+
   private async show(pages: readonly (number | null)[]): Promise<void> {
     const { trail, callNumber } = this.form.controls;
     callNumber.markAsTouched();

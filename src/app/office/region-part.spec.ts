@@ -161,7 +161,7 @@ async function show(): Promise<{
 describe('the regions', () => {
   it('are listed with what may be done with each', async () => {
     const { text } = await show();
-    expect(text()).toContain('1 address, 2,000 streets, 1,235 km of road');
+    expect(text()).toContain('1 address, 2,000 streets, 767 mi of road');
     const labels = [...document.querySelectorAll('button')].map((one) =>
       one.getAttribute('aria-label'),
     );
@@ -184,7 +184,9 @@ describe('the regions', () => {
   it('are switched only when that was confirmed, and say what becomes of the calls', async () => {
     const { text, press } = await show();
     await press('Switch to Marl County');
-    expect(document.body.textContent).toContain('1 call keep their addresses');
+    expect(document.body.textContent).toContain(
+      '1 call of the open storm, each with its address, is looked up there',
+    );
     await press('Leave it');
     expect(asked.map(({ name }) => name)).not.toContain('useRegion');
     await press('Switch to Marl County');

@@ -89,7 +89,7 @@ export class RegionPart {
       `All screens change to ${region.name} at once: map, addresses and time zone.`,
       ...(calls > 0
         ? [
-            `The open storm’s ${counted(calls, 'call')} keep their addresses and are looked up there; those that are not found keep their place and are listed here.`,
+            `${counted(calls, 'call')} of the open storm, each with its address, ${calls === 1 ? 'is' : 'are'} looked up there; what is not found keeps its place and is listed here.`,
           ]
         : []),
       'You can switch back.',

@@ -1,6 +1,6 @@
 import { ChangeDetectionStrategy, Component, computed, input } from '@angular/core';
 import type { KeptRegion } from '@shared/contract/regions';
-import { count, counted, kilometres, megabytes, seconds } from './region-words';
+import { count, counted, miles, megabytes, seconds } from './region-words';
 
 /** Reasons shown before the rest is only counted. */
 const ROWS_SHOWN = 12;
@@ -73,7 +73,7 @@ export class RegionReport {
       { name: 'Addresses', value: count(counts.addresses) },
       { name: 'Streets', value: count(counts.streets) },
       { name: 'Places with a name', value: count(counts.places) },
-      { name: 'Roads', value: kilometres(counts.roadKm) },
+      { name: 'Roads', value: miles(counts.roadKm) },
       { name: 'Map', value: `${counted(counts.tiles, 'tile')}, ${megabytes(counts.bytes)}` },
       ...(file
         ? [

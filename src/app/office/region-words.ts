@@ -30,8 +30,13 @@ export function megabytes(bytes: number): string {
   return `${short.format(bytes / 1e6)} MB`;
 }
 
-export const kilometres = (km: number): string =>
-  `${km < 10 ? short.format(km) : whole.format(km)} km`;
+const KM_IN_A_MILE = 1.609344;
+
+/** Lengths of road as the company's people count them. */
+export function miles(km: number): string {
+  const length = km / KM_IN_A_MILE;
+  return `${length < 10 ? short.format(length) : whole.format(length)} mi`;
+}
 
 export function seconds(value: number): string {
   if (value < 90) return `${short.format(value)} s`;
@@ -43,7 +48,7 @@ export const contents = ({ counts }: KeptRegion): string =>
   [
     counted(counts.addresses, 'address', 'addresses'),
     counted(counts.streets, 'street'),
-    ...(counts.roadKm > 0 ? [`${kilometres(counts.roadKm)} of road`] : []),
+    ...(counts.roadKm > 0 ? [`${miles(counts.roadKm)} of road`] : []),
   ].join(', ');
 
 /** How a switch has gone, in sentences. */

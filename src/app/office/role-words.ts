@@ -4,9 +4,9 @@ export const ROLE_WORDS: Readonly<Record<Role, { readonly name: string; readonly
   {
     dispatcher: {
       name: 'Dispatcher',
-      does: 'takes calls, settles them by phone, keeps the routes',
+      does: 'Takes calls, settles them by phone, keeps the routes.',
     },
-    technician: { name: 'Technician', does: 'sees their own stops on their phone, nothing else' },
-    manager: { name: 'Manager', does: 'as a dispatcher, and the drain and the office' },
-    owner: { name: 'Owner', does: 'as a manager, and the accounts' },
+    technician: { name: 'Technician', does: 'Sees their own stops on their phone, nothing else.' },
+    manager: { name: 'Manager', does: 'As a dispatcher, and the drain and the office.' },
+    owner: { name: 'Owner', does: 'As a manager, and the accounts.' },
   };

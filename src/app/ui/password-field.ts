@@ -10,7 +10,7 @@ import { MatInput } from '@angular/material/input';
   selector: 'thaw-password-field',
   imports: [MatFormFieldModule, MatIcon, MatIconButton, MatInput, ReactiveFormsModule],
   template: `
-    <mat-form-field>
+    <mat-form-field hideRequiredMarker>
       <mat-label>{{ label() }}</mat-label>
       <input
         matInput
