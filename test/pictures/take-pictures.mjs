@@ -41,6 +41,7 @@ await take(mara, 'board');
 
 await mara.setViewportSize({ width: 1440, height: 900 });
 await mara.keyboard.press('j');
+await mara.keyboard.press('j');
 await mara.keyboard.press('Enter');
 await mara.getByRole('heading', { name: /^Call \d+$/ }).waitFor();
 await mara.keyboard.press('p');
@@ -68,6 +69,9 @@ await theo.waitForTimeout(2500);
 await take(theo, 'day');
 
 const ines = await enter('ines');
+// The forecast is worked out beside the page; a busy machine takes its time.
 await ines.waitForTimeout(3000);
+await ines.getByText('Looking ahead…').waitFor({ state: 'hidden', timeout: 120_000 });
+await ines.waitForTimeout(1000);
 await take(ines, 'drain');
 await browser.close();
