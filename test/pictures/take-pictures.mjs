@@ -71,7 +71,7 @@ await take(theo, 'day');
 const ines = await enter('ines');
 // The forecast is worked out beside the page; a busy machine takes its time.
 await ines.waitForTimeout(3000);
-await ines.getByText('Looking ahead…').waitFor({ state: 'hidden', timeout: 120_000 });
+await ines.locator('.forecast strong').first().waitFor({ timeout: 120_000 });
 await ines.waitForTimeout(1000);
 await take(ines, 'drain');
 await browser.close();
