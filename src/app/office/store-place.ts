@@ -50,6 +50,12 @@ import { StartPlace } from './start-place';
     </section>
   `,
   styleUrls: ['./parts.scss', './measured-speeds.scss'],
+  styles: `
+    thaw-start-place {
+      display: block;
+      max-inline-size: 560px;
+    }
+  `,
   changeDetection: ChangeDetectionStrategy.OnPush,
 })
 export class StorePlace {

@@ -127,8 +127,11 @@ export class UnplannedList {
   private readonly at = computed(() =>
     this.calls().findIndex(({ call }) => call.id === this.selected()),
   );
-  /** The reason in full: in its row there is room for one line. */
-  protected readonly chosenWhy = computed(() => this.calls()[this.at()] ?? null);
+  /** What a proposal found out, in full: in its row there is room for one line. */
+  protected readonly chosenWhy = computed(() => {
+    const one = this.calls()[this.at()];
+    return one && one.why.reason !== 'not-proposed' ? one : null;
+  });
   protected readonly activeId = computed(() =>
     this.at() < 0 ? null : `unplanned-${this.selected()}`,
   );
