@@ -37,9 +37,14 @@ module.exports = {
       name: 'server-knows-no-screen',
       severity: 'error',
       from: { path: '^server/' },
-      to: {
-        path: ['^src/', '^test/', `${packages}(@angular|leaflet|chart\\.js|socket\\.io-client)/`],
-      },
+      to: { path: ['^src/', '^test/', `${packages}(@angular|leaflet|chart\\.js)/`] },
+    },
+    {
+      name: 'server-calls-no-socket',
+      comment: 'Only the drill does: it plays the people at their screens.',
+      severity: 'error',
+      from: { path: '^server/', pathNot: '^server/drill-program/' },
+      to: { path: `${packages}socket\\.io-client/` },
     },
     {
       name: 'screen-knows-no-server',

@@ -11,6 +11,7 @@ const ENTRIES = [
   'server/workers/forecast-worker.ts',
   'server/workers/roads-worker.ts',
   'server/night-log/import-worker.ts',
+  'server/drill-program/drill-cli.ts',
   'server/plan-program/plan-cli.ts',
   'server/simulate-program/simulate-cli.ts',
   'server/region/region-cli.ts',

@@ -91,6 +91,7 @@ async function meOf(context: Context, person: SignedIn): Promise<NonNullable<May
     region: context.region.dto,
     settings: await readSettings(context.sequelize),
     serverNow: context.clock(),
+    ...(context.config.isDemo ? { isDemo: true } : {}),
   };
 }
 

@@ -164,6 +164,8 @@ export const Me = z.strictObject({
   region: RegionDto,
   settings: Settings,
   serverNow: Moment,
+  /** The server was started as a demo: its people, and the storm that it opened, are invented. */
+  isDemo: z.boolean().optional(),
 });
 export type Me = z.infer<typeof Me>;
 export const MaybeMe = z.strictObject({ me: Me.nullable() });

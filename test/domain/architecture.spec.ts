@@ -28,6 +28,11 @@ const WRONG: readonly { rule: string; file: string; text: string }[] = [
     text: "import '../../src/app/row';",
   },
   {
+    rule: 'server-calls-no-socket',
+    file: 'server/calls/caller.ts',
+    text: "import 'socket.io-client';",
+  },
+  {
     rule: 'screen-knows-no-server',
     file: 'src/app/pool.ts',
     text: "import '../../server/calls/take-call';",
@@ -73,6 +78,7 @@ const RIGHT: Readonly<Record<string, string>> = {
   'server/calls/hen.ts': "import { egg } from './egg'; export const hen = () => egg;",
   'server/calls/call-routes.ts': "import 'express'; import './take-call';",
   'server/realtime/board.ts': "import 'socket.io';",
+  'server/drill-program/person.ts': "import 'socket.io-client';",
   'server/texts/send-text.ts': "import 'twilio';",
   'src/app/row.ts':
     "import '@shared/domain/call'; import type { CallDto } from '@shared/contract/calls'; import { PATHS } from '@shared/contract/paths'; export type T = CallDto; export const p = PATHS;",
