@@ -94,8 +94,6 @@ export const Settings = z.strictObject({
   automaticGainDollars: z.number().min(0).max(10_000),
   /** Nothing that begins within so many minutes is moved by the automatic mode. */
   automaticKeepMinutes: z.int().min(0).max(480),
-  /** How much more everything counts in a household that can do less without. */
-  householdWeight: z.number().min(1).max(10),
   /** Minutes until somebody could be at a door; urgency is what is lost around that moment. */
   reachMinutes: z.int().min(0).max(1440),
   /** What contents are worth until somebody says otherwise, in dollars, three quarters full. */

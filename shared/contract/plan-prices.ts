@@ -19,6 +19,8 @@ export const PlanPrices = z.strictObject({
   promisedAheadMinutes: z.int().min(0).max(720),
   /** How much more a medicine counts than its money value. */
   medicineWeight: z.number().min(1).max(100),
+  /** How much more everything counts in a household that can do less without. */
+  householdWeight: z.number().min(1).max(10),
   /** Changes of a technician's stops by publications within an hour; then those soon to come stay. */
   changesPerHour: z.int().min(0).max(99),
 });

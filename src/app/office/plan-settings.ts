@@ -81,6 +81,13 @@ export const PRICE_FIELDS: readonly SettingField[] = [
     'Moves calls with medicine up in the queue and on the routes.',
   ),
   number(
+    'householdWeight',
+    'Where somebody can do less without',
+    'times its value',
+    [1, 10],
+    'Everything in a household that was marked so at intake counts so much more, in the queue and on the routes.',
+  ),
+  number(
     'otherTechnicianDollars',
     'Another technician',
     '$',

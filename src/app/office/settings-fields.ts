@@ -154,17 +154,6 @@ export const SETTING_GROUPS: readonly SettingGroup[] = [
     title: 'What is lost, and how it is weighed',
     fields: [
       {
-        key: 'householdWeight',
-        label: 'Where somebody can do less without',
-        kind: 'number',
-        unit: 'times its value',
-        least: 1,
-        most: 10,
-        meaning:
-          'Everything in a household that was marked so at intake counts so much more, in the queue and on the routes.',
-        source: OUR_ESTIMATE,
-      },
-      {
         key: 'reachMinutes',
         label: 'Somebody could be there in',
         kind: 'number',
