@@ -17,7 +17,7 @@ let ruth: TestPerson;
 let theo: Awaited<ReturnType<typeof aTechnician>>;
 beforeAll(async () => {
   planner = await startPlanner();
-  server = await startServer({ suffix: '_facts', context: { planner: planner.planner } });
+  server = await startServer({ context: { planner: planner.planner } });
 });
 afterAll(async () => {
   await server.close();
