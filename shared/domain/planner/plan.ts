@@ -51,7 +51,7 @@ export function plan(problem: PlanProblem, options: PlanOptions): Plan {
         share = Math.max(done / options.iterations, options.progress?.() ?? 0);
         if (share >= 1) break;
       }
-      search.step(cooling.at(share));
+      cooling.note(search.step(cooling.at(share, done)));
       done++;
     }
     working.restoreBest();

@@ -31,6 +31,8 @@ export class RouteTimes {
   /** A slip of more seconds loses at least `toll`, on top of `slope`. */
   reach: Float64Array;
   toll: Float64Array;
+  /** The latest arrival that does not lose it. */
+  latest: Float64Array;
   /** What a slip of more than `slack` may save at most; Infinity where a break is to come. */
   credit: Float64Array;
   private capacity = 16;
@@ -55,12 +57,14 @@ export class RouteTimes {
     this.hard = new Float64Array(size);
     this.reach = new Float64Array(size);
     this.toll = new Float64Array(size);
+    this.latest = new Float64Array(size);
     this.credit = new Float64Array(size);
   }
 
   /** From the last stop to the first: a stop that waits for its window swallows a slip. */
   protected refreshSlip(): void {
-    const { c, count, from, stops, slope, slack, hard, reach, toll, credit, own, setOff } = this;
+    const { c, count, from, stops, slope, slack, hard, reach, toll, credit, latest } = this;
+    const { own, setOff } = this;
     const breakCount = from.breaks.length;
     const overrun = this.arrive[count]! - from.shiftEnd;
     slope[count] = overrun >= 0 ? c.overtimePrice : 0;
@@ -69,6 +73,7 @@ export class RouteTimes {
     reach[count] = Infinity;
     toll[count] = 0;
     credit[count] = 0;
+    latest[count] = Infinity;
     // What follows the stop, for a slip of its end.
     let slopeAfter = slope[count];
     let slackAfter = slack[count];
@@ -93,12 +98,15 @@ export class RouteTimes {
         reach[i] = onward + reach[i + 1]!;
         toll[i] = toll[i + 1]!;
       }
-      if (wait > 0) {
-        slope[i] = 0;
-        slack[i] = wait;
-      } else {
+      latest[i] = this.arrive[i]! + reach[i]!;
+      const steady = own.straight < slackAfter ? own.straight : slackAfter;
+      if (wait <= 0) {
         slope[i] = own.slope + slopeAfter;
-        slack[i] = own.straight < slackAfter ? own.straight : slackAfter;
+        slack[i] = steady;
+      } else {
+        // A wait swallows a slip; where nothing behind it has a price either, so does what follows.
+        slope[i] = 0;
+        slack[i] = own.slope + slopeAfter === 0 ? wait + steady : wait;
       }
       slopeAfter = slope[i]!;
       slackAfter = slack[i]!;
@@ -129,6 +137,7 @@ export class RouteTimes {
     this.hard = grown(this.hard, new Float64Array(size));
     this.reach = grown(this.reach, new Float64Array(size));
     this.toll = grown(this.toll, new Float64Array(size));
+    this.latest = grown(this.latest, new Float64Array(size));
     this.credit = grown(this.credit, new Float64Array(size));
   }
 }

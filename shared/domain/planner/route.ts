@@ -13,6 +13,8 @@ export class Route extends RouteTimes {
   readonly frozenCount: number;
   /** Where the stop at the shop stands, or -1. */
   shopAt = -1;
+  /** Seconds of the longest drive. */
+  longest = 0;
   /** Differs whenever the order differs. */
   stamp = 0;
   /** Where the technician's row of `service` and `mayServe` begins. */
@@ -79,6 +81,7 @@ export class Route extends RouteTimes {
     let time = from.startAt;
     let pending = 0;
     let drive = 0;
+    let longest = 0;
     let price = 0;
     this.shopAt = -1;
     for (let i = 0; i < count; i++) {
@@ -102,6 +105,7 @@ export class Route extends RouteTimes {
       start[i] = begin;
       stopPrices[i] = stop;
       drive += seconds;
+      if (seconds > longest) longest = seconds;
       price += stop;
       time = begin + service[row + job]!;
       here = at;
@@ -116,6 +120,7 @@ export class Route extends RouteTimes {
     const overtime = Math.max(0, time + home - from.shiftEnd);
     this.price =
       count === 0 ? 0 : price + (drive + home) * c.travelPrice + overtime * c.overtimePrice;
+    this.longest = home > longest ? home : longest;
     this.refreshSlip();
   }
 

@@ -8,9 +8,6 @@ import { Ruin } from './ruin';
 import { type WorkingPlan } from './working-plan';
 
 const NEIGHBOURS = 40;
-/** Up to so many jobs every position is tried; beyond, those beside a near job, and all now and then. */
-const FULL_SCAN_JOBS = 150;
-const FULL_SCAN_EVERY = 12;
 const TAILS_EVERY = 10;
 
 /**
@@ -45,8 +42,13 @@ export class Search {
     return this.movable.length > 0 && this.plan.routes.length > 0;
   }
 
-  /** One round. @param temperature how much worse a result may be and still be kept, in money */
-  step(temperature: number): void {
+  /**
+   * One round.
+   *
+   * @param temperature how much worse a result may be and still be kept, in money
+   * @returns how much worse the result was, kept or not; below 0 when it was better
+   */
+  step(temperature: number): number {
     const { plan, random } = this;
     const before = plan.price;
     const seed = this.movable[random.below(this.movable.length)]!;
@@ -60,13 +62,13 @@ export class Search {
     const isRefused = worse > 0 && worse >= -temperature * Math.log(random.unit() + 1e-12);
     if (isRefused || !plan.isSound) plan.undo();
     else plan.keep();
+    return worse;
   }
 
   private recreate(): void {
     const { random, ruin, insertion } = this;
     this.orders.arrange(ruin.absent, random);
-    const isFull = this.plan.c.jobCount <= FULL_SCAN_JOBS || random.below(FULL_SCAN_EVERY) === 0;
-    for (const job of ruin.absent) insertion.insert(job, isFull ? null : this.near, true);
+    for (const job of ruin.absent) insertion.insert(job, this.near, true);
   }
 }
 

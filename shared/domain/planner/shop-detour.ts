@@ -1,4 +1,4 @@
-import type { Insertion } from './insertion';
+import type { GapScan } from './gap-scan';
 import { Route } from './route';
 import type { WorkingPlan } from './working-plan';
 
@@ -10,32 +10,44 @@ export class ShopDetour {
   /** A route of each shift to try things on. */
   private readonly drafts: (Route | undefined)[] = [];
 
-  constructor(private readonly plan: WorkingPlan) {}
+  constructor(
+    private readonly plan: WorkingPlan,
+    private readonly scan: GapScan,
+  ) {}
 
-  tryRoute(insertion: Insertion, r: number, route: Route, job: number): void {
+  /** Whether the job fits for less than `below`; the place is then in the scan. */
+  find(r: number, route: Route, job: number, below: number): boolean {
+    const { scan } = this;
     const { c, parts } = this.plan;
     const part = c.part[job]!;
     const left = parts.leftBefore(route.from, part);
     if (this.usesOf(route, part, route.count) < left) {
       // This route has one on the van still; a later shift of the technician is who lacks it then.
       const later = this.laterPrice(r, route, job);
-      if (later === Infinity) return;
-      if (route.count === 0) insertion.tryEmpty(r, route, job, later);
-      else insertion.scan(r, route, job, route.frozenCount, route.count, later);
-      return;
+      if (later === Infinity) return false;
+      if (route.count === 0) return scan.empty(route, job, later, below);
+      return scan.find(route, job, route.frozenCount, later, below, -1);
     }
     const draft = this.draftOf(r, route);
     draft.cutShop();
     const { count } = draft;
+    let bestGap = -1;
+    let best = below;
     for (let gap = route.frozenCount; gap <= count; gap++) {
-      if (gap > route.frozenCount && this.lacksBefore(draft, gap)) return;
+      if (gap > route.frozenCount && this.lacksBefore(draft, gap)) break;
       draft.put(gap, c.jobCount);
       draft.refresh();
       const mayPrecede = this.usesOf(draft, part, gap) < left;
       const first = mayPrecede ? draft.frozenCount : gap + 1;
-      insertion.scan(r, draft, job, first, draft.count, draft.price - route.price);
+      if (scan.find(draft, job, first, draft.price - route.price, best, -1)) {
+        bestGap = scan.gap;
+        best = scan.price;
+      }
       draft.cut(gap, 1);
     }
+    scan.gap = bestGap;
+    scan.price = best;
+    return bestGap >= 0;
   }
 
   /** Free visits among the first `until` stops that take a part. */

@@ -1,26 +1,61 @@
 import type { CompiledProblem } from './compiled-problem';
 import { NO_WAY_SECONDS } from './problem';
 
-const HOT = 3;
-const COLD = 0.1;
+/** Rounds that take nothing worse, to see what the steps of this problem are like. */
+const FIRST_ROUNDS = 100;
+/** First temperature at the least, and the last, as parts of the price of a drive. */
+const HOT_DRIVE = 0.5;
+const COLD_DRIVE = 0.02;
+/** First temperature as a part of the usual loss of a round, for one round a job; grows with the root. */
+const HOT_LOSS = 0.02;
 
 /**
- * How much worse a plan may be and still be kept, in money: from about the price of one drive down to a
- * small part of it. The shape (exponential) is that of the published method.
+ * How much worse a plan may be and still be kept, in money. The shape (exponential) is that of the
+ * published method. Where it begins depends on what the rounds of this problem usually lose, which is
+ * little where only drives differ and much where a freezer does; and on how many rounds there will be.
  */
 export class Cooling {
-  private readonly hot: number;
-  private readonly cold: number;
+  private readonly drive: number;
+  private readonly jobs: number;
+  private losses: number[] = [];
+  private hot = 0;
+  private cold = 0;
+  private firstShare = 0;
 
   constructor(c: CompiledProblem) {
-    const drive = meanDrivePrice(c);
-    this.hot = drive * HOT;
-    this.cold = drive * COLD;
+    this.drive = meanDrivePrice(c);
+    this.jobs = Math.max(1, c.jobCount);
   }
 
-  /** @param share of the search that is done, 0 to 1 */
-  at(share: number): number {
-    return this.hot * (this.cold / this.hot) ** share;
+  /** Told what a round would have lost. */
+  note(worse: number): void {
+    if (this.hot === 0 && worse > 1e-9) this.losses.push(worse);
+  }
+
+  /**
+   * @param share of the search that is done, 0 to 1
+   * @param rounds that are done
+   */
+  at(share: number, rounds: number): number {
+    if (this.hot === 0) {
+      if (rounds < FIRST_ROUNDS) return 0;
+      this.begin(share, rounds);
+    }
+    const left = Math.min(1, (share - this.firstShare) / (1 - this.firstShare));
+    return this.hot * (this.cold / this.hot) ** left;
+  }
+
+  private begin(share: number, rounds: number): void {
+    const perJob = rounds / Math.max(share, 1e-9) / this.jobs;
+    const losses = this.losses.sort((a, b) => a - b);
+    const usual = losses[Math.floor(losses.length / 2)] ?? 0;
+    this.losses = [];
+    this.hot = Math.max(
+      this.drive * HOT_DRIVE,
+      Math.min(usual, usual * HOT_LOSS * Math.sqrt(perJob)),
+    );
+    this.cold = this.drive * COLD_DRIVE;
+    this.firstShare = Math.min(share, 0.999);
   }
 }
 

@@ -27,6 +27,8 @@ export class WorkingPlan {
   /** Routes that the round has changed. */
   readonly touched: number[] = [];
   readonly isTouched: Uint8Array;
+  /** Of each route; the same number stands for the same order of stops. */
+  readonly stampOf: Int32Array;
 
   /** The second route of each shift: as it was before the round, or free for the next. */
   private readonly spare: Route[];
@@ -44,6 +46,7 @@ export class WorkingPlan {
     this.bankIndex = new Int32Array(c.jobCount).fill(-1);
     this.parts = new PartsInUse(c);
     this.isTouched = new Uint8Array(this.routes.length);
+    this.stampOf = new Int32Array(this.routes.length);
     this.bestStops = this.routes.map(() => new Int32Array(0));
     this.bestStamp = new Int32Array(this.routes.length).fill(-1);
     for (let job = 0; job < c.jobCount; job++) if (!c.isFrozen[job]) this.addToBank(job);
@@ -107,7 +110,7 @@ export class WorkingPlan {
     const before = route.price;
     if (this.c.hasShop) this.parts.arrangeShop(route);
     else route.refresh();
-    route.stamp = ++this.lastStamp;
+    route.stamp = this.stampOf[r] = ++this.lastStamp;
     this.price += route.price - before;
     this.noteStops(r);
   }
@@ -143,6 +146,7 @@ export class WorkingPlan {
       const route = this.spare[r]!;
       this.spare[r] = this.routes[r]!;
       this.routes[r] = route;
+      this.stampOf[r] = route.stamp;
       this.isTouched[r] = 0;
       for (let i = route.frozenCount; i < route.count; i++) {
         const job = route.stops[i]!;

@@ -1,0 +1,148 @@
+import type { CompiledProblem } from './compiled-problem';
+import { departure, type Departure } from './departure';
+import type { Route } from './route';
+import { serviceStart, stopPrice } from './stop-price';
+
+/** Looks through the gaps of a route for the one where a job costs least. */
+export class GapScan {
+  /** The best gap of the last look, the stop at the shop not counted. */
+  gap = -1;
+  /** The job's price there. */
+  price = Infinity;
+  private readonly leave: Departure = { at: 0, pending: 0, room: 0, isSwallowed: false };
+  private readonly onward: Departure = { at: 0, pending: 0, room: 0, isSwallowed: false };
+
+  constructor(private readonly c: CompiledProblem) {}
+
+  /**
+   * @param offset price of what else has to change
+   * @returns whether the job fits into the empty route for less than `below`
+   */
+  empty(route: Route, job: number, offset: number, below: number): boolean {
+    const { c } = this;
+    const { from, row } = route;
+    const place = c.loc[job]!;
+    const there = c.travel[from.startLoc * c.locations + place]!;
+    const onward = c.travel[place * c.locations + from.endLoc]!;
+    const drive = offset + (there + onward) * c.travelPrice;
+    if (drive + route.changePrice(job) >= below) return false;
+    const service = c.service[row + job]!;
+    departure(c, from.breaks, 0, from.startAt, job, there, service, this.leave);
+    const start = serviceStart(c, job, this.leave.at + there);
+    const end = start + service + onward;
+    if (end > from.limit) return false;
+    const overtime = Math.max(0, end - from.shiftEnd) * c.overtimePrice;
+    this.gap = 0;
+    this.price = drive + overtime + stopPrice(c, job, start) + route.changePrice(job);
+    return this.price < below;
+  }
+
+  /**
+   * @param first gap to begin with, in a route that has stops
+   * @param offset price of what the route has changed in besides the job
+   * @param without a gap to pass over, or -1
+   * @returns whether the job fits for less than `below`
+   */
+  find(
+    route: Route,
+    job: number,
+    first: number,
+    offset: number,
+    below: number,
+    without: number,
+  ): boolean {
+    const { c } = this;
+    const { place, ready, pend, direct, arrive, slope, slack, hard } = route;
+    const { reach, toll, credit, latest, count, shopAt } = route;
+    const { travel, travelTo, travelPrice } = c;
+    const breakCount = route.from.breaks.length;
+    const rowAt = c.loc[job]! * c.locations;
+    const service = c.service[route.row + job]!;
+    const waitPrice = c.waitPrice[job]!;
+    const calledAt = c.calledAt[job]!;
+    const lastEnd = c.lastWindowEnd[job]!;
+    const lateFixed = c.weights.lateFixed;
+    const fixed = offset + route.changePrice(job);
+    // No drive is saved but the one through the gap.
+    const floor = fixed - route.longest * travelPrice;
+    const soonestEnd = serviceStart(c, job, -Infinity) + service;
+    let best = below;
+    let bestGap = -1;
+    for (let gap = first; gap <= count; gap++) {
+      // Far too late for the job, or what follows would be: known without looking at the drives.
+      if (ready[gap]! > lastEnd && floor + lateFixed - credit[gap]! >= best) {
+        if (breakCount === 0) break;
+        continue;
+      }
+      if (soonestEnd > latest[gap]! && floor + toll[gap]! - credit[gap]! >= best) continue;
+      if (gap === without) continue;
+      const there = travelTo[rowAt + place[gap]!]!;
+      const onward = travel[rowAt + place[gap + 1]!]!;
+      const detour = fixed + (there + onward - direct[gap]!) * travelPrice;
+      let price: number;
+      if (pend[gap]! < breakCount) {
+        price = this.priceAmongBreaks(route, gap, job, there, onward, detour);
+      } else {
+        // Most gaps end here: driving and waiting alone cost more than the best place so far.
+        const soonest = ready[gap]! + there;
+        const spare = credit[gap]!;
+        const least = detour + waitPrice * (soonest - calledAt) - spare;
+        if (least >= best || (soonest > lastEnd && least + lateFixed >= best)) continue;
+        const start = serviceStart(c, job, soonest);
+        price = detour + stopPrice(c, job, start);
+        if (price - spare >= best) continue;
+        const arrival = start + service + onward;
+        const slip = arrival - arrive[gap]!;
+        if (slip > hard[gap]!) continue;
+        if (slip >= 0 && slip <= slack[gap]!) price += slip * slope[gap]!;
+        else {
+          if (slip > 0) {
+            let bound = price + slip * slope[gap]! - spare;
+            if (slip > reach[gap]!) bound += toll[gap]!;
+            if (bound >= best) continue;
+          }
+          price += route.walk(gap, arrival, breakCount, best - price);
+        }
+      }
+      if (price >= best) continue;
+      best = price;
+      bestGap = gap;
+    }
+    this.gap = shopAt >= 0 && bestGap > shopAt ? bestGap - 1 : bestGap;
+    this.price = best;
+    return bestGap >= 0;
+  }
+
+  /** Price of a job in a gap before which a break is still to come. */
+  private priceAmongBreaks(
+    route: Route,
+    gap: number,
+    job: number,
+    there: number,
+    onward: number,
+    detour: number,
+  ): number {
+    const { c, leave } = this;
+    const { breaks } = route.from;
+    const service = c.service[route.row + job]!;
+    departure(c, breaks, route.pend[gap]!, route.ready[gap]!, job, there, service, leave);
+    const start = serviceStart(c, job, leave.at + there);
+    const price = detour + stopPrice(c, job, start);
+    let time = start + service;
+    let pending = leave.pending;
+    if (gap < route.count) {
+      const next = route.stops[gap]!;
+      const work = c.service[route.row + next]!;
+      departure(c, breaks, pending, time, next, onward, work, this.onward);
+      time = this.onward.at;
+      pending = this.onward.pending;
+    }
+    const arrival = time + onward;
+    const slip = arrival - route.arrive[gap]!;
+    const isAlike = gap === route.count || pending === route.pend[gap + 1]!;
+    if (isAlike && slip >= 0 && slip <= route.slack[gap]!) {
+      return price + slip * route.slope[gap]!;
+    }
+    return price + route.walk(gap, arrival, pending, Infinity);
+  }
+}
