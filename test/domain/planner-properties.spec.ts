@@ -64,7 +64,7 @@ describe('plan', () => {
           expectSound(problem, plan(problem, { iterations, seed }));
         },
       ),
-      { numRuns: 120 },
+      { numRuns: 60 },
     );
   });
 
@@ -74,7 +74,7 @@ describe('plan', () => {
         const options = { iterations: 200, seed };
         expect(plan(problem, options)).toEqual(plan(problem, options));
       }),
-      { numRuns: 25 },
+      { numRuns: 10 },
     );
   });
 
@@ -117,7 +117,7 @@ describe('plan', () => {
         };
         expectSound(changed, plan(changed, { iterations: 100, seed: 5 }));
       }),
-      { numRuns: 80 },
+      { numRuns: 40 },
     );
   });
 

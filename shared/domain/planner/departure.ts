@@ -2,6 +2,10 @@ import type { CompiledProblem } from './compiled-problem';
 import type { PlanBreak } from './problem';
 import { serviceStart } from './stop-price';
 
+// Taken once: looking a global up costs more than the sum where code runs in a sandbox.
+const { max, min } = Math;
+const NEVER = Infinity;
+
 /** When a technician sets off for a stop, breaks taken before. */
 export interface Departure {
   at: number;
@@ -34,7 +38,7 @@ export function departure(
   service: number,
   result: Departure,
 ): void {
-  let room = Infinity;
+  let room = NEVER;
   let isSwallowed = false;
   for (; pending < breaks.length; pending++) {
     const { from, to, seconds: pause } = breaks[pending]!;
@@ -42,19 +46,19 @@ export function departure(
     if (time < from) {
       const end = serviceStart(c, job, time + seconds) + service;
       if (end <= to) {
-        if (!isSwallowed) room = Math.min(room, from - time - BEFORE, to - end);
+        if (!isSwallowed) room = min(room, from - time - BEFORE, to - end);
         break;
       }
-      if (!isSwallowed) room = Math.min(room, from - time);
+      if (!isSwallowed) room = min(room, from - time);
       isSwallowed = true;
       time = from + pause;
     } else {
-      if (!isSwallowed) room = Math.min(room, to - time);
+      if (!isSwallowed) room = min(room, to - time);
       time += pause;
     }
   }
   result.at = time;
   result.pending = pending;
-  result.room = Math.max(0, room);
+  result.room = max(0, room);
   result.isSwallowed = isSwallowed;
 }

@@ -1,14 +1,34 @@
 import type { CompiledProblem } from './compiled-problem';
 import { departure, type Departure } from './departure';
+import {
+  ARRIVE,
+  CREDIT,
+  DIRECT,
+  GAP,
+  HARD,
+  LATEST,
+  NEXT,
+  PEND,
+  PLACE,
+  REACH,
+  READY,
+  SLACK,
+  SLOPE,
+  TOLL,
+} from './gap-fields';
 import type { Route } from './route';
 import { serviceStart, stopPrice } from './stop-price';
+
+// Taken once: looking a global up costs more than the sum where code runs in a sandbox.
+const { max } = Math;
+const NEVER = Infinity;
 
 /** Looks through the gaps of a route for the one where a job costs least. */
 export class GapScan {
   /** The best gap of the last look, the stop at the shop not counted. */
   gap = -1;
   /** The job's price there. */
-  price = Infinity;
+  price = NEVER;
   private readonly leave: Departure = { at: 0, pending: 0, room: 0, isSwallowed: false };
   private readonly onward: Departure = { at: 0, pending: 0, room: 0, isSwallowed: false };
 
@@ -31,7 +51,7 @@ export class GapScan {
     const start = serviceStart(c, job, this.leave.at + there);
     const end = start + service + onward;
     if (end > from.limit) return false;
-    const overtime = Math.max(0, end - from.shiftEnd) * c.overtimePrice;
+    const overtime = max(0, end - from.shiftEnd) * c.overtimePrice;
     this.gap = 0;
     this.price = drive + overtime + stopPrice(c, job, start) + route.changePrice(job);
     return this.price < below;
@@ -52,8 +72,7 @@ export class GapScan {
     without: number,
   ): boolean {
     const { c } = this;
-    const { place, ready, pend, direct, arrive, slope, slack, hard } = route;
-    const { reach, toll, credit, latest, count, shopAt } = route;
+    const { gaps, count, shopAt } = route;
     const { travel, travelTo, travelPrice } = c;
     const breakCount = route.from.breaks.length;
     const rowAt = c.loc[job]! * c.locations;
@@ -65,40 +84,43 @@ export class GapScan {
     const fixed = offset + route.changePrice(job);
     // No drive is saved but the one through the gap.
     const floor = fixed - route.longest * travelPrice;
-    const soonestEnd = serviceStart(c, job, -Infinity) + service;
+    const soonestEnd = serviceStart(c, job, -NEVER) + service;
     let best = below;
     let bestGap = -1;
-    for (let gap = first; gap <= count; gap++) {
+    for (let gap = first, o = first * GAP; gap <= count; gap++, o += GAP) {
       // Far too late for the job, or what follows would be: known without looking at the drives.
-      if (ready[gap]! > lastEnd && floor + lateFixed - credit[gap]! >= best) {
+      const ready = gaps[o + READY]!;
+      const spare = gaps[o + CREDIT]!;
+      if (ready > lastEnd && floor + lateFixed - spare >= best) {
         if (breakCount === 0) break;
         continue;
       }
-      if (soonestEnd > latest[gap]! && floor + toll[gap]! - credit[gap]! >= best) continue;
+      const toll = gaps[o + TOLL]!;
+      if (soonestEnd > gaps[o + LATEST]! && floor + toll - spare >= best) continue;
       if (gap === without) continue;
-      const there = travelTo[rowAt + place[gap]!]!;
-      const onward = travel[rowAt + place[gap + 1]!]!;
-      const detour = fixed + (there + onward - direct[gap]!) * travelPrice;
+      const there = travelTo[rowAt + gaps[o + PLACE]!]!;
+      const onward = travel[rowAt + gaps[o + NEXT]!]!;
+      const detour = fixed + (there + onward - gaps[o + DIRECT]!) * travelPrice;
       let price: number;
-      if (pend[gap]! < breakCount) {
+      if (breakCount > 0 && gaps[o + PEND]! < breakCount) {
         price = this.priceAmongBreaks(route, gap, job, there, onward, detour);
       } else {
         // Most gaps end here: driving and waiting alone cost more than the best place so far.
-        const soonest = ready[gap]! + there;
-        const spare = credit[gap]!;
+        const soonest = ready + there;
         const least = detour + waitPrice * (soonest - calledAt) - spare;
         if (least >= best || (soonest > lastEnd && least + lateFixed >= best)) continue;
         const start = serviceStart(c, job, soonest);
         price = detour + stopPrice(c, job, start);
         if (price - spare >= best) continue;
         const arrival = start + service + onward;
-        const slip = arrival - arrive[gap]!;
-        if (slip > hard[gap]!) continue;
-        if (slip >= 0 && slip <= slack[gap]!) price += slip * slope[gap]!;
+        const slip = arrival - gaps[o + ARRIVE]!;
+        if (slip > gaps[o + HARD]!) continue;
+        const slope = gaps[o + SLOPE]!;
+        if (slip >= 0 && slip <= gaps[o + SLACK]!) price += slip * slope;
         else {
           if (slip > 0) {
-            let bound = price + slip * slope[gap]! - spare;
-            if (slip > reach[gap]!) bound += toll[gap]!;
+            let bound = price + slip * slope - spare;
+            if (slip > gaps[o + REACH]!) bound += toll;
             if (bound >= best) continue;
           }
           price += route.walk(gap, arrival, breakCount, best - price);
@@ -125,7 +147,9 @@ export class GapScan {
     const { c, leave } = this;
     const { breaks } = route.from;
     const service = c.service[route.row + job]!;
-    departure(c, breaks, route.pend[gap]!, route.ready[gap]!, job, there, service, leave);
+    const o = gap * GAP;
+    const { gaps } = route;
+    departure(c, breaks, gaps[o + PEND]!, gaps[o + READY]!, job, there, service, leave);
     const start = serviceStart(c, job, leave.at + there);
     const price = detour + stopPrice(c, job, start);
     let time = start + service;
@@ -138,11 +162,11 @@ export class GapScan {
       pending = this.onward.pending;
     }
     const arrival = time + onward;
-    const slip = arrival - route.arrive[gap]!;
-    const isAlike = gap === route.count || pending === route.pend[gap + 1]!;
-    if (isAlike && slip >= 0 && slip <= route.slack[gap]!) {
-      return price + slip * route.slope[gap]!;
+    const slip = arrival - gaps[o + ARRIVE]!;
+    const isAlike = gap === route.count || pending === gaps[o + GAP + PEND]!;
+    if (isAlike && slip >= 0 && slip <= gaps[o + SLACK]!) {
+      return price + slip * gaps[o + SLOPE]!;
     }
-    return price + route.walk(gap, arrival, pending, Infinity);
+    return price + route.walk(gap, arrival, pending, NEVER);
   }
 }

@@ -1,3 +1,6 @@
+// Taken once: looking a global up costs more than the sum where code runs in a sandbox.
+const { floor } = Math;
+
 /** A stream of numbers that is the same for the same seed: xorshift32 (Marsaglia 2003). */
 export class SeededRandom {
   private state: number;
@@ -26,6 +29,6 @@ export class SeededRandom {
 
   /** A whole number from 0 to `below` - 1. */
   below(below: number): number {
-    return Math.floor(this.unit() * below);
+    return floor(this.unit() * below);
   }
 }

@@ -1,5 +1,6 @@
 import type { Plan, PlanHalt, PlanRoute } from './problem';
 import { departure, type Departure } from './departure';
+import { ARRIVE, DIRECT, PEND, READY, START } from './gap-fields';
 import type { Route } from './route';
 import { UnassignedReasons } from './unassigned-reason';
 import type { WorkingPlan } from './working-plan';
@@ -18,7 +19,7 @@ export function report(plan: WorkingPlan, iterations: number): Plan {
           shift: route.from.shift,
           stops: stopsOf(route, plan),
           ...(halts.length > 0 ? { halts } : {}),
-          end: route.arrive[route.count]!,
+          end: route.end,
         };
       }),
     unassigned: jobs.flatMap((job, index) =>
@@ -32,9 +33,9 @@ export function report(plan: WorkingPlan, iterations: number): Plan {
 function stopsOf(route: Route, { c }: WorkingPlan): PlanRoute['stops'] {
   const stops = Array.from(route.stops.subarray(0, route.count), (job, index) => ({
     job: c.problem.jobs[job]?.id ?? '',
-    arrive: route.arrive[index]!,
-    start: route.start[index]!,
-    finish: route.start[index]! + c.service[route.row + job]!,
+    arrive: route.at(index, ARRIVE),
+    start: route.at(index, START),
+    finish: route.at(index, START) + c.service[route.row + job]!,
   }));
   if (route.shopAt >= 0) stops.splice(route.shopAt, 1);
   return stops;
@@ -47,9 +48,9 @@ function haltsOf(route: Route, { c, parts }: WorkingPlan): PlanHalt[] {
   for (let i = 0; i < route.count; i++) {
     const before = route.shopAt >= 0 && i > route.shopAt ? i - 1 : i;
     const job = route.stops[i]!;
-    const [drive, work] = [route.direct[i]!, c.service[route.row + job]!];
-    let time = route.ready[i]!;
-    for (let next = route.pend[i]!; next < route.pend[i + 1]!; next++) {
+    const [drive, work] = [route.at(i, DIRECT), c.service[route.row + job]!];
+    let time = route.at(i, READY);
+    for (let next = route.at(i, PEND); next < route.at(i + 1, PEND); next++) {
       const due = breaks[next]!;
       departure(c, [due], 0, time, job, drive, work, leave);
       if (leave.at === time) continue;
@@ -61,8 +62,8 @@ function haltsOf(route: Route, { c, parts }: WorkingPlan): PlanHalt[] {
     halts.push({
       kind: 'shop',
       before,
-      start: route.arrive[i]!,
-      finish: route.arrive[i]! + work,
+      start: route.at(i, ARRIVE),
+      finish: route.at(i, ARRIVE) + work,
       parts: Object.fromEntries(
         c.partNames.flatMap((name, part) =>
           fetched && fetched[part]! > 0 ? [[name, fetched[part]!] as const] : [],

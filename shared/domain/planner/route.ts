@@ -1,7 +1,23 @@
 import type { CompiledProblem, ShiftStart } from './compiled-problem';
 import { departure, type Departure } from './departure';
+import {
+  ARRIVE,
+  CREDIT,
+  DIRECT,
+  GAP,
+  NEXT,
+  PEND,
+  PLACE,
+  READY,
+  START,
+  STOP_PRICE,
+} from './gap-fields';
 import { RouteTimes } from './route-times';
 import { serviceStart, stopPrice } from './stop-price';
+
+// Taken once: looking a global up costs more than the sum where code runs in a sandbox.
+const { max } = Math;
+const NEVER = Infinity;
 
 /**
  * One technician's one shift under work. `put`, `cut` and `replace` change the order of its stops;
@@ -31,7 +47,7 @@ export class Route extends RouteTimes {
 
   /** Whether the arrival home is within the overtime limit; accepted stops alone are never refused. */
   get isWithinLimit(): boolean {
-    return this.count === this.frozenCount || this.arrive[this.count]! <= this.from.limit;
+    return this.count === this.frozenCount || this.end <= this.from.limit;
   }
 
   /** Puts a job into a gap; `refresh` has to follow. */
@@ -73,9 +89,8 @@ export class Route extends RouteTimes {
 
   /** Recomputes times, price and slip figures from the order of the stops. */
   refresh(): void {
-    const { c, count, stops, from, row } = this;
+    const { c, count, stops, gaps, from, row } = this;
     const { travel, locations, loc, service, jobCount } = c;
-    const { place, ready, pend, direct, arrive, start, stopPrices } = this;
     const hasBreaks = from.breaks.length > 0;
     let here = from.startLoc;
     let time = from.startAt;
@@ -83,15 +98,17 @@ export class Route extends RouteTimes {
     let drive = 0;
     let longest = 0;
     let price = 0;
+    let o = 0;
     this.shopAt = -1;
-    for (let i = 0; i < count; i++) {
+    for (let i = 0; i < count; i++, o += GAP) {
       const job = stops[i]!;
       const at = loc[job]!;
       const seconds = travel[here * locations + at]!;
-      place[i] = here;
-      ready[i] = time;
-      pend[i] = pending;
-      direct[i] = seconds;
+      gaps[o + PLACE] = here;
+      gaps[o + NEXT] = at;
+      gaps[o + READY] = time;
+      gaps[o + PEND] = pending;
+      gaps[o + DIRECT] = seconds;
       if (hasBreaks) {
         departure(c, from.breaks, pending, time, job, seconds, service[row + job]!, this.leave);
         time = this.leave.at;
@@ -99,25 +116,25 @@ export class Route extends RouteTimes {
       }
       if (job === jobCount) this.shopAt = i;
       const arrival = time + seconds;
-      const begin = serviceStart(c, job, arrival);
-      const stop = stopPrice(c, job, begin) + this.changePrice(job);
-      arrive[i] = arrival;
-      start[i] = begin;
-      stopPrices[i] = stop;
+      const start = serviceStart(c, job, arrival);
+      const stop = stopPrice(c, job, start) + this.changePrice(job);
+      gaps[o + ARRIVE] = arrival;
+      gaps[o + START] = start;
+      gaps[o + STOP_PRICE] = stop;
       drive += seconds;
       if (seconds > longest) longest = seconds;
       price += stop;
-      time = begin + service[row + job]!;
+      time = start + service[row + job]!;
       here = at;
     }
     const home = travel[here * locations + from.endLoc]!;
-    place[count] = here;
-    place[count + 1] = from.endLoc;
-    ready[count] = time;
-    pend[count] = pending;
-    direct[count] = home;
-    arrive[count] = time + home;
-    const overtime = Math.max(0, time + home - from.shiftEnd);
+    gaps[o + PLACE] = here;
+    gaps[o + NEXT] = from.endLoc;
+    gaps[o + READY] = time;
+    gaps[o + PEND] = pending;
+    gaps[o + DIRECT] = home;
+    gaps[o + ARRIVE] = time + home;
+    const overtime = max(0, time + home - from.shiftEnd);
     this.price =
       count === 0 ? 0 : price + (drive + home) * c.travelPrice + overtime * c.overtimePrice;
     this.longest = home > longest ? home : longest;
@@ -134,30 +151,33 @@ export class Route extends RouteTimes {
    * @returns Infinity when the limit is broken, otherwise the price, or at least `upTo`
    */
   walk(gap: number, arrival: number, pending: number, upTo: number): number {
-    const { c, count, from, stops, row, start, stopPrices, pend, direct, credit } = this;
+    const { c, count, from, stops, row, gaps } = this;
     const breakCount = from.breaks.length;
     let price = 0;
-    for (let i = gap; i < count; i++) {
+    for (let i = gap, o = gap * GAP; i < count; i++, o += GAP) {
       const job = stops[i]!;
-      const begin = serviceStart(c, job, arrival);
-      if (begin === start[i]! && pending === pend[i + 1]!) return price;
-      price += stopPrice(c, job, begin) + this.changePrice(job) - stopPrices[i]!;
-      const isSettled = pending === breakCount && pend[i + 1] === breakCount;
-      const least = price - credit[i + 1]!;
-      if (isSettled && begin >= start[i]! && least >= upTo) return least;
-      let time = begin + c.service[row + job]!;
+      const start = serviceStart(c, job, arrival);
+      const before = gaps[o + START]!;
+      const pendBefore = gaps[o + GAP + PEND]!;
+      if (start === before && pending === pendBefore) return price;
+      price += stopPrice(c, job, start) + this.changePrice(job) - gaps[o + STOP_PRICE]!;
+      if (start >= before && pending === breakCount && pendBefore === breakCount) {
+        const least = price - gaps[o + GAP + CREDIT]!;
+        if (least >= upTo) return least;
+      }
+      let time = start + c.service[row + job]!;
+      const seconds = gaps[o + GAP + DIRECT]!;
       if (i + 1 < count && pending < breakCount) {
         const next = stops[i + 1]!;
-        const seconds = direct[i + 1]!;
         departure(c, from.breaks, pending, time, next, seconds, c.service[row + next]!, this.leave);
         time = this.leave.at;
         pending = this.leave.pending;
       }
-      arrival = time + direct[i + 1]!;
+      arrival = time + seconds;
     }
-    if (arrival > from.limit) return Infinity;
-    const before = Math.max(0, this.arrive[count]! - from.shiftEnd);
-    const after = Math.max(0, arrival - from.shiftEnd);
-    return price + (after - before) * c.overtimePrice;
+    if (arrival > from.limit) return NEVER;
+    const overBefore = max(0, this.end - from.shiftEnd);
+    const overAfter = max(0, arrival - from.shiftEnd);
+    return price + (overAfter - overBefore) * c.overtimePrice;
   }
 }

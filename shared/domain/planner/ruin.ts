@@ -2,6 +2,10 @@ import type { Neighbours } from './neighbours';
 import type { SeededRandom } from './random';
 import type { WorkingPlan } from './working-plan';
 
+// Taken once: looking a global up costs more than the sum where code runs in a sandbox.
+const { floor, max, min } = Math;
+const NEVER = Infinity;
+
 /** Jobs taken out per round on average, and the longest string cut from one route: as published. */
 const MEAN_REMOVED = 10;
 const LONGEST_STRING = 10;
@@ -28,16 +32,16 @@ export class Ruin {
   around(seed: number): void {
     const { random, plan, near } = this;
     this.clear();
-    const longest = Math.max(1, Math.min(LONGEST_STRING, this.meanStops()));
-    const mostStrings = Math.max(1, (4 * MEAN_REMOVED) / (1 + longest) - 1);
-    const strings = Math.floor(1 + random.unit() * mostStrings);
+    const longest = max(1, min(LONGEST_STRING, this.meanStops()));
+    const mostStrings = max(1, (4 * MEAN_REMOVED) / (1 + longest) - 1);
+    const strings = floor(1 + random.unit() * mostStrings);
     const isWhole = random.below(WHOLE_ROUTE_EVERY) === 0;
     let cut = 0;
     for (let k = -1; k < near.count && cut < strings; k++) {
       const job = k < 0 ? seed : near.list[seed * near.count + k]!;
       const r = plan.routeOf[job]!;
       if (r < 0 || plan.isTouched[r] || plan.c.isFrozen[job]) continue;
-      this.cutString(r, job, isWhole ? Infinity : longest);
+      this.cutString(r, job, isWhole ? NEVER : longest);
       cut++;
       if (isWhole) break;
     }
@@ -65,16 +69,16 @@ export class Ruin {
     let at = route.frozenCount;
     while (route.stops[at] !== job) at++;
     const movable = route.count - route.frozenCount;
-    const length = longest === Infinity ? movable : 1 + random.unit() * Math.min(movable, longest);
-    const cutLength = Math.min(Math.floor(length), movable);
+    const length = longest === NEVER ? movable : 1 + random.unit() * min(movable, longest);
+    const cutLength = min(floor(length), movable);
     let stay = 0;
     if (cutLength > 1 && cutLength < movable && random.below(2) === 0) {
       stay = 1;
       while (cutLength + stay < movable && random.unit() > 0.5) stay++;
     }
     const span = cutLength + stay;
-    const firstMin = Math.max(route.frozenCount, at - span + 1);
-    const firstMax = Math.min(at, route.count - span);
+    const firstMin = max(route.frozenCount, at - span + 1);
+    const firstMax = min(at, route.count - span);
     const first = firstMin + random.below(firstMax - firstMin + 1);
     const stayFrom = stay > 0 ? first + 1 + random.below(cutLength - 1) : first + span;
     for (let i = first + span - 1; i >= first; i--) {

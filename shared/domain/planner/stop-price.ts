@@ -1,5 +1,9 @@
 import type { CompiledProblem } from './compiled-problem';
 
+// Taken once: looking a global up costs more than the sum where code runs in a sandbox.
+const { max, abs } = Math;
+const NEVER = Infinity;
+
 /**
  * When the work on a job starts for an arrival at `arrive`: not before its earliest time, in the
  * first window that is still open, and at once when all windows are over.
@@ -24,7 +28,7 @@ export function stopPrice(c: CompiledProblem, job: number, start: number): numbe
   const late = start - c.lastWindowEnd[job]!;
   if (late > 0) price += c.weights.lateFixed + late * c.latePrice;
   // Not a number where nothing was promised, and then never more than anything.
-  const moved = Math.abs(start - c.promisedStart[job]!);
+  const moved = abs(start - c.promisedStart[job]!);
   if (moved > c.weights.movedBy) price += c.weights.churnMoved;
   return price;
 }
@@ -48,8 +52,8 @@ const BEFORE = 1e-6;
 
 export function slipOf(c: CompiledProblem, job: number, start: number, slip: StopSlip): void {
   slip.slope = c.waitPrice[job]!;
-  slip.straight = Infinity;
-  slip.reach = Infinity;
+  slip.straight = NEVER;
+  slip.reach = NEVER;
   slip.toll = 0;
   slip.credit = 0;
   const deadlinesEnd = c.deadlineOffset[job + 1]!;
@@ -72,13 +76,13 @@ export function slipOf(c: CompiledProblem, job: number, start: number, slip: Sto
     slip.toll = c.weights.lateFixed;
   }
   const promised = c.promisedStart[job]!;
-  if (!Number.isNaN(promised)) {
+  if (promised > -NEVER) {
     const { movedBy, churnMoved } = c.weights;
     const early = promised - movedBy - start;
     const late = promised + movedBy - start;
     if (early > 0) {
       slip.credit = churnMoved;
-      if (early - BEFORE < slip.straight) slip.straight = Math.max(0, early - BEFORE);
+      if (early - BEFORE < slip.straight) slip.straight = max(0, early - BEFORE);
     } else if (late >= 0 && late < slip.straight) slip.straight = late;
   }
 }
