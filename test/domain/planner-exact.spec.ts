@@ -64,11 +64,11 @@ describe('plan, against the exact best', () => {
     expect(1100 - result.cost).toBe(950);
   });
 
-  it('is equal to it in 99 % of small problems of every kind, within 1 % in all, never below', () => {
+  it('is equal to it in small problems of every kind: the first of those that `npm run bench planner` solves', () => {
     const gaps = smallProblems(24).map((options) => gapToExact(options, 20_000));
     expect(Math.min(...gaps)).toBeGreaterThanOrEqual(-1e-9);
     expect(Math.max(...gaps)).toBeLessThanOrEqual(0.01);
-    expect(gaps.filter((gap) => gap < 1e-9).length / gaps.length).toBeGreaterThanOrEqual(0.99);
+    expect(gaps.filter((gap) => gap > 1e-9).length).toBeLessThanOrEqual(0.01 * gaps.length);
   });
 
   it('is priced by the scorer exactly as by the exact search', () => {

@@ -36,8 +36,6 @@ export interface ShiftStart {
   readonly breaks: readonly PlanBreak[];
   /** Accepted jobs that open the route. */
   readonly frozen: readonly number[];
-  /** Shifts of one kind are alike in everything: where both are empty, only one need be tried. */
-  readonly kind: number;
 }
 
 /**
@@ -128,7 +126,7 @@ export function compile(problem: PlanProblem, tables?: TravelTables): CompiledPr
     ...parts,
     absentPrice: absentPrices(problem, jobs, weights),
     mayServe,
-    shifts: withKinds(shifts, problem, parts, promises),
+    shifts,
     isFrozen,
   };
 }
@@ -153,18 +151,16 @@ function checkPlace(place: number, locations: number, whose: string): void {
   }
 }
 
-type PlainShift = Omit<ShiftStart, 'kind'>;
-
 function compiledShifts(
   problem: PlanProblem,
   weights: PlanWeights,
   jobNumber: ReadonlyMap<string, number>,
-): PlainShift[] {
+): ShiftStart[] {
   return problem.technicians.flatMap((technician, index) => {
     if (technician.frozen.length > 0 && technician.shifts.length === 0) {
       throw new MalformedProblem(`Technician ${technician.id} has accepted stops but no shift.`);
     }
-    return technician.shifts.map((shift, shiftIndex): PlainShift => {
+    return technician.shifts.map((shift, shiftIndex): ShiftStart => {
       const start = {
         technician: index,
         shift: shiftIndex,
@@ -180,31 +176,5 @@ function compiledShifts(
       checkPlace(start.endLoc, problem.locations, `Technician ${technician.id}`);
       return start;
     });
-  });
-}
-
-function withKinds(
-  shifts: readonly PlainShift[],
-  { technicians, jobs }: PlanProblem,
-  { vanFree, partCount }: CompiledParts,
-  { promised }: CompiledPromises,
-): ShiftStart[] {
-  const kinds = new Map<string, number>();
-  const isExpected = new Set(promised);
-  const isNamed = new Set(
-    jobs.flatMap((job) => [...(job.onlyTechnicians ?? []), ...Object.keys(job.serviceBy ?? {})]),
-  );
-  const people = technicians.map(({ id, skills, shifts: own }, t) =>
-    // One who is expected somewhere, is named by a job or works on several days is like nobody else.
-    isExpected.has(t) || isNamed.has(id) || own.length > 1
-      ? id
-      : [[...skills].sort(), vanFree.subarray(t * partCount, (t + 1) * partCount).join()],
-  );
-  return shifts.map((shift) => {
-    const { technician, ...rest } = shift;
-    const key = JSON.stringify([people[technician], rest]);
-    const kind = kinds.get(key) ?? kinds.size;
-    kinds.set(key, kind);
-    return { ...shift, kind };
   });
 }

@@ -4,7 +4,7 @@ import { NO_WAY_SECONDS } from './problem';
 /** Rounds that take nothing worse, to see what the steps of this problem are like. */
 const FIRST_ROUNDS = 100;
 /** First temperature at the least, and the last, as parts of the price of a drive. */
-const HOT_DRIVE = 0.5;
+const HOT_DRIVE = 1;
 const COLD_DRIVE = 0.02;
 /** First temperature as a part of the usual loss of a round, for one round a job; grows with the root. */
 const HOT_LOSS = 0.02;
