@@ -157,7 +157,12 @@ async function seedStorm(
 
   const calls = demoCallers(areas, addresses, chance, CALLS)
     .map(({ address, outAt, backAt }, number) => {
-      const receivedAt = Math.min(backAt + ringsAfter(chance), now - chance.below(20) * MINUTE_MS);
+      const rings = backAt + ringsAfter(chance);
+      const latest = now - chance.below(20) * MINUTE_MS;
+      // Whoever would ring later has rung at some moment since: all of them now would be a burst that no
+      // storm shows, and the forecast would take it for one.
+      const receivedAt =
+        rings <= latest ? rings : latest - chance.next() * Math.max(0, latest - backAt);
       return demoCall(chance, address, number, { receivedAt, outAt, backAt });
     })
     .sort((a, b) => a.receivedAt - b.receivedAt);
