@@ -6,7 +6,7 @@ import {
   drainTotals,
   type DrainCall,
 } from '@shared/domain/backlog-drain';
-import { addMinutes, HOUR_MS, MINUTE_MS, type Instant } from '@shared/domain/instant';
+import { addMinutes, MINUTE_MS, type Instant } from '@shared/domain/instant';
 
 const MORNING: Instant = Date.UTC(2031, 8, 14, 6, 0);
 const minute = (minutes: number): Instant => addMinutes(MORNING, minutes);
