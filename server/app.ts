@@ -10,6 +10,7 @@ import type { Context } from './context';
 import { forecastRoutes } from './forecast/forecast-routes';
 import { LookAhead } from './forecast/look-ahead';
 import { bindRoutes, type Handlers } from './http/bind-routes';
+import { RateLimit } from './http/rate-limit';
 import { healthRoutes } from './http/health';
 import { metrics } from './http/metrics';
 import { openApi } from './http/openapi';
@@ -49,6 +50,8 @@ export interface GivenContext extends Omit<Context, 'live' | 'region' | 'regionI
   readonly region: RegionInUse;
   /** Left out: imports run in a process of their own. */
   readonly regionImporter?: RegionImporterPort;
+  /** Left out: counts by the minutes of this process. */
+  readonly rateLimit?: RateLimit;
 }
 
 /** Puts the whole server together. Nothing listens yet. */
@@ -118,7 +121,8 @@ export async function createApp(given: GivenContext): Promise<App> {
     ...officeRoutes(context, ahead),
     ...forecastRoutes(context, ahead),
   };
-  app.use(bindRoutes(context, handlers, (request: Request) => personOf(request)));
+  const limit = given.rateLimit ?? new RateLimit();
+  app.use(bindRoutes(context, handlers, (request: Request) => personOf(request), limit));
   app.use('/api', (_request, response) => {
     response
       .status(404)

@@ -14,7 +14,7 @@ import { Refusal } from '@shared/domain/errors';
 import type { Context } from '../context';
 import type { SignedIn } from '../staff/signed-in';
 import { InvalidRequest } from './problem';
-import { MOST_PER_MINUTE, RateLimit } from './rate-limit';
+import { MOST_PER_MINUTE, type RateLimit } from './rate-limit';
 
 /** What a handler gets: everything checked, everything typed. */
 export interface Asked<K extends RouteName> {
@@ -44,10 +44,10 @@ export function bindRoutes(
   context: Context,
   handlers: Handlers,
   personOf: (request: Request) => Promise<SignedIn | null>,
+  limit: RateLimit,
 ): Router {
   const router = Router();
   const parseJson = express.json({ limit: MOST_JSON, strict: true });
-  const limit = new RateLimit();
   const parseBytes = express.raw({ limit: MOST_BYTES, type: 'application/octet-stream' });
 
   for (const name of Object.keys(PATHS) as RouteName[]) {

@@ -9,6 +9,7 @@ import { PATHS, type RouteName } from '@shared/contract/paths';
 import type { ClientEvents, ServerEvents } from '@shared/contract/realtime';
 import type { Instant } from '@shared/domain/instant';
 import { createApp, type App, type GivenContext } from '../../server/app';
+import { RateLimit } from '../../server/http/rate-limit';
 import type { Config } from '../../server/config';
 import type { Context } from '../../server/context';
 import { StormRecord } from '../../server/storms/storm-record';
@@ -67,6 +68,8 @@ export async function startServer(
   let now = NIGHT;
   let stormId = '';
   const config: Config = { ...testConfig(testDatabase()), ...options.config };
+  // Time of the limits stands still but for a reset: no spec is refused for being quick.
+  let minutes = 0;
   const unused = { run: () => Promise.reject(new Error('this test has no such worker')) };
   const app = await createApp({
     config,
@@ -80,6 +83,7 @@ export async function startServer(
     roads: null,
     logReader: unused,
     wakeOutbox: () => undefined,
+    rateLimit: new RateLimit(() => minutes * 60_000),
     ...options.context,
   });
   await new Promise<void>((resolve) => app.http.listen(options.port ?? 0, '127.0.0.1', resolve));
@@ -91,6 +95,7 @@ export async function startServer(
     await emptyAll(sequelize);
     accounts.forgetPresent();
     now = NIGHT;
+    minutes++;
     stormId = randomUUID();
     await StormRecord.create({ id: stormId, name: 'Test storm', openedAt: new Date(now) });
   };
