@@ -13,7 +13,11 @@ import { json, select } from '../db/sql';
 export interface VisitFacts {
   /** The likeliest cause; `null` when nothing is known. */
   readonly cause: string | null;
-  /** All that the repair of the likeliest cause takes; of an unknown cause, what the call names. */
+  /**
+   * What the visit has to bring: of the likeliest cause the likeliest part, since its parts are one or
+   * the other (a short may be in the cord or in the heater), and who lacks one still finds the fault; of
+   * an unknown cause all that the call names.
+   */
   readonly needs: readonly Part[];
   /** Cold units of the call. */
   readonly units: number;
@@ -67,7 +71,7 @@ export async function visitFacts(
         row.id,
         {
           cause,
-          needs: cause === null ? json<Part[]>(row.parts) : CAUSES[cause].parts,
+          needs: cause === null ? json<Part[]>(row.parts) : CAUSES[cause].parts.slice(0, 1),
           units: Number(row.units),
           window: window && window.to + PROMISE_STANDS_MS > now ? window : null,
         },
