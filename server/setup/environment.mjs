@@ -1,3 +1,5 @@
+import { SetupProblem } from './problem.mjs';
+
 /** Where the server takes texts from phones; the fake posts to the address as the server knows it. */
 const INBOUND_TEXTS = '/webhooks/texts/inbound';
 
@@ -38,3 +40,18 @@ export function serverEnvironment({ port, fakesPort, database, secrets }) {
 /** Whether texts go to the local fake: unless the person set an account with the text service. */
 export const usesFakeTexts = () =>
   !process.env.THAWLINE_TEXT_ACCOUNT && !process.env.THAWLINE_TEXT_BASE_URL;
+
+/**
+ * Whether the person named a database server of their own; else the private one is used, which takes
+ * its port and account from nobody. A setting that would be half of a server of their own is refused.
+ */
+export function usesOwnDatabase() {
+  if (process.env.THAWLINE_DB_HOST) return true;
+  const half = ['PORT', 'USER', 'PASSWORD', 'NAME']
+    .map((name) => `THAWLINE_DB_${name}`)
+    .find((name) => process.env[name]);
+  if (!half) return false;
+  throw new SetupProblem(
+    `${half} belongs to a database server of your own. Set THAWLINE_DB_HOST as well, or leave ${half} out to use the private server.`,
+  );
+}

@@ -7,7 +7,7 @@ import { once } from 'node:events';
 import path from 'node:path';
 
 import { ensureDataFolder } from './data-folder.mjs';
-import { serverEnvironment } from './environment.mjs';
+import { serverEnvironment, usesOwnDatabase } from './environment.mjs';
 import { ensureMariadb, SERVERS, stopMariadb } from './mariadb.mjs';
 import { ensureNode } from './node-version.mjs';
 import { ensurePackages } from './packages.mjs';
@@ -28,7 +28,7 @@ await runMain(async () => {
   await step('packages', ensurePackages);
   await step('build', ensureServerBuild);
   let stopDatabase = async () => {};
-  const database = process.env.THAWLINE_DB_HOST
+  const database = usesOwnDatabase()
     ? null
     : await step('database', async (tell) => {
         const { started, ...found } = await ensureMariadb(SERVERS.product, tell);

@@ -6,7 +6,7 @@ import { rm } from 'node:fs/promises';
 import path from 'node:path';
 
 import { ensureDataFolder } from './data-folder.mjs';
-import { serverEnvironment, usesFakeTexts } from './environment.mjs';
+import { serverEnvironment, usesFakeTexts, usesOwnDatabase } from './environment.mjs';
 import { readJson, writeJson } from './json-file.mjs';
 import { tryLock } from './lock.mjs';
 import { ensureMariadb, SERVERS, stopMariadb } from './mariadb.mjs';
@@ -79,9 +79,10 @@ async function start() {
   const leftovers = await stopLeftovers('start');
   if (leftovers) say(`stopped ${leftovers} program(s) that an earlier run had left`);
   const port = await ourPort();
+  const ownDatabase = usesOwnDatabase();
 
   await step('packages', ensurePackages);
-  const database = process.env.THAWLINE_DB_HOST ? null : await step('database', startDatabase);
+  const database = ownDatabase ? null : await step('database', startDatabase);
   await step('build', ensureBuild);
 
   const fakesPort = usesFakeTexts() ? await nextFreePort(port + 1) : null;
