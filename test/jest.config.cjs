@@ -20,6 +20,16 @@ const swc = [
 const modulePathIgnorePatterns = ['<rootDir>/.data/', '<rootDir>/dist/'];
 /** For a test that hangs: a busy machine is no fault, so no honest test should come near it. */
 const testTimeout = 120_000;
+/**
+ * Looked up once a module instead of at each use: jest hands every look at a global name through its
+ * sandbox, which took a sixth of the time of the rules. No `Date`: fake timers replace it.
+ */
+const sandboxInjectedGlobals = [
+  ...['Array', 'BigInt', 'Boolean', 'Error', 'Infinity', 'JSON', 'Map', 'Math', 'Number', 'Object'],
+  ...['Promise', 'RegExp', 'Set', 'String', 'Symbol', 'WeakMap', 'parseFloat', 'parseInt'],
+  ...['Float32Array', 'Float64Array', 'Int8Array', 'Int16Array', 'Int32Array'],
+  ...['Uint8Array', 'Uint16Array', 'Uint32Array'],
+];
 const shared = { '^@shared/(.*)$': '<rootDir>/shared/$1' };
 
 module.exports = {
@@ -32,6 +42,7 @@ module.exports = {
       displayName: 'domain',
       rootDir: root,
       modulePathIgnorePatterns,
+      sandboxInjectedGlobals,
       testEnvironment: 'node',
       testMatch: ['<rootDir>/test/domain/**/*.spec.ts'],
       transform: { '^.+\\.[jt]s$': swc },
@@ -54,6 +65,7 @@ module.exports = {
       displayName: 'client',
       rootDir: root,
       modulePathIgnorePatterns,
+      sandboxInjectedGlobals,
       preset: 'jest-preset-angular',
       testEnvironment: 'jsdom',
       testMatch: ['<rootDir>/src/**/*.spec.ts'],
