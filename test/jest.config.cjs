@@ -69,7 +69,7 @@ module.exports = {
       preset: 'jest-preset-angular',
       testEnvironment: 'jsdom',
       testMatch: ['<rootDir>/src/**/*.spec.ts'],
-      setupFilesAfterEnv: ['<rootDir>/test/client/setup.ts'],
+      setupFilesAfterEnv: ['<rootDir>/test/client/setup.cjs'],
       transform: {
         '^.+\\.svg$': '<rootDir>/test/client/raw-text.cjs',
         '^.+\\.(ts|js|mjs|html)$': [

@@ -1,3 +1,4 @@
+/** @jest-environment node */
 import type { CallDetail } from '@shared/contract/calls';
 import { changesBetween } from './call-changes';
 

@@ -1,3 +1,4 @@
+/** @jest-environment node */
 import { EMPTY_ORDER, heldWords, holdOrder, nextOrder, takeOrder } from './held-order';
 
 describe('nextOrder', () => {

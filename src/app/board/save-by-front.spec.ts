@@ -1,3 +1,4 @@
+/** @jest-environment node */
 import { HOUR_MS } from '@shared/domain/instant';
 import { shareOfHours, type StripCompartment, type StripFacts } from './cold-strip-scale';
 import { frontEdge, saveByFront } from './save-by-front';

@@ -1,3 +1,4 @@
+/** @jest-environment node */
 import { afterChanges, pictureOf } from './board-picture';
 import { aBoard, aCallRow, NOW } from './testing';
 

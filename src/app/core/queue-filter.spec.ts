@@ -1,3 +1,4 @@
+/** @jest-environment node */
 import { isFiltering, matcher, NO_FILTER, type QueueFilter } from './queue-filter';
 import { aCallRow, idOf } from './testing';
 

@@ -1,3 +1,4 @@
+/** @jest-environment node */
 import type { CallRow } from '@shared/contract/calls';
 import { DEFAULT_WEIGHING, Ranking } from './ranking';
 import { aCallRow, NOW } from './testing';

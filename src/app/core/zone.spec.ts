@@ -1,3 +1,4 @@
+/** @jest-environment node */
 import { HOUR_MS, MINUTE_MS } from '@shared/domain/instant';
 import { ago, clockTime, dayTime, duration, inHours, money, moneyExact, startOfDay } from './zone';
 

@@ -1,3 +1,4 @@
+/** @jest-environment node */
 import { HOUR_MS } from '@shared/domain/instant';
 import { aheadWords, differenceWords, emptyWords } from './ahead/outlook-words';
 import { changeWords, FIELDS, NOTHING_CHANGED, readField } from './ahead/what-if-fields';

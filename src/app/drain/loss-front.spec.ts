@@ -1,3 +1,4 @@
+/** @jest-environment node */
 import { HOUR_MS } from '@shared/domain/instant';
 import { aCallRow, NOW } from '../core/testing';
 import { lossFront, lostWithin } from './loss-front';

@@ -1,3 +1,4 @@
+/** @jest-environment node */
 import type { AreaDto } from '@shared/contract/areas';
 import type { LonLat } from '@shared/contract/common';
 import { areaAt } from './area-at';

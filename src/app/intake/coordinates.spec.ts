@@ -1,3 +1,4 @@
+/** @jest-environment node */
 import { readCoordinates } from './coordinates';
 
 describe('readCoordinates', () => {

@@ -1,3 +1,4 @@
+/** @jest-environment node */
 import { TakeCall } from '@shared/contract/calls';
 import { HOUR_MS } from '@shared/domain/instant';
 import { checkIntake, errorsOfPointers, phoneOf } from './intake-check';

@@ -1,3 +1,4 @@
+/** @jest-environment node */
 import { HOUR_MS, MINUTE_MS } from '@shared/domain/instant';
 import { readTimeEntry } from './time-entry';
 import { instantOnWall, wallAt } from './wall-clock';

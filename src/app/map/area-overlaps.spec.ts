@@ -1,3 +1,4 @@
+/** @jest-environment node */
 import type { AreaDto } from '@shared/contract/areas';
 import { manyAreasWords, overlapsWith } from './area-overlaps';
 

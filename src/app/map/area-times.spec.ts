@@ -1,3 +1,4 @@
+/** @jest-environment node */
 import type { AreaDto } from '@shared/contract/areas';
 import { HOUR_MS, MINUTE_MS } from '@shared/domain/instant';
 import { NOW, STORM_ID } from '../core/testing';

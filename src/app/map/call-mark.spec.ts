@@ -1,3 +1,4 @@
+/** @jest-environment node */
 import type { CallRow } from '@shared/contract/calls';
 import { HOUR_MS } from '@shared/domain/instant';
 import { DEFAULT_WEIGHING, rankedCall } from '../core/ranking';

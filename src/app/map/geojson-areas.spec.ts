@@ -1,3 +1,4 @@
+/** @jest-environment node */
 import { HOUR_MS } from '@shared/domain/instant';
 import { crossesItself, isInShape } from '@shared/domain/outage-shape';
 import { readGeoJson } from './geojson-areas';

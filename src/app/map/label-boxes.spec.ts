@@ -1,3 +1,4 @@
+/** @jest-environment node */
 import { LabelBoxes } from './label-boxes';
 
 describe('LabelBoxes', () => {

@@ -1,3 +1,4 @@
+/** @jest-environment node */
 import { aCallRow, NOW } from '../core/testing';
 import { DEFAULT_WEIGHING, rankedCall } from '../core/ranking';
 import { type CallMark, callMark } from './call-mark';

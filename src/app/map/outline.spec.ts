@@ -1,3 +1,4 @@
+/** @jest-environment node */
 import type { LonLat } from '@shared/contract/common';
 import {
   addCorner,

@@ -1,3 +1,4 @@
+/** @jest-environment node */
 import { HOUR_MS, MINUTE_MS } from '@shared/domain/instant';
 import { aStop, aTechnician, NOW } from '../core/testing';
 import { duration } from '../core/zone';

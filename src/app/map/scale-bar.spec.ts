@@ -1,3 +1,4 @@
+/** @jest-environment node */
 import { scaleBar } from './scale-bar';
 
 describe('scaleBar', () => {

@@ -1,3 +1,4 @@
+/** @jest-environment node */
 import type { StormRoadDto } from '@shared/contract/storm-roads';
 import { HOUR_MS, MINUTE_MS } from '@shared/domain/instant';
 import {

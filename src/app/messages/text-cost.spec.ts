@@ -1,3 +1,4 @@
+/** @jest-environment node */
 import { dearWords, lengthWords, textCost } from './text-cost';
 
 describe('what a text costs', () => {

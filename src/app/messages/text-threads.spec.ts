@@ -1,3 +1,4 @@
+/** @jest-environment node */
 import type { MessageDto } from '@shared/contract/messages';
 import { aCallRow, idOf, NOW } from '../core/testing';
 import { newestOf, threadsOf } from './text-threads';

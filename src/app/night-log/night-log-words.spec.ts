@@ -1,3 +1,4 @@
+/** @jest-environment node */
 import type { NightLogDto } from '@shared/contract/night-logs';
 import { confidenceWords, isDoubtful, missingWords, resultWords } from './night-log-words';
 

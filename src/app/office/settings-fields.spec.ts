@@ -1,3 +1,4 @@
+/** @jest-environment node */
 import { ChangeSettings, Settings } from '@shared/contract/office';
 import { aMe } from '../core/testing';
 import { DRIVING_HOURS } from '@shared/domain/roads/driving-hours';

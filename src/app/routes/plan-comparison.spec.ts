@@ -1,3 +1,4 @@
+/** @jest-environment node */
 import { MINUTE_MS } from '@shared/domain/instant';
 import { aStop, idOf, NOW } from '../core/testing';
 import { changesByTechnician, changeWords, figureLines } from './plan-comparison';

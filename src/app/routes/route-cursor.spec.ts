@@ -1,3 +1,4 @@
+/** @jest-environment node */
 import { MINUTE_MS } from '@shared/domain/instant';
 import { aStop, aTechnician, idOf, NOW } from '../core/testing';
 import { heldCursor, movedCursor } from './route-cursor';

@@ -1,3 +1,4 @@
+/** @jest-environment node */
 import { HOUR_MS, MINUTE_MS } from '@shared/domain/instant';
 import { blockOf, placeAt, spanOf, ticksOf, timeAt, widthOf, xOf } from './route-ruler';
 

@@ -1,3 +1,4 @@
+/** @jest-environment node */
 import type { CompartmentKind } from '@shared/domain/cold-unit';
 import { HOUR_MS } from '@shared/domain/instant';
 import { saveVerdict, verdictShort, verdictWords } from './save-verdict';

@@ -1,3 +1,4 @@
+/** @jest-environment node */
 import { HOUR_MS } from '@shared/domain/instant';
 import { aCallRow, aTechnician, NOW } from '../core/testing';
 import { whyUnplanned } from './why-unplanned';

@@ -1,3 +1,4 @@
+/** @jest-environment node */
 import { deserialize, serialize } from 'node:v8';
 import { aCallRow, NOW } from '../../core/testing';
 import { DEFAULT_WEIGHING, rankedCall } from '../../core/ranking';
