@@ -1,4 +1,5 @@
 import { setImmediate } from 'node:timers/promises';
+import type { TownDto } from '@shared/contract/areas';
 import type { AddressSuggestion } from '@shared/domain/address/address-suggestion';
 import { confidenceOf, tooClose } from '@shared/domain/address/confidence';
 import { waysToRead } from '@shared/domain/address/parse-address';
@@ -18,6 +19,7 @@ import { PlaceSearch } from './place-search';
 import { Search, type Reading, type Wording } from './search';
 import { StreetBook } from './street-book';
 import { DEAREST, StreetNames } from './street-names';
+import { townsOf } from './towns';
 
 export interface SuggestOptions {
   /** Where callers are expected: comes first among equals. */
@@ -74,7 +76,7 @@ export class AddressIndex {
   private readonly squeeze: number;
 
   private constructor(
-    table: AddressTable,
+    private readonly table: AddressTable,
     private readonly parts: Parts,
   ) {
     this.points = new NearestAddress(table);
@@ -101,6 +103,10 @@ export class AddressIndex {
   /** Names of the towns that have houses. */
   get cities(): string[] {
     return this.parts.cityNames.withHouses;
+  }
+
+  get towns(): TownDto[] {
+    return townsOf(this.table);
   }
 
   /** What the words typed so far may mean, best first. */

@@ -24,6 +24,7 @@ export async function openRegion({ manifest, folder }: ImportedRegion): Promise<
     houseNumbersUrl: manifest.counts.addresses > 0 ? `${tiles}/addr/{z}/{x}/{y}.pbf` : null,
     hasCoast: manifest.hasCoastline,
     addressCount: manifest.counts.addresses,
+    towns: index.towns,
   };
   return {
     key: basename(folder),

@@ -65,6 +65,14 @@ export const PocketDto = z.strictObject({
 });
 export type PocketDto = z.infer<typeof PocketDto>;
 
+/** A place whose name is known to everybody in the county. */
+export const TownDto = z.strictObject({
+  name: z.string(),
+  kind: z.enum(['city', 'town', 'village']),
+  at: LonLat,
+});
+export type TownDto = z.infer<typeof TownDto>;
+
 export const RegionDto = z.strictObject({
   id: z.string(),
   name: z.string(),
@@ -79,5 +87,7 @@ export const RegionDto = z.strictObject({
   houseNumbersUrl: z.string().nullable(),
   hasCoast: z.boolean(),
   addressCount: z.int(),
+  /** The largest first. */
+  towns: z.array(TownDto),
 });
 export type RegionDto = z.infer<typeof RegionDto>;

@@ -349,7 +349,10 @@ describe('a switch', () => {
       name: 'Far Corner',
       timeZone: 'America/Chicago',
     });
-    expect((await mara.call('region')).body).toMatchObject({ name: 'Far Corner' });
+    expect((await mara.call('region')).body).toMatchObject({
+      name: 'Far Corner',
+      towns: [{ name: 'Upper Sedge', kind: 'village', at: [-44.694, 36.4035] }],
+    });
     const tile = await request(server.url).get(
       server.context.region.dto.tilesUrl.replace('{z}/{x}/{y}', '8/0/0'),
     );

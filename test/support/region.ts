@@ -34,6 +34,7 @@ export const TEST_REGION: RegionInUse = {
     houseNumbersUrl: null,
     hasCoast: true,
     addressCount: ADDRESSES.length,
+    towns: [],
   },
   suggest: (text) =>
     ADDRESSES.filter(({ label }) => label.toLowerCase().includes(text.trim().toLowerCase())),

@@ -38,6 +38,7 @@ export function aMe(role: Role = 'dispatcher', user: Partial<Me['user']> = {}): 
       houseNumbersUrl: null,
       hasCoast: true,
       addressCount: 20_000,
+      towns: [],
     },
     settings: {
       companyName: 'Harbor Appliance Repair',

@@ -34,6 +34,8 @@ export function paintAreaLabels(
 
 const NAME_HEIGHT_PX = 16;
 const BOTH_HEIGHT_PX = 30;
+/** Room kept free at the window's edges. */
+const EDGE_PX = 6;
 /** Steps downwards in which room is looked for. */
 const STEP_PX = 22;
 
@@ -56,7 +58,7 @@ export function placeLabel(
     const height = hasTimes ? BOTH_HEIGHT_PX : NAME_HEIGHT_PX;
     const lowest = Math.min(bounds.bottom, window.bottom) - height - 6;
     for (let y = Math.max(bounds.top, window.top) + 6; y <= lowest; y += STEP_PX) {
-      const span = widestSpan(outlines, y + height / 2, window);
+      const span = clearSpan(outlines, y, height, window);
       if (!span || span.right - span.left < width) continue;
       const x = (span.left + span.right - width) / 2;
       const box = { x, y, width, height };
@@ -73,6 +75,25 @@ export function placeLabel(
     })),
   );
   return box && { box, hasTimes: false };
+}
+
+/** What lies inside the outlines over the whole height of a label, as far as its edges and its middle tell. */
+function clearSpan(
+  outlines: readonly (readonly WorldPoint[])[],
+  y: number,
+  height: number,
+  window: Pick<ScreenBounds, 'left' | 'right'>,
+): { readonly left: number; readonly right: number } | null {
+  let clear: { left: number; right: number } | null = null;
+  for (const line of [y + height / 2, y, y + height]) {
+    const span = widestSpan(outlines, line, {
+      left: clear ? clear.left - EDGE_PX : window.left,
+      right: clear ? clear.right + EDGE_PX : window.right,
+    });
+    if (!span) return null;
+    clear = span;
+  }
+  return clear;
 }
 
 /** The widest stretch of the height `y` that lies inside the outlines, in no hole, and in the window. */
@@ -92,8 +113,8 @@ export function widestSpan(
   crossings.sort((a, b) => a - b);
   let widest: { left: number; right: number } | null = null;
   for (let i = 0; i + 1 < crossings.length; i += 2) {
-    const left = Math.max(crossings[i] ?? 0, window.left + 6);
-    const right = Math.min(crossings[i + 1] ?? 0, window.right - 6);
+    const left = Math.max(crossings[i] ?? 0, window.left + EDGE_PX);
+    const right = Math.min(crossings[i + 1] ?? 0, window.right - EDGE_PX);
     if (right - left > (widest ? widest.right - widest.left : 0)) widest = { left, right };
   }
   return widest;

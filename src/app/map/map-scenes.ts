@@ -16,6 +16,7 @@ import { areaShape } from './paint-areas';
 import { feederShape, groundRings } from './paint-ground';
 import { pocketShape } from './paint-pockets';
 import { stormRoadMark } from './paint-storm-roads';
+import { townMark } from './paint-towns';
 import { RoadWays } from './road-ways';
 import { proposedRoute, type RouteGround, routeShape } from './route-shape';
 import type { MapScene } from './scene/map-scene';
@@ -111,6 +112,8 @@ export class MapScenes {
     });
   });
 
+  private readonly towns = computed(() => (this.session.region()?.towns ?? []).map(townMark));
+
   /** Some route is drawn straight, because no road is known. */
   readonly hasStraightLegs = computed(
     () =>
@@ -125,6 +128,7 @@ export class MapScenes {
     pockets: this.pockets(),
     routes: this.routes(),
     proposal: this.proposal(),
+    towns: this.towns(),
     hasRoutes: this.layers.isShown('routes'),
     hasTechnicians: this.layers.isShown('technicians'),
     chosenPocketKey: this.board.filter().pocketKey,

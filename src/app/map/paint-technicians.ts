@@ -33,7 +33,7 @@ export function paintTechnicians(
     .map((shape) => ({ shape, at: onScreen(view, shape.at) }))
     .filter(({ at }) => isInView(view, at, 40))
     .sort((a, b) => Number(isChosen(b.shape)) - Number(isChosen(a.shape)));
-  const standing: { shape: RouteShape; at: WorldPoint; box: Box }[] = [];
+  const standing: Standing[] = [];
   const pegs: { shape: RouteShape; at: WorldPoint }[] = [];
   ctx.font = textFont;
   for (const { shape, at } of inSight) {
@@ -42,6 +42,7 @@ export function paintTechnicians(
     if (box) standing.push({ shape, at, box });
     else pegs.push({ shape, at });
   }
+  uncrossFeet(standing);
   const plates: Plate[] = [];
   for (const { shape, at } of pegs) {
     paintPeg(ctx, at, shape.isOld, ink);
@@ -55,6 +56,41 @@ export function paintTechnicians(
   }
   return plates;
 }
+
+interface Standing {
+  readonly shape: RouteShape;
+  readonly at: WorldPoint;
+  box: Box;
+}
+
+/** Two whose feet cross change places: each then stands nearer to its own position. */
+function uncrossFeet(standing: readonly Standing[]): void {
+  // Each exchange shortens the feet, so this ends; the bound is for feet of equal length.
+  for (let round = 0; round < standing.length; round++) {
+    let isSettled = true;
+    for (const [i, one] of standing.entries())
+      for (const other of standing.slice(i + 1)) {
+        if (!feetCross(one, other)) continue;
+        [one.box, other.box] = [other.box, one.box];
+        isSettled = false;
+      }
+    if (isSettled) return;
+  }
+}
+
+function feetCross(one: Standing, other: Standing): boolean {
+  const [a, b] = [one.at, middleOf(one.box)];
+  const [c, d] = [other.at, middleOf(other.box)];
+  return side(a, b, c) !== side(a, b, d) && side(c, d, a) !== side(c, d, b);
+}
+
+const side = (from: WorldPoint, to: WorldPoint, point: WorldPoint): boolean =>
+  (to.x - from.x) * (point.y - from.y) > (to.y - from.y) * (point.x - from.x);
+
+const middleOf = ({ x, y, width, height }: Box): WorldPoint => ({
+  x: x + width / 2,
+  y: y + height / 2,
+});
 
 const around = ({ x, y }: WorldPoint, half: number): Box => ({
   x: x - half,
@@ -110,21 +146,26 @@ function paintPlate(
   ink: MapInk,
 ): void {
   const paper = isChosen ? ink.accent : ink.ink;
+  const foot = footOf(at, box);
   const plate = new Path2D();
   plate.roundRect(box.x, box.y, box.width, box.height, 3);
-  addFoot(plate, at, box);
   ctx.lineJoin = 'round';
-  ctx.strokeStyle = ink.ground;
-  ctx.lineWidth = 4;
-  ctx.stroke(plate);
-  ctx.fillStyle = shape.isOld ? ink.ground : paper;
-  ctx.fill(plate);
-  if (shape.isOld) {
-    ctx.strokeStyle = paper;
-    ctx.lineWidth = 1.75;
-    ctx.setLineDash([4, 3]);
-    ctx.stroke(plate);
-    ctx.setLineDash([]);
+  // The plate lies on its foot, whose edges must not run through the letters.
+  for (const part of [foot, plate]) {
+    ctx.strokeStyle = ink.ground;
+    ctx.lineWidth = 4;
+    ctx.stroke(part);
+  }
+  for (const part of [foot, plate]) {
+    if (shape.isOld) {
+      ctx.strokeStyle = paper;
+      ctx.lineWidth = 3.5;
+      ctx.setLineDash([4, 3]);
+      ctx.stroke(part);
+      ctx.setLineDash([]);
+    }
+    ctx.fillStyle = shape.isOld ? ink.ground : paper;
+    ctx.fill(part);
   }
   ctx.font = textFont;
   ctx.textAlign = 'center';
@@ -134,8 +175,9 @@ function paintPlate(
 }
 
 /** From the plate's nearest edge to the position. */
-function addFoot(plate: Path2D, at: WorldPoint, box: Box): void {
-  const middle = { x: box.x + box.width / 2, y: box.y + box.height / 2 };
+function footOf(at: WorldPoint, box: Box): Path2D {
+  const foot = new Path2D();
+  const middle = middleOf(box);
   const length = Math.hypot(at.x - middle.x, at.y - middle.y) || 1;
   const across = {
     x: (-(at.y - middle.y) / length) * 5,
@@ -145,10 +187,11 @@ function addFoot(plate: Path2D, at: WorldPoint, box: Box): void {
     x: Math.min(box.x + box.width - 5, Math.max(box.x + 5, at.x)),
     y: Math.min(box.y + box.height - 5, Math.max(box.y + 5, at.y)),
   };
-  plate.moveTo(inside.x + across.x, inside.y + across.y);
-  plate.lineTo(at.x, at.y);
-  plate.lineTo(inside.x - across.x, inside.y - across.y);
-  plate.closePath();
+  foot.moveTo(inside.x + across.x, inside.y + across.y);
+  foot.lineTo(at.x, at.y);
+  foot.lineTo(inside.x - across.x, inside.y - across.y);
+  foot.closePath();
+  return foot;
 }
 
 function paintAge(

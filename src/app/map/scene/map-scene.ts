@@ -2,6 +2,7 @@ import type { CallMark, DrawnMark } from '../call-mark';
 import type { AreaShape } from '../paint-areas';
 import type { PocketShape } from '../paint-pockets';
 import type { StormRoadMark } from '../paint-storm-roads';
+import type { TownMark } from '../paint-towns';
 import type { ProposedRoute, RouteShape } from '../route-shape';
 
 /** What the map shows, but for what moves with the pointer. A layer that is left out is empty. */
@@ -13,6 +14,7 @@ export interface MapScene<Mark extends DrawnMark = CallMark> {
   readonly pockets: readonly PocketShape[];
   readonly routes: readonly RouteShape[];
   readonly proposal: readonly ProposedRoute[];
+  readonly towns: readonly TownMark[];
   readonly hasRoutes: boolean;
   readonly hasTechnicians: boolean;
   readonly chosenPocketKey: string | null;
@@ -26,6 +28,7 @@ export const EMPTY_SCENE: MapScene<never> = {
   pockets: [],
   routes: [],
   proposal: [],
+  towns: [],
   hasRoutes: false,
   hasTechnicians: false,
   chosenPocketKey: null,

@@ -90,6 +90,7 @@ export class ScenePacker {
       ...(isNew('areas') && { areas: scene.areas.map(drawnArea) }),
       ...(isNew('stormRoads') && { stormRoads: scene.stormRoads.map(drawnStormRoad) }),
       ...(isNew('pockets') && { pockets: scene.pockets.map(drawnPocket) }),
+      ...(isNew('towns') && { towns: scene.towns }),
       ...(ways && {
         ways,
         routes: scene.routes.map((route) => ({

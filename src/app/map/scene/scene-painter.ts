@@ -11,6 +11,7 @@ import { paintProposal, paintRoutes } from '../paint-routes';
 import { makeStormRoadPatterns, paintStormRoads } from '../paint-storm-roads';
 import { paintTechnicians } from '../paint-technicians';
 import { paintStormRoadSigns } from '../storm-road-signs';
+import { paintTowns } from '../paint-towns';
 import type { View } from '../world';
 import type { MapScene } from './map-scene';
 import type { ScenePlaces } from './scene-orders';
@@ -46,14 +47,16 @@ export class ScenePainter {
     const placed = this.placedAt(scene.marks, view.zoom);
     paintDots(ctx, view, placed, sprites);
     paintCalls(ctx, view, placed, sprites, ink);
+    const plates = scene.hasTechnicians
+      ? paintTechnicians(ctx, view, routes, chosenTechnicianId, boxes, ink)
+      : [];
+    paintTowns(ctx, view, scene.towns, placed, boxes, ink);
     return {
       marks: {
         isFull: Uint8Array.from(placed, ({ isFull }) => Number(isFull)),
         counts: Uint16Array.from(placed, ({ count }) => count),
       },
-      plates: scene.hasTechnicians
-        ? paintTechnicians(ctx, view, routes, chosenTechnicianId, boxes, ink)
-        : [],
+      plates,
       roadSigns: paintStormRoadSigns(ctx, view, stormRoads, boxes, ink),
       pocketLabels: paintPocketLabels(ctx, view, pockets, chosenPocketKey, boxes, ink),
       areaLabels: paintAreaLabels(ctx, view, areas, boxes, ink),
@@ -75,6 +78,7 @@ export const isNothing = (scene: MapScene<DrawnMark>): boolean =>
     scene.areas.length +
     scene.stormRoads.length +
     scene.pockets.length +
+    scene.towns.length +
     scene.proposal.length ===
     0 &&
   ((!scene.hasRoutes && !scene.hasTechnicians) || scene.routes.length === 0);

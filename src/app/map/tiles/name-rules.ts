@@ -1,5 +1,5 @@
 import { CenteredTextSymbolizer, LineLabelSymbolizer, type LabelRule } from 'protomaps-leaflet';
-import { NUMBERS_MIN_ZOOM } from './map-zoom';
+import { NUMBERS_MIN_ZOOM, TOWN_NAMES_MAX_ZOOM } from './map-zoom';
 import type { Palette, RoadClass } from './palette';
 import { isClass, isKind } from './rule-filters';
 import { GROUND, NUMBERS } from './sources';
@@ -12,9 +12,10 @@ export function nameRules(palette: Palette): LabelRule[] {
   const street = streetNames(palette);
   const place = placeNames(palette);
   const rules: Omit<LabelRule, 'dataSource'>[] = [
-    place(['city'], 9, 16, 600, text),
-    place(['town'], 10, 13, 600, text),
-    place(['village', 'suburb'], 11, 12, 500, text),
+    place(['city'], TOWN_NAMES_MAX_ZOOM + 1, 16, 600, text),
+    place(['town'], TOWN_NAMES_MAX_ZOOM + 1, 13, 600, text),
+    place(['village'], TOWN_NAMES_MAX_ZOOM + 1, 12, 500, text),
+    place(['suburb'], 11, 12, 500, text),
     place(['sea'], 10, 12, 400, waterText, 'italic'),
     place(['island', 'hamlet', 'neighbourhood', 'locality'], 13, 11, 500, quietText),
     place(['water'], 13, 11, 400, waterText, 'italic'),
