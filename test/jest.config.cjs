@@ -52,6 +52,7 @@ module.exports = {
       displayName: 'server',
       rootDir: root,
       modulePathIgnorePatterns,
+      sandboxInjectedGlobals,
       testEnvironment: 'node',
       testMatch: ['<rootDir>/test/server/**/*.spec.ts'],
       transform: { '^.+\\.[jt]s$': swc },
