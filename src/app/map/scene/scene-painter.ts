@@ -1,6 +1,6 @@
 import { paintAreaLabels } from '../area-labels';
 import type { DrawnMark } from '../call-mark';
-import { LabelBoxes } from '../label-boxes';
+import { type Box, LabelBoxes } from '../label-boxes';
 import type { MapInk } from '../map-ink';
 import { type PlacedMark, placeMarks } from '../mark-places';
 import { MarkSprites } from '../mark-sprites';
@@ -39,6 +39,7 @@ export class ScenePainter {
     const { ctx, ink, sprites } = this;
     const { routes, pockets, areas, stormRoads, chosenTechnicianId, chosenPocketKey } = scene;
     const boxes = new LabelBoxes();
+    boxes.reserve(controlsBox(view));
     paintPockets(ctx, view, pockets, chosenPocketKey, ink);
     paintAreas(ctx, view, areas, this.hatch, ink);
     if (scene.hasRoutes) paintRoutes(ctx, view, routes, chosenTechnicianId, ink);
@@ -72,6 +73,14 @@ export class ScenePainter {
     return this.placed;
   }
 }
+
+/** The map's zoom keys and its foot, which lie over the lower right corner of the window. */
+const controlsBox = ({ width, height, margin }: View): Box => ({
+  x: width - margin - CONTROLS_PX.width,
+  y: height - margin - CONTROLS_PX.height,
+  ...CONTROLS_PX,
+});
+const CONTROLS_PX = { width: 52, height: 136 };
 
 export const isNothing = (scene: MapScene<DrawnMark>): boolean =>
   scene.marks.length +

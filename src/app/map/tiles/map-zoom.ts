@@ -2,7 +2,7 @@
 export const MAP_MIN_ZOOM = 9;
 export const MAP_MAX_ZOOM = 19;
 /** Up to here the board names towns above the calls; the tiles do from the next zoom on. */
-export const TOWN_NAMES_MAX_ZOOM = 12;
+export const TOWN_NAMES_MAX_ZOOM = 14;
 /** House numbers are fetched and shown from here on. */
 export const NUMBERS_MIN_ZOOM = 17;
 /** The closest tiles there are; closer views are drawn from these. */
