@@ -22,11 +22,12 @@ import { focusFirst } from './focus-first';
 import { OrderId } from './order-id';
 import { type NewPassphrase, PassphraseDialog } from './passphrase-dialog';
 import { ROLE_WORDS } from './role-words';
+import { StackedTable } from './stacked-table';
 
 /** Who may sign in, and as what. Owners only. */
 @Component({
   selector: 'thaw-accounts-part',
-  imports: [AccountForm, MatButton],
+  imports: [AccountForm, MatButton, StackedTable],
   templateUrl: './accounts-part.html',
   styleUrl: './parts.scss',
   changeDetection: ChangeDetectionStrategy.OnPush,

@@ -20,6 +20,7 @@ import { problemWords } from '../core/problem-error';
 import { Session } from '../core/session';
 import { DateTimePipe } from '../core/zone';
 import { inWords } from './form-words';
+import { StackedTable } from './stacked-table';
 
 /** What belongs to no storm: settings and accounts. */
 const OFFICE = 'office';
@@ -36,6 +37,7 @@ const PAGE = 100;
     MatInput,
     MatSelectModule,
     ReactiveFormsModule,
+    StackedTable,
   ],
   templateUrl: './audit-part.html',
   styleUrl: './parts.scss',

@@ -18,6 +18,7 @@ import { ProblemError, problemWords } from '../core/problem-error';
 import { Session } from '../core/session';
 import { dateTime, Zone } from '../core/zone';
 import { ConfirmDialog } from './confirm-dialog';
+import { StackedTable } from './stacked-table';
 
 const KM_PER_MILE = 1.609344;
 
@@ -36,7 +37,7 @@ const CLASS_WORDS: Readonly<Record<RoadClass, string>> = {
 /** What measured drives say of the speeds of roads: looked at first, then used or not. */
 @Component({
   selector: 'thaw-measured-speeds',
-  imports: [MatButton, MatCheckbox],
+  imports: [MatButton, MatCheckbox, StackedTable],
   templateUrl: './measured-speeds.html',
   styleUrls: ['./parts.scss', './measured-speeds.scss'],
   changeDetection: ChangeDetectionStrategy.OnPush,

@@ -14,11 +14,12 @@ import { Announce } from '../core/announce';
 import { Api, newId } from '../core/api';
 import { ProblemError, problemWords } from '../core/problem-error';
 import { Session } from '../core/session';
+import { StackedTable } from './stacked-table';
 
 /** What finished visits say of the time at a stop: looked at first, then used or not. */
 @Component({
   selector: 'thaw-measured-visits',
-  imports: [MatButton, MatCheckbox],
+  imports: [MatButton, MatCheckbox, StackedTable],
   template: `
     <section aria-labelledby="visits-title">
       <h2 id="visits-title">Time at a stop, measured by your own visits</h2>
@@ -34,7 +35,7 @@ import { Session } from '../core/session';
       </mat-checkbox>
       @if (rows().length > 0) {
         <div class="scroll">
-          <table class="stacks">
+          <table class="stacks" thawStacks>
             <thead>
               <tr>
                 <th scope="col">Visits</th>

@@ -12,11 +12,20 @@ import { RegionImportForm } from './region-import-form';
 import { RegionModel } from './region-model';
 import { RegionReport } from './region-report';
 import { contents, counted, percent, stepWords, switchWords } from './region-words';
+import { StackedTable } from './stacked-table';
 
 /** Which county the application works in: the one in use, those that are kept, and the next. Owners only. */
 @Component({
   selector: 'thaw-region-part',
-  imports: [MatButton, MatIcon, MatProgressBar, RegionImportForm, RegionReport, RouterLink],
+  imports: [
+    MatButton,
+    MatIcon,
+    MatProgressBar,
+    RegionImportForm,
+    RegionReport,
+    RouterLink,
+    StackedTable,
+  ],
   providers: [RegionModel],
   templateUrl: './region-part.html',
   styleUrls: ['./parts.scss', './region-part.scss'],

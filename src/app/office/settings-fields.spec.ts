@@ -48,6 +48,7 @@ describe('the settings form', () => {
   it('shows minutes after midnight as a time, and a number as people write it', () => {
     const field = (key: string) => SETTING_FIELDS.find((one) => one.key === key)!;
     expect(settingText(field('quietFromMinute'), settings)).toBe('21:00');
+    expect(settingText(field('companyPhone'), settings)).toBe('(252) 555-0100');
     expect(settingValue(field('quietUntilMinute'), '07:30')).toBe(450);
     expect(settingValue(field('companyPhone'), '(252) 555-0142')).toBe('+12525550142');
     expect(settingValue(field('circuity'), '1,35')).toBe(1.35);

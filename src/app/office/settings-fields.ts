@@ -1,5 +1,5 @@
 import type { Settings } from '@shared/contract/office';
-import { readPhone } from '@shared/domain/phone-number';
+import { formatPhone, readPhone } from '@shared/domain/phone-number';
 import { PLAN_GROUPS } from './plan-settings';
 
 /** What was measured is switched where it is shown, and the store is a place on the map. */
@@ -279,7 +279,8 @@ export const SETTING_FIELDS: readonly SettingField[] = SETTING_GROUPS.flatMap(
 /** How a setting stands in its field. */
 export function settingText(field: SettingField, settings: Settings): string {
   const value = settings[field.key];
-  return field.kind === 'time' && typeof value === 'number' ? timeText(value) : String(value);
+  if (field.kind === 'time' && typeof value === 'number') return timeText(value);
+  return field.kind === 'phone' ? formatPhone(String(value)) : String(value);
 }
 
 /** What is wrong with a field's text, in words; `null` when nothing is. */

@@ -60,6 +60,7 @@ export class SettingsPart {
   private readonly order = new OrderId();
 
   protected readonly groups = SETTING_GROUPS;
+  protected readonly titles = SETTING_GROUPS.map(({ title }) => title);
   protected readonly form = new FormGroup(
     Object.fromEntries(
       SETTING_FIELDS.map((field) => [
@@ -87,6 +88,13 @@ export class SettingsPart {
         if (settings && !this.isChanged()) this.fill(settings);
       });
     });
+  }
+
+  /** Brings a group of settings into sight, and the keyboard to it. */
+  protected goTo(group: number): void {
+    const legend = this.host.nativeElement.querySelectorAll<HTMLElement>('legend')[group];
+    legend?.focus({ preventScroll: true });
+    legend?.scrollIntoView?.({ block: 'start' });
   }
 
   protected isChanged(): boolean {

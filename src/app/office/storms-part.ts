@@ -23,11 +23,19 @@ import { DateTimePipe } from '../core/zone';
 import { type Confirmation, ConfirmDialog } from './confirm-dialog';
 import { filled, showFaults } from './form-words';
 import { OrderId } from './order-id';
+import { StackedTable } from './stacked-table';
 
 /** Storms: the one that is open, those that were, and the next. */
 @Component({
   selector: 'thaw-storms-part',
-  imports: [DateTimePipe, MatButton, MatFormFieldModule, MatInput, ReactiveFormsModule],
+  imports: [
+    DateTimePipe,
+    MatButton,
+    MatFormFieldModule,
+    MatInput,
+    ReactiveFormsModule,
+    StackedTable,
+  ],
   templateUrl: './storms-part.html',
   styleUrl: './parts.scss',
   changeDetection: ChangeDetectionStrategy.OnPush,

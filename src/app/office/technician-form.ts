@@ -17,6 +17,7 @@ import { MatFormFieldModule } from '@angular/material/form-field';
 import { MatIcon } from '@angular/material/icon';
 import { MatInput } from '@angular/material/input';
 import type { TechnicianDto } from '@shared/contract/routes';
+import { formatPhone } from '@shared/domain/phone-number';
 import { PART_WORDS, PARTS, type Part, SKILLS, type Skill } from '@shared/domain/skills';
 import { Announce } from '../core/announce';
 import { Api, newId } from '../core/api';
@@ -245,7 +246,8 @@ export class TechnicianForm {
   }
 
   private write(told: TechnicianTold): void {
-    const { name, phone, active, start } = told;
+    const { name, active, start } = told;
+    const phone = formatPhone(told.phone);
     const skills = Object.fromEntries(
       SKILLS.map((skill) => [skill, told.skills.includes(skill)]),
     ) as Record<Skill, boolean>;

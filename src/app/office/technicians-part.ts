@@ -18,11 +18,12 @@ import { focusFirst } from './focus-first';
 import { SKILL_WORDS } from './skill-words';
 import { partsOnVan } from './technician-changes';
 import { TechnicianForm } from './technician-form';
+import { StackedTable } from './stacked-table';
 
 /** Who drives: skills, parts on the van, shifts, and where the day begins. */
 @Component({
   selector: 'thaw-technicians-part',
-  imports: [MatButton, TechnicianForm],
+  imports: [MatButton, StackedTable, TechnicianForm],
   templateUrl: './technicians-part.html',
   styleUrl: './parts.scss',
   changeDetection: ChangeDetectionStrategy.OnPush,
