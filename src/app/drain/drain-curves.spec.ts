@@ -5,7 +5,7 @@ import { changeWords, FIELDS, NOTHING_CHANGED, readField } from './ahead/what-if
 import { aheadLines, totalsOf } from './drain-curves';
 import { aDrain, anOutlook, AT } from './drain-fixture';
 import { backlogWords } from './drain-words';
-import { spread } from './end-labels';
+import { spread, stacked } from './end-labels';
 import { sortedShares } from './share-table';
 import { timeTicks } from './time-ticks';
 
@@ -121,6 +121,21 @@ describe('timeTicks', () => {
       const ticks = timeTicks(AT, AT + hours * HOUR_MS, 'America/New_York', 6);
       expect(ticks.length).toBeLessThanOrEqual(7);
     }
+  });
+});
+
+describe('stacked', () => {
+  it('puts the labels above the topmost end, in the order of the lines', () => {
+    const ends = [60, 80, 140].map((y, n) => ({ x: 10, y, n })).reverse();
+    const placed = stacked(ends, 0);
+    expect(placed.map(({ n }) => n)).toEqual([0, 1, 2]);
+    expect(placed.every(({ y }) => y < 60)).toBe(true);
+    expect(placed[1]!.y - placed[0]!.y).toBeGreaterThanOrEqual(17);
+  });
+
+  it('stays within the picture', () => {
+    expect(stacked([{ x: 10, y: 12 }], 10)[0]!.y).toBeGreaterThan(10);
+    expect(stacked([], 10)).toEqual([]);
   });
 });
 

@@ -132,8 +132,8 @@ describe('DrainPage', () => {
   });
 
   it('names the source of the map, as its licence asks', async () => {
-    const { root } = await show();
-    expect(root.textContent).toContain('Map data: Invented');
+    const { text } = await show();
+    expect(text()).toContain('Map data: Invented');
   });
 
   it('shows two sums that add up', async () => {
@@ -202,7 +202,7 @@ describe('DrainPage', () => {
     const phones = root.querySelectorAll('thaw-phone-table tbody tr');
     expect(phones[0]?.textContent).toContain('grows');
     expect(phones[1]?.textContent).toContain('2 (now)');
-    expect(text()).toContain('To load tonight: 1 start relay.');
+    expect(text()).toContain('To load tonight: 1 × start relay.');
     expect(root.querySelector('thaw-parts-table a')?.getAttribute('href')).toBe(
       `/api/storms/${aStorm().id}/parts?format=csv`,
     );

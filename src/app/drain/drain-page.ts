@@ -31,6 +31,7 @@ import { BUCKETS, type BucketMinutes, DrainFeed } from './drain-feed';
 import { DrainFigures } from './drain-figures';
 import { backlogWords, valueWords } from './drain-words';
 import { drawBacklog, drawValue, type DrainView } from './draw-drain';
+import { MapCredit } from '../ui/map-credit';
 import { LossAhead } from './loss-ahead';
 import { ShareTable } from './share-table';
 import { TimeTable } from './time-table';
@@ -44,6 +45,7 @@ import { TimeTable } from './time-table';
     DrainFigures,
     ForecastTable,
     LossAhead,
+    MapCredit,
     MatButton,
     MatButtonToggleModule,
     MatIcon,

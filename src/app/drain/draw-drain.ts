@@ -33,6 +33,7 @@ export function drawBacklog({ drain, zone, isNarrow, outlook }: DrainView): Draw
         data: [...curve(drain, (point) => point.arrivals)],
         label: 'came in',
         endLabel: `came in ${now.arrivals}`,
+        endMark: '▲',
       },
       {
         ...thin(ink.safe, 'rect', drain),
@@ -40,6 +41,7 @@ export function drawBacklog({ drain, zone, isNarrow, outlook }: DrainView): Draw
         data: [...curve(drain, settledOf)],
         label: 'settled',
         endLabel: `settled ${settledOf(now)}`,
+        endMark: '■',
       },
       {
         ...thin(ink.text, 'circle', drain),
@@ -47,6 +49,7 @@ export function drawBacklog({ drain, zone, isNarrow, outlook }: DrainView): Draw
         data: [...curve(drain, (point) => point.open)],
         label: 'open',
         endLabel: `open ${now.open}`,
+        endMark: '●',
       },
     ];
     if (outlook && ahead) datasets.push(...bandOf(ahead, ink, aheadLabel(outlook, ahead, zone)));
@@ -60,6 +63,8 @@ export function drawBacklog({ drain, zone, isNarrow, outlook }: DrainView): Draw
         to: far,
         isNarrow,
         roomRight: ahead ? 126 : 104,
+        // Room for the words above the ends of what has been.
+        ...(ahead ? { least: now.arrivals * 1.4 } : {}),
         value: (amount) => String(Math.round(amount)),
         tick: (amount) => String(amount),
       }),
@@ -185,6 +190,8 @@ export interface Axes {
   /** Pixels for the words at the line ends. */
   readonly roomRight: number;
   readonly isStacked?: boolean;
+  /** The scale reaches up to here at least. */
+  readonly least?: number;
   readonly value: (amount: number) => string;
   readonly tick: (amount: number) => string;
 }
@@ -221,6 +228,7 @@ export function options(axes: Axes): ChartOptions<'line'> {
       y: {
         type: 'linear',
         beginAtZero: true,
+        ...(axes.least === undefined ? {} : { suggestedMax: axes.least }),
         stacked: axes.isStacked ?? false,
         grid: { color: ink.rule },
         border: { display: false },

@@ -6,6 +6,8 @@ declare module 'chart.js' {
     endLabel?: string;
     /** `band`: in the middle of the ground between this line and the one below. */
     endLabelAt?: 'line' | 'band';
+    /** The line's marks as a sign, for a label that does not stand beside its end. */
+    endMark?: string;
     /** When the line's own colour is too faint for words. */
     endLabelColor?: string;
   }
@@ -16,17 +18,32 @@ interface Label {
   readonly color: string;
   readonly x: number;
   y: number;
+  /** The line ends within the picture: what lies ahead is drawn where its label would stand. */
+  readonly isInside: boolean;
 }
 
 const LINE_PX = 17;
 const GAP_PX = 9;
+/** A line that ends so far from the picture's edge has no room of its own beside its end. */
+const EDGE_PX = 24;
 
 /** Writes each line's name and last value beside its end, so that no legend has to be matched. */
 export const endLabels: Plugin<'line'> = {
   id: 'endLabels',
   afterDatasetsDraw(chart) {
-    const labels = spread(labelsOf(chart), chart.chartArea.top, chart.chartArea.bottom);
-    const { ctx } = chart;
+    const { ctx, chartArea } = chart;
+    const all = labelsOf(chart);
+    const labels = [
+      ...spread(
+        all.filter(({ isInside }) => !isInside),
+        chartArea.top,
+        chartArea.bottom,
+      ),
+      ...stacked(
+        all.filter(({ isInside }) => isInside),
+        chartArea.top,
+      ),
+    ];
     const ground = String(
       chart.canvas.ownerDocument.defaultView
         ?.getComputedStyle(chart.canvas)
@@ -36,8 +53,11 @@ export const endLabels: Plugin<'line'> = {
     ctx.font = `500 13px 'IBM Plex Sans', sans-serif`;
     ctx.textBaseline = 'middle';
     ctx.lineJoin = 'round';
-    for (const { text, color, x, y } of labels) {
-      const left = Math.min(x, chart.width - ctx.measureText(text).width - 2);
+    for (const { text, color, x, y, isInside } of labels) {
+      const width = ctx.measureText(text).width;
+      const left = isInside
+        ? Math.max(x - width, chartArea.left + 4)
+        : Math.min(x, chart.width - width - 2);
       // A halo of the ground keeps the words readable where a line runs behind them.
       ctx.lineWidth = 5;
       ctx.strokeStyle = ground;
@@ -51,21 +71,41 @@ export const endLabels: Plugin<'line'> = {
 
 function labelsOf(chart: Chart): Label[] {
   return chart.data.datasets.flatMap((dataset, index) => {
-    const { endLabel, endLabelAt, endLabelColor, borderColor } = dataset as ChartDataset<'line'>;
+    const { endLabel, endLabelAt, endLabelColor, endMark, borderColor } =
+      dataset as ChartDataset<'line'>;
     const meta = chart.getDatasetMeta(index);
     const end = meta.data.at(-1);
     if (!endLabel || !end || meta.hidden) return [];
     const below = index > 0 ? chart.getDatasetMeta(index - 1).data.at(-1)?.y : undefined;
     const y = endLabelAt === 'band' ? (end.y + (below ?? chart.chartArea.bottom)) / 2 : end.y;
+    const isInside = end.x < chart.chartArea.right - EDGE_PX;
     return [
       {
-        text: endLabel,
+        text: isInside && endMark ? `${endMark} ${endLabel}` : endLabel,
         color: endLabelColor ?? (typeof borderColor === 'string' ? borderColor : 'gray'),
-        x: end.x + GAP_PX,
+        x: isInside ? end.x + 4 : end.x + GAP_PX,
         y,
+        isInside,
       },
     ];
   });
+}
+
+/** Labels of lines that end within the picture, in the lines' order above the topmost end. */
+export function stacked<L extends { readonly x: number; y: number }>(
+  labels: readonly L[],
+  top: number,
+): L[] {
+  const placed = labels.map((label) => ({ ...label })).sort((a, b) => a.y - b.y);
+  const first = placed[0];
+  if (!first) return [];
+  const height = LINE_PX * placed.length;
+  let y = Math.max(first.y - 4 - height, top) + LINE_PX / 2;
+  for (const label of placed) {
+    label.y = y;
+    y += LINE_PX;
+  }
+  return placed;
 }
 
 /** Moves labels that would cover each other apart, each as little as its neighbours let it. */

@@ -19,19 +19,9 @@ export class PartsTable {
   readonly csvUrl = input.required<string>();
 
   protected readonly words = PART_WORDS;
-  /** A row for each part of each van that may be needed there. */
-  protected readonly rows = computed(() =>
-    this.parts().vans.flatMap(({ name, stops, parts, lackChance }) =>
-      parts.map((one, i) => ({
-        ...one,
-        name,
-        stops,
-        lackChance,
-        own: one.lackChance,
-        i,
-        rows: parts.length,
-      })),
-    ),
+  /** Vans on which some part may be needed. */
+  protected readonly vans = computed(() =>
+    this.parts().vans.filter(({ parts }) => parts.length > 0),
   );
   protected readonly hasRoutes = computed(() => this.parts().vans.some(({ stops }) => stops > 0));
   protected readonly toLoad = computed(() => this.parts().shelf.filter(({ load }) => load > 0));
