@@ -32,8 +32,8 @@ const LOOKS: Readonly<
 const LINES_AWAY = [0, -1, 1, -1.8, 1.8] as const;
 
 /**
- * Far out, where calls lie over the middle of every town, the map's own names would be covered: they
- * are set here instead, beside the marks and before other labels. Closer, the tiles name towns.
+ * Calls lie over the middle of every town, and would cover a name that is a part of the tiles: towns
+ * are named here instead, beside the marks, and before the labels of areas.
  */
 export function paintTowns(
   ctx: CanvasRenderingContext2D,

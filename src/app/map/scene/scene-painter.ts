@@ -51,6 +51,7 @@ export class ScenePainter {
     const plates = scene.hasTechnicians
       ? paintTechnicians(ctx, view, routes, chosenTechnicianId, boxes, ink)
       : [];
+    const roadSigns = paintStormRoadSigns(ctx, view, stormRoads, boxes, ink);
     paintTowns(ctx, view, scene.towns, placed, boxes, ink);
     return {
       marks: {
@@ -58,7 +59,7 @@ export class ScenePainter {
         counts: Uint16Array.from(placed, ({ count }) => count),
       },
       plates,
-      roadSigns: paintStormRoadSigns(ctx, view, stormRoads, boxes, ink),
+      roadSigns,
       pocketLabels: paintPocketLabels(ctx, view, pockets, chosenPocketKey, boxes, ink),
       areaLabels: paintAreaLabels(ctx, view, areas, boxes, ink),
     };

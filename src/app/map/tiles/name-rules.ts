@@ -1,20 +1,20 @@
 import { CenteredTextSymbolizer, LineLabelSymbolizer, type LabelRule } from 'protomaps-leaflet';
-import { NUMBERS_MIN_ZOOM, TOWN_NAMES_MAX_ZOOM } from './map-zoom';
+import { NUMBERS_MIN_ZOOM } from './map-zoom';
 import type { Palette, RoadClass } from './palette';
 import { isClass, isKind } from './rule-filters';
 import { GROUND, NUMBERS } from './sources';
 
 const FONT = '"IBM Plex Sans", sans-serif';
 
-/** Names in the order in which they get their room: who comes first stands. */
+/**
+ * Names in the order in which they get their room: who comes first stands. Cities, towns and villages
+ * are named above the calls, which cover the tiles: see `paint-towns.ts`.
+ */
 export function nameRules(palette: Palette): LabelRule[] {
   const { text, quietText, waterText, halo } = palette;
   const street = streetNames(palette);
   const place = placeNames(palette);
   const rules: Omit<LabelRule, 'dataSource'>[] = [
-    place(['city'], TOWN_NAMES_MAX_ZOOM + 1, 16, 600, text),
-    place(['town'], TOWN_NAMES_MAX_ZOOM + 1, 13, 600, text),
-    place(['village'], TOWN_NAMES_MAX_ZOOM + 1, 12, 500, text),
     place(['suburb'], 11, 12, 500, text),
     place(['sea'], 10, 12, 400, waterText, 'italic'),
     place(['island', 'hamlet', 'neighbourhood', 'locality'], 13, 11, 500, quietText),
