@@ -59,14 +59,14 @@ export default defineConfig({
       ],
     },
   },
-  webServer: Array.from({ length: WORKERS }, (_, worker) => ({
-    command: `"${process.execPath}" server/setup/browser-server.mjs ${worker} ${portOf(worker)}`,
+  // One command for all products: those of a list are started one after the other.
+  webServer: {
+    command: `"${process.execPath}" server/setup/browser-servers.mjs ${WORKERS} ${firstPort}`,
     cwd: root,
-    url: `http://127.0.0.1:${portOf(worker)}/readyz`,
-    reuseExistingServer: false,
+    wait: { stdout: /^all serve$/m },
     timeout: 240_000,
     stdout: 'ignore',
     stderr: 'pipe',
     gracefulShutdown: { signal: 'SIGTERM', timeout: 20_000 },
-  })),
+  },
 });

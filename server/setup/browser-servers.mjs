@@ -1,15 +1,17 @@
 /**
- * The product as one worker of the browser stories needs it: built, on an empty database of its own,
- * with the demo county and the fake text service. Runs until it is told to stop.
+ * The product as each worker of the browser stories needs it: built, on an empty database of its own,
+ * with the demo county and the fake text service one port above it. All start at once, since each start
+ * keeps one core busy; when all answer it says `all serve`, and runs until it is told to stop.
  *
- *   node server/setup/browser-server.mjs <worker, from 0> <port>
+ *   node server/setup/browser-servers.mjs <workers> <first port>
  */
 import { mkdir } from 'node:fs/promises';
 import path from 'node:path';
 
 import { serverEnvironment } from './environment.mjs';
 import { dataFolder, root } from './paths.mjs';
-import { runMain } from './problem.mjs';
+import { isPortFree } from './ports.mjs';
+import { runMain, SetupProblem } from './problem.mjs';
 import { ensureBuild } from './product-build.mjs';
 import { startAndWait, stopLeftovers, stopProcess } from './processes.mjs';
 import { readSecrets } from './secrets.mjs';
@@ -17,8 +19,7 @@ import { recreateDatabase, testDatabase } from './test-database.mjs';
 
 const START_SECONDS = 180;
 
-const [worker, port] = process.argv.slice(2).map(Number);
-const purpose = `browser-${worker}`;
+const [workers, firstPort] = process.argv.slice(2).map(Number);
 
 const pids = [];
 const stop = async () => {
@@ -30,16 +31,26 @@ for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP']) {
 
 await runMain(async () => {
   try {
-    await serve();
+    await ensureBuild();
+    const database = await testDatabase();
+    const places = Array.from({ length: workers }, (_, worker) => [worker, firstPort + 2 * worker]);
+    const serving = await Promise.all(
+      places.map(([worker, port]) => serve(worker, port, database)),
+    );
+    process.stdout.write('all serve\n');
+    await Promise.race(serving.flat().map(({ ended }) => ended));
   } finally {
     await stop();
   }
 });
 
-async function serve() {
+/** The product of one worker, once it answers. */
+async function serve(worker, port, database) {
+  const purpose = `browser-${worker}`;
   await stopLeftovers(purpose);
-  await ensureBuild();
-  const database = await testDatabase();
+  // Else somebody else's answer would pass for that of the product.
+  for (const wanted of [port, port + 1])
+    if (!(await isPortFree(wanted))) throw new SetupProblem(`Port ${wanted} is taken.`);
   const name = `thawline_test_browser_${worker}`;
   await recreateDatabase(database, name);
   const data = path.join(dataFolder, purpose);
@@ -62,5 +73,5 @@ async function serve() {
     );
   const fakes = await start('fakes-main', port + 1, '/');
   const server = await start('main', port, '/readyz');
-  await Promise.race([fakes.ended, server.ended]);
+  return [fakes, server];
 }
