@@ -18,8 +18,8 @@ import { spread } from './quantiles';
 const CALLS = 600;
 const TECHNICIANS = 60;
 const STOPS_EACH = 8;
-const CLOSURES = 12;
-const QUIET_MS = 60_000;
+const CLOSURES = 6;
+const QUIET_MS = 20_000;
 
 /**
  * From a dispatcher's closing of a road until the board hears the new times of the routes that led along
