@@ -16,6 +16,7 @@ import {
   SLOPE,
   TOLL,
 } from './gap-fields';
+import type { Neighbours } from './neighbours';
 import type { Route } from './route';
 import { serviceStart, stopPrice } from './stop-price';
 
@@ -23,12 +24,21 @@ import { serviceStart, stopPrice } from './stop-price';
 const { max } = Math;
 const NEVER = Infinity;
 
+/** Where jobs stand on the routes. */
+export interface Beside {
+  readonly routes: readonly Route[];
+  readonly routeOf: Int32Array;
+  readonly gapOf: Int32Array;
+}
+
 /** Looks through the gaps of a route for the one where a job costs least. */
 export class GapScan {
   /** The best gap of the last look, the stop at the shop not counted. */
   gap = -1;
   /** The job's price there. */
   price = NEVER;
+  /** Looks until the next gap that is passed over. */
+  blinkIn = NEVER;
   private readonly leave: Departure = { at: 0, pending: 0, room: 0, isSwallowed: false };
   private readonly onward: Departure = { at: 0, pending: 0, room: 0, isSwallowed: false };
 
@@ -101,31 +111,11 @@ export class GapScan {
       const there = travelTo[rowAt + gaps[o + PLACE]!]!;
       const onward = travel[rowAt + gaps[o + NEXT]!]!;
       const detour = fixed + (there + onward - gaps[o + DIRECT]!) * travelPrice;
-      let price: number;
-      if (breakCount > 0 && gaps[o + PEND]! < breakCount) {
-        price = this.priceAmongBreaks(route, gap, job, there, onward, detour);
-      } else {
-        // Most gaps end here: driving and waiting alone cost more than the best place so far.
-        const soonest = ready + there;
-        const least = detour + waitPrice * (soonest - calledAt) - spare;
-        if (least >= best || (soonest > lastEnd && least + lateFixed >= best)) continue;
-        const start = serviceStart(c, job, soonest);
-        price = detour + stopPrice(c, job, start);
-        if (price - spare >= best) continue;
-        const arrival = start + service + onward;
-        const slip = arrival - gaps[o + ARRIVE]!;
-        if (slip > gaps[o + HARD]!) continue;
-        const slope = gaps[o + SLOPE]!;
-        if (slip >= 0 && slip <= gaps[o + SLACK]!) price += slip * slope;
-        else {
-          if (slip > 0) {
-            let bound = price + slip * slope - spare;
-            if (slip > gaps[o + REACH]!) bound += toll;
-            if (bound >= best) continue;
-          }
-          price += route.walk(gap, arrival, breakCount, best - price);
-        }
-      }
+      // Most gaps end here: driving and waiting alone cost more than the best place so far.
+      const soonest = ready + there;
+      const least = detour + waitPrice * (soonest - calledAt) - spare;
+      if (least >= best || (soonest > lastEnd && least + lateFixed >= best)) continue;
+      const price = this.priceIn(route, gap, job, there, onward, detour, best);
       if (price >= best) continue;
       best = price;
       bestGap = gap;
@@ -133,6 +123,109 @@ export class GapScan {
     this.gap = shopAt >= 0 && bestGap > shopAt ? bestGap - 1 : bestGap;
     this.price = best;
     return bestGap >= 0;
+  }
+
+  /**
+   * Looks at the gaps beside the jobs that are near, on all routes: with many routes a fraction of what a
+   * look at all gaps takes. Empty routes and a stop at the shop are not looked at.
+   *
+   * @param allows 1 for routes that may take the job, from `base` on
+   * @param blink looks until one gap is passed over, or Infinity; what is left of it is in `blinkIn`
+   * @returns the route, or -1 where the job does not fit for less than `below`
+   */
+  findNear(
+    plan: Beside,
+    job: number,
+    near: Neighbours,
+    allows: Uint8Array,
+    below: number,
+    blink: number,
+  ): number {
+    const { c } = this;
+    const { routes, routeOf, gapOf } = plan;
+    const { travel, travelTo, travelPrice } = c;
+    const rowAt = c.loc[job]! * c.locations;
+    const waitPrice = c.waitPrice[job]!;
+    const calledAt = c.calledAt[job]!;
+    const lastEnd = c.lastWindowEnd[job]!;
+    const lateFixed = c.weights.lateFixed;
+    const base = job * routes.length;
+    const end = (job + 1) * near.count;
+    let best = below;
+    let bestRoute = -1;
+    let bestGap = -1;
+    for (let k = job * near.count; k < end; k++) {
+      const other = near.list[k]!;
+      const r = routeOf[other]!;
+      if (r < 0 || !allows[base + r]) continue;
+      const route = routes[r]!;
+      const { gaps } = route;
+      const before = gapOf[other]!;
+      const fixed = route.changePrice(job);
+      for (let gap = before; gap <= before + 1; gap++) {
+        if (gap < route.frozenCount) continue;
+        if (--blink <= 0) continue;
+        const o = gap * GAP;
+        const there = travelTo[rowAt + gaps[o + PLACE]!]!;
+        const onward = travel[rowAt + gaps[o + NEXT]!]!;
+        const detour = fixed + (there + onward - gaps[o + DIRECT]!) * travelPrice;
+        const soonest = gaps[o + READY]! + there;
+        const least = detour + waitPrice * (soonest - calledAt) - gaps[o + CREDIT]!;
+        if (least >= best || (soonest > lastEnd && least + lateFixed >= best)) continue;
+        const price = this.priceIn(route, gap, job, there, onward, detour, best);
+        if (price >= best) continue;
+        best = price;
+        bestRoute = r;
+        bestGap = gap;
+      }
+    }
+    this.blinkIn = blink;
+    this.price = best;
+    this.gap = bestGap;
+    if (bestRoute >= 0) {
+      const { shopAt } = routes[bestRoute]!;
+      if (shopAt >= 0 && bestGap > shopAt) this.gap--;
+    }
+    return bestRoute;
+  }
+
+  /**
+   * Price of a job in a gap.
+   *
+   * @param detour price of the drives, and of what else has to change
+   * @returns the price, or anything from `below` on where it is not less
+   */
+  private priceIn(
+    route: Route,
+    gap: number,
+    job: number,
+    there: number,
+    onward: number,
+    detour: number,
+    below: number,
+  ): number {
+    const { c } = this;
+    const { gaps, from } = route;
+    const breakCount = from.breaks.length;
+    const o = gap * GAP;
+    if (breakCount > 0 && gaps[o + PEND]! < breakCount) {
+      return this.priceAmongBreaks(route, gap, job, there, onward, detour);
+    }
+    const start = serviceStart(c, job, gaps[o + READY]! + there);
+    const price = detour + stopPrice(c, job, start);
+    const spare = gaps[o + CREDIT]!;
+    if (price - spare >= below) return NEVER;
+    const arrival = start + c.service[route.row + job]! + onward;
+    const slip = arrival - gaps[o + ARRIVE]!;
+    if (slip > gaps[o + HARD]!) return NEVER;
+    const slope = gaps[o + SLOPE]!;
+    if (slip >= 0 && slip <= gaps[o + SLACK]!) return price + slip * slope;
+    if (slip > 0) {
+      let bound = price + slip * slope - spare;
+      if (slip > gaps[o + REACH]!) bound += gaps[o + TOLL]!;
+      if (bound >= below) return NEVER;
+    }
+    return price + route.walk(gap, arrival, breakCount, below - price);
   }
 
   /** Price of a job in a gap before which a break is still to come. */

@@ -1,3 +1,4 @@
+import { AlikeShifts } from './alike-shifts';
 import type { CompiledProblem } from './compiled-problem';
 import { GapScan } from './gap-scan';
 import type { Neighbours } from './neighbours';
@@ -42,6 +43,7 @@ export class Insertion {
   /** The best gap then; -1 where there was none for less than the price. */
   private readonly knownGap: Int16Array;
   private readonly knownPrice: Float64Array;
+  private readonly alike: AlikeShifts;
 
   constructor(
     private readonly plan: WorkingPlan,
@@ -57,6 +59,7 @@ export class Insertion {
     this.knownStamp = new Int32Array(size).fill(-1);
     this.knownGap = new Int16Array(size);
     this.knownPrice = new Float64Array(size);
+    this.alike = new AlikeShifts(c);
     for (let job = 0; job < c.jobCount; job++) {
       for (let r = 0; r < routes.length; r++) {
         this.allows[job * routes.length + r] = c.mayServe[routes[r]!.row + job]!;
@@ -72,6 +75,38 @@ export class Insertion {
    */
   insert(job: number, near: Neighbours | null, blinks: boolean): boolean {
     this.find(job, near, blinks, this.c.absentPrice[job]!);
+    return this.put(job);
+  }
+
+  /**
+   * Puts a job beside one that is near, or on an empty route, where that costs least; whether it has
+   * been put. A part that the van lacks makes it look at all gaps.
+   */
+  insertNear(job: number, near: Neighbours): boolean {
+    const { plan, c, scan } = this;
+    if (c.part[job]! >= 0) return this.insert(job, near, true);
+    const below = c.absentPrice[job]!;
+    this.route = scan.findNear(plan, job, near, this.allows, below, this.blinkIn);
+    this.gap = scan.gap;
+    this.price = scan.price;
+    this.blinkIn = scan.blinkIn;
+    if (this.blinkIn <= 0) this.drawBlink();
+    this.lookAtEmpty(job);
+    return this.put(job);
+  }
+
+  /** Looks at one empty route of each kind. */
+  private lookAtEmpty(job: number): void {
+    const { plan, alike, scan } = this;
+    if (plan.emptyCount === 0) return;
+    for (let kind = 0; kind < alike.count; kind++) {
+      const r = alike.emptyOne(kind, plan.routes);
+      if (r < 0 || !this.allows[job * this.routeCount + r]) continue;
+      if (scan.empty(plan.routes[r]!, job, 0, this.price)) this.offer(r, 0, scan.price);
+    }
+  }
+
+  private put(job: number): boolean {
     if (this.route < 0) return false;
     const { plan } = this;
     plan.touch(this.route);

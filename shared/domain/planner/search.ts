@@ -9,6 +9,10 @@ import { type WorkingPlan } from './working-plan';
 
 const NEIGHBOURS = 40;
 const TAILS_EVERY = 10;
+/** With fewer jobs a look at all gaps costs no more than one at those beside near jobs. */
+const FEW_JOBS = 50;
+/** One round in so many looks at all gaps all the same: near jobs alone do not lead everywhere. */
+const ALL_GAPS_EVERY = 20;
 
 /**
  * Ruin and recreate with simulated annealing: take strings of stops out of neighbouring routes, put
@@ -66,9 +70,13 @@ export class Search {
   }
 
   private recreate(): void {
-    const { random, ruin, insertion } = this;
+    const { random, ruin, insertion, near } = this;
     this.orders.arrange(ruin.absent, random);
-    for (const job of ruin.absent) insertion.insert(job, this.near, true);
+    const looksEverywhere = this.plan.c.jobCount <= FEW_JOBS || random.below(ALL_GAPS_EVERY) === 0;
+    for (const job of ruin.absent) {
+      if (looksEverywhere) insertion.insert(job, near, true);
+      else insertion.insertNear(job, near);
+    }
   }
 }
 

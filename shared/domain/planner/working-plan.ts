@@ -29,9 +29,12 @@ export class WorkingPlan {
   readonly isTouched: Uint8Array;
   /** Of each route; the same number stands for the same order of stops. */
   readonly stampOf: Int32Array;
+  /** Routes without any stop. */
+  emptyCount = 0;
 
   /** The second route of each shift: as it was before the round, or free for the next. */
   private readonly spare: Route[];
+  private readonly isEmpty: Uint8Array;
   private priceBefore = 0;
   private lastStamp = 0;
   private bestStops: Int32Array[];
@@ -46,6 +49,7 @@ export class WorkingPlan {
     this.bankIndex = new Int32Array(c.jobCount).fill(-1);
     this.parts = new PartsInUse(c);
     this.isTouched = new Uint8Array(this.routes.length);
+    this.isEmpty = new Uint8Array(this.routes.length);
     this.stampOf = new Int32Array(this.routes.length);
     this.bestStops = this.routes.map(() => new Int32Array(0));
     this.bestStamp = new Int32Array(this.routes.length).fill(-1);
@@ -215,6 +219,9 @@ export class WorkingPlan {
   private noteStops(r: number): void {
     const { routeOf, gapOf } = this;
     const { stops, count } = this.routes[r]!;
+    const isEmpty = count === 0 ? 1 : 0;
+    this.emptyCount += isEmpty - this.isEmpty[r]!;
+    this.isEmpty[r] = isEmpty;
     for (let i = 0; i < count; i++) {
       routeOf[stops[i]!] = r;
       gapOf[stops[i]!] = i;
