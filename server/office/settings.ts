@@ -2,6 +2,7 @@ import type { Sequelize, Transaction } from 'sequelize';
 import { z } from 'zod';
 import { Settings } from '@shared/contract/office';
 import { DEFAULT_VALUES } from '@shared/domain/food-value';
+import { DEFAULT_LEAST_GAIN, DEFAULT_PRICES } from '@shared/domain/planner/plan-prices';
 import { DEFAULT_REACH_MINUTES, DEFAULT_WEIGHTS } from '@shared/domain/urgency';
 import { select } from '../db/sql';
 
@@ -38,23 +39,12 @@ export const DEFAULT_SETTINGS: Omit<Settings, 'version'> = {
   usesMeasuredVisits: false,
   shopPlace: null,
   shopMinutes: 10,
-  // Our estimates, no source: prices that make driving and waiting small beside a freezer of food.
-  driveDollarsPerHour: 40,
-  waitDollarsPerHour: 2,
-  lateDollars: 30,
-  lateDollarsPerHour: 60,
-  overtimeDollarsPerHour: 90,
-  mostOvertimeMinutes: 60,
-  leftOutDollars: 150,
-  otherTechnicianDollars: 15,
-  otherTimeDollars: 10,
-  otherTimeMinutes: 30,
-  promisedAheadMinutes: 120,
+  ...DEFAULT_PRICES,
   medicineWeight: DEFAULT_WEIGHTS.medicine,
   changesPerHour: 6,
   // Nothing happens by itself until a manager wants it.
   automaticRoutes: 'off',
-  automaticGainDollars: 25,
+  automaticGainDollars: DEFAULT_LEAST_GAIN,
   automaticKeepMinutes: 45,
   householdWeight: DEFAULT_WEIGHTS.household,
   reachMinutes: DEFAULT_REACH_MINUTES,

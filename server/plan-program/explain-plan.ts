@@ -1,3 +1,4 @@
+import { counted, partsOf } from '@shared/domain/planner/job-parts';
 import { plan } from '@shared/domain/planner/plan';
 import { stopReasons } from '@shared/domain/planner/plan-summary';
 import type { Plan, PlanProblem } from '@shared/domain/planner/problem';
@@ -36,8 +37,11 @@ const CONCESSIONS: readonly Concession[] = [
     }),
   },
   {
-    words: ({ part }) => (part === undefined ? null : `${part} on a van`),
-    apply: (problem) => ({ ...problem, jobs: problem.jobs.map(({ part: _, ...job }) => job) }),
+    words: (job) => (partsOf(job).length === 0 ? null : `${partsOf(job).join(' and ')} on a van`),
+    apply: (problem) => ({
+      ...problem,
+      jobs: problem.jobs.map(({ part: _, parts: __, ...job }) => job),
+    }),
   },
   {
     words: () => 'an hour more on every shift',
@@ -69,7 +73,7 @@ function oneMore({ jobs, technicians }: PlanProblem): PlanProblem['technicians']
       ...like,
       id: `one more than ${technicians.map(({ id }) => id).join()}`,
       skills: jobs.flatMap(({ skills }) => skills),
-      parts: Object.fromEntries(jobs.map(({ part }) => [part ?? '', jobs.length])),
+      parts: Object.fromEntries(counted(jobs.flatMap(partsOf))),
       frozen: [],
     },
   ];

@@ -1,8 +1,9 @@
 import type { PlanPrices } from '@shared/contract/plan-prices';
 import { isPlannable } from '@shared/domain/call-state';
 import type { Instant } from '@shared/domain/instant';
-import { lossDeadlines } from '@shared/domain/planner/loss-deadlines';
+import { lossStakes } from '@shared/domain/planner/loss-deadlines';
 import { weightsOf } from '@shared/domain/planner/plan-prices';
+import { posedCall } from '@shared/domain/planner/pose';
 import type {
   PlanJob,
   PlanShift,
@@ -13,12 +14,8 @@ import { heldCount, isUnderWay, shiftOf, type WorkShift } from '@shared/domain/r
 import type { LonLat } from '@shared/domain/travel/great-circle';
 import type { PlannerRequest } from '../workers/planner-client';
 import { keptStops, type KeptStop } from './kept-stops';
-import { kitOf, kitsOnVan } from './part-kits';
 import type { CallToPlan, PlanFacts, TechnicianToPlan } from './plan-facts';
 import { minutesAtDoor } from './visit-facts';
-
-/** How much a minute of waiting counts for food that can still be saved; the planner's own scale. */
-const FOOD_WEIGHT = 2;
 
 export type Problem = Pick<PlannerRequest, 'problem' | 'points'> & {
   /** Stops that no plan may move now, though nobody has accepted or locked them, and why. */
@@ -51,8 +48,6 @@ export function planProblem(stored: PlanFacts, options: ProblemOptions = {}): Pr
   const jobs = new Map<string, PlanJob>();
   const held = new Set<string>();
   const kept = keptStops(facts, options);
-  const kits = new Set<string>();
-  for (const { needs } of facts.visits.values()) if (needs.length > 0) kits.add(kitOf(needs));
 
   for (const technician of facts.technicians) {
     const ahead = technician.stops.filter(
@@ -68,7 +63,7 @@ export function planProblem(stored: PlanFacts, options: ProblemOptions = {}): Pr
       at: start,
       availableAt: seconds(freeAt),
       skills: technician.skills,
-      parts: kitsOnVan(technician.van, kits),
+      parts: technician.van,
       shifts: technician.shifts.map(shiftToPlan),
       frozen: ahead.filter((stop) => !isUnderWay(stop.state)).map((stop) => stop.callId),
     });
@@ -131,12 +126,6 @@ function startOf(
 
 function jobOf(call: CallToPlan, loc: number, facts: PlanFacts): PlanJob {
   const { settings, now } = facts;
-  const live = call.compartments.filter(({ saveByAt }) => saveByAt === null || saveByAt > now);
-  const weight = live.some(({ kind }) => kind === 'medicine')
-    ? settings.medicineWeight
-    : live.some(({ valueCents }) => valueCents > 0)
-      ? Math.min(FOOD_WEIGHT, settings.medicineWeight)
-      : 1;
   const visit = facts.visits.get(call.id);
   const allowed =
     call.declinedBy.length === 0
@@ -151,19 +140,21 @@ function jobOf(call: CallToPlan, loc: number, facts: PlanFacts): PlanJob {
     service,
     ...(Object.keys(serviceBy).length > 0 ? { serviceBy } : {}),
     calledAt: seconds(call.receivedAt),
-    weight,
     skills: call.skills,
-    ...(visit && visit.needs.length > 0 ? { part: kitOf(visit.needs) } : {}),
-    ...(visit?.window
-      ? { windows: [[seconds(visit.window.from), seconds(visit.window.to)] as const] }
-      : {}),
+    ...(visit && visit.needs.length > 0 ? { parts: visit.needs } : {}),
     ...(allowed ? { onlyTechnicians: allowed } : {}),
-    deadlines: lossDeadlines(live, {
-      now,
-      serviceSeconds: longest,
-      weights: { medicine: settings.medicineWeight, household: settings.householdWeight },
-      householdAtRisk: call.householdAtRisk,
-    }),
+    ...posedCall(
+      {
+        stakes: lossStakes(call.compartments, {
+          now,
+          serviceSeconds: longest,
+          weights: { medicine: settings.medicineWeight, household: settings.householdWeight },
+          householdAtRisk: call.householdAtRisk,
+        }),
+        window: visit?.window ? [seconds(visit.window.from), seconds(visit.window.to)] : null,
+      },
+      { now: seconds(now), ...settings },
+    ),
   };
 }
 

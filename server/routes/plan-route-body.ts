@@ -3,10 +3,8 @@ import { MINUTE_MS, type Instant } from '@shared/domain/instant';
 import type { StopReason } from '@shared/domain/planner/plan-summary';
 import type { Plan, PlanRoute } from '@shared/domain/planner/problem';
 import { heldCount, isUnderWay } from '@shared/domain/route-rules';
-import type { Part } from '@shared/domain/skills';
 import { minutesInWords } from '@shared/domain/urgency';
 import type { PlannerResponse } from '../workers/planner-client';
-import { partsOfKit } from './part-kits';
 import type { PlanFacts, TechnicianToPlan } from './plan-facts';
 import { centsOf, savedAt, savedOf } from './plan-figures';
 import { mayBePlanned, type Problem } from './plan-problem';
@@ -56,20 +54,12 @@ export function stopsOf(
         because: why
           ? KEPT_WORDS[why]
           : because(facts, stop.job, stop.finish * 1000, reasons.get(stop.job)),
-        ...(fetched ? { fetches: fetchedParts(fetched.parts ?? {}) } : {}),
+        ...(fetched ? { fetches: fetched.parts } : {}),
         ...(gain === undefined ? {} : { gainCents: Math.round(gain * 100) }),
       };
     }),
   );
   return [...asTheyStand, ...planned];
-}
-
-/** The planner fetches whole repairs; people fetch parts. */
-function fetchedParts(kits: Readonly<Record<string, number>>): Partial<Record<Part, number>> {
-  const parts = new Map<Part, number>();
-  for (const [kit, count] of Object.entries(kits))
-    for (const part of partsOfKit(kit)) parts.set(part, (parts.get(part) ?? 0) + count);
-  return Object.fromEntries(parts);
 }
 
 /** Breaks and the stop at the store. */

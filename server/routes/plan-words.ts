@@ -5,11 +5,10 @@ import type {
   WhyUnplanned,
 } from '@shared/domain/planner/explain-unplanned';
 import type { UnassignedJob } from '@shared/domain/planner/problem';
-import { PART_WORDS, type Skill } from '@shared/domain/skills';
+import { PART_WORDS, PARTS, type Part, type Skill } from '@shared/domain/skills';
 import { minutesInWords } from '@shared/domain/urgency';
 import { wallClock } from '../texts/text-hours';
 import type { KeptStop } from './kept-stops';
-import { partsOfKit } from './part-kits';
 
 export interface Names {
   /** A technician's name, by id. */
@@ -35,7 +34,7 @@ export function unplannedWords(
   why: WhyUnplanned | undefined,
   names: Names,
 ): Pick<PlanDto['unplanned'][number], 'words' | 'help'> {
-  const words = sentence(left.because, (kit) => kitWords(kit));
+  const words = sentence(left.because);
   const cheapest = left.reason === 'capacity' ? why?.cheapest : null;
   const help = (why?.helps ?? []).map((one) => helpWords(one, names));
   return {
@@ -44,14 +43,12 @@ export function unplannedWords(
   };
 }
 
-/** A kit's name stands for its parts. */
-const sentence = (words: string, kitSaid: (kit: string) => string): string =>
-  words.replace(/[a-z-]+(\+[a-z-]+)+/g, kitSaid);
+/** The planner knows parts by their names alone. */
+const sentence = (words: string): string =>
+  words.replace(/[a-z]+(-[a-z]+)*/g, (word) => partWords(word));
 
-const kitWords = (kit: string): string =>
-  partsOfKit(kit)
-    .map((part) => PART_WORDS[part])
-    .join(', ');
+const partWords = (name: string): string =>
+  (PARTS as readonly string[]).includes(name) ? PART_WORDS[name as Part] : name;
 
 function cheapestWords(place: CheapestPlace, { nameOf, zone }: Names): string {
   const costs = [
@@ -77,7 +74,7 @@ function helpWords(help: Relaxation, { nameOf, zone }: Names): string {
       return `Any technician ${who}${until} (from the place of ${name}: ${at(help.start, zone)})`;
     }
     case 'part':
-      return `One more on a van: ${kitWords(help.part ?? '')} (${there})`;
+      return `More on a van: ${(help.parts ?? []).map(partWords).join(', ')} (${there})`;
     case 'overtime':
       return `Overtime for ${name}, ${minutesInWords(help.overtimeMinutes ?? 0)} in all: there at ${at(help.start, zone)}`;
     case 'declined':

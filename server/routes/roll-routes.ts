@@ -2,6 +2,7 @@ import { randomUUID } from 'node:crypto';
 import type { PlanDto } from '@shared/contract/routes';
 import { Refusal } from '@shared/domain/errors';
 import { MINUTE_MS, type Instant } from '@shared/domain/instant';
+import { isWorthChanging } from '@shared/domain/planner/pose';
 import { machine } from '../commands/actor';
 import { runCommand } from '../commands/run-command';
 import type { Context } from '../context';
@@ -118,7 +119,10 @@ async function planAndAct(context: Context, stormId: string, turn: Turn): Promis
   const { body, over } = await withinLimits(context, facts, turn.searchSeconds);
   const open = await proposedPlan(stormId);
   const gain = (body.gainCents ?? 0) / 100;
-  if (gain < facts.settings.automaticGainDollars || !changesAnything(facts, body)) {
+  if (
+    !isWorthChanging(gain, facts.settings.automaticGainDollars) ||
+    !changesAnything(facts, body)
+  ) {
     if (open?.proposedBy === AUTOMATIC) await withdraw(context, stormId, turn);
     else await endTurn(sequelize, stormId, turn.holder, turn.key);
     return 'no-gain';

@@ -4,7 +4,7 @@ import { HOUR_MS, type Instant } from '@shared/domain/instant';
 import type { TimeWindow } from '@shared/domain/route-times';
 import { serviceMinutesOf, type LearnedService } from '@shared/domain/service-times';
 import { CAUSES } from '@shared/domain/phone-check/causes';
-import { likeliestCause } from '@shared/domain/phone-check/likeliest-cause';
+import { likeliestCause, likeliestOfUnits } from '@shared/domain/phone-check/likeliest-cause';
 import type { Part } from '@shared/domain/skills';
 import { toldWindow } from '@shared/domain/texts/eta-moved';
 import { json, select } from '../db/sql';
@@ -14,9 +14,9 @@ export interface VisitFacts {
   /** The likeliest cause; `null` when nothing is known. */
   readonly cause: string | null;
   /**
-   * What the visit has to bring: of the likeliest cause the likeliest part, since its parts are one or
-   * the other (a short may be in the cord or in the heater), and who lacks one still finds the fault; of
-   * an unknown cause all that the call names.
+   * What the visit has to bring, for each cold unit: of its likeliest cause the likeliest part, since a
+   * cause's parts are one or the other (a short may be in the cord or in the heater), and who lacks one
+   * still finds the fault; of an unknown cause all that the call names. What two units take stands twice.
    */
   readonly needs: readonly Part[];
   /** Cold units of the call. */
@@ -65,13 +65,17 @@ export async function visitFacts(
           ? { from: row.window_from.getTime(), to: row.window_to.getTime() }
           : null;
       const told = row.told_eta_at && toldWindow(row.told_eta_at.getTime());
-      const cause = likeliestCause(json<string[]>(row.causes));
+      const causes = json<string[]>(row.causes);
+      const cause = likeliestCause(causes);
       const window = agreed ?? told;
       return [
         row.id,
         {
           cause,
-          needs: cause === null ? json<Part[]>(row.parts) : CAUSES[cause].parts.slice(0, 1),
+          needs:
+            cause === null
+              ? json<Part[]>(row.parts)
+              : likeliestOfUnits(causes).flatMap((one) => CAUSES[one].parts.slice(0, 1)),
           units: Number(row.units),
           window: window && window.to + PROMISE_STANDS_MS > now ? window : null,
         },

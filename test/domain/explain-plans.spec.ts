@@ -74,7 +74,7 @@ describe('explainUnplanned', () => {
     const asked = problem({
       jobs: [job('a', 3, { part: 'start-relay' }), job('b', 4, { onlyTechnicians: ['nobody'] })],
     });
-    expect(whyOf(asked, 'a')?.helps).toMatchObject([{ kind: 'part', part: 'start-relay' }]);
+    expect(whyOf(asked, 'a')?.helps).toMatchObject([{ kind: 'part', parts: ['start-relay'] }]);
     expect(whyOf(asked, 'b')?.helps).toMatchObject([{ kind: 'declined', technician: 'theo' }]);
   });
 

@@ -3,11 +3,11 @@ import { COMPARTMENT_KINDS } from '@shared/domain/cold-unit';
 import { HOUR_MS } from '@shared/domain/instant';
 import {
   latestStart,
-  lossDeadlines,
-  MOST_DEADLINES,
+  lossStakes,
   type CompartmentAtStake,
   type DeadlineSetting,
 } from '@shared/domain/planner/loss-deadlines';
+import { MOST_DEADLINES, posedCall, POSING, type Posing } from '@shared/domain/planner/pose';
 import { thawClock } from '@shared/domain/thaw/thaw-clock';
 import { aCompartment, aMedicine, at, LOST_AT, lossUntil } from './thaw-facts';
 
@@ -29,6 +29,20 @@ const atStake = (
   return { kind: facts.kind, valueCents, earliestAt, likelyAt, saveByAt };
 };
 
+const AT_ONCE = [{ secondsBefore: 0, share: 1 }];
+const EXACT: Posing = { foodSpread: AT_ONCE, medicineSpread: AT_ONCE, windowMargin: 0 };
+
+/** As the planner gets them; without margins unless asked. */
+const lossDeadlines = (
+  compartments: readonly CompartmentAtStake[],
+  told: DeadlineSetting,
+  posing = EXACT,
+) =>
+  posedCall(
+    { stakes: lossStakes(compartments, told), window: null },
+    { now: told.now / 1000, medicineWeight: 5, lateDollars: 0, posing },
+  ).deadlines;
+
 const halfFreezer = atStake(
   aCompartment('freezer', { door: 'shut', roomF: 72, fill: 0.5, valueCents: 200_00 }),
 );
@@ -37,7 +51,7 @@ const halfFreezer = atStake(
 const doneBy = (deadlines: ReturnType<typeof lossDeadlines>) =>
   deadlines.map((one) => (one.at + SERVICE + 1 - LOST_AT / 1000) / 3600);
 
-describe('lossDeadlines', () => {
+describe('lossStakes', () => {
   it('splits a freezer over its earliest, likely and published moments', () => {
     const deadlines = lossDeadlines([halfFreezer], setting(2));
     // A logged freezer counted as half full, 0 to 32 F in a room of 72 F: 30.51 and 38.46 times
@@ -96,14 +110,15 @@ describe('lossDeadlines', () => {
         : { kind, valueCents, earliestAt, likelyAt, saveByAt };
     });
 
-  it('keeps to four moments in order, loses no value, and is never later than a published limit', () => {
+  it('keeps to a few moments in order, loses no value, and is never later than a published limit', () => {
     fc.assert(
       fc.property(
         fc.array(someCompartment, { maxLength: 8 }),
         fc.integer({ min: 0, max: 60 }),
-        (compartments, hours) => {
+        fc.constantFrom(EXACT, POSING),
+        (compartments, hours, posing) => {
           const told = setting(hours);
-          const deadlines = lossDeadlines(compartments, told);
+          const deadlines = lossDeadlines(compartments, told, posing);
           const live = compartments.filter(
             ({ saveByAt }) => saveByAt !== null && saveByAt > told.now,
           );
@@ -132,7 +147,7 @@ describe('lossDeadlines', () => {
     fc.assert(
       fc.property(fc.array(someCompartment, { minLength: 1, maxLength: 8 }), (compartments) => {
         const told = setting(0);
-        const last = lossDeadlines(compartments, told).at(-1)?.at;
+        const last = lossDeadlines(compartments, told, POSING).at(-1)?.at;
         const limits = compartments
           .filter(({ valueCents, saveByAt }) => valueCents > 0 && saveByAt !== null)
           .flatMap(({ saveByAt }) => (saveByAt! > told.now ? [saveByAt!] : []));

@@ -9,6 +9,7 @@ import {
   type UnitToCheck,
 } from '@shared/domain/phone-check/call-check';
 import { coolingHeard } from '@shared/domain/phone-check/cooling-heard';
+import { likeliestOfUnits } from '@shared/domain/phone-check/likeliest-cause';
 import { conclude, nextQuestion, stepsSoFar } from '@shared/domain/phone-check/phone-check';
 
 const FRIDGE: UnitToCheck = { id: 'u1', kind: 'fridge-freezer', compressorStart: 'relay' };
@@ -114,6 +115,25 @@ describe('the phone check of a call with several units', () => {
           expect(found.outcome).toBe('visit');
       }),
     );
+  });
+});
+
+describe('likeliestOfUnits', () => {
+  it('has one cause for each unit that the words of the call name', () => {
+    const answers = { ...SAFE, doing: 'runs-warm', u2_doing: 'dead' };
+    const found = concludeCall(answers, [FRIDGE, CHEST])!;
+    const leading = found.ofUnits.map(({ causes }) => causes[0]?.cause);
+    const told = likeliestOfUnits(causeWords(found, ({ id }) => `unit ${id}`));
+    expect([...told].sort()).toEqual(leading.flatMap((cause) => cause ?? []).sort());
+    expect(told.length).toBeGreaterThan(0);
+  });
+
+  it('tells two units of one name apart', () => {
+    const start = 'The start relay, overload or run capacitor (likely): Freezer';
+    const both = likeliestOfUnits([start, start, 'The thermostat (possible): Freezer']);
+    expect(both).toHaveLength(2);
+    expect(new Set(both).size).toBe(1);
+    expect(likeliestOfUnits([])).toEqual([]);
   });
 });
 

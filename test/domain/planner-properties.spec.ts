@@ -1,4 +1,5 @@
 import fc from 'fast-check';
+import { partsOf } from '@shared/domain/planner/job-parts';
 import { plan } from '@shared/domain/planner/plan';
 import type { Plan, PlanProblem } from '@shared/domain/planner/problem';
 import { checkPlan } from '@shared/domain/planner/check-plan';
@@ -38,10 +39,10 @@ function expectSound(problem: PlanProblem, result: Plan): void {
     for (const job of jobs)
       expect(technician.skills).toEqual(expect.arrayContaining([...job.skills]));
     for (const part of ['start-relay', 'control-board']) {
-      const taken = stopsOf({ routes }).filter(
-        (id) => problem.jobs.find((job) => job.id === id)!.part === part,
-      ).length;
-      const frozenOnly = jobs.every((job) => job.part !== part);
+      const taken = stopsOf({ routes })
+        .flatMap((id) => partsOf(problem.jobs.find((job) => job.id === id)!))
+        .filter((one) => one === part).length;
+      const frozenOnly = jobs.every((job) => !partsOf(job).includes(part));
       if (!frozenOnly && !problem.shop)
         expect(taken).toBeLessThanOrEqual(technician.parts[part] ?? 0);
     }

@@ -180,6 +180,27 @@ describe('a call on no route', () => {
     ]);
   });
 
+  it('knows that two repairs share the last part, and brings both from the shop', () => {
+    const jobs = [
+      aJob('a', { parts: ['start-relay'], weight: 2 }),
+      aJob('b', { parts: ['start-relay', 'control-board', 'control-board'] }),
+    ];
+    const technician = aTechnician('t', { parts: { 'start-relay': 1, 'control-board': 2 } });
+    const alone = aProblem(jobs, [technician]);
+    expect(planned(alone).unassigned).toMatchObject([
+      {
+        job: 'b',
+        reason: 'part',
+        because: 'Other visits take the last on the vans of: start-relay and control-board (2).',
+      },
+    ]);
+    const withShop = aProblem(jobs, [technician], { shop: { loc: 2, seconds: 300 } });
+    const [route] = planned(withShop).routes;
+    expect(route?.stops).toHaveLength(2);
+    expect(route?.halts).toMatchObject([{ kind: 'shop', parts: { 'start-relay': 1 } }]);
+    expect(checkPlan(withShop, planned(withShop)).violations).toEqual([]);
+  });
+
   it('says that no shift is long enough', () => {
     const long = aJob('a', { service: 9 * HOUR });
     expect(reasons(aProblem([long], [aTechnician('t')]))).toEqual(['a: no_shift']);

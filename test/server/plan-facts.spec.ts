@@ -2,6 +2,7 @@ import { randomUUID } from 'node:crypto';
 import type { Settings } from '@shared/contract/office';
 import type { PlanDto, PlanTrialDto } from '@shared/contract/routes';
 import { HOUR_MS, MINUTE_MS } from '@shared/domain/instant';
+import { DEFAULT_PRICES } from '@shared/domain/planner/plan-prices';
 import { CallRecord } from '../../server/calls/call-record';
 import { select } from '../../server/db/sql';
 import { StopRecord } from '../../server/routes/stop-record';
@@ -202,7 +203,9 @@ describe('POST /api/storms/:stormId/plan-trials', () => {
     expect(dear.onlyAsSet).not.toEqual([]);
     expect((await tried({ driveDollarsPerHour: -1 })).status).toBe(422);
     expect(await select(server.sequelize, 'SELECT id FROM plans')).toEqual([]);
-    expect(((await ruth.call('settings')).body as Settings).driveDollarsPerHour).toBe(40);
+    expect(((await ruth.call('settings')).body as Settings).driveDollarsPerHour).toBe(
+      DEFAULT_PRICES.driveDollarsPerHour,
+    );
   });
 });
 

@@ -124,7 +124,7 @@ describe('routes that go on by themselves', () => {
     { limit: 'begins within the minutes that are kept', told: { automaticKeepMinutes: 480 } },
     { limit: 'belongs to somebody whose changes are used up', told: { changesPerHour: 0 } },
   ])('move no stop that $limit', async ({ told }) => {
-    // To and fro: any search would turn the order round.
+    // To and fro, and no price on other times: any search would turn the order round.
     for (const km of [9, 1, 8]) await put(ruth, await north(km), theo.technicianId, 100);
     const before = (await dayOf(theo)).stops.map(({ stop }) => stop.callId);
     const added = await north(2);
@@ -132,6 +132,7 @@ describe('routes that go on by themselves', () => {
       automaticRoutes: 'publish',
       automaticKeepMinutes: 0,
       promisedAheadMinutes: 720,
+      otherTimeDollars: 0,
       ...told,
     });
     expect(await rolls()).toBe('published');
@@ -142,7 +143,12 @@ describe('routes that go on by themselves', () => {
   it('change what they may: without these limits the same routes are turned round', async () => {
     for (const km of [9, 1, 8]) await put(ruth, await north(km), theo.technicianId, 100);
     const before = (await dayOf(theo)).stops.map(({ stop }) => stop.callId);
-    await set({ automaticRoutes: 'publish', automaticKeepMinutes: 0, automaticGainDollars: 1 });
+    await set({
+      automaticRoutes: 'publish',
+      automaticKeepMinutes: 0,
+      automaticGainDollars: 1,
+      otherTimeDollars: 0,
+    });
     expect(await rolls()).toBe('published');
     const after = (await dayOf(theo)).stops.map(({ stop }) => stop.callId);
     expect(after).not.toEqual(before);

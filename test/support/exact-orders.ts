@@ -1,3 +1,4 @@
+import { partsOf } from '@shared/domain/planner/job-parts';
 import type {
   PlanBreak,
   PlanJob,
@@ -84,7 +85,7 @@ export function bestOrders(
       if (mask & (1 << index)) continue;
       if (isOpen ? !mayGo[index] : opening[order.length] !== index) continue;
       const job = jobs[index]!;
-      const taken = isOpen && job.part !== undefined ? take(at, job.part, shop !== undefined) : at;
+      const taken = isOpen ? takeAll(at, partsOf(job), shop !== undefined) : at;
       if (!taken) continue;
       const drive = drives(at.place, job.loc);
       const service = job.serviceBy?.[technician.id] ?? job.service;
@@ -113,6 +114,13 @@ export function bestOrders(
     hasFetched: false,
   });
   return best;
+}
+
+/** The moment with these parts fewer; null where one of them is nowhere. */
+function takeAll(at: Moment, parts: readonly string[], hasShop: boolean): Moment | null {
+  let left: Moment | null = at;
+  for (const part of parts) left = left && take(left, part, hasShop);
+  return left;
 }
 
 /** The moment with one part fewer; null where neither van nor shop has it. */

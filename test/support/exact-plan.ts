@@ -1,9 +1,11 @@
 import {
   DEFAULT_WEIGHTS,
   type PlanProblem,
+  type PlanJob,
   type PlanTechnician,
   type PlanWeights,
 } from '@shared/domain/planner/problem';
+import { partsOf } from '@shared/domain/planner/job-parts';
 import { bestOrders, type Order } from './exact-orders';
 
 /** The cheapest plan of a small problem: its price and, for each shift, the order of its jobs. */
@@ -130,12 +132,12 @@ function vanAfter(
   mask: number,
 ): ReadonlyMap<string, number> {
   const van = new Map(Object.entries(technician.parts));
-  const use = (part: string | undefined): void => {
-    if (part !== undefined) van.set(part, Math.max(0, (van.get(part) ?? 0) - 1));
+  const use = (job: PlanJob): void => {
+    for (const part of partsOf(job)) van.set(part, Math.max(0, (van.get(part) ?? 0) - 1));
   };
-  for (const id of technician.frozen) use(jobs.find((job) => job.id === id)!.part);
+  for (const id of technician.frozen) use(jobs.find((job) => job.id === id)!);
   jobs.forEach((job, index) => {
-    if (mask & (1 << index) && !technician.frozen.includes(job.id)) use(job.part);
+    if (mask & (1 << index) && !technician.frozen.includes(job.id)) use(job);
   });
   return van;
 }
@@ -148,10 +150,12 @@ export function partsTaken(
   part: string,
 ): number {
   const takes = (accepted: boolean): number =>
-    jobs.filter(
-      (job, index) =>
-        mask & (1 << index) && job.part === part && technician.frozen.includes(job.id) === accepted,
-    ).length;
+    jobs
+      .filter(
+        (job, index) => mask & (1 << index) && technician.frozen.includes(job.id) === accepted,
+      )
+      .flatMap(partsOf)
+      .filter((one) => one === part).length;
   const van = Math.max(0, (technician.parts[part] ?? 0) - takes(true));
   return Math.max(0, takes(false) - van);
 }

@@ -54,6 +54,9 @@ export function everythingElse(
         : {}),
       ...(chance(0.08) ? { windows } : {}),
       ...(chance(0.15) ? { part: chance(0.6) ? 'start-relay' : 'control-board' } : {}),
+      ...(chance(0.08)
+        ? { parts: ['start-relay', chance(0.5) ? 'start-relay' : 'control-board'] }
+        : {}),
     };
   });
   const isShort = chance(0.4);

@@ -1,4 +1,4 @@
-import type { VanStock } from './check-van-stock';
+import { needsOf, type VanStock } from './check-van-stock';
 import type {
   PlanBreak,
   PlanHalt,
@@ -166,9 +166,10 @@ class RouteCheck {
     planned.add(job.id);
     const isFrozen = position < this.frozen.length;
     if (!isFrozen) this.checkRights(job);
-    const isEquipped = job.part === undefined || stock.take(this.person.id, job.part);
-    if (!isEquipped && !isFrozen)
-      refuse(`${this.person.id} has no ${job.part} left for ${job.id}.`);
+    for (const part of needsOf(job)) {
+      const isThere = stock.take(this.person.id, part);
+      if (!isThere && !isFrozen) refuse(`${this.person.id} has no ${part} left for ${job.id}.`);
+    }
 
     this.takeBreaks(position, () => {
       return beginning(job, this.clock + this.drive(job.loc)) + this.serviceOf(job);

@@ -1,5 +1,9 @@
 import type { PlanJob, PlanProblem, PlanRoute, PlanTechnician } from './problem';
 
+/** Every part that a visit takes, as the checker reads `part` and `parts`. */
+export const needsOf = (job: PlanJob | undefined): readonly string[] =>
+  job?.parts ?? (job?.part === undefined ? [] : [job.part]);
+
 /** What is left on the vans and in the shop, while a plan's routes are gone through in their order. */
 export class VanStock {
   private readonly vans: ReadonlyMap<string, Map<string, number>>;
@@ -33,12 +37,12 @@ export class VanStock {
     const lacking = new Map<string, number>();
     const held = route.shift === 0 ? person.frozen.length : 0;
     route.stops.forEach(({ job }, position) => {
-      const part = jobs.get(job)?.part;
-      if (part === undefined) return;
-      const onVan = left.get(part) ?? this.left(person.id, part);
-      left.set(part, Math.max(0, onVan - 1));
-      // An accepted visit is kept without its part too, so nobody drives to the shop for it.
-      if (onVan < 1 && position >= held) lacking.set(part, (lacking.get(part) ?? 0) + 1);
+      for (const part of needsOf(jobs.get(job))) {
+        const onVan = left.get(part) ?? this.left(person.id, part);
+        left.set(part, Math.max(0, onVan - 1));
+        // An accepted visit is kept without its part too, so nobody drives to the shop for it.
+        if (onVan < 1 && position >= held) lacking.set(part, (lacking.get(part) ?? 0) + 1);
+      }
     });
     return lacking;
   }

@@ -1,3 +1,4 @@
+import { counted, partsOf } from './job-parts';
 import { MalformedProblem } from './malformed-problem';
 import type { PlanJob, PlanProblem } from './problem';
 
@@ -5,8 +6,12 @@ import type { PlanJob, PlanProblem } from './problem';
 export interface CompiledParts {
   readonly partNames: readonly string[];
   readonly partCount: number;
-  /** Number of the part that the job takes, or -1. */
-  readonly part: Int32Array;
+  /** Whether a job takes any part, 0 or 1. */
+  readonly takesParts: Uint8Array;
+  /** What job j takes: places needOffset[j] up to needOffset[j + 1] of the next two. */
+  readonly needOffset: Int32Array;
+  readonly needPart: Int32Array;
+  readonly needCount: Int32Array;
   /** Parts on the vans, technician × partCount + part. */
   readonly stock: Int32Array;
   /** What accepted stops leave of them; never below 0. */
@@ -22,12 +27,10 @@ export function compiledParts(
   jobNumber: ReadonlyMap<string, number>,
 ): CompiledParts {
   const { technicians, shop } = problem;
-  const partNames = [...new Set(jobs.flatMap((job) => (job.part === undefined ? [] : [job.part])))];
+  const needs = jobs.map((job) => counted(partsOf(job)));
+  const partNames = [...new Set(needs.flatMap((need) => [...need.keys()]))];
   const numbers = new Map(partNames.map((name, index) => [name, index]));
   const partCount = partNames.length;
-  const part = Int32Array.from(jobs, (job) =>
-    job.part === undefined ? -1 : numbers.get(job.part)!,
-  );
   const stock = Int32Array.from(
     technicians.flatMap((technician) => partNames.map((name) => technician.parts[name] ?? 0)),
   );
@@ -37,18 +40,31 @@ export function compiledParts(
       const job = jobNumber.get(id);
       if (job === undefined)
         throw new MalformedProblem(`The accepted job ${id} is not in the problem.`);
-      const slot = t * partCount + part[job]!;
-      if (part[job]! >= 0) vanFree[slot] = Math.max(0, vanFree[slot]! - 1);
+      for (const [name, count] of needs[job]!) {
+        const slot = t * partCount + numbers.get(name)!;
+        vanFree[slot] = Math.max(0, vanFree[slot]! - count);
+      }
     }
   });
   return {
     partNames,
     partCount,
-    part,
+    takesParts: Uint8Array.from(needs, ({ size }) => Math.min(1, size)),
+    needOffset: offsets(needs.map(({ size }) => size)),
+    needPart: Int32Array.from(
+      needs.flatMap((need) => [...need.keys()].map((name) => numbers.get(name)!)),
+    ),
+    needCount: Int32Array.from(needs.flatMap((need) => [...need.values()])),
     stock,
     vanFree,
     shopParts: Float64Array.from(partNames, (name) =>
       !shop ? 0 : shop.parts ? (shop.parts[name] ?? 0) : Infinity,
     ),
   };
+}
+
+function offsets(sizes: readonly number[]): Int32Array {
+  const starts = new Int32Array(sizes.length + 1);
+  sizes.forEach((size, index) => (starts[index + 1] = starts[index]! + size));
+  return starts;
 }

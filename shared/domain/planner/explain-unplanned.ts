@@ -1,3 +1,4 @@
+import { counted, partsOf } from './job-parts';
 import { partProblem, withJob } from './part-problem';
 import { plan } from './plan';
 import {
@@ -22,7 +23,7 @@ export interface Relaxation {
   /** The last start that saves what this one saves; `null` when nothing is saved any more. */
   readonly before: number | null;
   readonly skills?: readonly string[];
-  readonly part?: string;
+  readonly parts?: readonly string[];
   readonly overtimeMinutes?: number;
 }
 
@@ -135,7 +136,7 @@ function relaxed(
       start,
       before: lastGoodStart(job, start),
       ...(kind === 'skill' ? { skills: missing(job, technician) } : {}),
-      ...(kind === 'part' && job.part !== undefined ? { part: job.part } : {}),
+      ...(kind === 'part' ? { parts: lackingParts(job, technician) } : {}),
       ...(kind === 'overtime' ? { overtimeMinutes: overtimeOf(loose, found) } : {}),
     },
   };
@@ -158,7 +159,7 @@ function loosened(
       return withTechnician(({ skills }) => ({ skills: [...skills, ...job.skills] }));
     case 'part':
       return withTechnician(({ parts }) => ({
-        parts: { ...parts, [job.part ?? '']: (parts[job.part ?? ''] ?? 0) + 1 },
+        parts: withMore(parts, counted(partsOf(job))),
       }));
     case 'overtime': {
       const { maxOvertime } = weightsOf(problem);
@@ -170,6 +171,25 @@ function loosened(
     case 'declined':
       return withJob(problem, job.id, { onlyTechnicians: [technicianId] });
   }
+}
+
+const withMore = (
+  parts: PlanTechnician['parts'],
+  more: ReadonlyMap<string, number>,
+): PlanTechnician['parts'] => ({
+  ...parts,
+  ...Object.fromEntries([...more].map(([part, count]) => [part, (parts[part] ?? 0) + count])),
+});
+
+/** What the van has none of, or, where only others take it, all that the job takes. */
+function lackingParts(job: PlanJob, { parts }: PlanTechnician): readonly string[] {
+  const left = new Map(Object.entries(parts));
+  const lacking = partsOf(job).filter((part) => {
+    const onVan = left.get(part) ?? 0;
+    left.set(part, onVan - 1);
+    return onVan < 1;
+  });
+  return lacking.length > 0 ? lacking : partsOf(job);
 }
 
 /** The cheapest route that can take the call without dropping anybody, whatever it then costs. */

@@ -143,7 +143,7 @@ export class Insertion {
     if (!this.allows[slot]) return;
     const route = plan.routes[r]!;
     const { technician } = route.from;
-    if (c.part[job]! >= 0) {
+    if (c.takesParts[job] === 1) {
       if (!plan.parts.hasFor(technician, job)) return;
       if (plan.parts.wouldLack(technician, job)) {
         if (this.detour.find(r, route, job, this.price)) this.offer(r, scan.gap, scan.price);

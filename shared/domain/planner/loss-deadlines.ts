@@ -1,6 +1,6 @@
 import type { CompartmentKind } from '../cold-unit';
 import type { Instant } from '../instant';
-import type { PlanDeadline } from './problem';
+import type { PosedStake } from './pose';
 
 /** What the planner has to know of a compartment. */
 export interface CompartmentAtStake {
@@ -27,9 +27,6 @@ export interface DeadlineSetting {
   readonly householdAtRisk: boolean;
 }
 
-/** The planner looks at this many moments of a call. */
-export const MOST_DEADLINES = 4;
-
 /**
  * What share of a value is counted lost at the earliest, the likely and the latest moment: our
  * estimate. Half stays for the published limit, until which nobody may call the contents lost.
@@ -38,71 +35,38 @@ const SHARES = { earliest: 0.15, likely: 0.35, latest: 0.5 } as const;
 
 /**
  * When the work on a call has to begin, and what is lost by beginning later: dollars, weighed. What
- * has come to its save-by, or has none, is in no deadline. A share whose moment has passed counts at the
- * next moment of the same contents, since until its limit all of it can still be saved.
- *
- * Of more than four moments the closest are joined at the earlier one; the last stays as it is, so
- * that a call which still has something to save says so.
- *
- * @returns in order; the values add up to those of everything that can still be saved
+ * has come to its save-by is at no stake, and what has none is lost at no moment.
  */
-export function lossDeadlines(
+export const lossStakes = (
   compartments: readonly CompartmentAtStake[],
   setting: DeadlineSetting,
-): PlanDeadline[] {
-  const all = compartments.flatMap((one) => deadlinesOf(one, setting));
-  return joined(all.sort((a, b) => a.at - b.at));
-}
+): PosedStake[] => compartments.flatMap((one) => stakesOf(one, setting));
 
 /** The planner counts in seconds, and a start at a deadline still keeps it: so strictly before the moment. */
 export const latestStart = (doneBefore: Instant, serviceSeconds: number): number =>
   Math.floor((doneBefore - 1) / 1000) - serviceSeconds;
 
-function deadlinesOf(
+function stakesOf(
   { kind, valueCents, earliestAt, likelyAt, saveByAt }: CompartmentAtStake,
   { now, serviceSeconds, weights, householdAtRisk }: DeadlineSetting,
-): PlanDeadline[] {
-  if (saveByAt === null || saveByAt <= now) return [];
-  const dollars =
+): PosedStake[] {
+  if (saveByAt !== null && saveByAt <= now) return [];
+  const isMedicine = kind === 'medicine';
+  const value =
     (valueCents / 100) *
-    (kind === 'medicine' ? weights.medicine : 1) *
+    (isMedicine ? weights.medicine : 1) *
     (householdAtRisk ? weights.household : 1);
-  const deadlines: PlanDeadline[] = [];
-  let passed = 0;
-  for (const [moment, share] of [
-    [earliestAt, SHARES.earliest],
-    [likelyAt ?? saveByAt, SHARES.likely],
-    [saveByAt, SHARES.latest],
-  ] as const) {
-    const at = latestStart(moment, serviceSeconds);
-    const isOver = moment < saveByAt && at < now / 1000;
-    if (isOver) passed += share;
-    else {
-      deadlines.push({ at, value: dollars * (share + passed) });
-      passed = 0;
-    }
-  }
-  return deadlines;
-}
-
-function joined(deadlines: PlanDeadline[]): PlanDeadline[] {
-  const left = deadlines.filter(({ value }) => value > 0);
-  const gapAfter = (i: number): number => left[i + 1]!.at - left[i]!.at;
-  for (let i = left.length - 2; i >= 0; i--) if (gapAfter(i) === 0) join(left, i);
-  while (left.length > MOST_DEADLINES) {
-    // What is lost by joining: the later value counts as lost for so much longer. The last one stays.
-    let best = 0;
-    let least = Infinity;
-    for (let i = 0; i < left.length - 2; i++) {
-      const price = gapAfter(i) * left[i + 1]!.value;
-      if (price < least) [best, least] = [i, price];
-    }
-    join(left, best);
-  }
-  return left;
-}
-
-function join(deadlines: PlanDeadline[], first: number): void {
-  const [a, b] = [deadlines[first]!, deadlines[first + 1]!];
-  deadlines.splice(first, 2, { at: a.at, value: a.value + b.value });
+  if (saveByAt === null) return [{ value, isMedicine, moments: [] }];
+  const moment = (at: Instant, share: number) => ({ at: latestStart(at, serviceSeconds), share });
+  return [
+    {
+      value,
+      isMedicine,
+      moments: [
+        moment(earliestAt, SHARES.earliest),
+        moment(likelyAt ?? saveByAt, SHARES.likely),
+        moment(saveByAt, SHARES.latest),
+      ],
+    },
+  ];
 }

@@ -31,19 +31,29 @@ export class PartsInUse {
     this.change(from, job, -1);
   }
 
-  /** Whether one more visit of this job is possible at all: part on the van, or at the shop. */
+  /** Whether one more visit of this job is possible at all: each part on the van, or at the shop. */
   hasFor(technician: number, job: number): boolean {
-    const part = this.c.part[job]!;
-    if (part < 0 || !this.wouldLack(technician, job)) return true;
-    return this.lacking[part]! < this.c.shopParts[part]!;
+    const { partCount, vanFree, shopParts, needOffset, needPart, needCount } = this.c;
+    const end = needOffset[job + 1]!;
+    for (let n = needOffset[job]!; n < end; n++) {
+      const part = needPart[n]!;
+      const slot = technician * partCount + part;
+      const onVan = Math.max(0, vanFree[slot]! - this.usedByTechnician[slot]!);
+      const lacks = needCount[n]! - onVan;
+      if (lacks > 0 && this.lacking[part]! + lacks > shopParts[part]!) return false;
+    }
+    return true;
   }
 
   /** Whether one more visit of this job would take a part that the van lacks. */
   wouldLack(technician: number, job: number): boolean {
-    const part = this.c.part[job]!;
-    if (part < 0) return false;
-    const slot = technician * this.c.partCount + part;
-    return this.usedByTechnician[slot]! >= this.c.vanFree[slot]!;
+    const { partCount, vanFree, needOffset, needPart, needCount } = this.c;
+    const end = needOffset[job + 1]!;
+    for (let n = needOffset[job]!; n < end; n++) {
+      const slot = technician * partCount + needPart[n]!;
+      if (this.usedByTechnician[slot]! + needCount[n]! > vanFree[slot]!) return true;
+    }
+    return false;
   }
 
   /** Parts that visits may still take from a van. */
@@ -125,23 +135,30 @@ export class PartsInUse {
     const { c, left } = this;
     for (let part = 0; part < c.partCount; part++) left[part] = this.leftBefore(route.from, part);
     for (let i = route.frozenCount; i < route.count; i++) {
-      const part = c.part[route.stops[i]!]!;
-      if (part >= 0 && --left[part]! < 0) return i;
+      const job = route.stops[i]!;
+      for (let n = c.needOffset[job]!; n < c.needOffset[job + 1]!; n++) {
+        const part = c.needPart[n]!;
+        left[part] = left[part]! - c.needCount[n]!;
+        if (left[part] < 0) return i;
+      }
     }
     return route.count;
   }
 
   private change(from: ShiftStart, job: number, by: 1 | -1): void {
-    const part = this.c.part[job]!;
-    if (part < 0) return;
-    const { partCount, vanFree } = this.c;
-    const slot = from.technician * partCount + part;
-    const before = Math.max(0, this.usedByTechnician[slot]! - vanFree[slot]!);
-    this.usedByTechnician[slot] = this.usedByTechnician[slot]! + by;
-    const after = Math.max(0, this.usedByTechnician[slot] - vanFree[slot]!);
-    this.lacking[part] = this.lacking[part]! + after - before;
-    const own = this.shiftIndex(from) * partCount + part;
-    this.used[own] = this.used[own]! + by;
+    const { partCount, vanFree, needOffset, needPart, needCount } = this.c;
+    const end = needOffset[job + 1]!;
+    for (let n = needOffset[job]!; n < end; n++) {
+      const part = needPart[n]!;
+      const more = by * needCount[n]!;
+      const slot = from.technician * partCount + part;
+      const before = Math.max(0, this.usedByTechnician[slot]! - vanFree[slot]!);
+      this.usedByTechnician[slot] = this.usedByTechnician[slot]! + more;
+      const after = Math.max(0, this.usedByTechnician[slot] - vanFree[slot]!);
+      this.lacking[part] = this.lacking[part]! + after - before;
+      const own = this.shiftIndex(from) * partCount + part;
+      this.used[own] = this.used[own]! + more;
+    }
   }
 
   private shiftIndex(from: ShiftStart): number {

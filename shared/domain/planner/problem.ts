@@ -67,6 +67,8 @@ export interface PlanJob {
   readonly skills: readonly string[];
   /** A part that the visit takes from the van. */
   readonly part?: string;
+  /** In place of `part`: all that the visit takes, what it takes twice named twice. */
+  readonly parts?: readonly string[];
   /**
    * Times agreed with the customer. An early arrival waits for the first window that is still open;
    * after the last one the visit starts at once and is late.

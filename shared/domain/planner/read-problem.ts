@@ -121,6 +121,7 @@ function readJob(job: Field, place: (field: Field) => number): PlanJob {
     weight: job.at('weight').amount(),
     skills: job.at('skills').list((skill) => skill.text()),
     ...given('part', job, (part) => part.name()),
+    ...given('parts', job, (parts) => parts.list((part) => part.name())),
     ...given('windows', job, (windows) => windows.list(readWindow)),
     ...given('deadlines', job, (deadlines) =>
       deadlines.list((one) => ({ at: one.at('at').number(), value: one.at('value').amount() })),

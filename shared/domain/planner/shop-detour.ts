@@ -18,11 +18,9 @@ export class ShopDetour {
   /** Whether the job fits for less than `below`; the place is then in the scan. */
   find(r: number, route: Route, job: number, below: number): boolean {
     const { scan } = this;
-    const { c, parts } = this.plan;
-    const part = c.part[job]!;
-    const left = parts.leftBefore(route.from, part);
-    if (this.usesOf(route, part, route.count) < left) {
-      // This route has one on the van still; a later shift of the technician is who lacks it then.
+    const { c } = this.plan;
+    if (this.mayPrecede(route, job, route.count)) {
+      // This route has them on the van still; a later shift of the technician is who lacks it then.
       const later = this.laterPrice(r, route, job);
       if (later === Infinity) return false;
       if (route.count === 0) return scan.empty(route, job, later, below);
@@ -37,8 +35,7 @@ export class ShopDetour {
       if (gap > route.frozenCount && this.lacksBefore(draft, gap)) break;
       draft.put(gap, c.jobCount);
       draft.refresh();
-      const mayPrecede = this.usesOf(draft, part, gap) < left;
-      const first = mayPrecede ? draft.frozenCount : gap + 1;
+      const first = this.mayPrecede(draft, job, gap) ? draft.frozenCount : gap + 1;
       if (scan.find(draft, job, first, draft.price - route.price, best, -1)) {
         bestGap = scan.gap;
         best = scan.price;
@@ -50,20 +47,38 @@ export class ShopDetour {
     return bestGap >= 0;
   }
 
-  /** Free visits among the first `until` stops that take a part. */
+  /** How many of a part the free visits among the first `until` stops take. */
   private usesOf(route: Route, part: number, until: number): number {
+    const { needOffset, needPart, needCount } = this.plan.c;
     let uses = 0;
     for (let i = route.frozenCount; i < until; i++) {
-      if (this.plan.c.part[route.stops[i]!] === part) uses++;
+      const job = route.stops[i]!;
+      const end = needOffset[job + 1]!;
+      for (let n = needOffset[job]!; n < end; n++) if (needPart[n] === part) uses += needCount[n]!;
     }
     return uses;
   }
 
-  /** Whether the last stop before a gap lacks its part. */
+  /** Whether the van has what a job takes after the free visits among the first `until` stops. */
+  private mayPrecede(route: Route, job: number, until: number): boolean {
+    const { needOffset, needPart, needCount } = this.plan.c;
+    for (let n = needOffset[job]!; n < needOffset[job + 1]!; n++) {
+      const part = needPart[n]!;
+      const left = this.plan.parts.leftBefore(route.from, part);
+      if (this.usesOf(route, part, until) + needCount[n]! > left) return false;
+    }
+    return true;
+  }
+
+  /** Whether the last stop before a gap lacks a part. */
   private lacksBefore(route: Route, gap: number): boolean {
-    const part = this.plan.c.part[route.stops[gap - 1]!]!;
-    if (part < 0) return false;
-    return this.usesOf(route, part, gap) > this.plan.parts.leftBefore(route.from, part);
+    const { needOffset, needPart } = this.plan.c;
+    const job = route.stops[gap - 1]!;
+    for (let n = needOffset[job]!; n < needOffset[job + 1]!; n++) {
+      const part = needPart[n]!;
+      if (this.usesOf(route, part, gap) > this.plan.parts.leftBefore(route.from, part)) return true;
+    }
+    return false;
   }
 
   /** What the later shifts of the technician cost more when this route takes one part more. */

@@ -1,4 +1,5 @@
 import type { CompiledProblem, ShiftStart } from './compiled-problem';
+import { counted, partsOf } from './job-parts';
 import { NO_WAY_SECONDS, type UnassignedJob } from './problem';
 import { Route } from './route';
 import type { WorkingPlan } from './working-plan';
@@ -23,7 +24,9 @@ export class UnassignedReasons {
     if (skilled.length === 0) return noSkill(job, c);
 
     const withPart = skilled.filter((t) => this.couldHavePart(t, job));
-    const name = c.problem.jobs[job]!.part;
+    const name = [...counted(partsOf(c.problem.jobs[job]!))]
+      .map(([part, count]) => (count > 1 ? `${part} (${count})` : part))
+      .join(' and ');
     if (withPart.length === 0) {
       const shop = c.hasShop ? ', nor has the shop any' : '';
       return { reason: 'part', because: `No van of those who may go carries: ${name}${shop}.` };
@@ -49,18 +52,28 @@ export class UnassignedReasons {
   }
 
   private couldHavePart(technician: number, job: number): boolean {
-    const { part, stock, partCount, shopParts } = this.c;
-    const needed = part[job]!;
-    if (needed < 0) return true;
-    return stock[technician * partCount + needed]! > 0 || shopParts[needed]! > 0;
+    const { needOffset, needPart, needCount, stock, partCount, shopParts } = this.c;
+    for (let n = needOffset[job]!; n < needOffset[job + 1]!; n++) {
+      const part = needPart[n]!;
+      if (stock[technician * partCount + part]! + shopParts[part]! < needCount[n]!) return false;
+    }
+    return true;
+  }
+
+  /** Whether the van lacks a part though only the accepted stops have taken theirs. */
+  private lacksAny(job: number, { technician }: ShiftStart): boolean {
+    const { needOffset, needPart, needCount, vanFree, partCount } = this.c;
+    for (let n = needOffset[job]!; n < needOffset[job + 1]!; n++) {
+      if (vanFree[technician * partCount + needPart[n]!]! < needCount[n]!) return true;
+    }
+    return false;
   }
 
   /** Whether the shift could hold this visit if it held nothing but its accepted stops. */
   private hasTime(job: number, shift: ShiftStart, s: number): boolean {
     const { c } = this;
     const draft = (this.drafts[s] ??= new Route(c, shift));
-    const part = c.part[job]!;
-    const isFetched = part >= 0 && c.vanFree[shift.technician * c.partCount + part] === 0;
+    const isFetched = this.lacksAny(job, shift);
     const last = draft.frozenCount;
     draft.replace(shift.frozen, last);
     if (isFetched && c.hasShop) draft.put(last, c.jobCount);

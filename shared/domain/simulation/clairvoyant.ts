@@ -1,7 +1,9 @@
 import { checkPlan } from '../planner/check-plan';
 import { plan } from '../planner/plan';
-import { POSING, type Posing } from '../planner/pose';
+import { DEFAULT_PRICES, weightsOf } from '../planner/plan-prices';
+import type { Posing } from '../planner/pose';
 import type { PlanProblem } from '../planner/problem';
+import { DEFAULT_WEIGHTS } from '../urgency';
 import { jobOf } from './rolling-policy';
 import type { StormOutcome } from './run-storm';
 import { MOST_OVERTIME, NEVER, type Storm } from './storm';
@@ -14,20 +16,16 @@ export function clairvoyantOutcome(
   storm: Storm,
   iterations: number,
 ): StormOutcome & { readonly invalidPlans: number } {
-  const exact = [{ seconds: 0, share: 1 }];
-  const posing: Posing = {
-    ...POSING,
-    deadlineSpread: exact,
-    medicineSpread: exact,
-    windowMargin: 0,
-  };
+  const exact = [{ secondsBefore: 0, share: 1 }];
+  const posing: Posing = { foodSpread: exact, medicineSpread: exact, windowMargin: 0 };
+  const told = { now: 0, medicineWeight: DEFAULT_WEIGHTS.medicine, ...DEFAULT_PRICES, posing };
   const calls = storm.calls.filter(({ cancelledAt }) => cancelledAt === NEVER);
   const problem: PlanProblem = {
     version: 1,
     now: 0,
     locations: storm.places,
     matrix: storm.actualDrive,
-    jobs: calls.map((call) => ({ ...jobOf(call, posing), service: call.actualService })),
+    jobs: calls.map((call) => ({ ...jobOf(call, told), service: call.actualService })),
     technicians: storm.technicians.map((technician) => ({
       id: technician.id,
       home: technician.home,
@@ -38,7 +36,7 @@ export function clairvoyantOutcome(
       shifts: technician.shifts,
       frozen: [],
     })),
-    weights: { maxOvertime: MOST_OVERTIME },
+    weights: { ...weightsOf(DEFAULT_PRICES), maxOvertime: MOST_OVERTIME },
   };
   const result = plan(problem, { iterations, seed: storm.seed });
   const starts = new Map(

@@ -1,12 +1,17 @@
 import { checkPlan } from '../planner/check-plan';
 import { plan } from '../planner/plan';
 import {
+  DEFAULT_LEAST_GAIN,
+  DEFAULT_PRICES,
+  weightsOf,
+  type PlanPrices,
+} from '../planner/plan-prices';
+import {
   isWorthChanging,
+  posedCall,
   POSING,
-  posedDeadlines,
-  posedPromise,
-  posedWindow,
   type Posing,
+  type PosingSetting,
 } from '../planner/pose';
 import type { Plan, PlanJob, PlanProblem, PlanRoute, PlanTechnician } from '../planner/problem';
 import {
@@ -16,13 +21,18 @@ import {
   type DispatchState,
   type Policy,
 } from './dispatch-state';
+import { DEFAULT_WEIGHTS } from '../urgency';
 import { expectedCalls } from './expected-calls';
 import { MOST_OVERTIME, type StormCall } from './storm';
 
 export interface RollingOptions {
   /** Rounds of search for each plan. */
   readonly iterations: number;
+  /** Other margins, prices and limits than the product's own, to try them. */
   readonly posing?: Posing;
+  readonly prices?: Partial<PlanPrices>;
+  readonly medicineWeight?: number;
+  readonly leastGain?: number;
   /** Plans also for calls that are likely to come: see expected-calls.ts. */
   readonly looksAhead?: boolean;
 }
@@ -37,7 +47,6 @@ export interface RollingFigures {
   changedStops: number;
 }
 
-const WEIGHT = { plain: 1, food: 2, medicine: 5 } as const;
 const SOON_SECONDS = 2 * 3600;
 const MOVED_SECONDS = 1800;
 /** Setting off for a window so early as to wait there at most so long. */
@@ -55,13 +64,14 @@ export class RollingPolicy implements Policy {
 
   decide(state: DispatchState): Decision {
     const problem = this.pose(state);
-    const { iterations, posing = POSING } = this.options;
+    const { iterations, leastGain = DEFAULT_LEAST_GAIN } = this.options;
     const repaired = this.checked(problem, plan(problem, { iterations: 0, seed: this.seed }));
     const improved = this.checked(
       problem,
       plan(problem, { iterations, seed: this.seed + this.figures.plans }),
     );
-    const chosen = isWorthChanging(repaired.cost, improved.cost, posing) ? improved : repaired;
+    const gain = repaired.cost - improved.cost;
+    const chosen = isWorthChanging(gain, leastGain) ? improved : repaired;
     this.countChanges(state, chosen);
     this.inForce = chosen.routes.map((route) => ({
       ...route,
@@ -73,15 +83,17 @@ export class RollingPolicy implements Policy {
 
   private pose(state: DispatchState): PlanProblem {
     const { storm, now } = state;
-    const posing = this.options.posing ?? POSING;
-    const jobs = state.open.map((call) => jobOf(call, posing));
+    const { posing = POSING, medicineWeight = DEFAULT_WEIGHTS.medicine } = this.options;
+    const prices = { ...DEFAULT_PRICES, ...this.options.prices };
+    const told = { now, posing, medicineWeight, ...prices };
+    const jobs = state.open.map((call) => jobOf(call, told));
     return {
       version: 1,
       now,
       locations: storm.places,
       matrix: storm.expectedDrive,
       jobs: this.options.looksAhead
-        ? [...jobs, ...expectedCalls(state, this.seed).map((call) => jobOf(call, posing))]
+        ? [...jobs, ...expectedCalls(state, this.seed).map((call) => jobOf(call, told))]
         : jobs,
       technicians: state.crew.map((member): PlanTechnician => {
         const { technician, shift } = member;
@@ -107,7 +119,7 @@ export class RollingPolicy implements Policy {
           return shift < 0 ? [] : [{ ...route, shift }];
         }),
       },
-      weights: { maxOvertime: MOST_OVERTIME, ...posing.weights },
+      weights: { ...weightsOf(prices), maxOvertime: MOST_OVERTIME },
     };
   }
 
@@ -168,27 +180,27 @@ function firstShift({ crew, now }: DispatchState, id: string): number {
 }
 
 /** A call as a planning job. */
-export function jobOf(call: StormCall, posing: Posing): PlanJob {
-  const kinds = call.stakes.map(({ kind }) => kind);
+export function jobOf(call: StormCall, told: PosingSetting): PlanJob {
   return {
     id: call.id,
     loc: call.place,
     service: Math.round(call.expectedService),
     calledAt: call.calledAt,
     earliest: call.readyAt,
-    weight: kinds.includes('medicine')
-      ? WEIGHT.medicine
-      : kinds.length > 0
-        ? WEIGHT.food
-        : WEIGHT.plain,
     skills: call.skills,
     ...(call.part === null ? {} : { part: call.part }),
-    ...(call.window ? { windows: [posedWindow(call.window, posing)] } : {}),
-    deadlines: [
-      ...call.stakes.flatMap(({ kind, at, value }) =>
-        posedDeadlines({ at, value, isMedicine: kind === 'medicine' }, posing),
-      ),
-      ...(call.window ? posedPromise(call.window, posing) : []),
-    ],
+    ...posedCall(
+      {
+        stakes: call.stakes
+          .filter(({ at }) => at >= told.now)
+          .map(({ kind, at, value }) => ({
+            value: kind === 'medicine' ? value * told.medicineWeight : value,
+            isMedicine: kind === 'medicine',
+            moments: [{ at, share: 1 }],
+          })),
+        window: call.window,
+      },
+      told,
+    ),
   };
 }
