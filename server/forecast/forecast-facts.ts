@@ -18,6 +18,8 @@ import type { Context } from '../context';
 import { asOfOneMoment } from '../db/transaction';
 import { readSettings } from '../office/settings';
 import { withBreaksDue } from '../routes/breaks-due';
+import { learnedVisits } from '../routes/measured-visits';
+import { visitFacts } from '../routes/visit-facts';
 import { findStorm } from '../storms/storm-queries';
 import { shiftsAhead } from '../technicians/lock-technicians';
 import { technicianDtos } from '../technicians/technician-rows';
@@ -31,11 +33,7 @@ import {
   type StopAhead,
 } from './forecast-rows';
 import { groupedBy } from './grouped-by';
-
-/** Until routes or measurements say more: our estimate of a drive in minutes. */
-const USUAL_DRIVE_MINUTES = 15;
-/** Fewer stops than this say little of the drives to come. */
-const ENOUGH_STOPS = 5;
+import { usualDrive, usualWork } from './usual-visits';
 
 /** Everything that a forecast is made from, as of one moment. @throws Refusal `not-found`, `storm-closed` */
 export function forecastFacts(context: Context, stormId: string): Promise<ForecastFacts> {
@@ -59,6 +57,12 @@ export function forecastFacts(context: Context, stormId: string): Promise<Foreca
     const open = calls.filter(({ state }) => !isSettled(state));
     const number = new Map(open.map(({ id }, i) => [id, i]));
     const inForce = stops.filter(({ state }) => state !== 'done');
+    const learned = await learnedVisits(sequelize, settings, tx);
+    const visits = await visitFacts(sequelize, [...number.keys()], now, tx);
+    const work = usualWork([...number.keys()], visits, settings, learned);
+    const doors = open.flatMap(({ state, lonLat }) =>
+      stageOf(state) === 'visit' && lonLat ? [lonLat] : [],
+    );
     const routes = groupedBy(inForce, ({ technicianId }) => technicianId);
     const { driveMinutes, serviceMinutes } = visitTimes(
       stops.flatMap(({ technicianId, travelAt, arrivedAt, endedAt }) =>
@@ -71,9 +75,10 @@ export function forecastFacts(context: Context, stormId: string): Promise<Foreca
       now,
       since: Math.min(storm.openedAt.getTime(), calls[0]?.receivedAt ?? now),
       zoneOffsetMs: DateTime.fromMillis(now, { zone: region.dto.timeZone }).offset * MINUTE_MS,
-      calls: open.map((call) =>
-        toForecastCall(call, checkingSince(call.state, changes.get(call.id))),
-      ),
+      calls: open.map((call, i) => ({
+        ...toForecastCall(call, checkingSince(call.state, changes.get(call.id))),
+        workTimes: work.workTimes[i] ?? 1,
+      })),
       patterns: [...counted.map(patternOf), ...USUAL_PATTERNS],
       stillToLose: counted
         .filter(({ state, restoredAt }) => isSettled(state) && restoredAt === null)
@@ -95,6 +100,7 @@ export function forecastFacts(context: Context, stormId: string): Promise<Foreca
             id: one.id,
             shifts: one.active ? (shifts.get(one.id) ?? []) : [],
             skills: bitsOf(one.skills),
+            pace: learned?.byTechnician.get(one.id)?.factor ?? 1,
             van: PARTS.map((part) => one.van[part] ?? 0),
             route: route.map(({ callId }) => number.get(callId)!),
             underWay: underWay(route[0]),
@@ -108,14 +114,15 @@ export function forecastFacts(context: Context, stormId: string): Promise<Foreca
         handleMinutes: seen.phone.handleMinutes,
       },
       visits: {
-        usualServiceMinutes: settings.serviceMinutes,
-        usualDriveMinutes: usualDrive(inForce),
+        usualServiceMinutes: work.usualServiceMinutes,
+        usualDriveMinutes: usualDrive(context, settings, inForce, doors),
         driveMinutes,
         serviceMinutes,
         ...seen.outcomes,
       },
       waiting: seen.waiting,
       hasVanStock: technicians.some(({ van }) => Object.values(van).some((count) => count > 0)),
+      ...(settings.shopPlace ? { store: { minutes: settings.shopMinutes } } : {}),
     };
   });
 }
@@ -173,10 +180,4 @@ function underWay(stop: StopAhead | undefined): ForecastTechnician['underWay'] {
     drivingSince: stop.travelAt,
     atDoorSince: stop.state === 'on-site' ? stop.arrivedAt : null,
   };
-}
-
-function usualDrive(stops: readonly StopAhead[]): number {
-  const drives = stops.map(({ driveMinutes }) => driveMinutes).filter((minutes) => minutes > 0);
-  if (drives.length < ENOUGH_STOPS) return USUAL_DRIVE_MINUTES;
-  return drives.reduce((sum, one) => sum + one, 0) / drives.length;
 }

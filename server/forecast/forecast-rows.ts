@@ -5,6 +5,7 @@ import type { StateChange } from '@shared/domain/forecast/seen';
 import type { PhoneCheckAnswers } from '@shared/domain/phone-check/phone-check';
 import type { RouteStopState } from '@shared/domain/route-rules';
 import type { Skill } from '@shared/domain/skills';
+import type { LonLat } from '@shared/domain/travel/great-circle';
 import { json, select } from '../db/sql';
 import { groupedBy } from './grouped-by';
 
@@ -16,6 +17,7 @@ export interface CallAhead {
   readonly settledAt: number | null;
   readonly restoredAt: number | null;
   readonly areaId: string | null;
+  readonly lonLat: LonLat | null;
   readonly skills: readonly Skill[];
   readonly answers: PhoneCheckAnswers;
   /** The first unit, which the phone check is about. */
@@ -39,11 +41,13 @@ export async function callsAhead(
     settled_at: Date | null;
     restored_at: Date | null;
     area_id: string | null;
+    lon: number | null;
+    lat: number | null;
     skills: unknown;
     phone_check: unknown;
   }>(
     sequelize,
-    `SELECT id, state, received_at, settled_at, restored_at, area_id, skills, phone_check
+    `SELECT id, state, received_at, settled_at, restored_at, area_id, lon, lat, skills, phone_check
        FROM calls WHERE storm_id = ? ORDER BY received_at, number`,
     [stormId],
     tx,
@@ -74,6 +78,7 @@ export async function callsAhead(
       settledAt: call.settled_at?.getTime() ?? null,
       restoredAt: call.restored_at?.getTime() ?? null,
       areaId: call.area_id,
+      lonLat: call.lon === null || call.lat === null ? null : [call.lon, call.lat],
       skills: json<Skill[]>(call.skills),
       answers: json<{ answers?: PhoneCheckAnswers }>(call.phone_check).answers ?? {},
       unit: first ? { kind: first.unit_kind, compressorStart: first.compressor_start } : null,

@@ -91,6 +91,31 @@ describe('a forecast without doubt', () => {
     expect((emptyAt.middle! - NOON) / HOUR_MS).toBeLessThan(23.5);
   });
 
+  it('counts what routes count at the doors: more units, and who takes longer', () => {
+    const facts = still();
+    const [call, ...others] = facts.calls;
+    const [technician] = facts.technicians;
+    const hours = (change: Partial<ForecastFacts>): number => {
+      const { emptyAt } = forecast({ ...facts, ...change }, { seed: 1, futures: 40 }).asItIs;
+      return (emptyAt.middle! - NOON) / HOUR_MS;
+    };
+    const plain = hours({});
+    // Of the hour, three quarters are work.
+    expect(hours({ calls: [{ ...call!, workTimes: 3 }, ...others] }) - plain).toBeCloseTo(1.5, 0);
+    expect(hours({ technicians: [{ ...technician!, pace: 1.5 }] }) - plain).toBeCloseTo(2.25, 0);
+  });
+
+  it('fetches at the store what a van lacks, in place of waiting for it', () => {
+    const facts = still();
+    const calls = facts.calls.map((call) => ({ ...call, parts: [[0, 1]] as const }));
+    const openAtTheEnd = (store?: ForecastFacts['store']): number => {
+      const told = { ...facts, calls, ...(store ? { store } : {}) };
+      return forecast(told, { seed: 1, futures: 40 }).asItIs.curve.at(-1)!.open.middle;
+    };
+    expect(openAtTheEnd()).toBeGreaterThan(2);
+    expect(openAtTheEnd({ minutes: 10 })).toBe(0);
+  });
+
   it('counts the breaks of a shift', () => {
     const facts = still();
     const [technician] = facts.technicians;

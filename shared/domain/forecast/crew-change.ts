@@ -1,4 +1,4 @@
-import { HOUR_MS } from '../instant';
+import { HOUR_MS, MINUTE_MS } from '../instant';
 import type { WorkShift } from '../route-rules';
 import { PARTS } from '../skills';
 import type { ForecastFacts, ForecastTechnician } from './facts';
@@ -50,6 +50,7 @@ export function crewOf(facts: ForecastFacts, change: CrewChange = NO_CHANGE): Cr
   ];
   return {
     phoneStaff: Math.max(1, facts.phone.staff + change.phoneStaff),
+    storeMs: facts.store ? facts.store.minutes * MINUTE_MS : null,
     technicians: all.map(({ technician }) => ({
       ...technician,
       shifts: longer(technician.shifts, change.overtimeHours),

@@ -25,6 +25,8 @@ export interface ForecastCall {
   /** Bits of the skills that a visit asks for. */
   readonly skills: number;
   readonly parts: PartChances;
+  /** How many usual visits its own is expected to take: more for several units, or by its likely cause. */
+  readonly workTimes?: number;
 }
 
 /** What was seen of a call, as a pattern for those to come: hours count from when it came in. */
@@ -45,6 +47,8 @@ export interface ForecastTechnician {
   /** Not over yet, in their order. */
   readonly shifts: readonly WorkShift[];
   readonly skills: number;
+  /** Times at the door against those of the others, as learned from visits; 1 while nothing is known. */
+  readonly pace?: number;
   /** How many of each part, by the part's number. */
   readonly van: readonly number[];
   /** The stops in force, as numbers of calls. The first may be under way. */
@@ -78,7 +82,7 @@ export interface ForecastFacts {
     readonly handleMinutes: readonly number[];
   };
   readonly visits: {
-    /** What the settings or the plans in force say, until visits have been measured. */
+    /** What the settings, earlier visits, plans in force and roads say, until visits have been measured. */
     readonly usualServiceMinutes: number;
     readonly usualDriveMinutes: number;
     readonly serviceMinutes: readonly number[];
@@ -92,4 +96,6 @@ export interface ForecastFacts {
   readonly waiting: { readonly ended: number; readonly hours: number };
   /** Whether anybody keeps count of what is on the vans. */
   readonly hasVanStock: boolean;
+  /** The company's store: minutes for a stop there. Left out where there is none. */
+  readonly store?: { readonly minutes: number };
 }

@@ -199,7 +199,7 @@ class Run {
 
   /** Sends a technician to the next stop of the route, else to the most urgent call, else to rest. */
   private seekWork(technician: number, at: Instant): void {
-    const { shifts, skills, route } = this.crew.technicians[technician]!;
+    const { shifts, skills, route, pace = 1 } = this.crew.technicians[technician]!;
     const shift = this.roster.shiftAt(technician, at);
     if (shift < 0) return this.leaveRoute(technician, at);
     const { startsAt, endsAt } = shifts[shift]!;
@@ -229,7 +229,9 @@ class Run {
     this.roster.works(technician);
     const { driveMs, serviceMs } = this.world.calls;
     const share = this.isCutShort(technician, call) ? DIAGNOSIS : 1;
-    this.heap.push(at + driveMs[call]! + share * serviceMs[call]!, technician * KINDS + IS_FREE);
+    const workMs = share * pace * serviceMs[call]!;
+    const freeAt = at + this.storeMs(technician, call) + driveMs[call]! + workMs;
+    this.heap.push(freeAt, technician * KINDS + IS_FREE);
   }
 
   /** At the end of a shift the routes are planned anew: what is left goes back to the line. */
@@ -246,9 +248,20 @@ class Run {
 
   private isCutShort(technician: number, call: number): boolean {
     if (this.isSecondVisit[call]) return false;
-    const part = this.world.calls.part[call]!;
     if (this.world.calls.firstVisitFails[call] === 1) return true;
-    return part >= 0 && !this.roster.has(technician, part);
+    return this.lacks(technician, call) && this.crew.storeMs === null;
+  }
+
+  private lacks(technician: number, call: number): boolean {
+    const part = this.world.calls.part[call]!;
+    return part >= 0 && !this.isSecondVisit[call] && !this.roster.has(technician, part);
+  }
+
+  /** The way by the store for a part that the van lacks, as long as one more drive. Our estimate. */
+  private storeMs(technician: number, call: number): number {
+    const { storeMs } = this.crew;
+    if (storeMs === null || !this.lacks(technician, call)) return 0;
+    return storeMs + this.world.calls.driveMs[call]!;
   }
 
   private finish(technician: number, at: Instant): void {
@@ -265,7 +278,9 @@ class Run {
       this.heap.push(at + calls.parkedMs[call]!, call * KINDS + COMES_BACK);
       return;
     }
-    if (part >= 0 && !this.isSecondVisit[call]) this.roster.uses(technician, part);
+    // What was fetched for this visit was never on the van.
+    const isFromVan = part >= 0 && !this.isSecondVisit[call] && !this.lacks(technician, call);
+    if (isFromVan) this.roster.uses(technician, part);
     this.settle(call, calls.isRepaired[call] === 1 ? at : Infinity);
   }
 

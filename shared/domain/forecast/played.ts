@@ -5,6 +5,8 @@ import type { ForecastTechnician } from './facts';
 export interface Crew {
   readonly phoneStaff: number;
   readonly technicians: readonly ForecastTechnician[];
+  /** What a stop at the store takes, without the drive; null where there is none. */
+  readonly storeMs: number | null;
   /** For each, its number in the facts, for what is left of the stop under way; -1 is none. */
   readonly known: readonly number[];
 }

@@ -16,7 +16,7 @@ export function restsOn(facts: ForecastFacts): readonly string[] {
       ? 'Settled by phone: our estimate of three in ten, until calls have been checked.'
       : `Settled by phone: ${String(phone.settledRunning + phone.settledOtherwise)} of ${plural(checks, 'call', 'calls')} checked so far.`,
     visits.serviceMinutes.length === 0
-      ? `Visits: ${String(visits.usualServiceMinutes)} minutes as in the settings, until visits have been measured.`
+      ? `Visits: ${String(Math.round(visits.usualServiceMinutes))} minutes as routes count them, until visits have been measured; drives: ${String(Math.round(visits.usualDriveMinutes))} minutes.`
       : `Visits and drives: as measured on ${plural(visits.serviceMinutes.length, 'visit', 'visits')}.`,
     working === 0
       ? 'Nobody has a shift ahead, so no visit is counted.'
@@ -25,6 +25,11 @@ export function restsOn(facts: ForecastFacts): readonly string[] {
     facts.hasVanStock
       ? 'Each van is filled up before each later shift to what it carries now, with two of each part at least.'
       : 'No van has parts entered: one visit in twelve or so orders a part, our estimate.',
-    'Roads, weather and the utility’s next plans are not foreseen.',
+    ...(facts.store && facts.hasVanStock
+      ? [
+          'A part that a van lacks is fetched at the store on the way: our estimate of a drive more and the minutes there.',
+        ]
+      : []),
+    'Weather and the utility’s next plans are not foreseen.',
   ];
 }

@@ -77,6 +77,7 @@ export function drawWorld(
     if (call.checkingSince !== null)
       calls.handleMs[i] =
         drawRest(draws, handle, (facts.now - call.checkingSince) / MINUTE_MS) * MINUTE_MS;
+    calls.serviceMs[i] = calls.serviceMs[i]! * (call.workTimes ?? 1);
     calls.at[i] = call.receivedAt;
     calls.skills[i] = call.skills;
     stakes.begin();
@@ -95,14 +96,15 @@ export function drawWorld(
       stakes.add(valueCents, hoursLeft === null ? Infinity : at + hoursLeft * HOUR_MS, isMedicine);
   }
 
-  const restMs = facts.technicians.map(({ underWay }) => {
+  const restMs = facts.technicians.map(({ underWay, route, pace = 1 }) => {
     if (!underWay) return 0;
     const { drivingSince, atDoorSince } = underWay;
+    const times = pace * (facts.calls[route[0] ?? -1]?.workTimes ?? 1);
     const minutes =
       atDoorSince === null
         ? drawRest(draws, drive, (facts.now - (drivingSince ?? facts.now)) / MINUTE_MS) +
-          drawMinutes(draws, service)
-        : drawRest(draws, service, (facts.now - atDoorSince) / MINUTE_MS);
+          times * drawMinutes(draws, service)
+        : times * drawRest(draws, service, (facts.now - atDoorSince) / MINUTE_MS / times);
     return minutes * MINUTE_MS;
   });
   return {

@@ -79,6 +79,8 @@ export function aForecast(outlook: Partial<OutlookDto> = {}): ForecastDto {
         },
       ],
     },
-    restsOn: ['Visits: 45 minutes as in the settings, until visits have been measured.'],
+    restsOn: [
+      'Visits: 45 minutes as routes count them, until visits have been measured; drives: 15 minutes.',
+    ],
   };
 }
