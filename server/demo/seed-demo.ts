@@ -11,6 +11,8 @@ import { runCommand, type Job } from '../commands/run-command';
 import type { Context } from '../context';
 import { change } from '../db/sql';
 import type { AddressPoint } from '../region/address-points';
+import { changeSettings } from '../office/change-settings';
+import { readSettings } from '../office/settings';
 import { DEMO_SEED } from '../region/demo-region';
 import { hashPassword, makePassphrase } from '../staff/passwords';
 import { UserRecord } from '../staff/user-record';
@@ -25,6 +27,7 @@ const CALLS = 240;
 /** Of the calls that were checked, these many hundredths were settled by phone. */
 const SETTLED_BY_PHONE = 0.3;
 const WAITING = 0.75;
+const BREAK_MINUTES = 30;
 
 /**
  * Fills an empty database with the demo's people and an open storm, by the same commands that
@@ -45,6 +48,7 @@ export async function seedDemo(
     JSON.stringify(signIns, null, 2),
     { mode: 0o600 },
   );
+  await seedStore(context, chance, addresses);
   await seedStorm(context, chance, addresses, now);
   // What households were told in the demo's past lies in the past: nothing of it is sent now.
   await change(
@@ -90,16 +94,43 @@ async function seedPeople(
     // On shift now and for the next days, whatever hour the demo is started at.
     for (let day = 0; day < 3; day++) {
       const startsAt = now + day * 24 * HOUR_MS - (day === 0 ? HOUR_MS : 0);
+      // Not all at once, so that somebody is always on the road.
+      const breakFrom = startsAt + (4 + (index % 3) / 2) * HOUR_MS;
       await ShiftRecord.create({
         id: chance.uuid(),
         technicianId: technician.id,
         startsAt: new Date(startsAt),
         endsAt: new Date(startsAt + 11 * HOUR_MS),
+        breaks: [{ from: breakFrom, to: breakFrom + HOUR_MS, minutes: BREAK_MINUTES }],
       });
     }
     await account(person, technician.id);
   }
   return signIns;
+}
+
+/** The company's store stands in the middle of its doors, so that a van that lacks a part has a way there. */
+async function seedStore(
+  context: Context,
+  chance: Chance,
+  addresses: readonly AddressPoint[],
+): Promise<void> {
+  const middle = (axis: 0 | 1): number =>
+    addresses.map(({ at }) => at[axis]).sort((a, b) => a - b)[addresses.length >> 1] ?? 0;
+  const [lon, lat] = [middle(0), middle(1)];
+  const far = ({ at }: AddressPoint): number => Math.hypot(at[0] - lon, at[1] - lat);
+  const store = addresses.reduce((best, one) => (far(one) < far(best) ? one : best));
+  const order = {
+    actor: machine('Demo'),
+    type: 'changeSettings',
+    commandId: chance.uuid(),
+    asked: null,
+  };
+  await runCommand(context, order, async (job) => {
+    const { version } = await readSettings(context.sequelize, job.tx);
+    await changeSettings(job, { commandId: order.commandId, version, shopPlace: [...store.at] });
+    return null;
+  });
 }
 
 async function seedStorm(
