@@ -6,8 +6,8 @@ import { Announce } from '../core/announce';
 import { Api, newId } from '../core/api';
 import { BoardStore } from '../core/board-store';
 import { Clock } from '../core/clock';
-import { ProblemError, problemWords } from '../core/problem-error';
 import { Zone } from '../core/zone';
+import { type AreaContent, changedOnly } from './area-content';
 import { type AreaGround, groundOf, isSameShape, NO_GROUND, shapeOf } from './area-ground';
 import { type AreaOverlap, overlapsWith } from './area-overlaps';
 import {
@@ -20,6 +20,8 @@ import {
   typeBack,
   typeOut,
 } from './area-times';
+import { Saving } from './saving';
+import { savedWords } from './area-words';
 import { addCorner, canClose, closed, crossesItself, type Outline, select } from './outline';
 
 /**
@@ -40,12 +42,12 @@ export class AreaEditor {
   private readonly groundNow = signal<AreaGround>(NO_GROUND);
   private readonly timesNow = signal<AreaTimes>(BLANK_TIMES);
   private readonly earlier = signal<readonly AreaGround[]>([]);
-  private readonly pending = signal(false);
-  private readonly trouble = signal('');
+  private readonly saving = new Saving<AreaDto>(
+    (current) => this.board.takeReply({ kind: 'areas', areas: [current], gone: [] }),
+    () => this.isGoneNow.set(this.base() !== null),
+  );
   private readonly isGoneNow = signal(false);
   private areaId = '';
-  /** The command that was sent last and its content; a repeat of the same is the same command. */
-  private sent = { id: '', content: '' };
 
   readonly isOpen = this.isOpenNow.asReadonly();
   readonly base = this.baseNow.asReadonly();
@@ -55,9 +57,9 @@ export class AreaEditor {
   /** As it would be saved; `null` as long as it encloses nothing. */
   readonly ground = computed<AreaShape | null>(() => shapeOf(this.groundNow()));
   readonly times = this.timesNow.asReadonly();
-  readonly isBusy = this.pending.asReadonly();
+  readonly isBusy = this.saving.isBusy;
   /** Why saving did not work. */
-  readonly problem = this.trouble.asReadonly();
+  readonly problem = this.saving.problem;
   readonly canMoveCorners = computed(() => {
     const whole = this.whole();
     return whole !== null && groundOf(whole).whole === null;
@@ -224,7 +226,7 @@ export class AreaEditor {
     }));
     if (isSameShape(this.ground(), base.shape)) this.groundNow.set(groundOf(theirs.shape));
     this.baseNow.set(theirs);
-    this.trouble.set('');
+    this.saving.say('');
   }
 
   /** Drops the person's own changes for what the other one saved. */
@@ -238,17 +240,17 @@ export class AreaEditor {
     this.baseNow.set(null);
     this.isGoneNow.set(false);
     this.areaId = newId();
-    this.trouble.set('');
+    this.saving.say('');
   }
 
   async save(): Promise<void> {
     const shape = this.ground();
     const times = this.times();
     const problem = !shape || this.isDrawing() ? OPEN_OUTLINE : problemIn(times);
-    this.trouble.set(this.crosses() ? CROSSING_OUTLINE : problem);
-    if (this.problem() !== '' || !shape || times.outAt === null || this.pending()) return;
+    this.saving.say(this.crosses() ? CROSSING_OUTLINE : problem);
+    if (this.problem() !== '' || !shape || times.outAt === null || this.isBusy()) return;
     if (this.theirs()) {
-      this.trouble.set('Somebody else changed this area. Decide first whose version stays.');
+      this.saving.say('Somebody else changed this area. Decide first whose version stays.');
       return;
     }
     const content = {
@@ -257,7 +259,7 @@ export class AreaEditor {
       outAt: times.outAt,
       backAt: times.isStillOut ? null : times.backAt,
     };
-    await this.run(async () => {
+    await this.saving.run(async () => {
       const inside = this.callsInside();
       const area = await this.send(content);
       this.board.takeReply({ kind: 'areas', areas: [area], gone: [] });
@@ -268,11 +270,14 @@ export class AreaEditor {
 
   async remove(): Promise<void> {
     const base = this.base();
-    if (!base || this.pending()) return;
-    await this.run(async () => {
+    if (!base || this.isBusy()) return;
+    await this.saving.run(async () => {
       await this.api.call('removeArea', {
         params: { areaId: base.id },
-        body: { commandId: this.commandFor(`remove ${base.version}`), version: base.version },
+        body: {
+          commandId: this.saving.commandFor(`remove ${base.version}`),
+          version: base.version,
+        },
       });
       this.board.takeReply({ kind: 'areas', areas: [], gone: [base.id] });
       this.close();
@@ -287,38 +292,15 @@ export class AreaEditor {
     if (!base) {
       const body = { areaId: this.areaId, ...content };
       const stormId = this.board.storm()?.id ?? '';
-      const commandId = this.commandFor(JSON.stringify(body));
+      const commandId = this.saving.commandFor(JSON.stringify(body));
       return this.api.call('drawArea', { params: { stormId }, body: { ...body, commandId } });
     }
     const body = { ...changedOnly(base, content), version: base.version };
-    const commandId = this.commandFor(JSON.stringify(body));
+    const commandId = this.saving.commandFor(JSON.stringify(body));
     return this.api.call('changeArea', {
       params: { areaId: base.id },
       body: { ...body, commandId },
     });
-  }
-
-  private async run(work: () => Promise<void>): Promise<void> {
-    this.pending.set(true);
-    try {
-      await work();
-    } catch (error) {
-      // Everything that was typed and drawn stays; the person decides.
-      if (!(error instanceof ProblemError)) throw error;
-      this.trouble.set(problemWords(error));
-      if (error.code === 'stale-version') {
-        const current = error.current as AreaDto | undefined;
-        if (current) this.board.takeReply({ kind: 'areas', areas: [current], gone: [] });
-      }
-      if (error.code === 'not-found' && this.base()) this.isGoneNow.set(true);
-    } finally {
-      this.pending.set(false);
-    }
-  }
-
-  private commandFor(content: string): string {
-    if (this.sent.content !== content) this.sent = { id: newId(), content };
-    return this.sent.id;
   }
 
   private start(base: AreaDto | null, ground: AreaGround, times: AreaTimes): void {
@@ -327,7 +309,7 @@ export class AreaEditor {
     this.groundNow.set(ground);
     this.timesNow.set(times);
     this.earlier.set([]);
-    this.trouble.set('');
+    this.saving.say('');
     this.isGoneNow.set(false);
     this.isOpenNow.set(true);
   }
@@ -337,25 +319,3 @@ export class AreaEditor {
 
 const OPEN_OUTLINE = 'Finish the outline first: it needs three corners.';
 const CROSSING_OUTLINE = 'The outline crosses itself. Move a corner until it does not.';
-
-function savedWords(area: AreaDto, inside: number): string {
-  const calls = inside === 1 ? '1 open call lies' : `${inside} open calls lie`;
-  if (inside === 0) return `${area.name} is saved. No open call lies inside.`;
-  const follow =
-    inside === 1
-      ? 'unless it has times of its own, it follows it now'
-      : 'those without times of their own follow it now';
-  return `${area.name} is saved. ${calls} inside; ${follow}.`;
-}
-
-type AreaContent = Pick<AreaDto, 'name' | 'shape' | 'outAt' | 'backAt'>;
-
-/** Only what the person changed, so that nothing else is written over. */
-function changedOnly(base: AreaDto, content: AreaContent): Partial<AreaContent> {
-  return {
-    ...(content.name === base.name ? {} : { name: content.name }),
-    ...(isSameShape(content.shape, base.shape) ? {} : { shape: content.shape }),
-    ...(content.outAt === base.outAt ? {} : { outAt: content.outAt }),
-    ...(content.backAt === base.backAt ? {} : { backAt: content.backAt }),
-  };
-}

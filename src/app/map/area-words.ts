@@ -25,3 +25,14 @@ export function pocketWords(
   if (nextSaveByAt !== null) parts.push(`by ${whenWords(nextSaveByAt, now, zone)}`);
   return parts.join(' · ');
 }
+
+/** What saving an area did, to its calls as well. */
+export function savedWords(area: AreaDto, inside: number): string {
+  const calls = inside === 1 ? '1 open call lies' : `${inside} open calls lie`;
+  if (inside === 0) return `${area.name} is saved. No open call lies inside.`;
+  const follow =
+    inside === 1
+      ? 'unless it has times of its own, it follows it now'
+      : 'those without times of their own follow it now';
+  return `${area.name} is saved. ${calls} inside; ${follow}.`;
+}

@@ -1,89 +1,60 @@
-import {
-  afterNextRender,
-  ChangeDetectionStrategy,
-  Component,
-  effect,
-  type ElementRef,
-  inject,
-  output,
-  signal,
-  viewChildren,
-} from '@angular/core';
-import { Theme } from '../core/theme';
-import { readInk } from './map-ink';
+import { ChangeDetectionStrategy, Component, output } from '@angular/core';
+import type { StormRoadKind } from '@shared/domain/roads/conditions';
+import { type LegendKey, LegendKeys } from './legend-keys';
 import { drawMark, type MarkLook } from './mark-sprites';
-import { StormRoadLegend } from './storm-road-legend';
+import { paintSign } from './storm-road-signs';
+import type { StormRoadTense } from './storm-road-words';
 
-const SIZE_PX = 34;
+const callKey = (
+  words: string,
+  kind: MarkLook['kind'],
+  press: MarkLook['press'],
+  more: Partial<MarkLook> = {},
+): LegendKey => ({
+  words,
+  draw: (ctx, ink) => {
+    // A mark may have a foot: it stands a little higher than its middle.
+    ctx.translate(0, -1);
+    drawMark(ctx, { kind, press, isOnRoute: false, hasDanger: false, ...more }, ink);
+  },
+});
 
-/** What the marks mean, drawn by the very code that draws them on the map. */
+const CALL_KEYS: readonly LegendKey[] = [
+  callKey('Second outline: the next is lost within the hour', 'freezer', 'now'),
+  callKey('Filled, warm: within four hours, or medicine at risk', 'freezer', 'soon'),
+  callKey('Filled, cold: later', 'freezer', 'later'),
+  callKey('Hollow: nothing left to save', 'freezer', 'none'),
+  callKey('F, round: fresh food', 'fresh-food', 'later'),
+  callKey('Z, six sides: freezer', 'freezer', 'later'),
+  callKey('M, on its tip: medicine', 'medicine', 'later'),
+  callKey('C, square: commercial stock', 'commercial-stock', 'later'),
+  callKey('With a foot: on a technician’s route', 'fresh-food', 'soon', { isOnRoute: true }),
+  callKey('With a triangle: somebody may be in danger', 'fresh-food', 'soon', { hasDanger: true }),
+];
+
+const stormRoadKey = (words: string, kind: StormRoadKind, tense: StormRoadTense): LegendKey => ({
+  words,
+  draw: (ctx, ink) => paintSign(ctx, { x: 0, y: 0 }, { kind, speedShare: 0.4 }, tense, ink),
+});
+
+const STORM_ROAD_KEYS: readonly LegendKey[] = [
+  stormRoadKey('A bar, crosses along the road: closed', 'closed', 'now'),
+  stormRoadKey('Waves, a double line: flooded', 'flooded', 'now'),
+  stormRoadKey('A number, dots: slow; percent of the usual speed', 'slow', 'now'),
+  stormRoadKey('Hollow, broken line: begins later, or is over', 'closed', 'later'),
+  stormRoadKey('A question mark: reported by a technician, not confirmed', 'flooded', 'reported'),
+];
+
+/** What the marks of the map mean. */
 @Component({
   selector: 'thaw-map-legend',
-  imports: [StormRoadLegend],
+  imports: [LegendKeys],
   templateUrl: './map-legend.html',
   styleUrls: ['./map-panel.scss', './map-legend.scss'],
   changeDetection: ChangeDetectionStrategy.OnPush,
 })
 export class MapLegend {
-  private readonly theme = inject(Theme);
   readonly closed = output();
-
-  private readonly canvases = viewChildren<ElementRef<HTMLCanvasElement>>('mark');
-  private readonly isRendered = signal(false);
-  protected readonly size = SIZE_PX;
-  protected readonly marks: readonly { readonly words: string; readonly look: MarkLook }[] = [
-    {
-      words: 'Second outline: the next is lost within the hour',
-      look: look('freezer', 'now'),
-    },
-    {
-      words: 'Filled, warm: within four hours, or medicine at risk',
-      look: look('freezer', 'soon'),
-    },
-    { words: 'Filled, cold: later', look: look('freezer', 'later') },
-    { words: 'Hollow: nothing left to save', look: look('freezer', 'none') },
-    { words: 'F, round: fresh food', look: look('fresh-food', 'later') },
-    { words: 'Z, six sides: freezer', look: look('freezer', 'later') },
-    { words: 'M, on its tip: medicine', look: look('medicine', 'later') },
-    { words: 'C, square: commercial stock', look: look('commercial-stock', 'later') },
-    {
-      words: 'With a foot: on a technician’s route',
-      look: look('fresh-food', 'soon', { isOnRoute: true }),
-    },
-    {
-      words: 'With a triangle: somebody may be in danger',
-      look: look('fresh-food', 'soon', { hasDanger: true }),
-    },
-  ];
-
-  constructor() {
-    afterNextRender(() => this.isRendered.set(true));
-    effect(() => {
-      this.theme.scheme();
-      this.theme.hasMoreContrast();
-      if (!this.isRendered()) return;
-      const canvases = this.canvases();
-      // The page's colours follow in the same turn; a frame later they are certain.
-      requestAnimationFrame(() => this.paint(canvases.map((one) => one.nativeElement)));
-    });
-  }
-
-  private paint(canvases: readonly HTMLCanvasElement[]): void {
-    const ink = readInk(this.theme);
-    const ratio = window.devicePixelRatio || 1;
-    canvases.forEach((canvas, i) => {
-      const mark = this.marks[i];
-      const ctx = canvas.getContext('2d');
-      if (!mark || !ctx) return;
-      canvas.width = canvas.height = SIZE_PX * ratio;
-      ctx.setTransform(ratio, 0, 0, ratio, (SIZE_PX / 2) * ratio, (SIZE_PX / 2 - 1) * ratio);
-      drawMark(ctx, mark.look, ink);
-    });
-  }
+  protected readonly calls = CALL_KEYS;
+  protected readonly stormRoads = STORM_ROAD_KEYS;
 }
-
-const look = (
-  kind: MarkLook['kind'],
-  press: MarkLook['press'],
-  more: Partial<MarkLook> = {},
-): MarkLook => ({ kind, press, isOnRoute: false, hasDanger: false, ...more });

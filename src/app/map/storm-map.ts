@@ -39,6 +39,7 @@ import { MapScenes } from './map-scenes';
 import { MapTops } from './map-tops';
 import { PinTool } from './pin-tool';
 import { scaleBar } from './scale-bar';
+import { StormRoadActs } from './storm-road-acts';
 import { StormRoadEditor } from './storm-road-editor';
 import { StormRoadForm } from './storm-road-form';
 import { metresPerPixel } from './world';
@@ -76,6 +77,7 @@ import { metresPerPixel } from './world';
     MapScenes,
     MapTops,
     PinTool,
+    StormRoadActs,
     StormRoadEditor,
   ],
 })

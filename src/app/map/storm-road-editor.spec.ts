@@ -10,6 +10,7 @@ import { Clock } from '../core/clock';
 import { ProblemError } from '../core/problem-error';
 import { aStorm, idOf, NOW, STORM_ID } from '../core/testing';
 import { Zone } from '../core/zone';
+import { StormRoadActs } from './storm-road-acts';
 import { StormRoadEditor } from './storm-road-editor';
 
 const POINTS: [number, number][] = [
@@ -54,6 +55,7 @@ function setUp() {
   const notices: { words: string; undo: (() => void) | undefined }[] = [];
   TestBed.configureTestingModule({
     providers: [
+      StormRoadActs,
       StormRoadEditor,
       { provide: Api, useValue: { call } },
       { provide: BoardStore, useValue: board },

@@ -30,6 +30,8 @@ import {
   typeEnd,
   typeStart,
 } from './storm-road-draft';
+import { Saving } from './saving';
+import { StormRoadActs } from './storm-road-acts';
 import { stormRoadChanges } from './storm-road-words';
 
 type Found = NonNullable<RoadStretch['stretch']>;
@@ -45,6 +47,7 @@ export class StormRoadEditor {
   private readonly clock = inject(Clock);
   private readonly zone = inject(Zone);
   private readonly announce = inject(Announce);
+  private readonly acts = inject(StormRoadActs);
 
   private readonly isOpenNow = signal(false);
   private readonly baseNow = signal<StormRoadDto | null>(null);
@@ -54,12 +57,12 @@ export class StormRoadEditor {
   private readonly stretchNow = signal<Found | null>(null);
   private readonly outlineNow = signal<Outline>(EMPTY_OUTLINE);
   private readonly earlier = signal<readonly Outline[]>([]);
-  private readonly pending = signal(false);
   private readonly seeking = signal(false);
-  private readonly trouble = signal('');
+  private readonly saving = new Saving<StormRoadDto>((current) =>
+    this.board.takeReply({ kind: 'storm-roads', roads: [current], gone: [] }),
+  );
   private roadId = '';
   private asked = 0;
-  private sent = { id: '', content: '' };
 
   readonly isOpen = this.isOpenNow.asReadonly();
   readonly base = this.baseNow.asReadonly();
@@ -68,9 +71,9 @@ export class StormRoadEditor {
   readonly drawsArea = this.drawsAreaNow.asReadonly();
   readonly picks = this.picksNow.asReadonly();
   readonly outline = this.outlineNow.asReadonly();
-  readonly isBusy = this.pending.asReadonly();
+  readonly isBusy = this.saving.isBusy;
   readonly isSeeking = this.seeking.asReadonly();
-  readonly problem = this.trouble.asReadonly();
+  readonly problem = this.saving.problem;
   readonly isDrawing = computed(
     () => this.isOpen() && this.drawsArea() && !this.outline().isClosed,
   );
@@ -130,7 +133,7 @@ export class StormRoadEditor {
   }
   setDrawsArea(drawsArea: boolean): void {
     this.drawsAreaNow.set(drawsArea);
-    this.trouble.set('');
+    this.saving.say('');
   }
 
   /** A place on the road: the first takes the whole piece between two junctions, a second the way between. */
@@ -199,52 +202,18 @@ export class StormRoadEditor {
   }
 
   async save(): Promise<void> {
-    if (this.pending()) return;
+    if (this.isBusy()) return;
     const read = contentOf(this.draft(), this.shapeNow());
-    if ('problem' in read) return this.trouble.set(read.problem);
+    if ('problem' in read) return this.saving.say(read.problem);
     if (this.drawsArea() && crossesItself(this.outline()))
-      return this.trouble.set('The outline crosses itself. Move a corner until it does not.');
+      return this.saving.say('The outline crosses itself. Move a corner until it does not.');
     if (this.theirs())
-      return this.trouble.set('Somebody else changed this. Decide first whose version stays.');
-    await this.run(async () => {
+      return this.saving.say('Somebody else changed this. Decide first whose version stays.');
+    await this.saving.run(async () => {
       const road = await this.send(read.content);
       this.board.takeReply({ kind: 'storm-roads', roads: [road], gone: [] });
       this.cancel();
-      this.announce.notice(`${road.name} is saved. Routes and arrival times follow.`, {
-        label: 'Undo',
-        run: () => void this.undoChange(road),
-      });
-    });
-  }
-
-  /** What is done with one of the list: confirmed, lifted, or its latest change taken back. */
-  async act(what: 'confirmStormRoad' | 'liftStormRoad', road: StormRoadDto): Promise<void> {
-    await this.tell(async () => {
-      const changed = await this.api.call(what, {
-        params: { stormRoadId: road.id },
-        body: { commandId: newId(), version: road.version },
-      });
-      this.board.takeReply({ kind: 'storm-roads', roads: [changed], gone: [] });
-      const words = what === 'liftStormRoad' ? 'is lifted' : 'is confirmed';
-      this.announce.notice(`${road.name} ${words}. Routes and arrival times follow.`, {
-        label: 'Undo',
-        run: () => void this.undoChange(changed),
-      });
-    });
-  }
-
-  async undoChange(road: StormRoadDto): Promise<void> {
-    await this.tell(async () => {
-      const { road: before } = await this.api.call('undoStormRoad', {
-        params: { stormRoadId: road.id },
-        body: { commandId: newId(), version: road.version },
-      });
-      this.board.takeReply({
-        kind: 'storm-roads',
-        roads: before ? [before] : [],
-        gone: before ? [] : [road.id],
-      });
-      this.announce.notice(`The latest change of ${road.name} is taken back.`);
+      this.acts.noticeOf(road, 'is saved');
     });
   }
 
@@ -262,7 +231,7 @@ export class StormRoadEditor {
     if (!from) return;
     const n = ++this.asked;
     this.seeking.set(true);
-    this.trouble.set('');
+    this.saving.say('');
     try {
       const { stretch } = await this.api.call('roadStretch', {
         query: {
@@ -275,7 +244,7 @@ export class StormRoadEditor {
       this.stretchNow.set(stretch);
       if (!stretch) {
         this.picksNow.set(picks.slice(0, -1));
-        this.trouble.set(
+        this.saving.say(
           to ? 'No way leads between these two places.' : 'No road is near that place.',
         );
         return;
@@ -285,7 +254,7 @@ export class StormRoadEditor {
       this.announce.say(this.stretchWords());
     } catch (error) {
       if (!(error instanceof ProblemError)) throw error;
-      if (n === this.asked) this.trouble.set(problemWords(error));
+      if (n === this.asked) this.saving.say(problemWords(error));
     } finally {
       if (n === this.asked) this.seeking.set(false);
     }
@@ -297,45 +266,14 @@ export class StormRoadEditor {
       const body = { stormRoadId: this.roadId, ...content };
       return this.api.call('addStormRoad', {
         params: { stormId: this.board.storm()?.id ?? '' },
-        body: { ...body, commandId: this.commandFor(JSON.stringify(body)) },
+        body: { ...body, commandId: this.saving.commandFor(JSON.stringify(body)) },
       });
     }
     const body = { ...changedContent(base, content), version: base.version };
     return this.api.call('changeStormRoad', {
       params: { stormRoadId: base.id },
-      body: { ...body, commandId: this.commandFor(JSON.stringify(body)) },
+      body: { ...body, commandId: this.saving.commandFor(JSON.stringify(body)) },
     });
-  }
-
-  private async run(work: () => Promise<void>): Promise<void> {
-    this.pending.set(true);
-    this.trouble.set('');
-    try {
-      await work();
-    } catch (error) {
-      // Everything that was typed and picked stays; the person decides.
-      if (!(error instanceof ProblemError)) throw error;
-      this.trouble.set(problemWords(error));
-      const current = error.current as StormRoadDto | undefined;
-      if (error.code === 'stale-version' && current)
-        this.board.takeReply({ kind: 'storm-roads', roads: [current], gone: [] });
-    } finally {
-      this.pending.set(false);
-    }
-  }
-
-  private async tell(work: () => Promise<void>): Promise<void> {
-    try {
-      await work();
-    } catch (error) {
-      if (!(error instanceof ProblemError)) throw error;
-      this.announce.notice(problemWords(error));
-    }
-  }
-
-  private commandFor(content: string): string {
-    if (this.sent.content !== content) this.sent = { id: newId(), content };
-    return this.sent.id;
   }
 
   private start(
@@ -347,7 +285,7 @@ export class StormRoadEditor {
     this.baseNow.set(base);
     this.draftNow.set(draft);
     this.takeShape(shape);
-    this.trouble.set('');
+    this.saving.say('');
     this.isOpenNow.set(true);
   }
 

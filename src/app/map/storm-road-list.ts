@@ -3,7 +3,7 @@ import type { StormRoadDto } from '@shared/contract/storm-roads';
 import { BoardStore } from '../core/board-store';
 import { Clock } from '../core/clock';
 import { Zone } from '../core/zone';
-import { StormRoadEditor } from './storm-road-editor';
+import { StormRoadActs } from './storm-road-acts';
 import { kindWords, spanWords, type StormRoadTense, tenseOf } from './storm-road-words';
 
 /** What waits for somebody comes first. */
@@ -21,7 +21,7 @@ export class StormRoadList {
   private readonly board = inject(BoardStore);
   private readonly clock = inject(Clock);
   private readonly zone = inject(Zone);
-  protected readonly editor = inject(StormRoadEditor);
+  protected readonly acts = inject(StormRoadActs);
 
   readonly drawn = output();
   readonly shown = output<StormRoadDto>();
