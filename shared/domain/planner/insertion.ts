@@ -84,7 +84,7 @@ export class Insertion {
    */
   insertNear(job: number, near: Neighbours): boolean {
     const { plan, c, scan } = this;
-    if (c.part[job]! >= 0) return this.insert(job, near, true);
+    if (c.takesParts[job] === 1) return this.insert(job, near, true);
     const below = c.absentPrice[job]!;
     this.route = scan.findNear(plan, job, near, this.allows, below, this.blinkIn);
     this.gap = scan.gap;
