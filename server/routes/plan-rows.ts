@@ -1,5 +1,6 @@
 import { Op, type Sequelize, type Transaction } from 'sequelize';
 import type { PlanDto } from '@shared/contract/routes';
+import { type AutomaticDone, automaticDoneOf } from '@shared/domain/automatic-done';
 import { PlanRecord } from './stop-record';
 
 /** What of a plan is stored as JSON. */
@@ -41,4 +42,17 @@ export async function proposedPlan(stormId: string, tx?: Transaction): Promise<P
     ...(tx ? { transaction: tx } : {}),
   });
   return record && toPlanDto(record);
+}
+
+/** What the automatic mode did, if the plan that was published last is its own. */
+export async function lastAutomatic(
+  stormId: string,
+  tx?: Transaction,
+): Promise<AutomaticDone | null> {
+  const record = await PlanRecord.findOne({
+    where: { stormId, state: 'published' },
+    order: [['proposedAt', 'DESC']],
+    ...(tx ? { transaction: tx } : {}),
+  });
+  return record && automaticDoneOf(toPlanDto(record));
 }

@@ -9,7 +9,7 @@ import type { Context } from '../context';
 import { isDuplicateOf, select } from '../db/sql';
 import { asOfOneMoment } from '../db/transaction';
 import type { SomeHandlers } from '../http/bind-routes';
-import { proposedPlan } from '../routes/plan-rows';
+import { lastAutomatic, proposedPlan } from '../routes/plan-rows';
 import { stopDtos } from '../routes/stop-rows';
 import { stormRoadDtos } from '../storm-roads/storm-road-rows';
 import { technicianDtos } from '../technicians/technician-rows';
@@ -76,6 +76,7 @@ export function boardPicture(context: Context, stormId: string): Promise<BoardPi
       areas: await areaDtos(context.sequelize, { stormId }, tx),
       stormRoads: await stormRoadDtos({ stormId, now }, tx),
       plan: await proposedPlan(stormId, tx),
+      automaticDone: await lastAutomatic(stormId, tx),
     };
   });
 }

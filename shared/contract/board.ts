@@ -1,10 +1,19 @@
 import { z } from 'zod';
 import { AreaDto } from './areas';
 import { CallRow } from './calls';
-import { Moment } from './common';
+import { Id, Moment } from './common';
 import { StormDto } from './office';
 import { PlanDto, StopDto, TechnicianDto } from './routes';
 import { StormRoadDto } from './storm-roads';
+
+/** What the automatic mode published last (`shared/domain/automatic-done.ts`). */
+const AutomaticDone = z.strictObject({
+  planId: Id,
+  at: Moment,
+  because: z.string(),
+  gainCents: z.int(),
+  moved: z.int(),
+});
 
 /** The whole picture of a storm as of change `n` of its board's stream. */
 export const BoardPicture = z.strictObject({
@@ -20,5 +29,7 @@ export const BoardPicture = z.strictObject({
   stormRoads: z.array(StormRoadDto),
   /** The newest proposal that nobody has published or discarded. */
   plan: PlanDto.nullable(),
+  /** `null` when a person published the routes in force, or nobody did. */
+  automaticDone: AutomaticDone.nullable(),
 });
 export type BoardPicture = z.infer<typeof BoardPicture>;

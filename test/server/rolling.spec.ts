@@ -4,6 +4,7 @@ import { randomUUID } from 'node:crypto';
 import { MINUTE_MS } from '@shared/domain/instant';
 import { change, select } from '../../server/db/sql';
 import { brokenInvariants } from '../../server/invariants/checks';
+import { boardPicture } from '../../server/storms/storm-routes';
 import { AUTOMATIC, newWatch, rollRoutes, type Rolled } from '../../server/routes/roll-routes';
 import { holdTurn, takeTurn } from '../../server/routes/rolling-lease';
 import { PlanRecord } from '../../server/routes/stop-record';
@@ -96,6 +97,9 @@ describe('routes that go on by themselves', () => {
     expect(await rolls()).toBe('published');
     expect(await stateOf(server, call.id)).toBe('offered');
     expect((await dayOf(theo)).stops).toHaveLength(1);
+    // Who opens the board later is told as well.
+    const { automaticDone } = await boardPicture(server.context, server.stormId);
+    expect(automaticDone).toMatchObject({ because: expect.any(String), moved: 0 });
     expect(await rolls()).toBe('no-gain');
     expect(await rolls()).toBe('nothing-new');
     const entries = await select<{ actor: string; command: string; summary: string }>(

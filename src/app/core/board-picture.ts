@@ -5,6 +5,7 @@ import type { Settings, StormDto } from '@shared/contract/office';
 import type { BoardChange } from '@shared/contract/realtime';
 import type { PlanDto, StopDto, TechnicianDto } from '@shared/contract/routes';
 import type { StormRoadDto } from '@shared/contract/storm-roads';
+import { type AutomaticDone, automaticDoneOf } from '@shared/domain/automatic-done';
 
 /** The board's rows by id. Immutable: a change makes a new one that shares what did not change. */
 export interface Picture {
@@ -17,6 +18,8 @@ export interface Picture {
   readonly stormRoads: ReadonlyMap<string, StormRoadDto>;
   /** A proposal that nobody has published or discarded. */
   readonly plan: PlanDto | null;
+  /** `null` when a person published the routes in force, or nobody did. */
+  readonly automaticDone: AutomaticDone | null;
   /** Newer than the sign-in's, when they were changed since. */
   readonly settings: Settings | null;
   /** Counts the changes that had texts in them, for lists of texts to look again. */
@@ -31,6 +34,7 @@ export const pictureOf = (sent: BoardPicture): Picture => ({
   areas: byId(sent.areas),
   stormRoads: byId(sent.stormRoads),
   plan: sent.plan,
+  automaticDone: sent.automaticDone,
   settings: null,
   messagesTick: 0,
 });
@@ -120,6 +124,8 @@ class PictureDraft {
 
   private writePlan(plan: PlanDto): void {
     const shown = this.next.plan;
+    if (plan.state === 'published')
+      this.next = { ...this.next, automaticDone: automaticDoneOf(plan) };
     if (plan.state === 'proposed') {
       if (shown?.id === plan.id && shown.version > plan.version) return;
       if (shown && shown.id !== plan.id && shown.proposedAt > plan.proposedAt) return;

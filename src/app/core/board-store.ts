@@ -64,6 +64,7 @@ export class BoardStore {
   readonly stormRoads = computed(() => this.picture()?.stormRoads ?? NONE);
   /** The newest proposal that nobody has published or discarded. */
   readonly plan = computed(() => this.picture()?.plan ?? null);
+  readonly automaticDone = computed(() => this.picture()?.automaticDone ?? null);
   readonly pockets = this.pocketsNow.asReadonly();
   /** Moves when texts have changed, for lists that fetch them. */
   readonly messagesTick = computed(() => this.picture()?.messagesTick ?? 0);

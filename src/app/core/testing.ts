@@ -195,6 +195,7 @@ export const aBoard = (change: Partial<BoardPicture> = {}): BoardPicture => ({
   areas: [],
   stormRoads: [],
   plan: null,
+  automaticDone: null,
   ...change,
 });
 

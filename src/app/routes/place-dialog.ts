@@ -1,5 +1,14 @@
-import { ChangeDetectionStrategy, Component, computed, inject, signal } from '@angular/core';
-import { MatAutocompleteModule } from '@angular/material/autocomplete';
+import {
+  afterNextRender,
+  ChangeDetectionStrategy,
+  Component,
+  computed,
+  effect,
+  ElementRef,
+  inject,
+  Injector,
+  signal,
+} from '@angular/core';
 import { MatButton } from '@angular/material/button';
 import {
   MAT_DIALOG_DATA,
@@ -43,7 +52,6 @@ interface Place {
 @Component({
   selector: 'thaw-place-dialog',
   imports: [
-    MatAutocompleteModule,
     MatButton,
     MatDialogActions,
     MatDialogClose,
@@ -58,40 +66,44 @@ interface Place {
     <form (submit)="$event.preventDefault(); submit()" novalidate>
       <mat-dialog-content>
         <p class="what">{{ question.call.name }}, {{ question.call.address.text }}</p>
-        <mat-form-field>
+        <mat-form-field subscriptSizing="dynamic">
           <mat-label>Technician</mat-label>
           <input
             #field
             matInput
             type="text"
+            role="combobox"
+            aria-expanded="true"
+            aria-autocomplete="list"
+            aria-controls="place-technicians"
+            [attr.aria-activedescendant]="row() && 'to-' + row()!.technician.id"
             autocomplete="off"
             cdkFocusInitial
             [value]="typed()"
-            [matAutocomplete]="list"
             (input)="type(field.value)"
             (focus)="field.select()"
+            (keydown)="press($event)"
           />
-          <mat-autocomplete
-            #list="matAutocomplete"
-            autoActiveFirstOption
-            (optionSelected)="choose($event.option.id.replace('to-', ''))"
-          >
-            @for (row of matching(); track row.technician.id) {
-              <mat-option
-                [id]="'to-' + row.technician.id"
-                [value]="row.technician.name"
-                [disabled]="lacks(row) !== ''"
-              >
-                {{ row.technician.name }}
-                <span class="soft">{{ lacks(row) || loadWords(row) }}</span>
-              </mat-option>
-            }
-          </mat-autocomplete>
-          @if (wrong()) {
-            <mat-hint class="wrong">{{ wrong() }}</mat-hint>
-          }
         </mat-form-field>
-        <mat-form-field>
+        <ul id="place-technicians" role="listbox" aria-label="Technicians" tabindex="-1">
+          @for (one of matching(); track one.technician.id) {
+            <!-- The keyboard chooses from the field above, as a combobox does. -->
+            <!-- eslint-disable-next-line @angular-eslint/template/click-events-have-key-events -->
+            <li
+              role="option"
+              tabindex="-1"
+              [id]="'to-' + one.technician.id"
+              [attr.aria-selected]="one === row()"
+              [attr.aria-disabled]="lacks(one) !== '' || null"
+              (click)="choose(one)"
+            >
+              {{ one.technician.name }}
+              <span class="soft">{{ lacks(one) || loadWords(one) }}</span>
+            </li>
+          }
+        </ul>
+        <p class="wrong" role="alert">{{ wrong() }}</p>
+        <mat-form-field subscriptSizing="dynamic">
           <mat-label>Place on the route</mat-label>
           <mat-select [value]="position()" (valueChange)="position.set($event)">
             @for (place of places(); track place.position) {
@@ -120,8 +132,39 @@ interface Place {
       margin-inline-start: var(--thaw-gap);
       font-size: var(--thaw-text-s);
     }
+    ul {
+      block-size: 190px;
+      margin: calc(-1 * var(--thaw-gap)) 0 0;
+      padding: 0;
+      overflow-y: auto;
+      scrollbar-width: thin;
+      border: 1px solid var(--thaw-rule);
+      border-radius: var(--thaw-radius);
+      list-style: none;
+    }
+    li {
+      padding: 5px 10px;
+      border-inline-start: 4px solid transparent;
+      cursor: pointer;
+    }
+    li[aria-selected='true'] {
+      border-color: var(--thaw-accent);
+      background: var(--thaw-accent-ground);
+    }
+    li[aria-disabled] {
+      color: var(--thaw-ink-soft);
+      cursor: default;
+    }
     .wrong {
       color: var(--thaw-danger);
+    }
+    .wrong:empty {
+      display: none;
+    }
+    @media (height < 620px) {
+      ul {
+        block-size: 118px;
+      }
     }
   `,
   changeDetection: ChangeDetectionStrategy.OnPush,
@@ -129,56 +172,77 @@ interface Place {
 export class PlaceDialog {
   private readonly dialog = inject<MatDialogRef<PlaceDialog, PlaceAnswer>>(MatDialogRef);
   private readonly zone = inject(Zone);
+  private readonly injector = inject(Injector);
+  private readonly host = inject<ElementRef<HTMLElement>>(ElementRef).nativeElement;
   protected readonly question = inject<PlaceQuestion>(MAT_DIALOG_DATA);
 
   private readonly chosenId = signal<string | null>(this.question.technicianId);
   protected readonly typed = signal(this.nameOf(this.question.technicianId));
-  protected readonly tried = signal(false);
-  private readonly row = computed(
+  private readonly tried = signal(false);
+  protected readonly row = computed(
     () => this.question.rows.find((row) => row.technician.id === this.chosenId()) ?? null,
   );
 
+  /** Whom the typed letters mean. A name that is chosen lists everybody, so that another can be taken. */
   protected readonly matching = computed(() => {
     const text = this.typed().trim().toLowerCase();
-    // A name that is already chosen lists everybody, so that another can be taken; but itself
-    // first, since Enter takes the first.
-    const chosen = this.row();
-    if (chosen?.technician.name.toLowerCase() === text) {
-      return [chosen, ...this.question.rows.filter((row) => row !== chosen)];
-    }
-    if (text === '') return this.question.rows;
-    return this.question.rows.filter(({ technician }) =>
-      technician.name
-        .toLowerCase()
-        .split(' ')
-        .some((part) => part.startsWith(text) || technician.name.toLowerCase().startsWith(text)),
-    );
+    if (text === '' || this.row()?.technician.name.toLowerCase() === text)
+      return this.question.rows;
+    return this.question.rows.filter(({ technician }) => {
+      const name = technician.name.toLowerCase();
+      return [name, ...name.split(' ')].some((part) => part.startsWith(text));
+    });
   });
+  private readonly able = computed(() => this.matching().filter((row) => this.lacks(row) === ''));
   protected readonly places = computed(() => this.placesOn(this.row()));
   protected readonly position = signal(this.firstPosition());
   protected readonly wrong = computed(() => {
-    if (!this.tried() || this.row() !== null) return '';
-    return this.typed().trim() === '' ? 'Which technician?' : 'No such technician who may do it.';
+    if (this.row() !== null) return '';
+    if (this.typed().trim() !== '' && this.able().length === 0)
+      return 'No technician of that name may do it.';
+    return this.tried() ? 'Which technician?' : '';
   });
 
-  protected type(text: string): void {
-    this.typed.set(text);
-    const exact = this.question.rows.find(
-      ({ technician }) => technician.name.toLowerCase() === text.trim().toLowerCase(),
-    );
-    this.take(exact?.technician.id ?? null);
+  constructor() {
+    effect(() => {
+      const row = this.row();
+      if (row)
+        afterNextRender(
+          () =>
+            this.host
+              .querySelector(`#to-${row.technician.id}`)
+              ?.scrollIntoView?.({ block: 'nearest' }),
+          { injector: this.injector },
+        );
+    });
   }
 
-  protected choose(technicianId: string): void {
-    this.typed.set(this.nameOf(technicianId));
-    this.take(technicianId);
+  /** The first who fits what is typed is chosen with it; Enter then puts the call there. */
+  protected type(text: string): void {
+    this.typed.set(text);
+    this.take(text.trim() === '' ? null : (this.able()[0]?.technician.id ?? null));
+  }
+
+  protected press(event: KeyboardEvent): void {
+    const step = { ArrowDown: 1, ArrowUp: -1 }[event.key];
+    if (step === undefined || event.altKey || event.ctrlKey || event.metaKey) return;
+    event.preventDefault();
+    const able = this.able();
+    const at = able.findIndex((row) => row === this.row());
+    const next = able[at < 0 ? 0 : Math.min(Math.max(at + step, 0), able.length - 1)];
+    if (next) this.choose(next);
+  }
+
+  protected choose(row: RouteRow): void {
+    if (this.lacks(row) !== '') return;
+    this.typed.set(row.technician.name);
+    this.take(row.technician.id);
   }
 
   protected submit(): void {
     this.tried.set(true);
-    const row = this.row() ?? this.onlyMatch();
+    const row = this.row();
     if (!row || this.lacks(row) !== '') return;
-    if (row.technician.id !== this.chosenId()) this.take(row.technician.id);
     this.dialog.close({ technicianId: row.technician.id, position: this.position() });
   }
 
@@ -196,11 +260,6 @@ export class PlaceDialog {
     if (technicianId === this.chosenId()) return;
     this.chosenId.set(technicianId);
     this.position.set(this.firstPosition());
-  }
-
-  private onlyMatch(): RouteRow | null {
-    const able = this.matching().filter((row) => this.lacks(row) === '');
-    return able.length === 1 ? (able[0] ?? null) : null;
   }
 
   /** Where it stands now, or else behind all others: that moves nobody's promise. */

@@ -37,6 +37,9 @@ const FIGURES: readonly FigureKind[] = [
   { label: 'On no route', of: (f) => f.leftOut, words: whole, good: 'less' },
 ];
 
+/** What routes cost; nothing while there are none. */
+const COSTS: ReadonlySet<string> = new Set(['Miles', 'Driving', 'Lateness', 'Overtime']);
+
 /** One set of figures against another, figure by figure. */
 export const comparedFigures = (figures: Figures, inForce: Figures): FigureLine[] =>
   FIGURES.flatMap(({ label, of, words, good }): FigureLine[] => {
@@ -53,7 +56,8 @@ export const comparedFigures = (figures: Figures, inForce: Figures): FigureLine[
         inForce: before,
         proposed: after,
         difference: `${words(Math.abs(is - was))} ${is > was ? 'more' : 'less'}`,
-        turn: turnOf(is - was, good),
+        // Beside no routes at all any drive is more: that is no loss.
+        turn: inForce.stops === 0 && COSTS.has(label) ? 'neither' : turnOf(is - was, good),
       },
     ];
   });

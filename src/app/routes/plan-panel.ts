@@ -1,16 +1,15 @@
 import { ChangeDetectionStrategy, Component, computed, inject, input, output } from '@angular/core';
-import { MatIcon } from '@angular/material/icon';
 import type { CallRow } from '@shared/contract/calls';
 import type { PlanDto, StopDto, TechnicianDto } from '@shared/contract/routes';
 import type { Instant } from '@shared/domain/instant';
-import { ago, money } from '../core/zone';
+import { ago, money, Zone } from '../core/zone';
 import { changesByTechnician, changeWords, figureLines, routeWords } from './plan-comparison';
-import { Zone } from '../core/zone';
+import { PlanFiguresTable } from './plan-figures-table';
 
 /** The proposal beside the routes in force: what it saves and costs, and what it changes for whom. */
 @Component({
   selector: 'thaw-plan-panel',
-  imports: [MatIcon],
+  imports: [PlanFiguresTable],
   template: `
     <h2>
       Proposal
@@ -24,52 +23,17 @@ import { Zone } from '../core/zone';
         }
       </p>
     }
-    <table>
-      <caption class="visually-hidden">
-        The proposal against the routes in force
-      </caption>
-      <thead>
-        <tr>
-          <td></td>
-          <th scope="col">In force</th>
-          <th scope="col">Proposed</th>
-          <th scope="col">Difference</th>
-        </tr>
-      </thead>
-      <tbody>
-        @for (line of figures(); track line.label) {
-          <tr>
-            <th scope="row">{{ line.label }}</th>
-            <td>{{ line.inForce }}</td>
-            <td>{{ line.proposed }}</td>
-            <td class="turn" [class]="line.turn">
-              @if (line.turn === 'better') {
-                <mat-icon svgIcon="check" aria-hidden="true" />
-                <span class="visually-hidden">better: </span>
-              } @else if (line.turn === 'worse') {
-                <mat-icon svgIcon="warning" aria-hidden="true" />
-                <span class="visually-hidden">worse: </span>
-              }
-              {{ line.difference }}
-            </td>
-          </tr>
-        }
-      </tbody>
-    </table>
+    <thaw-plan-figures-table
+      caption="The proposal against the routes in force"
+      [plans]="['In force', 'Proposed']"
+      [rows]="figures()"
+    />
     @if (gain(); as words) {
       <p class="soft source">{{ words }}</p>
     }
     @if (plan().drivesFrom; as source) {
       <p class="soft source">Drives: {{ source }}</p>
     }
-    <div class="acts">
-      <button type="button" class="plain main" [disabled]="isBusy()" (click)="published.emit()">
-        Publish <kbd>Ctrl Enter</kbd>
-      </button>
-      <button type="button" class="plain" [disabled]="isBusy()" (click)="discarded.emit()">
-        Discard <kbd>X</kbd>
-      </button>
-    </div>
     <details [open]="changed().length > 0 && changed().length <= 4">
       <summary>{{ summary() }}</summary>
       <ul>
@@ -87,6 +51,14 @@ import { Zone } from '../core/zone';
         }
       </ul>
     </details>
+    <div class="acts">
+      <button type="button" class="plain main" [disabled]="isBusy()" (click)="published.emit()">
+        Publish <kbd>Ctrl Enter</kbd>
+      </button>
+      <button type="button" class="plain" [disabled]="isBusy()" (click)="discarded.emit()">
+        Discard <kbd>X</kbd>
+      </button>
+    </div>
   `,
   styleUrls: ['../intake/fields.scss', './plan-panel.scss'],
   changeDetection: ChangeDetectionStrategy.OnPush,
@@ -104,7 +76,14 @@ export class PlanPanel {
   readonly published = output();
   readonly discarded = output();
 
-  protected readonly figures = computed(() => figureLines(this.plan()));
+  protected readonly figures = computed(() =>
+    figureLines(this.plan()).map(({ label, inForce, proposed, difference, turn }) => ({
+      label,
+      figures: [inForce, proposed],
+      difference,
+      turn,
+    })),
+  );
   protected readonly age = computed(
     () =>
       `${this.zone.clockTime(this.plan().proposedAt)}, ${ago(this.plan().proposedAt, this.now())}`,

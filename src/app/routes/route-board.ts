@@ -1,4 +1,4 @@
-import { type CdkDragEnd, CdkDrag } from '@angular/cdk/drag-drop';
+import type { CdkDragEnd } from '@angular/cdk/drag-drop';
 import {
   afterNextRender,
   ChangeDetectionStrategy,
@@ -9,21 +9,18 @@ import {
   Injector,
   input,
   output,
-  signal,
 } from '@angular/core';
 import { MatIcon } from '@angular/material/icon';
 import type { Instant } from '@shared/domain/instant';
 import { MINUTE_MS } from '@shared/domain/instant';
-import { CompartmentGlyph } from '../board/compartment-glyph';
 import { SKILL_WORDS } from '../board/queue-words';
 import { whenWords } from '../board/time-words';
 import { ago, clockTime, dayTime, duration, Zone } from '../core/zone';
 import type { PlaceAnswer } from './place-dialog';
 import { heldCursor, isCursorMove, movedCursor, type RouteCursor } from './route-cursor';
-import type { ProposedView, RouteRow, StopView } from './route-rows';
+import { filledBy, RouteLane } from './route-lane';
+import type { RouteRow, StopView } from './route-rows';
 import {
-  blockOf,
-  type BlockPlace,
   type HourTick,
   placeAt,
   type RulerSpan,
@@ -32,22 +29,16 @@ import {
   widthOf,
   xOf,
 } from './route-ruler';
-import { verdictShort, verdictWords } from './save-verdict';
-import { isFirmStop, STOP_STATE_WORDS } from './stop-words';
 
-/** Room for "21 min", and for the number alone. */
-const DRIVE_WORDS_PX = 44;
-const DRIVE_NUMBER_PX = 18;
 /** An hour's label closer than this to the label of now would lie under it. */
 const LABEL_PX = 52;
+/** What has been stays in sight this far. */
+const BEFORE_NOW_PX = 48;
 
-/**
- * All routes under each other on one ruler of time. Every stop is a block in its place, with the
- * drive before it, its state as a shape and a word, and whether it comes before the next save-by.
- */
+/** All routes under each other on one ruler of time, with a cursor that moves over their stops. */
 @Component({
   selector: 'thaw-route-board',
-  imports: [CdkDrag, CompartmentGlyph, MatIcon],
+  imports: [MatIcon, RouteLane],
   templateUrl: './route-board.html',
   styleUrl: './route-board.scss',
   changeDetection: ChangeDetectionStrategy.OnPush,
@@ -62,8 +53,6 @@ export class RouteBoard {
   readonly pxPerHour = input.required<number>();
   readonly now = input.required<Instant>();
   readonly cursor = input.required<RouteCursor | null>();
-  /** Whether each row has a second lane with the proposal. */
-  readonly hasProposal = input(false);
 
   readonly cursorMoved = output<RouteCursor>();
   /** Dragged there; the same as answering the dialog. */
@@ -71,10 +60,8 @@ export class RouteBoard {
   /** Enter or a double click on a stop. */
   readonly opened = output<StopView>();
 
-  protected readonly stateWords = STOP_STATE_WORDS;
-  protected readonly isFirm = isFirmStop;
+  protected readonly filled = filledBy;
   protected readonly held = computed(() => heldCursor(this.rows(), this.cursor()));
-  protected readonly hovered = signal<string | null>(null);
   protected readonly width = computed(() => widthOf(this.span(), this.pxPerHour()));
   protected readonly nowX = computed(() => xOf(this.now(), this.span(), this.pxPerHour()));
   protected readonly ticks = computed(() =>
@@ -86,6 +73,23 @@ export class RouteBoard {
     ),
   );
 
+  constructor() {
+    afterNextRender(() => this.showNow());
+  }
+
+  /** Changes the zoom around the left edge of what is in sight. */
+  keepLeftEdge(zoom: () => void): void {
+    const scroll = this.host.querySelector('.scroll');
+    const hours = (scroll?.scrollLeft ?? 0) / this.pxPerHour();
+    zoom();
+    afterNextRender(
+      () => {
+        if (scroll) scroll.scrollLeft = hours * this.pxPerHour();
+      },
+      { injector: this.injector },
+    );
+  }
+
   /** Puts the keyboard on the cursor and brings it into sight. */
   focus(): void {
     afterNextRender(
@@ -96,7 +100,8 @@ export class RouteBoard {
 
   /** Moves the ruler so that now stands near its left end. */
   showNow(): void {
-    this.host.querySelector('.scroll')?.scrollTo({ left: Math.max(0, this.nowX() - 90) });
+    const scroll = this.host.querySelector('.scroll');
+    if (scroll) scroll.scrollLeft = Math.max(0, this.nowX() - BEFORE_NOW_PX);
   }
 
   protected press(event: KeyboardEvent): void {
@@ -108,40 +113,10 @@ export class RouteBoard {
     this.focus();
   }
 
-  protected isCursor(technicianId: string, stopId: string | null): boolean {
+  /** The stop under the cursor on this route, `null` on its technician; else undefined. */
+  protected cursorStop(technicianId: string): string | null | undefined {
     const held = this.held();
-    return held?.technicianId === technicianId && held.stopId === stopId;
-  }
-
-  protected block(stop: StopView | ProposedView): BlockPlace {
-    return blockOf(stop, this.span(), this.pxPerHour());
-  }
-
-  /** The shifts of a technician, as bands on the ruler. */
-  protected bands(row: RouteRow): { readonly x: number; readonly width: number }[] {
-    const { from, to } = this.span();
-    return row.technician.shifts
-      .filter((shift) => shift.endsAt > from && shift.startsAt < to)
-      .map((shift) => {
-        const x = xOf(shift.startsAt, this.span(), this.pxPerHour());
-        return { x, width: xOf(shift.endsAt, this.span(), this.pxPerHour()) - x };
-      });
-  }
-
-  /** From the end of a visit to the save-by that it is about, whichever comes first. */
-  protected tether(view: StopView): { readonly from: number; readonly to: number } | null {
-    const saveByAt = view.verdict?.next?.saveByAt;
-    if (saveByAt === undefined) return null;
-    const end = xOf(view.finishAt, this.span(), this.pxPerHour());
-    const tick = xOf(saveByAt, this.span(), this.pxPerHour());
-    return { from: end, to: tick };
-  }
-
-  protected driveWords(stop: StopView | ProposedView, place: BlockPlace): string {
-    const width = place.x - place.driveX;
-    const minutes = Math.round(stop.driveMinutes);
-    if (width < DRIVE_NUMBER_PX) return '';
-    return width < DRIVE_WORDS_PX ? String(minutes) : `${minutes} min`;
+    return held?.technicianId === technicianId ? held.stopId : undefined;
   }
 
   protected hourWords(at: Instant): string {
@@ -151,10 +126,6 @@ export class RouteBoard {
   /** Midnight is called by the day that begins. */
   protected tickWords({ at, isMidnight }: HourTick): string {
     return isMidnight ? (dayTime(at, this.zone.name()).split(' ')[0] ?? '') : this.hourWords(at);
-  }
-
-  protected short(view: StopView | ProposedView): string {
-    return view.verdict ? verdictShort(view.verdict) : '';
   }
 
   protected shiftWords({ technician }: RouteRow): string {
@@ -172,29 +143,14 @@ export class RouteBoard {
   }
 
   protected loadWords({ stops, driveMinutes }: RouteRow): string {
-    if (stops.length === 0) return 'no stops';
+    // The lane says it.
+    if (stops.length === 0) return '';
     const count = stops.length === 1 ? '1 stop' : `${stops.length} stops`;
     return `${count}, ${duration(driveMinutes * MINUTE_MS)} driving`;
   }
 
   protected skillWords({ technician }: RouteRow): string {
     return technician.skills.map((skill) => SKILL_WORDS[skill]).join(', ');
-  }
-
-  protected words(view: StopView): string {
-    const { stop, call } = view;
-    const zone = this.zone.name();
-    const parts = [
-      `Call ${view.number}`,
-      STOP_STATE_WORDS[stop.state].word + (stop.locked ? ', locked' : ''),
-      `arrives ${whenWords(view.arriveAt, this.now(), zone)}, done ${clockTime(view.finishAt, zone)}`,
-      stop.isUnreachable
-        ? 'no open road leads there'
-        : `${Math.round(view.driveMinutes)} minutes of driving`,
-      call?.address.text ?? '',
-      view.verdict ? verdictWords(view.verdict) : '',
-    ];
-    return parts.filter(Boolean).join('. ');
   }
 
   protected drop(event: CdkDragEnd, view: StopView): void {

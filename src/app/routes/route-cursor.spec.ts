@@ -23,6 +23,7 @@ function rowsOf(...stops: ReturnType<typeof stopAt>[]) {
     stopOfCall: new Map(),
     plan: null,
     now: NOW,
+    shopMinutes: 15,
   });
 }
 

@@ -1,8 +1,11 @@
 import type { CallRow } from '@shared/contract/calls';
 import type { PlanDto, StopDto, TechnicianDto } from '@shared/contract/routes';
-import type { Instant } from '@shared/domain/instant';
+import { type Instant, MINUTE_MS } from '@shared/domain/instant';
+import { duration } from '../core/zone';
 import { isMovedBy } from './plan-comparison';
+import { type Halt, haltsOf } from './route-halts';
 import { type SaveVerdict, saveVerdict, valuedFactsOf } from './save-verdict';
+import { isUnderWay } from './stop-words';
 
 /** A stop of the routes in force, with what the screen needs to say of it. */
 export interface StopView {
@@ -14,11 +17,20 @@ export interface StopView {
   readonly finishAt: Instant;
   readonly driveMinutes: number;
   readonly verdict: SaveVerdict | null;
+  /** Behind what the customer was promised, or behind its own time; `null` when neither. */
+  readonly late: Lateness | null;
+}
+
+export interface Lateness {
+  /** "+25", in minutes. */
+  readonly short: string;
+  readonly words: string;
 }
 
 /** A stop of a proposal that nobody has published yet. */
 export interface ProposedView {
   readonly callId: string;
+  readonly call: CallRow | null;
   readonly number: string;
   readonly arriveAt: Instant;
   readonly finishAt: Instant;
@@ -33,6 +45,11 @@ export interface RouteRow {
   readonly technician: TechnicianDto;
   readonly stops: readonly StopView[];
   readonly proposed: readonly ProposedView[];
+  /** Breaks and stops at the store between the stops in force, and between those proposed. */
+  readonly halts: readonly Halt[];
+  readonly proposedHalts: readonly Halt[];
+  /** Stops in force that come too late for all that can still be saved there. */
+  readonly tooLate: number;
   readonly driveMinutes: number;
   readonly isOnShift: boolean;
 }
@@ -45,11 +62,13 @@ export interface RouteFacts {
   /** The proposal that is compared; `null` when none is. */
   readonly plan: PlanDto | null;
   readonly now: Instant;
+  /** How long a stop at the store takes, as it is set. */
+  readonly shopMinutes: number;
 }
 
 /** One row for each technician at work or with stops: those on shift first, then by name. */
 export function routeRows(facts: RouteFacts): RouteRow[] {
-  const proposals = new Map(facts.plan?.routes.map((route) => [route.technicianId, route.stops]));
+  const proposals = new Map(facts.plan?.routes.map((route) => [route.technicianId, route]));
   const rows: RouteRow[] = [];
   for (const technician of facts.technicians.values()) {
     const stops = facts.routes.get(technician.id) ?? [];
@@ -58,9 +77,12 @@ export function routeRows(facts: RouteFacts): RouteRow[] {
     rows.push({
       technician,
       stops: views,
-      proposed: (proposals.get(technician.id) ?? []).map((stop) =>
+      proposed: (proposals.get(technician.id)?.stops ?? []).map((stop) =>
         proposedView({ ...stop, technicianId: technician.id }, facts),
       ),
+      halts: haltsOf(technician.shifts, views.map(haltedStop), facts.now, facts.shopMinutes),
+      proposedHalts: proposals.get(technician.id)?.halts ?? [],
+      tooLate: views.filter(({ verdict }) => verdict?.kind === 'too-late').length,
       driveMinutes: views.reduce((sum, view) => sum + view.driveMinutes, 0),
       isOnShift: technician.active && isOnShift(technician, facts.now),
     });
@@ -104,8 +126,39 @@ function stopView(stop: StopDto, { calls, now }: RouteFacts): StopView {
     finishAt,
     driveMinutes: stop.driveMinutes,
     verdict: call && saveVerdict(valuedFactsOf(call), finishAt, now),
+    late: lateness(stop, arriveAt, call?.window?.to ?? null, now),
   };
 }
+
+const haltedStop = ({ stop, arriveAt, finishAt, driveMinutes }: StopView) => ({
+  arriveAt,
+  finishAt,
+  driveMinutes,
+  isUnderWay: isUnderWay(stop),
+  fetches: stop.fetches !== undefined,
+});
+
+/** Less is no news: arrivals are rounded, and who parks the van is not late. */
+const LEAST_LATE_MS = 5 * MINUTE_MS;
+
+function lateness(
+  { state }: StopDto,
+  arriveAt: Instant,
+  windowEnds: Instant | null,
+  now: Instant,
+): Lateness | null {
+  const arrival = state === 'on-site' ? arriveAt : Math.max(arriveAt, now);
+  const behindPromise = windowEnds === null ? 0 : arrival - windowEnds;
+  if (behindPromise >= MINUTE_MS)
+    return late(behindPromise, 'after the end of the window that the customer agreed to');
+  const overdue = arrival - arriveAt;
+  return overdue >= LEAST_LATE_MS ? late(overdue, 'behind its own time already') : null;
+}
+
+const late = (ms: number, than: string): Lateness => ({
+  short: `+${Math.floor(ms / MINUTE_MS)} min`,
+  words: `${duration(ms)} ${than}`,
+});
 
 function proposedView(
   stop: PlanDto['routes'][number]['stops'][number] & { readonly technicianId: string },
@@ -114,6 +167,7 @@ function proposedView(
   const call = calls.get(stop.callId);
   return {
     callId: stop.callId,
+    call: call ?? null,
     number: call ? String(call.number) : '?',
     arriveAt: stop.arriveAt,
     finishAt: stop.finishAt,

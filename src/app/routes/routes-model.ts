@@ -2,12 +2,14 @@ import { computed, DestroyRef, effect, inject, Injectable, signal, untracked } f
 import type { CallRow } from '@shared/contract/calls';
 import type { PlanDto, StopDto } from '@shared/contract/routes';
 import { STATE_WORDS } from '@shared/domain/call-state';
+import { HOUR_MS } from '@shared/domain/instant';
 import { Announce } from '../core/announce';
 import { Api, newId } from '../core/api';
 import { BoardStore } from '../core/board-store';
 import { Clock } from '../core/clock';
 import { Live } from '../core/live';
 import { ProblemError } from '../core/problem-error';
+import { fromStorage, toStorage } from '../core/storage';
 import { money, Zone } from '../core/zone';
 import { isStop, stopChanges } from './stop-words';
 
@@ -37,6 +39,11 @@ interface Attempt {
   readonly before?: StopDto;
 }
 
+/** The automatic plan that this browser's desk has read and closed. */
+const READ_AS = 'thawline:automatic-read';
+/** Older routes are no news, whoever published them: our estimate. */
+const TOLD_MS = 2 * HOUR_MS;
+
 /** Proposals and changes of stops, and what to say when one of them is refused. */
 @Injectable()
 export class RoutesModel {
@@ -50,7 +57,7 @@ export class RoutesModel {
   private readonly stopped = signal<Setback | null>(null);
   private readonly searching = signal<RunningSearch | null>(null);
   private readonly fateNow = signal<PlanFate | null>(null);
-  private readonly doneNow = signal('');
+  private readonly readPlan = signal(fromStorage(READ_AS));
   private readonly newestPlan = signal<PlanDto | null>(null);
   private readonly endedPlans = new Map<string, PlanDto['state']>();
   /** Proposals that this desk published or discarded: their end is no news here. */
@@ -60,8 +67,14 @@ export class RoutesModel {
   readonly setback = this.stopped.asReadonly();
   readonly search = this.searching.asReadonly();
   readonly fate = this.fateNow.asReadonly();
-  /** What the automatic mode has just done; empty when nothing. */
-  readonly done = this.doneNow.asReadonly();
+  /** What the automatic mode has done and nobody here has closed; empty when nothing. */
+  readonly done = computed(() => {
+    const last = this.board.automaticDone();
+    if (!last || last.planId === this.readPlan()) return '';
+    if (this.clock.now() - last.at > TOLD_MS) return '';
+    const moved = `${last.moved} ${last.moved === 1 ? 'stop' : 'stops'} moved`;
+    return `${this.zone.clockTime(last.at)}: the automatic mode published routes, since ${last.because}. They gain ${money(last.gainCents)}; ${moved}.`;
+  });
   /** Why calls are on no route, as the newest proposal found out. */
   readonly unplanned = computed(
     () => new Map((this.newestPlan()?.unplanned ?? []).map((one) => [one.callId, one])),
@@ -71,9 +84,7 @@ export class RoutesModel {
     const stop = inject(Live).on('board:changed', ({ change }) => {
       if (change.kind !== 'plan' || change.plan.state === 'proposed') return;
       this.endedPlans.set(change.plan.id, change.plan.state);
-      if (change.plan.state === 'published' && change.plan.automatic) {
-        this.tellAutomatic(change.plan);
-      }
+      if (change.plan.state === 'published' && change.plan.automatic) this.fateNow.set(null);
     });
     inject(DestroyRef).onDestroy(stop);
     let shown: string | null = null;
@@ -94,7 +105,9 @@ export class RoutesModel {
   }
 
   dismissDone(): void {
-    this.doneNow.set('');
+    const planId = this.board.automaticDone()?.planId ?? '';
+    this.readPlan.set(planId);
+    toStorage(READ_AS, planId);
   }
 
   dismissFate(): void {
@@ -238,15 +251,6 @@ export class RoutesModel {
       return [`Call ${current.number} is now: ${STATE_WORDS[current.state]}`];
     }
     return [];
-  }
-
-  private tellAutomatic({ proposedAt, automatic, gainCents = 0, figures }: PlanDto): void {
-    const at = this.zone.clockTime(proposedAt);
-    const moved = `${figures.moved} ${figures.moved === 1 ? 'stop' : 'stops'} moved`;
-    this.doneNow.set(
-      `${at}: the automatic mode published routes, since ${automatic?.because ?? ''}. They gain ${money(gainCents)}; ${moved}.`,
-    );
-    this.fateNow.set(null);
   }
 
   private tellFate(planId: string): void {

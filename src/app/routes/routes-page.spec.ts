@@ -210,6 +210,32 @@ describe('RoutesPage', () => {
     expect(sent.request.body).toMatchObject({ reason: 'It runs again', version: 1 });
   });
 
+  it('moves a stop to whoever is named in the field, by the keyboard alone', async () => {
+    const page = await aPage(withStops());
+    await page.press('s');
+    await page.press('ArrowDown');
+    await page.press('ArrowUp');
+    await page.press('ArrowRight');
+    await page.press('ArrowRight');
+    await page.press('m');
+    const field = document.querySelector<HTMLInputElement>('thaw-place-dialog input')!;
+    const options = (): string[] =>
+      [...document.querySelectorAll('thaw-place-dialog [role=option]')].map(
+        (one) => `${one.getAttribute('aria-selected')} ${one.textContent?.trim().split(' ')[0]}`,
+      );
+    expect(options()).toEqual(['true Ana', 'false Ben']);
+    field.value = 'ho';
+    field.dispatchEvent(new Event('input'));
+    await page.settle();
+    expect(options()).toEqual(['true Ben']);
+    expect(field.getAttribute('aria-activedescendant')).toBe(`to-${BEN.id}`);
+    document.querySelector<HTMLButtonElement>('thaw-place-dialog [type=submit]')!.click();
+    await new Promise((done) => setTimeout(done, 300));
+    await page.settle();
+    const sent = page.http.expectOne(`/api/stops/${idOf(3003)}/move`);
+    expect(sent.request.body).toMatchObject({ technicianId: BEN.id, position: 0 });
+  });
+
   it('shows what changed when somebody else was faster', async () => {
     const page = await aPage(withStops());
     await page.press('s');
@@ -316,6 +342,24 @@ describe('RoutesPage', () => {
     expect(page.text('thaw-plan-panel')).toContain(
       'Not published by itself: it changes more stops of Ana Quill.',
     );
+  });
+
+  it('tells what the automatic mode did after a reload too, until somebody has closed it', async () => {
+    const automaticDone = {
+      planId: idOf(7002),
+      at: NOW - 60_000,
+      because: 'the roads changed',
+      gainCents: 8_400,
+      moved: 2,
+    };
+    const page = await aPage({ ...withStops(), automaticDone });
+    expect(page.text('aside')).toContain('published routes, since the roads changed');
+    await page.click('Close');
+    expect(page.text('aside')).not.toContain('the roads changed');
+    TestBed.resetTestingModule();
+    const again = await aPage({ ...withStops(), automaticDone });
+    expect(again.text('aside')).not.toContain('the roads changed');
+    localStorage.clear();
   });
 
   it('says in full why the chosen call is on no route, and what would change that', async () => {

@@ -29,13 +29,14 @@ import { PlanPanel } from './plan-panel';
 import { PullDialog, type PullQuestion } from './pull-dialog';
 import { RouteBoard } from './route-board';
 import { heldCursor, type RouteCursor } from './route-cursor';
+import { RouteLegend } from './route-legend';
 import { nextShift, type RouteRow, routeRows, type StopView } from './route-rows';
 import { FIRST_ZOOM, spanOf, ZOOMS } from './route-ruler';
 import { RoutesModel } from './routes-model';
 import { routesKeys } from './routes-keys';
 import { SearchBar } from './search-bar';
 import { StopDetail } from './stop-detail';
-import { isFirmStop, isUnderWay, STOP_STATE_WORDS } from './stop-words';
+import { isFirmStop, isUnderWay, LEGEND_STATES } from './stop-words';
 import { TryDialog } from './try-dialog';
 import { UnplannedList } from './unplanned-list';
 import { whyUnplanned } from './why-unplanned';
@@ -43,7 +44,7 @@ import { whyUnplanned } from './why-unplanned';
 /** The routes of all technicians: propose, compare, publish; lock, move, pull and add stops. */
 @Component({
   selector: 'thaw-routes-page',
-  imports: [MatIcon, PlanPanel, RouteBoard, SearchBar, StopDetail, UnplannedList],
+  imports: [MatIcon, PlanPanel, RouteBoard, RouteLegend, SearchBar, StopDetail, UnplannedList],
   templateUrl: './routes-page.html',
   styleUrls: ['../intake/fields.scss', './routes-page.scss'],
   providers: [RoutesModel],
@@ -79,6 +80,7 @@ export class RoutesPage {
       stopOfCall: this.board.stopOfCall(),
       plan: this.drawsProposal() ? this.board.plan() : null,
       now: this.clock.now(),
+      shopMinutes: this.session.settings()?.shopMinutes ?? 0,
     }),
   );
   protected readonly span = computed(() => {
@@ -148,9 +150,16 @@ export class RoutesPage {
     return `Nobody is on shift now. The next shift begins ${at} (${next.name}).`;
   });
 
-  protected readonly legend = (
-    ['planned', 'offered', 'accepted', 'travelling', 'on-site'] as const
-  ).map((state) => ({ state, ...STOP_STATE_WORDS[state] }));
+  /** What there is to do while nobody has a stop. */
+  protected readonly noneWords = computed(() => {
+    const waiting = this.waiting().length;
+    if (this.rows().length === 0 || this.board.plan() || this.allStops().length > 0) return '';
+    if (waiting === 0) return 'Nobody has a stop, and no call waits for a visit.';
+    const calls = waiting === 1 ? '1 call waits' : `${waiting} calls wait`;
+    return `Nobody has a stop yet. ${calls} for a visit: R proposes routes.`;
+  });
+
+  protected readonly legend = LEGEND_STATES;
 
   constructor() {
     // Somebody came here with a call: its stop, or its place among those without one.
@@ -232,7 +241,11 @@ export class RoutesPage {
   }
 
   protected zoomBy(step: number): void {
-    this.zoom.update((zoom) => Math.min(Math.max(zoom + step, 0), ZOOMS.length - 1));
+    const zoom = (): void =>
+      this.zoom.update((now) => Math.min(Math.max(now + step, 0), ZOOMS.length - 1));
+    const board = this.routeBoard();
+    if (board) board.keepLeftEdge(zoom);
+    else zoom();
   }
 
   protected putCursor(cursor: RouteCursor): void {

@@ -110,7 +110,7 @@ export function verdictShort({ kind, spareMs }: SaveVerdict): string {
     case 'part':
       return 'part';
     case 'too-late':
-      return 'late';
+      return 'too late';
     case 'nothing-left':
       return 'repair';
   }

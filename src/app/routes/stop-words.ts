@@ -18,6 +18,11 @@ export const STOP_STATE_WORDS: Readonly<
   pulled: { word: 'Pulled', icon: 'undo' },
 };
 
+/** The states that a stop on a route may be in, in their order. */
+export const LEGEND_STATES = (
+  ['planned', 'offered', 'accepted', 'travelling', 'on-site'] as const
+).map((state) => ({ state, ...STOP_STATE_WORDS[state] }));
+
 /** Whether the technician holds the stop by their own word; nobody moves it then. */
 export const isFirmStop = ({ state }: StopDto): boolean =>
   state === 'accepted' || state === 'travelling' || state === 'on-site';

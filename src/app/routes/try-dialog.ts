@@ -6,7 +6,6 @@ import {
   MatDialogContent,
   MatDialogTitle,
 } from '@angular/material/dialog';
-import { MatIcon } from '@angular/material/icon';
 import type { PlanPrices } from '@shared/contract/plan-prices';
 import type { PlanTrialDto } from '@shared/contract/routes';
 import type { Settings } from '@shared/contract/office';
@@ -23,13 +22,21 @@ import {
   settingValue,
 } from '../office/settings-fields';
 import { comparedFigures } from './plan-comparison';
+import { PlanFiguresTable } from './plan-figures-table';
 
 const SECONDS = 1;
 
 /** Tries other weights on the storm as it is: two plans side by side, of which nothing is kept. */
 @Component({
   selector: 'thaw-try-dialog',
-  imports: [MatButton, MatDialogActions, MatDialogClose, MatDialogContent, MatDialogTitle, MatIcon],
+  imports: [
+    MatButton,
+    MatDialogActions,
+    MatDialogClose,
+    MatDialogContent,
+    MatDialogTitle,
+    PlanFiguresTable,
+  ],
   templateUrl: './try-dialog.html',
   styleUrls: ['../intake/fields.scss', './try-dialog.scss'],
   changeDetection: ChangeDetectionStrategy.OnPush,
@@ -60,18 +67,22 @@ export class TryDialog {
     const trial = this.trial();
     if (!trial) return [];
     const inForce = comparedFigures(trial.tried, trial.inForce);
-    return comparedFigures(trial.tried, trial.asSet).map((line) => ({
+    const { asSet, tried } = trial;
+    const lines = comparedFigures(tried, asSet).map((line) => ({
       label: line.label,
-      inForce: inForce.find(({ label }) => label === line.label)?.inForce ?? '',
-      asSet: line.inForce,
-      tried: line.proposed,
+      figures: [
+        inForce.find(({ label }) => label === line.label)?.inForce ?? '',
+        line.inForce,
+        line.proposed,
+      ],
       difference: line.difference,
       turn: line.turn,
     }));
-  });
-  protected readonly movedWords = computed(() => {
-    const trial = this.trial();
-    return trial ? { asSet: trial.asSet.moved, tried: trial.tried.moved } : null;
+    const moved = ['', String(asSet.moved), String(tried.moved)];
+    return [
+      ...lines,
+      { label: 'Stops moved', figures: moved, difference: '', turn: 'neither' as const },
+    ];
   });
   protected readonly callWords = computed(() => {
     const trial = this.trial();
