@@ -140,6 +140,12 @@ export function changesByTechnician(
     .sort((a, b) => b.changes.length - a.changes.length);
 }
 
+/** Whether a proposal leaves every stop as it is, so that there is nothing to publish. */
+export const changesNothing = (
+  plan: Pick<PlanDto, 'routes'>,
+  inForce: readonly StopDto[],
+): boolean => changesByTechnician(plan, inForce).every(({ changes }) => changes.length === 0);
+
 const change = (
   callId: string,
   kind: CallChange['kind'],

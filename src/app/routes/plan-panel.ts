@@ -3,7 +3,13 @@ import type { CallRow } from '@shared/contract/calls';
 import type { PlanDto, StopDto, TechnicianDto } from '@shared/contract/routes';
 import type { Instant } from '@shared/domain/instant';
 import { ago, money, Zone } from '../core/zone';
-import { changesByTechnician, changeWords, figureLines, routeWords } from './plan-comparison';
+import {
+  changesByTechnician,
+  changesNothing,
+  changeWords,
+  figureLines,
+  routeWords,
+} from './plan-comparison';
 import { PlanFiguresTable } from './plan-figures-table';
 
 /** The proposal beside the routes in force: what it saves and costs, and what it changes for whom. */
@@ -52,11 +58,21 @@ import { PlanFiguresTable } from './plan-figures-table';
       </ul>
     </details>
     <div class="acts">
-      <button type="button" class="plain main" [disabled]="isBusy()" (click)="published.emit()">
-        Publish <kbd>Ctrl Enter</kbd>
-      </button>
-      <button type="button" class="plain" [disabled]="isBusy()" (click)="discarded.emit()">
-        Discard <kbd>X</kbd>
+      @if (nothing(); as words) {
+        <p>{{ words }}</p>
+      } @else {
+        <button type="button" class="plain main" [disabled]="isBusy()" (click)="published.emit()">
+          Publish <kbd>Ctrl Enter</kbd>
+        </button>
+      }
+      <button
+        type="button"
+        class="plain"
+        [class.main]="nothing() !== ''"
+        [disabled]="isBusy()"
+        (click)="discarded.emit()"
+      >
+        {{ nothing() ? 'Close' : 'Discard' }} <kbd>X</kbd>
       </button>
     </div>
   `,
@@ -116,6 +132,14 @@ export class PlanPanel {
     return gainCents < 100
       ? 'By the weights that are set it gains nothing.'
       : `By the weights that are set it gains ${money(gainCents)}, the price of its changes counted.`;
+  });
+
+  /** Why there is nothing to publish; empty where there is something. */
+  protected readonly nothing = computed(() => {
+    if (!changesNothing(this.plan(), this.stops())) return '';
+    return this.plan().figures.stops === 0
+      ? 'Nothing to publish: no call can go on a route now.'
+      : 'Nothing to publish: the routes in force stay as they are.';
   });
 
   private routeOf(technicianId: string): string {

@@ -57,7 +57,7 @@ export class RouteBoard {
   readonly cursorMoved = output<RouteCursor>();
   /** Dragged there; the same as answering the dialog. */
   readonly dropped = output<PlaceAnswer & { readonly view: StopView }>();
-  /** Enter or a double click on a stop. */
+  /** A double click on a stop. */
   readonly opened = output<StopView>();
 
   protected readonly filled = filledBy;

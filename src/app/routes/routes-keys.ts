@@ -7,6 +7,7 @@ export interface RoutesActs {
   readonly discard: () => void;
   readonly tryWeights: () => void;
   readonly hasPlan: () => boolean;
+  readonly mayPublish: () => boolean;
   readonly lock: () => void;
   readonly move: () => void;
   readonly pull: () => void;
@@ -23,14 +24,14 @@ export function routesKeys(acts: RoutesActs): KeyAction[] {
   const proposal = 'Proposal';
   const stops = 'Stops';
   const sight = 'Sight';
-  const { hasPlan, mayMove, mayPull } = acts;
+  const { hasPlan, mayPublish, mayMove, mayPull } = acts;
   return [
     { keys: 'r', does: 'Propose routes', scope: proposal, run: acts.propose },
     {
       keys: 'Ctrl+Enter',
       does: 'Publish the proposal',
       scope: proposal,
-      when: hasPlan,
+      when: mayPublish,
       run: acts.publish,
     },
     { keys: 'x', does: 'Discard the proposal', scope: proposal, when: hasPlan, run: acts.discard },

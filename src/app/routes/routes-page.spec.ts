@@ -210,6 +210,19 @@ describe('RoutesPage', () => {
     expect(sent.request.body).toMatchObject({ reason: 'It runs again', version: 1 });
   });
 
+  it('says who comes after the window that the customer agreed to, and by how much', async () => {
+    const window = { from: NOW - HOUR_MS, to: NOW };
+    const page = await aPage({
+      ...withStops(),
+      calls: [aCallRow(1, { state: 'offered', window })],
+    });
+    expect(page.labels()[0]).toContain('30 min after the end of the window');
+    expect(page.text('.late')).toBe('+30 min');
+    await page.press('s');
+    await page.press('ArrowRight');
+    expect(page.text('thaw-stop-detail')).toContain('30 min after the end of the window');
+  });
+
   it('moves a stop to whoever is named in the field, by the keyboard alone', async () => {
     const page = await aPage(withStops());
     await page.press('s');
@@ -280,6 +293,26 @@ describe('RoutesPage', () => {
     expect(calls().map(({ call, why }) => [call.number, why.words])).toEqual([
       [2, 'No shift has room before 19:00.'],
     ]);
+  });
+
+  it('has nothing to publish where a proposal leaves every stop as it is', async () => {
+    const asBefore = (n: number) => ({
+      callId: idOf(1000 + n),
+      arriveAt: aStop(n).arriveAt + 60_000,
+      startAt: aStop(n).arriveAt + 60_000,
+      finishAt: aStop(n).finishAt,
+      driveMinutes: 12,
+      firm: false,
+      because: '',
+    });
+    const routes = [{ technicianId: ANA.id, stops: [asBefore(1), asBefore(3)] }];
+    const page = await aPage({ ...withStops(), plan: aPlan({ routes }) });
+    expect(page.text('thaw-plan-panel')).toContain('Nothing to publish: the routes in force stay');
+    expect(page.text('thaw-plan-panel')).not.toContain('Ctrl');
+    await page.press('Enter', { ctrlKey: true });
+    page.http.expectNone(`/api/plans/${idOf(7000)}/publication`);
+    await page.click('Close');
+    page.http.expectOne(`/api/plans/${idOf(7000)}/discarding`);
   });
 
   it('publishes by Ctrl and Enter, and offers to propose again when it was overtaken', async () => {

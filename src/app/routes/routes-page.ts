@@ -25,6 +25,7 @@ import { Session } from '../core/session';
 import { Zone } from '../core/zone';
 import { whenWords } from '../board/time-words';
 import { type PlaceAnswer, PlaceDialog, type PlaceQuestion } from './place-dialog';
+import { changesNothing } from './plan-comparison';
 import { PlanPanel } from './plan-panel';
 import { PullDialog, type PullQuestion } from './pull-dialog';
 import { RouteBoard } from './route-board';
@@ -204,6 +205,7 @@ export class RoutesPage {
         discard: () => void this.discard(),
         tryWeights: () => this.tryWeights(),
         hasPlan: () => this.board.plan() !== null,
+        mayPublish: () => this.mayPublish(),
         lock: () => void this.lock(),
         move: () => void this.move(),
         pull: () => void this.pull(),
@@ -226,7 +228,12 @@ export class RoutesPage {
 
   protected async publish(): Promise<void> {
     const plan = this.board.plan();
-    if (plan && !this.model.isBusy()) await this.model.publish(plan);
+    if (plan && this.mayPublish() && !this.model.isBusy()) await this.model.publish(plan);
+  }
+
+  private mayPublish(): boolean {
+    const plan = this.board.plan();
+    return plan !== null && !changesNothing(plan, this.allStops());
   }
 
   protected async discard(): Promise<void> {

@@ -40,7 +40,12 @@ import { isFirmStop, isUnderWay, STOP_STATE_WORDS } from './stop-words';
         <span class="name">{{ one.call?.name }}, {{ one.call?.address?.text }}</span>
       </p>
       <p class="because" [title]="because()">{{ because() }}</p>
-      <p class="soft">{{ times() }}</p>
+      <p class="soft">
+        {{ times() }}
+        @if (one.late; as late) {
+          <strong class="late">{{ late.words }}.</strong>
+        }
+      </p>
     </div>
     @if (one.call; as call) {
       <div class="cold">
