@@ -14,7 +14,7 @@ import type { AddressPoint } from '../region/address-points';
 import { changeSettings } from '../office/change-settings';
 import { readSettings } from '../office/settings';
 import { DEMO_SEED } from '../region/demo-region';
-import { hashPassword, makePassphrase } from '../staff/passwords';
+import { hashPassword, makePassword } from '../staff/passwords';
 import { UserRecord } from '../staff/user-record';
 import { StormRecord } from '../storms/storm-record';
 import { ShiftRecord, TechnicianRecord } from '../technicians/technician-record';
@@ -31,7 +31,7 @@ const BREAK_MINUTES = 30;
 
 /**
  * Fills an empty database with the demo's people and an open storm, by the same commands that
- * people give, with the clock set back to when each would have been given. Passphrases are made
+ * people give, with the clock set back to when each would have been given. Passwords are made
  * here and written beside the data, readable by its owner alone.
  */
 export async function seedDemo(
@@ -66,7 +66,7 @@ async function seedPeople(
 ): Promise<{ role: Role; name: string; email: string; password: string }[]> {
   const signIns: { role: Role; name: string; email: string; password: string }[] = [];
   const account = async (person: DemoPerson, technicianId: string | null): Promise<void> => {
-    const password = makePassphrase();
+    const password = makePassword();
     await UserRecord.create({
       id: chance.uuid(),
       name: person.name,

@@ -39,11 +39,11 @@ async function addTechnician(
   const signInName = `drill-${index}@example.com`;
   const { users } = await owner.call('listUsers');
   const known = users.find((user) => user.signInName === signInName);
-  let passphrase: string;
+  let password: string;
   if (known) {
     if (known.technicianId) await putOnShift(owner, known.technicianId);
     const reset = { params: { userId: known.id }, body: { version: known.version } };
-    ({ passphrase } = await owner.call('resetPassword', reset));
+    ({ password } = await owner.call('resetPassword', reset));
   } else {
     const technicianId = randomUUID();
     await owner.call('addTechnician', {
@@ -64,12 +64,12 @@ async function addTechnician(
       role: 'technician',
       technicianId,
     } as const;
-    ({ passphrase } = await owner.call('addUser', { body: user }));
+    ({ password } = await owner.call('addUser', { body: user }));
   }
   const person = new PersonAtWork(name, server.address);
-  await person.signIn(signInName, passphrase);
+  await person.signIn(signInName, password);
   await person.call('changePassword', {
-    body: { current: passphrase, next: `drill ${randomUUID()}`, endOtherSessions: true },
+    body: { current: password, next: `drill ${randomUUID()}`, endOtherSessions: true },
   });
   return person;
 }

@@ -108,7 +108,7 @@ export class PersonAtWork {
   }
 }
 
-/** Signing in and changing a passphrase are no commands with an id. */
+/** Signing in and changing a password are no commands with an id. */
 const WITHOUT_ID: readonly RouteName[] = ['signIn', 'signOut', 'changePassword', 'reportPosition'];
 
 const bodyOf = (name: RouteName, body: object = {}): object =>

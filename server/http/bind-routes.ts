@@ -99,7 +99,7 @@ function guard(
     if (person?.mustChangePassword && !spec.beforePasswordChange && spec.who !== 'anyone')
       throw new Refusal(
         'password-change-needed',
-        'Replace the passphrase that you were given by a password of your own.',
+        'Replace the password that you were given by one of your own.',
       );
     const most = MOST_PER_MINUTE[name];
     if (person && most !== undefined) limit.count(`${name} ${person.userId}`, most);

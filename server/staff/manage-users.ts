@@ -4,7 +4,7 @@ import { Refusal } from '@shared/domain/errors';
 import { isDuplicateOf } from '../db/sql';
 import { orderFrom, runCommand, type Job } from '../commands/run-command';
 import type { Context } from '../context';
-import { hashPassword, makePassphrase } from './passwords';
+import { hashPassword, makePassword } from './passwords';
 import type { SignedIn } from './signed-in';
 import { toUserDto } from './user-dto';
 import { UserRecord } from './user-record';
@@ -14,14 +14,14 @@ export async function listUsers(): Promise<UserDto[]> {
   return users.map(toUserDto);
 }
 
-/** Makes an account with a passphrase that is shown once and must be replaced. */
+/** Makes an account with a password that is shown once and must be replaced. */
 export async function addUser(
   context: Context,
   person: SignedIn,
   body: BodyOf<'addUser'>,
 ): Promise<ReplyOf<'addUser'>> {
-  const passphrase = makePassphrase();
-  const passwordHash = await hashPassword(passphrase);
+  const password = makePassword();
+  const passwordHash = await hashPassword(password);
   const user = await runCommand(context, orderFrom('addUser', person, body), async (job) => {
     try {
       const made = await UserRecord.create(
@@ -42,7 +42,7 @@ export async function addUser(
       throw asRefusal(error);
     }
   });
-  return withCurrentPassphrase(user, passphrase, passwordHash);
+  return withCurrentPassword(user, password, passwordHash);
 }
 
 /** Changes name, role or access; whatever touches rights ends the user's sessions at once. */
@@ -87,15 +87,15 @@ export function changeUser(
   });
 }
 
-/** Gives a new passphrase and ends every session of the account. */
+/** Gives a new password and ends every session of the account. */
 export async function resetPassword(
   context: Context,
   person: SignedIn,
   userId: string,
   body: BodyOf<'resetPassword'>,
 ): Promise<ReplyOf<'resetPassword'>> {
-  const passphrase = makePassphrase();
-  const passwordHash = await hashPassword(passphrase);
+  const password = makePassword();
+  const passwordHash = await hashPassword(password);
   const user = await runCommand(
     context,
     orderFrom('resetPassword', person, { userId, ...body }),
@@ -108,27 +108,27 @@ export async function resetPassword(
         sessionEpoch: found.sessionEpoch + 1,
       });
       await found.save({ transaction: job.tx });
-      job.note('user', found.id, 'gave an account a new passphrase');
+      job.note('user', found.id, 'gave an account a new password');
       job.afterCommit(() =>
-        context.live.endSockets({ userId: found.id }, 'The passphrase was replaced.'),
+        context.live.endSockets({ userId: found.id }, 'The password was replaced.'),
       );
       return toUserDto(found);
     },
   );
-  return withCurrentPassphrase(user, passphrase, passwordHash);
+  return withCurrentPassword(user, password, passwordHash);
 }
 
 /**
- * A passphrase is stored nowhere in the clear, so a repeated command cannot be answered with the
- * first one. It gets an empty passphrase rather than a wrong one.
+ * A password is stored nowhere in the clear, so a repeated command cannot be answered with the
+ * first one. It gets an empty password rather than a wrong one.
  */
-async function withCurrentPassphrase(
+async function withCurrentPassword(
   user: UserDto,
-  passphrase: string,
+  password: string,
   passwordHash: string,
 ): Promise<ReplyOf<'addUser'>> {
   const stored = await UserRecord.findByPk(user.id);
-  return { user, passphrase: stored?.passwordHash === passwordHash ? passphrase : '' };
+  return { user, password: stored?.passwordHash === passwordHash ? password : '' };
 }
 
 async function lockUser(userId: string, version: number, job: Job): Promise<UserRecord> {

@@ -72,10 +72,10 @@ const WORDS =
   );
 
 /**
- * A passphrase of five words and a number, to be given once and replaced: about 40 bits, behind a
+ * A password of five words and a number, to be given once and replaced: about 40 bits, behind a
  * limit on attempts.
  */
-export function makePassphrase(): string {
+export function makePassword(): string {
   const words = Array.from({ length: 5 }, () => WORDS[randomInt(WORDS.length)]);
   return `${words.join('-')}-${String(randomInt(10, 100))}`;
 }

@@ -26,7 +26,7 @@ export interface RouteSpec {
   readonly reply: z.ZodType;
   /** What a success answers with; 200 unless said. */
   readonly status?: 200 | 201;
-  /** May a user do this who has not yet replaced a passphrase given by the owner? */
+  /** May a user do this who has not yet replaced a password given by the owner? */
   readonly beforePasswordChange?: true;
 }
 
@@ -523,10 +523,10 @@ export const HTTP = {
     reply: z.strictObject({ users: z.array(office.UserDto) }),
   },
   addUser: {
-    summary: 'Make an account; its passphrase is shown once',
+    summary: 'Make an account; its password is shown once',
     who: OWNER,
     body: office.AddUser,
-    reply: office.UserWithPassphrase,
+    reply: office.UserWithPassword,
     status: 201,
   },
   changeUser: {
@@ -536,10 +536,10 @@ export const HTTP = {
     reply: office.UserDto,
   },
   resetPassword: {
-    summary: 'Give an account a new passphrase, shown once',
+    summary: 'Give an account a new password, shown once',
     who: OWNER,
     body: office.ResetPassword,
-    reply: office.UserWithPassphrase,
+    reply: office.UserWithPassword,
   },
   audit: {
     summary: 'What anyone did in a storm, newest first',

@@ -183,8 +183,8 @@ export const ChangeUser = VersionedCommand.extend({
   disabled: z.boolean().optional(),
 });
 export const ResetPassword = VersionedCommand;
-/** The passphrase is shown once and must be changed at the first sign-in. */
-export const UserWithPassphrase = z.strictObject({ user: UserDto, passphrase: z.string() });
+/** The password is shown once and must be changed at the first sign-in. */
+export const UserWithPassword = z.strictObject({ user: UserDto, password: z.string() });
 export const ChangePassword = z.strictObject({
   current: z.string().max(500),
   next: Password,

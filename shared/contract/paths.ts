@@ -99,7 +99,7 @@ export const PATHS = {
   listUsers: ['GET', '/api/users'],
   addUser: ['POST', '/api/users'],
   changeUser: ['PATCH', '/api/users/:userId'],
-  resetPassword: ['POST', '/api/users/:userId/passphrase'],
+  resetPassword: ['POST', '/api/users/:userId/password'],
   audit: ['GET', '/api/storms/:stormId/audit'],
   officeAudit: ['GET', '/api/audit'],
 } as const satisfies Record<string, readonly ['GET' | 'POST' | 'PATCH' | 'DELETE', string]>;

@@ -93,7 +93,7 @@ describe('a session', () => {
     expect(await closed).toBe('io server disconnect');
   });
 
-  it('shows nothing live before a given passphrase was replaced', async () => {
+  it('shows nothing live before a given password was replaced', async () => {
     const mara = await server.signIn('dispatcher');
     await UserRecord.update({ mustChangePassword: true }, { where: { id: mara.userId } });
     await expect(mara.socket()).rejects.toThrow('password-change-needed');
@@ -161,7 +161,7 @@ describe('changes from another site', () => {
 });
 
 describe('accounts', () => {
-  it('start with a passphrase that is shown once and must be replaced', async () => {
+  it('start with a password that is shown once and must be replaced', async () => {
     const owner = await server.signIn('owner');
     const body = {
       commandId: crypto.randomUUID(),
@@ -173,11 +173,11 @@ describe('accounts', () => {
     };
     const made = await owner.call('addUser', { body });
     expect(made.status).toBe(201);
-    const { passphrase } = made.body as { passphrase: string };
-    expect(passphrase.length).toBeGreaterThan(20);
-    expect((await owner.call('addUser', { body })).body).toMatchObject({ passphrase: '' });
+    const { password } = made.body as { password: string };
+    expect(password.length).toBeGreaterThan(20);
+    expect((await owner.call('addUser', { body })).body).toMatchObject({ password: '' });
 
-    const entered = await enter('ada@example.com', passphrase);
+    const entered = await enter('ada@example.com', password);
     expect(entered.body).toMatchObject({ user: { mustChangePassword: true } });
     const cookie = (entered.get('Set-Cookie') ?? []).map((one) => one.split(';')[0]).join('; ');
     const refused = await request(server.url).get('/api/storms').set('Cookie', cookie);

@@ -91,7 +91,7 @@ describe('Session', () => {
     expect(router.url).toBe('/board');
   });
 
-  it('lets nobody work before a given passphrase is replaced', async () => {
+  it('lets nobody work before a given password is replaced', async () => {
     await signedIn(aMe('dispatcher', { mustChangePassword: true }));
     await router.navigateByUrl('/board');
     expect(router.url).toBe('/password');

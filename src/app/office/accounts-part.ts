@@ -20,7 +20,7 @@ import { AccountForm } from './account-form';
 import { type Confirmation, ConfirmDialog } from './confirm-dialog';
 import { focusFirst } from './focus-first';
 import { OrderId } from './order-id';
-import { type NewPassphrase, PassphraseDialog } from './passphrase-dialog';
+import { type NewPassword, PasswordDialog } from './password-dialog';
 import { ROLE_WORDS } from './role-words';
 import { StackedTable } from './stacked-table';
 
@@ -78,10 +78,10 @@ export class AccountsPart {
     focusFirst(this.host.nativeElement, `[data-of="${id ?? 'new'}"]`);
   }
 
-  protected made({ user, passphrase }: ReplyOf<'addUser'>): void {
+  protected made({ user, password }: ReplyOf<'addUser'>): void {
     this.take(user);
     this.edited.set(null);
-    this.tell(user, passphrase);
+    this.tell(user, password);
   }
 
   protected changed(user: UserDto): void {
@@ -110,21 +110,21 @@ export class AccountsPart {
     });
   }
 
-  protected async renewPassphrase(user: UserDto): Promise<void> {
+  protected async renewPassword(user: UserDto): Promise<void> {
     const isSure = await this.ask({
-      title: `A new passphrase for ${user.name}?`,
+      title: `A new password for ${user.name}?`,
       words: 'Their old password ends, and they are signed out everywhere at once.',
-      action: 'Make a new passphrase',
+      action: 'Make a new password',
     });
     if (!isSure) return;
     const asked = { version: user.version };
     await this.attempt(async () => {
-      const { user: changed, passphrase } = await this.api.call('resetPassword', {
+      const { user: changed, password } = await this.api.call('resetPassword', {
         params: { userId: user.id },
         body: { commandId: this.order.idFor({ renew: user.id, ...asked }), ...asked },
       });
       this.take(changed);
-      this.tell(changed, passphrase);
+      this.tell(changed, password);
     });
   }
 
@@ -145,10 +145,10 @@ export class AccountsPart {
     }
   }
 
-  private tell({ name, signInName, id }: UserDto, passphrase: string): void {
+  private tell({ name, signInName, id }: UserDto, password: string): void {
     this.dialogs
-      .open<PassphraseDialog, NewPassphrase>(PassphraseDialog, {
-        data: { name, signInName, passphrase },
+      .open<PasswordDialog, NewPassword>(PasswordDialog, {
+        data: { name, signInName, password },
         disableClose: true,
         maxWidth: '60ch',
       })
@@ -188,5 +188,5 @@ export class AccountsPart {
 
 function stateWords({ disabled, mustChangePassword }: UserDto): string {
   if (disabled) return 'disabled';
-  return mustChangePassword ? 'passphrase not replaced yet' : 'active';
+  return mustChangePassword ? 'first password not replaced yet' : 'active';
 }

@@ -248,10 +248,10 @@ describe('the storms', () => {
 });
 
 describe('the accounts', () => {
-  it('show a new passphrase once, with a warning, until it is passed on', async () => {
+  it('show a new password once, with a warning, until it is passed on', async () => {
     answers['addUser'] = ({ body }) => ({
       user: { ...aMe().user, id: body['userId'], name: body['name'], mustChangePassword: true },
-      passphrase: 'amber-anchor-basin-beacon-birch-42',
+      password: 'amber-anchor-basin-beacon-birch-42',
     });
     const { loader, everywhere } = await show(AccountsPart);
     await press(loader, /Make an account/);
@@ -267,10 +267,10 @@ describe('the accounts', () => {
     expect(sent('addUser')).toMatchObject([{ role: 'dispatcher', technicianId: null }]);
   });
 
-  it('say so when the passphrase was lost with its answer', async () => {
+  it('say so when the password was lost with its answer', async () => {
     answers['addUser'] = ({ body }) => ({
       user: { ...aMe().user, id: body['userId'], name: body['name'] },
-      passphrase: '',
+      password: '',
     });
     const { loader, everywhere } = await show(AccountsPart);
     await press(loader, /Make an account/);
@@ -305,7 +305,7 @@ describe('the accounts', () => {
     const { text } = await show(AccountsPart);
     expect(text()).toContain('Ana Ruiz (you)');
     expect(text()).not.toContain('Disable');
-    expect(text()).not.toContain('New passphrase');
+    expect(text()).not.toContain('New password');
   });
 });
 

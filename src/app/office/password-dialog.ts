@@ -10,26 +10,26 @@ import {
 } from '@angular/material/dialog';
 import { MatIcon } from '@angular/material/icon';
 
-export interface NewPassphrase {
+export interface NewPassword {
   readonly name: string;
   readonly signInName: string;
   /** Empty when the answer that held it was lost: it is stored nowhere. */
-  readonly passphrase: string;
+  readonly password: string;
 }
 
-/** Shows a new passphrase, this once. Closes only by its button, so that no slip loses it. */
+/** Shows a new password, this once. Closes only by its button, so that no slip loses it. */
 @Component({
-  selector: 'thaw-passphrase-dialog',
+  selector: 'thaw-password-dialog',
   imports: [MatButton, MatDialogActions, MatDialogClose, MatDialogContent, MatDialogTitle, MatIcon],
   template: `
-    <h2 mat-dialog-title>Passphrase for {{ data.name }}</h2>
+    <h2 mat-dialog-title>Password for {{ data.name }}</h2>
     <mat-dialog-content>
-      @if (data.passphrase) {
+      @if (data.password) {
         <p>
           Sign-in name <strong>{{ data.signInName }}</strong>
         </p>
-        <p class="passphrase">
-          <code>{{ data.passphrase }}</code>
+        <p class="password">
+          <code>{{ data.password }}</code>
           <button matButton="outlined" type="button" (click)="copy()">
             <mat-icon svgIcon="content-copy" aria-hidden="true" />
             Copy
@@ -47,20 +47,20 @@ export interface NewPassphrase {
         <p class="caution">
           <mat-icon svgIcon="warning" aria-hidden="true" />
           <span>
-            It was made, but the answer with the passphrase was lost on the way and cannot be shown
-            again. Use "New passphrase" for {{ data.name }}.
+            It was made, but the answer with the password was lost on the way and cannot be shown
+            again. Use "New password" for {{ data.name }}.
           </span>
         </p>
       }
     </mat-dialog-content>
     <mat-dialog-actions align="end">
       <button matButton="filled" type="button" mat-dialog-close>
-        {{ data.passphrase ? 'I have passed it on' : 'Close' }}
+        {{ data.password ? 'I have passed it on' : 'Close' }}
       </button>
     </mat-dialog-actions>
   `,
   styles: `
-    .passphrase {
+    .password {
       display: flex;
       flex-wrap: wrap;
       align-items: center;
@@ -82,14 +82,14 @@ export interface NewPassphrase {
   `,
   changeDetection: ChangeDetectionStrategy.OnPush,
 })
-export class PassphraseDialog {
+export class PasswordDialog {
   private readonly clipboard = inject(Clipboard);
-  protected readonly data = inject<NewPassphrase>(MAT_DIALOG_DATA);
+  protected readonly data = inject<NewPassword>(MAT_DIALOG_DATA);
   protected readonly copied = signal('');
 
   protected copy(): void {
     this.copied.set(
-      this.clipboard.copy(this.data.passphrase)
+      this.clipboard.copy(this.data.password)
         ? 'Copied'
         : 'This browser does not allow it: select it and copy by hand',
     );
