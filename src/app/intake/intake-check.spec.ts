@@ -1,7 +1,7 @@
 /** @jest-environment node */
 import { TakeCall } from '@shared/contract/calls';
 import { HOUR_MS } from '@shared/domain/instant';
-import { checkIntake, errorsOfPointers, phoneOf } from './intake-check';
+import { checkIntake, errorsOfPointers } from './intake-check';
 import {
   blankDraft,
   changeCompartment,
@@ -13,6 +13,7 @@ import {
 } from './intake-draft';
 
 const ZONE = 'America/New_York';
+const AREA_CODE = '252';
 const NOW = Date.UTC(2026, 8, 3, 6, 30);
 const newId = () => crypto.randomUUID();
 
@@ -37,13 +38,13 @@ const aDraft = (part: Partial<IntakeDraft> = {}): IntakeDraft => {
 };
 
 const errorsOf = (part: Partial<IntakeDraft>) => {
-  const checked = checkIntake(aDraft(part), NOW, ZONE);
+  const checked = checkIntake(aDraft(part), NOW, ZONE, AREA_CODE);
   return checked.ready ? {} : checked.errors;
 };
 
 describe('checkIntake', () => {
   it('makes a command that the contract accepts as it is', () => {
-    const checked = checkIntake(aDraft(), NOW, ZONE);
+    const checked = checkIntake(aDraft(), NOW, ZONE, AREA_CODE);
     if (!checked.ready) throw new Error(JSON.stringify(checked.errors));
     expect(TakeCall.parse(checked.body)).toEqual(checked.body);
     expect(checked.body).toMatchObject({
@@ -59,13 +60,13 @@ describe('checkIntake', () => {
   it('makes one for every kind of unit, with medicine kept in it', () => {
     for (const kind of ['refrigerator', 'upright-freezer', 'walk-in', 'medicine-fridge'] as const) {
       const unit = withMedicine(newUnit(kind, newId()), true);
-      const checked = checkIntake(aDraft({ units: [unit] }), NOW, ZONE);
+      const checked = checkIntake(aDraft({ units: [unit] }), NOW, ZONE, AREA_CODE);
       expect(checked.ready && TakeCall.safeParse(checked.body).success).toBe(true);
     }
   });
 
   it('says of every missing field what is wanted, all at once', () => {
-    const checked = checkIntake(blankDraft(newId), NOW, ZONE);
+    const checked = checkIntake(blankDraft(newId), NOW, ZONE, AREA_CODE);
     expect(checked.ready ? [] : Object.keys(checked.errors).sort()).toEqual([
       'address',
       'back',
@@ -77,7 +78,7 @@ describe('checkIntake', () => {
   });
 
   it('keeps "4 h ago" at the moment at which it was typed', () => {
-    const later = checkIntake(aDraft(), NOW + 3 * HOUR_MS, ZONE);
+    const later = checkIntake(aDraft(), NOW + 3 * HOUR_MS, ZONE, AREA_CODE);
     expect(later.ready && later.body.powerOutAt).toBe(NOW - 4 * HOUR_MS);
   });
 
@@ -93,16 +94,8 @@ describe('checkIntake', () => {
 
   it('takes power that is still out', () => {
     const times = { ...aDraft().times, stillOut: true, backAt: null, backText: '' };
-    const checked = checkIntake(aDraft({ times }), NOW, ZONE);
+    const checked = checkIntake(aDraft({ times }), NOW, ZONE, AREA_CODE);
     expect(checked.ready && checked.body.powerBackAt).toBeNull();
-  });
-});
-
-describe('phoneOf', () => {
-  it('knows a number only when all of it has been typed', () => {
-    expect(phoneOf('252 555 014')).toBeNull();
-    expect(phoneOf('252 555 0142')).toBe('+12525550142');
-    expect(phoneOf('1 252 555 0142')).toBe('+12525550142');
   });
 });
 

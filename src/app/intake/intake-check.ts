@@ -1,6 +1,6 @@
 import type { TakeCall } from '@shared/contract/calls';
 import type { Instant } from '@shared/domain/instant';
-import { readPhone } from '@shared/domain/phone-number';
+import { phoneOf, phoneTrouble } from '../ui/phone-entry';
 import type { IntakeDraft } from './intake-draft';
 import { readTimeEntry } from './time-entry';
 
@@ -23,21 +23,25 @@ export type IntakeChecked =
   | { readonly ready: true; readonly body: TakeCall }
   | { readonly ready: false; readonly errors: IntakeErrors };
 
-/** The number as the world writes it, once enough has been typed to know it. */
-export function phoneOf(typed: string): string | null {
-  const reading = readPhone(typed);
-  return reading.kind === 'number' && reading.rest === '' ? reading.number.e164 : null;
-}
-
-/** Turns a draft into the command, or says field by field what is still missing. */
-export function checkIntake(draft: IntakeDraft, now: Instant, zone: string): IntakeChecked {
+/**
+ * Turns a draft into the command, or says field by field what is still missing.
+ *
+ * @param zone the region's time zone, an IANA name
+ * @param areaCode the company's, for numbers that callers give without one
+ */
+export function checkIntake(
+  draft: IntakeDraft,
+  now: Instant,
+  zone: string,
+  areaCode: string | null,
+): IntakeChecked {
   const errors: IntakeErrors = {};
-  const phone = phoneOf(draft.phone);
+  const phone = phoneOf(draft.phone, areaCode);
   if (phone === null) {
     errors.phone =
       draft.phone.trim() === ''
         ? 'A number to ring back is needed.'
-        : 'Ten digits with the area code, as in 252 555 0142.';
+        : phoneTrouble(draft.phone, areaCode);
   }
   const name = draft.name.trim();
   if (name === '') errors.name = 'Who is calling?';

@@ -12,14 +12,9 @@ import { Drafts } from '../core/drafts';
 import { ProblemError } from '../core/problem-error';
 import { Session } from '../core/session';
 import type { StripFacts } from '../board/cold-strip-scale';
+import { areaCodeOf, isAreaCodeAssumed, phoneOf } from '../ui/phone-entry';
 import { areaAt } from './area-at';
-import {
-  checkIntake,
-  errorsOfPointers,
-  type IntakeErrors,
-  type IntakeField,
-  phoneOf,
-} from './intake-check';
+import { checkIntake, errorsOfPointers, type IntakeErrors, type IntakeField } from './intake-check';
 import {
   blankDraft,
   type IntakeDraft,
@@ -76,8 +71,22 @@ export class IntakeModel {
   });
   readonly times = computed<IntakeTimes>(() => timesInForce(this.draftNow().times, this.area()));
 
+  /** The company's own, for callers who leave it out. */
+  private readonly areaCode = computed(() => areaCodeOf(this.session.settings()?.companyPhone));
+  /** The number with the area code that nobody typed, to be read back to the caller; '' otherwise. */
+  readonly completedPhone = computed(() => {
+    const typed = this.draftNow().phone;
+    if (!isAreaCodeAssumed(typed, this.areaCode())) return '';
+    return formatPhone(phoneOf(typed, this.areaCode()) ?? '');
+  });
+
   private readonly checked = computed(() =>
-    checkIntake({ ...this.draftNow(), times: this.times() }, this.clock.now(), this.session.zone()),
+    checkIntake(
+      { ...this.draftNow(), times: this.times() },
+      this.clock.now(),
+      this.session.zone(),
+      this.areaCode(),
+    ),
   );
   readonly isReady = computed(() => this.checked().ready);
 
@@ -119,7 +128,7 @@ export class IntakeModel {
       if (isWorthKeeping(draft)) this.drafts.save(DRAFT_KEY, draft);
       else this.drafts.clear(DRAFT_KEY);
     });
-    const phone = computed(() => phoneOf(this.draftNow().phone));
+    const phone = computed(() => phoneOf(this.draftNow().phone, this.areaCode()));
     effect(() => {
       const number = phone();
       untracked(() => void this.lookUp(number));

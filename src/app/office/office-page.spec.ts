@@ -353,7 +353,7 @@ describe('the technicians', () => {
     await press(loader, /Add a technician/);
     await press(loader, /^Save$/);
     expect(text()).toContain('A name is needed.');
-    expect(text()).toContain('Ten digits are needed');
+    expect(text()).toContain('A number is needed.');
     expect(text()).toContain('Choose where the day begins.');
     expect(sent('addTechnician')).toEqual([]);
   });

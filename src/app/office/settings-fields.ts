@@ -1,5 +1,6 @@
 import type { Settings } from '@shared/contract/office';
-import { formatPhone, readPhone } from '@shared/domain/phone-number';
+import { formatPhone } from '@shared/domain/phone-number';
+import { phoneOf, phoneTrouble } from '../ui/phone-entry';
 import { PLAN_GROUPS } from './plan-settings';
 
 /** What was measured is switched where it is shown, and the store is a place on the map. */
@@ -290,7 +291,7 @@ export function settingFault(field: SettingField, text: string): string | null {
       if (text.trim() === '') return 'A name is needed.';
       return text.trim().length > 80 ? 'At most 80 characters.' : null;
     case 'phone':
-      return phoneOf(text) === null ? 'Ten digits are needed, as in 252 555 0142.' : null;
+      return phoneTrouble(text) || null;
     case 'time':
       return minutesOf(text) === null ? 'A time is needed, as in 21:00.' : null;
     case 'choice':
@@ -319,11 +320,6 @@ export function settingValue(field: SettingField, text: string): string | number
     case 'number':
       return numberOf(text) ?? 0;
   }
-}
-
-export function phoneOf(text: string): string | null {
-  const reading = readPhone(text);
-  return reading.kind === 'number' ? reading.number.e164 : null;
 }
 
 function numberOf(text: string): number | null {

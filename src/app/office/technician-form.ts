@@ -23,11 +23,12 @@ import { Announce } from '../core/announce';
 import { Api, newId } from '../core/api';
 import { Clock } from '../core/clock';
 import { ProblemError, problemWords } from '../core/problem-error';
+import { Session } from '../core/session';
 import { Zone } from '../core/zone';
+import { areaCodeOf, phoneOf, phoneTrouble } from '../ui/phone-entry';
 import { FAULTY, focusFirst, OVERTAKEN } from './focus-first';
 import { filled, inWords, showFaults } from './form-words';
 import { OrderId } from './order-id';
-import { phoneOf } from './settings-fields';
 import {
   fromEntry,
   nextEntry,
@@ -66,10 +67,12 @@ export class TechnicianForm {
   private readonly api = inject(Api);
   private readonly announce = inject(Announce);
   private readonly clock = inject(Clock);
+  private readonly session = inject(Session);
   private readonly zone = inject(Zone);
   private readonly host = inject<ElementRef<HTMLElement>>(ElementRef);
   private readonly order = new OrderId();
   private readonly ownId = newId();
+  private readonly areaCode = computed(() => areaCodeOf(this.session.settings()?.companyPhone));
 
   /** `null` adds one. */
   readonly technician = input.required<TechnicianDto | null>();
@@ -82,9 +85,7 @@ export class TechnicianForm {
     name: new FormControl('', { nonNullable: true, validators: filled('A name is needed.') }),
     phone: new FormControl('', {
       nonNullable: true,
-      validators: inWords<string>((text) =>
-        phoneOf(text) === null ? 'Ten digits are needed, as in 252 555 0142.' : null,
-      ),
+      validators: inWords<string>((text) => phoneTrouble(text, this.areaCode()) || null),
     }),
     skills: checks(SKILLS),
     van: new FormGroup(
@@ -277,7 +278,7 @@ export class TechnicianForm {
     const { name, phone, skills, van, active } = this.form.getRawValue();
     return {
       name: name.trim(),
-      phone: phoneOf(phone) ?? phone,
+      phone: phoneOf(phone, this.areaCode()) ?? phone,
       skills: SKILLS.filter((skill) => skills[skill]),
       van: Object.fromEntries(
         PARTS.map((part) => [part, Number(van[part])] as const).filter(([, count]) => count > 0),
@@ -345,5 +346,5 @@ const FIELD_WORDS: Readonly<Record<TechnicianField, string>> = {
 
 const OWN_WORDS: Readonly<Record<string, string>> = {
   name: 'A name of at most 80 characters is needed.',
-  phone: 'Ten digits are needed, as in 252 555 0142.',
+  phone: 'A telephone number is needed, as in 252 555 0142.',
 };
