@@ -52,6 +52,13 @@ describe('guessColumns', () => {
     expect(map.columns.map(({ role }) => role)).toEqual(roles);
   });
 
+  it('never gives a share of nothing as the reason for a guess', () => {
+    const rows = ROWS.map((row, i) => [`${i + 2} h`, ...row.slice(1, 5), 'no cold']);
+    const { columns } = guessColumns(['Power out', ...HEADER.slice(1)], rows);
+    expect(columns.map(({ role }) => role)).toContain('powerOutAt');
+    expect(columns.map(({ why }) => why).join(' ')).not.toMatch(/\b0 %/);
+  });
+
   it('knows them by their titles alone', () => {
     expect(guessColumns(HEADER, []).columns.map(({ role }) => role)).toEqual(roles);
   });

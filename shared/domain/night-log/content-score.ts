@@ -93,7 +93,7 @@ export function contentScore(role: ColumnRole, sample: ColumnSample): [number, s
       const addresses = share('address') + share('street') * 0.5 + share('town-line') * 0.5;
       return [
         addresses >= 0.35 ? Math.min(1, addresses) : -0.8,
-        `${percent(share('address'))} are addresses`,
+        `${percent(share('address', 'street', 'town-line'))} are addresses or parts of one`,
       ];
     }
     case 'streetNumber': {
@@ -159,7 +159,8 @@ export function contentScore(role: ColumnRole, sample: ColumnSample): [number, s
       const speaks = Math.max(messages, sample.meanWords >= 3 ? words * 0.7 : 0);
       return [
         speaks >= 0.25 ? Math.min(1, speaks + 0.2) : words > 0.5 ? 0 : -0.6,
-        `${percent(messages)} are sentences`,
+        // What spoke for it: sentences, or that its cells run to several words without being any.
+        messages >= 0.25 ? `${percent(messages)} are sentences` : 'its cells run to several words',
       ];
     }
     case 'powerOutAt':
@@ -172,7 +173,9 @@ export function contentScore(role: ColumnRole, sample: ColumnSample): [number, s
           : words > 0.5
             ? -0.2
             : -0.6,
-        `${percent(when)} are times`,
+        when + share('duration') >= 0.25
+          ? `${percent(when + share('duration'))} are times`
+          : 'its cells tell how the power stands',
       ];
     }
     case 'hoursOut':
