@@ -2,7 +2,6 @@ import {
   afterNextRender,
   ChangeDetectionStrategy,
   Component,
-  computed,
   type ElementRef,
   inject,
   linkedSignal,
@@ -19,20 +18,19 @@ import type { Span } from '@shared/domain/thaw/uncooled-time';
 import { newId } from '../core/api';
 import { Clock } from '../core/clock';
 import { Session } from '../core/session';
-import { Zone } from '../core/zone';
 import { AddressField } from '../intake/address-field';
 import { changeUnit, newUnit } from '../intake/intake-draft';
 import { PowerSpans } from '../intake/power-spans';
 import { readTimeEntry } from '../intake/time-entry';
+import { TimeField } from '../intake/time-field';
 import { UnitCard } from '../intake/unit-card';
 import { CallModel } from './call-model';
 import { UNIT_WORDS } from './compartment-words';
-import { fromNowWords } from './time-words';
 
 /** Corrects a call and adds what is found out later: readings, a look inside, dry ice. */
 @Component({
   selector: 'thaw-amend-form',
-  imports: [AddressField, PowerSpans, UnitCard],
+  imports: [AddressField, PowerSpans, TimeField, UnitCard],
   templateUrl: './amend-form.html',
   styleUrls: ['../intake/fields.scss', './amend-form.scss'],
   changeDetection: ChangeDetectionStrategy.OnPush,
@@ -41,7 +39,6 @@ export class AmendForm {
   protected readonly call = inject(CallModel);
   private readonly clock = inject(Clock);
   private readonly session = inject(Session);
-  private readonly zone = inject(Zone);
 
   readonly closed = output();
 
@@ -58,9 +55,6 @@ export class AmendForm {
 
   protected readonly unitKinds = UNIT_KINDS.map((kind) => ({ kind, name: UNIT_WORDS[kind] }));
   protected readonly unitWords = UNIT_WORDS;
-
-  protected readonly out = computed(() => this.meaning(this.edited()?.outAt ?? null));
-  protected readonly back = computed(() => this.meaning(this.edited()?.backAt ?? null));
 
   private readonly nameField = viewChild<ElementRef<HTMLInputElement>>('name');
 
@@ -89,9 +83,15 @@ export class AmendForm {
   protected typeTime(which: 'out' | 'back', text: string): void {
     const entry = readTimeEntry(text, this.clock.exact(), this.session.zone());
     const at = entry.kind === 'moment' ? entry.at : null;
-    this.error.set(entry.kind === 'unreadable' ? entry.why : '');
-    if (which === 'out') this.set({ outText: text, outAt: at, timesTouched: true });
-    else this.set({ backText: text, backAt: at, timesTouched: true, stillOut: false });
+    const trouble = entry.kind === 'unreadable' ? entry.why : '';
+    this.error.set('');
+    if (which === 'out')
+      this.set({ outText: text, outAt: at, outTrouble: trouble, timesTouched: true });
+    else
+      this.set({
+        ...{ backText: text, backAt: at, backTrouble: trouble },
+        ...{ timesTouched: true, stillOut: false },
+      });
   }
 
   protected async save(): Promise<void> {
@@ -134,11 +134,6 @@ export class AmendForm {
         : {}),
     });
   }
-
-  private meaning(at: Instant | null): { readonly at: string; readonly words: string } {
-    if (at === null) return { at: '', words: '' };
-    return { at: this.zone.dayTime(at), words: fromNowWords(at, this.clock.now()) };
-  }
 }
 
 interface Edited {
@@ -148,6 +143,9 @@ interface Edited {
   readonly language: 'en' | 'es';
   readonly outText: string;
   readonly backText: string;
+  /** Why a text cannot be read; '' when it can. */
+  readonly outTrouble: string;
+  readonly backTrouble: string;
   readonly outAt: Instant | null;
   readonly backAt: Instant | null;
   readonly stillOut: boolean;
@@ -165,6 +163,8 @@ const startFrom = (detail: CallDetail): Edited => ({
   language: detail.language,
   outText: '',
   backText: '',
+  outTrouble: '',
+  backTrouble: '',
   outAt: detail.powerOutAt,
   backAt: detail.powerBackAt,
   stillOut: detail.powerBackAt === null,
@@ -174,10 +174,13 @@ const startFrom = (detail: CallDetail): Edited => ({
   units: detail.units,
 });
 
-function problemIn({ name, address, units, outAt, backAt, stillOut }: Edited): string {
+function problemIn(edited: Edited): string {
+  const { name, address, units, outAt, backAt, stillOut } = edited;
   if (name.trim() === '') return 'A name is needed.';
   if (address.text.trim() === '') return 'An address is needed.';
   if (units.length === 0) return 'A call has at least one unit.';
+  if (edited.outTrouble) return `Power went: ${edited.outTrouble}`;
+  if (!stillOut && edited.backTrouble) return `Came back: ${edited.backTrouble}`;
   if (outAt === null) return 'When did the power go?';
   if (!stillOut && backAt === null) return 'When did it come back? Or tick "still out".';
   if (!stillOut && backAt !== null && backAt < outAt) return 'It came back before it went.';

@@ -1,18 +1,16 @@
 import {
-  afterNextRender,
   ChangeDetectionStrategy,
   Component,
   effect,
-  type ElementRef,
   inject,
   input,
   output,
   signal,
   untracked,
-  viewChild,
 } from '@angular/core';
 import type { StopCard } from '@shared/contract/routes';
 import { Drafts } from '../core/drafts';
+import { type Choice, ChoiceForm } from './choice-form';
 import { formDraftKey } from './day-orders';
 import { DECLINE_WORDS, type DeclineReason } from './day-words';
 
@@ -26,43 +24,23 @@ const REASONS = Object.keys(DECLINE_WORDS) as DeclineReason[];
 /** Gives a stop back, with the reason that the desk needs to place it again. */
 @Component({
   selector: 'thaw-decline-form',
+  imports: [ChoiceForm],
   template: `
-    <form (submit)="$event.preventDefault(); submit()" novalidate>
-      <h1 #title tabindex="-1">Give back call {{ card().callNumber }}</h1>
-      <fieldset>
-        <legend>Why?</legend>
-        @for (one of reasons; track one) {
-          <label class="choice" [class.chosen]="reason() === one">
-            <input
-              type="radio"
-              name="reason"
-              [checked]="reason() === one"
-              (change)="reason.set(one)"
-            />
-            {{ words[one] }}
-          </label>
-        }
-      </fieldset>
-      <label class="field">
-        A few words for the desk
-        <textarea
-          #field
-          rows="2"
-          maxlength="300"
-          [value]="note()"
-          (input)="note.set(field.value)"
-        ></textarea>
-      </label>
-      @if (wrong()) {
-        <p class="wrong" role="alert">{{ wrong() }}</p>
-      }
-      <div class="bar">
-        <button type="button" class="second" (click)="closed.emit()">Back</button>
-        <button type="submit" class="first" [disabled]="isBusy()">Give it back</button>
-      </div>
-    </form>
+    <thaw-choice-form
+      [heading]="'Give back call ' + card().callNumber"
+      legend="Why?"
+      [choices]="choices"
+      [(choice)]="reason"
+      [mostNote]="300"
+      [(note)]="note"
+      submitWords="Give it back"
+      [isBusy]="isBusy()"
+      [wrong]="wrong()"
+      (submitted)="submit()"
+      (closed)="closed.emit()"
+    />
   `,
-  styleUrl: './day-form.scss',
+  styles: ':host { display: contents; }',
   changeDetection: ChangeDetectionStrategy.OnPush,
 })
 export class DeclineForm {
@@ -73,12 +51,13 @@ export class DeclineForm {
   readonly answered = output<DeclineAnswer>();
   readonly closed = output();
 
-  protected readonly reasons = REASONS;
-  protected readonly words = DECLINE_WORDS;
+  protected readonly choices: readonly Choice<DeclineReason>[] = REASONS.map((value) => ({
+    value,
+    words: DECLINE_WORDS[value],
+  }));
   protected readonly reason = signal<DeclineReason | null>(null);
   protected readonly note = signal('');
   protected readonly wrong = signal('');
-  private readonly title = viewChild.required<ElementRef<HTMLElement>>('title');
 
   constructor() {
     let isRestored = false;
@@ -89,7 +68,6 @@ export class DeclineForm {
       else untracked(() => this.restore(key));
       isRestored = true;
     });
-    afterNextRender(() => this.title().nativeElement.focus());
   }
 
   protected submit(): void {

@@ -1,21 +1,19 @@
 import {
-  afterNextRender,
   ChangeDetectionStrategy,
   Component,
   computed,
   effect,
-  type ElementRef,
   inject,
   input,
   output,
   signal,
   untracked,
-  viewChild,
 } from '@angular/core';
 import type { StopCard, TechnicianDto } from '@shared/contract/routes';
 import { VISIT_OUTCOMES, type VisitOutcome } from '@shared/domain/call-state';
 import { PART_WORDS, type Part, PARTS } from '@shared/domain/skills';
 import { Drafts } from '../core/drafts';
+import { type Choice, ChoiceForm } from './choice-form';
 import { formDraftKey } from './day-orders';
 import { OUTCOME_CHOICES } from './day-words';
 
@@ -33,35 +31,23 @@ const MOST_PARTS = 20;
 /** Ends the visit: what came of it, in plain words, and what it took from the van. */
 @Component({
   selector: 'thaw-finish-form',
+  imports: [ChoiceForm],
   template: `
-    <form (submit)="$event.preventDefault(); submit()" novalidate>
-      <h1 #title tabindex="-1">Finish call {{ card().callNumber }}</h1>
-      <fieldset>
-        <legend>What came of it?</legend>
-        @for (one of outcomes; track one.outcome) {
-          <label class="choice" [class.chosen]="outcome() === one.outcome">
-            <input
-              type="radio"
-              name="outcome"
-              [checked]="outcome() === one.outcome"
-              (change)="outcome.set(one.outcome)"
-            />
-            <span
-              >{{ one.label }} <span class="soft">{{ one.means }}</span></span
-            >
-          </label>
-        }
-      </fieldset>
-      <label class="field">
-        What you found and did
-        <textarea
-          #field
-          rows="3"
-          maxlength="2000"
-          [value]="note()"
-          (input)="note.set(field.value)"
-        ></textarea>
-      </label>
+    <thaw-choice-form
+      [heading]="'Finish call ' + card().callNumber"
+      legend="What came of it?"
+      [choices]="choices"
+      [(choice)]="outcome"
+      noteLabel="What you found and did"
+      [noteRows]="3"
+      [mostNote]="2000"
+      [(note)]="note"
+      [submitWords]="submitWords()"
+      [isBusy]="isBusy()"
+      [wrong]="wrong()"
+      (submitted)="submit()"
+      (closed)="closed.emit()"
+    >
       @if (parts().length > 0) {
         <fieldset>
           <legend>Parts used from the van</legend>
@@ -92,16 +78,9 @@ const MOST_PARTS = 20;
           }
         </fieldset>
       }
-      @if (wrong()) {
-        <p class="wrong" role="alert">{{ wrong() }}</p>
-      }
-      <div class="bar">
-        <button type="button" class="second" (click)="closed.emit()">Back</button>
-        <button type="submit" class="first" [disabled]="isBusy()">{{ submitWords() }}</button>
-      </div>
-    </form>
+    </thaw-choice-form>
   `,
-  styleUrl: './day-form.scss',
+  styleUrl: './finish-form.scss',
   changeDetection: ChangeDetectionStrategy.OnPush,
 })
 export class FinishForm {
@@ -113,14 +92,15 @@ export class FinishForm {
   readonly answered = output<FinishAnswer>();
   readonly closed = output();
 
-  protected readonly outcomes = OUTCOME_CHOICES;
+  protected readonly choices: readonly Choice<VisitOutcome>[] = OUTCOME_CHOICES.map(
+    ({ outcome, label, means }) => ({ value: outcome, words: label, means }),
+  );
   protected readonly words = PART_WORDS;
   protected readonly mostParts = MOST_PARTS;
   protected readonly outcome = signal<VisitOutcome | null>(null);
   protected readonly note = signal('');
   protected readonly used = signal<Used>({});
   protected readonly wrong = signal('');
-  private readonly title = viewChild.required<ElementRef<HTMLElement>>('title');
 
   /** What the van carries, and what this call was thought to need though the van has none. */
   protected readonly parts = computed(() =>
@@ -145,7 +125,6 @@ export class FinishForm {
       else untracked(() => this.restore(key));
       isRestored = true;
     });
-    afterNextRender(() => this.title().nativeElement.focus());
   }
 
   protected count(part: Part, step: number): void {
@@ -156,6 +135,10 @@ export class FinishForm {
     const outcome = this.outcome();
     if (outcome === null) {
       this.wrong.set('Choose what came of it first.');
+      return;
+    }
+    if (outcome === 'parts-on-order' && this.note().trim() === '') {
+      this.wrong.set('Say which part, so that the desk orders the right one.');
       return;
     }
     const used = this.used();

@@ -1,7 +1,9 @@
 import { type ComponentFixture, TestBed } from '@angular/core/testing';
+import { MatIconTestingModule } from '@angular/material/icon/testing';
 import type { LonLat } from '@shared/contract/common';
 import { Api } from '../core/api';
 import { ProblemError } from '../core/problem-error';
+import { Session } from '../core/session';
 import { RoadReport } from './road-report';
 
 const call = jest.fn();
@@ -26,7 +28,13 @@ beforeEach(() => {
   call.mockReset().mockResolvedValue({ done: true });
   here = () => Promise.resolve([-40.1, 34.2]);
   sent = 0;
-  TestBed.configureTestingModule({ providers: [{ provide: Api, useValue: { call } }] });
+  TestBed.configureTestingModule({
+    providers: [
+      { provide: Api, useValue: { call } },
+      { provide: Session, useValue: { settings: () => ({ companyPhone: '+12525550100' }) } },
+    ],
+    imports: [MatIconTestingModule],
+  });
   fixture = TestBed.createComponent(RoadReport);
   fixture.componentRef.setInput('here', () => here());
   fixture.componentInstance.sent.subscribe(() => (sent += 1));
@@ -53,6 +61,7 @@ describe('RoadReport', () => {
     await choose(0);
     await press();
     expect(wrong()).toContain('Ring the desk.');
+    expect(element().querySelector('a')?.getAttribute('href')).toBe('tel:+12525550100');
     expect([call.mock.calls.length, sent]).toEqual([0, 0]);
   });
 

@@ -1,70 +1,44 @@
-import {
-  afterNextRender,
-  ChangeDetectionStrategy,
-  Component,
-  type ElementRef,
-  inject,
-  input,
-  output,
-  signal,
-  viewChild,
-} from '@angular/core';
+import { ChangeDetectionStrategy, Component, inject, input, output, signal } from '@angular/core';
 import type { LonLat } from '@shared/contract/common';
 import { Api, newId } from '../core/api';
 import { ProblemError, problemWords } from '../core/problem-error';
+import { type Choice, ChoiceForm } from './choice-form';
+import { RingDesk } from './ring-desk';
 
-const KINDS = [
-  { kind: 'closed', words: 'Closed: barrier, tree, line down' },
-  { kind: 'flooded', words: 'Flooded' },
-] as const;
-type Kind = (typeof KINDS)[number]['kind'];
+type Kind = 'closed' | 'flooded';
+const KINDS: readonly Choice<Kind>[] = [
+  { value: 'closed', words: 'Closed: barrier, tree, line down', means: 'Keep away from a line.' },
+  { value: 'flooded', words: 'Flooded' },
+];
 
 /** A road that nobody passes, told from where the van stands. The desk looks at it before routes go round. */
 @Component({
   selector: 'thaw-road-report',
+  imports: [ChoiceForm, RingDesk],
   template: `
-    <form (submit)="$event.preventDefault(); send()" novalidate>
-      <h1 #title tabindex="-1">Report a blocked road</h1>
-      <p>
-        Stop where it is safe first. The road beside you is reported from where this phone is; the
-        desk confirms it before routes go round it.
+    <thaw-choice-form
+      heading="Report a blocked road"
+      legend="What is it?"
+      [choices]="kinds"
+      [(choice)]="kind"
+      [mostNote]="500"
+      [(note)]="notes"
+      [submitWords]="isBusy() ? 'Sending…' : 'Report it'"
+      [isBusy]="isBusy()"
+      [wrong]="wrong()"
+      (submitted)="send()"
+      (closed)="closed.emit()"
+    >
+      <p intro>
+        Stop where it is safe first; never drive into water. The road beside you is reported from
+        where this phone is; the desk confirms it before routes go round it.
       </p>
-      <fieldset>
-        <legend>What is it?</legend>
-        @for (one of kinds; track one.kind) {
-          <label class="choice" [class.chosen]="kind() === one.kind">
-            <input
-              type="radio"
-              name="blocked"
-              [checked]="kind() === one.kind"
-              (change)="kind.set(one.kind)"
-            />
-            {{ one.words }}
-          </label>
-        }
-      </fieldset>
-      <label class="field">
-        A few words for the desk
-        <textarea
-          #field
-          rows="2"
-          maxlength="500"
-          [value]="notes()"
-          (input)="notes.set(field.value)"
-        ></textarea>
-      </label>
-      @if (wrong()) {
-        <p class="wrong" role="alert">{{ wrong() }}</p>
+      @if (hasNoPlace()) {
+        <thaw-ring-desk help />
       }
-      <div class="bar">
-        <button type="button" class="second" (click)="closed.emit()">Back</button>
-        <button type="submit" class="first" [disabled]="isBusy()">
-          {{ isBusy() ? 'Sending…' : 'Report it' }}
-        </button>
-      </div>
-    </form>
+    </thaw-choice-form>
   `,
-  styleUrl: './day-form.scss',
+  styles: ':host { display: contents; }',
   changeDetection: ChangeDetectionStrategy.OnPush,
 })
 export class RoadReport {
@@ -80,13 +54,9 @@ export class RoadReport {
   protected readonly notes = signal('');
   protected readonly wrong = signal('');
   protected readonly isBusy = signal(false);
-  private readonly title = viewChild.required<ElementRef<HTMLElement>>('title');
+  protected readonly hasNoPlace = signal(false);
   /** The report that was sent last; a repeat of the same is the same command. */
   private last = { content: '', commandId: '', stormRoadId: '' };
-
-  constructor() {
-    afterNextRender(() => this.title().nativeElement.focus());
-  }
 
   protected async send(): Promise<void> {
     const kind = this.kind();
@@ -96,6 +66,7 @@ export class RoadReport {
     this.isBusy.set(true);
     try {
       const at = await this.here()();
+      this.hasNoPlace.set(!at);
       if (!at) {
         return this.wrong.set(
           'This phone does not say where it is, so the road is not known. Ring the desk.',

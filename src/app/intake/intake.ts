@@ -14,28 +14,27 @@ import {
 import { MatIcon } from '@angular/material/icon';
 import type { UnitFacts } from '@shared/contract/calls';
 import { UNIT_KINDS, type UnitKind } from '@shared/domain/cold-unit';
-import type { Instant } from '@shared/domain/instant';
-import { AsYouType } from 'libphonenumber-js/min';
 import { ColdRuler } from '../board/cold-ruler';
 import { ColdStrip } from '../board/cold-strip';
 import { stripState } from '../board/cold-strip-scale';
 import { UNIT_WORDS } from '../board/compartment-words';
-import { fromNowWords } from '../board/time-words';
 import { Announce } from '../core/announce';
 import { Clock } from '../core/clock';
 import { Keys } from '../core/keys';
 import { money, Zone } from '../core/zone';
+import { groupedPhone } from '../ui/phone-entry';
 import { AddressField } from './address-field';
 import { changeUnit } from './intake-draft';
 import { IntakeModel } from './intake-model';
 import { PinRequest } from './pin-request';
 import { PowerSpans } from './power-spans';
+import { TimeField } from './time-field';
 import { UnitCard } from './unit-card';
 
 /** Takes a call by keyboard alone. What was typed is kept until the server has it. */
 @Component({
   selector: 'thaw-intake',
-  imports: [AddressField, ColdRuler, ColdStrip, MatIcon, PowerSpans, UnitCard],
+  imports: [AddressField, ColdRuler, ColdStrip, MatIcon, PowerSpans, TimeField, UnitCard],
   templateUrl: './intake.html',
   styleUrls: ['./fields.scss', './intake.scss'],
   providers: [IntakeModel],
@@ -60,13 +59,6 @@ export class Intake {
   private readonly addressField = viewChild.required(AddressField);
   private readonly unitCards = viewChildren(UnitCard);
 
-  protected readonly outShown = computed(() =>
-    this.shownTime(this.model.times().outText, this.model.times().outAt),
-  );
-  protected readonly backShown = computed(() =>
-    this.shownTime(this.model.times().backText, this.model.times().backAt),
-  );
-
   /** What is still to be saved, in money and in words. */
   protected readonly savable = computed(() => {
     const facts = this.model.preview();
@@ -83,9 +75,11 @@ export class Intake {
 
   /** What is known of the number, in a sentence. */
   protected readonly knownWords = computed(() => {
+    const completed = this.model.completedPhone();
+    const read = completed ? `Taken as ${completed}: say it back. ` : '';
     const found = this.model.household();
-    if (!found) return '';
-    if (!found.household) return 'Not known yet.';
+    if (!found) return read;
+    if (!found.household) return `${read}Not known yet.`;
     const calls = `${found.earlierCalls} ${found.earlierCalls === 1 ? 'call' : 'calls'} before`;
     const texts = found.household.optedOut ? '; wants no texts' : '';
     return `Known: ${found.household.name}, ${calls}${texts}.`;
@@ -134,7 +128,7 @@ export class Intake {
     // Formatting moves the cursor to the end, so it waits until the cursor is there.
     const isAtEnd = field.selectionStart === field.value.length;
     const isDeleting = field.value.length < this.model.draft().phone.length;
-    const text = isAtEnd && !isDeleting ? new AsYouType('US').input(field.value) : field.value;
+    const text = isAtEnd && !isDeleting ? groupedPhone(field.value) : field.value;
     field.value = text;
     this.model.change({ phone: text }, 'phone');
   }
@@ -206,13 +200,5 @@ export class Intake {
 
   private focusFirstError(): void {
     this.element.nativeElement.querySelector<HTMLElement>('[aria-invalid=true]')?.focus();
-  }
-
-  /** What a time field shows: what was typed, or the moment that the outage area gave. */
-  private shownTime(text: string, at: Instant | null): { text: string; meaning: string } {
-    if (at === null) return { text, meaning: '' };
-    const words = this.zone.dayTime(at);
-    const meaning = `${words}, ${fromNowWords(at, this.clock.now())}`;
-    return { text: text === '' ? words : text, meaning };
   }
 }

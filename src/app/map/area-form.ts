@@ -10,20 +10,19 @@ import {
   untracked,
   viewChild,
 } from '@angular/core';
-import { fromNowWords } from '../board/time-words';
-import { Clock } from '../core/clock';
-import { Zone } from '../core/zone';
+import { TimeField } from '../intake/time-field';
 import { AreaEditor } from './area-editor';
 import { AreaOverlaps } from './area-overlap-list';
 import { shapeWords } from './area-ground';
 import { FeederList } from './feeder-list';
 import { FeederPick } from './feeder-pick';
 import { canClose, LEAST_CORNERS, removeCorner, selectNext } from './outline';
+import { OvertakenBox } from './overtaken-box';
 
 /** Beside the map while an outage area is drawn or changed: what to do next, its times, saving. */
 @Component({
   selector: 'thaw-area-form',
-  imports: [AreaOverlaps, FeederList],
+  imports: [AreaOverlaps, FeederList, OvertakenBox, TimeField],
   templateUrl: './area-form.html',
   styleUrl: './map-panel.scss',
   changeDetection: ChangeDetectionStrategy.OnPush,
@@ -31,8 +30,6 @@ import { canClose, LEAST_CORNERS, removeCorner, selectNext } from './outline';
 export class AreaForm {
   protected readonly editor = inject(AreaEditor);
   protected readonly feeders = inject(FeederPick);
-  private readonly clock = inject(Clock);
-  private readonly zone = inject(Zone);
 
   /** The corner that the buttons have just chosen; the map shows it. */
   readonly cornerChosen = output<number>();
@@ -54,8 +51,6 @@ export class AreaForm {
   });
   protected readonly corners = computed(() => this.editor.outline().corners.length);
   protected readonly selectedCorner = computed(() => this.editor.outline().selected);
-  protected readonly outWords = computed(() => this.meaning(this.editor.times().outAt));
-  protected readonly backWords = computed(() => this.meaning(this.editor.times().backAt));
   protected readonly insideWords = computed(() => {
     const inside = this.editor.callsInside();
     if (inside === 0) return 'No open call lies inside.';
@@ -87,9 +82,5 @@ export class AreaForm {
   protected moveCorners(): void {
     this.feeders.stop();
     this.editor.moveCorners();
-  }
-
-  private meaning(at: number | null): string {
-    return at === null ? '' : `${this.zone.dayTime(at)}, ${fromNowWords(at, this.clock.now())}`;
   }
 }

@@ -6,12 +6,14 @@ import {
   output,
   signal,
 } from '@angular/core';
+import { TimeField } from '../intake/time-field';
 import { FileImport } from './file-import';
 import { MOST_AREAS, MOST_FILE_BYTES } from './geojson-areas';
 
 /** Outage areas from a file: what is in it, when the power went where the file does not say, saving. */
 @Component({
   selector: 'thaw-area-import',
+  imports: [TimeField],
   templateUrl: './area-import.html',
   styleUrls: ['./map-panel.scss', './area-import.scss'],
   changeDetection: ChangeDetectionStrategy.OnPush,

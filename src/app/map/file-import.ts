@@ -2,7 +2,6 @@ import { computed, inject, Injectable, signal } from '@angular/core';
 import type { AreaDto } from '@shared/contract/areas';
 import type { Instant } from '@shared/domain/instant';
 import { isInShape, type OutageShape, shapesOverlap } from '@shared/domain/outage-shape';
-import { fromNowWords } from '../board/time-words';
 import { Announce } from '../core/announce';
 import { Api, newId } from '../core/api';
 import { BoardStore } from '../core/board-store';
@@ -61,8 +60,6 @@ export class FileImport {
     const count = this.rows().length;
     return count === 1 ? '1 area' : `${count} areas`;
   });
-  readonly outWords = computed(() => this.meaning(this.times().outTrouble, this.times().outAt));
-  readonly backWords = computed(() => this.meaning(this.times().backTrouble, this.times().backAt));
 
   async open(file: File): Promise<void> {
     this.clear();
@@ -219,10 +216,5 @@ export class FileImport {
       ],
     ];
     return (shape) => shapesOverlap(shape, region);
-  }
-
-  private meaning(trouble: string, at: Instant | null): string {
-    if (trouble !== '' || at === null) return trouble;
-    return `${this.zone.dayTime(at)}, ${fromNowWords(at, this.clock.now())}`;
   }
 }

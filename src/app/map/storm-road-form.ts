@@ -10,26 +10,22 @@ import {
   viewChild,
 } from '@angular/core';
 import { STORM_ROAD_KINDS } from '@shared/domain/roads/conditions';
-import { fromNowWords } from '../board/time-words';
-import { Clock } from '../core/clock';
-import { Zone } from '../core/zone';
+import { TimeField } from '../intake/time-field';
 import { canClose, LEAST_CORNERS } from './outline';
+import { OvertakenBox } from './overtaken-box';
 import { StormRoadEditor } from './storm-road-editor';
 import { KIND_WORDS } from './storm-road-words';
-import { TimeField } from './time-field';
 
 /** Beside the map while a storm road is put on it or changed. */
 @Component({
   selector: 'thaw-storm-road-form',
-  imports: [TimeField],
+  imports: [OvertakenBox, TimeField],
   templateUrl: './storm-road-form.html',
   styleUrls: ['./map-panel.scss', './storm-road-form.scss'],
   changeDetection: ChangeDetectionStrategy.OnPush,
 })
 export class StormRoadForm {
   protected readonly editor = inject(StormRoadEditor);
-  private readonly clock = inject(Clock);
-  private readonly zone = inject(Zone);
 
   readonly cancelled = output();
   /** Whoever uses no pointer acts at the middle of the map. */
@@ -41,17 +37,11 @@ export class StormRoadForm {
   protected readonly corners = computed(() => this.editor.outline().corners.length);
   protected readonly canFinish = computed(() => canClose(this.editor.outline()));
   protected readonly title = computed(() => this.editor.base()?.name ?? 'New storm road');
-  protected readonly startWords = computed(() => this.meaning(this.editor.draft().start.at));
-  protected readonly endWords = computed(() => this.meaning(this.editor.draft().end.at));
 
   constructor() {
     effect(() => {
       const heading = this.heading().nativeElement;
       if (untracked(() => this.editor.base()) !== null) heading.focus();
     });
-  }
-
-  private meaning(at: number | null): string {
-    return at === null ? '' : `${this.zone.dayTime(at)}, ${fromNowWords(at, this.clock.now())}`;
   }
 }

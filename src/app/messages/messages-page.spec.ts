@@ -11,6 +11,7 @@ import { Drafts } from '../core/drafts';
 import { ProblemError } from '../core/problem-error';
 import { Session } from '../core/session';
 import { aCallRow, aMe, aStorm, NOW } from '../core/testing';
+import { SetbackBox } from '../ui/setback-box';
 import { MessageListView } from './message-list';
 import { MessagesPage } from './messages-page';
 import { ReplyBox } from './reply-box';
@@ -172,7 +173,7 @@ describe('MessagesPage', () => {
         { provide: Router, useValue: { navigate } },
       ],
     });
-    for (const part of [MessagesPage, MessageListView, ThreadView, ReplyBox]) {
+    for (const part of [MessagesPage, MessageListView, ThreadView, ReplyBox, SetbackBox]) {
       TestBed.overrideComponent(part, {
         remove: { imports: [MatIcon] },
         add: { imports: [NoIcon] },

@@ -18,6 +18,7 @@ import { whenWords } from '../board/time-words';
 import { Announce } from '../core/announce';
 import { Clock } from '../core/clock';
 import { Zone } from '../core/zone';
+import { SetbackBox } from '../ui/setback-box';
 import {
   type Decision,
   decisionsOn,
@@ -36,7 +37,7 @@ const NEAR_END_PX = 80;
 /** All texts with one phone, oldest first, what a person has to decide about, and a reply. */
 @Component({
   selector: 'thaw-thread-view',
-  imports: [MatIcon, ReplyBox],
+  imports: [MatIcon, ReplyBox, SetbackBox],
   templateUrl: './thread-view.html',
   styleUrls: ['../intake/fields.scss', './thread-view.scss'],
   changeDetection: ChangeDetectionStrategy.OnPush,

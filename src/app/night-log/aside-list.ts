@@ -17,6 +17,7 @@ import type { NightLogDto, NightLogRowView } from '@shared/contract/night-logs';
 import { Announce } from '../core/announce';
 import { Keys } from '../core/keys';
 import { Zone } from '../core/zone';
+import { SetbackBox } from '../ui/setback-box';
 import { AsideActions, type AsideForm } from './aside-actions';
 import { AsidesModel, wordsOf } from './asides-model';
 import { IntakePrefill } from './intake-prefill';
@@ -25,7 +26,7 @@ import { RowsBeingTaken } from './rows-being-taken';
 /** Rows that wait for a person, in the order of their lines: why, what came, what was understood. */
 @Component({
   selector: 'thaw-aside-list',
-  imports: [AsideActions, MatIcon],
+  imports: [AsideActions, MatIcon, SetbackBox],
   templateUrl: './aside-list.html',
   styleUrls: ['../intake/fields.scss', './panel.scss', './aside-list.scss'],
   changeDetection: ChangeDetectionStrategy.OnPush,

@@ -13,6 +13,7 @@ import { Live } from '../core/live';
 import { ProblemError } from '../core/problem-error';
 import { Session } from '../core/session';
 import { aCallRow, aStorm, idOf, NOW, STORM_ID } from '../core/testing';
+import { SetbackBox } from '../ui/setback-box';
 import { AsideActions } from './aside-actions';
 import { AsideList } from './aside-list';
 import { ColumnMapping } from './column-mapping';
@@ -206,6 +207,7 @@ describe('NightLogPage', () => {
       LogPreview,
       AsideList,
       AsideActions,
+      SetbackBox,
     ]) {
       TestBed.overrideComponent(part, {
         remove: { imports: [MatIcon] },

@@ -20,6 +20,7 @@ import { BoardStore } from '../core/board-store';
 import { type KeyAction, Keys } from '../core/keys';
 import { Session } from '../core/session';
 import { Zone } from '../core/zone';
+import { SetbackBox } from '../ui/setback-box';
 import { AsideList } from './aside-list';
 import { AsidesModel } from './asides-model';
 import { DropFile } from './drop-file';
@@ -33,7 +34,7 @@ const ASIDES = 'aside';
 /** Night logs of the answering service: sent, looked at, imported, and what they leave for a person. */
 @Component({
   selector: 'thaw-night-log-page',
-  imports: [AsideList, DropFile, LogView, MatIcon],
+  imports: [AsideList, DropFile, LogView, MatIcon, SetbackBox],
   templateUrl: './night-log-page.html',
   styleUrls: ['../intake/fields.scss', './night-log-page.scss'],
   providers: [AsidesModel, NightLogModel],
