@@ -1,3 +1,4 @@
+import { NgTemplateOutlet } from '@angular/common';
 import {
   afterNextRender,
   ChangeDetectionStrategy,
@@ -27,6 +28,7 @@ import { Session } from '../core/session';
 import { DayTimePipe, Zone } from '../core/zone';
 import { placeWords } from '../intake/address-words';
 import { manyAreasWords } from '../map/area-overlaps';
+import { SetbackBox } from '../ui/setback-box';
 import { AmendForm } from './amend-form';
 import { CallModel } from './call-model';
 import { CallThread } from './call-thread';
@@ -48,8 +50,10 @@ import { ReturnForm } from './return-form';
     ConcludeForm,
     DayTimePipe,
     MatIcon,
+    NgTemplateOutlet,
     PhoneCheckPanel,
     ReturnForm,
+    SetbackBox,
   ],
   templateUrl: './call-panel.html',
   styleUrls: ['../intake/fields.scss', './call-panel.scss'],
@@ -89,6 +93,11 @@ export class CallPanel {
   protected readonly isOpenCall = computed(() => {
     const row = this.call.row();
     return row !== null && isOpen(row.state);
+  });
+  /** Nothing counts before its safety questions have been asked. */
+  protected readonly isCheckFirst = computed(() => {
+    const state = this.call.row()?.state;
+    return state === 'new' || state === 'checking';
   });
   /** States in which the phone can still settle the call. */
   protected readonly mayConclude = computed(() => this.call.isMine() && this.isOpenCall());

@@ -13,6 +13,7 @@ import { BoardStore } from '../core/board-store';
 import { Clock } from '../core/clock';
 import type { RankedCall } from '../core/ranking';
 import { Zone } from '../core/zone';
+import { addressWords } from '../intake/address-words';
 import { lanesByKind, stripFactsOf } from './cold-strip-scale';
 import { stripWords } from './cold-strip-words';
 import { LANE_WORDS, lossWords } from './queue-words';
@@ -73,7 +74,7 @@ export class QueueList {
       id: call.id,
       number: call.number,
       who: call.name,
-      place: call.address.text,
+      place: addressWords(call.address),
       state: STATE_WORDS[call.state],
       urgency: ranked
         ? `${LANE_WORDS[ranked.urgency.lane]}${loss === '' ? '' : `, ${loss} a minute`}`

@@ -134,8 +134,8 @@ export class DayModel {
       this.keep(null);
       this.day.takeReply(card);
       if (order.route === 'declineStop' || order.route === 'finishStop') {
-        this.drafts.clear(formDraftKey('decline', order.stopId));
-        this.drafts.clear(formDraftKey('finish', order.stopId));
+        for (const form of ['decline', 'finish', 'wait'] as const)
+          this.drafts.clear(formDraftKey(form, order.stopId));
       }
       return true;
     } catch (error) {

@@ -49,6 +49,6 @@ export const isCard = (value: unknown): value is StopCard =>
   'callNumber' in value &&
   'units' in value;
 
-/** Under which name a half-filled form about a stop is kept. */
-export const formDraftKey = (form: 'decline' | 'finish', stopId: string): string =>
+/** Under which name a half-filled form about a stop, or its running wait, is kept. */
+export const formDraftKey = (form: 'decline' | 'finish' | 'wait', stopId: string): string =>
   `day-${form}-${stopId}`;

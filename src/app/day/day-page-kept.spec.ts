@@ -102,6 +102,8 @@ describe('DayPage, when an answer or the connection fails', () => {
     expect(page.text('.link')).toBe('');
     page.socket.cut();
     await page.settle();
-    expect(page.text('.link')).toContain('Reconnecting. What you see is as of 02:15.');
+    expect(page.text('.link')).toContain(
+      'go on, what you do is kept and sent later. What you see is as of 02:15.',
+    );
   });
 });

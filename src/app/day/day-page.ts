@@ -17,15 +17,15 @@ import { Announce } from '../core/announce';
 import { Clock } from '../core/clock';
 import { DayStore } from '../core/day-store';
 import { Live } from '../core/live';
-import { Session } from '../core/session';
 import { Zone } from '../core/zone';
+import { addressWords } from '../intake/address-words';
 import { STOP_STATE_WORDS } from '../routes/stop-words';
 import { DayModel } from './day-model';
 import { type DeclineAnswer, DeclineForm } from './decline-form';
 import { type FinishAnswer, FinishForm } from './finish-form';
 import { NextStop } from './next-stop';
-import { phoneWords } from './day-words';
 import { PositionReports } from './position-reports';
+import { RingDesk } from './ring-desk';
 import { RoadReport } from './road-report';
 
 /** What fills the page: the stop, or a form about it. */
@@ -37,7 +37,7 @@ const NEW_OFFER_BUZZ = [200, 120, 200];
 /** The technician's phone: the next stop and why, one thing to do about it, and what comes later. */
 @Component({
   selector: 'thaw-day-page',
-  imports: [DeclineForm, FinishForm, MatIcon, NextStop, RoadReport],
+  imports: [DeclineForm, FinishForm, MatIcon, NextStop, RingDesk, RoadReport],
   templateUrl: './day-page.html',
   styleUrl: './day-page.scss',
   providers: [DayModel, PositionReports],
@@ -51,11 +51,10 @@ export class DayPage {
   private readonly live = inject(Live);
   private readonly zone = inject(Zone);
   private readonly announce = inject(Announce);
-  private readonly session = inject(Session);
   private readonly host = inject<ElementRef<HTMLElement>>(ElementRef).nativeElement;
 
   protected readonly stateWords = STOP_STATE_WORDS;
-  protected readonly phoneWords = phoneWords;
+  protected readonly addressWords = addressWords;
 
   /** Back to the stop whenever it is another one, or its state has changed. */
   protected readonly mode = linkedSignal<string, Mode>({
@@ -79,9 +78,8 @@ export class DayPage {
     if (this.isCurrent() || !this.day.isLoaded()) return '';
     const at = this.live.lastContactAt();
     const asOf = at === null ? '' : ` What you see is as of ${this.zone.clockTime(at)}.`;
-    return `${this.live.isOffline() ? 'Offline.' : 'Reconnecting.'}${asOf}`;
+    return `No connection: go on, what you do is kept and sent later.${asOf}`;
   });
-  protected readonly desk = computed(() => this.session.settings()?.companyPhone ?? null);
   protected readonly emptyWords = computed(() => {
     if (this.day.stormId() === null) return 'No storm is open. Rest while you can.';
     return this.later().length > 0

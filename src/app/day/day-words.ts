@@ -1,8 +1,10 @@
 import type { LonLat } from '@shared/contract/common';
 import type { DECLINE_REASONS, StopCard } from '@shared/contract/routes';
 import type { VisitOutcome } from '@shared/domain/call-state';
+import type { CompartmentKind } from '@shared/domain/cold-unit';
 import { type CautionId, CAUTIONS } from '@shared/domain/phone-check/cautions';
 import type { Part } from '@shared/domain/skills';
+import { COMPARTMENT_WORDS } from '../board/compartment-words';
 
 export type DeclineReason = (typeof DECLINE_REASONS)[number];
 
@@ -57,6 +59,27 @@ export const cautionsFor = (card: Pick<StopCard, 'danger'>) =>
     id,
     ...CAUTIONS[id],
   }));
+
+/** Common practice, no source; where law forbids a phone in the hand at the wheel, it comes first. */
+export const WHEEL_WORDS = 'Hands off this phone while the van moves.';
+
+/**
+ * What to tell the household of contents past their save-by; nothing where all of it can still be saved.
+ * The words and their sources are those of the cautions.
+ */
+export function lostContentsWords(lost: readonly { readonly kind: CompartmentKind }[]): string[] {
+  const kinds = [...new Set(lost.map(({ kind }) => kind))];
+  const food = kinds.filter((kind) => kind !== 'medicine');
+  const words: string[] = [];
+  if (food.length > 0) {
+    const names = food.map((kind) => COMPARTMENT_WORDS[kind].name.toLowerCase()).join(' and ');
+    const { 'throw-it-out': out, 'never-taste': taste } = CAUTIONS;
+    words.push(`Past its save-by: ${names}. Tell them: ${out.words} ${taste.words}`);
+  }
+  if (kinds.includes('medicine'))
+    words.push(`Past its save-by: medicine. ${CAUTIONS.medicine.words}`);
+  return words;
+}
 
 /** For the phone's own maps (RFC 5870), with the address as the label of the pin. */
 export function geoLink({ address }: Pick<StopCard, 'address'>): string | null {

@@ -1,10 +1,11 @@
+import { NgTemplateOutlet } from '@angular/common';
 import { ChangeDetectionStrategy, Component, computed, inject, input } from '@angular/core';
 import { MatIcon } from '@angular/material/icon';
 import type { StopCard, TechnicianDto } from '@shared/contract/routes';
 import type { Instant } from '@shared/domain/instant';
 import { PART_WORDS } from '@shared/domain/skills';
 import { ColdStrip } from '../board/cold-strip';
-import { stripFactsOf } from '../board/cold-strip-scale';
+import { stripFactsOf, stripState } from '../board/cold-strip-scale';
 import { COMPARTMENT_WORDS, UNIT_WORDS } from '../board/compartment-words';
 import { SKILL_WORDS } from '../board/queue-words';
 import { fromNowWords, whenWords } from '../board/time-words';
@@ -13,12 +14,21 @@ import { placeDoubt } from '../intake/address-words';
 import { fetchWords } from '../routes/fetch-words';
 import { saveVerdict, valuedFactsOf, verdictWords } from '../routes/save-verdict';
 import { STOP_STATE_WORDS } from '../routes/stop-words';
-import { cautionsFor, geoLink, partsToBring, phoneWords } from './day-words';
+import {
+  cautionsFor,
+  geoLink,
+  lostContentsWords,
+  partsToBring,
+  phoneWords,
+  WHEEL_WORDS,
+} from './day-words';
+import { RingDesk } from './ring-desk';
+import { WaitGate } from './wait-gate';
 
 /** The stop to act on, large enough for an arm's length, sun and rain. */
 @Component({
   selector: 'thaw-next-stop',
-  imports: [ColdStrip, MatIcon],
+  imports: [ColdStrip, MatIcon, NgTemplateOutlet, RingDesk, WaitGate],
   templateUrl: './next-stop.html',
   styleUrl: './next-stop.scss',
   changeDetection: ChangeDetectionStrategy.OnPush,
@@ -39,6 +49,7 @@ export class NextStop {
   protected readonly skillWords = SKILL_WORDS;
 
   protected readonly fetchWords = fetchWords;
+  protected readonly wheelWords = WHEEL_WORDS;
 
   protected readonly geo = computed(() => geoLink(this.card()));
   /** Where the point on the map is, when it is not the house's own. */
@@ -54,6 +65,13 @@ export class NextStop {
       unit.compartments.map(() => unit.place || UNIT_WORDS[unit.kind]),
     ),
   );
+  /** What the technician tells the household of what cannot be saved any more. */
+  protected readonly lostWords = computed(() => {
+    const { compartments } = this.strip();
+    return lostContentsWords(
+      compartments.filter((one) => stripState(one, null, this.now()) === 'lost'),
+    );
+  });
   protected readonly parts = computed(() => partsToBring(this.card(), this.technician().van));
   protected readonly lacking = computed(() =>
     this.card().skills.filter((skill) => !this.technician().skills.includes(skill)),
@@ -67,6 +85,11 @@ export class NextStop {
     if (state === 'on-site') return `Arrived ${clock}`;
     // The time of before would read like a promise.
     if (isUnreachable) return 'Nobody knows when';
+    // A moment that has passed is no promise any more; the desk plans anew, or the van is late.
+    if (at < this.now()) {
+      const was = state === 'travelling' ? 'Was to arrive' : 'Was planned for';
+      return `${was} ${clock}, ${fromNowWords(at, this.now())}`;
+    }
     if (state === 'travelling') return `Arrive ${clock}, ${fromNowWords(at, this.now())}`;
     return `About ${clock}`;
   });
@@ -75,6 +98,8 @@ export class NextStop {
     if (isUnreachable && state !== 'on-site') {
       return `It was ${whenWords(etaAt ?? arriveAt, this.now(), this.zone.name())} while a road led there.`;
     }
+    // Under way the large line says it better.
+    if (state === 'travelling') return '';
     return state === 'on-site' ? '' : `${Math.max(1, Math.round(driveMinutes))} min of driving`;
   });
   protected readonly verdict = computed(() => {

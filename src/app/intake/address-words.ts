@@ -25,6 +25,10 @@ const SHORT_WORDS: Readonly<Record<Address['kind'], string>> = {
 /** As `placeDoubt`, for a narrow column. */
 export const shortPlaceDoubt = (kind: Address['kind']): string => SHORT_WORDS[kind];
 
+/** The address as it is read out, and in brackets how surely its point is known where it is not the house's own. */
+export const addressWords = ({ text, unitNo, kind }: Address): string =>
+  [text, unitNo].filter(Boolean).join(', ') + (placeDoubt(kind) && ` (${placeDoubt(kind)})`);
+
 /** What a row in a list says of an address whose point is not the house's own; empty when it is. */
 export const placeDoubt = (kind: Address['kind']): string =>
   kind === 'rooftop' || kind === 'unlocated' ? '' : ADDRESS_KIND_WORDS[kind];

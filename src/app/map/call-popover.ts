@@ -7,7 +7,7 @@ import { CompartmentGlyph } from '../board/compartment-glyph';
 import { fromNowWords, whenWords } from '../board/time-words';
 import { Clock } from '../core/clock';
 import { Zone } from '../core/zone';
-import { placeDoubt, shortPlaceDoubt } from '../intake/address-words';
+import { addressWords, shortPlaceDoubt } from '../intake/address-words';
 import { markFace } from './mark-face';
 
 /** How many calls in one place are listed; the others are a zoom step away. */
@@ -23,6 +23,7 @@ const MOST_ROWS = 8;
 })
 export class CallPopover {
   protected readonly clock = inject(Clock);
+  protected readonly addressWords = addressWords;
   private readonly zone = inject(Zone);
 
   /** The most urgent first. */
@@ -49,7 +50,6 @@ export class CallPopover {
     return {
       facts,
       state: STATE_WORDS[call.state],
-      doubt: placeDoubt(call.address.kind),
       shortDoubt: shortPlaceDoubt(call.address.kind),
       saveBy:
         saveBy === null

@@ -11,6 +11,8 @@ import type { WorldPoint } from './world';
 /** How close the map comes for one call. */
 const CALL_ZOOM = 16;
 const EDGE_PX = 36;
+/** What of the map stays between a selected place and the nearest edge, as a share of its size. */
+const FREE_SHARE = 0.2;
 /** How far the map goes beyond the region, as a share of its size. */
 const BEYOND = 0.35;
 
@@ -121,15 +123,19 @@ export class LeafletStage {
     this.map.setView([lat, lon], Math.max(this.map.getZoom(), CALL_ZOOM));
   }
 
-  /** Moves the map only as far as the place needs to be seen, and not at all when it is. */
+  /**
+   * Moves the map only as far as the place needs to be seen with something around it, and not at all
+   * when it is: at the very edge nobody sees what the place lies beside.
+   */
   bringIntoSight([lon, lat]: LonLat): void {
-    this.map.panInside([lat, lon], { padding: [EDGE_PX, EDGE_PX] });
+    const { x, y } = this.map.getSize().multiplyBy(FREE_SHARE);
+    this.map.panInside([lat, lon], { padding: [Math.max(x, EDGE_PX), Math.max(y, EDGE_PX)] });
   }
 
-  /** The window has another size. */
+  /** The window has another size; what was in its middle stays there. */
   resized(): void {
     standOnWholePixels(this.map.getContainer());
-    this.map.invalidateSize({ animate: false, pan: false });
+    this.map.invalidateSize({ animate: false });
   }
 
   remove(): void {

@@ -24,6 +24,7 @@ import { MatSelectModule } from '@angular/material/select';
 import type { CallRow } from '@shared/contract/calls';
 import { missingSkills } from '@shared/domain/route-rules';
 import { Zone } from '../core/zone';
+import { addressWords } from '../intake/address-words';
 import type { RouteRow } from './route-rows';
 import { isFirmStop } from './stop-words';
 import { skillWords } from './why-unplanned';
@@ -65,7 +66,7 @@ interface Place {
     <h2 mat-dialog-title>{{ question.title }}</h2>
     <form (submit)="$event.preventDefault(); submit()" novalidate>
       <mat-dialog-content>
-        <p class="what">{{ question.call.name }}, {{ question.call.address.text }}</p>
+        <p class="what">{{ question.call.name }}, {{ addressWords(question.call.address) }}</p>
         <mat-form-field subscriptSizing="dynamic">
           <mat-label>Technician</mat-label>
           <input
@@ -175,6 +176,7 @@ export class PlaceDialog {
   private readonly injector = inject(Injector);
   private readonly host = inject<ElementRef<HTMLElement>>(ElementRef).nativeElement;
   protected readonly question = inject<PlaceQuestion>(MAT_DIALOG_DATA);
+  protected readonly addressWords = addressWords;
 
   private readonly chosenId = signal<string | null>(this.question.technicianId);
   protected readonly typed = signal(this.nameOf(this.question.technicianId));

@@ -6,6 +6,7 @@ import { ColdStrip } from '../board/cold-strip';
 import { stripFactsOf } from '../board/cold-strip-scale';
 import { whenWords } from '../board/time-words';
 import { clockTime, Zone } from '../core/zone';
+import { addressWords } from '../intake/address-words';
 import type { StopView } from './route-rows';
 import { verdictWords } from './save-verdict';
 import { fetchWords } from './fetch-words';
@@ -37,7 +38,9 @@ import { isFirmStop, isUnderWay, STOP_STATE_WORDS } from './stop-words';
             <mat-icon svgIcon="warning" aria-hidden="true" /> No open road
           </span>
         }
-        <span class="name">{{ one.call?.name }}, {{ one.call?.address?.text }}</span>
+        @if (one.call; as call) {
+          <span class="name">{{ call.name }}, {{ addressWords(call.address) }}</span>
+        }
       </p>
       <p class="because" [title]="because()">{{ because() }}</p>
       <p class="soft">
@@ -97,6 +100,7 @@ export class StopDetail {
 
   protected readonly stateWords = STOP_STATE_WORDS;
   protected readonly facts = stripFactsOf;
+  protected readonly addressWords = addressWords;
   protected readonly isFirm = computed(() => isFirmStop(this.view().stop));
   protected readonly isUnderWay = computed(() => isUnderWay(this.view().stop));
   protected readonly verdict = computed(() => {

@@ -18,6 +18,7 @@ import { nextSaveBy, stripFactsOf } from '../board/cold-strip-scale';
 import { ColdStrip } from '../board/cold-strip';
 import { whenWords } from '../board/time-words';
 import { Zone } from '../core/zone';
+import { addressWords } from '../intake/address-words';
 import type { WhyUnplanned } from './why-unplanned';
 
 export interface UnplannedCall {
@@ -69,7 +70,7 @@ const ROW_PX = 98;
           >
             <span class="top">
               <strong>{{ one.call.number }}</strong>
-              <span class="where">{{ one.call.name }}, {{ one.call.address.text }}</span>
+              <span class="where">{{ one.call.name }}, {{ addressWords(one.call.address) }}</span>
               <span class="save-by">{{ saveByWords(one.call) }}</span>
             </span>
             <thaw-cold-strip [facts]="facts(one.call)" [now]="now()" />
@@ -118,6 +119,7 @@ export class UnplannedList {
   readonly added = output<CallRow>();
 
   protected readonly rowPx = ROW_PX;
+  protected readonly addressWords = addressWords;
   private readonly viewport = viewChild(CdkVirtualScrollViewport);
   private readonly element = viewChild<CdkVirtualScrollViewport, ElementRef<HTMLElement>>(
     CdkVirtualScrollViewport,
