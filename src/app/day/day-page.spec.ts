@@ -1,7 +1,7 @@
 import { TestBed } from '@angular/core/testing';
 import { MINUTE_MS } from '@shared/domain/instant';
 import { CAUTIONS } from '@shared/domain/phone-check/cautions';
-import { NOW } from '../core/testing';
+import { idOf, NOW } from '../core/testing';
 import { aCard, aPage, FakeGeolocation } from './testing';
 
 let geolocation: FakeGeolocation;
@@ -102,6 +102,33 @@ describe('DayPage', () => {
     expect(body).toMatchObject({ reason: 'other', note: 'Flat tyre' });
     expect(page.text('.done')).toBe('Call 1 is given back.');
     expect(page.text()).toContain('Nothing for you yet');
+  });
+
+  it('keeps the five minutes after the plug through a closed page', async () => {
+    const page = await aPage(aCard(1, { state: 'on-site' }));
+    expect(page.text('[role=timer]')).toBe('');
+    await page.tap('It is unplugged');
+    expect(page.text('[role=timer]')).toBe('5:00');
+    TestBed.resetTestingModule();
+    const again = await aPage(aCard(1, { state: 'on-site' }));
+    expect(again.text('[role=timer]')).toBe('5:00');
+    TestBed.resetTestingModule();
+    const other = await aPage(aCard(2, { state: 'on-site' }));
+    expect(other.text('[role=timer]')).toBe('');
+  });
+
+  it('asks which part is needed before the visit ends without it', async () => {
+    const page = await aPage(aCard(1, { state: 'on-site' }));
+    await page.tap('Finish the visit');
+    await page.tap('Needs a part');
+    await page.tap('Finish: needs a part');
+    expect(page.text('[role=alert]')).toContain('Say which part');
+    page.http.expectNone(`/api/stops/${idOf(3001)}/finish`);
+  });
+
+  it('makes no promise of a time that has passed', async () => {
+    const page = await aPage(aCard(1, { arriveAt: NOW - 5 * MINUTE_MS }));
+    expect(page.text('.when')).toBe('Was planned for 02:10, 5 min ago');
   });
 
   it('starts travel when the phone may not say where it is, and does not ask again', async () => {
