@@ -103,17 +103,20 @@ export class RouteLane {
     });
   });
 
-  /** The halts of the lane that stands at the road: of the routes in force, or of a proposal alone. */
+  /** Of the routes in force, and of a proposal beside them or in their place. */
   protected readonly halts = computed(() => {
     const { halts, proposedHalts } = this.row();
-    const shown = this.filled() === 'alone' ? proposedHalts : halts;
-    return shown.map((halt) => this.haltPlace(halt));
+    const isAlone = this.filled() === 'alone';
+    return [
+      ...(isAlone ? [] : halts).map((halt) => ({ ...this.haltPlace(halt), isBeside: false })),
+      ...proposedHalts.map((halt) => ({ ...this.haltPlace(halt), isBeside: !isAlone })),
+    ];
   });
 
   /** What of the route lies behind the end of the shift that it began in. */
   protected readonly overtime = computed(() => {
-    const { stops, technician } = this.row();
-    const last = stops.at(-1);
+    const { stops, proposed, technician } = this.row();
+    const last = stops.at(-1) ?? proposed.at(-1);
     if (!last) return null;
     const shift = technician.shifts.findLast(({ startsAt }) => startsAt <= last.arriveAt);
     const over = shift ? last.finishAt - shift.endsAt : 0;
