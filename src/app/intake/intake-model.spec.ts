@@ -15,7 +15,11 @@ import { IntakeModel } from './intake-model';
 const STORM = 'storm-1';
 const USER = 'user-1';
 
-function aModel(): { model: IntakeModel; http: HttpTestingController; taken: unknown[] } {
+function aModel(storm: object | null = { id: STORM, state: 'open' }): {
+  model: IntakeModel;
+  http: HttpTestingController;
+  taken: unknown[];
+} {
   const taken: unknown[] = [];
   TestBed.configureTestingModule({
     providers: [
@@ -33,7 +37,7 @@ function aModel(): { model: IntakeModel; http: HttpTestingController; taken: unk
       {
         provide: Session,
         useValue: {
-          storm: signal({ id: STORM }),
+          storm: signal(storm),
           zone: signal('America/New_York'),
           settings: signal(null),
         },
@@ -179,6 +183,17 @@ describe('IntakeModel', () => {
     const { model: reloaded } = aModel();
     expect(reloaded.draft()).toMatchObject({ callId, commandId, name: 'Ada Marsh' });
     expect(reloaded.draft().units).toHaveLength(1);
+  });
+
+  it('says that no storm is open, and keeps what was typed until one is', async () => {
+    const { model, http } = aModel(null);
+    fill(model);
+    expect(model.hasStorm()).toBe(false);
+    expect(await model.save()).toBeNull();
+    http.verify();
+    expect(model.draft().name).toBe('Ada Marsh');
+    TestBed.resetTestingModule();
+    expect(aModel().model.hasStorm()).toBe(true);
   });
 
   it('asks nothing of the server while the call is not complete', async () => {

@@ -63,6 +63,8 @@ export class IntakeModel {
   readonly isSaving = this.busy.asReadonly();
   /** Why the last attempt came to nothing; the draft is still whole. */
   readonly problem = this.trouble.asReadonly();
+  /** Without a storm nothing can be saved; what is typed is kept until there is one. */
+  readonly hasStorm = computed(() => this.session.storm()?.state === 'open');
   readonly isWorthKeeping = computed(() => isWorthKeeping(this.draftNow()));
 
   readonly area = computed(() => {
