@@ -20,6 +20,8 @@ beforeAll(async () => (lab = await startTextLab()));
 afterAll(() => lab.close());
 beforeEach(() => lab.reset());
 
+/** For a worker that does not give up on an answer within the test. */
+const patient = () => ({ sender: lab.sender(10_000), leaseMs: 60_000 });
 const fresh = async (id: string) => MessageRecord.findByPk(id, { rejectOnEmpty: true });
 const stateOf = async (id: string) => (await fresh(id)).state;
 const becomes = (id: string, state: string) =>
@@ -53,7 +55,8 @@ describe('each way in which a send can go wrong', () => {
     const { state, accepted } = ends[fault];
     lab.fake.setFaults({ sends: [fault] });
     const { id } = await aWaitingText(lab.server);
-    lab.work();
+    // A busy machine may be late with what only counts when it is heard in time.
+    lab.work(fault === 'none' || fault === '429' ? patient() : {});
     await becomes(id, state);
     // Time enough for a second send, had there been one.
     if (state === 'unknown') await isToldOf(id, 'does not list it');
@@ -271,8 +274,8 @@ describe('what may change while a text waits', () => {
 
 it('tells the boards of each state, and writes one line of the trail for each', async () => {
   const { id } = await aWaitingText(lab.server);
-  // Patient: an answer that is late on a busy machine is another story.
-  lab.work({ sender: lab.sender(10_000), leaseMs: 60_000 });
+  // An answer that is late on a busy machine is another story.
+  lab.work(patient());
   await becomes(id, 'delivered');
   const rows = await select<{ change: string }>(
     lab.server.sequelize,
