@@ -16,6 +16,21 @@ const FREE_SHARE = 0.2;
 /** How far the map goes beyond the region, as a share of its size. */
 const BEYOND = 0.35;
 
+/** So far a view may stray, by rounding, and still be the one that was fitted. */
+const MOVED_PX = 2;
+
+/** Pixels of the window that something lies over, at its left or its lower edge. */
+export interface Covered {
+  readonly left?: number;
+  readonly below?: number;
+}
+
+interface Whole {
+  readonly bounds: L.LatLngBounds;
+  /** The closest zoom at which it is shown. */
+  readonly closest: number;
+}
+
 export interface StageLook {
   readonly theme: MapTheme;
   readonly hasFeeders: boolean;
@@ -28,6 +43,8 @@ export class LeafletStage {
   private readonly scene: SceneLayer;
   private readonly top: TopLayer;
   private readonly home: L.LatLngBounds;
+  /** What was last shown as a whole, and the view that this made. */
+  private fitted: { readonly whole: Whole; readonly centre: L.LatLng; readonly zoom: number };
 
   constructor(
     host: HTMLElement,
@@ -56,6 +73,11 @@ export class LeafletStage {
     this.scene = new SceneLayer(scene, () => this.top.refresh()).addTo(this.map);
     this.top = new TopLayer(paintTop).addTo(this.map);
     this.map.fitBounds(this.home, { animate: false });
+    this.fitted = {
+      whole: { bounds: this.home, closest: CALL_ZOOM },
+      centre: this.map.getCenter(),
+      zoom: this.map.getZoom(),
+    };
   }
 
   /** Whether it shows this region, made of the same data. */
@@ -110,13 +132,38 @@ export class LeafletStage {
   }
 
   /** Shows all of these places, or the whole region when there are none, beside or above what a panel covers. */
-  showAll(places: readonly LonLat[], { closest = CALL_ZOOM, left = 0, below = 0 } = {}): void {
+  showAll(
+    places: readonly LonLat[],
+    { closest = CALL_ZOOM, covered = {} }: { closest?: number; covered?: Covered } = {},
+  ): void {
     const bounds = L.latLngBounds(places.map(([lon, lat]) => L.latLng(lat, lon)));
-    this.map.fitBounds(bounds.isValid() ? bounds : this.home, {
+    this.fit({ bounds: bounds.isValid() ? bounds : this.home, closest }, covered);
+  }
+
+  /**
+   * Another part of the window is covered now: what was shown as a whole is shown as a whole again. A
+   * view that somebody has chosen since stays as it is.
+   */
+  fitAgain(covered: Covered): void {
+    if (this.isAsFitted()) this.fit(this.fitted.whole, covered);
+  }
+
+  private fit(whole: Whole, { left = 0, below = 0 }: Covered): void {
+    this.map.once('moveend', () => {
+      this.fitted = { whole, centre: this.map.getCenter(), zoom: this.map.getZoom() };
+    });
+    this.map.fitBounds(whole.bounds, {
       paddingTopLeft: [EDGE_PX + left, EDGE_PX],
       paddingBottomRight: [EDGE_PX, EDGE_PX + below],
-      maxZoom: closest,
+      maxZoom: whole.closest,
     });
+  }
+
+  private isAsFitted(): boolean {
+    const { centre, zoom } = this.fitted;
+    const middle = this.map.getSize().divideBy(2);
+    const moved = this.map.latLngToContainerPoint(centre).distanceTo(middle);
+    return this.map.getZoom() === zoom && moved < MOVED_PX;
   }
 
   showCall([lon, lat]: LonLat): void {

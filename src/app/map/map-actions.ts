@@ -1,4 +1,4 @@
-import { inject, Injectable, signal } from '@angular/core';
+import { computed, inject, Injectable, signal } from '@angular/core';
 import type { AreaDto, PocketDto } from '@shared/contract/areas';
 import type { StormRoadDto } from '@shared/contract/storm-roads';
 import type { LonLat } from '@shared/contract/common';
@@ -8,7 +8,7 @@ import { Theme } from '../core/theme';
 import { AreaEditor } from './area-editor';
 import { FeederPick } from './feeder-pick';
 import { FileImport } from './file-import';
-import type { LeafletStage } from './leaflet-stage';
+import type { Covered, LeafletStage } from './leaflet-stage';
 import { readInk } from './map-ink';
 import { MapPicture } from './map-picture';
 import { MapPopover } from './map-popover';
@@ -41,6 +41,15 @@ export class MapActions {
   readonly sight = signal<{ readonly lat: number; readonly zoom: number } | null>(null);
   readonly picture = new MapPicture(() => readInk(this.theme));
   readonly panel = signal<'none' | 'lists' | 'legend' | 'file'>('none');
+  /** Whether anything lies over a part of the map. */
+  readonly hasPanel = computed(
+    () =>
+      this.panel() !== 'none' ||
+      // While an outline is drawn its form is small.
+      (this.editor.isOpen() && !this.editor.isDrawing()) ||
+      this.roadEditor.isOpen() ||
+      this.feeders.isOn(),
+  );
 
   showRoad({ shape }: StormRoadDto): void {
     this.stage()?.showAll(shape.type === 'line' ? shape.points : shape.ring);
@@ -52,7 +61,9 @@ export class MapActions {
     if (typeof what === 'object') {
       stage.showAll('shape' in what ? what.shape.flat(2) : what.hull);
     } else if (what === 'all') {
-      stage.showAll(this.scenes.callPlaces());
+      stage.showAll(this.scenes.callPlaces(), {
+        covered: this.hasPanel() ? coveredIn(stage) : {},
+      });
     } else if (what === 'pocket') {
       const pocket = this.scenes.pocketOfSelection();
       if (pocket) stage.showAll(pocket.hull);
@@ -153,10 +164,14 @@ export class MapActions {
   private showBeside(places: readonly LonLat[]): void {
     const stage = this.stage();
     if (!stage) return;
-    const { x, y } = stage.map.getSize();
-    const covered = x < NARROW_PX ? { below: y * 0.55 } : { left: PANEL_PX };
     const closest = Math.max(stage.map.getZoom(), MOST_OUTLINE_ZOOM);
-    stage.showAll(places, { ...covered, closest });
+    stage.showAll(places, { covered: coveredIn(stage), closest });
+  }
+
+  /** After a panel has opened or closed, what was shown as a whole is shown in the part that is free. */
+  fitBesidePanel(isOpen: boolean): void {
+    const stage = this.stage();
+    stage?.fitAgain(isOpen ? coveredIn(stage) : {});
   }
 
   cancelArea(): void {
@@ -205,4 +220,10 @@ export class MapActions {
   focus(): void {
     this.stage()?.map.getContainer().focus({ preventScroll: true });
   }
+}
+
+/** What a panel covers of the map. */
+function coveredIn(stage: LeafletStage): Covered {
+  const { x, y } = stage.map.getSize();
+  return x < NARROW_PX ? { below: y * 0.55 } : { left: PANEL_PX };
 }

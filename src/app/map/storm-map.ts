@@ -140,6 +140,7 @@ export class StormMap {
     this.showFinishedOutline();
     this.followLook();
     this.followSelection();
+    this.followPanel();
     inject(MapRequests).follow();
     inject(MapKeys).register(() => this.isInSight(), inject(DestroyRef));
   }
@@ -253,6 +254,13 @@ export class StormMap {
       this.actions.picture.forgetInk();
       stage?.setLook(look);
       stage?.refresh();
+    });
+  }
+
+  private followPanel(): void {
+    effect(() => {
+      const isOpen = this.actions.hasPanel();
+      untracked(() => this.actions.fitBesidePanel(isOpen));
     });
   }
 
