@@ -1,3 +1,4 @@
+import { explainUnplanned, type Relaxation } from '@shared/domain/planner/explain-unplanned';
 import { counted, partsOf } from '@shared/domain/planner/job-parts';
 import { plan } from '@shared/domain/planner/plan';
 import { stopReasons } from '@shared/domain/planner/plan-summary';
@@ -10,96 +11,72 @@ export interface PlanReasons {
   readonly wouldChange: ReadonlyMap<string, readonly string[]>;
 }
 
-/** Something that is given up to see which calls then find a place. */
-interface Concession {
-  readonly words: (job: PlanProblem['jobs'][number]) => string | null;
-  readonly apply: (problem: PlanProblem) => PlanProblem;
-}
+/** Calls that the time does not reach keep the planner's own reason alone. */
+const MOST_MS = 2000;
 
-const HOUR = 3600;
-
-const CONCESSIONS: readonly Concession[] = [
-  {
-    words: ({ skills }) =>
-      skills.length === 0
-        ? null
-        : `${skills.join(' and ')} among the skills of those who are there`,
-    apply: (problem) => ({
-      ...problem,
-      jobs: problem.jobs.map((job) => ({ ...job, skills: [] })),
-    }),
-  },
-  {
-    words: ({ onlyTechnicians }) => (onlyTechnicians ? 'leave for other technicians to go' : null),
-    apply: (problem) => ({
-      ...problem,
-      jobs: problem.jobs.map(({ onlyTechnicians: _, ...job }) => job),
-    }),
-  },
-  {
-    words: (job) => (partsOf(job).length === 0 ? null : `${partsOf(job).join(' and ')} on a van`),
-    apply: (problem) => ({
-      ...problem,
-      jobs: problem.jobs.map(({ part: _, parts: __, ...job }) => job),
-    }),
-  },
-  {
-    words: () => 'an hour more on every shift',
-    apply: (problem) => ({
-      ...problem,
-      technicians: problem.technicians.map((technician) => ({
-        ...technician,
-        shifts: technician.shifts.map((shift) => ({ ...shift, end: shift.end + HOUR })),
-      })),
-    }),
-  },
-  {
-    words: ({ skills }) =>
-      `one more technician${skills.length === 0 ? '' : ` with ${skills.join(' and ')}`}`,
-    apply: (problem) => ({
-      ...problem,
-      jobs: problem.jobs.map(({ onlyTechnicians: _, ...job }) => job),
-      technicians: [...problem.technicians, ...oneMore(problem)],
-    }),
-  },
-];
-
-/** Somebody with every skill and part who works the hours of the first technician. */
-function oneMore({ jobs, technicians }: PlanProblem): PlanProblem['technicians'] {
-  const [like] = technicians;
-  if (!like) return [];
-  return [
-    {
-      ...like,
-      id: `one more than ${technicians.map(({ id }) => id).join()}`,
-      skills: jobs.flatMap(({ skills }) => skills),
-      parts: Object.fromEntries(counted(jobs.flatMap(partsOf))),
-      frozen: [],
-    },
-  ];
-}
-
-/**
- * Reasons for a plan. What would change is found by trying it: each concession is made to the whole
- * problem, the plan is kept as it is, and whatever then finds a place is noted. The calls are tried
- * together, so that the hour which two of them need is promised to one of them only.
- */
+/** Reasons for a plan, in words. */
 export function explainPlan(problem: PlanProblem, result: Plan): PlanReasons {
-  const left = new Set(result.unassigned.map(({ job }) => job));
+  const until = performance.now() + MOST_MS;
   const wouldChange = new Map<string, string[]>();
-  if (left.size > 0) {
-    const byId = new Map(problem.jobs.map((job) => [job.id, job]));
-    for (const { words, apply } of CONCESSIONS) {
-      if (![...left].some((id) => words(byId.get(id)!) !== null)) continue;
-      const tried = plan({ ...apply(problem), previous: result }, { iterations: 0, seed: 1 });
-      for (const { job } of tried.routes.flatMap((route) => route.stops)) {
-        const told = left.has(job) ? words(byId.get(job)!) : null;
-        if (told !== null) wouldChange.set(job, [...(wouldChange.get(job) ?? []), told]);
-      }
-    }
-  }
+  const tell = (job: string, words: string): void => {
+    wouldChange.set(job, [...(wouldChange.get(job) ?? []), words]);
+  };
+  const tried = explainUnplanned(problem, result, () => performance.now() > until);
+  for (const { job, helps } of tried) for (const help of helps) tell(job, inWords(help));
+  for (const [job, words] of servedByOneMore(problem, result)) tell(job, words);
   return {
     stops: new Map([...stopReasons(problem, result)].map(([job, { words }]) => [job, words])),
     wouldChange,
   };
+}
+
+function inWords({ kind, technician, start, skills, parts, overtimeMinutes }: Relaxation): string {
+  const then = `${technician} would begin at ${Math.round(start)}`;
+  switch (kind) {
+    case 'skill':
+      return `${(skills ?? []).join(' and ')} for ${technician}: ${then}`;
+    case 'part':
+      return `${(parts ?? []).join(' and ')} on the van of ${technician}: ${then}`;
+    case 'overtime':
+      return `overtime for ${technician}, ${overtimeMinutes} min in all: ${then}`;
+    case 'declined':
+      return `leave for ${technician} to go: ${then}`;
+  }
+}
+
+/**
+ * The calls that one technician more could serve, with every skill and part and the hours of the first. They
+ * are tried together, so that the hour which two of them need is promised to one of them only.
+ */
+function servedByOneMore(problem: PlanProblem, result: Plan): [job: string, words: string][] {
+  const left = new Set(result.unassigned.map(({ job }) => job));
+  const [like] = problem.technicians;
+  if (left.size === 0 || !like) return [];
+  const { jobs, technicians } = problem;
+  const another = {
+    ...like,
+    id: `one more than ${technicians.map(({ id }) => id).join()}`,
+    skills: jobs.flatMap(({ skills }) => skills),
+    parts: Object.fromEntries(counted(jobs.flatMap(partsOf))),
+    frozen: [],
+  };
+  const tried = plan(
+    {
+      ...problem,
+      jobs: jobs.map(({ onlyTechnicians: _, ...job }) => job),
+      technicians: [...technicians, another],
+      previous: result,
+    },
+    { iterations: 0, seed: 1 },
+  );
+  const skillsOf = new Map(jobs.map(({ id, skills }) => [id, skills]));
+  const own = tried.routes.filter(({ technician }) => technician === another.id);
+  return own
+    .flatMap(({ stops }) => stops)
+    .filter(({ job }) => left.has(job))
+    .map(({ job }) => {
+      const skills = skillsOf.get(job) ?? [];
+      const having = skills.length === 0 ? '' : ` with ${skills.join(' and ')}`;
+      return [job, `one more technician${having}`];
+    });
 }

@@ -2,6 +2,7 @@ import { once } from 'node:events';
 import { parseArgs } from 'node:util';
 import { answerProblem, BadProblem, type Asked } from './answer-problem';
 import { MOST_BYTES, readAll, readLines } from './read-lines';
+import { warmUp } from './warm-up';
 
 const HELP = `Plans routes: reads a problem as JSON from standard input, writes the plan as one line of JSON.
 
@@ -89,6 +90,7 @@ async function answerOne(asked: Asked): Promise<number> {
 /** Each line is answered before the next is looked at; a bad one is answered with its trouble. */
 async function answerStream(asked: Asked): Promise<number> {
   let code = 0;
+  if (asked.iterations === undefined) warmUp();
   for await (const { number: line, text } of readLines(process.stdin)) {
     const began = performance.now();
     if (text?.trim() === '') continue;

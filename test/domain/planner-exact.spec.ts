@@ -73,6 +73,21 @@ describe('plan, against the exact best', () => {
     expect(gaps.filter((gap) => gap > 1e-9).length).toBeLessThanOrEqual(0.01 * gaps.length);
   });
 
+  it('needs no search where all can be tried: few calls and no stop at a shop', () => {
+    const problems = smallProblems(16).map((options) =>
+      randomProblem({ ...options, everything: false }),
+    );
+    for (const problem of problems) {
+      const result = plan(problem, { iterations: 1, seed: 1 });
+      expect(result.iterations).toBe(0);
+      expect(checkPlan(problem, result).violations).toEqual([]);
+      expect(result.cost).toBeCloseTo(exactPlan(problem).cost, 6);
+      // What is the cheapest already stays as it is.
+      const again = plan({ ...problem, previous: result }, { iterations: 1, seed: 2 });
+      expect(again.routes).toEqual(result.routes);
+    }
+  });
+
   it('is priced by the scorer exactly as by the exact search', () => {
     for (const options of smallProblems(40)) {
       const problem = randomProblem(options);

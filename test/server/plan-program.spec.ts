@@ -92,6 +92,7 @@ describe('npm run plan', () => {
       expect(left).toHaveProperty('wouldChange', expect.any(Array));
     }
     expect(out).toContain('one more technician with unheard-of');
+    expect(out).toMatch(/unheard-of for tech-0: tech-0 would begin at \d+/);
   });
 
   it('answers a stream line by line, the bad lines with their trouble, and goes on', async () => {

@@ -82,15 +82,18 @@ export class Insertion {
    * Puts a job beside one that is near, or on an empty route, where that costs least; whether it has
    * been put. A part that the van lacks makes it look at all gaps.
    */
-  insertNear(job: number, near: Neighbours): boolean {
+  insertNear(job: number, near: Neighbours, blinks: boolean): boolean {
     const { plan, c, scan } = this;
-    if (c.takesParts[job] === 1) return this.insert(job, near, true);
+    if (c.takesParts[job] === 1) return this.insert(job, near, blinks);
     const below = c.absentPrice[job]!;
-    this.route = scan.findNear(plan, job, near, this.allows, below, this.blinkIn);
+    const blinkIn = blinks ? this.blinkIn : Infinity;
+    this.route = scan.findNear(plan, job, near, this.allows, below, blinkIn);
     this.gap = scan.gap;
     this.price = scan.price;
-    this.blinkIn = scan.blinkIn;
-    if (this.blinkIn <= 0) this.drawBlink();
+    if (blinks) {
+      this.blinkIn = scan.blinkIn;
+      if (this.blinkIn <= 0) this.drawBlink();
+    }
     this.lookAtEmpty(job);
     return this.put(job);
   }

@@ -1,4 +1,7 @@
+import { START } from './gap-fields';
 import type { Insertion } from './insertion';
+import type { MakingRoom } from './make-room';
+import type { Neighbours } from './neighbours';
 import type { WorkingPlan } from './working-plan';
 
 /** Takes over the stops of the plan in force in their order, leaving out what no longer fits. */
@@ -47,13 +50,61 @@ function putAll(plan: WorkingPlan, r: number, jobs: readonly number[]): boolean 
   return isSound;
 }
 
-/** Puts jobs from the bank where they cost least, those with most at stake per minute first. */
-export function fillFromBank(plan: WorkingPlan, insertion: Insertion, density: Float64Array): void {
+/** So many jobs are put beside near ones only: the search that follows makes up for it. */
+const MANY_JOBS = 200;
+
+/**
+ * Puts jobs from the bank where they cost least, those with most at stake per minute first.
+ *
+ * @param near where a search follows: what is near to each job
+ */
+export function fillFromBank(
+  plan: WorkingPlan,
+  insertion: Insertion,
+  density: Float64Array,
+  near: Neighbours | null,
+): void {
   const waiting = Array.from(plan.bank.subarray(0, plan.bankCount));
   waiting.sort((a, b) => density[a]! - density[b]! || a - b);
+  const beside = waiting.length > MANY_JOBS ? near : null;
   for (const job of waiting) {
-    insertion.insert(job, null, false);
+    if (beside) insertion.insertNear(job, beside, false);
+    else insertion.insert(job, null, false);
     if (plan.isSound) plan.keep();
     else plan.undo();
   }
+}
+
+/** Jobs for which room is looked for before the search: a few milliseconds. */
+const MOST_LOSERS = 40;
+
+/**
+ * Tries once, for the jobs that lose most where they are, whether another stop should go for them: a call
+ * that has just come in stands at the end of the day or on no route, since routes are full.
+ */
+export function makeRoomForLosers(plan: WorkingPlan, room: MakingRoom): void {
+  const losers = Array.from({ length: plan.c.jobCount }, (_, job) => ({
+    job,
+    loss: lossOf(plan, job),
+  }))
+    .filter(({ job, loss }) => loss > 0 && !plan.c.isFrozen[job])
+    .sort((a, b) => b.loss - a.loss || a.job - b.job);
+  for (const { job } of losers.slice(0, MOST_LOSERS)) {
+    const before = plan.price;
+    if (!room.forJob(job)) continue;
+    if (plan.isSound && plan.price < before) plan.keep();
+    else plan.undo();
+  }
+}
+
+/** Values that a job loses where it is. */
+function lossOf({ c, routes, routeOf, gapOf }: WorkingPlan, job: number): number {
+  const r = routeOf[job]!;
+  const start = r < 0 ? Infinity : routes[r]!.at(gapOf[job]!, START);
+  let loss = 0;
+  for (let d = c.deadlineOffset[job]!; d < c.deadlineOffset[job + 1]!; d++) {
+    const at = c.deadlineAt[d]!;
+    if (start > at && at >= c.problem.now) loss += c.deadlineValue[d]!;
+  }
+  return loss;
 }

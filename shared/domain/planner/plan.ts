@@ -1,11 +1,12 @@
 import { compile } from './compiled-problem';
 import { Insertion } from './insertion';
-import { fillFromBank, takeOverPrevious } from './opening';
+import { fillFromBank, makeRoomForLosers, takeOverPrevious } from './opening';
 import type { Plan, PlanProblem } from './problem';
 import { SeededRandom } from './random';
 import { RecreateOrders } from './recreate-orders';
 import { report } from './report';
 import { Search } from './search';
+import { solveSmall } from './solve-small';
 import { Cooling } from './temperature';
 import { WorkingPlan } from './working-plan';
 
@@ -38,11 +39,13 @@ export function plan(problem: PlanProblem, options: PlanOptions): Plan {
   const working = new WorkingPlan(c);
   const insertion = new Insertion(working, random);
   takeOverPrevious(working);
-  fillFromBank(working, insertion, new RecreateOrders(c).byDensity);
+  const orders = new RecreateOrders(c);
+  const search = options.iterations > 0 ? new Search(working, random, insertion, orders) : null;
+  fillFromBank(working, insertion, orders.byDensity, search?.near ?? null);
 
   let done = 0;
-  if (options.iterations > 0) {
-    const search = new Search(working, random, insertion);
+  if (search && !solveSmall(working)) {
+    makeRoomForLosers(working, search.room);
     const cooling = new Cooling(c);
     let share = 0;
     while (done < options.iterations && search.hasChoice) {

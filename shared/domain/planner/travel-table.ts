@@ -34,15 +34,14 @@ function flattened(rows: readonly ArrayLike<number>[], locations: number): Float
   return flat;
 }
 
-/** The transpose, by blocks that fit into the cache; a table that is its own transpose is kept. */
+/** The transpose; a table that is its own transpose is kept. */
 export function turned(table: Float64Array, size: number): Float64Array {
   if (isSymmetric(table, size)) return table;
   const result = new Float64Array(table.length);
-  const block = 32;
-  for (let top = 0; top < size; top += block) {
-    for (let left = 0; left < size; left += block) {
-      const bottom = Math.min(size, top + block);
-      const right = Math.min(size, left + block);
+  for (let top = 0; top < size; top += BLOCK) {
+    for (let left = 0; left < size; left += BLOCK) {
+      const bottom = Math.min(size, top + BLOCK);
+      const right = Math.min(size, left + BLOCK);
       for (let from = top; from < bottom; from++) {
         for (let to = left; to < right; to++) result[to * size + from] = table[from * size + to]!;
       }
@@ -51,10 +50,19 @@ export function turned(table: Float64Array, size: number): Float64Array {
   return result;
 }
 
+/** Rows and columns of a piece of the table that fits into the cache together with its mirror image. */
+const BLOCK = 32;
+
 function isSymmetric(table: Float64Array, size: number): boolean {
-  for (let from = 0; from < size; from++) {
-    for (let to = from + 1; to < size; to++) {
-      if (table[from * size + to] !== table[to * size + from]) return false;
+  for (let top = 0; top < size; top += BLOCK) {
+    for (let left = top; left < size; left += BLOCK) {
+      const bottom = Math.min(size, top + BLOCK);
+      const right = Math.min(size, left + BLOCK);
+      for (let from = top; from < bottom; from++) {
+        for (let to = Math.max(left, from + 1); to < right; to++) {
+          if (table[from * size + to] !== table[to * size + from]) return false;
+        }
+      }
     }
   }
   return true;
