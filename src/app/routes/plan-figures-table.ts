@@ -54,6 +54,8 @@ export interface FiguresRow {
   `,
   styleUrl: './plan-figures-table.scss',
   changeDetection: ChangeDetectionStrategy.OnPush,
+  // Where it is narrow it scrolls, and arrow keys reach only what can have the focus.
+  host: { tabindex: '0', role: 'group', '[attr.aria-label]': 'caption()' },
 })
 export class PlanFiguresTable {
   readonly caption = input.required<string>();
