@@ -22,6 +22,8 @@ export interface DrillOptions {
   /** Ends the drill after so many drill hours; left out, when everything is done or the storm is over. */
   readonly hours?: number;
   readonly isInsisted: boolean;
+  /** The least that the server is given between two plans, in seconds. */
+  readonly leastPlanSeconds?: number;
   readonly signal: AbortSignal;
   readonly say: (line: string) => void;
 }
@@ -86,7 +88,7 @@ export async function playDrill(server: FoundServer, options: DrillOptions): Pro
     ...crew.map((person, index) =>
       work({ person, clock, tally, dice: new Dice(seed + 100 + index) }),
     ),
-    planNowAndThen(dispatchers[0]!, stormId, clock, tally),
+    planNowAndThen(dispatchers[0]!, stormId, clock, tally, options.leastPlanSeconds),
     sayNowAndThen(owner, stormId, clock, tally, say),
   ];
   const end = options.hours === undefined ? storm.end : starts + options.hours * HOUR;
@@ -140,8 +142,9 @@ async function planNowAndThen(
   stormId: string,
   clock: DrillClock,
   tally: DrillTally,
+  leastSeconds = LEAST_PLAN_SECONDS,
 ): Promise<void> {
-  const pause = Math.max(PLAN_EVERY, LEAST_PLAN_SECONDS * clock.speed);
+  const pause = Math.max(PLAN_EVERY, leastSeconds * clock.speed);
   while (await clock.wait(pause)) {
     await tally.step(async () => {
       const { me } = await dispatcher.call('me');
