@@ -108,9 +108,9 @@ export async function writeHistory(
   from: CallState | null,
   reason: string,
 ): Promise<void> {
-  const [last] = await select<{ n: number | null }>(
+  const [last] = await select<{ n: number; at: Date }>(
     job.sequelize,
-    'SELECT MAX(n) AS n FROM call_changes WHERE call_id = ?',
+    'SELECT n, at FROM call_changes WHERE call_id = ? ORDER BY n DESC LIMIT 1',
     [call.id],
     job.tx,
   );
@@ -120,8 +120,9 @@ export async function writeHistory(
      VALUES (?, ?, ?, ?, ?, ?, ?, ?)`,
     [
       call.id,
-      Number(last?.n ?? 0) + 1,
-      job.at,
+      (last?.n ?? 0) + 1,
+      // A command that waited for another's to end began before it, and still comes after it.
+      last && last.at > job.at ? last.at : job.at,
       from,
       call.state,
       job.actor.userId,

@@ -1,15 +1,17 @@
 import { randomUUID } from 'node:crypto';
+import { CallRecord } from '../../server/calls/call-record';
 import { brokenInvariants } from '../../server/invariants/checks';
 import { change } from '../../server/db/sql';
 import { aCall } from '../support/calls';
-import { NIGHT, startServer, type TestServer } from '../support/server';
+import { NIGHT, startServer, type TestPerson, type TestServer } from '../support/server';
 
 let server: TestServer;
+let mara: TestPerson;
 beforeAll(async () => (server = await startServer()));
 afterAll(() => server.close());
 beforeEach(async () => {
   await server.reset();
-  const mara = await server.signIn('dispatcher');
+  mara = await server.signIn('dispatcher');
   for (let i = 0; i < 3; i++)
     await mara.call('takeCall', {
       params: { stormId: server.stormId },
@@ -23,6 +25,22 @@ const tamper = (sql: string, values: unknown[] = []) => change(server.sequelize,
 
 describe('the invariants', () => {
   it('hold after calls were taken', async () => {
+    expect(await broken()).toEqual([]);
+  });
+
+  it('hold after a command that began before the one for whose lock it waited', async () => {
+    const call = await CallRecord.findOne({ rejectOnEmpty: true });
+    server.setNow(NIGHT - 700);
+    const reply = await mara.call('concludeCall', {
+      params: { callId: call.id },
+      body: {
+        commandId: randomUUID(),
+        version: call.version,
+        outcome: 'waiting',
+        reason: '',
+      },
+    });
+    expect(reply.status).toBe(200);
     expect(await broken()).toEqual([]);
   });
 
