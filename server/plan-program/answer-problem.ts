@@ -3,6 +3,7 @@ import type { Plan, UnassignedReason } from '@shared/domain/planner/problem';
 import { UnreadableField } from '@shared/domain/planner/read-fields';
 import { readProblem } from '@shared/domain/planner/read-problem';
 import { explainPlan, type PlanReasons } from './explain-plan';
+import { parseProblem } from './parse-problem';
 
 /** What the command line asks; it goes before what the problem asks. */
 export interface Asked {
@@ -56,7 +57,7 @@ function read(text: string): ReturnType<typeof readProblem> {
 
 function parsed(text: string): unknown {
   try {
-    return JSON.parse(text) as unknown;
+    return parseProblem(text);
   } catch (error) {
     throw new BadProblem(`not JSON: ${oneLine((error as Error).message)}`);
   }

@@ -28,7 +28,9 @@ function madeUpProblem(): object {
     version: 1,
     now: 0,
     locations: places.length,
-    matrix: places.map(([x, y]) => places.map(([u, v]) => 300 * Math.hypot(x - u, y - v))),
+    matrix: places.map(([x, y]) =>
+      places.map(([u, v]) => Math.round(3000 * Math.hypot(x - u, y - v)) / 10),
+    ),
     jobs: places.map((_, index) => ({
       id: `call-${index}`,
       loc: index,

@@ -19,41 +19,46 @@ export function nearestJobs(c: CompiledProblem, size: number): Neighbours {
   const { jobCount, locations, travel, travelTo, loc } = c;
   const count = Math.min(size, Math.max(0, jobCount - 1));
   const list = new Int32Array(jobCount * count);
-  const distance = new Float64Array(jobCount);
-  const order = new Int32Array(jobCount);
+  const distance = new Float64Array(count);
   const { opens, closes, hasWindows } = spans(c);
   for (let job = 0; job < jobCount; job++) {
     const row = loc[job]! * locations;
     const service = c.service[job] ?? 0;
+    const soonest = opens[job]! + service;
+    const latest = closes[job]! + service;
+    const isBound = latest < Infinity;
+    const nearest = list.subarray(job * count, (job + 1) * count);
+    let known = 0;
+    let limit = Infinity;
     for (let other = 0; other < jobCount; other++) {
-      const there = travel[row + loc[other]!]!;
-      const back = travelTo[row + loc[other]!]!;
-      distance[other] = !hasWindows
-        ? there + back
-        : Math.min(
-            there +
-              strain(
-                opens[job]! + service + there,
-                closes[job]! + service + there,
-                opens[other]!,
-                closes[other]!,
-              ),
+      const place = row + loc[other]!;
+      const there = travel[place]!;
+      const back = travelTo[place]!;
+      let far = there + back;
+      if (hasWindows) {
+        far = there < back ? there : back;
+        // Without a window on both sides there is nothing to wait for, nor to be late for.
+        if (isBound && closes[other]! < Infinity && far < limit) {
+          const opened = opens[other]!;
+          const closed = closes[other]!;
+          const before = there + strain(soonest + there, latest + there, opened, closed);
+          const after =
             back +
-              strain(
-                opens[other]! + service + back,
-                closes[other]! + service + back,
-                opens[job]!,
-                closes[job]!,
-              ),
-          );
-      order[other] = other;
+            strain(opened + service + back, closed + service + back, opens[job]!, closes[job]!);
+          far = before < after ? before : after;
+        }
+      }
+      if (far >= limit || other === job || count === 0) continue;
+      // In their order from the first: the lower number comes first among equally far ones.
+      let at = known < count ? known++ : count - 1;
+      for (; at > 0 && distance[at - 1]! > far; at--) {
+        distance[at] = distance[at - 1]!;
+        nearest[at] = nearest[at - 1]!;
+      }
+      distance[at] = far;
+      nearest[at] = other;
+      if (known === count) limit = distance[count - 1]!;
     }
-    distance[job] = Infinity;
-    if (count < jobCount - 1) moveSmallestFirst(order, distance, count);
-    const nearest = order.subarray(0, count);
-    // The number breaks ties, so that the same problem always gives the same lists.
-    nearest.sort((a, b) => distance[a]! - distance[b]! || a - b);
-    list.set(nearest, job * count);
   }
   return { count, list };
 }
@@ -81,27 +86,4 @@ function spans(c: CompiledProblem): {
     hasWindows = true;
   }
   return { opens, closes, hasWindows };
-}
-
-/** Hoare's selection: afterwards the `size` smallest stand first, in any order. */
-function moveSmallestFirst(order: Int32Array, key: Float64Array, size: number): void {
-  let left = 0;
-  let right = order.length - 1;
-  while (left < right) {
-    const pivot = key[order[(left + right) >> 1]!]!;
-    let i = left;
-    let j = right;
-    while (i <= j) {
-      while (key[order[i]!]! < pivot) i++;
-      while (key[order[j]!]! > pivot) j--;
-      if (i <= j) {
-        const swapped = order[i]!;
-        order[i++] = order[j]!;
-        order[j--] = swapped;
-      }
-    }
-    if (size - 1 <= j) right = j;
-    else if (size - 1 >= i) left = i;
-    else return;
-  }
 }

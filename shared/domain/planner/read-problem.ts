@@ -24,7 +24,7 @@ export interface SentProblem {
  * Fields that it does not know are passed over, and null counts as left out. The first field that
  * is not as it must be is refused by its path.
  *
- * @param sent what JSON.parse has made of it
+ * @param sent what JSON.parse has made of it; the matrix may also be a flat table of numbers of 0 or more
  * @throws UnreadableField
  */
 export function readProblem(sent: unknown): SentProblem {
@@ -71,6 +71,7 @@ function given<Name extends string, Value>(
 /** Flat or by rows; null stands for "no way leads there". Plain loops, for there may be millions. */
 function readMatrix(field: Field, locations: number): Float64Array {
   const { value } = field;
+  if (value instanceof Float64Array && value.length === locations ** 2) return value;
   if (!Array.isArray(value)) return field.refuse('must be a list');
   const flat = new Float64Array(locations * locations);
   const isByRows = Array.isArray(value[0]);
