@@ -91,12 +91,11 @@ async function answerOne(asked: Asked): Promise<number> {
 async function answerStream(asked: Asked): Promise<number> {
   let code = 0;
   if (asked.iterations === undefined) warmUp();
-  for await (const { number: line, text } of readLines(process.stdin)) {
-    const began = performance.now();
+  for await (const { number: line, text, at } of readLines(process.stdin)) {
     if (text?.trim() === '') continue;
     try {
       if (text === null) throw new BadProblem(tooLong());
-      await write(answerProblem(text, asked, began));
+      await write(answerProblem(text, asked, at));
     } catch (error) {
       if (!(error instanceof BadProblem)) throw error;
       code = EXIT_BAD_PROBLEM;

@@ -8,6 +8,8 @@ export interface ReadLine {
   /** Counted from 1. */
   readonly number: number;
   readonly text: string | null;
+  /** When it was complete, on the clock of `performance.now()`. */
+  readonly at: number;
 }
 
 /** Lines as they come in, each as soon as it is complete. The last one needs no newline. */
@@ -24,10 +26,11 @@ export async function* readLines(
     else pieces = [];
   };
   const take = (): ReadLine => {
+    const at = performance.now();
     const text = bytes > mostBytes ? null : Buffer.concat(pieces).toString('utf8');
     pieces = [];
     bytes = 0;
-    return { number: number++, text: text === null ? null : withoutMark(text) };
+    return { number: number++, text: text === null ? null : withoutMark(text), at };
   };
   for await (const chunk of input) {
     let from = 0;

@@ -81,8 +81,14 @@ const MOST_LOSERS = 40;
 /**
  * Tries once, for the jobs that lose most where they are, whether another stop should go for them: a call
  * that has just come in stands at the end of the day or on no route, since routes are full.
+ *
+ * @param shouldStop asked before each; what has been done by then stays, since it was for the better
  */
-export function makeRoomForLosers(plan: WorkingPlan, room: MakingRoom): void {
+export function makeRoomForLosers(
+  plan: WorkingPlan,
+  room: MakingRoom,
+  shouldStop?: () => boolean,
+): void {
   const losers = Array.from({ length: plan.c.jobCount }, (_, job) => ({
     job,
     loss: lossOf(plan, job),
@@ -90,6 +96,7 @@ export function makeRoomForLosers(plan: WorkingPlan, room: MakingRoom): void {
     .filter(({ job, loss }) => loss > 0 && !plan.c.isFrozen[job])
     .sort((a, b) => b.loss - a.loss || a.job - b.job);
   for (const { job } of losers.slice(0, MOST_LOSERS)) {
+    if (shouldStop?.()) return;
     const before = plan.price;
     if (!room.forJob(job)) continue;
     if (plan.isSound && plan.price < before) plan.keep();

@@ -23,8 +23,10 @@ export interface PlanOptions {
   readonly progress?: () => number;
 }
 
-/** How often the caller is asked; a round takes well under a millisecond. */
-const ASK_EVERY = 32;
+/** How often the caller is asked whether to stop: a round with a thousand jobs may take half a millisecond. */
+const ASK_EVERY = 8;
+/** How often the share of the time is worked out anew. */
+const SHARE_EVERY = 32;
 
 /**
  * Plans the routes of all technicians.
@@ -45,12 +47,12 @@ export function plan(problem: PlanProblem, options: PlanOptions): Plan {
 
   let done = 0;
   if (search && !solveSmall(working)) {
-    makeRoomForLosers(working, search.room);
+    makeRoomForLosers(working, search.room, options.shouldStop);
     const cooling = new Cooling(c);
     let share = 0;
     while (done < options.iterations && search.hasChoice) {
-      if (done % ASK_EVERY === 0) {
-        if (options.shouldStop?.()) break;
+      if (done % ASK_EVERY === 0 && options.shouldStop?.()) break;
+      if (done % SHARE_EVERY === 0) {
         share = Math.max(done / options.iterations, options.progress?.() ?? 0);
         if (share >= 1) break;
       }
