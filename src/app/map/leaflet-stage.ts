@@ -15,6 +15,8 @@ const EDGE_PX = 36;
 const FREE_SHARE = 0.2;
 /** How far the map goes beyond the region, as a share of its size. */
 const BEYOND = 0.35;
+/** The same while a panel covers a part of the map. */
+const BEYOND_BESIDE = 4;
 
 /** So far a view may stray, by rounding, and still be the one that was fitted. */
 const MOVED_PX = 2;
@@ -145,10 +147,14 @@ export class LeafletStage {
    * view that somebody has chosen since stays as it is.
    */
   fitAgain(covered: Covered): void {
-    if (this.isAsFitted()) this.fit(this.fitted.whole, covered);
+    const isAsFitted = this.isAsFitted();
+    this.leaveRoom(covered);
+    if (isAsFitted) this.fit(this.fitted.whole, covered);
   }
 
-  private fit(whole: Whole, { left = 0, below = 0 }: Covered): void {
+  private fit(whole: Whole, covered: Covered): void {
+    const { left = 0, below = 0 } = covered;
+    this.leaveRoom(covered);
     this.map.once('moveend', () => {
       this.fitted = { whole, centre: this.map.getCenter(), zoom: this.map.getZoom() };
     });
@@ -157,6 +163,11 @@ export class LeafletStage {
       paddingBottomRight: [EDGE_PX, EDGE_PX + below],
       maxZoom: whole.closest,
     });
+  }
+
+  /** What is to stand above a panel needs room below it. */
+  private leaveRoom({ left = 0, below = 0 }: Covered): void {
+    this.map.setMaxBounds(this.home.pad(left + below > 0 ? BEYOND_BESIDE : BEYOND));
   }
 
   private isAsFitted(): boolean {
