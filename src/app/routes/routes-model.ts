@@ -37,6 +37,8 @@ interface Attempt {
   readonly send: () => Promise<void>;
   /** The stop as the person who acts saw it, to say what is different now. */
   readonly before?: StopDto;
+  /** The proposal that this decides about. */
+  readonly planId?: string;
 }
 
 /** The automatic plan that this browser's desk has read and closed. */
@@ -62,6 +64,8 @@ export class RoutesModel {
   private readonly endedPlans = new Map<string, PlanDto['state']>();
   /** Proposals that this desk published or discarded: their end is no news here. */
   private readonly ownPlans = new Set<string>();
+  /** The proposal that the refusal on screen is about. */
+  private refusedPlan: string | null = null;
 
   readonly isBusy = computed(() => this.pending() > 0);
   readonly setback = this.stopped.asReadonly();
@@ -197,6 +201,7 @@ export class RoutesModel {
   ): Promise<boolean> {
     const body = stamp(plan);
     return this.run({
+      planId: plan.id,
       send: async () => {
         this.ownPlans.add(plan.id);
         try {
@@ -215,6 +220,7 @@ export class RoutesModel {
   private async run(attempt: Attempt): Promise<boolean> {
     this.pending.update((count) => count + 1);
     this.stopped.set(null);
+    this.refusedPlan = null;
     try {
       await attempt.send();
       return true;
@@ -229,13 +235,19 @@ export class RoutesModel {
 
   private tellSetback(error: ProblemError, attempt: Attempt): void {
     const mayRetry = error.code === 'no-connection' || error.code === 'busy';
+    const isOvertaken = error.code === 'plan-overtaken';
     this.stopped.set({
       words: error.message,
       changes: this.changesIn(error.current, attempt.before),
       retry: mayRetry ? () => this.run(attempt) : null,
-      proposeAgain: error.code === 'plan-overtaken',
+      proposeAgain: isOvertaken,
     });
-    if (error.code === 'plan-overtaken') this.board.reload();
+    if (!isOvertaken) return;
+    this.refusedPlan = attempt.planId ?? null;
+    // Its end may have been announced before the refusal came.
+    const ended = this.endedPlans.get(attempt.planId ?? '');
+    if (ended) this.mergeFate(FATES[ended]);
+    this.board.reload();
   }
 
   private changesIn(current: unknown, before: StopDto | undefined): string[] {
@@ -255,7 +267,15 @@ export class RoutesModel {
 
   private tellFate(planId: string): void {
     if (this.ownPlans.has(planId) || this.searching()) return;
-    this.fateNow.set(FATES[this.endedPlans.get(planId) ?? 'proposed']);
+    const fate = FATES[this.endedPlans.get(planId) ?? 'proposed'];
+    if (planId === this.refusedPlan) this.mergeFate(fate);
+    else this.fateNow.set(fate);
+  }
+
+  /** A refusal that is on screen takes the words up: two boxes would tell one thing. */
+  private mergeFate(fate: PlanFate): void {
+    this.fateNow.set(null);
+    this.stopped.update((refusal) => refusal && { ...refusal, ...fate });
   }
 }
 

@@ -334,6 +334,32 @@ describe('RoutesPage', () => {
     expect(again.request.body).toMatchObject({ seconds: 2 });
   });
 
+  it.each(['before', 'after'])(
+    'tells once who published, when that was announced %s the refusal',
+    async (order) => {
+      const page = await aPage({ ...withStops(), plan: aPlan() });
+      await page.press('Enter', { ctrlKey: true });
+      const sent = page.http.expectOne(`/api/plans/${idOf(7000)}/publication`);
+      const refuse = (): void =>
+        sent.flush(
+          {
+            type: '/problems/plan-overtaken',
+            title: 'x',
+            detail: 'Decided or changed.',
+            status: 409,
+          },
+          { status: 409, statusText: 'Conflict' },
+        );
+      if (order === 'after') refuse();
+      await page.hear({ kind: 'plan', plan: aPlan({ state: 'published', version: 2 }) });
+      if (order === 'before') refuse();
+      await page.settle();
+      expect(page.text('[role=alert]')).toContain('Another desk has published this proposal.');
+      expect(page.text('aside')).not.toContain('Decided or changed.');
+      expect(page.text('aside').split('Another desk has published').length).toBe(2);
+    },
+  );
+
   it('tells when a proposal on screen is overtaken, and not when this desk ended it', async () => {
     const page = await aPage({ ...withStops(), plan: aPlan() });
     await page.hear({ kind: 'plan', plan: aPlan({ state: 'overtaken', version: 2 }) });

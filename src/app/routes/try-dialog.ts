@@ -1,4 +1,14 @@
-import { ChangeDetectionStrategy, Component, computed, inject, signal } from '@angular/core';
+import {
+  afterNextRender,
+  ChangeDetectionStrategy,
+  Component,
+  computed,
+  type ElementRef,
+  inject,
+  Injector,
+  signal,
+  viewChild,
+} from '@angular/core';
 import { MatButton } from '@angular/material/button';
 import {
   MatDialogActions,
@@ -46,6 +56,8 @@ export class TryDialog {
   private readonly board = inject(BoardStore);
   private readonly session = inject(Session);
   private readonly announce = inject(Announce);
+  private readonly injector = inject(Injector);
+  private readonly results = viewChild<ElementRef<HTMLElement>>('results');
 
   protected readonly fields = PRICE_FIELDS;
   /** What was typed, by field; the others stand as they are set. */
@@ -128,6 +140,7 @@ export class TryDialog {
       this.triedPrices.set(prices);
       this.trial.set(trial);
       this.announce.say('Tried: the figures stand side by side.');
+      this.showResults();
     });
   }
 
@@ -143,6 +156,13 @@ export class TryDialog {
       this.typed.set(new Map());
       this.trial.set(null);
       this.announce.notice('The weights are set. The next proposal counts with them.');
+    });
+  }
+
+  /** On a small screen the fields fill the dialog, and what was found lies below its edge. */
+  private showResults(): void {
+    afterNextRender(() => this.results()?.nativeElement.scrollIntoView?.({ block: 'nearest' }), {
+      injector: this.injector,
     });
   }
 
