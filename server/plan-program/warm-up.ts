@@ -9,7 +9,7 @@ const HOUR = 3600;
 
 /**
  * Plans a made-up problem before the first one comes in, so that the compiler of the language has seen the
- * search at work and the first plan of a stream is as good as the later ones.
+ * search at work and the first plan, of a stream or of the server, is as good as the later ones.
  */
 export function warmUp(): void {
   answerProblem(

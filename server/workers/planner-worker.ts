@@ -4,12 +4,15 @@ import { carriedOver, plan } from '@shared/domain/planner/plan';
 import { stopReasons, summarisePlan } from '@shared/domain/planner/plan-summary';
 import type { Plan, PlanProblem } from '@shared/domain/planner/problem';
 import { stopDrives } from '@shared/domain/planner/stop-drives';
+import { warmUp } from '../plan-program/warm-up';
 import type { PlannerRequest, PlannerResponse, RouteSummary } from './planner-client';
 import { plannerDrives } from './planner-drives';
 import { serveRequests, type Running } from './serve-requests';
 
 /** Rounds that no budget of time reaches. */
 const WITHOUT_END = 1e9;
+/** Milliseconds of rest after which the worker warms up: the server has started by then. */
+const WARM_UP_AFTER_MS = 3000;
 
 function answer(request: PlannerRequest, { shouldStop }: Running): PlannerResponse {
   const began = performance.now();
@@ -24,7 +27,7 @@ function answer(request: PlannerRequest, { shouldStop }: Running): PlannerRespon
   const result = plan(problem, {
     iterations: request.iterations ?? WITHOUT_END,
     seed,
-    shouldStop,
+    shouldStop: () => shouldStop() || (progress?.() ?? 0) >= 1,
     ...(progress ? { progress } : {}),
   });
   const before = problem.previous ? carriedOver(problem) : null;
@@ -61,4 +64,9 @@ function byTechnician(
   }));
 }
 
-serveRequests(answer);
+// Whoever asks sooner is answered at once, and the worker is warm by that.
+const warming = setTimeout(warmUp, WARM_UP_AFTER_MS).unref();
+serveRequests<PlannerRequest, PlannerResponse>((request, running) => {
+  clearTimeout(warming);
+  return answer(request, running);
+});
