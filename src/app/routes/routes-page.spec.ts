@@ -19,6 +19,7 @@ import {
   aCallRow,
   aMe,
   aStop,
+  aStorm,
   aTechnician,
   FakeSocket,
   idOf,
@@ -173,6 +174,14 @@ describe('RoutesPage', () => {
     expect(page.labels()[0]).toContain('Call 1. Offered. arrives 02:45, done 03:30.');
     // The fresh food of call 1 is lost at 03:16, before the visit ends.
     expect(page.labels()[0]).toContain('Too late by 14 min for fresh food');
+  });
+
+  it('proposes nothing in a storm that was closed while the routes were on screen', async () => {
+    const page = await aPage(withStops());
+    await page.hear({ kind: 'storm', storm: aStorm({ state: 'closed', version: 2 }) });
+    expect(page.text('.routes')).toContain('No storm is open.');
+    await page.press('r');
+    page.http.expectNone(`/api/storms/${STORM_ID}/plans`);
   });
 
   it('locks the stop under the cursor with L', async () => {

@@ -84,6 +84,8 @@ export class RoutesPage {
       shopMinutes: this.session.settings()?.shopMinutes ?? 0,
     }),
   );
+  /** A closed storm stays on the board to be read, and takes no routes. */
+  protected readonly isStormOpen = computed(() => this.board.storm()?.state === 'open');
   protected readonly span = computed(() => {
     const rows = this.rows();
     return spanOf(
@@ -154,6 +156,7 @@ export class RoutesPage {
   /** What there is to do while nobody has a stop. */
   protected readonly noneWords = computed(() => {
     const waiting = this.waiting().length;
+    if (!this.isStormOpen()) return '';
     if (this.rows().length === 0 || this.board.plan() || this.allStops().length > 0) return '';
     if (waiting === 0) return 'Nobody has a stop, and no call waits for a visit.';
     const calls = waiting === 1 ? '1 call waits' : `${waiting} calls wait`;
@@ -222,7 +225,7 @@ export class RoutesPage {
   }
 
   protected async propose(): Promise<void> {
-    if (this.rows().length === 0 || !this.board.storm()) return;
+    if (this.rows().length === 0 || !this.isStormOpen()) return;
     await this.model.propose(this.searchBar()?.seconds() ?? 2);
   }
 
@@ -243,7 +246,7 @@ export class RoutesPage {
 
   /** Other weights are tried beside the routes; nothing of it is kept. */
   protected tryWeights(): void {
-    if (!this.board.storm()) return;
+    if (!this.isStormOpen()) return;
     this.dialogs.open(TryDialog, { width: '980px', maxWidth: '96vw', restoreFocus: true });
   }
 
@@ -315,7 +318,7 @@ export class RoutesPage {
   }
 
   protected async add(call: CallRow): Promise<void> {
-    if (this.rows().length === 0) return;
+    if (this.rows().length === 0 || !this.isStormOpen()) return;
     const answer = await this.askPlace({
       title: `Put call ${call.number} on a route`,
       call,
