@@ -6,7 +6,17 @@ import type { DayChange } from '@shared/contract/realtime';
 import type { StopCard, StopDto, TechnicianDay } from '@shared/contract/routes';
 import { DayStore } from './day-store';
 import { LIVE_SOCKET } from './live';
-import { aCallRow, aMe, aStop, aTechnician, FakeSocket, idOf, settled, STORM_ID } from './testing';
+import {
+  aCallRow,
+  aMe,
+  aStop,
+  aStorm,
+  aTechnician,
+  FakeSocket,
+  idOf,
+  settled,
+  STORM_ID,
+} from './testing';
 import { Session } from './session';
 
 function aCard(n: number, stop: Partial<StopDto> = {}): StopCard {
@@ -151,6 +161,11 @@ describe('DayStore', () => {
   it('fetches the day when a storm opens while it had none', async () => {
     await open({ ...aDay(), stormId: null, n: 0 });
     expect(day.link()).toBe('live');
+    // The phone took the storm for open: it asks what has become of it.
+    const over = { ...aStorm(), state: 'closed' as const, closedAt: 1, version: 9 };
+    http.expectOne('/api/me').flush({ me: { ...aMe('technician'), storm: over } });
+    await settled();
+    expect(TestBed.inject(Session).hasOpenStorm()).toBe(false);
     socket.announce('day:changed', {
       stormId: STORM_ID,
       n: 1,

@@ -1,4 +1,4 @@
-import { computed, DestroyRef, inject, Injectable, signal } from '@angular/core';
+import { computed, DestroyRef, effect, inject, Injectable, signal } from '@angular/core';
 import type { DayChange, Numbered } from '@shared/contract/realtime';
 import type { StopCard, TechnicianDay } from '@shared/contract/routes';
 import { Api } from './api';
@@ -57,6 +57,12 @@ export class DayStore {
 
   constructor() {
     inject(DestroyRef).onDestroy(() => this.close());
+    // A phone hears of its stops alone, and by them that the storm has ended or another has begun.
+    effect(() => {
+      if (!this.isLoaded()) return;
+      const open = this.session.hasOpenStorm() ? this.session.storm()?.id : null;
+      if (this.stormId() !== open) void this.session.refreshStorm();
+    });
   }
 
   /** The frame does this for a technician. */

@@ -1,5 +1,13 @@
 import { DOCUMENT } from '@angular/common';
-import { computed, DestroyRef, inject, Injectable, InjectionToken, signal } from '@angular/core';
+import {
+  computed,
+  DestroyRef,
+  effect,
+  inject,
+  Injectable,
+  InjectionToken,
+  signal,
+} from '@angular/core';
 import type { ClientEvents, ServerEvents } from '@shared/contract/realtime';
 import type { Instant } from '@shared/domain/instant';
 import { io, type Socket } from 'socket.io-client';
@@ -17,6 +25,8 @@ export const LIVE_SOCKET = new InjectionToken<LiveSocket>('the socket to the ser
 
 const ANSWER_WITHIN_MS = 10_000;
 const REOPEN_AFTER_MS = 3_000;
+/** A storm opens once in weeks, and nobody is kept from work by some seconds. */
+const NEXT_STORM_MS = 10_000;
 
 type Ask<E extends keyof ClientEvents> = Parameters<ClientEvents[E]>;
 
@@ -61,6 +71,7 @@ export class Live {
     });
     this.socket.on('region:changed', (region) => this.session.takeRegion(region));
     this.socket.on('session:ended', (reason) => this.session.end(reason));
+    this.watchForNextStorm();
     this.watchNetwork();
     inject(DestroyRef).onDestroy(() => {
       clearTimeout(this.reopening);
@@ -113,6 +124,18 @@ export class Live {
     if (this.socket.active || !this.session.me()) return;
     clearTimeout(this.reopening);
     this.reopening = setTimeout(() => this.socket.connect(), REOPEN_AFTER_MS);
+  }
+
+  /** Changes are announced within a storm; whoever looks at one that has ended asks for the next. */
+  private watchForNextStorm(): void {
+    const isWaiting = computed(
+      () => this.link() === 'live' && this.session.me() !== null && !this.session.hasOpenStorm(),
+    );
+    effect((onCleanup) => {
+      if (!isWaiting()) return;
+      const asking = setInterval(() => void this.session.refreshStorm(), NEXT_STORM_MS);
+      onCleanup(() => clearInterval(asking));
+    });
   }
 
   private watchNetwork(): void {

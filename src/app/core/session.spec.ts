@@ -7,7 +7,7 @@ import { Api } from './api';
 import { Drafts } from './drafts';
 import { homeGuard, roleGuard } from './role-guard';
 import { isWorthReturningTo, Session } from './session';
-import { aMe, settled } from './testing';
+import { aMe, aStorm, settled } from './testing';
 
 @Component({ template: '' })
 class Blank {}
@@ -53,6 +53,17 @@ describe('Session', () => {
     expect(session.role()).toBe('dispatcher');
     expect(session.storm()?.name).toBe('September ice');
     expect(session.zone()).toBe('America/New_York');
+  });
+
+  it('takes the next storm once the one on the screen has ended', async () => {
+    const over = { ...aStorm(), state: 'closed' as const, closedAt: 1 };
+    await signedIn({ ...aMe(), storm: over });
+    expect(session.hasOpenStorm()).toBe(false);
+    const asked = session.refreshStorm();
+    const next = { ...aStorm(), id: '00000000-0000-4000-8000-00000000000f', name: 'November gale' };
+    http.expectOne('/api/me').flush({ me: { ...aMe(), storm: next } });
+    await asked;
+    expect([session.storm()?.name, session.hasOpenStorm()]).toEqual(['November gale', true]);
   });
 
   it('is signed out, not unreachable, when the server says nobody', async () => {

@@ -36,6 +36,8 @@ export class Session {
   readonly user = computed(() => this.known()?.user ?? null);
   readonly role = computed<Role | null>(() => this.known()?.user.role ?? null);
   readonly storm = computed(() => this.known()?.storm ?? null);
+  /** Whether there is a storm to work in. */
+  readonly hasOpenStorm = computed(() => this.storm()?.state === 'open');
   readonly region = computed(() => this.known()?.region ?? null);
   readonly settings = computed(() => this.known()?.settings ?? null);
   /** The region's IANA time zone; UTC before anyone is signed in. */
@@ -123,6 +125,18 @@ export class Session {
       this.takeRegion(await this.api.call('region'));
     } catch (error) {
       // The next connection asks again.
+      if (!(error instanceof ProblemError)) throw error;
+    }
+  }
+
+  /** Asks which storm is open, after the one on the screen has ended. Never rejects. */
+  async refreshStorm(): Promise<void> {
+    if (!this.known()) return;
+    try {
+      const { me } = await this.api.call('me');
+      if (me?.storm) this.takeStorm(me.storm);
+    } catch (error) {
+      // It is asked again soon.
       if (!(error instanceof ProblemError)) throw error;
     }
   }
